@@ -1,0 +1,152 @@
+import { z } from 'zod';
+
+/** What the server says about the bytes: read from the header, before anything is computed. */
+export const audioFormatSchema = z.object({
+  container: z.enum(['RIFF', 'RF64', 'BW64']),
+  encoding: z.enum(['integer', 'float']),
+  bitsPerSample: z.number().int(),
+  channels: z.number().int().min(1).max(64),
+  sampleRateHz: z.number().int().min(1).max(20_000_000),
+  frames: z.number().int().min(1),
+  extensible: z.boolean(),
+  warnings: z.array(z.string()),
+});
+export type AudioFormat = z.infer<typeof audioFormatSchema>;
+
+/** Levels in dB re full scale; a full-scale sine has rms 0 dB (AES17). `null` where the channel is silent. */
+export const channelLevelsSchema = z.object({
+  channel: z.number().int().min(0),
+  rmsDb: z.number().nullable(),
+  peakDb: z.number().nullable(),
+  crestDb: z.number().nullable(),
+  dcFraction: z.number(),
+  clippedSamples: z.number().int(),
+  clippedRuns: z.number().int(),
+  nonFiniteSamples: z.number().int(),
+});
+export type ChannelLevels = z.infer<typeof channelLevelsSchema>;
+
+/** Medians over the frames that are not silent; the definitions are meyda's, in hertz where it counts in bins. */
+export const channelDescriptorsSchema = z.object({
+  channel: z.number().int().min(0),
+  centroidHz: z.number().nullable(),
+  spreadHz: z.number().nullable(),
+  flatness: z.number().nullable(),
+  rolloff99AmplitudeHz: z.number().nullable(),
+  zeroCrossingRateHz: z.number().nullable(),
+  ultrasonicShare: z.number().nullable(),
+});
+export type ChannelDescriptors = z.infer<typeof channelDescriptorsSchema>;
+
+export const placeSchema = z.object({
+  channel: z.number().int().min(0),
+  startSample: z.number().int().min(0),
+  endSample: z.number().int().min(0),
+});
+export type Place = z.infer<typeof placeSchema>;
+
+export const qualityFindingSchema = z.object({
+  code: z.enum(['clipping', 'dc', 'dropout', 'mains', 'channels-equal', 'channel-silent', 'non-finite', 'truncated', 'header']),
+  weight: z.enum(['note', 'caution', 'serious']),
+  sentence: z.string(),
+  count: z.number().int().min(0),
+  places: z.array(placeSchema).max(50),
+});
+export type QualityFinding = z.infer<typeof qualityFindingSchema>;
+
+export const bandwidthSchema = z.object({
+  effectiveHz: z.number(),
+  edge: z.enum(['none', 'brick-wall']),
+  reason: z.string(),
+});
+export type Bandwidth = z.infer<typeof bandwidthSchema>;
+
+/** A span in which the energy of the observable band stands at least `excessDb` over its quiet floor. */
+export const flaggedSpanSchema = placeSchema.extend({ excessDb: z.number() });
+export type FlaggedSpan = z.infer<typeof flaggedSpanSchema>;
+
+export const ultrasoundSchema = z.object({
+  verdict: z.enum(['not-observable', 'found', 'not-found']),
+  reason: z.string(),
+  bandLowHz: z.number().nullable(),
+  bandHighHz: z.number().nullable(),
+  /** Share of the signal's whole energy (mean removed) that lies above 20 kHz, as this sensor and rate see it. */
+  energyShare: z.number().nullable(),
+  /** The same for the bursts alone, noise subtracted; `null` without bursts. */
+  burstEnergyShare: z.number().nullable(),
+  spanCount: z.number().int(),
+  spans: z.array(flaggedSpanSchema).max(1000),
+  candidates: z.object({
+    total: z.number().int(),
+    below: z.number().int(),
+    across: z.number().int(),
+    above: z.number().int(),
+    expectedByChance: z.number(),
+  }),
+});
+export type Ultrasound = z.infer<typeof ultrasoundSchema>;
+
+/** Through the run: at most 1,000 equal steps, `null` in silence. */
+export const courseSchema = z.object({
+  samplesPerStep: z.number().int().min(1),
+  levelDb: z.array(z.number().nullable()).max(1000),
+  ultrasonicDb: z.array(z.number().nullable()).max(1000),
+  candidates: z.array(z.number().int()).max(1000),
+});
+export type Course = z.infer<typeof courseSchema>;
+
+export const measurementSummarySchema = z.object({
+  version: z.literal(1),
+  format: audioFormatSchema,
+  levels: z.array(channelLevelsSchema),
+  descriptors: z.array(channelDescriptorsSchema),
+  quality: z.array(qualityFindingSchema),
+  bandwidth: bandwidthSchema,
+  ultrasonic: ultrasoundSchema,
+  course: courseSchema,
+  detector: z.object({ version: z.string(), settings: z.record(z.string(), z.union([z.number(), z.string()])) }),
+});
+export type MeasurementSummary = z.infer<typeof measurementSummarySchema>;
+
+/** Power density of quiet and of active frames on one axis, dB re full scale squared per hertz. */
+export const spectrumSchema = z.object({
+  channel: z.number().int().min(0),
+  frequenciesHz: z.array(z.number()),
+  quietDbPerHz: z.array(z.number()),
+  activeDbPerHz: z.array(z.number()).nullable(),
+  maximumDbPerHz: z.array(z.number()),
+});
+export type Spectrum = z.infer<typeof spectrumSchema>;
+
+/** Burst parameters by the definitions of ASTM E1316 and ISO 12716; voltage forms only where full scale in volts is known. */
+export const burstParametersSchema = z.object({
+  onsetSample: z.number().int().min(0),
+  endSample: z.number().int().min(0),
+  peakSample: z.number().int().min(0),
+  onsetUncertaintyUs: z.number().nullable(),
+  peakDb: z.number().nullable(),
+  peakDbAe: z.number().nullable(),
+  riseTimeUs: z.number(),
+  durationUs: z.number(),
+  counts: z.number().int(),
+  /** Integral of the squared signal, full scale squared times seconds. */
+  energyFs2S: z.number(),
+  energyV2S: z.number().nullable(),
+  rmsDb: z.number().nullable(),
+  averageFrequencyHz: z.number().nullable(),
+  raMsPerV: z.number().nullable(),
+  peakFrequencyHz: z.number().nullable(),
+  centroidHz: z.number().nullable(),
+  /** Noise-subtracted share of the burst's energy above 20 kHz; `null` where nothing above 20 kHz can be seen. */
+  ultrasonicShare: z.number().nullable(),
+  hearingClass: z.enum(['below', 'across', 'above', 'unknown']),
+  snrDb: z.number().nullable(),
+  clipped: z.boolean(),
+});
+export type BurstParameters = z.infer<typeof burstParametersSchema>;
+
+export const detectedCandidateSchema = burstParametersSchema.extend({
+  channel: z.number().int().min(0),
+  channels: z.array(z.number().int().min(0)),
+});
+export type DetectedCandidate = z.infer<typeof detectedCandidateSchema>;
