@@ -46,7 +46,17 @@ export const placeSchema = z.object({
 export type Place = z.infer<typeof placeSchema>;
 
 export const qualityFindingSchema = z.object({
-  code: z.enum(['clipping', 'dc', 'dropout', 'mains', 'channels-equal', 'channel-silent', 'non-finite', 'truncated', 'header']),
+  code: z.enum([
+    'clipping',
+    'dc',
+    'dropout',
+    'mains',
+    'channels-equal',
+    'channel-silent',
+    'non-finite',
+    'truncated',
+    'header',
+  ]),
   weight: z.enum(['note', 'caution', 'serious']),
   sentence: z.string(),
   count: z.number().int().min(0),
@@ -104,7 +114,10 @@ export const measurementSummarySchema = z.object({
   bandwidth: bandwidthSchema,
   ultrasonic: ultrasoundSchema,
   course: courseSchema,
-  detector: z.object({ version: z.string(), settings: z.record(z.string(), z.union([z.number(), z.string()])) }),
+  detector: z.object({
+    version: z.string(),
+    settings: z.record(z.string(), z.union([z.number(), z.string()])),
+  }),
 });
 export type MeasurementSummary = z.infer<typeof measurementSummarySchema>;
 

@@ -1,0 +1,127 @@
+import { z } from 'zod';
+import { idSchema, instantSchema, revisionSchema, sha256Schema } from './ids.ts';
+import { licenceSchema } from './licence.ts';
+import { audioFormatSchema, burstParametersSchema, measurementSummarySchema } from './measurement.ts';
+import { pageSchema, pageQuerySchema } from './page.ts';
+import { sensorKindSchema } from './sensors.ts';
+
+/** Declared by whoever brings the recording in. An empty set means: nothing sensitive known. */
+export const sensitivitySchema = z.enum([
+  'voices',
+  'personal-data',
+  'partner-agreement',
+  'unpublished-result',
+  'other',
+]);
+export type Sensitivity = z.infer<typeof sensitivitySchema>;
+
+export const processingSchema = z.enum(['queued', 'measuring', 'measured', 'failed']);
+export type Processing = z.infer<typeof processingSchema>;
+export const sharingSchema = z.enum([
+  'pending',
+  'held',
+  'lab',
+  'embargoed',
+  'shared',
+  'refused',
+  'withdrawn',
+]);
+export type Sharing = z.infer<typeof sharingSchema>;
+
+/** Why a recording is held: what somebody declared, or what the screen found. */
+export const guardFindingSchema = z.object({
+  id: idSchema,
+  kind: z.enum(['declared-sensitivity', 'personal-metadata', 'voice-marked']),
+  sentence: z.string(),
+  /** For metadata: which chunk and field; for a mark: where it lies. */
+  place: z.string().nullable(),
+  foundAt: instantSchema,
+});
+export type GuardFinding = z.infer<typeof guardFindingSchema>;
+
+export const recordingListItemSchema = z.object({
+  id: idSchema,
+  runId: idSchema,
+  runTitle: z.string(),
+  labId: idSchema,
+  labName: z.string(),
+  material: z.string(),
+  fileName: z.string(),
+  sizeBytes: z.number().int(),
+  sampleRateHz: z.number(),
+  channels: z.number().int(),
+  frames: z.number().int(),
+  durationS: z.number(),
+  processing: processingSchema,
+  /** 0 to 1 while measuring. */
+  progress: z.number().min(0).max(1),
+  sharing: sharingSchema,
+  ultrasonicVerdict: z.enum(['not-observable', 'found', 'not-found']).nullable(),
+  /** `null` where the person works blind on this recording, or nothing is measured yet. */
+  candidateCount: z.number().int().nullable(),
+  createdAt: instantSchema,
+});
+export type RecordingListItem = z.infer<typeof recordingListItemSchema>;
+
+export const recordingSchema = recordingListItemSchema.extend({
+  setupId: idSchema,
+  setupName: z.string(),
+  sensorName: z.string(),
+  sensorKind: sensorKindSchema,
+  sensorLowHz: z.number().nullable(),
+  sensorHighHz: z.number().nullable(),
+  fullScaleV: z.number().nullable(),
+  preampGainDb: z.number().nullable(),
+  sha256: sha256Schema,
+  licence: licenceSchema,
+  sensitivity: z.array(sensitivitySchema),
+  note: z.string(),
+  runOffsetNs: z.number().int().nullable(),
+  timeExpansion: z.number(),
+  uploadedByName: z.string().nullable(),
+  format: audioFormatSchema,
+  /** `null` until measured; without ultrasonic counts and course where the person works blind. */
+  measurement: measurementSummarySchema.nullable(),
+  failure: z.string().nullable(),
+  /** Told to the owning lab only; empty for everybody else. */
+  findings: z.array(guardFindingSchema),
+  eventCount: z.number().int().nullable(),
+  /** True while an open blind pass of this person forbids candidates, counts and rates. */
+  blind: z.boolean(),
+  /** What the asking person may do with it; the server decides again at each request. */
+  may: z.object({ downloadAudio: z.boolean(), decide: z.boolean(), assign: z.boolean(), mark: z.boolean() }),
+  revision: revisionSchema,
+});
+export type Recording = z.infer<typeof recordingSchema>;
+
+export const listRecordingsQuerySchema = pageQuerySchema.extend({
+  q: z.string().trim().max(100).optional(),
+  runId: idSchema.optional(),
+  labId: idSchema.optional(),
+  processing: processingSchema.optional(),
+  sharing: sharingSchema.optional(),
+  ultrasonicVerdict: z.enum(['not-observable', 'found', 'not-found']).optional(),
+});
+export type ListRecordingsQuery = z.infer<typeof listRecordingsQuerySchema>;
+export const recordingsPageSchema = pageSchema(recordingListItemSchema);
+
+export const candidateSchema = burstParametersSchema.extend({
+  id: idSchema,
+  ordinal: z.number().int().min(0),
+  channel: z.number().int().min(0),
+  channels: z.array(z.number().int().min(0)),
+  onsetS: z.number(),
+});
+export type Candidate = z.infer<typeof candidateSchema>;
+
+export const candidateSortSchema = z.enum(['onset', 'strongest']);
+export const listCandidatesQuerySchema = pageQuerySchema.extend({
+  limit: z.coerce.number().int().min(1).max(2000).default(200),
+  channel: z.coerce.number().int().min(0).max(63).optional(),
+  startSample: z.coerce.number().int().min(0).optional(),
+  endSample: z.coerce.number().int().min(0).optional(),
+  hearingClass: z.enum(['below', 'across', 'above', 'unknown']).optional(),
+  sort: candidateSortSchema.default('onset'),
+});
+export type ListCandidatesQuery = z.infer<typeof listCandidatesQuerySchema>;
+export const candidatesPageSchema = pageSchema(candidateSchema);
