@@ -1,0 +1,32 @@
+/** Who may see a recording; on an axis of its own beside its processing. */
+export type SharingState = 'pending' | 'held' | 'lab' | 'embargoed' | 'shared' | 'refused' | 'withdrawn';
+export type ReviewDecision = 'clear' | 'restrict' | 'refuse';
+
+interface Finding {
+  kind: 'declared-sensitivity' | 'personal-metadata' | 'voice-marked';
+}
+
+/** After measuring and screening: a finding holds the recording, nothing found shares it. */
+export function sharingAfterScreen(findings: readonly Finding[]): 'held' | 'shared' {
+  return findings.length > 0 ? 'held' : 'shared';
+}
+
+const outcome = { clear: 'shared', restrict: 'lab', refuse: 'refused' } as const satisfies Record<
+  ReviewDecision,
+  SharingState
+>;
+
+export function sharingAfterDecision(decision: ReviewDecision): SharingState {
+  return outcome[decision];
+}
+
+/** Personal metadata sits inside the stored bytes, which nobody else may get as long as it cannot be taken out. */
+export function decisionsFor(findings: readonly Finding[]): ReviewDecision[] {
+  const hasPersonalMetadata = findings.some((finding) => finding.kind === 'personal-metadata');
+  return hasPersonalMetadata ? ['restrict', 'refuse'] : ['clear', 'restrict', 'refuse'];
+}
+
+/** Only a held recording waits for a decision. */
+export function awaitsDecision(sharing: SharingState): boolean {
+  return sharing === 'held';
+}
