@@ -1,0 +1,72 @@
+import { existsSync, rmSync } from 'node:fs';
+import { join } from 'node:path';
+import { clearStamp, hashOfSources, readStamp, writeStamp } from './stamp.mjs';
+import { SetupError, projectRoot, run, say } from './terminal.mjs';
+
+/**
+ * @typedef {object} Build
+ * @property {string} name
+ * @property {string[]} sources
+ * @property {string[]} outputs emptied before the build
+ * @property {string} proof a file the build must leave
+ * @property {string[]} command arguments of Node.js
+ */
+
+/** @type {Build} */
+const client = {
+  name: 'client',
+  sources: [
+    'src',
+    'shared',
+    'public',
+    'index.html',
+    'vite.config.ts',
+    'tsconfig.base.json',
+    'tsconfig.client.json',
+    'package-lock.json',
+  ],
+  outputs: ['dist/client'],
+  proof: 'dist/client/index.html',
+  command: ['node_modules/vite/bin/vite.js', 'build', '--logLevel', 'warn'],
+};
+
+/** @type {Build} */
+const server = {
+  name: 'server',
+  sources: [
+    'server',
+    'shared',
+    'tsconfig.base.json',
+    'tsconfig.server.json',
+    'tsconfig.server.build.json',
+    'package-lock.json',
+  ],
+  outputs: ['dist/server', 'dist/shared'],
+  proof: 'dist/server/main.js',
+  command: ['node_modules/typescript/bin/tsc', '-p', 'tsconfig.server.build.json'],
+};
+
+/** @param {Build} build */
+async function makeBuild(build) {
+  say(`Building the ${build.name} ...`);
+  for (const output of build.outputs) rmSync(join(projectRoot, output), { recursive: true, force: true });
+  const code = await run(process.execPath, build.command);
+  if (code !== 0 || !existsSync(join(projectRoot, build.proof)))
+    throw new SetupError(`The ${build.name} could not be built; the lines above say why.`);
+}
+
+/** @param {Build} build */
+async function ensureBuild(build) {
+  const stampFile = join(projectRoot, 'dist', `.${build.name}-stamp`);
+  const wanted = hashOfSources(projectRoot, build.sources);
+  if (readStamp(stampFile) === wanted && existsSync(join(projectRoot, build.proof))) return;
+  clearStamp(stampFile);
+  await makeBuild(build);
+  writeStamp(stampFile, wanted);
+}
+
+/** Builds client and server, each only when its sources changed since its last build. */
+export async function ensureBuilds() {
+  await ensureBuild(server);
+  await ensureBuild(client);
+}

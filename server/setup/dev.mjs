@@ -1,0 +1,10 @@
+import { ensureDependencies } from './dependencies.mjs';
+import { checkNodeVersion } from './node-version.mjs';
+import { run, runCommand } from './terminal.mjs';
+
+await runCommand(async () => {
+  checkNodeVersion();
+  await ensureDependencies();
+  const watch = ['node_modules/tsx/dist/cli.mjs', 'watch', '--clear-screen=false', 'server/main.ts'];
+  return run(process.execPath, watch, { NODE_ENV: 'development', RECALESCE_DEV: '1' });
+});

@@ -1,0 +1,10 @@
+import { ensureBuilds } from './builds.mjs';
+import { ensureDependencies } from './dependencies.mjs';
+import { checkNodeVersion } from './node-version.mjs';
+
+/** Makes a fresh clone ready to start; on a prepared one it only compares hashes. */
+export async function prepare() {
+  checkNodeVersion();
+  await ensureDependencies();
+  await ensureBuilds();
+}

@@ -1,0 +1,31 @@
+import { SetupError, findProgram, run, say } from './terminal.mjs';
+
+/** Whether this process may install system packages: Debian's way, and only as root. */
+function mayInstall() {
+  return findProgram('apt-get') !== undefined && process.getuid?.() === 0;
+}
+
+/**
+ * Installs Debian packages where that is possible, else stops and says what to install.
+ * @param {string[]} packages
+ * @param {string} purpose the first half of the sentence, such as "The browser tests need Chromium"
+ */
+export async function installSystemPackages(packages, purpose) {
+  const names = packages.join(' ');
+  if (!mayInstall()) {
+    throw new SetupError(
+      `${purpose}. Install it (on Debian: sudo apt-get install -y ${names}) and start again.`,
+    );
+  }
+  say(`${purpose}: installing ${names} ...`);
+  const environment = { DEBIAN_FRONTEND: 'noninteractive' };
+  // A failed update is no reason to stop: the lists at hand may be good enough.
+  await run('apt-get', ['update', '-qq'], environment);
+  const code = await run(
+    'apt-get',
+    ['install', '-y', '-qq', '--no-install-recommends', ...packages],
+    environment,
+  );
+  if (code !== 0)
+    throw new SetupError(`apt-get could not install ${names}. Install them by hand and start again.`);
+}
