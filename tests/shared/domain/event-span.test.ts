@@ -1,0 +1,57 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import {
+  clampSpan,
+  spanFault,
+  spanFrames,
+  spanFromSeconds,
+  spansOverlap,
+} from '../../../shared/domain/event-span.ts';
+
+const span = fc.record({
+  startSample: fc.integer({ min: -50, max: 2000 }),
+  endSample: fc.integer({ min: -50, max: 2000 }),
+});
+
+describe('a span of samples', () => {
+  it('has an exclusive end', () => {
+    expect(spanFrames({ startSample: 10, endSample: 12 })).toBe(2);
+    expect(spansOverlap({ startSample: 0, endSample: 10 }, { startSample: 10, endSample: 20 })).toBe(false);
+    expect(spansOverlap({ startSample: 0, endSample: 11 }, { startSample: 10, endSample: 20 })).toBe(true);
+  });
+
+  it.each([
+    [{ startSample: -1, endSample: 5 }, 'starts before the recording'],
+    [{ startSample: 5, endSample: 5 }, 'must end after its start'],
+    [{ startSample: 5, endSample: 101 }, 'ends after the recording'],
+    [{ startSample: 0.5, endSample: 5 }, 'must be whole samples'],
+    [{ startSample: 99, endSample: 100 }, null],
+  ])('says what is wrong with %j', (value, fault) => {
+    expect(spanFault(value, 100)).toBe(fault);
+  });
+
+  it('clamps every span into the recording and leaves a good one alone', () => {
+    fc.assert(
+      fc.property(span, fc.integer({ min: 1, max: 1000 }), (value, frames) => {
+        const clamped = clampSpan(value, frames);
+        expect(spanFault(clamped, frames)).toBeNull();
+        if (spanFault(value, frames) === null) expect(clamped).toEqual(value);
+      }),
+    );
+  });
+
+  it('covers the seconds it is made from and is never empty', () => {
+    fc.assert(
+      fc.property(
+        fc.double({ min: 0, max: 3600, noNaN: true }),
+        fc.double({ min: 0, max: 1, noNaN: true }),
+        (startS, lengthS) => {
+          const made = spanFromSeconds(startS, startS + lengthS, 192_000);
+          expect(made.startSample / 192_000).toBeLessThanOrEqual(startS + 1e-9);
+          expect(made.endSample).toBeGreaterThan(made.startSample);
+          expect(made.endSample / 192_000).toBeGreaterThanOrEqual(startS + lengthS - 1e-9);
+        },
+      ),
+    );
+  });
+});
