@@ -1,0 +1,97 @@
+import { asciiText } from '../lib/byte-text.ts';
+import { WavRefusedError, type WavRefusal } from './wav-refused-error.ts';
+
+type Mark = { at: number; bytes: string; name: string; kind: 'lossy' | 'audio' | 'video' | 'other' };
+
+/** First bytes of files that are often mistaken for a recording; `bytes` are Latin-1 characters at `at`. */
+const MARKS: Mark[] = [
+  { at: 0, bytes: 'ID3', name: 'an MP3 file', kind: 'lossy' },
+  { at: 0, bytes: 'OggS', name: 'an Ogg file (Vorbis or Opus)', kind: 'lossy' },
+  { at: 0, bytes: 'fLaC', name: 'a FLAC file', kind: 'audio' },
+  { at: 0, bytes: 'FORM', name: 'an AIFF file', kind: 'audio' },
+  { at: 0, bytes: 'caff', name: 'a Core Audio file', kind: 'audio' },
+  { at: 0, bytes: '.snd', name: 'an AU file', kind: 'audio' },
+  { at: 0, bytes: 'riff\x2e\x91\xcf\x11', name: 'a Wave64 file', kind: 'audio' },
+  { at: 0, bytes: 'MThd', name: 'a MIDI file', kind: 'other' },
+  { at: 4, bytes: 'ftypM4A', name: 'an M4A file', kind: 'lossy' },
+  { at: 4, bytes: 'ftypqt', name: 'a QuickTime film', kind: 'video' },
+  { at: 4, bytes: 'ftyp', name: 'an MP4 film', kind: 'video' },
+  { at: 4, bytes: 'moov', name: 'a QuickTime film', kind: 'video' },
+  { at: 4, bytes: 'mdat', name: 'a QuickTime film', kind: 'video' },
+  { at: 0, bytes: '\x1a\x45\xdf\xa3', name: 'a Matroska or WebM film', kind: 'video' },
+  { at: 0, bytes: '\x30\x26\xb2\x75', name: 'a Windows Media file', kind: 'lossy' },
+  { at: 0, bytes: '\x89PNG', name: 'a PNG picture', kind: 'other' },
+  { at: 0, bytes: '\xff\xd8\xff', name: 'a JPEG picture', kind: 'other' },
+  { at: 0, bytes: 'GIF8', name: 'a GIF picture', kind: 'other' },
+  { at: 0, bytes: 'II*\0', name: 'a TIFF picture', kind: 'other' },
+  { at: 0, bytes: 'MM\0*', name: 'a TIFF picture', kind: 'other' },
+  { at: 0, bytes: '%PDF', name: 'a PDF document', kind: 'other' },
+  { at: 0, bytes: 'PK\x03\x04', name: 'a ZIP archive (or an office document)', kind: 'other' },
+  { at: 0, bytes: '\x1f\x8b', name: 'a gzip archive', kind: 'other' },
+  { at: 0, bytes: "7z\xbc\xaf'\x1c", name: 'a 7-Zip archive', kind: 'other' },
+  { at: 0, bytes: 'SQLite format 3', name: 'an SQLite database', kind: 'other' },
+  { at: 0, bytes: '\x89HDF', name: 'an HDF5 file', kind: 'other' },
+  { at: 0, bytes: '\x93NUMPY', name: 'a NumPy array file', kind: 'other' },
+  { at: 0, bytes: 'MATLAB', name: 'a MATLAB file', kind: 'other' },
+  { at: 0, bytes: '\x7fELF', name: 'a program', kind: 'other' },
+  { at: 0, bytes: 'MZ', name: 'a program', kind: 'other' },
+];
+
+const RIFF_FORMS: Record<string, string> = {
+  'AVI ': 'an AVI film',
+  WEBP: 'a WebP picture',
+  RMID: 'a MIDI file',
+  ACON: 'an animated cursor',
+};
+
+const ADVICE = {
+  lossy:
+    'Lossy compression has removed what lies above about 16 to 20 kHz, so it cannot be measured: bring in the WAV file from the recorder.',
+  audio: 'Only WAV files (RIFF, RF64, BW64) can be brought in: save it as WAV with the same rate and width.',
+  video: 'Only WAV files can be brought in: take the sound track out as uncompressed WAV.',
+  other: 'Only WAV files (RIFF, RF64, BW64) can be brought in.',
+};
+
+/** The refusal for a file whose first bytes are not those of a WAV file; names what it is where that can be seen. */
+export function foreignFileRefusal(head: Uint8Array): WavRefusedError {
+  if (asciiText(head, 0, 4) === 'RIFX') {
+    return new WavRefusedError(
+      'big-endian',
+      'This is a big-endian WAV file (RIFX), which is not read here. Save it as an ordinary WAV file (RIFF).',
+    );
+  }
+  const form = asciiText(head, 0, 4) === 'RIFF' ? RIFF_FORMS[asciiText(head, 8, 4)] : undefined;
+  if (form) return refusal(form, form.includes('film') ? 'video' : 'other');
+  const mark = MARKS.find((candidate) => hasMark(head, candidate));
+  if (mark) return refusal(mark.name, mark.kind);
+  if (isMpegFrame(head)) return refusal('an MP3 file', 'lossy');
+  return refusal(textKind(head) ?? 'no WAV file (its first bytes are not RIFF, RF64 or BW64)', 'other');
+}
+
+function refusal(name: string, kind: Mark['kind']): WavRefusedError {
+  const code: WavRefusal = kind === 'other' ? 'not-audio' : 'other-audio';
+  return new WavRefusedError(code, `This is ${name}. ${ADVICE[kind]}`);
+}
+
+function hasMark(head: Uint8Array, mark: Mark): boolean {
+  for (let i = 0; i < mark.bytes.length; i++) {
+    if (head[mark.at + i] !== mark.bytes.charCodeAt(i)) return false;
+  }
+  return true;
+}
+
+/** ISO 11172-3, 2.4.1.3: eleven set bits, then a version and a layer that are not the reserved ones. */
+function isMpegFrame(head: Uint8Array): boolean {
+  const second = head[1] ?? 0;
+  return head[0] === 0xff && (second & 0xe0) === 0xe0 && (second & 0x18) !== 0x08 && (second & 0x06) !== 0;
+}
+
+function textKind(head: Uint8Array): string | undefined {
+  if (head.length < 4 || !head.every(isTextByte)) return undefined;
+  const start = asciiText(head, 0, head.length).trimStart().toLowerCase();
+  return /^(\?*)(<!doctype html|<html)/.test(start) ? 'a web page (HTML)' : 'a text file';
+}
+
+function isTextByte(byte: number): boolean {
+  return byte >= 0x20 ? byte !== 0x7f : byte === 0x09 || byte === 0x0a || byte === 0x0d;
+}
