@@ -1,0 +1,9 @@
+CREATE TRIGGER `audit_log_no_update` BEFORE UPDATE ON `audit_log`
+BEGIN
+  SELECT RAISE(ABORT, 'The audit log is append-only.');
+END;
+--> statement-breakpoint
+CREATE TRIGGER `audit_log_no_delete` BEFORE DELETE ON `audit_log`
+BEGIN
+  SELECT RAISE(ABORT, 'The audit log is append-only.');
+END;

@@ -1,0 +1,28 @@
+import { Piscina } from 'piscina';
+
+interface PoolOptions {
+  /** Address of the worker's module without its ending, as in `new URL('../measuring/measure-worker', import.meta.url)`. */
+  module: URL;
+  workers: number;
+}
+
+export interface WorkerPool<Input, Output> {
+  run(input: Input, options?: { signal?: AbortSignal }): Promise<Output>;
+  close(): Promise<void>;
+}
+
+/** Threads for computing. The source runs as `.ts`, the compiled server as `.js`, and this file tells which. */
+export function createWorkerPool<Input, Output>({ module, workers }: PoolOptions): WorkerPool<Input, Output> {
+  const isSource = import.meta.url.endsWith('.ts');
+  const pool = new Piscina<Input, Output>({
+    filename: new URL(`${module.href}${isSource ? '.ts' : '.js'}`).href,
+    minThreads: 0,
+    maxThreads: workers,
+    idleTimeout: 30_000,
+    ...(isSource ? { execArgv: ['--import', 'tsx'] } : {}),
+  });
+  return {
+    run: (input, options) => pool.run(input, options?.signal === undefined ? {} : { signal: options.signal }),
+    close: () => pool.destroy(),
+  };
+}
