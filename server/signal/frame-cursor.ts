@@ -1,0 +1,36 @@
+import { frameStart, type FrameGrid } from './frame-plan.ts';
+
+/** The newest samples of one channel: `samples[0]` is sample `startSample` of the recording. */
+export interface SampleWindow {
+  readonly samples: Float32Array;
+  startSample: number;
+  /** Exclusive. */
+  endSample: number;
+}
+
+/** `from` and `to` are places in the window's samples. */
+export type FrameVisitor = (index: number, samples: Float32Array, from: number, to: number) => void;
+
+/** Walks the frames of a grid as the samples of a recording arrive. */
+export class FrameCursor {
+  readonly #grid: FrameGrid;
+  readonly #frames: number;
+  #next = 0;
+
+  constructor(grid: FrameGrid, frames: number) {
+    this.#grid = grid;
+    this.#frames = frames;
+  }
+
+  /** Visits every frame not yet visited that lies whole in the window (or ends with the recording). */
+  advance(window: SampleWindow, visit: FrameVisitor): void {
+    const { size, count } = this.#grid;
+    while (this.#next < count) {
+      const start = frameStart(this.#grid, this.#next, this.#frames);
+      const end = Math.min(start + size, this.#frames);
+      if (end > window.endSample) return;
+      visit(this.#next, window.samples, start - window.startSample, end - window.startSample);
+      this.#next++;
+    }
+  }
+}

@@ -1,0 +1,106 @@
+import { FrameSpectrum } from './frame-spectrum.ts';
+
+/** A line at a multiple of 50 or 60 Hz, with its level re full scale and how far it stands over its surroundings. */
+export interface MainsLine {
+  frequencyHz: number;
+  levelDb: number;
+  prominenceDb: number;
+}
+
+const REDUCED_RATE_HZ = 4000;
+const FRAME_SIZE = 4096;
+const BASES_HZ = [50, 60];
+const MAXIMUM_HARMONIC = 8;
+const PROMINENT_DB = 10;
+/** With few frames averaged, a chance peak of noise stands higher. */
+const PROMINENT_IN_FEW_FRAMES_DB = 13;
+const FEW_FRAMES = 4;
+/** A single harmonic is a mains line only when it stands out this far. */
+const ALONE_DB = 20;
+const LINE_BINS = 2;
+const SURROUNDING_BINS = 24;
+
+/**
+ * Lines at multiples of 50 and 60 Hz, which frames of 10 ms cannot part: the signal is averaged down to about 4 kHz
+ * and its mean power spectrum taken in frames of about a second (1 Hz per bin).
+ *
+ * A line is the largest power within 2 bins of a multiple that stands at least 10 dB over the median of 24 bins on
+ * either side. A base is reported with two lines or more, or with one of 20 dB. Says nothing about a cause.
+ */
+export class MainsTracker {
+  readonly #samplesPerMean: number;
+  readonly #binHz: number;
+  readonly #spectrum = new FrameSpectrum(FRAME_SIZE);
+  readonly #frame = new Float32Array(FRAME_SIZE);
+  readonly #power = new Float64Array(FRAME_SIZE / 2);
+  #filled = 0;
+  #frames = 0;
+  #sum = 0;
+  #count = 0;
+
+  constructor(sampleRateHz: number) {
+    this.#samplesPerMean = Math.max(1, Math.floor(sampleRateHz / REDUCED_RATE_HZ));
+    this.#binHz = sampleRateHz / this.#samplesPerMean / FRAME_SIZE;
+  }
+
+  push(samples: Float32Array, from: number, to: number): void {
+    const length = this.#samplesPerMean;
+    let i = from;
+    while (i < to) {
+      const end = Math.min(to, i + length - this.#count);
+      this.#count += end - i;
+      let sum = this.#sum;
+      for (; i < end; i++) sum += samples[i]!;
+      this.#sum = sum;
+      if (this.#count === length) this.#closeMean();
+    }
+  }
+
+  /** Empty for recordings under a second, and where nothing stands out. */
+  finish(): MainsLine[] {
+    if (this.#frames === 0) return [];
+    return BASES_HZ.flatMap((baseHz) => this.#linesOf(baseHz)).sort((a, b) => a.frequencyHz - b.frequencyHz);
+  }
+
+  #closeMean(): void {
+    this.#frame[this.#filled++] = this.#sum / this.#count;
+    this.#sum = 0;
+    this.#count = 0;
+    if (this.#filled < FRAME_SIZE) return;
+    this.#spectrum.analyse(this.#frame, 0, FRAME_SIZE);
+    for (let k = 0; k < this.#power.length; k++) this.#power[k]! += this.#spectrum.power[k]!;
+    this.#frames++;
+    this.#frame.copyWithin(0, FRAME_SIZE / 2);
+    this.#filled = FRAME_SIZE / 2;
+  }
+
+  #linesOf(baseHz: number): MainsLine[] {
+    const lines: MainsLine[] = [];
+    for (let harmonic = 1; harmonic <= MAXIMUM_HARMONIC; harmonic++) {
+      const line = this.#lineAt(harmonic * baseHz);
+      if (line) lines.push(line);
+    }
+    const standsAlone = lines.some((line) => line.prominenceDb >= ALONE_DB);
+    return lines.length >= 2 || standsAlone ? lines : [];
+  }
+
+  #lineAt(frequencyHz: number): MainsLine | undefined {
+    const bin = Math.round(frequencyHz / this.#binHz);
+    if (bin - LINE_BINS < 1 || bin + SURROUNDING_BINS >= this.#power.length) return undefined;
+    let power = 0;
+    for (let k = bin - LINE_BINS; k <= bin + LINE_BINS; k++) power = Math.max(power, this.#power[k]!);
+    const prominenceDb = 10 * Math.log10(power / this.#surroundings(bin));
+    const needed = this.#frames < FEW_FRAMES ? PROMINENT_IN_FEW_FRAMES_DB : PROMINENT_DB;
+    if (!(prominenceDb >= needed)) return undefined;
+    return { frequencyHz, levelDb: 10 * Math.log10(power / this.#frames), prominenceDb };
+  }
+
+  #surroundings(bin: number): number {
+    const values: number[] = [];
+    for (let k = Math.max(1, bin - SURROUNDING_BINS); k <= bin + SURROUNDING_BINS; k++) {
+      if (Math.abs(k - bin) > 2 * LINE_BINS) values.push(this.#power[k]!);
+    }
+    values.sort((a, b) => a - b);
+    return Math.max(values[values.length >> 1] ?? 0, Number.MIN_VALUE);
+  }
+}

@@ -1,0 +1,91 @@
+/** Samples per point of the lowest level of a peak pyramid, and points of one level per point of the next. */
+export const PYRAMID_BASE = 256;
+export const PYRAMID_FACTOR = 4;
+
+/** Points of every level, from 256 samples per point to the first level of a single point. */
+export function pyramidLevels(frames: number): number[] {
+  const levels = [Math.ceil(frames / PYRAMID_BASE)];
+  while (levels.at(-1)! > 1) levels.push(Math.ceil(levels.at(-1)! / PYRAMID_FACTOR));
+  return levels;
+}
+
+/** Samples per point of a level. */
+export function pyramidCell(level: number): number {
+  return PYRAMID_BASE * PYRAMID_FACTOR ** level;
+}
+
+/** Takes the points of a level in order. */
+export type PeakSink = (level: number, minimum: number, maximum: number) => void;
+
+interface OpenPoint {
+  minimum: number;
+  maximum: number;
+  parts: number;
+}
+
+/**
+ * Least and greatest sample of every 256, 1024, 4096 ... samples of a channel, exact, in order of time.
+ * Cost: one comparison pair per sample.
+ */
+export class PeakPyramid {
+  readonly #sink: PeakSink;
+  readonly #open: OpenPoint[];
+  #minimum = Infinity;
+  #maximum = -Infinity;
+  #count = 0;
+
+  constructor(frames: number, sink: PeakSink) {
+    this.#sink = sink;
+    this.#open = pyramidLevels(frames).map(() => emptyPoint());
+  }
+
+  push(samples: Float32Array, from: number, to: number): void {
+    let i = from;
+    while (i < to) {
+      const end = Math.min(to, i + PYRAMID_BASE - this.#count);
+      this.#count += end - i;
+      let minimum = this.#minimum;
+      let maximum = this.#maximum;
+      for (; i < end; i++) {
+        const x = samples[i]!;
+        if (x < minimum) minimum = x;
+        if (x > maximum) maximum = x;
+      }
+      this.#minimum = minimum;
+      this.#maximum = maximum;
+      if (this.#count === PYRAMID_BASE) this.#closeBase();
+    }
+  }
+
+  /** Closes the last, shorter points. */
+  finish(): void {
+    if (this.#count > 0) this.#closeBase();
+    for (let level = 1; level < this.#open.length; level++) {
+      if (this.#open[level]!.parts > 0) this.#emit(level);
+    }
+  }
+
+  #closeBase(): void {
+    this.#open[0] = { minimum: this.#minimum, maximum: this.#maximum, parts: 1 };
+    this.#minimum = Infinity;
+    this.#maximum = -Infinity;
+    this.#count = 0;
+    this.#emit(0);
+  }
+
+  #emit(level: number): void {
+    const point = this.#open[level]!;
+    this.#sink(level, point.minimum, point.maximum);
+    this.#open[level] = emptyPoint();
+    const above = this.#open[level + 1];
+    if (!above) return;
+    above.minimum = Math.min(above.minimum, point.minimum);
+    above.maximum = Math.max(above.maximum, point.maximum);
+    above.parts++;
+    if (above.parts === PYRAMID_FACTOR) this.#emit(level + 1);
+  }
+}
+
+function emptyPoint(): OpenPoint {
+  return { minimum: Infinity, maximum: -Infinity, parts: 0 };
+}
