@@ -1,0 +1,33 @@
+import type { LabRole, ServiceRole } from '@shared/contract/people.ts';
+
+export const serviceRoleWords: Readonly<Record<ServiceRole, string>> = {
+  labeler: 'labeler',
+  curator: 'curator',
+  administrator: 'administrator',
+};
+
+export const labRoleWords: Readonly<Record<LabRole, string>> = {
+  contributor: 'contributor',
+  reviewer: 'reviewer',
+};
+
+interface RoleHolder {
+  roles: readonly ServiceRole[];
+  memberships: readonly { labName: string; role: LabRole }[];
+}
+
+/** The roles by name alone, each once: "contributor, reviewer". Everybody is at least a reader. */
+export function rolesInShort(person: RoleHolder): string {
+  const names = new Set<string>([
+    ...person.roles.map((role) => serviceRoleWords[role]),
+    ...person.memberships.map((membership) => labRoleWords[membership.role]),
+  ]);
+  return names.size > 0 ? [...names].join(', ') : 'reader';
+}
+
+/** Every role with the lab it is held in. */
+export function rolesInFull(person: RoleHolder): string[] {
+  const inLabs = person.memberships.map(({ role, labName }) => `${labRoleWords[role]} at ${labName}`);
+  const all = [...person.roles.map((role) => serviceRoleWords[role]), ...inLabs];
+  return all.length > 0 ? all : ['reader of published releases'];
+}

@@ -1,0 +1,1 @@
+export type SignKind = 'info' | 'attention' | 'error' | 'success';
