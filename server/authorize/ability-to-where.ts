@@ -33,14 +33,19 @@ function toSql(condition: Condition, columns: Record<string, SQLWrapper>): SQL {
   if (!column) throw new RangeError(`rule on unknown field ${condition.field}`);
   switch (condition.operator) {
     case 'eq':
-      return eq(column, condition.value);
+      return eq(column, bindable(condition.value));
     case 'ne':
-      return ne(column, condition.value);
+      return ne(column, bindable(condition.value));
     case 'in':
       return inArray(column as SQL, condition.value as unknown[]);
     default:
       throw new RangeError(`rule with operator ${condition.operator}`);
   }
+}
+
+/** SQLite knows no booleans, and an expression, unlike a column, does not translate them. */
+function bindable(value: unknown): unknown {
+  return typeof value === 'boolean' ? Number(value) : value;
 }
 
 function compoundToSql(condition: Condition, columns: Record<string, SQLWrapper>): SQL {

@@ -10,6 +10,12 @@ export function setRevision({ res }: Pick<Exchange, 'res'>, revision: number): v
   res.setHeader('ETag', `"${revision}"`);
 }
 
+/** The answer of a resource that carries its revision, with the ETag set. */
+export function withRevision<Item extends { revision: number }>(res: Response, item: Item): Item {
+  setRevision({ res }, item.revision);
+  return item;
+}
+
 /** The revision that a change was made from, from If-Match: 428 where it is missing (RFC 6585, section 3). */
 export function readIfMatch({ req }: Pick<Exchange, 'req'>): number {
   const header = req.headers['if-match'];

@@ -1,0 +1,92 @@
+import type { MeasurementSummary } from '../../../shared/contract/measurement.ts';
+import type { GuardFinding, Recording, RecordingListItem } from '../../../shared/contract/recordings.ts';
+import { toInstant } from '../../services/clock.ts';
+import type { FindingRow, RecordingListView, RecordingRow, RecordingView } from './recordings.queries.ts';
+
+export function toListItem(view: RecordingListView, blind: boolean): RecordingListItem {
+  const { recording } = view;
+  const { id, runId, labId, fileName, sizeBytes, processing, progress, sharing, format } = recording;
+  return {
+    ...{ id, runId, labId, fileName, sizeBytes, processing, progress, sharing },
+    runTitle: view.runTitle,
+    labName: view.labName,
+    material: view.material,
+    sampleRateHz: format.sampleRateHz,
+    channels: format.channels,
+    frames: format.frames,
+    durationS: durationS(recording),
+    ultrasonicVerdict: view.ultrasonicVerdict,
+    candidateCount: blind ? null : view.candidateCount,
+    createdAt: toInstant(recording.createdAtMs),
+  };
+}
+
+/** What the asking person is to this recording. */
+export interface Standing {
+  blind: boolean;
+  may: Recording['may'];
+  /** Told to the owning lab only. */
+  findings: FindingRow[];
+  eventCount: number | null;
+  measurement: MeasurementSummary | null;
+}
+
+export function toRecording(view: RecordingView, standing: Standing): Recording {
+  const { recording, setup, sensor } = view;
+  const {
+    setupId,
+    sha256,
+    licence,
+    sensitivity,
+    note,
+    runOffsetNs,
+    timeExpansion,
+    format,
+    failure,
+    revision,
+  } = recording;
+  const { blind, may, findings, eventCount, measurement } = standing;
+  return {
+    ...toListItem(view, blind),
+    ...{ setupId, sha256, licence, sensitivity, note, runOffsetNs, timeExpansion, format, failure, revision },
+    setupName: setup.name,
+    fullScaleV: setup.fullScaleV,
+    preampGainDb: setup.preampGainDb,
+    sensorName: sensor.name,
+    sensorKind: sensor.kind,
+    sensorLowHz: sensor.lowHz,
+    sensorHighHz: sensor.highHz,
+    uploadedByName: view.uploadedByName,
+    measurement: measurement && blind ? withoutDetections(measurement) : measurement,
+    findings: findings.map(toFinding),
+    eventCount: blind ? null : eventCount,
+    blind,
+    may,
+  };
+}
+
+function toFinding({ id, kind, sentence, place, foundAtMs }: FindingRow): GuardFinding {
+  return { id, kind, sentence, place, foundAt: toInstant(foundAtMs) };
+}
+
+/** Whoever marks blind must not learn where or how often the machine heard something. */
+export function withoutDetections(summary: MeasurementSummary): MeasurementSummary {
+  const { ultrasonic, course } = summary;
+  const isSeen = ultrasonic.verdict !== 'not-observable';
+  return {
+    ...summary,
+    ultrasonic: {
+      ...ultrasonic,
+      reason: isSeen ? 'Told when the pass is finished.' : ultrasonic.reason,
+      burstEnergyShare: null,
+      spanCount: 0,
+      spans: [],
+      candidates: { total: 0, below: 0, across: 0, above: 0, expectedByChance: 0 },
+    },
+    course: { ...course, ultrasonicDb: course.ultrasonicDb.map(() => null), candidates: [] },
+  };
+}
+
+export function durationS({ format }: Pick<RecordingRow, 'format'>): number {
+  return format.frames / format.sampleRateHz;
+}

@@ -1,0 +1,217 @@
+import { and, desc, eq, inArray, isNull, lt, or, sql, type SQL } from 'drizzle-orm';
+import { alias } from 'drizzle-orm/sqlite-core';
+import { countLimit } from '../../../shared/contract/page.ts';
+import type { ListRecordingsQuery, RecordingListItem } from '../../../shared/contract/recordings.ts';
+import type { Reader } from '../../db/client.ts';
+import { containsText } from '../../db/like-pattern.ts';
+import type { RowPlace } from '../../db/row-place.ts';
+import { events, passes } from '../../db/schema/events.ts';
+import { labs } from '../../db/schema/labs.ts';
+import { detectorRuns, measurements } from '../../db/schema/measurements.ts';
+import { recordingFindings, recordings } from '../../db/schema/recordings.ts';
+import { runs } from '../../db/schema/runs.ts';
+import { sensors, setups } from '../../db/schema/sensors.ts';
+import { users } from '../../db/schema/users.ts';
+
+export type RecordingRow = typeof recordings.$inferSelect;
+export type FindingRow = typeof recordingFindings.$inferSelect;
+export type MeasurementRow = typeof measurements.$inferSelect;
+
+const newestMeasurement = alias(measurements, 'newest_measurement');
+const newestDetectorRun = alias(detectorRuns, 'newest_detector_run');
+const isNewestMeasurement = sql`${measurements.id} = (
+  select ${newestMeasurement.id} from ${newestMeasurement} where ${newestMeasurement.recordingId} = ${recordings.id}
+  order by ${newestMeasurement.createdAtMs} desc, ${newestMeasurement.id} desc limit 1
+) and ${recordings.processing} = 'measured'`;
+const isNewestDetectorRun = sql`${detectorRuns.id} = (
+  select ${newestDetectorRun.id} from ${newestDetectorRun} where ${newestDetectorRun.measurementId} = ${measurements.id}
+  order by ${newestDetectorRun.createdAtMs} desc, ${newestDetectorRun.id} desc limit 1
+)`;
+const ultrasonicVerdict = sql<
+  RecordingListItem['ultrasonicVerdict']
+>`json_extract(${measurements.summary}, '$.ultrasonic.verdict')`;
+
+const listColumns = {
+  recording: recordings,
+  runTitle: runs.title,
+  material: runs.material,
+  labName: labs.name,
+  ultrasonicVerdict,
+  candidateCount: detectorRuns.candidateCount,
+};
+
+export interface RecordingListView {
+  recording: RecordingRow;
+  runTitle: string;
+  material: string;
+  labName: string;
+  ultrasonicVerdict: RecordingListItem['ultrasonicVerdict'];
+  candidateCount: number | null;
+}
+export interface RecordingView extends RecordingListView {
+  setup: typeof setups.$inferSelect;
+  sensor: typeof sensors.$inferSelect;
+  uploadedByName: string | null;
+}
+
+export type RecordingFilters = Omit<ListRecordingsQuery, 'cursor' | 'limit'>;
+
+function matching(filters: RecordingFilters, visible: SQL): SQL | undefined {
+  const { q, runId, labId, processing, sharing } = filters;
+  return and(
+    visible,
+    q
+      ? or(
+          ...[recordings.fileName, runs.title, runs.material, labs.name].map((text) => containsText(text, q)),
+        )
+      : undefined,
+    runId ? eq(recordings.runId, runId) : undefined,
+    labId ? eq(recordings.labId, labId) : undefined,
+    processing ? eq(recordings.processing, processing) : undefined,
+    sharing ? eq(recordings.sharing, sharing) : undefined,
+    filters.ultrasonicVerdict ? sql`${ultrasonicVerdict} = ${filters.ultrasonicVerdict}` : undefined,
+  );
+}
+
+interface RecordingsSlice {
+  filters: RecordingFilters;
+  visible: SQL;
+  after: RowPlace | null;
+  limit: number;
+}
+
+/** Newest first. */
+export function selectRecordings(
+  db: Reader,
+  { filters, visible, after, limit }: RecordingsSlice,
+): RecordingListView[] {
+  const { createdAtMs, id } = recordings;
+  const rest = after
+    ? or(lt(createdAtMs, Number(after.key)), and(eq(createdAtMs, Number(after.key)), lt(id, after.id)))
+    : undefined;
+  return db
+    .select(listColumns)
+    .from(recordings)
+    .innerJoin(runs, eq(runs.id, recordings.runId))
+    .innerJoin(labs, eq(labs.id, recordings.labId))
+    .leftJoin(measurements, isNewestMeasurement)
+    .leftJoin(detectorRuns, isNewestDetectorRun)
+    .where(and(matching(filters, visible), rest))
+    .orderBy(desc(createdAtMs), desc(id))
+    .limit(limit)
+    .all();
+}
+
+/** Counts one row further than is told, so that "more than" is known. */
+export function countRecordings(db: Reader, filters: RecordingFilters, visible: SQL): number {
+  const limited = db
+    .select({ one: sql`1`.as('one') })
+    .from(recordings)
+    .innerJoin(runs, eq(runs.id, recordings.runId))
+    .innerJoin(labs, eq(labs.id, recordings.labId))
+    .leftJoin(measurements, isNewestMeasurement)
+    .where(matching(filters, visible))
+    .limit(countLimit + 1)
+    .as('limited');
+  return (
+    db
+      .select({ count: sql<number>`count(*)` })
+      .from(limited)
+      .get()?.count ?? 0
+  );
+}
+
+export function selectRecording(db: Reader, id: string, visible: SQL): RecordingView | undefined {
+  return db
+    .select({ ...listColumns, setup: setups, sensor: sensors, uploadedByName: users.name })
+    .from(recordings)
+    .innerJoin(runs, eq(runs.id, recordings.runId))
+    .innerJoin(labs, eq(labs.id, recordings.labId))
+    .innerJoin(setups, eq(setups.id, recordings.setupId))
+    .innerJoin(sensors, eq(sensors.id, setups.sensorId))
+    .leftJoin(users, eq(users.id, recordings.uploadedById))
+    .leftJoin(measurements, isNewestMeasurement)
+    .leftJoin(detectorRuns, isNewestDetectorRun)
+    .where(and(eq(recordings.id, id), visible))
+    .get();
+}
+
+export function selectRecordingRow(db: Reader, id: string, visible?: SQL): RecordingRow | undefined {
+  return db
+    .select()
+    .from(recordings)
+    .where(and(eq(recordings.id, id), visible))
+    .get();
+}
+
+export function selectNewestMeasurement(db: Reader, recordingId: string): MeasurementRow | undefined {
+  return db
+    .select()
+    .from(measurements)
+    .where(eq(measurements.recordingId, recordingId))
+    .orderBy(desc(measurements.createdAtMs), desc(measurements.id))
+    .limit(1)
+    .get();
+}
+
+/** Without the summary, which views do not need. */
+export function selectNewestMeasurementId(db: Reader, recordingId: string): string | undefined {
+  return db
+    .select({ id: measurements.id })
+    .from(measurements)
+    .where(eq(measurements.recordingId, recordingId))
+    .orderBy(desc(measurements.createdAtMs), desc(measurements.id))
+    .limit(1)
+    .get()?.id;
+}
+
+export function selectFindings(db: Reader, recordingId: string): FindingRow[] {
+  return db
+    .select()
+    .from(recordingFindings)
+    .where(eq(recordingFindings.recordingId, recordingId))
+    .orderBy(recordingFindings.foundAtMs, recordingFindings.id)
+    .all();
+}
+
+export function countEvents(db: Reader, recordingId: string): number {
+  const isThere = and(eq(events.recordingId, recordingId), isNull(events.deletedAtMs));
+  return (
+    db
+      .select({ count: sql<number>`count(*)` })
+      .from(events)
+      .where(isThere)
+      .get()?.count ?? 0
+  );
+}
+
+/** Passes of one person that are still open, on the recordings asked for. */
+export function selectOpenPasses(db: Reader, labelerId: string, recordingIds: string[]) {
+  if (recordingIds.length === 0) return [];
+  return db
+    .select({ recordingId: passes.recordingId, blind: passes.blind })
+    .from(passes)
+    .where(
+      and(
+        eq(passes.labelerId, labelerId),
+        eq(passes.state, 'assigned'),
+        inArray(passes.recordingId, recordingIds),
+      ),
+    )
+    .all();
+}
+
+export function insertRecording(db: Reader, row: typeof recordings.$inferInsert): void {
+  db.insert(recordings).values(row).run();
+}
+
+export function insertFindings(db: Reader, rows: (typeof recordingFindings.$inferInsert)[]): void {
+  if (rows.length > 0) db.insert(recordingFindings).values(rows).run();
+}
+
+export function updateRecording(db: Reader, id: string, values: Partial<RecordingRow>): void {
+  db.update(recordings)
+    .set({ ...values, revision: sql`${recordings.revision} + 1` })
+    .where(eq(recordings.id, id))
+    .run();
+}
