@@ -1,0 +1,88 @@
+import { open, type FileHandle } from 'node:fs/promises';
+import { bytesPerFrame, type SampleLayout } from '../../shared/audio/audio-format.ts';
+import { decodeFrames } from '../../shared/audio/pcm-decode.ts';
+
+/** What a reader has to know of a header. */
+export interface AudioPlace {
+  format: SampleLayout & { frames: number };
+  /** Byte of the file at which the first frame begins. */
+  dataOffset: number;
+}
+
+const PIECE_BYTES = 1024 * 1024;
+
+/** Reads whole frames of a WAV file by their place and decodes them; memory depends on neither length nor request. */
+export class BlockReader {
+  readonly frames: number;
+  readonly #place: AudioPlace;
+  readonly #file: FileHandle;
+  readonly #piece: Uint8Array;
+  readonly #frameBytes: number;
+
+  static async open(filePath: string, place: AudioPlace): Promise<BlockReader> {
+    return new BlockReader(await open(filePath, 'r'), place);
+  }
+
+  private constructor(file: FileHandle, place: AudioPlace) {
+    this.#file = file;
+    this.#place = place;
+    this.frames = place.format.frames;
+    this.#frameBytes = bytesPerFrame(place.format);
+    this.#piece = new Uint8Array(Math.floor(PIECE_BYTES / this.#frameBytes) * this.#frameBytes);
+  }
+
+  /**
+   * Decodes the frames `[startSample, startSample + count)` into `out[channel][at ...]`.
+   *
+   * @returns per channel, how many samples were not finite; each was stored as zero.
+   * @throws RangeError outside the recording; Error when the file ends before its header says.
+   */
+  async read(startSample: number, count: number, out: readonly Float32Array[], at = 0): Promise<number[]> {
+    if (startSample < 0 || startSample + count > this.frames) {
+      throw new RangeError(`startSample: ${startSample} and ${count} more are not within ${this.frames}`);
+    }
+    const nonFinite = new Array<number>(this.#place.format.channels).fill(0);
+    const framesPerPiece = this.#piece.length / this.#frameBytes;
+    for (let done = 0; done < count; done += framesPerPiece) {
+      const frames = Math.min(framesPerPiece, count - done);
+      const bytes = await this.#readBytes(startSample + done, frames);
+      const targets = out.map((samples) => samples.subarray(at + done, at + done + frames));
+      const decoded = decodeFrames(bytes, this.#place.format, targets);
+      for (const [channel, found] of decoded.nonFiniteSamples.entries()) nonFinite[channel]! += found;
+    }
+    return nonFinite;
+  }
+
+  /** The samples of one channel, `count` from `startSample`. */
+  async readChannel(channel: number, startSample: number, count: number): Promise<Float32Array> {
+    const samples = new Float32Array(count);
+    const framesPerPiece = this.#piece.length / this.#frameBytes;
+    const scratch =
+      this.#place.format.channels > 1 ? new Float32Array(Math.min(count, framesPerPiece)) : samples;
+    for (let done = 0; done < count; done += framesPerPiece) {
+      const frames = Math.min(framesPerPiece, count - done);
+      const wanted = samples.subarray(done, done + frames);
+      const out = Array.from({ length: this.#place.format.channels }, (_, index) =>
+        index === channel ? wanted : scratch,
+      );
+      await this.read(startSample + done, frames, out);
+    }
+    return samples;
+  }
+
+  async close(): Promise<void> {
+    await this.#file.close();
+  }
+
+  async #readBytes(startSample: number, frames: number): Promise<Uint8Array> {
+    const length = frames * this.#frameBytes;
+    const position = this.#place.dataOffset + startSample * this.#frameBytes;
+    let filled = 0;
+    while (filled < length) {
+      const { bytesRead } = await this.#file.read(this.#piece, filled, length - filled, position + filled);
+      if (bytesRead === 0) throw new Error('The audio file ends before the length that its header gives.');
+      filled += bytesRead;
+    }
+    return this.#piece.subarray(0, length);
+  }
+}

@@ -1,0 +1,120 @@
+import { join } from 'node:path';
+import { z } from 'zod';
+import type { AudioFormat } from '../../shared/contract/measurement.ts';
+import { audioFormatSchema } from '../../shared/contract/measurement.ts';
+import type { PictureBand, TileLayout } from '../../shared/contract/views.ts';
+import { FRAME_COLUMNS, FRAME_ROW_LENGTH } from '../signal/frame-row.ts';
+import { frameStart, planFrames, type FramePlan } from '../signal/frame-plan.ts';
+import { pyramidLevels } from '../signal/pyramid.ts';
+import { columnsAtLevel, planPictures, type Picture } from '../signal/spectrogram-columns.ts';
+
+/** The files of one recording's views; all of them can be made again from its audio. */
+export const VIEW_FILES = {
+  manifest: 'views.json',
+  peaks: 'peaks.f32',
+  frames: 'frames.f32',
+  spectra: 'spectra.json',
+  candidates: 'candidates.ndjson',
+  audible: 'audible.u8',
+  ultrasonic: 'ultrasonic.u8',
+} as const;
+
+export const viewManifestSchema = z.object({
+  version: z.literal(1),
+  /** With the true sample rate, after a declared time expansion. */
+  format: audioFormatSchema,
+  frameColumns: z.array(z.string()),
+  descriptorEngine: z.enum(['meyda', 'direct']),
+});
+export type ViewManifest = z.infer<typeof viewManifestSchema>;
+
+export function makeManifest(
+  format: AudioFormat,
+  descriptorEngine: ViewManifest['descriptorEngine'],
+): ViewManifest {
+  return { version: 1, format, frameColumns: [...FRAME_COLUMNS], descriptorEngine };
+}
+
+export function viewPath(viewsDir: string, file: keyof typeof VIEW_FILES): string {
+  return join(viewsDir, VIEW_FILES[file]);
+}
+
+type RecordingShape = Pick<AudioFormat, 'sampleRateHz' | 'frames' | 'channels'>;
+
+const FLOAT_BYTES = 4;
+const PEAK_BYTES = 2 * FLOAT_BYTES;
+/** Level 0 of a picture is made from the samples when asked for; the levels above are kept. */
+export const FIRST_STORED_LEVEL = 1;
+
+/** Where everything lies in the view files: all sizes follow from rate, frames and channels. */
+export class ViewLayout {
+  readonly shape: RecordingShape;
+  readonly plan: FramePlan;
+  readonly pictures: Picture[];
+  readonly peakLevels: number[];
+
+  constructor(shape: RecordingShape) {
+    this.shape = shape;
+    this.plan = planFrames(shape.sampleRateHz, shape.frames);
+    this.pictures = planPictures(this.plan);
+    this.peakLevels = pyramidLevels(shape.frames);
+  }
+
+  picture(band: PictureBand): Picture | undefined {
+    return this.pictures.find((picture) => picture.layout.band === band);
+  }
+
+  /** Pairs of float32, minimum and maximum. */
+  peakRegion(channel: number, level: number): FileRegion {
+    return regionIn(
+      channel,
+      level,
+      this.peakLevels.map((points) => points * PEAK_BYTES),
+    );
+  }
+
+  /** One byte per bin, column after column. */
+  pictureRegion(band: PictureBand, channel: number, level: number): FileRegion {
+    return regionIn(channel, level - FIRST_STORED_LEVEL, this.#storedBytes(band));
+  }
+
+  /** Rows of float32, one per long frame. */
+  frameRegion(channel: number): FileRegion {
+    return regionIn(channel, 0, [this.plan.long.count * FRAME_ROW_LENGTH * FLOAT_BYTES]);
+  }
+
+  /** Samples that a long frame was computed from, `endSample` exclusive. */
+  longFrameSpan(index: number): { startSample: number; endSample: number } {
+    const { frames } = this.shape;
+    const startSample = frameStart(this.plan.long, index, frames);
+    return { startSample, endSample: Math.min(startSample + this.plan.long.size, frames) };
+  }
+
+  #storedBytes(band: PictureBand): number[] {
+    const layout = this.picture(band)?.layout;
+    if (!layout) return [];
+    return Array.from(
+      { length: layout.levels - FIRST_STORED_LEVEL },
+      (_, index) => columnsAtLevel(layout.columns, index + FIRST_STORED_LEVEL) * layout.bins,
+    );
+  }
+}
+
+export interface FileRegion {
+  offsetBytes: number;
+  sizeBytes: number;
+}
+
+/** Channel after channel, in each of them part after part. */
+function regionIn(channel: number, part: number, partBytes: number[]): FileRegion {
+  const channelBytes = partBytes.reduce((sum, bytes) => sum + bytes, 0);
+  const before = partBytes.slice(0, part).reduce((sum, bytes) => sum + bytes, 0);
+  return { offsetBytes: channel * channelBytes + before, sizeBytes: partBytes[part] ?? 0 };
+}
+
+/** What a client has to know to ask for tiles. @param format with the true sample rate, as the summary states it. */
+export function tileLayout(format: RecordingShape): TileLayout {
+  const { sampleRateHz, frames, channels } = format;
+  const { pictures } = new ViewLayout(format);
+  return { sampleRateHz, frames, channels, pictures: pictures.map((picture) => picture.layout) };
+}

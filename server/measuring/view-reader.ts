@@ -1,0 +1,184 @@
+import { open, readFile, type FileHandle } from 'node:fs/promises';
+import { z } from 'zod';
+import { encodeTile, TILE_DB_PER_CODE, TILE_MINIMUM_DB } from '../../shared/audio/tile.ts';
+import { spectrumSchema, type Spectrum } from '../../shared/contract/measurement.ts';
+import type { Peaks, PictureBand } from '../../shared/contract/views.ts';
+import { FRAME_COLUMNS, FRAME_ROW_LENGTH } from '../signal/frame-row.ts';
+import {
+  columnsAtLevel,
+  COLUMNS_PER_TILE,
+  COLUMN_FACTOR,
+  type Picture,
+} from '../signal/spectrogram-columns.ts';
+import type { AudioPlace } from './block-reader.ts';
+import { levelZeroColumns } from './level-zero-columns.ts';
+import { peaksFromPyramid, peaksFromSamples, samplesPerPointFor } from './peaks-reader.ts';
+import {
+  FIRST_STORED_LEVEL,
+  ViewLayout,
+  viewManifestSchema,
+  viewPath,
+  type FileRegion,
+} from './view-layout.ts';
+
+/** Views are asked for that a recording does not have: a channel, a band, a level or a tile beyond its last. */
+export class NoSuchViewError extends RangeError {}
+
+export interface ViewSource {
+  viewsDir: string;
+  filePath: string;
+  header: AudioPlace;
+}
+
+export interface PeaksRequest extends ViewSource {
+  channel: number;
+  startSample: number;
+  /** Exclusive. */
+  endSample: number;
+  /** Most points wanted, 1 to 8192. */
+  points: number;
+}
+
+export interface TileRequest extends ViewSource {
+  channel: number;
+  band: PictureBand;
+  level: number;
+  tile: number;
+}
+
+/**
+ * Least and greatest sample of equal steps. Exact for the samples under each step: from the audio when a step is
+ * shorter than 256 samples, else from the pyramid with steps that are whole cells of it (and begin on a cell).
+ */
+export async function readPeaks(request: PeaksRequest): Promise<Peaks> {
+  const layout = await layoutOf(request.viewsDir);
+  requireChannel(layout, request.channel);
+  const { frames } = layout.shape;
+  const startSample = Math.min(Math.max(0, request.startSample), frames - 1);
+  const endSample = Math.min(Math.max(request.endSample, startSample + 1), frames);
+  const span = { channel: request.channel, startSample, endSample };
+  const step = samplesPerPointFor(endSample - startSample, request.points, layout.peakLevels.length);
+  if (step.level === undefined) return peaksFromSamples(request, span, step.samplesPerPoint);
+  return peaksFromPyramid(request.viewsDir, layout, { ...span, ...step, level: step.level });
+}
+
+/** One tile as bytes that `decodeTile` reads. @throws NoSuchViewError for a tile that the recording does not have. */
+export async function readTile(request: TileRequest): Promise<Uint8Array> {
+  const layout = await layoutOf(request.viewsDir);
+  requireChannel(layout, request.channel);
+  const picture = layout.picture(request.band);
+  if (!picture) throw new NoSuchViewError(`The sample rate leaves no ${request.band} picture.`);
+  const span = tileSpan(picture, request.level, request.tile);
+  const { bins, lowHz, highHz, samplesPerColumn } = picture.layout;
+  const codes =
+    request.level < FIRST_STORED_LEVEL
+      ? await levelZeroColumns({ source: request, picture, channel: request.channel, ...span })
+      : await storedColumns(request, layout, span);
+  const columnSamples = samplesPerColumn * COLUMN_FACTOR ** request.level;
+  return encodeTile({
+    bins,
+    columns: span.columns,
+    samplesPerColumn: columnSamples,
+    startSample: span.firstColumn * columnSamples,
+    lowHz,
+    highHz,
+    minimumDb: TILE_MINIMUM_DB,
+    dbPerCode: TILE_DB_PER_CODE,
+    codes,
+  });
+}
+
+export async function readSpectrum(viewsDir: string, channel: number): Promise<Spectrum> {
+  const text = await readFile(viewPath(viewsDir, 'spectra'), 'utf8');
+  const spectra = z.array(spectrumSchema).parse(JSON.parse(text));
+  const found = spectra.find((spectrum) => spectrum.channel === channel);
+  if (!found) throw new NoSuchViewError(`There is no channel ${channel}.`);
+  return found;
+}
+
+/** Names of the columns that `frameRows` gives: the place of the frame first. */
+export const frameRowColumns: readonly string[] = ['startSample', 'endSample', 'timeS', ...FRAME_COLUMNS];
+
+const ROWS_PER_READ = 4096;
+
+/** The table of long frames, a row at a time; `null` where a silent frame has no value. */
+export async function* frameRows(viewsDir: string, channel: number): AsyncGenerator<(number | null)[]> {
+  const layout = await layoutOf(viewsDir);
+  requireChannel(layout, channel);
+  const { long } = layout.plan;
+  const file = await open(viewPath(viewsDir, 'frames'), 'r');
+  try {
+    for (let first = 0; first < long.count; first += ROWS_PER_READ) {
+      const rows = Math.min(ROWS_PER_READ, long.count - first);
+      const bytes = await readRegion(file, layout.frameRegion(channel), {
+        offsetBytes: first * FRAME_ROW_LENGTH * 4,
+        sizeBytes: rows * FRAME_ROW_LENGTH * 4,
+      });
+      const values = new Float32Array(bytes.buffer, bytes.byteOffset, bytes.byteLength / 4);
+      for (let row = 0; row < rows; row++)
+        yield frameRow(layout, first + row, values.subarray(row * FRAME_ROW_LENGTH));
+    }
+  } finally {
+    await file.close();
+  }
+}
+
+function frameRow(layout: ViewLayout, index: number, values: Float32Array): (number | null)[] {
+  const { sampleRateHz } = layout.shape;
+  const { startSample, endSample } = layout.longFrameSpan(index);
+  const row: (number | null)[] = [startSample, endSample, startSample / sampleRateHz];
+  for (let column = 0; column < FRAME_ROW_LENGTH; column++) {
+    const value = values[column]!;
+    // Seven figures are what a float32 holds; more would only look exact.
+    row.push(Number.isNaN(value) ? null : Number(value.toPrecision(7)));
+  }
+  return row;
+}
+
+async function storedColumns(request: TileRequest, layout: ViewLayout, span: TileSpan): Promise<Uint8Array> {
+  const { band, channel, level } = request;
+  const bins = layout.picture(band)!.layout.bins;
+  const file = await open(viewPath(request.viewsDir, band), 'r');
+  try {
+    return await readRegion(file, layout.pictureRegion(band, channel, level), {
+      offsetBytes: span.firstColumn * bins,
+      sizeBytes: span.columns * bins,
+    });
+  } finally {
+    await file.close();
+  }
+}
+
+async function readRegion(file: FileHandle, region: FileRegion, part: FileRegion): Promise<Uint8Array> {
+  const bytes = new Uint8Array(part.sizeBytes);
+  const { bytesRead } = await file.read(bytes, 0, bytes.length, region.offsetBytes + part.offsetBytes);
+  if (bytesRead !== bytes.length) throw new Error('A view file is shorter than its recording asks for.');
+  return bytes;
+}
+
+interface TileSpan {
+  firstColumn: number;
+  columns: number;
+}
+
+function tileSpan(picture: Picture, level: number, tile: number): TileSpan {
+  const { layout } = picture;
+  const columns = columnsAtLevel(layout.columns, level);
+  const firstColumn = tile * COLUMNS_PER_TILE;
+  const isPresent = Number.isInteger(level) && Number.isInteger(tile) && level >= 0 && tile >= 0;
+  if (!isPresent || level >= layout.levels || firstColumn >= columns) {
+    throw new NoSuchViewError(`There is no tile ${tile} at level ${level} of the ${layout.band} picture.`);
+  }
+  return { firstColumn, columns: Math.min(COLUMNS_PER_TILE, columns - firstColumn) };
+}
+
+function requireChannel(layout: ViewLayout, channel: number): void {
+  if (!Number.isInteger(channel) || channel < 0 || channel >= layout.shape.channels) {
+    throw new NoSuchViewError(`There is no channel ${channel}.`);
+  }
+}
+
+async function layoutOf(viewsDir: string): Promise<ViewLayout> {
+  const text = await readFile(viewPath(viewsDir, 'manifest'), 'utf8');
+  return new ViewLayout(viewManifestSchema.parse(JSON.parse(text)).format);
+}

@@ -1,0 +1,206 @@
+import type { PictureBand } from '../../shared/contract/views.ts';
+import { CourseTracker, type CoursePlan } from './course.ts';
+import type { DescriptorEngine } from './descriptors.ts';
+import { DropoutTracker } from './dropouts.ts';
+import { FrameCursor, type SampleWindow } from './frame-cursor.ts';
+import { bandBins, type FramePlan } from './frame-plan.ts';
+import type { FrameRow } from './frame-row.ts';
+import { FrameSpectrum, meanSquareOfBins } from './frame-spectrum.ts';
+import { LevelTracker } from './levels.ts';
+import { LongFrames, type LongFrameResult } from './long-frames.ts';
+import { MainsTracker } from './mains.ts';
+import { PeakPyramid } from './pyramid.ts';
+import type { ChannelFacts } from './quality.ts';
+import { ColumnPyramid, encodeColumn, type Picture } from './spectrogram-columns.ts';
+
+/** Where the views of one channel go, in order of time. Arrays are reused by the caller. */
+export interface ViewSink {
+  peak(level: number, minimum: number, maximum: number): void;
+  column(band: PictureBand, level: number, codes: Uint8Array): void;
+  frameRow(row: FrameRow): void;
+}
+
+/** Takes the lines above the hearing line of every short frame: `power[first]` to `power[end - 1]`. */
+export type ShortFrameSink = (frame: ShortFrame) => void;
+
+export interface ShortFrame {
+  index: number;
+  /** Sample in the middle of the frame. */
+  middleSample: number;
+  power: Float32Array;
+  first: number;
+  end: number;
+}
+
+export interface ChannelPassSettings {
+  channel: number;
+  plan: FramePlan;
+  pictures: Picture[];
+  course: CoursePlan;
+  engine: DescriptorEngine;
+  spectrumPoints: number;
+  /** Height of the last bit re full scale, and the magnitude that counts as full scale. */
+  stepSize: number;
+  fullScale: number;
+  views: ViewSink;
+  shortFrame?: ShortFrameSink;
+}
+
+export interface ChannelResult extends LongFrameResult {
+  facts: ChannelFacts;
+  course: ReturnType<CourseTracker['finish']>;
+}
+
+/** All that is measured on one channel in one pass, save the detector; memory depends on the sample rate alone. */
+export class ChannelPass {
+  readonly historySamples: number;
+  readonly #settings: ChannelPassSettings;
+  readonly #levels: LevelTracker;
+  readonly #dropouts: DropoutTracker;
+  readonly #mains: MainsTracker;
+  readonly #course: CourseTracker;
+  readonly #pyramid: PeakPyramid;
+  readonly #longFrames: LongFrames;
+  readonly #longCursor: FrameCursor;
+  readonly #shortFrames: ShortFrames;
+  readonly #audible: PictureFrames | undefined;
+
+  constructor(settings: ChannelPassSettings) {
+    const { plan, views, pictures, fullScale, stepSize } = settings;
+    const { sampleRateHz, frames } = plan;
+    this.#settings = settings;
+    this.#levels = new LevelTracker(fullScale);
+    this.#dropouts = new DropoutTracker({ sampleRateHz, stepSize, fullScale });
+    this.#mains = new MainsTracker(sampleRateHz);
+    this.#course = new CourseTracker(settings.course);
+    this.#pyramid = new PeakPyramid(frames, (level, low, high) => views.peak(level, low, high));
+    this.#longFrames = new LongFrames({
+      sampleRateHz,
+      size: plan.long.size,
+      spectrumPoints: settings.spectrumPoints,
+      engine: settings.engine,
+    });
+    this.#longCursor = new FrameCursor(plan.long, frames);
+    this.#shortFrames = new ShortFrames(settings, this.#course);
+    const audible = pictures.find((picture) => picture.layout.band === 'audible');
+    this.#audible = audible && new PictureFrames(audible, frames, views);
+    this.historySamples = Math.max(plan.audible.size, this.#dropouts.historySamples);
+  }
+
+  /** @param from place in the window of the first sample not yet seen. */
+  push(window: SampleWindow, from: number): void {
+    const { samples } = window;
+    const to = window.endSample - window.startSample;
+    this.#levels.push(samples, from, to, window.startSample + from);
+    this.#dropouts.push(window, from);
+    this.#mains.push(samples, from, to);
+    this.#course.push(samples, from, to);
+    this.#pyramid.push(samples, from, to);
+    this.#longCursor.advance(window, (_index, values, start, end) => this.#pushLong(values, start, end));
+    if (!this.#sharesLongFrames) this.#audible?.advance(window);
+    this.#shortFrames.advance(window);
+  }
+
+  finish(nonFiniteSamples: number): ChannelResult {
+    this.#pyramid.finish();
+    this.#audible?.finish();
+    this.#shortFrames.finish();
+    return {
+      ...this.#longFrames.finish(),
+      facts: {
+        levels: this.#levels.finish(this.#settings.channel, nonFiniteSamples),
+        clipped: this.#levels.clippedPlaces,
+        dropouts: this.#dropouts.places,
+        mains: this.#mains.finish(),
+      },
+      course: this.#course.finish(),
+    };
+  }
+
+  get #sharesLongFrames(): boolean {
+    return this.#settings.plan.audible.size === this.#settings.plan.long.size;
+  }
+
+  #pushLong(samples: Float32Array, from: number, to: number): void {
+    this.#longFrames.push(samples, from, to);
+    this.#settings.views.frameRow(this.#longFrames.row);
+    if (this.#sharesLongFrames) this.#audible?.pushPower(this.#longFrames.spectrum.power);
+  }
+}
+
+/** The frames of a picture that has a transform of its own, or takes the power of another one. */
+class PictureFrames {
+  readonly #picture: Picture;
+  readonly #cursor: FrameCursor;
+  readonly #columns: ColumnPyramid;
+  readonly #codes: Uint8Array;
+  #spectrum: FrameSpectrum | undefined;
+
+  constructor(picture: Picture, frames: number, views: ViewSink) {
+    const { layout } = picture;
+    this.#picture = picture;
+    this.#cursor = new FrameCursor(picture.grid, frames);
+    this.#codes = new Uint8Array(layout.bins);
+    this.#columns = new ColumnPyramid(layout, (level, codes) => views.column(layout.band, level, codes));
+  }
+
+  advance(window: SampleWindow): void {
+    const { grid, firstBin, endBin } = this.#picture;
+    const spectrum = (this.#spectrum ??= new FrameSpectrum(grid.size));
+    this.#cursor.advance(window, (_index, samples, from, to) => {
+      spectrum.analyse(samples, from, to, firstBin, endBin);
+      this.pushPower(spectrum.power);
+    });
+  }
+
+  pushPower(power: Float32Array): void {
+    encodeColumn(power, this.#picture.firstBin, this.#picture.endBin, this.#codes);
+    this.#columns.push(this.#codes);
+  }
+
+  finish(): void {
+    this.#columns.finish();
+  }
+}
+
+/** Short frames: ultrasonic picture, course above 20 kHz, and whoever else looks at them. */
+class ShortFrames {
+  readonly #cursor: FrameCursor;
+  readonly #spectrum: FrameSpectrum;
+  readonly #picture: PictureFrames | undefined;
+  readonly #course: CourseTracker;
+  readonly #sink: ShortFrameSink | undefined;
+  readonly #frame: ShortFrame;
+  readonly #hop: number;
+
+  constructor(settings: ChannelPassSettings, course: CourseTracker) {
+    const { plan, pictures, views } = settings;
+    const { first, end } = bandBins('ultrasonic', plan.short.size, plan.sampleRateHz);
+    this.#cursor = new FrameCursor(plan.short, plan.frames);
+    this.#spectrum = new FrameSpectrum(plan.short.size);
+    const picture = pictures.find(({ layout }) => layout.band === 'ultrasonic');
+    this.#picture = picture && new PictureFrames(picture, plan.frames, views);
+    this.#course = course;
+    this.#sink = settings.shortFrame;
+    this.#hop = plan.short.hop;
+    this.#frame = { index: 0, middleSample: 0, power: this.#spectrum.power, first, end };
+  }
+
+  advance(window: SampleWindow): void {
+    const frame = this.#frame;
+    const spectrum = this.#spectrum;
+    if (frame.end <= frame.first) return;
+    this.#cursor.advance(window, (index, samples, from, to) => {
+      spectrum.analyse(samples, from, to, frame.first, frame.end);
+      this.#picture?.pushPower(spectrum.power);
+      frame.index = index;
+      frame.middleSample = index * this.#hop + this.#hop / 2;
+      this.#course.pushUltrasonic(frame.middleSample, meanSquareOfBins(frame.power, frame.first, frame.end));
+      this.#sink?.(frame);
+    });
+  }
+
+  finish(): void {
+    this.#picture?.finish();
+  }
+}
