@@ -210,7 +210,7 @@ const snapshotShape = z.object({
   /** The digital object identifier alone, without an address before it. */
   doi: z
     .string()
-    .regex(/^10\.\d{4,9}\/[A-Za-z0-9:/_;().\-]+$/)
+    .regex(/^10\.\d{4,9}\/[A-Za-z0-9:/_;().-]+$/)
     .nullable(),
   creators: z.array(creditSchema).min(1),
   scheme: z.object({ version: z.number().int().min(1), classes: z.array(snapshotClassSchema).min(1) }),
