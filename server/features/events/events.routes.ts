@@ -1,0 +1,79 @@
+import {
+  createEventSchema,
+  eventSchema,
+  eventsSchema,
+  listEventsQuerySchema,
+  patchEventSchema,
+  putEventSchema,
+} from '../../../shared/contract/events.ts';
+import { idParamsSchema } from '../../../shared/contract/ids.ts';
+import type { Deps } from '../../deps.ts';
+import { defineRoute, type Route } from '../../http/define-route.ts';
+import { readIfMatch, setRevision } from '../../http/revision.ts';
+
+export function eventsRoutes({ services: { events } }: Deps): Route[] {
+  return [
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings/:id/events',
+      summary: 'Marks of a recording that the person may see, in order of time.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      query: listEventsQuerySchema,
+      response: eventsSchema,
+      handler: ({ actor, params, query }) => ({ items: events.list(actor, params.id, query.passId) }),
+    }),
+    defineRoute({
+      method: 'post',
+      path: '/api/recordings/:id/events',
+      summary: 'Sets a mark in the own open pass.',
+      access: 'signed-in',
+      status: 201,
+      params: idParamsSchema,
+      body: createEventSchema,
+      response: eventSchema,
+      handler: async ({ actor, params, body, res }) => {
+        const event = await events.create(actor, params.id, body);
+        setRevision({ res }, event.revision);
+        return event;
+      },
+    }),
+    defineRoute({
+      method: 'put',
+      path: '/api/events/:id',
+      summary: 'Sets a mark under an id made by the client; safe to repeat. Replaces it under If-Match.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      body: putEventSchema,
+      response: eventSchema,
+      handler: async ({ actor, params, body, req, res }) => {
+        const revision = req.headers['if-match'] === undefined ? null : readIfMatch({ req });
+        const event = await events.put(actor, params.id, body, revision);
+        setRevision({ res }, event.revision);
+        return event;
+      },
+    }),
+    defineRoute({
+      method: 'patch',
+      path: '/api/events/:id',
+      summary: 'Changes fields of an own mark; needs If-Match.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      body: patchEventSchema,
+      response: eventSchema,
+      handler: async ({ actor, params, body, req, res }) => {
+        const event = await events.patch(actor, params.id, body, readIfMatch({ req }));
+        setRevision({ res }, event.revision);
+        return event;
+      },
+    }),
+    defineRoute({
+      method: 'delete',
+      path: '/api/events/:id',
+      summary: 'Deletes an own mark; needs If-Match.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      handler: ({ actor, params, req }) => events.remove(actor, params.id, readIfMatch({ req })),
+    }),
+  ];
+}

@@ -1,0 +1,213 @@
+import type { CreateEvent, PatchEvent, PutEvent, RecordingEvent } from '../../../shared/contract/events.ts';
+import type { BurstParameters } from '../../../shared/contract/measurement.ts';
+import { voiceClassKey } from '../../../shared/domain/label-scheme.ts';
+import type { SampleSpan } from '../../../shared/domain/event-span.ts';
+import type { Actor } from '../../../shared/policy/actor.ts';
+import type { Tx } from '../../db/client.ts';
+import { write } from '../../db/transaction.ts';
+import type { Ground } from '../../ground.ts';
+import { conflict, invalidField, notFound } from '../../http/problem.ts';
+import { requireSameRevision } from '../../http/revision.ts';
+import type { AuditService } from '../audit/audit.service.ts';
+import type { PassesService } from '../passes/passes.service.ts';
+import type { SchemesService } from '../schemes/schemes.service.ts';
+import { checkMark } from './event-checks.ts';
+import { isSameMark, toEvent, toNewRow, withChange } from './events.map.ts';
+import {
+  insertEvent,
+  insertEventRevision,
+  selectCandidateOf,
+  selectEvent,
+  selectEventsOfPasses,
+  updateEvent,
+  type EventRow,
+} from './events.queries.ts';
+
+/** What marking asks of the recordings feature. */
+export interface MarkedRecordings {
+  /** Throws where the person may not see the recording. */
+  requireFacts(actor: Actor, recordingId: string): { frames: number; channels: number; sampleRateHz: number };
+  /** Burst parameters of the untouched samples inside the span. */
+  measureSpan(recordingId: string, span: SampleSpan & { channel: number }): Promise<BurstParameters | null>;
+  /** A voice was marked: the recording goes to the reviewers of its lab. */
+  holdForVoice(tx: Tx, recordingId: string, span: SampleSpan): void;
+  /** Tells open pages, after the commit. */
+  announce(recordingId: string): void;
+}
+
+interface EventsParts extends Pick<Ground, 'db' | 'clock' | 'ids'> {
+  audit: AuditService;
+  passes: PassesService;
+  schemes: SchemesService;
+  recordings: MarkedRecordings;
+}
+
+export type EventsService = ReturnType<typeof createEventsService>;
+
+export function createEventsService({ db, clock, ids, audit, passes, schemes, recordings }: EventsParts) {
+  function list(actor: Actor, recordingId: string, passId: string | undefined): RecordingEvent[] {
+    recordings.requireFacts(actor, recordingId);
+    const visible = visiblePassIds(actor, recordingId).filter((id) => passId === undefined || id === passId);
+    return selectEventsOfPasses(db, visible).map(toEvent);
+  }
+
+  /** Blind, a person sees the own marks only; otherwise those of finished passes too, and a curator sees all. */
+  function visiblePassIds(actor: Actor, recordingId: string): string[] {
+    const all = passes.ofRecording(db, recordingId);
+    const isBlind = passes.isBlindOn(db, actor, recordingId);
+    const isOpenTo = (pass: (typeof all)[number]) =>
+      pass.labelerId === actor.id ||
+      (!isBlind && (actor.roles.includes('curator') || pass.state === 'finished'));
+    return all.filter(isOpenTo).map((pass) => pass.id);
+  }
+
+  async function create(actor: Actor, recordingId: string, input: CreateEvent): Promise<RecordingEvent> {
+    return insertNew(actor, ids.next(), { ...input, recordingId });
+  }
+
+  /** A retry of the same PUT is answered like the first; a changed one needs the revision it was made from. */
+  async function put(
+    actor: Actor,
+    id: string,
+    input: PutEvent,
+    revision: number | null,
+  ): Promise<RecordingEvent> {
+    const row = selectEvent(db, id);
+    if (!row) return insertNew(actor, id, input);
+    requireOwn(actor, row);
+    const { recordingId, ...mark } = input;
+    if (row.recordingId !== recordingId || row.passId !== mark.passId) throw notFound('This mark');
+    if (isSameMark(row, mark)) return toEvent(row);
+    if (revision === null)
+      throw conflict('Another mark has this id. Send If-Match with its revision to change it.');
+    return change(actor, row, mark, revision);
+  }
+
+  async function patch(
+    actor: Actor,
+    id: string,
+    input: PatchEvent,
+    revision: number,
+  ): Promise<RecordingEvent> {
+    return change(actor, requireOwn(actor, selectEvent(db, id)), input, revision);
+  }
+
+  async function insertNew(actor: Actor, id: string, input: PutEvent): Promise<RecordingEvent> {
+    const { recordingId, ...mark } = input;
+    const pass = passes.requireOwnOpenPass(db, actor, mark.passId);
+    if (pass.recordingId !== recordingId) throw notFound('This pass');
+    const stamps = { id, recordingId, createdById: actor.id, nowMs: clock.nowMs(), parameters: null };
+    const row = toNewRow(mark, stamps);
+    checkRow(actor, row, pass.schemeVersion);
+    checkCandidate(row, pass.blind);
+    const measured = { ...row, parameters: await recordings.measureSpan(recordingId, row) };
+    const stored = write(db, (tx) => {
+      // The id may have arrived twice while the span was being measured.
+      const twin = selectEvent(tx, id);
+      if (twin) return requireOwn(actor, twin);
+      passes.requireOwnOpenPass(tx, actor, mark.passId);
+      insertEvent(tx, measured);
+      keep(tx, actor, measured, 'event.created');
+      return measured;
+    });
+    recordings.announce(recordingId);
+    return toEvent(stored);
+  }
+
+  async function change(
+    actor: Actor,
+    row: EventRow,
+    input: PatchEvent,
+    revision: number,
+  ): Promise<RecordingEvent> {
+    const pass = passes.requireOwnOpenPass(db, actor, row.passId);
+    requireSameRevision(revision, row.revision, toEvent(row));
+    const next = { ...withChange(row, input), revision: row.revision + 1, updatedAtMs: clock.nowMs() };
+    checkRow(actor, next, pass.schemeVersion);
+    const parameters = hasSameSpan(row, next)
+      ? row.parameters
+      : await recordings.measureSpan(row.recordingId, next);
+    const stored = { ...next, parameters };
+    write(db, (tx) => {
+      passes.requireOwnOpenPass(tx, actor, row.passId);
+      save(tx, actor, stored, 'event.changed');
+    });
+    recordings.announce(row.recordingId);
+    return toEvent(stored);
+  }
+
+  function remove(actor: Actor, id: string, revision: number): void {
+    write(db, (tx) => {
+      const row = requireOwn(actor, selectEvent(tx, id));
+      passes.requireOwnOpenPass(tx, actor, row.passId);
+      requireSameRevision(revision, row.revision, toEvent(row));
+      const nowMs = clock.nowMs();
+      save(
+        tx,
+        actor,
+        { ...row, revision: revision + 1, updatedAtMs: nowMs, deletedAtMs: nowMs },
+        'event.deleted',
+      );
+    });
+  }
+
+  /** Under the revision that was looked at: whoever came between is told, never overwritten. */
+  function save(tx: Tx, actor: Actor, row: EventRow, action: string): void {
+    if (!updateEvent(tx, row, row.revision - 1)) {
+      const now = selectEvent(tx, row.id);
+      requireSameRevision(row.revision - 1, now?.revision ?? 0, now && toEvent(now));
+    }
+    keep(tx, actor, row, action);
+  }
+
+  function keep(tx: Tx, actor: Actor, row: EventRow, action: string): void {
+    const state = row.deletedAtMs === null ? toEvent(row) : { deleted: true as const };
+    insertEventRevision(tx, {
+      eventId: row.id,
+      revision: row.revision,
+      state,
+      byId: actor.id,
+      atMs: row.updatedAtMs,
+    });
+    audit.record(tx, {
+      personId: actor.id,
+      action,
+      subjectType: 'event',
+      subjectId: row.id,
+      detail: { recordingId: row.recordingId, passId: row.passId, revision: row.revision },
+    });
+    if (row.classKey === voiceClassKey && row.deletedAtMs === null)
+      recordings.holdForVoice(tx, row.recordingId, row);
+  }
+
+  function checkRow(actor: Actor, row: EventRow, schemeVersion: number): void {
+    const { frames, channels, sampleRateHz } = recordings.requireFacts(actor, row.recordingId);
+    checkMark(row, {
+      frames,
+      channels,
+      nyquistHz: sampleRateHz / 2,
+      classes: schemes.get(schemeVersion).classes,
+    });
+  }
+
+  function checkCandidate(row: EventRow, isBlind: boolean): void {
+    if ((row.origin === 'candidate') !== (row.candidateId !== null))
+      throw invalidField('candidateId', 'goes with the origin "candidate" and with no other');
+    if (row.candidateId === null) return;
+    if (isBlind || !selectCandidateOf(db, row.recordingId, row.candidateId))
+      throw invalidField('candidateId', 'is no candidate of this recording');
+  }
+
+  return { list, create, put, patch, remove };
+}
+
+/** Somebody else's mark is answered like one that does not exist. */
+function requireOwn(actor: Actor, row: EventRow | undefined): EventRow {
+  if (!row || row.createdById !== actor.id) throw notFound('This mark');
+  if (row.deletedAtMs !== null) throw notFound('This mark');
+  return row;
+}
+
+function hasSameSpan(a: EventRow, b: EventRow): boolean {
+  return a.startSample === b.startSample && a.endSample === b.endSample && a.channel === b.channel;
+}

@@ -1,0 +1,17 @@
+import { desc, eq } from 'drizzle-orm';
+import type { Reader } from '../../db/client.ts';
+import { labelSchemes } from '../../db/schema/events.ts';
+
+export type SchemeRow = typeof labelSchemes.$inferSelect;
+
+export function selectScheme(db: Reader, version: number): SchemeRow | undefined {
+  return db.select().from(labelSchemes).where(eq(labelSchemes.version, version)).get();
+}
+
+export function selectNewestScheme(db: Reader): SchemeRow | undefined {
+  return db.select().from(labelSchemes).orderBy(desc(labelSchemes.version)).limit(1).get();
+}
+
+export function insertScheme(db: Reader, row: SchemeRow): void {
+  db.insert(labelSchemes).values(row).run();
+}
