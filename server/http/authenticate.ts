@@ -53,7 +53,10 @@ function identify(
 
 /** An open page asks by itself who is signed in; only what a person does counts against the idle limit. */
 function isUse(request: Request): boolean {
-  return !(request.method === 'GET' && ['/api/sessions/current', '/api/activity'].includes(request.path));
+  return !(
+    request.method === 'GET' &&
+    ['/api/sessions/current', '/api/activity'].includes(request.baseUrl + request.path)
+  );
 }
 
 function requireTokenActor(authorization: string, authenticator: Authenticator): Actor {

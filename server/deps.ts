@@ -1,0 +1,53 @@
+import type { Response } from 'express';
+import { createAuditService, type AuditService } from './features/audit/audit.service.ts';
+import { createHealthService, type HealthService } from './features/health/health.service.ts';
+import { createLabsService, type LabsService } from './features/labs/labs.service.ts';
+import { createActorsService, type ActorsService } from './features/people/actors.service.ts';
+import { createInvitationsService, type InvitationsService } from './features/people/invitations.service.ts';
+import { createPeopleService, type PeopleService } from './features/people/people.service.ts';
+import { createSessionsService, type SessionsService } from './features/sessions/sessions.service.ts';
+import { tokenLifeMs } from './features/sessions/session-token.ts';
+import { createTokensService, type TokensService } from './features/sessions/tokens.service.ts';
+import type { Ground } from './ground.ts';
+import { createSessionCookie, type SessionCookie } from './http/session-cookie.ts';
+
+export interface Services {
+  audit: AuditService;
+  labs: LabsService;
+  actors: ActorsService;
+  sessions: SessionsService;
+  tokens: TokensService;
+  people: PeopleService;
+  invitations: InvitationsService;
+  health: HealthService;
+}
+
+/** What routes and jobs get: the ground, every feature's service, and what belongs to the one HTTP server. */
+export interface Deps extends Ground {
+  services: Services;
+  cookie: SessionCookie;
+  /** Answers that never end by themselves; a stop ends them. */
+  openStreams: Set<Response>;
+}
+
+/** The composition root: each service is handed what it needs, in the order in which they build on each other. */
+export function createDeps(ground: Ground): Deps {
+  return {
+    ...ground,
+    services: createServices(ground),
+    cookie: createSessionCookie(ground.config.secure, tokenLifeMs),
+    openStreams: new Set(),
+  };
+}
+
+function createServices(ground: Ground): Services {
+  const audit = createAuditService(ground);
+  const labs = createLabsService({ ...ground, audit });
+  const actors = createActorsService(ground);
+  const sessions = createSessionsService({ ...ground, audit, actors });
+  const tokens = createTokensService({ ...ground, audit, actors });
+  const people = createPeopleService({ ...ground, audit, labs, sessions });
+  const invitations = createInvitationsService({ ...ground, audit, labs });
+  const health = createHealthService(ground);
+  return { audit, labs, actors, sessions, tokens, people, invitations, health };
+}
