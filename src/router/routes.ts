@@ -31,6 +31,11 @@ export const routes: RouteRecordRaw[] = [
     meta: { access: 'anyone' },
     component: () => import('@/views/InvitationView.vue'),
   },
+  {
+    // The form in which the link is sent.
+    path: '/invitation',
+    redirect: (to) => ({ name: 'invitation', params: { token: String(to.query.token) }, query: {} }),
+  },
   { path: '/runs', name: 'runs', meta: { access: 'runs' }, component: () => import('@/views/RunsView.vue') },
   {
     path: '/runs/new',

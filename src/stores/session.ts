@@ -37,10 +37,15 @@ export const useSessionStore = defineStore('session', () => {
     await loading;
   }
 
-  async function signIn(input: SignIn): Promise<void> {
-    user.value = await sessions.signIn(input);
+  /** Somebody is signed in from now on. */
+  function welcome(person: CurrentUser): void {
+    user.value = person;
     isLoaded.value = true;
     hasEnded.value = false;
+  }
+
+  async function signIn(input: SignIn): Promise<void> {
+    welcome(await sessions.signIn(input));
   }
 
   async function signOut(): Promise<void> {
@@ -59,5 +64,5 @@ export const useSessionStore = defineStore('session', () => {
     if (user.value) hasEnded.value = true;
   });
 
-  return { user, isLoaded, hasEnded, ability, load, refresh: fetchUser, signIn, signOut, forget };
+  return { user, isLoaded, hasEnded, ability, load, refresh: fetchUser, welcome, signIn, signOut, forget };
 });
