@@ -41,7 +41,7 @@ export function chunkBytes({ id, body }: WavChunk): Uint8Array {
   return concatBytes([asciiBytes(id), uint32(body.length), body, new Uint8Array(body.length % 2)]);
 }
 
-export function concatBytes(parts: Uint8Array[]): Uint8Array {
+export function concatBytes(parts: Uint8Array[]): Uint8Array<ArrayBuffer> {
   const whole = new Uint8Array(parts.reduce((total, part) => total + part.length, 0));
   let at = 0;
   for (const part of parts) {
