@@ -1,0 +1,90 @@
+import { describe, expect, it } from 'vitest';
+import { findBandwidth } from '../../../server/signal/bandwidth.ts';
+import { FrameSpectrum } from '../../../server/signal/frame-spectrum.ts';
+import { LongTermSpectrum } from '../../../server/signal/long-term-spectrum.ts';
+import { planFrames } from '../../../server/signal/frame-plan.ts';
+import { mix, pinkNoiseSignal, sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
+
+function bandwidthOf(samples: Float32Array, sampleRateHz: number) {
+  const { size } = planFrames(sampleRateHz, samples.length).long;
+  const longTerm = new LongTermSpectrum({ size, sampleRateHz, maximumPoints: 1024 });
+  const frame = new FrameSpectrum(size);
+  for (let from = 0; from + size <= samples.length; from += size / 2) {
+    frame.analyse(samples, from, from + size);
+    if (!frame.isSilent) longTerm.push(frame.power);
+  }
+  const { frequenciesHz, medianDbPerHz } = longTerm.finish();
+  return findBandwidth({ sampleRateHz, frequenciesHz, floorDbPerHz: medianDbPerHz });
+}
+
+/** Windowed-sinc low-pass (Blackman): a steep filter as a codec or a resampler has it. */
+function lowPass(samples: Float32Array, cutoffHz: number, sampleRateHz: number): Float32Array {
+  const half = 200;
+  const taps = Float64Array.from({ length: 2 * half + 1 }, (_, i) => {
+    const t = i - half;
+    const f = (2 * cutoffHz) / sampleRateHz;
+    const ideal = t === 0 ? f : Math.sin(Math.PI * f * t) / (Math.PI * t);
+    const phase = (2 * Math.PI * i) / (2 * half);
+    return ideal * (0.42 - 0.5 * Math.cos(phase) + 0.08 * Math.cos(2 * phase));
+  });
+  return samples.map((_, n) => {
+    let sum = 0;
+    for (let i = 0; i < taps.length; i++) sum += taps[i]! * (samples[n + half - i] ?? 0);
+    return sum;
+  });
+}
+
+describe('the effective bandwidth', () => {
+  it('is Nyquist for white noise, pink noise and a quiet file with a tone', () => {
+    expect(bandwidthOf(whiteNoiseSignal(100_000, 0.01, 1), 48_000)).toMatchObject({
+      effectiveHz: 24_000,
+      edge: 'none',
+    });
+    expect(bandwidthOf(pinkNoiseSignal(200_000, 0.01, 2), 192_000).edge).toBe('none');
+    const tone = mix(sine(200_000, 60_000, 192_000, 0.5), whiteNoiseSignal(200_000, 1e-5, 3));
+    expect(bandwidthOf(tone, 192_000).edge).toBe('none');
+  });
+
+  it('is no edge of a pure tone in digital silence', () => {
+    expect(bandwidthOf(sine(200_000, 60_000, 192_000, 0.5), 192_000).edge).toBe('none');
+  });
+
+  it('is not taken for an edge where the floor falls gently, as a sensor does', () => {
+    const white = whiteNoiseSignal(300_000, 0.01, 4);
+    let state = 0;
+    const rolled = white.map((x) => (state += 0.1 * (x - state)));
+    expect(bandwidthOf(rolled, 192_000).edge).toBe('none');
+  });
+
+  it.each([
+    [16_000, 48_000],
+    [18_000, 44_100],
+    [20_000, 96_000],
+  ])(
+    'ends within 1 kHz of a steep filter at %d Hz in a file of %d Hz, and lossy compression is named',
+    (cutoffHz, rateHz) => {
+      const noise = mix(
+        lowPass(whiteNoiseSignal(120_000, 0.01, 5), cutoffHz, rateHz),
+        whiteNoiseSignal(120_000, 1e-5, 6),
+      );
+      const found = bandwidthOf(noise, rateHz);
+      expect(found.edge).toBe('brick-wall');
+      expect(Math.abs(found.effectiveHz - cutoffHz)).toBeLessThan(1000);
+      expect(found.reason).toMatch(/lossy compression/);
+    },
+  );
+
+  it('finds a file converted from 96 kHz to 192 kHz', () => {
+    const noise = mix(
+      lowPass(whiteNoiseSignal(200_000, 0.01, 7), 46_500, 192_000),
+      whiteNoiseSignal(200_000, 1e-5, 8),
+    );
+    const found = bandwidthOf(noise, 192_000);
+    expect(Math.abs(found.effectiveHz - 46_500)).toBeLessThan(1000);
+    expect(found.reason).toMatch(/converted from a sample rate of 96 kHz/);
+  });
+
+  it('knows no edge in silence', () => {
+    expect(bandwidthOf(new Float32Array(50_000), 48_000).edge).toBe('none');
+  });
+});

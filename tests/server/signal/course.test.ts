@@ -1,0 +1,41 @@
+import { describe, expect, it } from 'vitest';
+import { CourseTracker, joinCourses, planCourse } from '../../../server/signal/course.ts';
+import { sine } from '../../support/wav/signals.ts';
+
+describe('the course', () => {
+  it('has at most 1,000 steps that cover the recording', () => {
+    for (const frames of [1, 1000, 999_999, 10_000_001]) {
+      const { samplesPerStep, steps } = planCourse(frames, 128);
+      expect(steps).toBeLessThanOrEqual(1000);
+      expect(steps * samplesPerStep).toBeGreaterThanOrEqual(frames);
+      expect((steps - 1) * samplesPerStep).toBeLessThan(frames);
+    }
+  });
+
+  it('follows the level without its mean, null in silence, whatever the blocks', () => {
+    const plan = { samplesPerStep: 1000, steps: 3 };
+    const samples = new Float32Array(2500);
+    samples.set(sine(1000, 10, 1000, 0.1).map((x) => x + 0.3));
+    samples.set(sine(500, 10, 1000, 0.01), 2000);
+    const tracker = new CourseTracker(plan);
+    for (let from = 0; from < 2500; from += 333) tracker.push(samples, from, Math.min(from + 333, 2500));
+    tracker.pushUltrasonic(1500, 0.0005);
+    tracker.pushUltrasonic(1999, 0.0015);
+    const course = joinCourses(plan, [tracker.finish()], Uint32Array.from([0, 2, 1]));
+    expect(course.levelDb[0]).toBeCloseTo(-20, 2);
+    expect(course.levelDb[1]).toBeNull();
+    expect(course.levelDb[2]).toBeCloseTo(-40, 2);
+    expect(course.ultrasonicDb).toEqual([null, expect.closeTo(10 * Math.log10(0.002), 6), null]);
+    expect(course.candidates).toEqual([0, 2, 1]);
+  });
+
+  it('takes the loudest channel at each step', () => {
+    const plan = { samplesPerStep: 100, steps: 2 };
+    const channels = [
+      { levelMeanSquares: Float64Array.from([0.5, 0.005]), ultrasonicMeanSquares: new Float64Array(2) },
+      { levelMeanSquares: Float64Array.from([0.005, 0.5]), ultrasonicMeanSquares: new Float64Array(2) },
+    ];
+    const { levelDb } = joinCourses(plan, channels, new Uint32Array(2));
+    expect(levelDb).toEqual([expect.closeTo(0, 9), expect.closeTo(0, 9)]);
+  });
+});
