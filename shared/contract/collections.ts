@@ -3,6 +3,7 @@ import { idSchema, instantSchema, revisionSchema } from './ids.ts';
 import { licenceSchema } from './licence.ts';
 import { pageSchema, pageQuerySchema } from './page.ts';
 import { recordingListItemSchema } from './recordings.ts';
+import { splitWordIn } from './release-snapshot.ts';
 import { creditSchema } from './runs.ts';
 
 export const saveCollectionSchema = z.object({
@@ -12,7 +13,10 @@ export const saveCollectionSchema = z.object({
     .trim()
     .regex(/^[a-z0-9]+(-[a-z0-9]+)*$/, 'may hold lower-case letters, digits and single hyphens')
     .min(3)
-    .max(60),
+    .max(60)
+    .refine((slug) => splitWordIn(slug) === null, {
+      message: 'may not hold a word that loaders read as the name of a split, such as "test"',
+    }),
   description: z.string().trim().min(20, 'needs a sentence or two (at least 20 characters)').max(4000),
   publisher: z.string().trim().min(2, 'is needed').max(160),
   contactEmail: z.email('is not an e-mail address'),
@@ -32,6 +36,8 @@ export const collectionsPageSchema = pageSchema(collectionSchema);
 export const listCollectionsQuerySchema = pageQuerySchema.extend({
   q: z.string().trim().max(100).optional(),
 });
+
+export type ListCollectionsQuery = z.infer<typeof listCollectionsQuerySchema>;
 
 export const collectionItemSchema = recordingListItemSchema.extend({
   licence: licenceSchema,

@@ -9,7 +9,7 @@ export function toPass(view: PassWithContext): Pass {
     recordingId: pass.recordingId,
     recordingName: view.fileName,
     runTitle: view.runTitle,
-    durationS: view.frames / (view.sampleRateHz * view.timeExpansion),
+    durationS: view.frames / view.sampleRateHz,
     labelerId: pass.labelerId,
     labelerName: view.labelerName,
     blind: pass.blind,

@@ -16,7 +16,6 @@ const withContext = {
   fileName: recordings.fileName,
   frames: sql<number>`json_extract(${recordings.format}, '$.frames')`,
   sampleRateHz: sql<number>`json_extract(${recordings.format}, '$.sampleRateHz')`,
-  timeExpansion: recordings.timeExpansion,
   sharing: recordings.sharing,
   runTitle: runs.title,
   labelerName: users.name,
