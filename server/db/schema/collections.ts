@@ -38,6 +38,24 @@ export const collectionItems = sqliteTable(
   ],
 );
 
+/** Number under which a person's marks appear in every release of a collection: `labeler-01`, `labeler-02` ... */
+export const collectionLabelers = sqliteTable(
+  'collection_labelers',
+  {
+    collectionId: text()
+      .notNull()
+      .references(() => collections.id),
+    labelerId: text()
+      .notNull()
+      .references(() => users.id),
+    ordinal: integer().notNull(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.collectionId, table.labelerId] }),
+    uniqueIndex('collection_labelers_ordinal_idx').on(table.collectionId, table.ordinal),
+  ],
+);
+
 /** The frozen JSON a release is built from, stored as a blob under its sha256. */
 export const releaseSnapshots = sqliteTable('release_snapshots', {
   sha256: text().primaryKey(),
