@@ -35,6 +35,16 @@ CREATE TABLE `collection_items` (
 );
 --> statement-breakpoint
 CREATE INDEX `collection_items_recording_idx` ON `collection_items` (`recording_id`);--> statement-breakpoint
+CREATE TABLE `collection_labelers` (
+	`collection_id` text NOT NULL,
+	`labeler_id` text NOT NULL,
+	`ordinal` integer NOT NULL,
+	PRIMARY KEY(`collection_id`, `labeler_id`),
+	FOREIGN KEY (`collection_id`) REFERENCES `collections`(`id`) ON UPDATE no action ON DELETE no action,
+	FOREIGN KEY (`labeler_id`) REFERENCES `users`(`id`) ON UPDATE no action ON DELETE no action
+);
+--> statement-breakpoint
+CREATE UNIQUE INDEX `collection_labelers_ordinal_idx` ON `collection_labelers` (`collection_id`,`ordinal`);--> statement-breakpoint
 CREATE TABLE `collections` (
 	`id` text PRIMARY KEY NOT NULL,
 	`slug` text NOT NULL,
@@ -74,6 +84,7 @@ CREATE TABLE `releases` (
 	`notes` text NOT NULL,
 	`release_date` text NOT NULL,
 	`snapshot_sha256` text NOT NULL,
+	`summary` text NOT NULL,
 	`recording_count` integer NOT NULL,
 	`event_count` integer NOT NULL,
 	`progress` real DEFAULT 0 NOT NULL,

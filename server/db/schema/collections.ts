@@ -1,6 +1,6 @@
 import { index, integer, primaryKey, real, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
 import type { Licence } from '../../../shared/contract/licence.ts';
-import type { ReleaseFile, ReleaseState } from '../../../shared/contract/releases.ts';
+import type { Release, ReleaseFile, ReleaseState } from '../../../shared/contract/releases.ts';
 import type { Credit } from '../../../shared/contract/runs.ts';
 import { id, instantMs, revision } from './columns.ts';
 import { recordings } from './recordings.ts';
@@ -56,6 +56,11 @@ export const collectionLabelers = sqliteTable(
   ],
 );
 
+export type ReleaseSummary = Pick<
+  Release,
+  'description' | 'publisher' | 'creators' | 'classes' | 'materials' | 'labs'
+>;
+
 /** The frozen JSON a release is built from, stored as a blob under its sha256. */
 export const releaseSnapshots = sqliteTable('release_snapshots', {
   sha256: text().primaryKey(),
@@ -78,6 +83,8 @@ export const releases = sqliteTable(
     snapshotSha256: text()
       .notNull()
       .references(() => releaseSnapshots.sha256),
+    /** What the page of the release tells, taken from the snapshot once. */
+    summary: text({ mode: 'json' }).$type<ReleaseSummary>().notNull(),
     recordingCount: integer().notNull(),
     eventCount: integer().notNull(),
     progress: real().notNull().default(0),
