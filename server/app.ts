@@ -52,7 +52,7 @@ const neverStored: RequestHandler = (_request, response, next) => {
 
 function authenticatorOf({ services }: Deps): Authenticator {
   return {
-    findBySessionToken: (token, inUse) => services.sessions.findBySessionToken(token, inUse),
+    findBySessionToken: (token, inUse) => services.identities.findBySessionToken(token, inUse),
     findByPersonalToken: (token) => services.tokens.find(token),
   };
 }

@@ -2,9 +2,13 @@ import type { Response } from 'express';
 import { createAuditService, type AuditService } from './features/audit/audit.service.ts';
 import { createHealthService, type HealthService } from './features/health/health.service.ts';
 import { createLabsService, type LabsService } from './features/labs/labs.service.ts';
+import { createAcceptanceService, type AcceptanceService } from './features/people/acceptance.service.ts';
+import { createAccountsService, type AccountsService } from './features/people/accounts.service.ts';
 import { createActorsService, type ActorsService } from './features/people/actors.service.ts';
 import { createInvitationsService, type InvitationsService } from './features/people/invitations.service.ts';
 import { createPeopleService, type PeopleService } from './features/people/people.service.ts';
+import { createSetupService, type SetupService } from './features/people/setup.service.ts';
+import { createIdentitiesService, type IdentitiesService } from './features/sessions/identities.service.ts';
 import { createSessionsService, type SessionsService } from './features/sessions/sessions.service.ts';
 import { tokenLifeMs } from './features/sessions/session-token.ts';
 import { createTokensService, type TokensService } from './features/sessions/tokens.service.ts';
@@ -16,9 +20,13 @@ export interface Services {
   labs: LabsService;
   actors: ActorsService;
   sessions: SessionsService;
+  identities: IdentitiesService;
   tokens: TokensService;
   people: PeopleService;
+  accounts: AccountsService;
   invitations: InvitationsService;
+  acceptance: AcceptanceService;
+  setup: SetupService;
   health: HealthService;
 }
 
@@ -45,9 +53,26 @@ function createServices(ground: Ground): Services {
   const labs = createLabsService({ ...ground, audit });
   const actors = createActorsService(ground);
   const sessions = createSessionsService({ ...ground, audit, actors });
+  const identities = createIdentitiesService({ ...ground, actors, sessions });
   const tokens = createTokensService({ ...ground, audit, actors });
   const people = createPeopleService({ ...ground, audit, labs, sessions });
   const invitations = createInvitationsService({ ...ground, audit, labs });
+  const accounts = createAccountsService(ground);
+  const acceptance = createAcceptanceService({ ...ground, audit, accounts });
+  const setup = createSetupService({ ...ground, audit, accounts });
   const health = createHealthService(ground);
-  return { audit, labs, actors, sessions, tokens, people, invitations, health };
+  return {
+    audit,
+    labs,
+    actors,
+    sessions,
+    identities,
+    tokens,
+    people,
+    accounts,
+    invitations,
+    acceptance,
+    setup,
+    health,
+  };
 }

@@ -20,4 +20,6 @@ export interface Ground {
   clock: Clock;
   ids: IdSource;
   hasher: PasswordHasher;
+  /** Something to end before the process does, for example a pool of workers. */
+  onStop(task: () => Promise<void>): void;
 }

@@ -13,11 +13,10 @@ import {
 import path from 'node:path';
 
 const keyBytes = 32;
-const purposes = ['session'] as const;
-type Purpose = (typeof purposes)[number];
-
 /** Each kind of token has a key of its own. */
-export type Keys = Record<Purpose, Buffer>;
+export interface Keys {
+  session: Buffer;
+}
 
 export class KeyFileError extends Error {}
 

@@ -17,7 +17,7 @@ export function activityRoutes({ services, activity, openStreams }: Deps): Route
       handler: ({ req, res }) => {
         const identity = identityOf(req);
         /** Rights are read again for each event: whoever lost them hears nothing more. */
-        const currentActor = () => (identity.actor === null ? null : services.sessions.findAgain(identity));
+        const currentActor = () => (identity.actor === null ? null : services.identities.findAgain(identity));
         const send = openStream(res);
         const unsubscribe = activity.subscribe((announcement) => {
           const actor = currentActor();

@@ -6,7 +6,7 @@ import { authorize } from '../../authorize/authorize.ts';
 import type { Reader } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
-import { ProblemError, notFound } from '../../http/problem.ts';
+import { ProblemError, invalidField, notFound } from '../../http/problem.ts';
 import { toInstant } from '../../services/clock.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import {
@@ -57,12 +57,13 @@ export function createLabsService({
     return toLab(lab);
   }
 
-  /** For other features: which of these labs do not exist. */
-  function findMissing(reader: Reader, labIds: readonly string[]): string[] {
-    return [...new Set(labIds)].filter((labId) => selectLab(reader, labId) === undefined);
+  /** For other features: memberships may name existing labs only. */
+  function requireKnown(reader: Reader, memberships: readonly { labId: string }[]): void {
+    const isMissing = ({ labId }: { labId: string }) => selectLab(reader, labId) === undefined;
+    if (memberships.some(isMissing)) throw invalidField('memberships', 'names a lab that does not exist');
   }
 
-  return { list, create, rename, findMissing, findName: (labId: string) => selectLab(db, labId)?.name };
+  return { list, create, rename, requireKnown, findName: (labId: string) => selectLab(db, labId)?.name };
 }
 
 function requireLab(reader: Reader, labId: string): LabRow {

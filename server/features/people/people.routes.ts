@@ -104,7 +104,7 @@ function oneTimeLinkRoutes({ services, cookie }: Deps): Route[] {
       params: invitationTokenParamsSchema,
       response: openInvitationSchema,
       rateLimit: 'one-time-link',
-      handler: ({ params }) => services.invitations.open(params.token),
+      handler: ({ params }) => services.acceptance.open(params.token),
     }),
     defineRoute({
       method: 'post',
@@ -117,7 +117,7 @@ function oneTimeLinkRoutes({ services, cookie }: Deps): Route[] {
       status: 201,
       rateLimit: 'one-time-link',
       handler: async ({ params, body, req, res }) => {
-        const personId = await services.invitations.accept(params.token, body);
+        const personId = await services.acceptance.accept(params.token, body);
         const { token, user } = services.sessions.start(personId, req.get('User-Agent') ?? '');
         cookie.set(res, token);
         return { user };
@@ -133,7 +133,7 @@ function oneTimeLinkRoutes({ services, cookie }: Deps): Route[] {
       status: 201,
       rateLimit: 'one-time-link',
       handler: async ({ body, req, res }) => {
-        const personId = await services.invitations.setUp(body);
+        const personId = await services.setup.setUp(body);
         const { token, user } = services.sessions.start(personId, req.get('User-Agent') ?? '');
         cookie.set(res, token);
         return { user };

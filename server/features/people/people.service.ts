@@ -13,7 +13,7 @@ import type { Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
 import { decodeCursor, encodeCursor } from '../../http/cursor.ts';
-import { ProblemError, conflict, forbidden, invalidField, notFound } from '../../http/problem.ts';
+import { conflict, forbidden, notFound } from '../../http/problem.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import type { LabsService } from '../labs/labs.service.ts';
 import type { SessionsService } from '../sessions/sessions.service.ts';
@@ -79,7 +79,7 @@ export function createPeopleService({ db, audit, labs, sessions }: Parts) {
     authorize(actor, { action: 'update', name: 'Person', row: { id: personId } });
     return write(db, (tx) => {
       const before = describeOne(tx, personId);
-      requireKnownLabs(tx, input);
+      labs.requireKnown(tx, input.memberships ?? []);
       applyUpdate(tx, personId, input);
       const after = describeOne(tx, personId);
       requireAdministrator(tx);
@@ -87,14 +87,6 @@ export function createPeopleService({ db, audit, labs, sessions }: Parts) {
       recordChanges(tx, actor, { before, after });
       return after;
     });
-  }
-
-  function requireKnownLabs(tx: Tx, input: Pick<UpdatePerson, 'memberships'>): void {
-    const missing = labs.findMissing(
-      tx,
-      (input.memberships ?? []).map(({ labId }) => labId),
-    );
-    if (missing.length > 0) throw invalidField('memberships', 'names a lab that does not exist');
   }
 
   function recordChanges(tx: Tx, actor: Actor, { before, after }: { before: Person; after: Person }): void {
@@ -135,10 +127,4 @@ const watched = ['name', 'roles', 'memberships', 'disabled'] as const;
 function differences(before: Person, after: Person): Record<string, { before: unknown; after: unknown }> {
   const changed = watched.filter((field) => JSON.stringify(before[field]) !== JSON.stringify(after[field]));
   return Object.fromEntries(changed.map((field) => [field, { before: before[field], after: after[field] }]));
-}
-
-export function emailTaken(email: string): ProblemError {
-  return new ProblemError('already-exists', `${email} has an account already.`, {
-    fields: [{ path: 'email', message: 'has an account already' }],
-  });
 }

@@ -6,26 +6,19 @@ import type { Actor } from '../../../shared/policy/actor.ts';
 import type { Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
-import type { SessionIdentity } from '../../http/authenticate.ts';
 import { ProblemError, notFound } from '../../http/problem.ts';
 import { toInstant } from '../../services/clock.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import type { ActorsService } from '../people/actors.service.ts';
-import { renewAfterMs, signSessionToken, verifySessionToken } from './session-token.ts';
+import { isAlive } from './session-life.ts';
+import { signSessionToken } from './session-token.ts';
 import {
   insertSession,
   selectOpenSessionsOf,
-  selectSession,
   updateAllEnded,
   updateSessionEnded,
-  updateSessionSeen,
-  type SessionRow,
 } from './sessions.queries.ts';
 
-export const idleLimitMs = 12 * 60 * 60_000;
-export const absoluteLimitMs = 7 * 24 * 60 * 60_000;
-/** Seen is written at most once a minute: it is read in hours. */
-const seenGrainMs = 60_000;
 const longestUserAgent = 200;
 
 export type SessionsService = ReturnType<typeof createSessionsService>;
@@ -77,35 +70,6 @@ export function createSessionsService({ db, clock, ids, hasher, keys, audit, act
     });
   }
 
-  /** The token only names the row: the row, the person and the roles are what counts. */
-  function findBySessionToken(token: string, inUse: boolean): SessionIdentity | null {
-    const now = clock.nowMs();
-    const claims = verifySessionToken(keys.session, token, now);
-    const session = claims === null ? undefined : selectSession(db, claims.sessionId);
-    if (claims === null || session === undefined || !isAlive(session, claims.personId, now)) return null;
-    const actor = actors.find(session.userId);
-    if (actor === null) return null;
-    if (inUse && now - session.lastSeenAtMs >= seenGrainMs) markSeen(session, now);
-    const isOld = now - claims.issuedAtMs >= renewAfterMs;
-    return { actor, sessionId: session.id, renewedToken: isOld ? issue(actor.id, session.id) : null };
-  }
-
-  function markSeen(session: SessionRow, now: number): void {
-    write(db, (tx) => {
-      updateSessionSeen(tx, session.id, now);
-      actors.markSeen(tx, session.userId);
-    });
-  }
-
-  /** For an open event stream: the same person, if still signed in and with the rights of now. */
-  function findAgain(identity: { actor: Actor; sessionId?: string }): Actor | null {
-    if (identity.sessionId !== undefined) {
-      const session = selectSession(db, identity.sessionId);
-      if (session === undefined || !isAlive(session, identity.actor.id, clock.nowMs())) return null;
-    }
-    return actors.find(identity.actor.id);
-  }
-
   function describe(actor: Actor): CurrentUser {
     return { ...actors.requireFacts(actor.id), rules: packRules(abilityFor(actor).rules) };
   }
@@ -141,14 +105,5 @@ export function createSessionsService({ db, clock, ids, hasher, keys, audit, act
     audit.record(tx, { personId, action, subjectType: 'Session', subjectId: sessionId });
   }
 
-  return { signIn, start, findBySessionToken, findAgain, describe, list, end, endAllOf };
-}
-
-function isAlive(session: SessionRow, personId: string, now: number): boolean {
-  return (
-    session.userId === personId &&
-    session.endedAtMs === null &&
-    now - session.lastSeenAtMs < idleLimitMs &&
-    now - session.createdAtMs < absoluteLimitMs
-  );
+  return { signIn, start, issue, describe, list, end, endAllOf };
 }

@@ -20,7 +20,7 @@ export interface TestApp extends SeededActors {
   actor(name: PersonName): Actor;
   /** Runs every due job, and tells how many there were. */
   runJobs(): Promise<number>;
-  close(): void;
+  close(): Promise<void>;
 }
 
 /** The whole server without a port: `app.as('curator').get('/api/runs')`. Close it after the test. */

@@ -16,7 +16,7 @@ import { openMemoryDatabase, projectRoot } from './memory-database.ts';
 
 export interface TestGround extends Ground {
   clock: FakeClock;
-  close(): void;
+  close(): Promise<void>;
 }
 
 /** Real database, store and queue on a temporary folder; only time and password hashing are not the real ones. */
@@ -28,6 +28,7 @@ export function createTestGround(settings: Record<string, string> = {}): TestGro
   );
   const clock = createFakeClock();
   const db = openMemoryDatabase();
+  const stopTasks: (() => Promise<void>)[] = [];
   return {
     config,
     keys: loadKeys(config.paths.keys),
@@ -39,7 +40,9 @@ export function createTestGround(settings: Record<string, string> = {}): TestGro
     clock,
     ids: systemIds,
     hasher: cheapHasher,
-    close: () => {
+    onStop: (task) => stopTasks.push(task),
+    close: async () => {
+      await Promise.all(stopTasks.map((task) => task()));
       db.$client.close();
       rmSync(dataDir, { recursive: true, force: true });
     },
