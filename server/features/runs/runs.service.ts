@@ -74,7 +74,13 @@ export function createRunsService({
     return get(actor, id);
   }
 
-  return { list, get, create, update };
+  /** For other features: the run, where the person contributes to its lab. */
+  function findOwn(reader: Reader, actor: Actor, id: string): { id: string; labId: string } | undefined {
+    const view = selectRun(reader, id, scopeOf(actor));
+    return view !== undefined && toRunFor(actor, view).editable ? view.run : undefined;
+  }
+
+  return { list, get, create, update, findOwn };
 }
 
 function scopeOf(actor: Actor): RunScope {

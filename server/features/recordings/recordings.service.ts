@@ -1,0 +1,176 @@
+import { toTotal, type Page } from '../../../shared/contract/page.ts';
+import type {
+  ListRecordingsQuery,
+  Recording,
+  RecordingListItem,
+} from '../../../shared/contract/recordings.ts';
+import { abilityFor, may } from '../../../shared/policy/ability.ts';
+import { labsOf, type Actor } from '../../../shared/policy/actor.ts';
+import { authorize } from '../../authorize/authorize.ts';
+import { visibleRecordings } from '../../authorize/visible-recordings.ts';
+import type { Reader, Tx } from '../../db/client.ts';
+import type { RowPlace } from '../../db/row-place.ts';
+import { write } from '../../db/transaction.ts';
+import type { Ground } from '../../ground.ts';
+import { conflict, notFound } from '../../http/problem.ts';
+import { pageOf, readRowCursor } from '../../http/row-cursor.ts';
+import type { AuditService } from '../audit/audit.service.ts';
+import { announceRecording } from './recording-activity.ts';
+import { toListItem, toRecording, type Standing } from './recordings.map.ts';
+import {
+  countEvents,
+  countRecordings,
+  insertFindings,
+  insertRecording,
+  selectFindings,
+  selectNewestMeasurement,
+  selectOpenPasses,
+  selectRecording,
+  selectRecordingRow,
+  selectRecordings,
+  updateRecording,
+  type FindingRow,
+  type RecordingListView,
+  type RecordingRow,
+  type RecordingView,
+} from './recordings.queries.ts';
+
+type Parts = Pick<Ground, 'db' | 'clock' | 'ids' | 'jobs' | 'activity'> & { audit: AuditService };
+
+export type RecordingsService = ReturnType<typeof createRecordingsService>;
+
+/** A recording as the bytes and the declaration tell it, before anything is measured. */
+export type NewRecording = Pick<
+  RecordingRow,
+  | ('id' | 'runId' | 'labId' | 'setupId' | 'uploadedById' | 'fileName' | 'sizeBytes' | 'sha256' | 'format')
+  | ('licence' | 'sensitivity' | 'note' | 'runOffsetNs' | 'timeExpansion')
+>;
+export type NewFinding = Pick<FindingRow, 'kind' | 'sentence' | 'place'>;
+
+export interface RecordingAccess {
+  row: RecordingRow;
+  /** True while an open blind pass forbids candidates, counts and rates. */
+  blind: boolean;
+}
+
+export function createRecordingsService({ db, clock, ids, jobs, activity, audit }: Parts) {
+  function list(actor: Actor, query: ListRecordingsQuery): Page<RecordingListItem> {
+    const { cursor, limit, ...filters } = query;
+    const visible = visibleRecordings(actor);
+    const rows = selectRecordings(db, { filters, visible, after: readRowCursor(cursor), limit: limit + 1 });
+    const { shown, nextCursor } = pageOf(rows, limit, placeOf);
+    const blindIds = selectBlindIds(db, actor, shown);
+    const items = shown.map((view) => toListItem(view, blindIds.has(view.recording.id)));
+    return { items, nextCursor, total: toTotal(countRecordings(db, filters, visible)) };
+  }
+
+  function get(actor: Actor, id: string): Recording {
+    const view = selectRecording(db, id, visibleRecordings(actor));
+    if (view === undefined) throw notFound('This recording');
+    return toRecording(view, standingOf(db, actor, view));
+  }
+
+  /** Throws the same 404 for what is missing and for what the person may not see. */
+  function requireVisible(actor: Actor, id: string): RecordingAccess {
+    const row = selectRecordingRow(db, id, visibleRecordings(actor));
+    if (row === undefined) throw notFound('This recording');
+    return { row, blind: selectBlindIds(db, actor, [{ recording: row }]).has(id) };
+  }
+
+  /** Writes a new recording, its findings and the job that measures it, in the transaction of whoever brings it in. */
+  function add(tx: Tx, recording: NewRecording, findings: readonly NewFinding[]): void {
+    const now = clock.nowMs();
+    insertRecording(tx, {
+      ...recording,
+      processing: 'queued',
+      sharing: 'pending',
+      createdAtMs: now,
+      updatedAtMs: now,
+    });
+    const owned = { recordingId: recording.id, foundAtMs: now };
+    insertFindings(
+      tx,
+      findings.map((finding) => ({ ...finding, ...owned, id: ids.next() })),
+    );
+    jobs.enqueue(tx, { kind: 'measure', payload: { recordingId: recording.id } });
+    const { sha256, sizeBytes, runId } = recording;
+    audit.record(
+      tx,
+      entry(recording.uploadedById, 'recording.brought-in', recording, { sha256, sizeBytes, runId }),
+    );
+  }
+
+  /** Gives a recording whose measurement failed another try. */
+  function measureAgain(actor: Actor, id: string): Recording {
+    const row = write(db, (tx) => {
+      const found = selectRecordingRow(tx, id, visibleRecordings(actor));
+      if (found === undefined) throw notFound('This recording');
+      const detail = 'Only the contributors of its lab may have a recording measured again.';
+      authorize(actor, { action: 'update', name: 'Recording', row: found, detail });
+      if (found.processing !== 'failed') throw conflict('Only a measurement that failed can be tried again.');
+      updateRecording(tx, id, {
+        processing: 'queued',
+        progress: 0,
+        failure: null,
+        updatedAtMs: clock.nowMs(),
+      });
+      jobs.enqueue(tx, { kind: 'measure', payload: { recordingId: id } });
+      audit.record(tx, entry(actor.id, 'recording.measuring-retried', found));
+      return found;
+    });
+    announceRecording(activity, { ...row, processing: 'queued', progress: 0 });
+    return get(actor, id);
+  }
+
+  return { list, get, requireVisible, add, measureAgain };
+}
+
+function placeOf({ recording }: RecordingListView): RowPlace {
+  return { key: recording.createdAtMs, id: recording.id };
+}
+
+/** Those on which the person works blind: an open blind pass, and no role that shows the recording anyway. */
+function selectBlindIds(
+  db: Reader,
+  actor: Actor,
+  views: readonly Pick<RecordingListView, 'recording'>[],
+): Set<string> {
+  if (!actor.roles.includes('labeler')) return new Set();
+  const ability = abilityFor(actor);
+  const byPassOnly = views.filter(({ recording }) => !may(ability, 'read', 'Recording', recording));
+  const ids = byPassOnly.map(({ recording }) => recording.id);
+  const blind = selectOpenPasses(db, actor.id, ids).filter((pass) => pass.blind);
+  return new Set(blind.map((pass) => pass.recordingId));
+}
+
+function standingOf(db: Reader, actor: Actor, view: RecordingView): Standing {
+  const { recording } = view;
+  const ability = abilityFor(actor);
+  const isMeasured = recording.processing === 'measured';
+  const openPasses = selectOpenPasses(db, actor.id, [recording.id]);
+  const isOwnLab = labsOf(actor).includes(recording.labId);
+  const canDecide = may(ability, 'decide', 'Recording', recording) && recording.uploadedById !== actor.id;
+  return {
+    blind: selectBlindIds(db, actor, [view]).has(recording.id),
+    findings: isOwnLab ? selectFindings(db, recording.id) : [],
+    eventCount: countEvents(db, recording.id),
+    measurement: isMeasured ? (selectNewestMeasurement(db, recording.id)?.summary ?? null) : null,
+    may: {
+      // Whoever marks has to hear: a pass that shows the recording lets its bytes be played too.
+      downloadAudio: true,
+      decide: canDecide && recording.sharing === 'held',
+      assign: isMeasured && may(ability, 'assign', 'Recording', recording),
+      mark: isMeasured && recording.sharing === 'shared' && openPasses.length > 0,
+    },
+  };
+}
+
+function entry(
+  personId: string,
+  action: string,
+  recording: Pick<RecordingRow, 'id' | 'labId'>,
+  detail?: Record<string, unknown>,
+) {
+  const subject = { subjectType: 'Recording', subjectId: recording.id, labId: recording.labId };
+  return { personId, action, ...subject, ...(detail === undefined ? {} : { detail }) };
+}

@@ -1,0 +1,154 @@
+import { link } from 'node:fs/promises';
+import type { Declaration } from '../../../shared/contract/uploads.ts';
+import type { AudioFormat } from '../../../shared/contract/measurement.ts';
+import { personalMetadata } from '../../../shared/audio/personal-metadata.ts';
+import { readWavHeader, type WavHeader } from '../../../shared/audio/wav-header.ts';
+import { readWavMetadata } from '../../../shared/audio/wav-metadata.ts';
+import { WavRefusedError } from '../../../shared/audio/wav-refused-error.ts';
+import type { Tx } from '../../db/client.ts';
+import { write } from '../../db/transaction.ts';
+import type { Ground } from '../../ground.ts';
+import { ProblemError } from '../../http/problem.ts';
+import { withFileSource } from '../../store/file-source.ts';
+import { announceRecording } from '../recordings/recording-activity.ts';
+import type { NewFinding, RecordingsService } from '../recordings/recordings.service.ts';
+import type { SensorsService } from '../sensors/sensors.service.ts';
+import { hashFile } from './hash-file.ts';
+
+type Parts = Pick<Ground, 'db' | 'ids' | 'store' | 'activity'> & {
+  recordings: RecordingsService;
+  sensors: SensorsService;
+};
+
+/** Bytes that have arrived whole, and what was declared with them. */
+export interface Arrival extends Declaration {
+  path: string;
+  fileName: string;
+  sizeBytes: number;
+  run: { id: string; labId: string };
+  uploadedById: string;
+  /** What the sender says the bytes are. */
+  sha256?: string | undefined;
+}
+
+export type IntakeService = ReturnType<typeof createIntakeService>;
+
+/** The one way into the service for sound, however the bytes travelled. */
+export function createIntakeService({ db, ids, store, activity, recordings, sensors }: Parts) {
+  /**
+   * Checks the file, makes its bytes durable, and only then writes the rows; `alongside` joins their transaction.
+   * The file at `path` stays where it is: whoever brought it removes it after the commit.
+   */
+  async function bringIn(
+    arrival: Arrival,
+    alongside: (tx: Tx, recordingId: string) => void,
+  ): Promise<string> {
+    const header = await readHeader(arrival.path);
+    const format = toTrueFormat(header.format, arrival.timeExpansion);
+    const sha256 = await hashFile(arrival.path);
+    requireAnnounced(arrival.sha256, sha256);
+    await storeBytes(arrival.path, sha256);
+    const id = ids.next();
+    const { run, setupId, uploadedById, fileName, sizeBytes, licence, sensitivity, note } = arrival;
+    const { runOffsetNs, timeExpansion } = arrival;
+    write(db, (tx) => {
+      sensors.requireSetupOfLab(tx, setupId, run.labId);
+      const facts = {
+        id,
+        runId: run.id,
+        labId: run.labId,
+        setupId,
+        uploadedById,
+        fileName,
+        sizeBytes,
+        sha256,
+        format,
+      };
+      const declared = { licence, sensitivity: [...new Set(sensitivity)], note, runOffsetNs, timeExpansion };
+      recordings.add(tx, { ...facts, ...declared }, [
+        ...declaredFindings(declared.sensitivity),
+        ...foundIn(header),
+      ]);
+      alongside(tx, id);
+    });
+    announceRecording(activity, {
+      id,
+      labId: run.labId,
+      processing: 'queued',
+      sharing: 'pending',
+      progress: 0,
+    });
+    return id;
+  }
+
+  /** A second name for the bytes goes into the store, so that a crash before the commit loses nothing. */
+  async function storeBytes(path: string, sha256: string): Promise<void> {
+    const incoming = store.tempPath();
+    await link(path, incoming);
+    await store.putFile(incoming, sha256);
+  }
+
+  return { bringIn };
+}
+
+async function readHeader(path: string): Promise<WavHeader> {
+  try {
+    return await withFileSource(path, readWavHeader);
+  } catch (error) {
+    if (error instanceof WavRefusedError)
+      throw new ProblemError('file-refused', error.message, { cause: error });
+    throw error;
+  }
+}
+
+const fastestRateHz = 20_000_000;
+
+/** A declared time expansion is applied here and nowhere else: from now on the rate is that of the sound itself. */
+function toTrueFormat(format: AudioFormat, timeExpansion: number): AudioFormat {
+  if (timeExpansion === 1) return format;
+  const sampleRateHz = Math.round(format.sampleRateHz * timeExpansion);
+  if (sampleRateHz > fastestRateHz) {
+    const rate = sampleRateHz.toLocaleString('en');
+    throw new ProblemError(
+      'file-refused',
+      `With the declared time expansion the sample rate would be ${rate} Hz, more than 20 MHz.`,
+    );
+  }
+  const warning = `The header says ${format.sampleRateHz.toLocaleString('en')} Hz; by the declared time expansion of ${timeExpansion} the sound was sampled at ${sampleRateHz.toLocaleString('en')} Hz.`;
+  return { ...format, sampleRateHz, warnings: [...format.warnings, warning] };
+}
+
+function requireAnnounced(announced: string | undefined, sha256: string): void {
+  if (announced === undefined || announced === sha256) return;
+  throw new ProblemError(
+    'checksum-mismatch',
+    `The bytes that arrived have the sha256 ${sha256}, not ${announced}. They were removed; send the file again.`,
+  );
+}
+
+const declaredSentences: Record<Declaration['sensitivity'][number], string> = {
+  voices: 'It was declared that people may be heard.',
+  'personal-data': 'It was declared that it holds personal data.',
+  'partner-agreement': 'It was declared that an agreement with a partner covers it.',
+  'unpublished-result': 'It was declared that it shows a result that is not published yet.',
+  other: 'It was declared to be sensitive for another reason; see the note.',
+};
+
+function declaredFindings(sensitivity: Declaration['sensitivity']): NewFinding[] {
+  return sensitivity.map((kind) => ({
+    kind: 'declared-sensitivity',
+    sentence: declaredSentences[kind],
+    place: kind,
+  }));
+}
+
+const mostFindings = 200;
+
+function foundIn(header: WavHeader): NewFinding[] {
+  const found = personalMetadata(readWavMetadata(header.metadata)).slice(0, mostFindings);
+  return found.map(({ chunk, key, sentence }) => ({
+    kind: 'personal-metadata',
+    sentence,
+    place: `${chunk}/${key}`,
+  }));
+}
