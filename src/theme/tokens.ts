@@ -34,12 +34,16 @@ export function installThemeStyleSheet(page: Document = document): void {
   page.head.append(style);
 }
 
-/** The same colours as tokens of the component library. */
+/**
+ * The same colours as tokens of the component library. They are put over what its algorithm derives, since the
+ * algorithm for dark themes would mix other colours from ours.
+ */
 export function libraryTheme(name: ThemeName): ThemeConfig {
-  const palette = palettes[name];
+  const base = name === 'dark' ? library.darkAlgorithm : library.defaultAlgorithm;
+  const colours = colourTokens(palettes[name]);
   return {
-    algorithm: name === 'dark' ? library.darkAlgorithm : library.defaultAlgorithm,
-    token: { ...shapeTokens, ...colourTokens(palette) },
+    algorithm: (seed, map) => ({ ...base(seed, map), ...colours }),
+    token: { ...shapeTokens, ...colours },
   };
 }
 
@@ -63,6 +67,7 @@ const shapeTokens = {
   motionDurationSlow: '0.16s',
   motionDurationMid: '0.12s',
   motionDurationFast: '0.08s',
+  opacityLoading: 1,
   wireframe: false,
 };
 

@@ -1,0 +1,42 @@
+/** One change of one mark, with what it was before and what it became; `null` stands for "not there". */
+export interface MarkStep<Mark> {
+  /** What was done, for the button and the live region: "crack at 41.3248 s set". */
+  name: string;
+  key: string;
+  before: Mark | null;
+  after: Mark | null;
+}
+
+/** What has been done and what has been taken back, newest last in both. */
+export interface UndoStack<Mark> {
+  done: readonly MarkStep<Mark>[];
+  undone: readonly MarkStep<Mark>[];
+}
+
+export interface Taken<Mark> {
+  step: MarkStep<Mark>;
+  stack: UndoStack<Mark>;
+}
+
+export function emptyUndoStack<Mark>(): UndoStack<Mark> {
+  return { done: [], undone: [] };
+}
+
+/** A new change ends what could have been done again. */
+export function pushStep<Mark>(stack: UndoStack<Mark>, step: MarkStep<Mark>): UndoStack<Mark> {
+  return { done: [...stack.done, step], undone: [] };
+}
+
+/** Takes the newest change back: the caller puts `step.before` in place. */
+export function takeUndo<Mark>(stack: UndoStack<Mark>): Taken<Mark> | null {
+  const step = stack.done.at(-1);
+  if (!step) return null;
+  return { step, stack: { done: stack.done.slice(0, -1), undone: [...stack.undone, step] } };
+}
+
+/** Does the newest change that was taken back again: the caller puts `step.after` in place. */
+export function takeRedo<Mark>(stack: UndoStack<Mark>): Taken<Mark> | null {
+  const step = stack.undone.at(-1);
+  if (!step) return null;
+  return { step, stack: { done: [...stack.done, step], undone: stack.undone.slice(0, -1) } };
+}
