@@ -1,3 +1,4 @@
+import type { Transferable } from 'node:worker_threads';
 import { Piscina } from 'piscina';
 
 interface PoolOptions {
@@ -6,8 +7,14 @@ interface PoolOptions {
   workers: number;
 }
 
+interface RunOptions {
+  signal?: AbortSignal;
+  /** Ports and buffers in the input that are handed over instead of copied. */
+  transferList?: Transferable[];
+}
+
 export interface WorkerPool<Input, Output> {
-  run(input: Input, options?: { signal?: AbortSignal }): Promise<Output>;
+  run(input: Input, options?: RunOptions): Promise<Output>;
   close(): Promise<void>;
 }
 
@@ -22,7 +29,7 @@ export function createWorkerPool<Input, Output>({ module, workers }: PoolOptions
     ...(isSource ? { execArgv: ['--import', 'tsx'] } : {}),
   });
   return {
-    run: (input, options) => pool.run(input, options?.signal === undefined ? {} : { signal: options.signal }),
+    run: (input, options) => pool.run(input, options),
     close: () => pool.destroy(),
   };
 }
