@@ -147,7 +147,7 @@ function markRow(index: number): SnapshotMark {
 const toEvent = (mark: SnapshotMark): SnapshotEvent => ({
   ...mark,
   settledBy: 'single-pass',
-  parameters: burst,
+  parameters: { ...burst },
 });
 
 export interface SnapshotFixture {
