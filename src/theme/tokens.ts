@@ -82,7 +82,6 @@ function colourTokens(palette: Palette) {
     colorWarning: palette.glow,
     colorError: palette.glow,
     colorErrorHover: palette.glow,
-    colorErrorOutline: palette.glowTint,
     colorErrorBorderHover: palette.glow,
     colorLink: palette.melt,
     colorLinkHover: palette.meltStrong,
@@ -107,7 +106,10 @@ function colourTokens(palette: Palette) {
     colorBorder: palette.edge,
     colorBorderSecondary: palette.hairline,
     colorSplit: palette.hairline,
-    controlOutline: palette.meltTint,
+    // The ring of base.css is the only one; these would draw shadows under buttons.
+    controlOutline: 'transparent',
+    controlTmpOutline: 'transparent',
+    colorErrorOutline: 'transparent',
     controlItemBgHover: palette.tint,
     controlItemBgActive: palette.meltTint,
   };

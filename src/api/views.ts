@@ -1,0 +1,59 @@
+import { decodeTile } from '@shared/audio/tile.ts';
+import type { Tile } from '@shared/audio/tile.ts';
+import { peaksSchema, tileLayoutSchema } from '@shared/contract/views.ts';
+import type { Peaks, PictureBand, TileLayout } from '@shared/contract/views.ts';
+import { apiAddress, apiGet, apiGetBytes } from '@/api/client.ts';
+
+function viewPath(recordingId: string, view: string): string {
+  return `/api/recordings/${recordingId}/${view}`;
+}
+
+export async function getTileLayout(recordingId: string, signal?: AbortSignal): Promise<TileLayout> {
+  return apiGet(viewPath(recordingId, 'spectrogram'), tileLayoutSchema, signal ? { signal } : {});
+}
+
+export interface TileQuery {
+  recordingId: string;
+  channel: number;
+  band: PictureBand;
+  level: number;
+  tile: number;
+}
+
+export async function getTile(query: TileQuery, signal: AbortSignal): Promise<Tile> {
+  const { recordingId, channel, band, level, tile } = query;
+  const path = viewPath(recordingId, `spectrogram/${band}/${level}/${tile}`);
+  return decodeTile(new Uint8Array(await apiGetBytes(path, { query: { channel }, signal })));
+}
+
+export interface PeaksSpan {
+  channel: number;
+  startSample: number;
+  /** Exclusive. */
+  endSample: number;
+  points: number;
+}
+
+/** Least and greatest sample of equal steps of the span. */
+export async function getPeaks(recordingId: string, span: PeaksSpan, signal: AbortSignal): Promise<Peaks> {
+  return apiGet(viewPath(recordingId, 'peaks'), peaksSchema, { query: { ...span }, signal });
+}
+
+/** The file as it was brought in, for the player of the browser. */
+export function audioAddress(recordingId: string): string {
+  return viewPath(recordingId, 'audio');
+}
+
+export interface ListenSpan {
+  channel: number;
+  startSample: number;
+  /** Exclusive. */
+  endSample: number;
+  /** How many times slower; 1 is as recorded. */
+  slow: number;
+}
+
+/** A rendition for the ear: 48 kHz, limited and faded, made on demand. */
+export function listenAddress(recordingId: string, span: ListenSpan): string {
+  return apiAddress(viewPath(recordingId, 'listen'), { ...span });
+}
