@@ -27,9 +27,13 @@ const http = /^server\/http\//;
 const problem = /^server\/http\/(problem|revision|cursor|row-cursor)\.ts$/;
 const config = /^server\/config\.ts$/;
 const log = /^server\/log\.ts$/;
+/** What is told to every browser while it happens. */
+const activity = /^server\/jobs\/activity\.ts$/;
 const deps = /^server\/deps\.ts$/;
 /** What every feature stands on, as one record. */
 const ground = /^server\/ground\.ts$/;
+/** Where everything is put together: the files at the top of server/ and the commands. */
+const composition = /^server\/([^/]+\.ts$|setup\/)/;
 const foundations = [shared, db, store, jobs, services, authorize, problem, config, log];
 
 const api = /^src\/api\//;
@@ -41,8 +45,8 @@ const components = /^src\/components\//;
 const shell = /^src\/components\/app\//;
 const views = /^src\/views\//;
 const router = /^src\/router\//;
-/** The table of areas that both the router and the navigation read. */
-const areas = /^src\/router\/areas\.ts$/;
+/** The tables and rules of the router that the navigation and the sign-in page read too; no view in them. */
+const areas = /^src\/router\/(areas|guard)\.ts$/;
 
 export const layers: Layer[] = [
   { files: lib, may: [] },
@@ -65,9 +69,16 @@ export const layers: Layer[] = [
   { files: log, may: [shared, config] },
   { files: ground, may: foundations },
   { files: /^server\/features\/[^/]+\/[^/]+\.queries\.ts$/, may: [shared, db, authorize] },
-  { files: /^server\/features\/[^/]+\/[^/]+\.routes\.ts$/, may: [shared, http, authorize, config, deps] },
+  {
+    files: /^server\/features\/[^/]+\/[^/]+\.routes\.ts$/,
+    may: [shared, http, authorize, config, deps, activity],
+  },
+  {
+    files: /^server\/features\/[^/]+\/[^/.]+\.ts$/,
+    may: [...foundations, ground, http, signal, measuring, packaging, deps],
+  },
   { files: /^server\/features\//, may: [...foundations, ground, signal, measuring, packaging, deps] },
-  { files: /^server\/(main|app|deps)\.ts$|^server\/setup\//, may: [/^server\//, shared] },
+  { files: composition, may: [/^server\//, shared] },
 
   { files: api, may: [shared] },
   { files: theme, may: [shared] },
@@ -75,7 +86,7 @@ export const layers: Layer[] = [
   { files: composables, may: [shared, api, stores, theme] },
   { files: shell, may: [shared, components, composables, stores, theme, assets, areas] },
   { files: components, may: [shared, composables, theme, assets] },
-  { files: views, may: [shared, components, composables, stores, api, theme, assets] },
+  { files: views, may: [shared, components, composables, stores, api, theme, assets, areas] },
   { files: router, may: [shared, views, stores, composables] },
   { files: /^src\//, may: [shared, /^src\//] },
 ];
@@ -85,7 +96,7 @@ const packageRules = [
   { packages: /^node:|^fs$|^path$/, users: /^server\// },
   {
     packages: /^express$/,
-    users: /^server\/(http\/|setup\/|app\.ts|main\.ts|features\/[^/]+\/[^/]+\.routes\.ts)/,
+    users: /^server\/(http\/|setup\/|[^/]+\.ts$|features\/[^/]+\/([^/.]+|[^/]+\.routes)\.ts$)/,
   },
   { packages: /^(drizzle-orm|better-sqlite3)(\/|$)/, users: /^server\/(db|jobs|authorize|features|setup)\// },
   { packages: /^wavesurfer\.js(\/|$)/, users: /^src\/components\/bench\/WaveformStrip\.vue$/ },
@@ -113,8 +124,10 @@ const rolesWithin: Record<string, string[]> = {
 
 function mayFeatureImport(from: string, to: string): boolean {
   const role = roleOf(to);
-  // Another feature is asked through its service, never past it.
-  if (featureOf(from) !== featureOf(to)) return role === 'service' && roleOf(from) !== 'queries';
+  // Another feature is asked through its service, never past it; a file without a role holds rules, no access to data.
+  if (featureOf(from) !== featureOf(to)) {
+    return (role === 'service' || role === undefined) && roleOf(from) !== 'queries';
+  }
   const allowed = rolesWithin[roleOf(from) ?? ''];
   return role === undefined || allowed === undefined || allowed.includes(role);
 }
@@ -132,7 +145,9 @@ function mayImportPackage(from: string, name: string): boolean {
   return packageRules.every(({ packages, users }) => !packages.test(name) || users.test(from));
 }
 
-function isAllowed(from: string, { target, isPackage }: ImportStatement): boolean {
+function isAllowed(from: string, { target, isPackage, isTypeOnly }: ImportStatement): boolean {
+  // A service may implement what the interface asks for: that is a type and no code.
+  if (isTypeOnly && roleOf(from) === 'service' && http.test(target)) return true;
   return isPackage ? mayImportPackage(from, target) : mayImportOwn(from, target);
 }
 
