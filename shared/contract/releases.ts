@@ -8,7 +8,9 @@ export const releaseStateSchema = z.enum(['building', 'built', 'failed', 'publis
 export type ReleaseState = z.infer<typeof releaseStateSchema>;
 
 export const createReleaseSchema = z.object({
-  version: z.string().regex(/^(0|[1-9]\d*)\.(0|[1-9]\d*)\.(0|[1-9]\d*)$/, 'is a version of the form 1.0.0'),
+  version: z
+    .string()
+    .regex(/^(0|[1-9]\d{0,5})\.(0|[1-9]\d{0,5})\.(0|[1-9]\d{0,5})$/, 'is a version of the form 1.0.0'),
   licence: licenceSchema,
   notes: z.string().trim().min(10, 'needs a sentence (at least 10 characters)').max(10_000),
 });
@@ -45,6 +47,8 @@ export const releaseSchema = releaseListItemSchema.extend({
   publisher: z.string(),
   creators: z.array(creditSchema),
   citation: z.string(),
+  /** How to check the archive in a shell, and how to read it in Python; `null` before it is built. */
+  usage: z.object({ verify: z.string(), load: z.string() }).nullable(),
   doi: z.string().nullable(),
   fileName: z.string().nullable(),
   sha256: sha256Schema.nullable(),

@@ -58,7 +58,7 @@ export const collectionLabelers = sqliteTable(
 
 export type ReleaseSummary = Pick<
   Release,
-  'description' | 'publisher' | 'creators' | 'classes' | 'materials' | 'labs'
+  'description' | 'publisher' | 'creators' | 'citation' | 'classes' | 'materials' | 'labs'
 >;
 
 /** The frozen JSON a release is built from, stored as a blob under its sha256. */
