@@ -26,7 +26,7 @@ export function createWorkerPool<Input, Output>({ module, workers }: PoolOptions
     minThreads: 0,
     maxThreads: workers,
     idleTimeout: 30_000,
-    ...(isSource ? { execArgv: ['--import', 'tsx'] } : {}),
+    ...(isSource ? { execArgv: ['--import', new URL('./source-loader.mjs', import.meta.url).href] } : {}),
   });
   return {
     run: (input, options) => pool.run(input, options),

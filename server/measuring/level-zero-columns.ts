@@ -47,11 +47,12 @@ async function fillColumns(
   const readTo = Math.min(lastStart + grid.size, frames);
   const samples = await reader.readChannel(channel, readFrom, readTo - readFrom);
   const spectrum = spectrumOf(grid.size);
+  const bins = { first: firstBin, end: endBin };
   // No await from here on: the transform's buffers are shared by the whole thread.
   for (let c = 0; c < part.count; c++) {
     const from = frameStart(grid, firstFrame + c, frames) - readFrom;
     const to = Math.min(from + grid.size, samples.length);
-    spectrum.analyse(samples, from, to, firstBin, endBin);
+    spectrum.analyseBins(samples, from, to, bins);
     encodeColumn(spectrum.power, firstBin, endBin, codes, (part.first + c) * picture.layout.bins);
   }
 }

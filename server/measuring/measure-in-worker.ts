@@ -4,7 +4,10 @@ import type { MeasureTask } from './measure.worker.ts';
 
 /** What this needs of a pool of threads. */
 export interface MeasurePool {
-  run(task: MeasureTask, options?: { signal?: AbortSignal; transferList?: Transferable[] }): Promise<MeasureResult>;
+  run(
+    task: MeasureTask,
+    options?: { signal?: AbortSignal; transferList?: Transferable[] },
+  ): Promise<MeasureResult>;
 }
 
 /** Address of the worker without its ending, for the pool. */

@@ -11,7 +11,7 @@ import { LongFrames, type LongFrameResult } from './long-frames.ts';
 import { MainsTracker } from './mains.ts';
 import { PeakPyramid } from './pyramid.ts';
 import type { ChannelFacts } from './quality.ts';
-import { ColumnPyramid, encodeColumn, type Picture } from './spectrogram-columns.ts';
+import { ColumnPyramid, type Picture } from './spectrogram-columns.ts';
 
 /** Where the views of one channel go, in order of time. Arrays are reused by the caller. */
 export interface ViewSink {
@@ -124,7 +124,7 @@ export class ChannelPass {
   #pushLong(samples: Float32Array, from: number, to: number): void {
     this.#longFrames.push(samples, from, to);
     this.#settings.views.frameRow(this.#longFrames.row);
-    if (this.#sharesLongFrames) this.#audible?.pushPower(this.#longFrames.spectrum.power);
+    if (this.#sharesLongFrames) this.#audible?.pushPower(this.#longFrames.spectrum);
   }
 }
 
@@ -133,29 +133,27 @@ class PictureFrames {
   readonly #picture: Picture;
   readonly #cursor: FrameCursor;
   readonly #columns: ColumnPyramid;
-  readonly #codes: Uint8Array;
   #spectrum: FrameSpectrum | undefined;
 
   constructor(picture: Picture, frames: number, views: ViewSink) {
     const { layout } = picture;
     this.#picture = picture;
     this.#cursor = new FrameCursor(picture.grid, frames);
-    this.#codes = new Uint8Array(layout.bins);
-    this.#columns = new ColumnPyramid(layout, (level, codes) => views.column(layout.band, level, codes));
+    this.#columns = new ColumnPyramid(picture, (level, codes) => views.column(layout.band, level, codes));
   }
 
   advance(window: SampleWindow): void {
     const { grid, firstBin, endBin } = this.#picture;
+    const bins = { first: firstBin, end: endBin };
     const spectrum = (this.#spectrum ??= new FrameSpectrum(grid.size));
     this.#cursor.advance(window, (_index, samples, from, to) => {
-      spectrum.analyse(samples, from, to, firstBin, endBin);
-      this.pushPower(spectrum.power);
+      spectrum.analyseBins(samples, from, to, bins);
+      this.pushPower(spectrum);
     });
   }
 
-  pushPower(power: Float32Array): void {
-    encodeColumn(power, this.#picture.firstBin, this.#picture.endBin, this.#codes);
-    this.#columns.push(this.#codes);
+  pushPower(spectrum: FrameSpectrum): void {
+    this.#columns.push(spectrum.powerBits);
   }
 
   finish(): void {
@@ -191,8 +189,8 @@ class ShortFrames {
     const spectrum = this.#spectrum;
     if (frame.end <= frame.first) return;
     this.#cursor.advance(window, (index, samples, from, to) => {
-      spectrum.analyse(samples, from, to, frame.first, frame.end);
-      this.#picture?.pushPower(spectrum.power);
+      spectrum.analyseBins(samples, from, to, frame);
+      this.#picture?.pushPower(spectrum);
       frame.index = index;
       frame.middleSample = index * this.#hop + this.#hop / 2;
       this.#course.pushUltrasonic(frame.middleSample, meanSquareOfBins(frame.power, frame.first, frame.end));

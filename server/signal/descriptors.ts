@@ -90,23 +90,3 @@ function rolloffBin(amplitude: Float32Array, sum: number): number {
   }
   return bin;
 }
-
-/**
- * Sign changes per second of a signal about a mean: crossings * fs / samples. A sine of f Hz has 2 f.
- *
- * Taken from the unwindowed samples. @param from first sample, @param to exclusive.
- */
-export function zeroCrossingRateHz(
-  samples: Float32Array,
-  span: { from: number; to: number; mean: number; sampleRateHz: number },
-): number {
-  const { from, to, mean } = span;
-  let crossings = 0;
-  let wasNegative = samples[from]! < mean;
-  for (let i = from + 1; i < to; i++) {
-    const isNegative = samples[i]! < mean;
-    if (isNegative !== wasNegative) crossings++;
-    wasNegative = isNegative;
-  }
-  return (crossings * span.sampleRateHz) / (to - from);
-}

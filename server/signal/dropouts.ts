@@ -35,8 +35,29 @@ export class DropoutTracker {
 
   /** @param from first sample of the window not yet seen. */
   push(window: SampleWindow, from: number): void {
-    const { samples, startSample } = window;
-    const end = window.endSample - startSample;
+    const end = window.endSample - window.startSample;
+    if (this.#mayHoldRun(window.samples, from, end)) this.#follow(window, from, end);
+    else this.#skip(window, from, end);
+  }
+
+  /** A run of the least length covers two neighbours of a comb half as wide: elsewhere nothing is to be found. */
+  #mayHoldRun(samples: Float32Array, from: number, end: number): boolean {
+    const comb = Math.floor(this.#minimumSamples / 2);
+    const first = Math.max(0, from - this.#minimumSamples);
+    for (let i = first + comb; i < end; i += comb) if (samples[i] === samples[i - comb]) return true;
+    return false;
+  }
+
+  #skip({ samples, startSample }: SampleWindow, from: number, end: number): void {
+    let runStart = end - 1;
+    while (runStart > from && samples[runStart - 1] === samples[end - 1]) runStart--;
+    const goesOn = runStart === from && samples[from] === this.#previous;
+    if (!goesOn) this.#runStart = runStart + startSample;
+    this.#previous = samples[end - 1]!;
+    this.#cutsSignal = false;
+  }
+
+  #follow({ samples, startSample }: SampleWindow, from: number, end: number): void {
     const minimum = this.#minimumSamples;
     let previous = this.#previous;
     let runStart = this.#runStart - startSample;

@@ -15,20 +15,30 @@ export const SILENCE_MEAN_SQUARE = 1e-18;
 export class FrameSpectrum {
   readonly size: number;
   readonly power: Float32Array;
-  /** Mean of the frame, and mean square after removing it; over the samples that exist. */
+  /** The same memory as `power`. */
+  readonly powerBits: Int32Array;
+  /** Mean of the frame, mean square after removing it, and largest magnitude before; over the samples that exist. */
   mean = 0;
   meanSquare = 0;
+  peak = 0;
+  /** Changes of sign of the samples (mean removed) from one to the next. */
+  crossings = 0;
   readonly #fft: RealFft;
   readonly #window: Window;
   readonly #scale: number;
+  readonly #centred: Float32Array;
+  readonly #centredBits: Int32Array;
 
   /** @param size N, a power of two from 32. */
   constructor(size: number) {
     this.size = size;
     this.power = new Float32Array(size / 2);
+    this.powerBits = new Int32Array(this.power.buffer);
     this.#fft = realFft(size);
     this.#window = hannWindow(size);
     this.#scale = 4 / (this.#window.sum * this.#window.sum);
+    this.#centred = new Float32Array(size);
+    this.#centredBits = new Int32Array(this.#centred.buffer);
   }
 
   get isSilent(): boolean {
@@ -36,13 +46,37 @@ export class FrameSpectrum {
   }
 
   /**
+   * Renews every field.
+   *
    * @param samples full scale 1, finite.
    * @param from first sample of the frame.
    * @param to exclusive; at most N samples, missing ones count as zero after removal of the mean.
-   * @param firstBin and @param endBin limit which bins of `power` are renewed.
    */
-  analyse(samples: Float32Array, from: number, to: number, firstBin = 0, endBin = this.power.length): void {
-    this.#loadFrame(samples, from, to);
+  analyse(samples: Float32Array, from: number, to: number): void {
+    this.#measure(samples, from, to);
+    const { weights } = this.#window;
+    const input = this.#fft.input;
+    const centred = this.#centred;
+    for (let n = 0; n < to - from; n++) input[n] = centred[n]! * weights[n]!;
+    if (to - from < this.size) input.fill(0, to - from);
+    this.#transform(0, this.power.length);
+  }
+
+  /** Renews `mean` and the bins `[firstBin, endBin)` of `power` alone. */
+  analyseBins(samples: Float32Array, from: number, to: number, bins: { first: number; end: number }): void {
+    const { weights } = this.#window;
+    const input = this.#fft.input;
+    const count = to - from;
+    let sum = 0;
+    for (let i = from; i < to; i++) sum += samples[i]!;
+    const mean = sum / count;
+    for (let n = 0; n < count; n++) input[n] = (samples[from + n]! - mean) * weights[n]!;
+    if (count < this.size) input.fill(0, count);
+    this.mean = mean;
+    this.#transform(bins.first, bins.end);
+  }
+
+  #transform(firstBin: number, endBin: number): void {
     this.#fft.transform();
     const { power } = this;
     const spectrum = this.#fft.output;
@@ -55,22 +89,37 @@ export class FrameSpectrum {
     if (firstBin === 0) power[0] = spectrum[0]! * spectrum[0]! * scale;
   }
 
-  #loadFrame(samples: Float32Array, from: number, to: number): void {
+  #measure(samples: Float32Array, from: number, to: number): void {
     const count = to - from;
-    const { weights } = this.#window;
-    const input = this.#fft.input;
+    const centred = this.#centred;
     let sum = 0;
-    for (let i = from; i < to; i++) sum += samples[i]!;
-    const mean = count > 0 ? sum / count : 0;
+    let highest = 0;
+    let lowest = 0;
+    for (let i = from; i < to; i++) {
+      const x = samples[i]!;
+      sum += x;
+      if (x > highest) highest = x;
+      else if (x < lowest) lowest = x;
+    }
+    const mean = sum / count;
     let squares = 0;
     for (let n = 0; n < count; n++) {
       const value = samples[from + n]! - mean;
       squares += value * value;
-      input[n] = value * weights[n]!;
+      centred[n] = value;
     }
-    if (count < this.size) input.fill(0, count);
     this.mean = mean;
-    this.meanSquare = count > 0 ? squares / count : 0;
+    this.meanSquare = squares / count;
+    this.peak = Math.max(highest, -lowest);
+    this.crossings = this.#countCrossings(count);
+  }
+
+  /** By the sign bits: a branch per sample would be guessed wrong at every second sample of noise. */
+  #countCrossings(count: number): number {
+    const bits = this.#centredBits;
+    let crossings = 0;
+    for (let n = 1; n < count; n++) crossings += (bits[n]! ^ bits[n - 1]!) >>> 31;
+    return crossings;
   }
 }
 

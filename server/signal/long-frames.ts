@@ -1,6 +1,6 @@
 import type { ChannelDescriptors } from '../../shared/contract/measurement.ts';
 import { BinnedMedian } from './binned-median.ts';
-import { emptyDescriptors, zeroCrossingRateHz, type DescriptorEngine } from './descriptors.ts';
+import { emptyDescriptors, type DescriptorEngine } from './descriptors.ts';
 import { FRAME_ROW_LENGTH, type FrameRow } from './frame-row.ts';
 import { bandBins } from './frame-plan.ts';
 import { FrameSpectrum, meanSquareOfBins, SILENCE_MEAN_SQUARE } from './frame-spectrum.ts';
@@ -63,14 +63,13 @@ export class LongFrames {
     const { spectrum, row } = this;
     spectrum.analyse(samples, from, to);
     row.fill(Number.NaN);
-    let peak = 0;
-    for (let i = from; i < to; i++) peak = Math.max(peak, Math.abs(samples[i]!));
+    const { peak } = spectrum;
     if (peak > 0) row[1] = 20 * Math.log10(peak);
     if (spectrum.isSilent) return;
     const rms = Math.sqrt(spectrum.meanSquare);
     row[0] = 20 * Math.log10(rms * Math.SQRT2);
     row[2] = 20 * Math.log10(peak / rms);
-    this.#describe(samples, from, to);
+    this.#describe((spectrum.crossings * this.#settings.sampleRateHz) / (to - from));
     this.#longTerm.push(spectrum.power);
   }
 
@@ -95,15 +94,15 @@ export class LongFrames {
     return this.#ultrasonic.end > this.#ultrasonic.first;
   }
 
-  #describe(samples: Float32Array, from: number, to: number): void {
+  /** @param crossingRateHz sign changes per second of the unwindowed samples: a sine of f Hz has 2 f. */
+  #describe(crossingRateHz: number): void {
     const { row, spectrum } = this;
     const { sampleRateHz, engine } = this.#settings;
     const found = this.#found;
     const amplitude = this.#amplitude;
     for (let k = 0; k < amplitude.length; k++) amplitude[k] = Math.sqrt(spectrum.power[k]!);
     engine(amplitude, sampleRateHz, found);
-    const crossings = zeroCrossingRateHz(samples, { from, to, mean: spectrum.mean, sampleRateHz });
-    row[3] = crossings;
+    row[3] = crossingRateHz;
     row[4] = found.centroidHz;
     row[5] = found.spreadHz;
     row[6] = found.flatness;
@@ -113,7 +112,7 @@ export class LongFrames {
     medians.spreadHz.push(found.spreadHz);
     medians.flatness.push(found.flatness);
     medians.rolloff99AmplitudeHz.push(found.rolloff99AmplitudeHz);
-    medians.zeroCrossingRateHz.push(crossings);
+    medians.zeroCrossingRateHz.push(crossingRateHz);
     if (this.#seesUltrasound) this.#weighUltrasound();
   }
 

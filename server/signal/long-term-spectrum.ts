@@ -48,6 +48,7 @@ export class LongTermSpectrum {
   readonly #classes: EnergyClasses;
   readonly #quantiles: PowerQuantiles;
   readonly #firstActivityBin: number;
+  #frames = 0;
 
   constructor(settings: LongTermSettings) {
     const bins = settings.size / 2;
@@ -67,7 +68,8 @@ export class LongTermSpectrum {
     const points = this.#pool(power);
     const maximum = this.#maximum;
     for (let p = 0; p < points.length; p++) if (points[p]! > maximum[p]!) maximum[p] = points[p]!;
-    this.#quantiles.push(points);
+    // Frames overlap by half: every other one holds all samples once.
+    if (this.#frames++ % 2 === 0) this.#quantiles.push(points);
     let energy = 0;
     for (let k = this.#firstActivityBin; k < power.length; k++) energy += power[k]!;
     this.#classes.push(energy, points);

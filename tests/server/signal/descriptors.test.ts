@@ -3,7 +3,6 @@ import {
   directDescriptors,
   emptyDescriptors,
   meydaDescriptors,
-  zeroCrossingRateHz,
   type DescriptorEngine,
 } from '../../../server/signal/descriptors.ts';
 import { FrameSpectrum } from '../../../server/signal/frame-spectrum.ts';
@@ -70,20 +69,5 @@ describe('both engines', () => {
     expect(direct.spreadHz / meyda.spreadHz).toBeCloseTo(1, 10);
     expect(direct.flatness / meyda.flatness).toBeCloseTo(1, 10);
     expect(direct.rolloff99AmplitudeHz).toBeCloseTo(meyda.rolloff99AmplitudeHz, 6);
-  });
-});
-
-describe('the zero-crossing rate', () => {
-  it('is twice the frequency of a sine, also on an offset', () => {
-    const samples = sine(48_000, 1000, 48_000, 0.1, 0.5).map((x) => x + 0.4);
-    const rate = zeroCrossingRateHz(samples, { from: 0, to: 48_000, mean: 0.4, sampleRateHz: 48_000 });
-    expect(Math.abs(rate - 2000)).toBeLessThanOrEqual(1);
-  });
-
-  it('agrees with numpy on the reference frame', () => {
-    const samples = makeReferenceSignal(2048);
-    const mean = samples.reduce((sum, x) => sum + x, 0) / 2048;
-    const rate = zeroCrossingRateHz(samples, { from: 0, to: 2048, mean, sampleRateHz: REFERENCE_RATE_HZ });
-    expect(rate).toBeCloseTo(spectra.firstFrame.zeroCrossingRateHz, 6);
   });
 });

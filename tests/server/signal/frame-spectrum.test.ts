@@ -4,7 +4,7 @@ import { realFft } from '../../../server/signal/fft.ts';
 import { FrameSpectrum, meanSquareOfBins } from '../../../server/signal/frame-spectrum.ts';
 import { hannWindow } from '../../../server/signal/hann.ts';
 import { sine } from '../../support/wav/signals.ts';
-import { makeReferenceSignal, spectra } from '../../reference/spectra-reference.ts';
+import { makeReferenceSignal, REFERENCE_RATE_HZ, spectra } from '../../reference/spectra-reference.ts';
 
 function powerOf(samples: Float32Array): Float32Array {
   const frame = new FrameSpectrum(samples.length);
@@ -99,10 +99,33 @@ describe('a frame spectrum', () => {
     const frame = new FrameSpectrum(2048);
     frame.analyse(makeReferenceSignal(2048), 0, 2048);
     expect(frame.meanSquare).toBeCloseTo(firstFrame.meanSquare, 9);
+    expect((frame.crossings * REFERENCE_RATE_HZ) / 2048).toBeCloseTo(firstFrame.zeroCrossingRateHz, 6);
     for (const [bin, expected] of Object.entries(firstFrame.powerAtBins)) {
       // Relative to the frame's whole power: its weakest lines are rounding noise of the strongest.
       const error = Math.abs(frame.power[Number(bin)]! - expected);
       expect(error).toBeLessThan(1e-9 * firstFrame.totalPower + 1e-5 * expected);
     }
+  });
+
+  it('counts the crossings of a sine on an offset, twice its frequency', () => {
+    const samples = sine(4096, 100, 4096, 0.1, 0.5).map((x) => x + 0.4);
+    const frame = new FrameSpectrum(4096);
+    frame.analyse(samples, 0, 4096);
+    expect(Math.abs(frame.crossings - 200)).toBeLessThanOrEqual(1);
+    expect(frame.peak).toBeCloseTo(0.5, 4);
+  });
+
+  it('gives the same lines when only some are asked for', () => {
+    const samples = makeReferenceSignal(256);
+    const whole = new FrameSpectrum(256);
+    const part = new FrameSpectrum(256);
+    whole.analyse(samples, 0, 256);
+    part.analyseBins(samples, 0, 256, { first: 27, end: 128 });
+    // Apart by the rounding of float32, relative to the strongest line of the frame.
+    const strongest = Math.max(...whole.power);
+    for (let k = 27; k < 128; k++) {
+      expect(Math.abs(part.power[k]! - whole.power[k]!)).toBeLessThan(1e-9 * strongest);
+    }
+    expect(part.power[26]).toBe(0);
   });
 });

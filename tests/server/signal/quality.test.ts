@@ -111,6 +111,19 @@ describe('drop-outs', () => {
     },
   );
 
+  it('are followed from one block into the next, and through whole blocks', () => {
+    const cut = noise.slice();
+    cut.fill(0, 990, 1040);
+    cut.fill(0, 4980, 5000);
+    cut.fill(0.01, 9952, 10_000);
+    cut.fill(0.02, 20_500, 23_500);
+    expect(dropoutsOf(cut, 1000).spans).toEqual([
+      { startSample: 990, endSample: 1040 },
+      { startSample: 9952, endSample: 10_000 },
+      { startSample: 20_500, endSample: 23_500 },
+    ]);
+  });
+
   it('are not silence at either end, nor what a signal fades into, nor clipping', () => {
     const fading = noise.map((x, n) =>
       n < 24_000 ? Math.round(x * Math.exp(-n / 1500) * 32768) / 32768 : x,

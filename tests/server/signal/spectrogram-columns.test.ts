@@ -62,18 +62,20 @@ describe('a column', () => {
 
 describe('the levels above', () => {
   it('keep a click of one column at every level, at its place', () => {
-    const [, ultrasonic] = layoutsOf(192_000, 128 * 5000);
-    const seen: number[][] = Array.from({ length: ultrasonic!.levels }, () => []);
-    const pyramid = new ColumnPyramid(ultrasonic!, (level, codes) => seen[level]!.push(codes[50]!));
-    const column = new Uint8Array(ultrasonic!.bins);
-    for (let index = 0; index < ultrasonic!.columns; index++) {
-      column.fill(index === 3333 ? 200 : 20);
-      pyramid.push(column);
+    const [, picture] = planPictures(planFrames(192_000, 128 * 5000));
+    const { layout } = picture!;
+    const seen: number[][] = Array.from({ length: layout.levels }, () => []);
+    const pyramid = new ColumnPyramid(picture!, (level, codes) => seen[level]!.push(codes[50]!));
+    const power = new Float32Array(128);
+    for (let index = 0; index < layout.columns; index++) {
+      power.fill(index === 3333 ? 1e-2 : 1e-11);
+      pyramid.push(new Int32Array(power.buffer));
     }
     pyramid.finish();
-    for (let level = 1; level < ultrasonic!.levels; level++) {
-      expect(seen[level]).toHaveLength(columnsAtLevel(ultrasonic!.columns, level));
+    for (let level = 1; level < layout.levels; level++) {
+      expect(seen[level]).toHaveLength(columnsAtLevel(layout.columns, level));
       expect(seen[level]!.indexOf(200)).toBe(Math.floor(3333 / 4 ** level));
+      expect(Math.min(...seen[level]!)).toBe(20);
     }
   });
 });
