@@ -1,7 +1,8 @@
 import type { Deps } from './deps.ts';
+import { recordingsJobs } from './features/recordings/recordings.jobs.ts';
 import type { JobHandler } from './jobs/registry.ts';
 
 /** Every kind of job; a kind that is not here stays in the queue. */
-export function allJobs(_deps: Deps): JobHandler[] {
-  return [];
+export function allJobs(deps: Deps): JobHandler[] {
+  return [...recordingsJobs(deps)];
 }

@@ -4,7 +4,12 @@ import { auditRoutes } from './features/audit/audit.routes.ts';
 import { healthRoutes } from './features/health/health.routes.ts';
 import { labsRoutes } from './features/labs/labs.routes.ts';
 import { peopleRoutes } from './features/people/people.routes.ts';
+import { recordingViewsRoutes } from './features/recordings/recording-views.routes.ts';
+import { recordingsRoutes } from './features/recordings/recordings.routes.ts';
+import { runsRoutes } from './features/runs/runs.routes.ts';
+import { sensorsRoutes } from './features/sensors/sensors.routes.ts';
 import { sessionsRoutes } from './features/sessions/sessions.routes.ts';
+import { uploadsRoutes } from './features/uploads/uploads.routes.ts';
 import type { Route } from './http/define-route.ts';
 
 /** Every route of the service: mounted, described, and looked up in the access matrix from this one list. */
@@ -16,5 +21,10 @@ export function allRoutes(deps: Deps): Route[] {
     ...auditRoutes(deps),
     ...activityRoutes(deps),
     ...healthRoutes(deps),
+    ...runsRoutes(deps),
+    ...sensorsRoutes(deps),
+    ...uploadsRoutes(deps),
+    ...recordingsRoutes(deps),
+    ...recordingViewsRoutes(deps),
   ];
 }

@@ -14,8 +14,9 @@ import { tokenLifeMs } from './features/sessions/session-token.ts';
 import { createTokensService, type TokensService } from './features/sessions/tokens.service.ts';
 import type { Ground } from './ground.ts';
 import { createSessionCookie, type SessionCookie } from './http/session-cookie.ts';
+import { createRecordingServices, type RecordingServices } from './recording-services.ts';
 
-export interface Services {
+export interface Services extends RecordingServices {
   audit: AuditService;
   labs: LabsService;
   actors: ActorsService;
@@ -61,6 +62,7 @@ function createServices(ground: Ground): Services {
   const acceptance = createAcceptanceService({ ...ground, audit, accounts });
   const setup = createSetupService({ ...ground, audit, accounts });
   const health = createHealthService(ground);
+  const ofRecordings = createRecordingServices(ground, audit);
   return {
     audit,
     labs,
@@ -74,5 +76,6 @@ function createServices(ground: Ground): Services {
     acceptance,
     setup,
     health,
+    ...ofRecordings,
   };
 }

@@ -136,6 +136,17 @@ export function selectRecording(db: Reader, id: string, visible: SQL): Recording
     .get();
 }
 
+/** For the server's own work, which nobody's rights narrow. */
+export function selectUnscopedRecording(db: Reader, id: string): RecordingView | undefined {
+  return selectRecording(db, id, sql`1`);
+}
+
+export function requireRecording(db: Reader, id: string): RecordingRow {
+  const row = selectRecordingRow(db, id);
+  if (row === undefined) throw new RangeError(`There is no recording ${id}.`);
+  return row;
+}
+
 export function selectRecordingRow(db: Reader, id: string, visible?: SQL): RecordingRow | undefined {
   return db
     .select()
@@ -214,4 +225,9 @@ export function updateRecording(db: Reader, id: string, values: Partial<Recordin
     .set({ ...values, revision: sql`${recordings.revision} + 1` })
     .where(eq(recordings.id, id))
     .run();
+}
+
+/** Progress is no change that a revision counts. */
+export function updateProgress(db: Reader, id: string, progress: number): void {
+  db.update(recordings).set({ progress }).where(eq(recordings.id, id)).run();
 }

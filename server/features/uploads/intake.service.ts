@@ -9,6 +9,7 @@ import type { Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
 import { ProblemError } from '../../http/problem.ts';
+import { trueFormat } from '../../measuring/measure-context.ts';
 import { withFileSource } from '../../store/file-source.ts';
 import { announceRecording } from '../recordings/recording-activity.ts';
 import type { NewFinding, RecordingsService } from '../recordings/recordings.service.ts';
@@ -101,21 +102,15 @@ async function readHeader(path: string): Promise<WavHeader> {
   }
 }
 
-const fastestRateHz = 20_000_000;
-
-/** A declared time expansion is applied here and nowhere else: from now on the rate is that of the sound itself. */
+/** The rate from here on is that of the sound itself. */
 function toTrueFormat(format: AudioFormat, timeExpansion: number): AudioFormat {
-  if (timeExpansion === 1) return format;
-  const sampleRateHz = Math.round(format.sampleRateHz * timeExpansion);
-  if (sampleRateHz > fastestRateHz) {
-    const rate = sampleRateHz.toLocaleString('en');
-    throw new ProblemError(
-      'file-refused',
-      `With the declared time expansion the sample rate would be ${rate} Hz, more than 20 MHz.`,
-    );
+  try {
+    return trueFormat(format, timeExpansion);
+  } catch (error) {
+    if (!(error instanceof RangeError)) throw error;
+    const detail = 'With the declared time expansion the sample rate would be higher than 20 MHz.';
+    throw new ProblemError('file-refused', detail, { cause: error });
   }
-  const warning = `The header says ${format.sampleRateHz.toLocaleString('en')} Hz; by the declared time expansion of ${timeExpansion} the sound was sampled at ${sampleRateHz.toLocaleString('en')} Hz.`;
-  return { ...format, sampleRateHz, warnings: [...format.warnings, warning] };
 }
 
 function requireAnnounced(announced: string | undefined, sha256: string): void {

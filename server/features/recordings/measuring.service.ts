@@ -1,0 +1,142 @@
+import { sharingAfterScreen } from '../../../shared/domain/recording-status.ts';
+import type { Tx } from '../../db/client.ts';
+import { write } from '../../db/transaction.ts';
+import type { Ground } from '../../ground.ts';
+import type { MeasureContext } from '../../measuring/measure-context.ts';
+import type { MeasureControls, MeasureInput, MeasureResult } from '../../measuring/measure-file.ts';
+import type { AuditService } from '../audit/audit.service.ts';
+import { storeResult } from './measurement-result.ts';
+import { deleteUnfinishedMeasurements } from './measurement.queries.ts';
+import { announceRecording } from './recording-activity.ts';
+import {
+  requireRecording,
+  selectFindings,
+  selectUnscopedRecording,
+  updateProgress,
+  updateRecording,
+  type RecordingRow,
+  type RecordingView,
+} from './recordings.queries.ts';
+import type { StoredAudioReader } from './stored-audio.ts';
+import type { ViewFolders } from './view-folders.ts';
+
+type Parts = Pick<Ground, 'db' | 'clock' | 'ids' | 'activity'> & {
+  audit: AuditService;
+  viewFolders: ViewFolders;
+  readStoredAudio: StoredAudioReader;
+  /** Computes in a thread of its own. */
+  measureFile: (input: MeasureInput, controls: MeasureControls) => Promise<MeasureResult>;
+};
+
+export interface MeasuringTask {
+  signal: AbortSignal;
+  onProgress: (fraction: number) => void;
+  /** Throws where the work belongs to a later claim. */
+  assertHeld: (tx: Tx) => void;
+}
+
+export type MeasuringService = ReturnType<typeof createMeasuringService>;
+
+const announcedEveryMs = 500;
+
+export function createMeasuringService(parts: Parts) {
+  const { db, clock, ids, activity, audit, viewFolders, readStoredAudio, measureFile } = parts;
+
+  /** Idempotent: what is measured stays as it is, and what an interrupted try left is removed first. */
+  async function measure(recordingId: string, task: MeasuringTask): Promise<void> {
+    const view = selectUnscopedRecording(db, recordingId);
+    if (view === undefined || view.recording.processing === 'measured') return;
+    write(db, (tx) => {
+      task.assertHeld(tx);
+      deleteUnfinishedMeasurements(tx, recordingId);
+      updateRecording(tx, recordingId, { processing: 'measuring', progress: 0, failure: null });
+    });
+    announceRecording(activity, { ...view.recording, processing: 'measuring', progress: 0 });
+    const measurementId = ids.next();
+    try {
+      await compute(view, measurementId, task);
+    } catch (error) {
+      await viewFolders.discard(recordingId, measurementId);
+      throw error;
+    }
+    finish(recordingId, task);
+  }
+
+  async function compute(view: RecordingView, measurementId: string, task: MeasuringTask): Promise<void> {
+    const { recording } = view;
+    const viewsDir = await viewFolders.makeTemporary(recording.id, measurementId);
+    const { filePath, header } = await readStoredAudio(recording);
+    const { format, dataOffset } = header;
+    const input = { filePath, header: { format, dataOffset }, context: contextOf(view), viewsDir };
+    const result = await measureFile(input, { signal: task.signal, onProgress: throttled(recording, task) });
+    await storeResult(parts, {
+      recordingId: recording.id,
+      measurementId,
+      result,
+      assertHeld: task.assertHeld,
+    });
+    await viewFolders.publish(recording.id, measurementId);
+  }
+
+  /** What has been computed becomes visible in one step. */
+  function finish(recordingId: string, task: MeasuringTask): void {
+    const now = clock.nowMs();
+    const measured = write(db, (tx) => {
+      task.assertHeld(tx);
+      const sharing = sharingAfterScreen(selectFindings(tx, recordingId));
+      const heldAtMs = sharing === 'held' ? now : null;
+      updateRecording(tx, recordingId, {
+        processing: 'measured',
+        progress: 1,
+        sharing,
+        heldAtMs,
+        updatedAtMs: now,
+      });
+      const row = requireRecording(tx, recordingId);
+      const subject = { subjectType: 'Recording', subjectId: recordingId, labId: row.labId };
+      audit.record(tx, { personId: null, action: 'recording.measured', ...subject, detail: { sharing } });
+      return row;
+    });
+    announceRecording(activity, measured);
+  }
+
+  /** After the last try: the reason is shown to the lab, and a button offers another. */
+  function giveUp(recordingId: string, reason: string): void {
+    const failed = write(db, (tx) => {
+      const failure = toFailure(reason);
+      updateRecording(tx, recordingId, {
+        processing: 'failed',
+        failure,
+        progress: 0,
+        updatedAtMs: clock.nowMs(),
+      });
+      return requireRecording(tx, recordingId);
+    });
+    announceRecording(activity, failed);
+  }
+
+  function throttled(recording: RecordingRow, task: MeasuringTask): (fraction: number) => void {
+    let lastAtMs = 0;
+    return (fraction) => {
+      if (clock.nowMs() - lastAtMs < announcedEveryMs) return;
+      lastAtMs = clock.nowMs();
+      task.onProgress(fraction);
+      updateProgress(db, recording.id, fraction);
+      announceRecording(activity, { ...recording, processing: 'measuring', progress: fraction });
+    };
+  }
+
+  return { measure, giveUp };
+}
+
+function contextOf({ sensor, setup, recording }: RecordingView): MeasureContext {
+  const { lowHz: sensorLowHz, highHz: sensorHighHz } = sensor;
+  const { fullScaleV, preampGainDb } = setup;
+  return { sensorLowHz, sensorHighHz, fullScaleV, preampGainDb, timeExpansion: recording.timeExpansion };
+}
+
+/** Messages of the system name its codes and paths; people get a sentence. */
+function toFailure(reason: string): string {
+  const isSystemText = /^[A-Z]{3,}\b.*:|\/|\\/.test(reason);
+  return isSystemText ? 'The server could not read or write the files it needs for measuring.' : reason;
+}

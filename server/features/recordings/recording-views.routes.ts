@@ -1,0 +1,117 @@
+import { pipeline } from 'node:stream/promises';
+import { idParamsSchema } from '../../../shared/contract/ids.ts';
+import {
+  channelQuerySchema,
+  listenQuerySchema,
+  peaksQuerySchema,
+  peaksSchema,
+  spectrumResponseSchema,
+  tileLayoutSchema,
+  tileParamsSchema,
+} from '../../../shared/contract/views.ts';
+import type { Deps } from '../../deps.ts';
+import { defineRoute, type Route } from '../../http/define-route.ts';
+import { sendBytes } from '../../http/send-bytes.ts';
+import { toDisposition } from '../../http/send-file.ts';
+import { framesCsv } from './frames-csv.ts';
+
+/** In the person's own browser only, and asked for again at each use: rights can end. */
+const cacheControl = 'private, no-cache';
+
+export function recordingViewsRoutes(deps: Deps): Route[] {
+  const { recordingViews } = deps.services;
+  return [
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings/:id/peaks',
+      summary: 'Least and greatest sample of equal steps of a channel.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      query: peaksQuerySchema,
+      response: peaksSchema,
+      handler: ({ actor, params, query }) => recordingViews.peaks(actor, params.id, query),
+    }),
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings/:id/spectrogram/layout',
+      summary: 'Bands, levels and tiles of the pictures of a recording.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      response: tileLayoutSchema,
+      handler: ({ actor, params }) => recordingViews.layout(actor, params.id),
+    }),
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings/:id/spectrum',
+      summary: 'Power density of quiet and of active time of a channel.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      query: channelQuerySchema,
+      response: spectrumResponseSchema,
+      handler: ({ actor, params, query }) => recordingViews.spectrum(actor, params.id, query.channel),
+    }),
+    tileRoute(deps),
+    framesRoute(deps),
+    listenRoute(deps),
+  ];
+}
+
+function tileRoute({ services }: Deps): Route {
+  const { recordingViews } = services;
+  return defineRoute({
+    method: 'get',
+    path: '/api/recordings/:id/spectrogram/:band/:level/:tile',
+    summary: 'One tile of a picture, binary.',
+    access: 'signed-in',
+    produces: 'application/octet-stream',
+    params: tileParamsSchema.extend(idParamsSchema.shape),
+    query: channelQuerySchema,
+    handler: async ({ actor, params, query, req, res }) => {
+      const { id, ...place } = params;
+      const access = recordingViews.requireMeasured(actor, id);
+      const bytes = await recordingViews.tile(access, { ...place, ...query });
+      const etag = [access.measurementId, place.band, place.level, place.tile, query.channel].join('-');
+      sendBytes(req, res, { bytes, etag, contentType: 'application/octet-stream', cacheControl });
+    },
+  });
+}
+
+function framesRoute({ services }: Deps): Route {
+  const { recordingViews } = services;
+  return defineRoute({
+    method: 'get',
+    path: '/api/recordings/:id/frames.csv',
+    summary: 'Descriptors of every frame of a channel, as a table.',
+    access: 'signed-in',
+    produces: 'text/csv',
+    params: idParamsSchema,
+    query: channelQuerySchema,
+    handler: async ({ actor, params, query, res }) => {
+      const access = recordingViews.requireMeasured(actor, params.id);
+      const rows = recordingViews.frames(access, query.channel);
+      res.setHeader('Content-Type', 'text/csv; charset=utf-8');
+      res.setHeader('Cache-Control', cacheControl);
+      res.setHeader(
+        'Content-Disposition',
+        toDisposition(`${access.row.fileName}.channel-${query.channel}.frames.csv`),
+      );
+      await pipeline(framesCsv(rows), res);
+    },
+  });
+}
+
+function listenRoute({ services }: Deps): Route {
+  return defineRoute({
+    method: 'get',
+    path: '/api/recordings/:id/listen',
+    summary: 'A stretch of a channel for the ear, slowed where asked, as 16-bit WAV at 48 kHz; takes ranges.',
+    access: 'signed-in',
+    produces: 'audio/wav',
+    params: idParamsSchema,
+    query: listenQuerySchema,
+    handler: async ({ actor, params, query, req, res }) => {
+      const rendition = await services.listening.listen(actor, params.id, query);
+      sendBytes(req, res, { ...rendition, contentType: 'audio/wav', cacheControl });
+    },
+  });
+}

@@ -1,0 +1,96 @@
+import type { Peaks, PeaksQuery, PictureBand, TileLayout } from '../../../shared/contract/views.ts';
+import type { Spectrum } from '../../../shared/contract/measurement.ts';
+import type { Actor } from '../../../shared/policy/actor.ts';
+import type { Ground } from '../../ground.ts';
+import { conflict, notFound } from '../../http/problem.ts';
+import { tileLayout } from '../../measuring/view-layout.ts';
+import {
+  NoSuchViewError,
+  frameRows,
+  readPeaks,
+  readSpectrum,
+  readTile,
+} from '../../measuring/view-reader.ts';
+import type { RecordingAccess, RecordingsService } from './recordings.service.ts';
+import { selectNewestMeasurementId, type RecordingRow } from './recordings.queries.ts';
+import type { StoredAudioReader } from './stored-audio.ts';
+import type { ViewFolders } from './view-folders.ts';
+
+type Parts = Pick<Ground, 'db'> & {
+  recordings: RecordingsService;
+  viewFolders: ViewFolders;
+  readStoredAudio: StoredAudioReader;
+};
+
+export interface MeasuredAccess extends RecordingAccess {
+  /** Names the version of every view: they are kept under it. */
+  measurementId: string;
+}
+
+interface TilePlace {
+  channel: number;
+  band: PictureBand;
+  level: number;
+  tile: number;
+}
+
+export type RecordingViewsService = ReturnType<typeof createRecordingViewsService>;
+
+/** What can be looked at once a recording is measured. */
+export function createRecordingViewsService({ db, recordings, viewFolders, readStoredAudio }: Parts) {
+  function requireMeasured(actor: Actor, id: string): MeasuredAccess {
+    const access = recordings.requireVisible(actor, id);
+    const measurementId = selectNewestMeasurementId(db, id);
+    if (access.row.processing !== 'measured' || measurementId === undefined) {
+      throw conflict('This recording is not measured yet; its views come with the measurement.');
+    }
+    return { ...access, measurementId };
+  }
+
+  async function sourceOf({ row, measurementId }: MeasuredAccess) {
+    const { filePath, header } = await readStoredAudio(row);
+    return { filePath, header, viewsDir: viewFolders.ofMeasurement(row.id, measurementId) };
+  }
+
+  async function peaks(actor: Actor, id: string, query: PeaksQuery): Promise<Peaks> {
+    const access = requireMeasured(actor, id);
+    const endSample = query.endSample ?? access.row.format.frames;
+    const source = await sourceOf(access);
+    return knownView(() => readPeaks({ ...source, ...query, endSample }));
+  }
+
+  function layout(actor: Actor, id: string): TileLayout {
+    return tileLayout(requireMeasured(actor, id).row.format);
+  }
+
+  async function tile(access: MeasuredAccess, place: TilePlace): Promise<Uint8Array> {
+    const source = await sourceOf(access);
+    return knownView(() => readTile({ ...source, ...place }));
+  }
+
+  function spectrum(actor: Actor, id: string, channel: number): Promise<Spectrum> {
+    const { row, measurementId } = requireMeasured(actor, id);
+    return knownView(() => readSpectrum(viewFolders.ofMeasurement(row.id, measurementId), channel));
+  }
+
+  /** Every long frame of one channel, a row at a time. */
+  function frames(access: MeasuredAccess, channel: number): AsyncGenerator<(number | null)[]> {
+    requireChannel(access.row, channel);
+    return frameRows(viewFolders.ofMeasurement(access.row.id, access.measurementId), channel);
+  }
+
+  return { requireMeasured, peaks, layout, tile, spectrum, frames };
+}
+
+export function requireChannel({ format }: Pick<RecordingRow, 'format'>, channel: number): void {
+  if (channel >= format.channels) throw notFound(`Channel ${channel}`);
+}
+
+async function knownView<Result>(read: () => Promise<Result>): Promise<Result> {
+  try {
+    return await read();
+  } catch (error) {
+    if (error instanceof NoSuchViewError) throw notFound('This view');
+    throw error;
+  }
+}

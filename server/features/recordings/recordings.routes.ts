@@ -1,0 +1,70 @@
+import { idParamsSchema } from '../../../shared/contract/ids.ts';
+import {
+  candidatesPageSchema,
+  listCandidatesQuerySchema,
+  listRecordingsQuerySchema,
+  recordingSchema,
+  recordingsPageSchema,
+} from '../../../shared/contract/recordings.ts';
+import type { Deps } from '../../deps.ts';
+import { defineRoute, type Route } from '../../http/define-route.ts';
+import { withRevision } from '../../http/revision.ts';
+import { sendFile } from '../../http/send-file.ts';
+
+export function recordingsRoutes({ services, store }: Deps): Route[] {
+  const { recordings, candidates } = services;
+  return [
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings',
+      summary: 'Recordings that the person may see, filtered, newest first.',
+      access: 'signed-in',
+      query: listRecordingsQuerySchema,
+      response: recordingsPageSchema,
+      handler: ({ actor, query }) => recordings.list(actor, query),
+    }),
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings/:id',
+      summary: 'One recording with its format, measurement and states.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      response: recordingSchema,
+      handler: ({ actor, params, res }) => withRevision(res, recordings.get(actor, params.id)),
+    }),
+    defineRoute({
+      method: 'post',
+      path: '/api/recordings/:id/measure',
+      summary: 'Tries a measurement again that failed.',
+      access: 'signed-in',
+      status: 202,
+      params: idParamsSchema,
+      response: recordingSchema,
+      handler: ({ actor, params }) => recordings.measureAgain(actor, params.id),
+    }),
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings/:id/audio',
+      summary: 'The bytes as they were brought in; takes ranges.',
+      access: 'signed-in',
+      produces: 'audio/wav',
+      params: idParamsSchema,
+      handler: ({ actor, params, res }) => {
+        const { row } = recordings.requireVisible(actor, params.id);
+        const kept = { etag: row.sha256, cacheControl: 'private, no-cache' };
+        const file = { path: store.pathOf(row.sha256), contentType: 'audio/wav', downloadName: row.fileName };
+        return sendFile(res, { ...file, ...kept });
+      },
+    }),
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings/:id/candidates',
+      summary: 'What the detector proposes, with burst parameters; not for whoever works blind.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      query: listCandidatesQuerySchema,
+      response: candidatesPageSchema,
+      handler: ({ actor, params, query }) => candidates.list(actor, params.id, query),
+    }),
+  ];
+}
