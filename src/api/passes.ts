@@ -1,5 +1,5 @@
 import { passesPageSchema, passSchema } from '@shared/contract/passes.ts';
-import type { Pass, PassState } from '@shared/contract/passes.ts';
+import type { CreatePass, Pass, PassState } from '@shared/contract/passes.ts';
 import { apiGet, apiSend } from '@/api/client.ts';
 
 export interface PassFilters {
@@ -17,4 +17,14 @@ export async function listPasses(filters: PassFilters, signal?: AbortSignal) {
 /** Ends the own pass; its marks cannot be changed afterwards. */
 export async function finishPass(id: string, remark: string): Promise<Pass> {
   return apiSend('POST', `/api/passes/${id}/finish`, passSchema, { body: { remark } });
+}
+
+/** Gives a measured recording to a labeler. */
+export async function createPass(input: CreatePass): Promise<Pass> {
+  return apiSend('POST', '/api/passes', passSchema, { body: input });
+}
+
+/** Takes an open pass back. */
+export async function cancelPass(id: string): Promise<Pass> {
+  return apiSend('POST', `/api/passes/${id}/cancel`, passSchema);
 }
