@@ -17,6 +17,9 @@ const PROMINENT_IN_FEW_FRAMES_DB = 13;
 const FEW_FRAMES = 4;
 /** A single harmonic is a mains line only when it stands out this far. */
 const ALONE_DB = 20;
+/** Fainter lines are rounding: of the samples, or of the transform under its strongest line. */
+const LEAST_LEVEL_DB = -115;
+const LEAST_UNDER_STRONGEST_DB = -90;
 const LINE_BINS = 2;
 const SURROUNDING_BINS = 24;
 
@@ -33,6 +36,7 @@ export class MainsTracker {
   readonly #spectrum = new FrameSpectrum(FRAME_SIZE);
   readonly #frame = new Float32Array(FRAME_SIZE);
   readonly #power = new Float64Array(FRAME_SIZE / 2);
+  #leastPower = 0;
   #filled = 0;
   #frames = 0;
   #sum = 0;
@@ -59,6 +63,11 @@ export class MainsTracker {
   /** Empty for recordings under a second, and where nothing stands out. */
   finish(): MainsLine[] {
     if (this.#frames === 0) return [];
+    this.#leastPower = Math.max(
+      this.#frames * 10 ** (LEAST_LEVEL_DB / 10),
+      this.#power.reduce((highest, power) => Math.max(highest, power), 0) *
+        10 ** (LEAST_UNDER_STRONGEST_DB / 10),
+    );
     return BASES_HZ.flatMap((baseHz) => this.#linesOf(baseHz)).sort((a, b) => a.frequencyHz - b.frequencyHz);
   }
 
@@ -89,6 +98,7 @@ export class MainsTracker {
     if (bin - LINE_BINS < 1 || bin + SURROUNDING_BINS >= this.#power.length) return undefined;
     let power = 0;
     for (let k = bin - LINE_BINS; k <= bin + LINE_BINS; k++) power = Math.max(power, this.#power[k]!);
+    if (power < this.#leastPower) return undefined;
     const prominenceDb = 10 * Math.log10(power / this.#surroundings(bin));
     const needed = this.#frames < FEW_FRAMES ? PROMINENT_IN_FEW_FRAMES_DB : PROMINENT_DB;
     if (!(prominenceDb >= needed)) return undefined;

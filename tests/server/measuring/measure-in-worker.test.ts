@@ -1,0 +1,41 @@
+import { afterAll, describe, expect, it } from 'vitest';
+import { createWorkerPool } from '../../../server/jobs/worker-pool.ts';
+import { measureInWorker, measureWorkerModule } from '../../../server/measuring/measure-in-worker.ts';
+import { measureFile, type MeasureResult } from '../../../server/measuring/measure-file.ts';
+import type { MeasureTask } from '../../../server/measuring/measure.worker.ts';
+import { whiteNoiseSignal } from '../../support/wav/signals.ts';
+import { writeWav } from '../../support/wav/write-wav.ts';
+import { plainContext, storedWav } from './measured.ts';
+
+describe('measuring in a worker thread', () => {
+  const pool = createWorkerPool<MeasureTask, MeasureResult>({ module: measureWorkerModule, workers: 1 });
+  afterAll(() => pool.close());
+  const wav = writeWav({ sampleRateHz: 192_000, channels: [whiteNoiseSignal(2_000_000, 0.1, 1)] });
+
+  it('gives what measuring here gives, and reports progress on the way', async () => {
+    const source = await storedWav(wav);
+    const seen: number[] = [];
+    const input = { ...source, context: plainContext };
+    const there = await measureInWorker(pool, input, { onProgress: (fraction) => seen.push(fraction) });
+    const here = await measureFile({ ...input, viewsDir: `${source.viewsDir}-here` });
+    expect(there.summary).toEqual(here.summary);
+    expect(seen.at(-1)).toBe(1);
+  });
+
+  it('ends when it is aborted', async () => {
+    const source = await storedWav(wav);
+    const controller = new AbortController();
+    const measuring = measureInWorker(
+      pool,
+      { ...source, context: plainContext },
+      { signal: controller.signal, onProgress: () => controller.abort() },
+    );
+    await expect(measuring).rejects.toThrow(/abort/i);
+  });
+
+  it('passes on the sentence of a failure', async () => {
+    const source = await storedWav(wav);
+    const input = { ...source, filePath: `${source.filePath}-gone`, context: plainContext };
+    await expect(measureInWorker(pool, input)).rejects.toThrow(/ENOENT/);
+  });
+});
