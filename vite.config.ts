@@ -40,6 +40,12 @@ export default defineConfig({
               priority: 2,
             },
             {
+              // One chunk, so that the parser is told not to make code from text before the first contract is made.
+              name: 'parser',
+              test: /node_modules[\\/]zod[\\/]|no-code-from-text/,
+              priority: 3,
+            },
+            {
               name: 'component-base',
               test: /node_modules[\\/](ant-design-vue[\\/]es[\\/](_util|theme|style|config-provider|app|button)|@ant-design[\\/](colors|icons-svg)|@ctrl)[\\/]/,
               priority: 1,

@@ -1,3 +1,4 @@
+import '@/api/no-code-from-text.ts';
 import { giveStylesTheNonce } from '@/theme/style-nonce.ts';
 import { startApp } from '@/start-app.ts';
 import '@/theme/fonts.css';
