@@ -53,10 +53,16 @@ export function toProblemError(error: unknown): ProblemError {
   );
 }
 
-/** Express and its parts mark their errors with a status and a type, the system with a code. */
-function toFacts(error: unknown): { status?: number; type?: string; code?: string } {
+interface ErrorFacts {
+  status?: number;
+  type?: string;
+  code?: string;
+}
+
+/** Express and its parts mark their errors with a status and a type, the system with a code, Drizzle wraps its own. */
+function toFacts(error: unknown): ErrorFacts {
   if (!(error instanceof Error)) return {};
-  const facts: { status?: number; type?: string; code?: string } = {};
+  const facts: ErrorFacts = error.cause === undefined ? {} : toFacts(error.cause);
   if ('status' in error && typeof error.status === 'number') facts.status = error.status;
   if ('type' in error && typeof error.type === 'string') facts.type = error.type;
   if ('code' in error && typeof error.code === 'string') facts.code = error.code;
