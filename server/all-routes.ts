@@ -10,6 +10,13 @@ import { runsRoutes } from './features/runs/runs.routes.ts';
 import { sensorsRoutes } from './features/sensors/sensors.routes.ts';
 import { sessionsRoutes } from './features/sessions/sessions.routes.ts';
 import { uploadsRoutes } from './features/uploads/uploads.routes.ts';
+import { schemesRoutes } from './features/schemes/schemes.routes.ts';
+import { passesRoutes } from './features/passes/passes.routes.ts';
+import { eventsRoutes } from './features/events/events.routes.ts';
+import { reviewsRoutes } from './features/reviews/reviews.routes.ts';
+import { collectionsRoutes } from './features/collections/collections.routes.ts';
+import { releasesRoutes } from './features/releases/releases.routes.ts';
+import { homeRoutes } from './features/home/home.routes.ts';
 import type { Route } from './http/define-route.ts';
 
 /** Every route of the service: mounted, described, and looked up in the access matrix from this one list. */
@@ -26,5 +33,12 @@ export function allRoutes(deps: Deps): Route[] {
     ...uploadsRoutes(deps),
     ...recordingsRoutes(deps),
     ...recordingViewsRoutes(deps),
+    ...schemesRoutes(deps),
+    ...passesRoutes(deps),
+    ...eventsRoutes(deps),
+    ...reviewsRoutes(deps),
+    ...collectionsRoutes(deps),
+    ...releasesRoutes(deps),
+    ...homeRoutes(deps),
   ];
 }

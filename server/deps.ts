@@ -14,9 +14,10 @@ import { tokenLifeMs } from './features/sessions/session-token.ts';
 import { createTokensService, type TokensService } from './features/sessions/tokens.service.ts';
 import type { Ground } from './ground.ts';
 import { createSessionCookie, type SessionCookie } from './http/session-cookie.ts';
+import { createMarkingServices, type MarkingServices } from './marking-services.ts';
 import { createRecordingServices, type RecordingServices } from './recording-services.ts';
 
-export interface Services extends RecordingServices {
+export interface Services extends RecordingServices, MarkingServices {
   audit: AuditService;
   labs: LabsService;
   actors: ActorsService;
@@ -77,5 +78,6 @@ function createServices(ground: Ground): Services {
     setup,
     health,
     ...ofRecordings,
+    ...createMarkingServices(ground, audit, ofRecordings),
   };
 }

@@ -129,7 +129,7 @@ export function createMeasuringService(parts: Parts) {
   return { measure, giveUp };
 }
 
-function contextOf({ sensor, setup, recording }: RecordingView): MeasureContext {
+export function contextOf({ sensor, setup, recording }: RecordingView): MeasureContext {
   const { lowHz: sensorLowHz, highHz: sensorHighHz } = sensor;
   const { fullScaleV, preampGainDb } = setup;
   return { sensorLowHz, sensorHighHz, fullScaleV, preampGainDb, timeExpansion: recording.timeExpansion };

@@ -20,11 +20,11 @@ export type MeasurementRow = typeof measurements.$inferSelect;
 const newestMeasurement = alias(measurements, 'newest_measurement');
 const newestDetectorRun = alias(detectorRuns, 'newest_detector_run');
 const isNewestMeasurement = sql`${measurements.id} = (
-  select ${newestMeasurement.id} from ${newestMeasurement} where ${newestMeasurement.recordingId} = ${recordings.id}
+  select ${newestMeasurement.id} from ${measurements} as ${newestMeasurement} where ${newestMeasurement.recordingId} = ${recordings.id}
   order by ${newestMeasurement.createdAtMs} desc, ${newestMeasurement.id} desc limit 1
 ) and ${recordings.processing} = 'measured'`;
 const isNewestDetectorRun = sql`${detectorRuns.id} = (
-  select ${newestDetectorRun.id} from ${newestDetectorRun} where ${newestDetectorRun.measurementId} = ${measurements.id}
+  select ${newestDetectorRun.id} from ${detectorRuns} as ${newestDetectorRun} where ${newestDetectorRun.measurementId} = ${measurements.id}
   order by ${newestDetectorRun.createdAtMs} desc, ${newestDetectorRun.id} desc limit 1
 )`;
 const ultrasonicVerdict = sql<
@@ -54,10 +54,13 @@ export interface RecordingView extends RecordingListView {
   uploadedByName: string | null;
 }
 
-export type RecordingFilters = Omit<ListRecordingsQuery, 'cursor' | 'limit'>;
+export type RecordingFilters = Omit<ListRecordingsQuery, 'cursor' | 'limit'> & {
+  ids?: readonly string[];
+  material?: string | undefined;
+};
 
 function matching(filters: RecordingFilters, visible: SQL): SQL | undefined {
-  const { q, runId, labId, processing, sharing } = filters;
+  const { ids, q, runId, labId, material, processing, sharing } = filters;
   return and(
     visible,
     q
@@ -65,6 +68,8 @@ function matching(filters: RecordingFilters, visible: SQL): SQL | undefined {
           ...[recordings.fileName, runs.title, runs.material, labs.name].map((text) => containsText(text, q)),
         )
       : undefined,
+    ids ? inArray(recordings.id, [...ids]) : undefined,
+    material ? containsText(runs.material, material) : undefined,
     runId ? eq(recordings.runId, runId) : undefined,
     labId ? eq(recordings.labId, labId) : undefined,
     processing ? eq(recordings.processing, processing) : undefined,

@@ -1,0 +1,39 @@
+import type { AddItems } from '../../../shared/contract/collections.ts';
+import type { Licence } from '../../../shared/contract/licence.ts';
+import type { RecordingListItem } from '../../../shared/contract/recordings.ts';
+import type { Actor } from '../../../shared/policy/actor.ts';
+import { visibleRecordings } from '../../authorize/visible-recordings.ts';
+import type { Ground } from '../../ground.ts';
+import { toListItem } from './recordings.map.ts';
+import { selectRecordings, type RecordingFilters } from './recordings.queries.ts';
+
+const mostAtOnce = 5000;
+
+export type CollectingService = ReturnType<typeof createCollectingService>;
+
+/** Recordings that may go into a collection: shared ones that this person may see. */
+export function createCollectingService({ db }: Pick<Ground, 'db'>) {
+  function select(actor: Actor, filters: RecordingFilters) {
+    const shared = { ...filters, sharing: 'shared' as const };
+    return selectRecordings(db, {
+      filters: shared,
+      visible: visibleRecordings(actor),
+      after: null,
+      limit: mostAtOnce,
+    });
+  }
+
+  function sharedByIds(actor: Actor, ids: readonly string[]): (RecordingListItem & { licence: Licence })[] {
+    if (ids.length === 0) return [];
+    return select(actor, { ids }).map((view) => ({
+      ...toListItem(view, false),
+      licence: view.recording.licence,
+    }));
+  }
+
+  function sharedIdsByFilter(actor: Actor, filter: NonNullable<AddItems['filter']>): string[] {
+    return select(actor, { ...filter, processing: 'measured' }).map((view) => view.recording.id);
+  }
+
+  return { sharedByIds, sharedIdsByFilter };
+}
