@@ -1,4 +1,4 @@
-import { readFile } from 'node:fs/promises';
+import { mkdir, readFile } from 'node:fs/promises';
 import type { MessagePort } from 'node:worker_threads';
 import type { ReleaseSnapshot } from '../../shared/contract/release-snapshot.ts';
 import { buildArchive, type BuiltArchive } from './build-archive.ts';
@@ -20,6 +20,7 @@ export default async function archiveTask(task: ArchiveTask): Promise<BuiltArchi
   const { snapshotPath, audioPaths, outDir, port } = task;
   let lastAtMs = 0;
   try {
+    await mkdir(outDir, { recursive: true, mode: 0o700 });
     return await buildArchive({
       snapshot: JSON.parse(await readFile(snapshotPath, 'utf8')) as ReleaseSnapshot,
       openAudio: (sha256) => audioPaths[sha256] ?? missing(sha256),

@@ -61,7 +61,7 @@ export function buildReleaseJob({ db, clock, store, activity, config, audit, poo
 
   function onParked({ releaseId }: { releaseId: string }, reason: string): void {
     write(db, (tx) => {
-      updateRelease(tx, releaseId, { state: 'failed', failure: reason });
+      updateRelease(tx, releaseId, { state: 'failed', failure: toFailure(reason) });
       audit.record(tx, entryOf(releaseId, 'release.failed', { reason }));
     });
     tell(releaseId, 'failed', 0);
@@ -69,6 +69,14 @@ export function buildReleaseJob({ db, clock, store, activity, config, audit, poo
 
   const payload = z.object({ releaseId: idSchema });
   return defineJob({ kind: 'build-release', lane: 'compute', payload, run, onParked });
+}
+
+/** Messages of the operating system name paths; those stay in the log. */
+function toFailure(reason: string): string {
+  const isOfSystem = /^E[A-Z0-9]{2,}: /.test(reason);
+  return isOfSystem
+    ? 'The server could not read or write a file while it built the archive; its log tells more.'
+    : reason;
 }
 
 function entryOf(subjectId: string, action: string, detail: Record<string, unknown>) {
