@@ -21,6 +21,9 @@ export function wordsOfError(error: unknown): ErrorWords {
       requestId: '',
     };
   }
-  const { title, detail, status, requestId } = parsed.data;
+  const { title, detail, status, requestId, code } = parsed.data;
+  if (code === 'sign-in-required') {
+    return { title: 'Your session had ended', detail: 'Sign in again, then repeat this.', requestId: '' };
+  }
   return { title, detail, requestId: status >= 500 ? requestId : '' };
 }

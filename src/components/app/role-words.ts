@@ -16,12 +16,15 @@ interface RoleHolder {
   memberships: readonly { labName: string; role: LabRole }[];
 }
 
+const ROLES_IN_A_LINE = 2;
+
 /** The roles by name alone, each once: "contributor, reviewer". Everybody is at least a reader. */
 export function rolesInShort(person: RoleHolder): string {
   const names = new Set<string>([
     ...person.roles.map((role) => serviceRoleWords[role]),
     ...person.memberships.map((membership) => labRoleWords[membership.role]),
   ]);
+  if (names.size > ROLES_IN_A_LINE) return `${names.size} roles`;
   return names.size > 0 ? [...names].join(', ') : 'reader';
 }
 

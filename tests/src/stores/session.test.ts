@@ -1,0 +1,90 @@
+import { packRules } from '@casl/ability/extra';
+import { createPinia, setActivePinia } from 'pinia';
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
+import { abilityFor } from '@shared/policy/ability.ts';
+import type { CurrentUser } from '@shared/contract/sessions.ts';
+import { apiGet } from '@/api/client.ts';
+import { useAbility } from '@/composables/useAbility.ts';
+import { useSessionStore } from '@/stores/session.ts';
+import { z } from 'zod';
+
+const ownLab = '0190a0b0-0000-7000-8000-000000000001';
+const otherLab = '0190a0b0-0000-7000-8000-000000000002';
+const id = '0190a0b0-0000-7000-8000-000000000003';
+
+function contributor(): CurrentUser {
+  const memberships = [{ labId: ownLab, labName: 'Northlight', role: 'contributor' as const }];
+  const { rules } = abilityFor({ id, name: 'Tomasz', roles: [], memberships });
+  const packed = JSON.parse(JSON.stringify(packRules(rules))) as unknown[][];
+  return { id, email: 't@northlight.example', name: 'Tomasz', roles: [], memberships, rules: packed };
+}
+
+const fetchMock = vi.fn<typeof fetch>();
+
+beforeEach(() => {
+  setActivePinia(createPinia());
+  vi.stubGlobal('fetch', fetchMock);
+});
+afterEach(() => {
+  vi.unstubAllGlobals();
+  fetchMock.mockReset();
+});
+
+describe('the ability of the person', () => {
+  it('is the one that the server packed', () => {
+    useSessionStore().welcome(contributor());
+    const { may, mayEver } = useAbility();
+    expect(may('update', 'Run', { labId: ownLab, isShared: false })).toBe(true);
+    expect(may('update', 'Run', { labId: otherLab, isShared: true })).toBe(false);
+    expect(may('read', 'Run', { labId: otherLab, isShared: true })).toBe(true);
+    expect(mayEver('decide', 'Recording')).toBe(false);
+  });
+
+  it('is that of a visitor when nobody is signed in', () => {
+    const { may, mayEver } = useAbility();
+    expect(may('read', 'Release', { state: 'published' })).toBe(true);
+    expect(mayEver('read', 'Run')).toBe(false);
+  });
+
+  it('changes with the person', () => {
+    const session = useSessionStore();
+    const { mayEver } = useAbility();
+    session.welcome(contributor());
+    expect(mayEver('create', 'Upload')).toBe(true);
+    session.forget();
+    expect(mayEver('create', 'Upload')).toBe(false);
+  });
+});
+
+describe('the session', () => {
+  it('asks only once who is signed in', async () => {
+    fetchMock.mockImplementation(() =>
+      Promise.resolve(new Response(JSON.stringify({ user: contributor() }))),
+    );
+    const session = useSessionStore();
+    await Promise.all([session.load(), session.load()]);
+    await session.load();
+    expect(fetchMock).toHaveBeenCalledOnce();
+    expect(session.user?.name).toBe('Tomasz');
+  });
+
+  it('asks again after a failure', async () => {
+    fetchMock.mockRejectedValueOnce(new TypeError('Failed to fetch'));
+    fetchMock.mockResolvedValueOnce(new Response(JSON.stringify({ user: null })));
+    const session = useSessionStore();
+    await expect(session.load()).rejects.toThrow('cannot be reached');
+    await session.load();
+    expect(session.isLoaded).toBe(true);
+  });
+
+  it('is marked as ended, with the person kept, when the server asks to sign in', async () => {
+    const session = useSessionStore();
+    session.welcome(contributor());
+    const problem = { type: 't', title: 't', status: 401, detail: 'd', requestId: 'r', fields: [] };
+    const body = JSON.stringify({ ...problem, code: 'sign-in-required' });
+    fetchMock.mockResolvedValueOnce(new Response(body, { status: 401 }));
+    await apiGet('/api/runs', z.unknown()).catch(() => undefined);
+    expect(session.hasEnded).toBe(true);
+    expect(session.user?.name).toBe('Tomasz');
+  });
+});
