@@ -21,7 +21,11 @@ export async function getSpectrum(id: string, channel: number, signal?: AbortSig
   });
 }
 
-export async function listCandidates(id: string, query: Partial<ListCandidatesQuery>, signal?: AbortSignal) {
+export async function listCandidatePage(
+  id: string,
+  query: Partial<ListCandidatesQuery>,
+  signal?: AbortSignal,
+) {
   return apiGet(`/api/recordings/${id}/candidates`, candidatesPageSchema, {
     query: { ...query },
     ...(signal ? { signal } : {}),

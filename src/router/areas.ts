@@ -2,11 +2,21 @@ import type { AppAbility } from '@shared/policy/ability.ts';
 
 /** Parts of the application that only some may enter. The server decides again at each request. */
 export type Area =
-  'runs' | 'bring-in' | 'recordings' | 'bench' | 'reviews' | 'collections' | 'people' | 'labs' | 'audit';
+  | 'runs'
+  | 'bring-in'
+  | 'sensors'
+  | 'recordings'
+  | 'bench'
+  | 'reviews'
+  | 'collections'
+  | 'people'
+  | 'labs'
+  | 'audit';
 
 const canEnter: Readonly<Record<Area, (ability: AppAbility) => boolean>> = {
   runs: (ability) => ability.can('read', 'Run'),
   'bring-in': (ability) => ability.can('create', 'Upload'),
+  sensors: (ability) => ability.can('read', 'Sensor'),
   recordings: (ability) => ability.can('read', 'Recording'),
   bench: (ability) => ability.can('update', 'Pass') || ability.can('read', 'Recording'),
   reviews: (ability) => ability.can('decide', 'Recording'),
@@ -32,6 +42,7 @@ export const navigation: readonly NavigationEntry[] = [
   { label: 'Home', to: '/', access: 'person' },
   { label: 'Runs', to: '/runs', access: 'runs' },
   { label: 'Bring in', to: '/bring-in', access: 'bring-in' },
+  { label: 'Sensors', to: '/sensors', access: 'sensors' },
   { label: 'Review desk', to: '/reviews', access: 'reviews' },
   { label: 'Collections', to: '/collections', access: 'collections' },
   { label: 'Releases', to: '/releases', access: 'anyone' },

@@ -62,6 +62,12 @@ export const routes: RouteRecordRaw[] = [
     component: () => import('@/views/BringInView.vue'),
   },
   {
+    path: '/sensors',
+    name: 'sensors',
+    meta: { access: 'sensors' },
+    component: () => import('@/views/SensorsView.vue'),
+  },
+  {
     path: '/recordings/:id',
     name: 'recording',
     meta: { access: 'recordings' },
