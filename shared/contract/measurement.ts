@@ -161,5 +161,8 @@ export type BurstParameters = z.infer<typeof burstParametersSchema>;
 export const detectedCandidateSchema = burstParametersSchema.extend({
   channel: z.number().int().min(0),
   channels: z.array(z.number().int().min(0)),
+  /** The band in which it stood out and was measured. */
+  bandLowHz: z.number(),
+  bandHighHz: z.number(),
 });
 export type DetectedCandidate = z.infer<typeof detectedCandidateSchema>;
