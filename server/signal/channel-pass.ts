@@ -11,6 +11,7 @@ import { LongFrames, type LongFrameResult } from './long-frames.ts';
 import { MainsTracker } from './mains.ts';
 import { PeakPyramid } from './pyramid.ts';
 import type { ChannelFacts } from './quality.ts';
+import { forEachCell } from './sample-cells.ts';
 import { ColumnPyramid, type Picture } from './spectrogram-columns.ts';
 
 /** Where the views of one channel go, in order of time. Arrays are reused by the caller. */
@@ -91,11 +92,13 @@ export class ChannelPass {
   push(window: SampleWindow, from: number): void {
     const { samples } = window;
     const to = window.endSample - window.startSample;
-    this.#levels.push(samples, from, to, window.startSample + from);
+    forEachCell(samples, { from, to, startSample: window.startSample + from }, (cell, start) => {
+      this.#levels.push(cell, samples, start, window.startSample + start);
+      this.#course.push(cell);
+      this.#pyramid.push(cell);
+    });
     this.#dropouts.push(window, from);
     this.#mains.push(samples, from, to);
-    this.#course.push(samples, from, to);
-    this.#pyramid.push(samples, from, to);
     this.#longCursor.advance(window, (_index, values, start, end) => this.#pushLong(values, start, end));
     if (!this.#sharesLongFrames) this.#audible?.advance(window);
     this.#shortFrames.advance(window);

@@ -1,6 +1,7 @@
 import { rmsToDb } from '../../shared/audio/units.ts';
 import type { Course } from '../../shared/contract/measurement.ts';
 import { SILENCE_MEAN_SQUARE } from './frame-spectrum.ts';
+import { CELL_SAMPLES, type SampleCell } from './sample-cells.ts';
 
 export const MAXIMUM_STEPS = 1000;
 
@@ -9,9 +10,10 @@ export interface CoursePlan {
   steps: number;
 }
 
-/** At most 1,000 equal steps, none shorter than a hop of the short frames. */
+/** At most 1,000 equal steps of whole cells, none shorter than a hop of the short frames. */
 export function planCourse(frames: number, shortHop: number): CoursePlan {
-  const samplesPerStep = Math.max(Math.ceil(frames / MAXIMUM_STEPS), shortHop);
+  const least = Math.max(Math.ceil(frames / MAXIMUM_STEPS), shortHop);
+  const samplesPerStep = Math.ceil(least / CELL_SAMPLES) * CELL_SAMPLES;
   return { samplesPerStep, steps: Math.ceil(frames / samplesPerStep) };
 }
 
@@ -33,22 +35,11 @@ export class CourseTracker {
     this.#ultrasonicFrames = new Uint32Array(plan.steps);
   }
 
-  push(samples: Float32Array, from: number, to: number): void {
-    let i = from;
-    while (i < to) {
-      const end = Math.min(to, i + this.#plan.samplesPerStep - this.#count);
-      this.#count += end - i;
-      let sum = 0;
-      let squares = 0;
-      for (; i < end; i++) {
-        const x = samples[i]!;
-        sum += x;
-        squares += x * x;
-      }
-      this.#sum += sum;
-      this.#squares += squares;
-      if (this.#count === this.#plan.samplesPerStep) this.#closeStep();
-    }
+  push(cell: SampleCell): void {
+    this.#sum += cell.sum;
+    this.#squares += cell.squares;
+    this.#count += cell.count;
+    if (this.#count === this.#plan.samplesPerStep) this.#closeStep();
   }
 
   /** @param sample where the middle of a short frame lies. @param meanSquare of its lines above 20 kHz. */

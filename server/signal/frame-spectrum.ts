@@ -67,9 +67,7 @@ export class FrameSpectrum {
     const { weights } = this.#window;
     const input = this.#fft.input;
     const count = to - from;
-    let sum = 0;
-    for (let i = from; i < to; i++) sum += samples[i]!;
-    const mean = sum / count;
+    const mean = sumOf(samples, from, to) / count;
     for (let n = 0; n < count; n++) input[n] = (samples[from + n]! - mean) * weights[n]!;
     if (count < this.size) input.fill(0, count);
     this.mean = mean;
@@ -92,25 +90,17 @@ export class FrameSpectrum {
   #measure(samples: Float32Array, from: number, to: number): void {
     const count = to - from;
     const centred = this.#centred;
-    let sum = 0;
-    let highest = 0;
-    let lowest = 0;
-    for (let i = from; i < to; i++) {
-      const x = samples[i]!;
-      sum += x;
-      if (x > highest) highest = x;
-      else if (x < lowest) lowest = x;
-    }
-    const mean = sum / count;
-    let squares = 0;
+    const mean = sumOf(samples, from, to) / count;
+    let peak = 0;
     for (let n = 0; n < count; n++) {
-      const value = samples[from + n]! - mean;
-      squares += value * value;
-      centred[n] = value;
+      const x = samples[from + n]!;
+      centred[n] = x - mean;
+      if (x > peak) peak = x;
+      else if (-x > peak) peak = -x;
     }
     this.mean = mean;
-    this.meanSquare = squares / count;
-    this.peak = Math.max(highest, -lowest);
+    this.meanSquare = squareSumOf(centred, count) / count;
+    this.peak = peak;
     this.crossings = this.#countCrossings(count);
   }
 
@@ -121,6 +111,29 @@ export class FrameSpectrum {
     for (let n = 1; n < count; n++) crossings += (bits[n]! ^ bits[n - 1]!) >>> 31;
     return crossings;
   }
+}
+
+/** Two sums run side by side: one addition would have to wait for the one before. */
+function sumOf(samples: Float32Array, from: number, to: number): number {
+  let even = 0;
+  let odd = 0;
+  let i = from;
+  for (; i + 1 < to; i += 2) {
+    even += samples[i]!;
+    odd += samples[i + 1]!;
+  }
+  return i < to ? even + odd + samples[i]! : even + odd;
+}
+
+function squareSumOf(values: Float32Array, count: number): number {
+  let even = 0;
+  let odd = 0;
+  let n = 0;
+  for (; n + 1 < count; n += 2) {
+    even += values[n]! * values[n]!;
+    odd += values[n + 1]! * values[n + 1]!;
+  }
+  return n < count ? even + odd + values[n]! * values[n]! : even + odd;
 }
 
 /**

@@ -2,6 +2,7 @@ import type { ChannelLevels } from '../../shared/contract/measurement.ts';
 import { amplitudeToDb, rmsToDb } from '../../shared/audio/units.ts';
 import { SILENCE_MEAN_SQUARE } from './frame-spectrum.ts';
 import { PlaceList, type Span } from './place-list.ts';
+import type { SampleCell } from './sample-cells.ts';
 
 /** Fewer samples at full scale in a row can be the tip of a wave that just fits. */
 const CLIPPED_RUN_SAMPLES = 2;
@@ -19,7 +20,7 @@ export function fullScaleThreshold(encoding: 'integer' | 'float', bitsPerSample:
  * peak is the largest magnitude as recorded; crest is peak over plain rms (a sine has 3.01 dB); dcFraction is the mean
  * as a share of full scale. A clipped run is two samples or more in a row at full scale with the same sign.
  *
- * Sums are kept in double precision per block, so that a quiet signal on a large mean keeps its level.
+ * Sums are gathered in cells of 256 samples in double precision, so that a quiet signal on a large mean keeps its level.
  * Source: AES17-2015, 3.12.
  */
 export class LevelTracker {
@@ -39,25 +40,16 @@ export class LevelTracker {
     this.#threshold = threshold;
   }
 
-  /** @param startSample place in the recording of `samples[from]`. */
-  push(samples: Float32Array, from: number, to: number, startSample: number): void {
-    let sum = 0;
-    let squares = 0;
-    let highest = 0;
-    let lowest = 0;
-    for (let i = from; i < to; i++) {
-      const x = samples[i]!;
-      sum += x;
-      squares += x * x;
-      if (x > highest) highest = x;
-      else if (x < lowest) lowest = x;
-    }
-    this.#sum += sum;
-    this.#squares += squares;
-    this.#count += to - from;
-    const peak = Math.max(highest, -lowest);
+  /** @param cell sums of the samples `[from, to)`. @param startSample place in the recording of `samples[from]`. */
+  push(cell: SampleCell, samples: Float32Array, from: number, startSample: number): void {
+    this.#sum += cell.sum;
+    this.#squares += cell.squares;
+    this.#count += cell.count;
+    const peak = Math.max(cell.maximum, -cell.minimum);
     this.#peak = Math.max(this.#peak, peak);
-    if (peak >= this.#threshold || this.#runLength > 0) this.#followRuns(samples, from, to, startSample);
+    if (peak >= this.#threshold || this.#runLength > 0) {
+      this.#followRuns(samples, from, from + cell.count, startSample);
+    }
   }
 
   finish(channel: number, nonFiniteSamples: number): ChannelLevels {

@@ -1,5 +1,7 @@
+import { CELL_SAMPLES, type SampleCell } from './sample-cells.ts';
+
 /** Samples per point of the lowest level of a peak pyramid, and points of one level per point of the next. */
-export const PYRAMID_BASE = 256;
+export const PYRAMID_BASE = CELL_SAMPLES;
 export const PYRAMID_FACTOR = 4;
 
 /** Points of every level, from 256 samples per point to the first level of a single point. */
@@ -25,7 +27,6 @@ interface OpenPoint {
 
 /**
  * Least and greatest sample of every 256, 1024, 4096 ... samples of a channel, exact, in order of time.
- * Cost: one comparison pair per sample.
  */
 export class PeakPyramid {
   readonly #sink: PeakSink;
@@ -39,22 +40,11 @@ export class PeakPyramid {
     this.#open = pyramidLevels(frames).map(() => emptyPoint());
   }
 
-  push(samples: Float32Array, from: number, to: number): void {
-    let i = from;
-    while (i < to) {
-      const end = Math.min(to, i + PYRAMID_BASE - this.#count);
-      this.#count += end - i;
-      let minimum = this.#minimum;
-      let maximum = this.#maximum;
-      for (; i < end; i++) {
-        const x = samples[i]!;
-        if (x < minimum) minimum = x;
-        if (x > maximum) maximum = x;
-      }
-      this.#minimum = minimum;
-      this.#maximum = maximum;
-      if (this.#count === PYRAMID_BASE) this.#closeBase();
-    }
+  push(cell: SampleCell): void {
+    this.#minimum = Math.min(this.#minimum, cell.minimum);
+    this.#maximum = Math.max(this.#maximum, cell.maximum);
+    this.#count += cell.count;
+    if (this.#count === PYRAMID_BASE) this.#closeBase();
   }
 
   /** Closes the last, shorter points. */

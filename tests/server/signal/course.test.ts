@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { CourseTracker, joinCourses, planCourse } from '../../../server/signal/course.ts';
+import { forEachCell } from '../../../server/signal/sample-cells.ts';
 import { sine } from '../../support/wav/signals.ts';
 
 describe('the course', () => {
@@ -13,12 +14,15 @@ describe('the course', () => {
   });
 
   it('follows the level without its mean, null in silence, whatever the blocks', () => {
-    const plan = { samplesPerStep: 1000, steps: 3 };
-    const samples = new Float32Array(2500);
-    samples.set(sine(1000, 10, 1000, 0.1).map((x) => x + 0.3));
-    samples.set(sine(500, 10, 1000, 0.01), 2000);
+    const plan = { samplesPerStep: 1024, steps: 3 };
+    const samples = new Float32Array(2560);
+    samples.set(sine(1024, 8, 1024, 0.1).map((x) => x + 0.3));
+    samples.set(sine(512, 8, 1024, 0.01), 2048);
     const tracker = new CourseTracker(plan);
-    for (let from = 0; from < 2500; from += 333) tracker.push(samples, from, Math.min(from + 333, 2500));
+    for (let from = 0; from < 2560; from += 333) {
+      const to = Math.min(from + 333, 2560);
+      forEachCell(samples, { from, to, startSample: from }, (cell) => tracker.push(cell));
+    }
     tracker.pushUltrasonic(1500, 0.0005);
     tracker.pushUltrasonic(1999, 0.0015);
     const course = joinCourses(plan, [tracker.finish()], Uint32Array.from([0, 2, 1]));

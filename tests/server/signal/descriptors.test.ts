@@ -6,7 +6,7 @@ import {
   type DescriptorEngine,
 } from '../../../server/signal/descriptors.ts';
 import { FrameSpectrum } from '../../../server/signal/frame-spectrum.ts';
-import { sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
+import { whiteNoiseSignal } from '../../support/wav/signals.ts';
 import { makeReferenceSignal, REFERENCE_RATE_HZ, spectra } from '../../reference/spectra-reference.ts';
 
 const engines: [string, DescriptorEngine][] = [

@@ -1,11 +1,15 @@
 import { describe, expect, it } from 'vitest';
 import { fullScaleThreshold, LevelTracker } from '../../../server/signal/levels.ts';
+import { forEachCell } from '../../../server/signal/sample-cells.ts';
 import { sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
 
 function levelsOf(samples: Float32Array, blockFrames = samples.length, threshold = 1) {
   const tracker = new LevelTracker(threshold);
   for (let from = 0; from < samples.length; from += blockFrames) {
-    tracker.push(samples, from, Math.min(from + blockFrames, samples.length), from);
+    const to = Math.min(from + blockFrames, samples.length);
+    forEachCell(samples, { from, to, startSample: from }, (cell, start) => {
+      tracker.push(cell, samples, start, start);
+    });
   }
   return { levels: tracker.finish(0, 0), places: tracker.clippedPlaces };
 }

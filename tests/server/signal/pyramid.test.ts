@@ -1,13 +1,15 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { PeakPyramid, pyramidCell, pyramidLevels } from '../../../server/signal/pyramid.ts';
+import { forEachCell } from '../../../server/signal/sample-cells.ts';
 import { whiteNoiseSignal } from '../../support/wav/signals.ts';
 
 function pyramidOf(samples: Float32Array, blockFrames: number): [number, number][][] {
   const levels: [number, number][][] = pyramidLevels(samples.length).map(() => []);
   const pyramid = new PeakPyramid(samples.length, (level, low, high) => levels[level]!.push([low, high]));
   for (let from = 0; from < samples.length; from += blockFrames) {
-    pyramid.push(samples, from, Math.min(from + blockFrames, samples.length));
+    const to = Math.min(from + blockFrames, samples.length);
+    forEachCell(samples, { from, to, startSample: from }, (cell) => pyramid.push(cell));
   }
   pyramid.finish();
   return levels;

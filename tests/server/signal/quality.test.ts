@@ -5,6 +5,7 @@ import { DropoutTracker } from '../../../server/signal/dropouts.ts';
 import { LevelTracker } from '../../../server/signal/levels.ts';
 import { MainsTracker } from '../../../server/signal/mains.ts';
 import { qualityFindings } from '../../../server/signal/quality.ts';
+import { forEachCell } from '../../../server/signal/sample-cells.ts';
 import { mix, sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
 
 const STEP = 2 ** -15;
@@ -25,7 +26,9 @@ function findingsOf(
     headerWarnings: warnings,
     channels: channels.map((samples, channel) => {
       const levels = new LevelTracker(1 - STEP);
-      levels.push(samples, 0, frames, 0);
+      forEachCell(samples, { from: 0, to: frames, startSample: 0 }, (cell, start) => {
+        levels.push(cell, samples, start, start);
+      });
       const mains = new MainsTracker(sampleRateHz);
       mains.push(samples, 0, frames);
       return {
