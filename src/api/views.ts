@@ -9,7 +9,7 @@ function viewPath(recordingId: string, view: string): string {
 }
 
 export async function getTileLayout(recordingId: string, signal?: AbortSignal): Promise<TileLayout> {
-  return apiGet(viewPath(recordingId, 'spectrogram'), tileLayoutSchema, signal ? { signal } : {});
+  return apiGet(viewPath(recordingId, 'spectrogram/layout'), tileLayoutSchema, signal ? { signal } : {});
 }
 
 export interface TileQuery {

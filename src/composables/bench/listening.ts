@@ -1,3 +1,4 @@
+import { longestListenS } from '@shared/contract/views.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 import { HEARING_LINE_HZ } from '@/composables/bench/hearing-line.ts';
 import { formatDuration, formatFrequency } from '@/composables/useFormat.ts';
@@ -13,8 +14,8 @@ export const FIRST_LEVEL_DB = -18;
 
 /** Browsers play WAV up to this rate themselves; above it, and slowed, the server makes a rendition. */
 const HIGHEST_PLAIN_RATE_HZ = 192_000;
-/** The server gives at most this much output. */
-const LONGEST_OUTPUT_S = 120;
+/** What the server reads for one rendition at most. */
+const MOST_INPUT_SAMPLES = 24_000_000;
 
 export interface PlayPlan {
   source: 'original' | 'rendition';
@@ -41,7 +42,8 @@ export function planPlay(
     const offsetS = startSample / sampleRateHz;
     return { source: 'original', startSample, endSample: wantedEnd, slow, offsetS, samplesPerSecond };
   }
-  const endSample = Math.min(wantedEnd, startSample + Math.floor(LONGEST_OUTPUT_S * samplesPerSecond));
+  const mostSamples = Math.min(MOST_INPUT_SAMPLES, Math.floor(longestListenS * samplesPerSecond));
+  const endSample = Math.min(wantedEnd, startSample + mostSamples);
   return { source: 'rendition', startSample, endSample, slow, offsetS: 0, samplesPerSecond };
 }
 

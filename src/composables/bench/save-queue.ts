@@ -117,7 +117,8 @@ export function createSaveQueue({ send, newId, wait, onStored, onChange }: SaveQ
     if (answer.kind === 'stored') settleStored(entry, request, answer.event);
     else if (answer.kind === 'removed') settleRemoved(entry);
     else if (answer.kind === 'conflict') update(key, { state: 'conflict', theirs: answer.theirs });
-    else if (answer.kind === 'refused') update(key, { state: 'refused', sentence: answer.sentence });
+    else if (answer.kind === 'refused')
+      update(key, { state: 'refused', sentence: answer.sentence, tried: null });
     else pause(key, answer);
   }
 

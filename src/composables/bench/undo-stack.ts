@@ -3,9 +3,16 @@ export interface MarkStep<Mark> {
   /** What was done, for the button and the live region: "crack at 41.3248 s set". */
   name: string;
   key: string;
+  /** Which kind of change: "start", "class". */
+  what: string;
   before: Mark | null;
   after: Mark | null;
+  /** When it was done, in milliseconds of the wall clock. */
+  atMs: number;
 }
+
+/** Held keys and quick presses of the same kind count as one change. */
+const ONE_CHANGE_MS = 900;
 
 /** What has been done and what has been taken back, newest last in both. */
 export interface UndoStack<Mark> {
@@ -24,7 +31,20 @@ export function emptyUndoStack<Mark>(): UndoStack<Mark> {
 
 /** A new change ends what could have been done again. */
 export function pushStep<Mark>(stack: UndoStack<Mark>, step: MarkStep<Mark>): UndoStack<Mark> {
-  return { done: [...stack.done, step], undone: [] };
+  const last = stack.done.at(-1);
+  if (!last || !goesOn(last, step)) return { done: [...stack.done, step], undone: [] };
+  return {
+    done: [...stack.done.slice(0, -1), { ...step, name: last.name, before: last.before }],
+    undone: [],
+  };
+}
+
+/** Moving an edge by ten presses of a key is one change, not ten. */
+function goesOn<Mark>(last: MarkStep<Mark>, step: MarkStep<Mark>): boolean {
+  const isBothChange = last.before !== null && last.after !== null && step.after !== null;
+  return (
+    isBothChange && last.key === step.key && last.what === step.what && step.atMs - last.atMs < ONE_CHANGE_MS
+  );
 }
 
 /** Takes the newest change back: the caller puts `step.before` in place. */

@@ -1,0 +1,20 @@
+import { colourMaps } from '@/theme/colour-maps.ts';
+import type { ColourMapName } from '@/theme/colour-maps.ts';
+
+/** How levels become colours; changed at once, without asking the server. */
+export interface Look {
+  map: ColourMapName;
+  /** The quietest colour stands this far over the quiet of a band, dB. */
+  floorOverQuietDb: number;
+  /** From the quietest to the loudest colour, dB. */
+  rangeDb: number;
+}
+
+export const FIRST_LOOK: Look = { map: 'frost', floorOverQuietDb: 3, rangeDb: 40 };
+
+/** The map after the present one, around and around. */
+export function nextColours(look: Look): Look {
+  const names = Object.keys(colourMaps) as ColourMapName[];
+  const next = names[(names.indexOf(look.map) + 1) % names.length] ?? 'frost';
+  return { ...look, map: next };
+}

@@ -1,0 +1,43 @@
+import type { RecordingEvent } from '@shared/contract/events.ts';
+import type { Pass } from '@shared/contract/passes.ts';
+import type { Recording } from '@shared/contract/recordings.ts';
+import type { LabelScheme } from '@shared/contract/schemes.ts';
+import type { TileLayout } from '@shared/contract/views.ts';
+import { listEvents } from '@/api/events.ts';
+import { listPasses } from '@/api/passes.ts';
+import { getRecording } from '@/api/recordings.ts';
+import { getScheme } from '@/api/schemes.ts';
+import { getTileLayout } from '@/api/views.ts';
+
+/** Everything that the bench needs before its first picture. */
+export interface BenchData {
+  recording: Recording;
+  layout: TileLayout;
+  /** The pass of this person: the one asked for, else the open one, else the newest; `null` without any. */
+  pass: Pass | null;
+  scheme: LabelScheme;
+  events: RecordingEvent[];
+}
+
+export function choosePass(passes: readonly Pass[], wantedId: string | null): Pass | null {
+  const counted = passes.filter(({ state }) => state !== 'cancelled');
+  const wanted = counted.find(({ id }) => id === wantedId);
+  return wanted ?? counted.find(({ state }) => state === 'assigned') ?? counted[0] ?? null;
+}
+
+export async function loadBench(
+  recordingId: string,
+  wantedPassId: string | null,
+  signal: AbortSignal,
+): Promise<BenchData | Pick<BenchData, 'recording'>> {
+  const recording = await getRecording(recordingId, signal);
+  if (recording.processing !== 'measured') return { recording };
+  const [layout, passes, events] = await Promise.all([
+    getTileLayout(recordingId, signal),
+    listPasses({ recordingId, mine: true, limit: 20 }, signal),
+    listEvents(recordingId, signal),
+  ]);
+  const pass = choosePass(passes.items, wantedPassId);
+  const scheme = await getScheme(pass?.schemeVersion ?? 'newest', signal);
+  return { recording, layout, pass, scheme, events };
+}
