@@ -34,6 +34,7 @@ export class BurstFinder {
   readonly #leadInBlocks: number;
   #head: Float32Array | null;
   #headCount = 0;
+  #settledSample = 0;
   #inBlock = 0;
   #processed = 0;
   #regions: ActiveRegion[] = [];
@@ -133,17 +134,25 @@ export class BurstFinder {
     this.#settle(decided);
   }
 
+  /** Onsets before this sample have all been handed on. */
+  get settledSample(): number {
+    return this.#settledSample;
+  }
+
   /** Hands on the groups of overlapping regions that nothing still to come can join. */
   #settle(decidedSamples: number): void {
     const gap = NEIGHBOUR_GAP_S * this.#sampleRateHz;
     const longest = LONGEST_GROUP_S * this.#sampleRateHz;
     this.#regions.sort((a, b) => a.startSample - b.startSample || a.lowHz - b.lowHz);
+    const lead = LEAD_S * this.#sampleRateHz;
+    this.#settledSample = Math.min(decidedSamples, this.#regions[0]?.startSample ?? Infinity) - lead;
     while (this.#regions.length > 0) {
       const { count, endSample } = groupLength(this.#regions, gap);
       const startSample = this.#regions[0]?.startSample ?? 0;
       const overdue = this.#processed - startSample > longest + this.#learningSamples;
       if (endSample + gap + AFTER_S * this.#sampleRateHz > decidedSamples && !overdue) return;
       this.#finishGroup(this.#regions.splice(0, count), decidedSamples);
+      this.#settledSample = Math.min(decidedSamples, this.#regions[0]?.startSample ?? Infinity) - lead;
     }
   }
 

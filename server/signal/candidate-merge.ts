@@ -1,38 +1,67 @@
 import type { DetectedCandidate } from '../../shared/contract/measurement.ts';
 
 /**
- * One candidate per burst from the candidates of all channels: those whose onsets lie within the tolerance of an earliest
- * one are the same burst as several sensors heard it. The earliest channel speaks, the others are listed.
+ * Makes one candidate per burst from the candidates of all channels, while they come in.
  *
- * A channel gives at most one candidate to a burst, so two bursts of one channel never become one.
- *
- * @param byChannel any order.
- * @param toleranceSamples largest difference of arrival between channels, 0 or more.
- * @returns by rising onset.
+ * Candidates whose onsets lie within the tolerance after an earliest one are the same burst as other sensors heard it: the
+ * earliest channel speaks, the others are listed. A channel gives at most one candidate to a burst, so two bursts of one
+ * channel never become one.
  */
+export class CandidateMerger {
+  readonly #toleranceSamples: number;
+  #pending: DetectedCandidate[] = [];
+
+  /** @param toleranceSamples largest difference of arrival between channels, 0 or more. */
+  constructor(toleranceSamples: number) {
+    this.#toleranceSamples = toleranceSamples;
+  }
+
+  push(candidates: readonly DetectedCandidate[]): void {
+    this.#pending.push(...candidates);
+  }
+
+  /** Bursts that no candidate from `settledSample` on can join, by rising onset. */
+  take(settledSample: number): DetectedCandidate[] {
+    const pending = this.#pending.sort((a, b) => a.onsetSample - b.onsetSample || a.channel - b.channel);
+    const merged: DetectedCandidate[] = [];
+    const used = new Set<DetectedCandidate>();
+    for (const [index, lead] of pending.entries()) {
+      if (lead.onsetSample + this.#toleranceSamples >= settledSample) break;
+      if (!used.has(lead)) merged.push(this.#join(lead, pending, index, used));
+    }
+    if (used.size > 0) this.#pending = pending.filter((candidate) => !used.has(candidate));
+    return merged;
+  }
+
+  finish(): DetectedCandidate[] {
+    return this.take(Infinity);
+  }
+
+  #join(
+    lead: DetectedCandidate,
+    pending: readonly DetectedCandidate[],
+    index: number,
+    used: Set<DetectedCandidate>,
+  ): DetectedCandidate {
+    const channels = [lead.channel];
+    used.add(lead);
+    for (let at = index + 1; at < pending.length; at++) {
+      const other = pending[at];
+      if (!other || other.onsetSample - lead.onsetSample > this.#toleranceSamples) break;
+      if (used.has(other) || channels.includes(other.channel)) continue;
+      used.add(other);
+      channels.push(other.channel);
+    }
+    return { ...lead, channels: channels.sort((a, b) => a - b) };
+  }
+}
+
+/** The same for candidates that are all there. */
 export function mergeOverChannels(
   byChannel: readonly (readonly DetectedCandidate[])[],
   toleranceSamples: number,
 ): DetectedCandidate[] {
-  const all = byChannel.flat().sort((a, b) => a.onsetSample - b.onsetSample || a.channel - b.channel);
-  const merged: DetectedCandidate[] = [];
-  let oldest = 0;
-  for (const candidate of all) {
-    while (oldest < merged.length && !isWithin(merged[oldest], candidate, toleranceSamples)) oldest += 1;
-    const at = merged.findIndex(
-      (other, index) => index >= oldest && !other.channels.includes(candidate.channel),
-    );
-    const same = merged[at];
-    if (same) merged[at] = { ...same, channels: [...same.channels, candidate.channel].sort((a, b) => a - b) };
-    else merged.push({ ...candidate, channels: [candidate.channel] });
-  }
-  return merged;
-}
-
-function isWithin(
-  earlier: DetectedCandidate | undefined,
-  later: DetectedCandidate,
-  tolerance: number,
-): boolean {
-  return earlier !== undefined && later.onsetSample - earlier.onsetSample <= tolerance;
+  const merger = new CandidateMerger(toleranceSamples);
+  for (const candidates of byChannel) merger.push(candidates);
+  return merger.finish();
 }

@@ -26,6 +26,8 @@ export interface Detector {
   push(samples: Float32Array): void;
   /** Candidates decided since the last call, by rising onset, so that they can be written while the stream runs. */
   take(): DetectedCandidate[];
+  /** No candidate with an onset before this sample is still to come. */
+  settledSample(): number;
   /** All candidates not yet taken. Nothing may be pushed afterwards. */
   finish(): DetectedCandidate[];
 }
@@ -58,9 +60,7 @@ export function createDetector(options: DetectorOptions): Detector {
   const finder = new BurstFinder(sampleRateHz, settings, (bursts, nextSample) => {
     for (const [index, burst] of bursts.entries()) {
       const next = bursts[index + 1]?.sample ?? nextSample;
-      ready.push(
-        measure(burst, { options, finder, settings, next, previousEnd: bursts[index - 1]?.endSample ?? 0 }),
-      );
+      ready.push(measure(burst, { options, finder, settings, next }));
     }
   });
   const take = () => {
@@ -71,6 +71,7 @@ export function createDetector(options: DetectorOptions): Detector {
   return {
     push: (samples) => finder.push(samples),
     take,
+    settledSample: () => finder.settledSample,
     finish: () => {
       finder.finish();
       return take();
@@ -91,7 +92,6 @@ interface Measuring {
   readonly finder: BurstFinder;
   readonly settings: DetectorSettings;
   readonly next: number;
-  readonly previousEnd: number;
 }
 
 function measure(burst: FoundBurst, { options, finder, settings, next }: Measuring): DetectedCandidate {
