@@ -141,7 +141,9 @@ describe('failing', () => {
       ground.clock.advance(leaseMs + 1);
     }
     expect(ground.jobs.claim(kinds)).toBeNull();
-    expect(ground.jobs.parkExhausted()).toMatchObject([{ id, kind: 'measure', payload: { recordingId: 'r1' } }]);
+    expect(ground.jobs.parkExhausted()).toMatchObject([
+      { id, kind: 'measure', payload: { recordingId: 'r1' } },
+    ]);
     expect(rowOf(id)?.state).toBe('parked');
   });
 
