@@ -91,7 +91,7 @@ describe('the navigation', () => {
   it.each([
     [null, ['Releases']],
     ['reader', ['Home', 'Releases']],
-    ['contributor', ['Home', 'Runs', 'Bring in', 'Releases']],
+    ['contributor', ['Home', 'Runs', 'Bring in', 'Sensors', 'Releases']],
     ['administrator', ['Home', 'Releases', 'People', 'Labs', 'Audit']],
     ['labeler', ['Home', 'Releases']],
   ])('of a %s has what they may use', (name, labels) => {
