@@ -1,0 +1,1 @@
+export type HashAnswer = { sha256: string } | { failed: true };

@@ -1,0 +1,89 @@
+import type { Declaration } from '@shared/contract/uploads.ts';
+import type { FileReading } from '@/composables/uploads/read-recording-file.ts';
+
+/**
+ * `reading` its header; `refused` for what it is; `ready` to be sent; `waiting` in line; `sending`; `paused` by the
+ * person; `lost` the connection; `checking` on the server; `measuring`; `measured`; `failed`; `cancelled`; `missing`
+ * its file, which was chosen before a reload and has to be chosen again.
+ */
+export type UploadStage =
+  | 'reading'
+  | 'refused'
+  | 'ready'
+  | 'waiting'
+  | 'sending'
+  | 'paused'
+  | 'lost'
+  | 'checking'
+  | 'measuring'
+  | 'measured'
+  | 'failed'
+  | 'cancelled'
+  | 'missing';
+
+export interface UploadItem {
+  key: string;
+  fileName: string;
+  sizeBytes: number;
+  stage: UploadStage;
+  reading: FileReading | null;
+  /** Told once for all files that are sent together. */
+  target: (Declaration & { runId: string }) | null;
+  runTitle: string;
+  uploadId: string | null;
+  sentBytes: number;
+  bytesPerSecond: number | null;
+  recordingId: string | null;
+  /** 0 to 1 while measuring. */
+  measuredShare: number;
+  /** Why it was refused, lost or failed. */
+  message: string;
+  /** A lost connection is tried again by itself; what a person has to mend is not. */
+  retriesItself: boolean;
+}
+
+export function newUploadItem(key: string, facts: Pick<UploadItem, 'fileName' | 'sizeBytes'>): UploadItem {
+  return {
+    ...facts,
+    key,
+    stage: 'reading',
+    reading: null,
+    target: null,
+    runTitle: '',
+    uploadId: null,
+    sentBytes: 0,
+    bytesPerSecond: null,
+    recordingId: null,
+    measuredShare: 0,
+    message: '',
+    retriesItself: false,
+  };
+}
+
+const inHandStages: ReadonlySet<UploadStage> = new Set(['waiting', 'sending', 'paused', 'lost', 'checking']);
+
+/** Leaving the page now would interrupt it. */
+export function isInHand(item: Pick<UploadItem, 'stage'>): boolean {
+  return inHandStages.has(item.stage);
+}
+
+const doneStages: ReadonlySet<UploadStage> = new Set([
+  'measuring',
+  'measured',
+  'failed',
+  'cancelled',
+  'refused',
+]);
+
+/** Nothing more of it will travel. */
+export function isDone(item: Pick<UploadItem, 'stage'>): boolean {
+  return doneStages.has(item.stage);
+}
+
+/** The same file, as far as can be told without reading all of it: by name and size. */
+export function isSameFile(
+  item: Pick<UploadItem, 'fileName' | 'sizeBytes'>,
+  file: Pick<File, 'name' | 'size'>,
+): boolean {
+  return item.fileName === file.name && item.sizeBytes === file.size;
+}
