@@ -41,6 +41,7 @@ async function main(): Promise<void> {
   const runner = createJobRunner({ queue: deps.jobs, handlers: allJobs(deps), log: deps.log, lanes });
   await listen(server, config);
   runner.start();
+  exitOnTheUnexpected(deps);
   stopOnSignals({ ground, deps, server, runner, devClient });
   deps.log.info({ host: config.host, port: config.port, publicUrl: config.publicUrl }, 'listening');
   announceSetup(deps);
@@ -72,6 +73,14 @@ function announceSetup({ services, config }: Deps): void {
   process.stdout.write(
     `\nThere is nobody yet. Open this link within a day to make the first administrator:\n  ${link}\n\n`,
   );
+}
+
+/** Nobody knows what still holds after such an error: what is acknowledged is on disk, so starting anew is safe. */
+function exitOnTheUnexpected({ log }: Deps): void {
+  process.on('uncaughtException', (error) => {
+    log.fatal({ err: error }, 'unexpected error, stopping');
+    process.exit(1);
+  });
 }
 
 function stopOnSignals(running: Running): void {

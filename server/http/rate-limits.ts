@@ -39,6 +39,8 @@ function toLimiter(budget: Budget): RequestHandler {
     skipSuccessfulRequests: budget.failuresOnly,
     standardHeaders: 'draft-8',
     legacyHeaders: false,
+    // Addresses that callers claim are ignored unless a proxy is trusted; the package would print a warning.
+    validate: { xForwardedForHeader: false, forwardedHeader: false },
     handler: (_request, response, next) => {
       const waitS = Number(response.getHeader('Retry-After') ?? budget.windowMs / 1000);
       const minutes = Math.ceil(waitS / 60);

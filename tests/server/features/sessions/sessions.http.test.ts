@@ -1,6 +1,7 @@
 import supertest from 'supertest';
 import { afterEach, beforeEach, describe, expect, test } from 'vitest';
 import { write } from '../../../../server/db/transaction.ts';
+import { createDeps } from '../../../../server/deps.ts';
 import { replaceRoles, updateUser } from '../../../../server/features/people/people.queries.ts';
 import { testPassword } from '../../../support/server/seed-actors.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
@@ -85,6 +86,33 @@ describe('signing in', () => {
       detail: expect.stringMatching(/Try again in/),
     });
     expect((await signIn('labeler@lab.example', 'not this one at all')).status).toBe(401);
+  });
+
+  test('an address that the caller claims does not help against waiting', async () => {
+    const claim = (address: string) =>
+      signIn('curator@lab.example', 'not this one at all').set('X-Forwarded-For', address);
+    for (let attempt = 1; attempt <= 10; attempt += 1) await claim(`203.0.113.${attempt}`);
+    expect((await claim('203.0.113.99')).status).toBe(429);
+  });
+
+  test('checks one hash whether the account exists or not, so that both take the same time', async () => {
+    const checked: string[] = [];
+    const { hasher } = app.deps;
+    const counting = createDeps({
+      ...app.deps,
+      hasher: {
+        hash: (password) => hasher.hash(password),
+        verify: (hash, password) => {
+          checked.push(hash);
+          return hasher.verify(hash, password);
+        },
+      },
+    });
+    const input = (email: string) => ({ email, password: 'not this one at all' });
+    await expect(counting.services.sessions.signIn(input('curator@lab.example'), 'test')).rejects.toThrow();
+    await expect(counting.services.sessions.signIn(input('nobody@lab.example'), 'test')).rejects.toThrow();
+    expect(checked).toHaveLength(2);
+    expect(checked[1]).toHaveLength(checked[0]?.length ?? 0);
   });
 
   test('an audit row tells of it', async () => {
