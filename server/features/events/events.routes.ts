@@ -72,6 +72,7 @@ export function eventsRoutes({ services: { events } }: Deps): Route[] {
       path: '/api/events/:id',
       summary: 'Deletes an own mark; needs If-Match.',
       access: 'signed-in',
+      status: 204,
       params: idParamsSchema,
       handler: ({ actor, params, req }) => events.remove(actor, params.id, readIfMatch({ req })),
     }),
