@@ -109,7 +109,9 @@ function drawPlate(
   });
 }
 
-/** Beside a hatched strip that is too thin for words, its reason stands at its edge. */
+/** A thinner strip of hatch has no room for words; the pills of the page have them. */
+const LEAST_WORDS_PX = 12;
+
 function drawPartReasons(context: CanvasRenderingContext2D, place: BandPlace, scene: PictureScene): void {
   for (const { lowHz, highHz, reason } of scene.unseen) {
     const isHere = highHz > place.lowHz && lowHz < place.highHz;
@@ -118,7 +120,9 @@ function drawPartReasons(context: CanvasRenderingContext2D, place: BandPlace, sc
       place.topPx + place.heightPx - 11,
       Math.max(place.topPx + 11, yOfFrequency(middle, place)),
     );
-    if (isHere) {
+    const top = yOfFrequency(Math.min(highHz, place.highHz), place);
+    const isTall = yOfFrequency(Math.max(lowHz, place.lowHz), place) - top >= LEAST_WORDS_PX;
+    if (isHere && isTall) {
       const x = scene.places.gutterPx + scene.places.plotWidthPx - 8;
       writePlate(context, reason, scene.colours, { x, y, align: 'right' });
     }

@@ -10,7 +10,7 @@ export interface Look {
   rangeDb: number;
 }
 
-export const FIRST_LOOK: Look = { map: 'frost', floorOverQuietDb: 3, rangeDb: 40 };
+export const FIRST_LOOK: Look = { map: 'frost', floorOverQuietDb: -3, rangeDb: 46 };
 
 /** The map after the present one, around and around. */
 export function nextColours(look: Look): Look {

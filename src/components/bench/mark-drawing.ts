@@ -26,6 +26,8 @@ export interface StagePen {
 
 const CORE = '#FFFFFF';
 const HALO = 'rgba(4, 10, 14, 0.85)';
+const CURSOR_CORE = 'rgba(255, 255, 255, 0.75)';
+const CURSOR_HALO = 'rgba(4, 10, 14, 0.35)';
 /** A fracture stands this far before its onset, so that it does not cover the burst. */
 const BESIDE_PX = 2.5;
 const STROKE_PX = 14;
@@ -215,7 +217,14 @@ export function drawCursor({ context, places, window, colours }: StagePen, sampl
   const x = Math.round(xOf(sample, { places, window })) + 0.5;
   if (x < places.gutterPx || x > places.gutterPx + places.plotWidthPx) return;
   const bottom = places.waveTopPx + places.waveHeightPx;
-  drawHair(context, x, places.glyphHeightPx, bottom, { core: 'rgba(255, 255, 255, 0.9)', dash: [1, 3] });
+  const pictureBottom = places.audible.topPx + places.audible.heightPx;
+  drawHair(
+    context,
+    x,
+    { fromY: places.glyphHeightPx, toY: pictureBottom },
+    { core: CURSOR_CORE, halo: CURSOR_HALO },
+  );
+  drawHair(context, x, { fromY: places.waveTopPx, toY: bottom }, { core: colours.ink, halo: 'transparent' });
   context.fillStyle = colours.ink;
   context.beginPath();
   context.moveTo(x - 4, places.glyphHeightPx - 7);
@@ -229,26 +238,24 @@ export function drawPlayhead({ context, places, window, colours }: StagePen, sam
   const x = Math.round(xOf(sample, { places, window })) + 0.5;
   if (x < places.gutterPx || x > places.gutterPx + places.plotWidthPx) return;
   const bottom = places.waveTopPx + places.waveHeightPx;
-  drawHair(context, x, places.glyphHeightPx, bottom, { core: colours.glowFill, dash: [] });
+  drawHair(context, x, { fromY: places.glyphHeightPx, toY: bottom }, { core: colours.glowFill, halo: HALO });
 }
 
 interface HairLook {
   core: string;
-  dash: number[];
+  halo: string;
 }
 
 function drawHair(
   context: CanvasRenderingContext2D,
   x: number,
-  fromY: number,
-  toY: number,
-  look: HairLook,
+  { fromY, toY }: { fromY: number; toY: number },
+  { core, halo }: HairLook,
 ): void {
   for (const [colour, width] of [
-    ['rgba(4, 10, 14, 0.6)', 3],
-    [look.core, 1.25],
+    [halo, 3],
+    [core, 1],
   ] as const) {
-    context.setLineDash(colour === look.core ? look.dash : []);
     context.strokeStyle = colour;
     context.lineWidth = width;
     context.beginPath();
@@ -256,5 +263,4 @@ function drawHair(
     context.lineTo(x, toY);
     context.stroke();
   }
-  context.setLineDash([]);
 }

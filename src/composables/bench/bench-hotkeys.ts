@@ -8,6 +8,8 @@ export interface PageActions {
   showKeys: () => void;
   nextColours: () => void;
   editNote: () => void;
+  /** For the live region. */
+  say: (words: string) => void;
   /** Asked first, since some classes hold the recording. */
   chooseClass: (classKey: string, isLessSure: boolean) => void;
 }
@@ -32,7 +34,7 @@ export function benchHotkeys(bench: Bench, choices: readonly ClassChoice[], page
     : [];
   return [
     ...marking,
-    ...toHotkeys('Go', goRows(bench)),
+    ...toHotkeys('Go', goRows(bench, page)),
     ...toHotkeys('Zoom and move', viewRows(bench)),
     ...toHotkeys('Listen', listenRows(bench)),
     ...toHotkeys('Page', [
@@ -77,7 +79,7 @@ function editRows(bench: Bench, page: PageActions): Row[] {
   ];
 }
 
-function goRows(bench: Bench): Row[] {
+function goRows(bench: Bench, page: PageActions): Row[] {
   const { marks, candidates, selectedCandidate, markSample } = bench;
   const nextMark = (direction: 1 | -1) => () => {
     const from = marks.selected.value;
@@ -88,11 +90,13 @@ function goRows(bench: Bench): Row[] {
       direction,
     );
     if (next) bench.selectMark(next.key);
+    else page.say(direction > 0 ? 'No mark after this' : 'No mark before this');
   };
   const nextCandidate = (direction: 1 | -1) => () => {
     const at = selectedCandidate.value?.onsetSample ?? markSample.value;
     const next = neighbour(candidates.candidates.value, (one) => one.onsetSample, at, direction);
     if (next) bench.selectCandidate(next);
+    else page.say('No further candidate in view');
   };
   const rows: Row[] = [
     ['mark.next', 'KeyL', 'next mark', nextMark(1), true],

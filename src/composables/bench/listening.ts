@@ -59,7 +59,7 @@ export function gainOf(levelDb: number): number {
 export function heardWords(slow: SlowFactor, sampleRateHz: number, peakFrequencyHz: number | null): string {
   if (slow === 1) {
     return sampleRateHz / 2 > HEARING_LINE_HZ
-      ? 'As recorded: what lies above 20 kHz is not heard'
+      ? 'As recorded: nothing above 20 kHz is heard'
       : 'As recorded';
   }
   const exampleHz = peakFrequencyHz ?? exampleFrequency(slow, sampleRateHz);

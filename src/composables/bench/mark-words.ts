@@ -21,6 +21,11 @@ export function timeWords(sample: number, sampleRateHz: number): string {
   return formatSeconds(sample / sampleRateHz, Math.min(6, timeDecimals(sampleRateHz)));
 }
 
+/** The same without its unit, for tables that have it in their heading. */
+export function timeFigure(sample: number, sampleRateHz: number): string {
+  return timeWords(sample, sampleRateHz).replace(/\u00A0s$/, '');
+}
+
 /** "crack at 41.324 8 s" */
 export function markName(mark: MarkFields, { classes, sampleRateHz }: MarkSpeech): string {
   return `${classTitle(mark.classKey, classes)} at ${timeWords(mark.startSample, sampleRateHz)}`;
