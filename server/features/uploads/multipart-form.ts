@@ -82,6 +82,7 @@ class FileBranch {
   #fileName = '';
   #sizeBytes = 0;
   #written: Promise<void> | null = null;
+  readonly #stop = new AbortController();
 
   constructor(path: string, busboy: BusboyInstance) {
     this.#path = path;
@@ -104,7 +105,7 @@ class FileBranch {
 
   async #write(stream: Readable): Promise<void> {
     const target = createWriteStream(this.#path, { flags: 'wx', mode: 0o600 });
-    await pipeline(stream, target);
+    await pipeline(stream, target, { signal: this.#stop.signal });
     this.#sizeBytes = target.bytesWritten;
   }
 
@@ -117,7 +118,7 @@ class FileBranch {
   }
 
   async abandon(): Promise<void> {
-    this.#stream?.destroy();
+    this.#stop.abort();
     await this.#written?.catch(() => undefined);
   }
 }

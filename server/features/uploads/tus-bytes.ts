@@ -67,7 +67,7 @@ function createServer({ uploads, folder, log }: TusParts): Server {
   const { findStream } = uploads;
   return new Server({
     path: bytesPath,
-    datastore: new TusStore({ directory: folder.folder, pathOf: folder.pathOf, findStream }),
+    datastore: new TusStore({ pathOf: folder.pathOf, findStream }),
     relativeLocation: true,
     maxSize: maximumUploadBytes,
     // No page of another origin may read an answer.

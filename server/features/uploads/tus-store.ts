@@ -2,26 +2,24 @@ import { createWriteStream } from 'node:fs';
 import { open, stat } from 'node:fs/promises';
 import type { Readable } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
-import { FileStore } from '@tus/file-store';
-import { ERRORS, Upload } from '@tus/server';
+import { DataStore, ERRORS, Upload } from '@tus/server';
 
 interface TusStoreParts {
-  directory: string;
   pathOf: (uploadId: string) => string;
   findStream: (uploadId: string) => { sizeBytes: number; createdAtMs: number } | undefined;
 }
 
 /**
- * The package's file store with what it lacks: sizes come from our rows instead of files beside the bytes, bytes are
- * on the disk before they are acknowledged, creating twice never truncates, and it never deletes anything.
+ * Bytes of uploads in files of ours. The ready-made file store is not used: it keeps sizes in files beside the bytes,
+ * acknowledges what is not on the disk yet, truncates when a creation is repeated, and deletes finished uploads.
  */
-export class TusStore extends FileStore {
+export class TusStore extends DataStore {
+  override readonly extensions = ['creation'];
   readonly #parts: TusStoreParts;
 
   constructor(parts: TusStoreParts) {
-    super({ directory: parts.directory, configstore: noConfigstore });
+    super();
     this.#parts = parts;
-    this.extensions = ['creation'];
   }
 
   override async create(upload: Upload): Promise<Upload> {
@@ -47,21 +45,7 @@ export class TusStore extends FileStore {
     const createdAt = new Date(stream.createdAtMs).toISOString();
     return new Upload({ id, size: stream.sizeBytes, offset: found.size, creation_date: createdAt });
   }
-
-  override remove(): Promise<void> {
-    return Promise.reject(new Error('Bytes are removed by the uploads service only.'));
-  }
-
-  override deleteExpired(): Promise<number> {
-    return Promise.reject(new Error('Uploads expire by the uploads service only.'));
-  }
 }
-
-const noConfigstore = {
-  get: () => Promise.resolve(undefined),
-  set: () => Promise.resolve(),
-  delete: () => Promise.resolve(),
-};
 
 const noRoom = {
   status_code: 507,

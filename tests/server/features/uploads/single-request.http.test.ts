@@ -1,56 +1,158 @@
 import { createHash } from 'node:crypto';
-import { existsSync, readdirSync } from 'node:fs';
-import { afterEach, beforeEach, describe, expect, test } from 'vitest';
-import { recordings } from '../../../../server/db/schema/recordings.ts';
+import { createServer, request, type Server } from 'node:http';
+import type { AddressInfo } from 'node:net';
+import { afterAll, beforeAll, describe, expect, test, vi } from 'vitest';
 import { seedRun, seedSetup, smallWav } from '../../../support/server/seed-recordings.ts';
+import { nothingStored, storedState } from '../../../support/server/stored-state.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
 
 let app: TestApp;
-beforeEach(() => {
-  app = createTestApp({ RECALESCE_LOG_LEVEL: 'error' });
+let runId: string;
+let setupId: string;
+beforeAll(() => {
+  app = createTestApp();
+  runId = seedRun(app).id;
+  setupId = seedSetup(app).id;
 });
-afterEach(() => app.close());
+afterAll(() => app.close());
 
 const wav = smallWav();
 const sha256 = createHash('sha256').update(wav).digest('hex');
+const post = () => app.as('contributor').post(`/api/runs/${runId}/recordings`);
+const declared = () => post().field('setupId', setupId).field('licence', 'CC-BY-4.0');
 
-function nothingIsLeft(): boolean {
-  const isEmpty = (folder: string) => !existsSync(folder) || readdirSync(folder).length === 0;
-  const blobs = readdirSync(app.deps.config.paths.blobs);
-  const rows = app.deps.db.select().from(recordings).all();
-  return isEmpty(app.deps.config.paths.uploads) && blobs.join() === 'incoming' && rows.length === 0;
-}
-
-describe('one form with everything', () => {
-  test('makes a recording of the file, measured by the next job', async () => {
-    const run = seedRun(app);
-    const setup = seedSetup(app);
-    const answer = await app
-      .as('contributor')
-      .post(`/api/runs/${run.id}/recordings`)
-      .field('setupId', setup.id)
-      .field('licence', 'CC-BY-4.0')
-      .field('sha256', sha256)
-      .attach('file', Buffer.from(wav), 'drop 7.wav');
-    expect(answer.body).toMatchObject({
-      recording: { fileName: 'drop 7.wav', sha256, processing: 'queued', sharing: 'pending' },
-    });
-    expect(answer.status).toBe(201);
-    expect(await app.runJobs()).toBe(1);
-    const measured = await app.as('contributor').get(`/api/recordings/${answer.body.recording.id}`);
-    expect(measured.body).toMatchObject({ processing: 'measured', sharing: 'shared', failure: null });
+describe('a form that cannot be taken leaves nothing', () => {
+  test.each([
+    ['no file', () => declared(), 422, 'file'],
+    [
+      'two files',
+      () => declared().attach('file', Buffer.from(wav), 'a.wav').attach('file', Buffer.from(wav), 'b.wav'),
+      422,
+      'file',
+    ],
+    ['a file in another part', () => declared().attach('sound', Buffer.from(wav), 'a.wav'), 422, 'sound'],
+    [
+      'no set-up',
+      () => post().field('licence', 'CC0-1.0').attach('file', Buffer.from(wav), 'a.wav'),
+      422,
+      'setupId',
+    ],
+    [
+      'a field that nobody knows',
+      () => declared().field('sharing', 'shared').attach('file', Buffer.from(wav), 'a.wav'),
+      422,
+      '',
+    ],
+    [
+      'a field said twice',
+      () => declared().field('licence', 'CC0-1.0').attach('file', Buffer.from(wav), 'a.wav'),
+      422,
+      'licence',
+    ],
+    [
+      'a number that is none',
+      () => declared().field('timeExpansion', 'ten').attach('file', Buffer.from(wav), 'a.wav'),
+      422,
+      'timeExpansion',
+    ],
+    [
+      'a field without end',
+      () => declared().field('note', 'x'.repeat(9000)).attach('file', Buffer.from(wav), 'a.wav'),
+      422,
+      'note',
+    ],
+    [
+      'another hash',
+      () => declared().field('sha256', '0'.repeat(64)).attach('file', Buffer.from(wav), 'a.wav'),
+      422,
+      undefined,
+    ],
+    ['no WAV', () => declared().attach('file', Buffer.from('ID3 a song'), 'a.wav'), 422, undefined],
+    ['no form', () => post().send({ setupId }), 415, undefined],
+  ] as const)('%s', async (_name, send, status, path) => {
+    const answer = await send();
+    expect(answer.status).toBe(status);
+    expect(answer.body.fields[0]?.path).toBe(path);
+    expect(storedState(app)).toEqual(nothingStored);
   });
 
-  test('a file that is no WAV is refused with a sentence, and nothing is left', async () => {
-    const run = seedRun(app);
-    const answer = await app
-      .as('contributor')
-      .post(`/api/runs/${run.id}/recordings`)
-      .field('setupId', seedSetup(app).id)
-      .field('licence', 'CC-BY-4.0')
-      .attach('file', Buffer.from('ID3 this is no wav'), 'song.wav');
-    expect(answer.status).toBe(422);
-    expect(answer.body.code).toBe('file-refused');
-    expect(nothingIsLeft()).toBe(true);
+  test('the set-up of another lab', async () => {
+    const foreign = seedSetup(app, 'other').id;
+    const answer = await post()
+      .field('setupId', foreign)
+      .field('licence', 'CC0-1.0')
+      .attach('file', Buffer.from(wav), 'a.wav');
+    expect(answer.body.fields[0].path).toBe('setupId');
+    expect(storedState(app)).toEqual(nothingStored);
+  });
+
+  test('a run that the person cannot add to is refused before a byte is read', async () => {
+    const foreignRun = seedRun(app, 'other').id;
+    const answer = await app.as('contributor').post(`/api/runs/${foreignRun}/recordings`).send({});
+    expect(answer.status).toBe(404);
+  });
+});
+
+describe('a connection that breaks within the file', () => {
+  let server: Server;
+  beforeAll(async () => {
+    server = createServer(app.http);
+    await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
+  });
+  afterAll(() => new Promise((resolve) => server.close(resolve)));
+
+  test('leaves nothing', async () => {
+    const boundary = 'one-boundary';
+    const sending = request({
+      port: (server.address() as AddressInfo).port,
+      path: `/api/runs/${runId}/recordings`,
+      method: 'POST',
+      headers: {
+        Cookie: `${app.deps.cookie.name}=${app.sessionTokens.contributor}`,
+        Origin: app.deps.config.publicUrl,
+        'Content-Type': `multipart/form-data; boundary=${boundary}`,
+        'Content-Length': String(wav.length + 1000),
+      },
+    });
+    const broken = new Promise((resolve) => sending.once('error', resolve));
+    sending.write(`--${boundary}\r\nContent-Disposition: form-data; name="file"; filename="a.wav"\r\n\r\n`);
+    sending.write(Buffer.from(wav.subarray(0, 50_000)));
+    await vi.waitFor(() => expect(storedState(app).waiting).toHaveLength(1));
+    sending.destroy();
+    await broken;
+    await vi.waitFor(() => expect(storedState(app)).toEqual(nothingStored));
+  });
+});
+
+describe('a whole form', () => {
+  test('makes a recording of the file, measured by the next job and shared where nothing speaks against it', async () => {
+    const answer = await declared()
+      .field('sha256', sha256)
+      .attach('file', Buffer.from(wav), 'drop 7.wav')
+      .field('runOffsetNs', '1500');
+    expect(answer.status).toBe(201);
+    expect(answer.body.recording).toMatchObject({
+      ...{ fileName: 'drop 7.wav', sha256, runId, runOffsetNs: 1500, timeExpansion: 1 },
+      ...{ processing: 'queued', sharing: 'pending' },
+    });
+    expect(await app.runJobs()).toBe(1);
+    const measured = await app.as('contributor').get(`/api/recordings/${answer.body.recording.id}`);
+    expect(measured.body).toMatchObject({
+      processing: 'measured',
+      progress: 1,
+      sharing: 'shared',
+      failure: null,
+    });
+    expect(measured.body.measurement.levels).toHaveLength(1);
+  });
+
+  test('with declared sensitivity is held after measuring', async () => {
+    const answer = await declared()
+      .field('sensitivity', 'voices,other')
+      .attach('file', Buffer.from(wav), 'a.wav');
+    expect(answer.body.recording.sensitivity).toEqual(['voices', 'other']);
+    await app.runJobs();
+    const { body } = await app.as('contributor').get(`/api/recordings/${answer.body.recording.id}`);
+    expect(body).toMatchObject({ sharing: 'held', findings: [{ place: 'voices' }, { place: 'other' }] });
   });
 });
