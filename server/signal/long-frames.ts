@@ -17,9 +17,6 @@ interface LongFrameSettings {
 export interface LongFrameResult {
   descriptors: Omit<ChannelDescriptors, 'channel'>;
   spectra: LongTermSpectra;
-  /** Mean square of the whole (means removed) and of what lies above 20 kHz, summed over the frames. */
-  totalEnergy: number;
-  ultrasonicEnergy: number;
 }
 
 /**
@@ -37,8 +34,6 @@ export class LongFrames {
   readonly #longTerm: LongTermSpectrum;
   readonly #ultrasonic: { first: number; end: number };
   readonly #medians: Record<keyof LongFrameResult['descriptors'], BinnedMedian>;
-  #totalEnergy = 0;
-  #ultrasonicEnergy = 0;
 
   constructor(settings: LongFrameSettings) {
     const { size, sampleRateHz } = settings;
@@ -85,8 +80,6 @@ export class LongFrames {
         ultrasonicShare: this.#seesUltrasound ? medians.ultrasonicShare.median() : null,
       },
       spectra: this.#longTerm.finish(),
-      totalEnergy: this.#totalEnergy,
-      ultrasonicEnergy: this.#ultrasonicEnergy,
     };
   }
 
@@ -121,8 +114,6 @@ export class LongFrames {
     const { first, end } = this.#ultrasonic;
     const above = meanSquareOfBins(spectrum.power, first, end);
     const total = meanSquareOfBins(spectrum.power, 1, first) + above;
-    this.#totalEnergy += total;
-    this.#ultrasonicEnergy += above;
     if (above >= SILENCE_MEAN_SQUARE) row[8] = 10 * Math.log10(2 * above);
     row[9] = above / total;
     this.#medians.ultrasonicShare.push(above / total);
