@@ -7,6 +7,7 @@ import { collectionItems, collections, releases } from '../../db/schema/collecti
 import { events, passes } from '../../db/schema/events.ts';
 import { recordings } from '../../db/schema/recordings.ts';
 import { runs } from '../../db/schema/runs.ts';
+import { users } from '../../db/schema/users.ts';
 
 export type CollectionRow = typeof collections.$inferSelect;
 
@@ -18,6 +19,12 @@ const latestVersion = sql<string | null>`(
   order by ${releases.createdAtMs} desc limit 1
 )`;
 const viewColumns = { collection: collections, itemCount, latestVersion };
+
+/** With a join, because expressions in the selection of a single table name columns without their table. */
+function fromCollections(db: Reader) {
+  return db.select(viewColumns).from(collections).innerJoin(users, eq(users.id, collections.createdById));
+}
+
 export interface CollectionView {
   collection: CollectionRow;
   itemCount: number;
@@ -33,9 +40,7 @@ export function selectCollections(
   query: Pick<ListCollectionsQuery, 'q'> & { after: RowPlace | null; limit: number },
 ): CollectionView[] {
   const rest = query.after ? lt(collections.id, query.after.id) : undefined;
-  return db
-    .select(viewColumns)
-    .from(collections)
+  return fromCollections(db)
     .where(and(matching(query.q), rest))
     .orderBy(desc(collections.id))
     .limit(query.limit)
@@ -47,7 +52,7 @@ export function countCollections(db: Reader, q: string | undefined): number {
 }
 
 export function selectCollection(db: Reader, id: string): CollectionView | undefined {
-  return db.select(viewColumns).from(collections).where(eq(collections.id, id)).get();
+  return fromCollections(db).where(eq(collections.id, id)).get();
 }
 
 export function selectCollectionIdBySlug(db: Reader, slug: string): string | undefined {
@@ -102,6 +107,7 @@ export function selectItems(
   return db
     .select({ recordingId, addedAtMs, finishedPasses, eventCount })
     .from(collectionItems)
+    .innerJoin(recordings, eq(recordings.id, recordingId))
     .where(and(eq(collectionItems.collectionId, collectionId), rest))
     .orderBy(asc(addedAtMs), asc(recordingId))
     .limit(page.limit)

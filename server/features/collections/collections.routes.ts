@@ -92,6 +92,7 @@ export function collectionsRoutes({ services: { collections } }: Deps): Route[] 
       path: '/api/collections/:id/items/:recordingId',
       summary: 'Takes a recording out; releases that hold it keep it.',
       access: 'signed-in',
+      status: 204,
       params: collectionItemParamsSchema,
       handler: ({ actor, params }) => collections.removeItem(actor, params.id, params.recordingId),
     }),

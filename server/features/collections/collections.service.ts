@@ -112,12 +112,12 @@ export function createCollectionsService({ db, clock, ids, audit, recordings }: 
   }
 
   function addItems(actor: Actor, id: string, input: AddItems): { added: number; alreadyIn: number } {
+    requireView(db, actor, id);
     const wanted = input.recordingIds
       ? recordings.sharedByIds(actor, input.recordingIds).map((recording) => recording.id)
       : recordings.sharedIdsByFilter(actor, input.filter ?? {});
     requireAllFound(input, wanted);
     return write(db, (tx) => {
-      requireView(tx, actor, id);
       const present = new Set(selectMemberIds(tx, id, wanted));
       const fresh = wanted.filter((recordingId) => !present.has(recordingId));
       const addedAtMs = clock.nowMs();

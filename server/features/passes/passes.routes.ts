@@ -6,20 +6,11 @@ import {
   passesPageSchema,
   passSchema,
 } from '../../../shared/contract/passes.ts';
-import { personChoicesSchema } from '../../../shared/contract/people.ts';
 import type { Deps } from '../../deps.ts';
 import { defineRoute, type Route } from '../../http/define-route.ts';
 
 export function passesRoutes({ services: { passes } }: Deps): Route[] {
   return [
-    defineRoute({
-      method: 'get',
-      path: '/api/labelers',
-      summary: 'People a pass can be given to.',
-      access: 'signed-in',
-      response: personChoicesSchema,
-      handler: ({ actor }) => passes.labelers(actor),
-    }),
     defineRoute({
       method: 'get',
       path: '/api/passes',

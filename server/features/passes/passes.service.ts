@@ -117,10 +117,6 @@ export function createPassesService({ db, clock, ids, activity, audit, schemes }
     create,
     finish,
     cancel,
-    labelers: (actor: Actor) => {
-      if (!actor.roles.includes('curator')) throw forbidden('Only curators assign passes.');
-      return { items: selectLabelers(db) };
-    },
     requireOwnOpenPass,
     /** The pass this person has on the recording, the open one first. */
     findOwn: (reader: Reader, actor: Actor, recordingId: string) =>

@@ -1,6 +1,8 @@
+import { markingRows } from './marking-rows.ts';
 import type { MatrixRow } from './matrix-row.ts';
 import { peopleRows } from './people-rows.ts';
 import { recordingsRows } from './recordings-rows.ts';
+import { releasingRows } from './releasing-rows.ts';
 import { runsRows } from './runs-rows.ts';
 import { serviceRows } from './service-rows.ts';
 import { sessionsRows } from './sessions-rows.ts';
@@ -13,4 +15,6 @@ export const allRows: MatrixRow[] = [
   ...runsRows,
   ...uploadsRows,
   ...recordingsRows,
+  ...markingRows,
+  ...releasingRows,
 ];
