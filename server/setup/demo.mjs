@@ -46,6 +46,7 @@ await runCommand(async () => {
     NODE_ENV: 'production',
     PORT: port,
     RECALESCE_DEMO: '1',
+    RECALESCE_LOG_LEVEL: process.env.RECALESCE_LOG_LEVEL || 'warn',
     RECALESCE_HOST: '127.0.0.1',
     RECALESCE_PUBLIC_URL: origin,
     RECALESCE_DATA_DIR: dataDir,
