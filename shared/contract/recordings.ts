@@ -98,6 +98,7 @@ export const listRecordingsQuerySchema = pageQuerySchema.extend({
   q: z.string().trim().max(100).optional(),
   runId: idSchema.optional(),
   labId: idSchema.optional(),
+  material: z.string().trim().max(120).optional(),
   processing: processingSchema.optional(),
   sharing: sharingSchema.optional(),
   ultrasonicVerdict: z.enum(['not-observable', 'found', 'not-found']).optional(),
