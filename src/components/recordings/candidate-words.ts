@@ -1,0 +1,60 @@
+import type { Ultrasound } from '@shared/contract/measurement.ts';
+import type { Candidate, Recording } from '@shared/contract/recordings.ts';
+import type { Fact } from '@/components/app/fact.ts';
+import { formatNumber } from '@/composables/useFormat.ts';
+
+export type HearingClass = Candidate['hearingClass'];
+
+export const hearingWords: Readonly<Record<HearingClass, string>> = {
+  above: 'above',
+  across: 'across',
+  below: 'below',
+  unknown: 'not observable',
+};
+
+export const hearingOptions = [
+  { value: 'above', label: 'above the hearing line' },
+  { value: 'across', label: 'across it' },
+  { value: 'below', label: 'below it' },
+  { value: 'unknown', label: 'not observable' },
+] as const;
+
+/** Two or fewer: the count of chance is an expectation, so it is rounded up. */
+function chanceBound(expected: number): string {
+  return expected <= 1 ? '1 or fewer' : `${formatNumber(Math.ceil(expected))} or fewer`;
+}
+
+/** How the candidates lie to the hearing line, with what noise alone would give beside it. */
+export function candidateFacts({ verdict, candidates }: Ultrasound): Fact[] {
+  if (verdict === 'not-observable')
+    return [
+      { key: 'total', term: 'In the band that can be observed', value: formatNumber(candidates.total) },
+    ];
+  return [
+    { key: 'above', term: 'Above the hearing line', value: formatNumber(candidates.above) },
+    { key: 'across', term: 'Across it', value: formatNumber(candidates.across) },
+    { key: 'below', term: 'Below it', value: formatNumber(candidates.below) },
+    {
+      key: 'chance',
+      term: 'With energy above it by chance, whole file',
+      value: chanceBound(candidates.expectedByChance),
+    },
+  ];
+}
+
+const leastMarginS = 0.002;
+const marginInDurations = 4;
+
+/** Address of the bench with the candidate in its middle, and enough around it to see where it starts. */
+export function benchPlace(
+  recording: Pick<Recording, 'id' | 'frames' | 'sampleRateHz'>,
+  { onsetSample, endSample }: Pick<Candidate, 'onsetSample' | 'endSample'>,
+) {
+  const durationSamples = endSample - onsetSample;
+  const margin = Math.ceil(
+    Math.max(leastMarginS * recording.sampleRateHz, marginInDurations * durationSamples),
+  );
+  const from = Math.max(0, onsetSample - margin);
+  const to = Math.min(recording.frames, endSample + margin);
+  return { path: `/bench/${recording.id}`, query: { from: String(from), to: String(to) } };
+}

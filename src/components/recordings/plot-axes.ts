@@ -1,0 +1,46 @@
+import type uPlot from 'uplot';
+import { formatFrequency, formatNumber } from '@/composables/useFormat.ts';
+import type { Palette } from '@/theme/palette.ts';
+import { fontFigures, fontText } from '@/theme/tokens.ts';
+
+export const figureFont = `11px ${fontFigures}`;
+export const labelFont = `600 12px ${fontText}`;
+
+/** Ticks of a logarithmic axis of frequency: the decades, and 20 kHz is drawn as a line of its own. */
+export function decadesWithin(lowHz: number, highHz: number): number[] {
+  const decades: number[] = [];
+  for (let hz = 10 ** Math.ceil(Math.log10(lowHz)); hz <= highHz; hz *= 10) decades.push(hz);
+  return decades;
+}
+
+export function frequencyAxis(palette: Palette, lowHz: number, highHz: number): uPlot.Axis {
+  return {
+    stroke: palette.inkQuiet,
+    font: figureFont,
+    grid: { show: false },
+    ticks: { stroke: palette.hairline, width: 1, size: 4 },
+    splits: () => decadesWithin(lowHz, highHz),
+    values: (_plot, splits) => splits.map((hz) => formatFrequency(hz)),
+    size: 30,
+  };
+}
+
+export function valueAxis(palette: Palette, label: string): uPlot.Axis {
+  return {
+    stroke: palette.inkQuiet,
+    font: figureFont,
+    label,
+    labelFont: figureFont,
+    labelSize: 18,
+    labelGap: 2,
+    grid: { stroke: palette.hairline, width: 1 },
+    ticks: { show: false },
+    values: (_plot, splits) => splits.map((value) => formatNumber(value)),
+    size: 46,
+  };
+}
+
+/** Room to the next round step, so that a curve does not touch the frame. */
+export function roundRange(low: number, high: number, step: number): [number, number] {
+  return [Math.floor(low / step) * step, Math.ceil(high / step) * step];
+}

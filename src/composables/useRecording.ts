@@ -1,0 +1,50 @@
+import { useQuery, useQueryClient } from '@tanstack/vue-query';
+import { computed, watch } from 'vue';
+import type { Ref } from 'vue';
+import type { Recording } from '@shared/contract/recordings.ts';
+import { getRecording, measureAgain } from '@/api/recordings.ts';
+import { useActivity } from '@/composables/useActivity.ts';
+import { useAnnounce } from '@/composables/useAnnounce.ts';
+import { useSubmit } from '@/composables/useSubmit.ts';
+
+/** Progress that is told while nobody hears, as after a lost stream, is asked for at this pace. */
+const pollMs = 5000;
+
+function isUnderway(recording: Recording | undefined): boolean {
+  return recording?.processing === 'queued' || recording?.processing === 'measuring';
+}
+
+/** One recording, live: while it is measured its progress follows the server, then the measurements come by themselves. */
+export function useRecording(id: Ref<string>) {
+  const queries = useQueryClient();
+  const { announce } = useAnnounce();
+  const key = computed(() => ['recording', id.value]);
+  const query = useQuery({
+    queryKey: key,
+    queryFn: ({ signal }) => getRecording(id.value, signal),
+    refetchInterval: ({ state }) => (isUnderway(state.data) ? pollMs : false),
+  });
+  const retrying = useSubmit(async () => {
+    queries.setQueryData(key.value, await measureAgain(id.value));
+  });
+
+  useActivity((activity) => {
+    if (activity.topic === 'pass') return void queries.invalidateQueries({ queryKey: ['passes', id.value] });
+    if (activity.topic !== 'recording' || activity.id !== id.value) return;
+    const { processing, progress, sharing } = activity;
+    const before = query.data.value;
+    if (!before) return;
+    if (before.processing === processing && before.sharing === sharing)
+      queries.setQueryData(key.value, { ...before, progress });
+    else void query.refetch();
+  });
+  watch(
+    () => query.data.value?.processing,
+    (now, before) => {
+      if (before !== undefined && now === 'measured') void announce('Measured. The measurements are here.');
+      if (before !== undefined && now === 'failed') void announce('The measurement failed.');
+    },
+  );
+
+  return { recording: query.data, error: query.error, refetch: query.refetch, retrying };
+}
