@@ -1,0 +1,230 @@
+import { createHash } from 'node:crypto';
+import { afterAll, beforeAll, describe, expect, test } from 'vitest';
+import { readWavHeader } from '../../../../shared/audio/wav-header.ts';
+import { bytesSource } from '../../../../shared/audio/byte-source.ts';
+import { decodeFrames } from '../../../../shared/audio/pcm-decode.ts';
+import { decodeTile } from '../../../../shared/audio/tile.ts';
+import { detectedCandidate, replaceCandidates } from '../../../support/server/seed-candidates.ts';
+import { seedMeasured, seedRecording, smallWav } from '../../../support/server/seed-recordings.ts';
+import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
+
+let app: TestApp;
+let id: string;
+beforeAll(async () => {
+  app = createTestApp();
+  id = await seedMeasured(app, { fileName: 'Tröpfchen "7".wav', sharing: 'shared' });
+});
+afterAll(() => app.close());
+
+const wav = Buffer.from(smallWav());
+const sha256 = createHash('sha256').update(wav).digest('hex');
+const get = (tail: string, name: 'contributor' | 'otherContributor' = 'contributor') =>
+  app.as(name).get(`/api/recordings/${id}${tail}`);
+const binary = (tail: string) => get(tail).buffer(true).parse(collect);
+
+function collect(response: unknown, done: (error: Error | null, body: Buffer) => void): void {
+  const stream = response as NodeJS.ReadableStream;
+  const parts: Buffer[] = [];
+  stream.on('data', (part: Buffer) => parts.push(part));
+  stream.on('end', () => done(null, Buffer.concat(parts)));
+}
+
+describe('the original bytes', () => {
+  test('come unchanged, under their hash, as a download that nobody else keeps', async () => {
+    const answer = await binary('/audio');
+    expect(answer.body).toEqual(wav);
+    expect(answer.headers).toMatchObject({
+      etag: `"${sha256}"`,
+      'content-type': 'audio/wav',
+      'cache-control': 'private, no-cache',
+      'accept-ranges': 'bytes',
+      'content-disposition': `attachment; filename="Tr_pfchen _7_.wav"; filename*=UTF-8''Tr%C3%B6pfchen%20%227%22.wav`,
+    });
+    expect(answer.headers['content-encoding']).toBeUndefined();
+  });
+
+  test('come in ranges', async () => {
+    const part = await binary('/audio').set('Range', 'bytes=44-143');
+    expect(part.status).toBe(206);
+    expect(part.headers['content-range']).toBe(`bytes 44-143/${wav.length}`);
+    expect(part.body).toEqual(wav.subarray(44, 144));
+    expect((await get('/audio').set('Range', `bytes=${wav.length}-`)).status).toBe(416);
+  });
+
+  test('are not sent again to whoever has them, and sent whole where the range belongs to other bytes', async () => {
+    expect((await get('/audio').set('If-None-Match', `"${sha256}"`)).status).toBe(304);
+    const other = await binary('/audio').set('Range', 'bytes=0-9').set('If-Range', '"another"');
+    expect([other.status, other.body.length]).toEqual([200, wav.length]);
+  });
+});
+
+describe('views', () => {
+  test('do not exist before the measurement, and the answer says so', async () => {
+    const queued = await seedRecording(app);
+    for (const tail of [
+      '/peaks',
+      '/spectrogram/layout',
+      '/spectrum',
+      '/frames.csv',
+      '/candidates',
+      '/listen?startSample=0&endSample=10',
+    ]) {
+      const answer = await app.as('contributor').get(`/api/recordings/${queued}${tail}`);
+      expect([answer.status, answer.body.detail]).toEqual([
+        409,
+        'This recording is not measured yet; its views come with the measurement.',
+      ]);
+    }
+  });
+
+  test('peaks hold the least and the greatest sample of each step', async () => {
+    const { body } = await get('/peaks?points=10');
+    expect(body).toMatchObject({ channel: 0, startSample: 0 });
+    expect(Math.max(...body.maximum)).toBeGreaterThan(0.3);
+    expect(Math.min(...body.minimum)).toBeLessThan(-0.3);
+  });
+
+  test('the layout names tiles that exist, each readable and kept under its measurement', async () => {
+    const { body: layout } = await get('/spectrogram/layout');
+    expect(layout.pictures.map(({ band }: { band: string }) => band)).toEqual(['audible', 'ultrasonic']);
+    for (const { band, levels } of layout.pictures) {
+      const answer = await binary(`/spectrogram/${band}/${levels - 1}/0`);
+      expect(decodeTile(answer.body).columns).toBeGreaterThan(0);
+      const again = await get(`/spectrogram/${band}/${levels - 1}/0`).set(
+        'If-None-Match',
+        String(answer.headers['etag']),
+      );
+      expect(again.status).toBe(304);
+      expect((await get(`/spectrogram/${band}/${levels}/0`)).status).toBe(404);
+      expect((await get(`/spectrogram/${band}/0/99999`)).status).toBe(404);
+    }
+    expect((await get('/spectrogram/infrared/0/0')).status).toBe(404);
+  });
+
+  test.each(['/peaks', '/spectrum', '/frames.csv', '/listen?startSample=0&endSample=10'])(
+    '%s of a channel that does not exist is missing',
+    async (tail) => {
+      const answer = await get(`${tail}${tail.includes('?') ? '&' : '?'}channel=1`);
+      expect(answer.status).toBe(404);
+    },
+  );
+
+  test('the table of frames has one line for each frame under a line of names', async () => {
+    const answer = await get('/frames.csv').buffer(true);
+    const lines = answer.text.trimEnd().split('\r\n');
+    expect(lines[0]).toMatch(/^startSample,endSample,timeS,/);
+    const widths = new Set(lines.map((line) => line.split(',').length));
+    expect(widths.size).toBe(1);
+    expect(lines.length).toBeGreaterThan(10);
+    expect(answer.headers['content-type']).toBe('text/csv; charset=utf-8');
+  });
+
+  test('the spectrum has quiet and greatest density on one axis', async () => {
+    const { body } = await get('/spectrum');
+    expect(body.quietDbPerHz).toHaveLength(body.frequenciesHz.length);
+    expect(body.maximumDbPerHz).toHaveLength(body.frequenciesHz.length);
+  });
+});
+
+describe('listening', () => {
+  test('slowed ten times, a burst of 30 kHz comes out at 3 kHz, ten times as late, and not too loud', async () => {
+    const answer = await binary('/listen?startSample=0&endSample=48000&slow=10');
+    const header = await readWavHeader(bytesSource(answer.body));
+    expect(header.format).toMatchObject({
+      sampleRateHz: 48_000,
+      channels: 1,
+      bitsPerSample: 16,
+      frames: 240_000,
+    });
+    const samples = new Float32Array(header.format.frames);
+    decodeFrames(answer.body.subarray(header.dataOffset), header.format, [samples]);
+    const loudest = samples.reduce((peak, sample) => Math.max(peak, Math.abs(sample)), 0);
+    expect(loudest).toBeLessThanOrEqual(10 ** (-6 / 20));
+    expect(loudest).toBeGreaterThan(0.3);
+    // The first burst begins at sample 9,600 of 96 kHz: 0.1 s, so 1 s, 48,000 samples of the rendition.
+    expect(samples.findIndex((sample) => Math.abs(sample) > 0.05)).toBeGreaterThan(47_980);
+    expect(samples.findIndex((sample) => Math.abs(sample) > 0.05)).toBeLessThan(48_020);
+    let crossings = 0;
+    for (let n = 48_000; n < 48_160; n++) if (samples[n]! < 0 !== samples[n + 1]! < 0) crossings++;
+    // 160 samples at 48 kHz are ten periods of 3 kHz.
+    expect(Math.abs(crossings - 20)).toBeLessThanOrEqual(1);
+  });
+
+  test('comes in ranges, from the same bytes each time', async () => {
+    const tail = '/listen?startSample=0&endSample=9600&slow=2';
+    const whole = await binary(tail);
+    const part = await binary(tail)
+      .set('Range', 'bytes=100-199')
+      .set('If-Range', String(whole.headers['etag']));
+    expect([part.status, part.headers['content-range']]).toEqual([206, `bytes 100-199/${whole.body.length}`]);
+    expect(part.body).toEqual(whole.body.subarray(100, 200));
+    expect((await get(tail).set('Range', 'bytes=99999999-')).status).toBe(416);
+  });
+
+  test.each([
+    ['startSample=10&endSample=10', 'endSample'],
+    ['startSample=48000&endSample=48010', 'startSample'],
+    ['startSample=0&endSample=48000&slow=241', 'endSample'],
+    ['startSample=0&endSample=48000&slow=0.5', 'slow'],
+  ])('%s is refused at %s', async (query, path) => {
+    const { status, body } = await get(`/listen?${query}`);
+    expect([status, body.fields[0].path]).toEqual([422, path]);
+  });
+});
+
+describe('candidates', () => {
+  test('page through in either order without losing or repeating one, those of equal strength included', async () => {
+    const found = Array.from({ length: 9 }, (_, n) =>
+      detectedCandidate({
+        onsetSample: 1000 * (n >> 1),
+        endSample: 1000 * (n >> 1) + 100,
+        peakDb: n % 3 === 0 ? null : -10 * (n % 2),
+      }),
+    );
+    replaceCandidates(app, id, found);
+    for (const sort of ['onset', 'strongest']) {
+      const ordinals: number[] = [];
+      const keys: (number | null)[] = [];
+      for (let cursor: string | null = ''; cursor !== null;) {
+        const { body } = await get(
+          `/candidates?limit=2&sort=${sort}${cursor === '' ? '' : `&cursor=${cursor}`}`,
+        );
+        expect(body.total).toEqual({ count: 9, capped: false });
+        ordinals.push(...body.items.map((item: { ordinal: number }) => item.ordinal));
+        keys.push(
+          ...body.items.map((item: { onsetSample: number; peakDb: number | null }) =>
+            sort === 'onset' ? item.onsetSample : item.peakDb,
+          ),
+        );
+        cursor = body.nextCursor;
+      }
+      expect(new Set(ordinals).size).toBe(9);
+      const ordered =
+        sort === 'onset'
+          ? [0, 0, 1000, 1000, 2000, 2000, 3000, 3000, 4000]
+          : [0, 0, 0, -10, -10, -10, null, null, null];
+      expect(keys.map((key) => (key === 0 ? 0 : key))).toEqual(ordered);
+    }
+  });
+
+  test('narrow by window, channel and hearing class; a window takes whatever reaches into it', async () => {
+    replaceCandidates(app, id, [
+      detectedCandidate({ onsetSample: 100, endSample: 200 }),
+      detectedCandidate({ onsetSample: 200, endSample: 300, hearingClass: 'below' }),
+      detectedCandidate({ onsetSample: 300, endSample: 400, channel: 1, channels: [1, 0] }),
+    ]);
+    const ordinals = async (query: string) => {
+      const { body } = await get(`/candidates?${query}`);
+      return body.items.map((item: { ordinal: number }) => item.ordinal);
+    };
+    expect(await ordinals('startSample=150&endSample=201')).toEqual([0, 1]);
+    expect(await ordinals('startSample=200&endSample=300')).toEqual([1]);
+    expect(await ordinals('hearingClass=below')).toEqual([1]);
+    expect(await ordinals('channel=1')).toEqual([2]);
+  });
+
+  test('tell their onset in seconds of the recording', async () => {
+    replaceCandidates(app, id, [detectedCandidate({ onsetSample: 9600 })]);
+    expect((await get('/candidates', 'otherContributor')).body.items[0].onsetS).toBe(0.1);
+  });
+});
