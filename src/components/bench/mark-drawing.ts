@@ -43,15 +43,20 @@ interface Stroke {
   fromY: number;
   toY: number;
   isDotted: boolean;
+  /** The end of a span is drawn lighter than its onset. */
+  isEnd?: boolean;
 }
 
 /** White core on a dark halo: seen over any colour of any map. */
-function strokeLine(context: CanvasRenderingContext2D, { x, fromY, toY, isDotted }: Stroke): void {
+function strokeLine(
+  context: CanvasRenderingContext2D,
+  { x, fromY, toY, isDotted, isEnd = false }: Stroke,
+): void {
   const at = Math.round(x) + 0.5;
   context.setLineDash(isDotted ? [2, 4] : []);
   for (const [colour, width] of [
-    [HALO, 4],
-    [CORE, 2],
+    [HALO, isEnd ? 3 : 4],
+    [CORE, isEnd ? 1 : 2],
   ] as const) {
     context.strokeStyle = colour;
     context.lineWidth = width;
@@ -142,11 +147,11 @@ function drawSelected(pen: StagePen, fracture: Fracture): void {
   drawBandBox(pen, fracture, onsetX, endX);
   drawInBand(pen, onsetX - BESIDE_PX, places.ultrasonic, fracture);
   drawInBand(pen, onsetX - BESIDE_PX, places.audible, fracture);
-  const endStroke = { ...fracture, isSelected: false };
-  drawInBand(pen, endX + BESIDE_PX, places.ultrasonic, endStroke);
-  drawInBand(pen, endX + BESIDE_PX, places.audible, endStroke);
+  for (const { topPx, heightPx } of [places.ultrasonic, places.audible]) {
+    const x = endX + BESIDE_PX;
+    strokeLine(context, { x, fromY: topPx, toY: topPx + heightPx, isDotted: true, isEnd: true });
+  }
   drawInWave(pen, onsetX, fracture);
-  drawInWave(pen, endX, endStroke);
   drawSpanBar(pen, onsetX, endX);
   drawGlyph(pen, onsetX, fracture.kind === 'mark' ? fracture.glyph : '\u00B7', colours.fracture);
 }

@@ -26,7 +26,7 @@ export function readingFacts(parameters: BurstParameters, sampleRateHz: number):
       : [
           {
             key: 'uncertainty',
-            term: 'Uncertainty of the onset',
+            term: 'Uncertainty',
             value: `\u00B1${formatDuration(onsetUncertaintyUs * 1e-6, 2)}`,
           },
         ];
@@ -34,11 +34,15 @@ export function readingFacts(parameters: BurstParameters, sampleRateHz: number):
     { key: 'onset', term: 'Onset', value: timeWords(parameters.onsetSample, sampleRateHz) },
     ...uncertainty,
     { key: 'duration', term: 'Duration', value: formatDuration(durationUs * 1e-6) },
-    { key: 'rise', term: 'Rise time', value: formatDuration(riseTimeUs * 1e-6) },
+    {
+      key: 'rise',
+      term: 'Rise time',
+      value: riseTimeUs === 0 ? '0\u00A0\u00B5s' : formatDuration(riseTimeUs * 1e-6),
+    },
     { key: 'counts', term: 'Counts', value: formatNumber(parameters.counts) },
     {
       key: 'peak',
-      term: 'Peak amplitude',
+      term: 'Peak',
       value: peakWords(parameters),
       title: 're full scale, or re 1 \u00B5V at the sensor where volts are known',
     },

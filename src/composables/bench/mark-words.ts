@@ -21,9 +21,12 @@ export function timeWords(sample: number, sampleRateHz: number): string {
   return formatSeconds(sample / sampleRateHz, Math.min(6, timeDecimals(sampleRateHz)));
 }
 
+const MOST_TABLE_DECIMALS = 5;
+
 /** The same without its unit, for tables that have it in their heading. */
 export function timeFigure(sample: number, sampleRateHz: number): string {
-  return timeWords(sample, sampleRateHz).replace(/\u00A0s$/, '');
+  const decimals = Math.min(MOST_TABLE_DECIMALS, timeDecimals(sampleRateHz));
+  return formatSeconds(sample / sampleRateHz, decimals).replace(/\u00A0s$/, '');
 }
 
 /** "crack at 41.324 8 s" */

@@ -1,4 +1,5 @@
 import type { RecordingEvent } from '@shared/contract/events.ts';
+import { hasSameFields } from '@/composables/bench/mark.ts';
 import type { MarkFields } from '@/composables/bench/mark.ts';
 
 export type SaveRequest =
@@ -116,7 +117,7 @@ export function createSaveQueue({ send, newId, wait, onStored, onChange }: SaveQ
     if (!entry) return;
     if (answer.kind === 'stored') settleStored(entry, request, answer.event);
     else if (answer.kind === 'removed') settleRemoved(entry);
-    else if (answer.kind === 'conflict') update(key, { state: 'conflict', theirs: answer.theirs });
+    else if (answer.kind === 'conflict') settleConflict(entry, request, answer.theirs);
     else if (answer.kind === 'refused')
       update(key, { state: 'refused', sentence: answer.sentence, tried: null });
     else pause(key, answer);
@@ -129,6 +130,13 @@ export function createSaveQueue({ send, newId, wait, onStored, onChange }: SaveQ
     if (entry.wish === sent) entries.delete(entry.key);
     else update(entry.key, { state: 'waiting', revision: event.revision, tried: null });
     onStored(entry.key, event);
+  }
+
+  /** A change that had arrived, and whose answer was lost, meets itself when it is sent again. */
+  function settleConflict(entry: QueueEntry, request: SaveRequest, theirs: RecordingEvent | null): void {
+    const isOurs = theirs !== null && request.kind === 'change' && hasSameFields(theirs, request.mark);
+    if (isOurs) settleStored(entry, request, theirs);
+    else update(entry.key, { state: 'conflict', theirs });
   }
 
   /** Where the mark is wanted again meanwhile, it comes back under a new id: the old one stays a trace. */

@@ -29,6 +29,9 @@ const GUTTER_PX = 66;
 const GLYPH_HEIGHT_PX = 24;
 const LINE_HEIGHT_PX = 16;
 const GAP_PX = 10;
+/** The ultrasonic band gets most of the room, unless nothing of it can be seen. */
+export const FIRST_SPLIT = 0.68;
+export const AUDIBLE_SPLIT = 0.2;
 export const LEAST_SPLIT = 0.12;
 export const MOST_SPLIT = 0.88;
 

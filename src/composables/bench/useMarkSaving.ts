@@ -25,7 +25,7 @@ export function useMarkSaving({ recordingId, passId, onStored }: MarkSavingOptio
   const session = useSessionStore();
 
   const queue = createSaveQueue({
-    send: (request) => send({ recordingId, passId }, request),
+    send: (request) => Promise.race([send({ recordingId, passId }, request), lateAnswer()]),
     newId,
     wait: (delayMs, run) => {
       const timer = setTimeout(run, delayMs);
@@ -61,6 +61,15 @@ export function useMarkSaving({ recordingId, passId, onStored }: MarkSavingOptio
       entries.value.filter(({ state }) => state === 'conflict' || state === 'refused'),
     ),
   };
+}
+
+const LONGEST_ANSWER_MS = 20_000;
+
+/** A request that gets no answer is tried again; each of them is safe to repeat. */
+function lateAnswer(): Promise<SaveAnswer> {
+  return new Promise((resolve) => {
+    setTimeout(() => resolve({ kind: 'unreachable', retryAfterS: null }), LONGEST_ANSWER_MS);
+  });
 }
 
 async function send(
