@@ -5,6 +5,8 @@ export interface RealFft {
   readonly size: number;
   /** Write `size` samples here before `transform`. */
   readonly input: Float32Array;
+  /** The same memory as `input`. */
+  readonly inputBits: Int32Array;
   /** After `transform`: [X0, X(N/2), Re X1, Im X1, Re X2, ...], not normalised. */
   readonly output: Float32Array;
   transform(): void;
@@ -51,11 +53,16 @@ function createEngine(size: number): RealFft {
   // Growing the heap detaches every view of it, so a view is renewed when the heap has changed.
   let input = viewOf(inputAt, size);
   let output = viewOf(outputAt, size);
+  let inputBits = bitsOf(input);
   return {
     size,
     get input() {
       if (input.buffer !== pffft.HEAPF32.buffer) input = viewOf(inputAt, size);
       return input;
+    },
+    get inputBits() {
+      if (inputBits.buffer !== pffft.HEAPF32.buffer) inputBits = bitsOf(viewOf(inputAt, size));
+      return inputBits;
     },
     get output() {
       if (output.buffer !== pffft.HEAPF32.buffer) output = viewOf(outputAt, size);
@@ -70,4 +77,8 @@ function createEngine(size: number): RealFft {
 function viewOf(pointer: number, size: number): Float32Array {
   const first = pointer / Float32Array.BYTES_PER_ELEMENT;
   return pffft.HEAPF32.subarray(first, first + size);
+}
+
+function bitsOf(values: Float32Array): Int32Array {
+  return new Int32Array(values.buffer, values.byteOffset, values.length);
 }

@@ -26,8 +26,6 @@ export class FrameSpectrum {
   readonly #fft: RealFft;
   readonly #window: Window;
   readonly #scale: number;
-  readonly #centred: Float32Array;
-  readonly #centredBits: Int32Array;
 
   /** @param size N, a power of two from 32. */
   constructor(size: number) {
@@ -37,8 +35,6 @@ export class FrameSpectrum {
     this.#fft = realFft(size);
     this.#window = hannWindow(size);
     this.#scale = 4 / (this.#window.sum * this.#window.sum);
-    this.#centred = new Float32Array(size);
-    this.#centredBits = new Int32Array(this.#centred.buffer);
   }
 
   get isSilent(): boolean {
@@ -54,11 +50,6 @@ export class FrameSpectrum {
    */
   analyse(samples: Float32Array, from: number, to: number): void {
     this.#measure(samples, from, to);
-    const { weights } = this.#window;
-    const input = this.#fft.input;
-    const centred = this.#centred;
-    for (let n = 0; n < to - from; n++) input[n] = centred[n]! * weights[n]!;
-    if (to - from < this.size) input.fill(0, to - from);
     this.#transform(0, this.power.length);
   }
 
@@ -89,24 +80,41 @@ export class FrameSpectrum {
 
   #measure(samples: Float32Array, from: number, to: number): void {
     const count = to - from;
-    const centred = this.#centred;
+    const { weights } = this.#window;
+    const input = this.#fft.input;
     const mean = sumOf(samples, from, to) / count;
-    let peak = 0;
-    for (let n = 0; n < count; n++) {
-      const x = samples[from + n]!;
-      centred[n] = x - mean;
-      if (x > peak) peak = x;
-      else if (-x > peak) peak = -x;
+    let evenSquares = 0;
+    let oddSquares = 0;
+    let highest = 0;
+    let lowest = 0;
+    for (let n = 0; n < count; n += 2) {
+      const first = samples[from + n]!;
+      // Past the end of an odd count, the mean stands in: it adds nothing.
+      const second = n + 1 < count ? samples[from + n + 1]! : mean;
+      const a = first - mean;
+      const b = second - mean;
+      input[n] = a * weights[n]!;
+      input[n + 1] = b * weights[n + 1]!;
+      evenSquares += a * a;
+      oddSquares += b * b;
+      if (first > highest) highest = first;
+      else if (first < lowest) lowest = first;
+      if (second > highest) highest = second;
+      else if (second < lowest) lowest = second;
     }
+    if (count < this.size) input.fill(0, count);
     this.mean = mean;
-    this.meanSquare = squareSumOf(centred, count) / count;
-    this.peak = peak;
+    this.meanSquare = (evenSquares + oddSquares) / count;
+    this.peak = Math.max(highest, -lowest);
     this.crossings = this.#countCrossings(count);
   }
 
-  /** By the sign bits: a branch per sample would be guessed wrong at every second sample of noise. */
+  /**
+   * By the sign bits of the windowed samples, which are those of the samples (a weight of zero keeps the sign of its
+   * zero): a branch per sample would be guessed wrong at every second sample of noise.
+   */
   #countCrossings(count: number): number {
-    const bits = this.#centredBits;
+    const bits = this.#fft.inputBits;
     let crossings = 0;
     for (let n = 1; n < count; n++) crossings += (bits[n]! ^ bits[n - 1]!) >>> 31;
     return crossings;
@@ -114,7 +122,7 @@ export class FrameSpectrum {
 }
 
 /** Two sums run side by side: one addition would have to wait for the one before. */
-function sumOf(samples: Float32Array, from: number, to: number): number {
+export function sumOf(samples: Float32Array, from: number, to: number): number {
   let even = 0;
   let odd = 0;
   let i = from;
@@ -125,17 +133,6 @@ function sumOf(samples: Float32Array, from: number, to: number): number {
   return i < to ? even + odd + samples[i]! : even + odd;
 }
 
-function squareSumOf(values: Float32Array, count: number): number {
-  let even = 0;
-  let odd = 0;
-  let n = 0;
-  for (; n + 1 < count; n += 2) {
-    even += values[n]! * values[n]!;
-    odd += values[n + 1]! * values[n + 1]!;
-  }
-  return n < count ? even + odd + values[n]! * values[n]! : even + odd;
-}
-
 /**
  * Mean square that the lines of a Hann spectrum carry: sum(power) * sum(w)^2 / (2 N sum(w^2)) = sum(power) / 3.
  *
@@ -143,7 +140,5 @@ function squareSumOf(values: Float32Array, count: number): number {
  * bins and mean square 0.5.
  */
 export function meanSquareOfBins(power: Float32Array, first: number, end: number): number {
-  let sum = 0;
-  for (let k = first; k < end; k++) sum += power[k]!;
-  return sum / 3;
+  return sumOf(power, first, end) / 3;
 }

@@ -1,4 +1,5 @@
 import { EnergyClasses } from './energy-classes.ts';
+import { sumOf } from './frame-spectrum.ts';
 import { PowerQuantiles } from './power-quantiles.ts';
 
 /** Densities of one channel on one axis; dB re full scale squared per hertz, so that their integral is the mean square. */
@@ -70,9 +71,7 @@ export class LongTermSpectrum {
     for (let p = 0; p < points.length; p++) if (points[p]! > maximum[p]!) maximum[p] = points[p]!;
     // Frames overlap by half: every other one holds all samples once.
     if (this.#frames++ % 2 === 0) this.#quantiles.push(points);
-    let energy = 0;
-    for (let k = this.#firstActivityBin; k < power.length; k++) energy += power[k]!;
-    this.#classes.push(energy, points);
+    this.#classes.push(sumOf(power, this.#firstActivityBin, power.length), points);
   }
 
   finish(): LongTermSpectra {
