@@ -12,6 +12,7 @@ import { KeyFileError } from './services/key-file.ts';
 const keepAliveMs = 70_000;
 const stopWithinMs = 14_000;
 const jobGraceMs = 10_000;
+const sweepEveryMs = 15 * 60_000;
 
 interface Running {
   ground: OpenGround;
@@ -41,10 +42,20 @@ async function main(): Promise<void> {
   const runner = createJobRunner({ queue: deps.jobs, handlers: allJobs(deps), log: deps.log, lanes });
   await listen(server, config);
   runner.start();
+  sweepUploads(deps);
   exitOnTheUnexpected(deps);
   stopOnSignals({ ground, deps, server, runner, devClient });
   deps.log.info({ host: config.host, port: config.port, publicUrl: config.publicUrl }, 'listening');
   announceSetup(deps);
+}
+
+/** Uploads that nobody goes on with are cleared, at the start and every quarter of an hour. */
+function sweepUploads({ services, log }: Deps): void {
+  const sweep = () => {
+    services.uploadSweep.sweep().catch((error: unknown) => log.error({ err: error }, 'clearing uploads failed'));
+  };
+  setInterval(sweep, sweepEveryMs).unref();
+  sweep();
 }
 
 function createHttpServer(): Server {
