@@ -52,7 +52,9 @@ async function main(): Promise<void> {
 /** Uploads that nobody goes on with are cleared, at the start and every quarter of an hour. */
 function sweepUploads({ services, log }: Deps): void {
   const sweep = () => {
-    services.uploadSweep.sweep().catch((error: unknown) => log.error({ err: error }, 'clearing uploads failed'));
+    services.uploadSweep
+      .sweep()
+      .catch((error: unknown) => log.error({ err: error }, 'clearing uploads failed'));
   };
   setInterval(sweep, sweepEveryMs).unref();
   sweep();
