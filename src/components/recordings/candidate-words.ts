@@ -30,10 +30,12 @@ export function candidateFacts({ verdict, candidates }: Ultrasound): Fact[] {
     return [
       { key: 'total', term: 'In the band that can be observed', value: formatNumber(candidates.total) },
     ];
+  const unknown = candidates.total - candidates.above - candidates.across - candidates.below;
   return [
     { key: 'above', term: 'Above the hearing line', value: formatNumber(candidates.above) },
     { key: 'across', term: 'Across it', value: formatNumber(candidates.across) },
     { key: 'below', term: 'Below it', value: formatNumber(candidates.below) },
+    ...(unknown > 0 ? [{ key: 'unknown', term: 'Not to be told', value: formatNumber(unknown) }] : []),
     {
       key: 'chance',
       term: 'With energy above it by chance, whole file',

@@ -97,7 +97,7 @@ export function courseOptions({ series, durationS, hasTimeAxis, onPoint }: Cours
         font: figureFont,
         grid: { show: false },
         ticks: { stroke: palette.hairline, width: 1, size: 4 },
-        values: (_plot, splits) => splits.map((seconds) => formatDuration(seconds)),
+        values: (_plot, splits) => splits.map((seconds) => (seconds === 0 ? '0' : formatDuration(seconds))),
         size: 28,
       },
       {

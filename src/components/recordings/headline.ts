@@ -29,7 +29,7 @@ function whereTheyLie({ total, above, across }: Ultrasound['candidates']): strin
   if (above === total) return total === 1 ? 'above the hearing line' : 'all above the hearing line';
   if (above >= nearlyAll * total) return 'nearly all above the hearing line';
   if (above >= most * total) return 'most above the hearing line';
-  return 'some above or across the hearing line';
+  return `${formatNumber(above + across)} of them above or across the hearing line`;
 }
 
 function confirmedWords(eventCount: number | null, total: number): string {

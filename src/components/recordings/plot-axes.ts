@@ -6,11 +6,14 @@ import { fontFigures, fontText } from '@/theme/tokens.ts';
 export const figureFont = `11px ${fontFigures}`;
 export const labelFont = `600 12px ${fontText}`;
 
-/** Ticks of a logarithmic axis of frequency: the decades, and 20 kHz is drawn as a line of its own. */
-export function decadesWithin(lowHz: number, highHz: number): number[] {
-  const decades: number[] = [];
-  for (let hz = 10 ** Math.ceil(Math.log10(lowHz)); hz <= highHz; hz *= 10) decades.push(hz);
-  return decades;
+/** A tick closer to the end than this factor would run into the one at the end. */
+const leastRatio = 2.2;
+
+/** Ticks of a logarithmic axis of frequency: the decades and the end; 20 kHz is drawn as a line of its own. */
+export function frequencyTicks(lowHz: number, highHz: number): number[] {
+  const ticks: number[] = [];
+  for (let hz = 10 ** Math.ceil(Math.log10(lowHz)); hz * leastRatio <= highHz; hz *= 10) ticks.push(hz);
+  return [...ticks, highHz];
 }
 
 export function frequencyAxis(palette: Palette, lowHz: number, highHz: number): uPlot.Axis {
@@ -19,7 +22,7 @@ export function frequencyAxis(palette: Palette, lowHz: number, highHz: number): 
     font: figureFont,
     grid: { show: false },
     ticks: { stroke: palette.hairline, width: 1, size: 4 },
-    splits: () => decadesWithin(lowHz, highHz),
+    splits: () => frequencyTicks(lowHz, highHz),
     values: (_plot, splits) => splits.map((hz) => formatFrequency(hz)),
     size: 30,
   };

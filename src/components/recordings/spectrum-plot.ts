@@ -45,7 +45,7 @@ export function spectrumOptions(
   const { hz, db } = extentOf(data);
   return (palette: Palette, size: PlotSize): uPlot.Options => ({
     ...size,
-    padding: [10, 12, 0, 0],
+    padding: [10, 24, 0, 0],
     legend: { show: false },
     cursor: { drag: { x: false, y: false }, points: { show: false }, y: false },
     scales: {

@@ -21,7 +21,7 @@ export const sensitivityOptions: readonly ChoiceOption<Sensitivity>[] = [
   {
     value: 'voices',
     label: 'People may be heard',
-    hint: 'A word in the background is enough, and one above the sensor counts as well. A reviewer listens before anything is shared.',
+    hint: 'A word in the background is enough. A reviewer listens before anything is shared.',
   },
   { value: 'personal-data', label: 'It holds personal data', hint: 'Names, places, times of work.' },
   {
