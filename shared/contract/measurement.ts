@@ -33,6 +33,7 @@ export const channelDescriptorsSchema = z.object({
   spreadHz: z.number().nullable(),
   flatness: z.number().nullable(),
   rolloff99AmplitudeHz: z.number().nullable(),
+  /** Sign changes per second about the mean: a sine of f Hz has 2 f. */
   zeroCrossingRateHz: z.number().nullable(),
   ultrasonicShare: z.number().nullable(),
 });
@@ -96,7 +97,7 @@ export const ultrasoundSchema = z.object({
 });
 export type Ultrasound = z.infer<typeof ultrasoundSchema>;
 
-/** Through the run: at most 1,000 equal steps, `null` in silence. */
+/** Through the recording: at most 1,000 equal steps, `null` in silence; of several channels the loudest at each step. */
 export const courseSchema = z.object({
   samplesPerStep: z.number().int().min(1),
   levelDb: z.array(z.number().nullable()).max(1000),
@@ -121,7 +122,10 @@ export const measurementSummarySchema = z.object({
 });
 export type MeasurementSummary = z.infer<typeof measurementSummarySchema>;
 
-/** Power density of quiet and of active frames on one axis, dB re full scale squared per hertz. */
+/**
+ * Power density of quiet and of active frames on one axis, dB re full scale squared per hertz: the integral over frequency is
+ * the mean square, which is 0.5 for a full-scale sine.
+ */
 export const spectrumSchema = z.object({
   channel: z.number().int().min(0),
   frequenciesHz: z.array(z.number()),

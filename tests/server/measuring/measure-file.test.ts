@@ -1,11 +1,15 @@
 import { readdir, readFile, truncate } from 'node:fs/promises';
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { measurementSummarySchema } from '../../../shared/contract/measurement.ts';
 import { measureFile } from '../../../server/measuring/measure-file.ts';
+import { tileLayout } from '../../../server/measuring/view-layout.ts';
 import {
   frameRowColumns,
   frameRows,
+  readPeaks,
   readSpectrum,
+  readTile,
   type ViewSource,
 } from '../../../server/measuring/view-reader.ts';
 import { mix, sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
@@ -150,6 +154,37 @@ describe('a measured recording', () => {
 });
 
 describe('measuring', () => {
+  it('gives a valid summary and readable views for any small recording', async () => {
+    const rates = [1, 8, 1000, 11_025, 40_000, 44_100, 400_001, 20_000_000];
+    await fc.assert(
+      fc.asyncProperty(
+        fc.constantFrom(...rates),
+        fc.integer({ min: 1, max: 3 }),
+        fc.integer({ min: 1, max: 3000 }),
+        fc.constantFrom(0, 1e-6, 0.1, 5),
+        async (sampleRateHz, channelCount, frames, rms) => {
+          const channels = Array.from({ length: channelCount }, (_, channel) =>
+            whiteNoiseSignal(frames, rms, channel),
+          );
+          const { summary, source } = await measured({ sampleRateHz, channels, bitsPerSample: 24 });
+          expect(measurementSummarySchema.parse(JSON.parse(JSON.stringify(summary)))).toEqual(summary);
+          for (const { band, levels } of tileLayout(summary.format).pictures) {
+            await readTile({ ...source, channel: channelCount - 1, band, level: levels - 1, tile: 0 });
+          }
+          const peaks = await readPeaks({
+            ...source,
+            channel: 0,
+            startSample: 0,
+            endSample: frames,
+            points: 10,
+          });
+          expect(peaks.minimum.length).toBeGreaterThan(0);
+        },
+      ),
+      { numRuns: 12 },
+    );
+  });
+
   it('reports progress up to 1 and writes every view file', async () => {
     const seen: number[] = [];
     const { source } = await measured(
