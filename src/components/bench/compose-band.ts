@@ -1,6 +1,6 @@
 import type { Tile } from '@shared/audio/tile.ts';
 import type { PictureLayout } from '@shared/contract/views.ts';
-import { columnSamples } from '@/composables/bench/tile-plan.ts';
+import { columnsAtLevel, columnSamples } from '@/composables/bench/tile-plan.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 
 export type FindTile = (level: number, tile: number) => Tile | undefined;
@@ -29,43 +29,77 @@ export interface BandImage {
  * @param level the finest level to use.
  */
 export function composeBand(pixels: Uint32Array, level: number, image: BandImage): void {
-  const { widthPx, window } = image;
+  const { widthPx, heightPx, table, emptyPixel } = image;
+  const { startSample, endSample } = image.window;
+  const samplesPerPixel = (endSample - startSample) / widthPx;
+  const levels = levelsOf(image, level);
   const rows = rowBins(image);
   const codes = new Uint8Array(image.layout.bins);
-  const samplesPerPixel = (window.endSample - window.startSample) / widthPx;
+  const column = new Uint32Array(heightPx);
+  let lastPlace = '';
   for (let x = 0; x < widthPx; x++) {
-    const fromSample = window.startSample + x * samplesPerPixel;
-    const isHere = gatherCodes(codes, level, image, { fromSample, toSample: fromSample + samplesPerPixel });
-    writeColumn(pixels, x, image, isHere ? codes : null, rows);
+    const from = startSample + x * samplesPerPixel;
+    const place = gather(codes, levels, from, from + samplesPerPixel);
+    // Zoomed in, many pixels show the same column.
+    if (place === null) column.fill(emptyPixel);
+    else if (place !== lastPlace) tint(column, codes, rows, table);
+    lastPlace = place ?? '';
+    for (let y = 0, at = x; y < heightPx; y++, at += widthPx) pixels[at] = column[y]!;
   }
 }
 
-interface PixelSpan {
-  fromSample: number;
-  toSample: number;
+/** A level with its tiles as they are now, each looked up once. */
+interface ComposedLevel {
+  level: number;
+  samples: number;
+  lastColumn: number;
+  columnsPerTile: number;
+  tileOf: (index: number) => Tile | undefined;
 }
 
-function gatherCodes(codes: Uint8Array, finest: number, image: BandImage, span: PixelSpan): boolean {
-  for (let level = finest; level < image.layout.levels; level++) {
-    if (gatherAtLevel(codes, level, image, span)) return true;
+function levelsOf({ layout, findTile }: BandImage, finest: number): ComposedLevel[] {
+  const { levels, columnsPerTile } = layout;
+  return Array.from({ length: Math.max(0, levels - finest) }, (_, index) => {
+    const level = finest + index;
+    const known = new Map<number, Tile | undefined>();
+    const tileOf = (tile: number) => {
+      if (!known.has(tile)) known.set(tile, findTile(level, tile));
+      return known.get(tile);
+    };
+    const lastColumn = columnsAtLevel(layout, level) - 1;
+    return { level, samples: columnSamples(layout, level), lastColumn, columnsPerTile, tileOf };
+  });
+}
+
+/** Fills `codes` from the finest level that is here; says which columns they were, `null` where there are none. */
+function gather(
+  codes: Uint8Array,
+  levels: readonly ComposedLevel[],
+  fromSample: number,
+  toSample: number,
+): string | null {
+  for (const level of levels) {
+    const { samples, lastColumn } = level;
+    const from = Math.min(lastColumn, Math.max(0, Math.floor(fromSample / samples)));
+    const to = Math.min(lastColumn, Math.max(from, Math.ceil(toSample / samples) - 1));
+    if (gatherColumns(codes, level, from, to)) return `${level.level}/${from}/${to}`;
   }
-  return false;
+  return null;
 }
 
-function gatherAtLevel(codes: Uint8Array, level: number, image: BandImage, span: PixelSpan): boolean {
-  const { layout, findTile } = image;
-  const samples = columnSamples(layout, level);
-  const lastColumn = Math.ceil(layout.columns / 4 ** level) - 1;
-  const from = Math.min(lastColumn, Math.max(0, Math.floor(span.fromSample / samples)));
-  const to = Math.min(lastColumn, Math.max(from, Math.ceil(span.toSample / samples) - 1));
+function gatherColumns(codes: Uint8Array, level: ComposedLevel, from: number, to: number): boolean {
+  const { columnsPerTile, tileOf } = level;
+  const bins = codes.length;
   codes.fill(0);
   for (let column = from; column <= to; column++) {
-    const tile = findTile(level, Math.floor(column / layout.columnsPerTile));
+    const index = Math.floor(column / columnsPerTile);
+    const tile = tileOf(index);
     if (!tile) return false;
-    const at = (column % layout.columnsPerTile) * layout.bins;
-    for (let bin = 0; bin < codes.length; bin++) {
-      const code = tile.codes[at + bin] ?? 0;
-      if (code > (codes[bin] ?? 0)) codes[bin] = code;
+    const source = tile.codes;
+    const at = (column - index * columnsPerTile) * bins;
+    for (let bin = 0; bin < bins; bin++) {
+      const code = source[at + bin]!;
+      if (code > codes[bin]!) codes[bin] = code;
     }
   }
   return true;
@@ -74,30 +108,26 @@ function gatherAtLevel(codes: Uint8Array, level: number, image: BandImage, span:
 /** First and last bin of each row, two numbers per row. */
 function rowBins({ layout, lowHz, highHz, heightPx }: BandImage): Int32Array {
   const binHz = (layout.highHz - layout.lowHz) / layout.bins;
+  const lowestHz = layout.lowHz;
+  const lastBin = layout.bins - 1;
   const hzPerRow = (highHz - lowHz) / heightPx;
   const rows = new Int32Array(heightPx * 2);
-  const clampBin = (bin: number) => Math.min(layout.bins - 1, Math.max(0, bin));
   for (let y = 0; y < heightPx; y++) {
     const topHz = highHz - y * hzPerRow;
-    const first = clampBin(Math.floor((topHz - hzPerRow - layout.lowHz) / binHz + 1e-6));
-    rows[2 * y] = first;
-    rows[2 * y + 1] = Math.max(first, clampBin(Math.ceil((topHz - layout.lowHz) / binHz - 1e-6) - 1));
+    const first = Math.floor((topHz - hzPerRow - lowestHz) / binHz + 1e-6);
+    const last = Math.ceil((topHz - lowestHz) / binHz - 1e-6) - 1;
+    rows[2 * y] = Math.min(lastBin, Math.max(0, first));
+    rows[2 * y + 1] = Math.min(lastBin, Math.max(rows[2 * y]!, last));
   }
   return rows;
 }
 
-function writeColumn(
-  pixels: Uint32Array,
-  x: number,
-  image: BandImage,
-  codes: Uint8Array | null,
-  rows: Int32Array,
-): void {
-  const { widthPx, heightPx, table, emptyPixel } = image;
-  for (let y = 0; y < heightPx; y++) {
+/** The pixels of one column: the loudest of the bins that share a row. */
+function tint(column: Uint32Array, codes: Uint8Array, rows: Int32Array, table: Uint32Array): void {
+  for (let y = 0; y < column.length; y++) {
+    const end = rows[2 * y + 1]!;
     let loudest = 0;
-    const end = rows[2 * y + 1] ?? 0;
-    for (let bin = rows[2 * y] ?? 0; codes && bin <= end; bin++) loudest = Math.max(loudest, codes[bin] ?? 0);
-    pixels[y * widthPx + x] = codes ? (table[loudest] ?? 0) : emptyPixel;
+    for (let bin = rows[2 * y]!; bin <= end; bin++) if (codes[bin]! > loudest) loudest = codes[bin]!;
+    column[y] = table[loudest]!;
   }
 }
