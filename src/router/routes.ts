@@ -98,10 +98,22 @@ export const routes: RouteRecordRaw[] = [
     component: () => import('@/views/CollectionsView.vue'),
   },
   {
+    path: '/collections/new',
+    name: 'collection-new',
+    meta: { access: 'collections' },
+    component: () => import('@/views/CollectionEditView.vue'),
+  },
+  {
     path: '/collections/:id',
     name: 'collection',
     meta: { access: 'collections' },
     component: () => import('@/views/CollectionView.vue'),
+  },
+  {
+    path: '/collections/:id/edit',
+    name: 'collection-edit',
+    meta: { access: 'collections' },
+    component: () => import('@/views/CollectionEditView.vue'),
   },
   {
     path: '/releases',
