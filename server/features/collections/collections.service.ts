@@ -42,6 +42,8 @@ export interface CollectableRecordings {
   sharedIdsByFilter(actor: Actor, filter: NonNullable<AddItems['filter']>): string[];
 }
 
+export type CollectionRow = CollectionView['collection'];
+
 interface CollectionsParts extends Pick<Ground, 'db' | 'clock' | 'ids'> {
   audit: AuditService;
   recordings: CollectableRecordings;

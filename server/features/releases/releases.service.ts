@@ -22,8 +22,7 @@ import { pageOf, readRowCursor } from '../../http/row-cursor.ts';
 import type { StoredBlob } from '../../store/blob-store.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import { gatesOf, isReleasable } from '../collections/gates.ts';
-import type { CollectionRow } from '../collections/collections.queries.ts';
-import type { CollectionsService } from '../collections/collections.service.ts';
+import type { CollectionRow, CollectionsService } from '../collections/collections.service.ts';
 import type { ReleasePlan } from './release-plan.ts';
 import { toListItem, toRelease, toSummary } from './releases.map.ts';
 import {

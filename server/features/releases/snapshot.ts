@@ -1,5 +1,5 @@
+import type { CollectionRow } from '../collections/collections.service.ts';
 import type { ReleaseSnapshot } from '../../../shared/contract/release-snapshot.ts';
-import type { CollectionRow } from '../collections/collections.queries.ts';
 import type { LabelScheme } from '../../../shared/contract/schemes.ts';
 import type { Reader } from '../../db/client.ts';
 import { conflict } from '../../http/problem.ts';
