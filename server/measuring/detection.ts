@@ -7,13 +7,8 @@ import type {
 } from '../../shared/contract/measurement.ts';
 import type { ChannelResult, ShortFrameSink } from '../signal/channel-pass.ts';
 import type { CoursePlan } from '../signal/course.ts';
-import {
-  createDetector,
-  defaultDetectorSettings,
-  detectorVersion,
-  expectedByChance,
-  type Detector,
-} from '../signal/detector.ts';
+import { defaultDetectorSettings, detectorVersion } from '../signal/detector-settings.ts';
+import { createDetector, expectedByChance, type Detector } from '../signal/detector.ts';
 import type { FramePlan } from '../signal/frame-plan.ts';
 import { fullScaleThreshold } from '../signal/levels.ts';
 import { CandidateTally, judgeUltrasound, ultrasonicEnergyShare } from '../signal/ultrasound.ts';

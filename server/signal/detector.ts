@@ -5,8 +5,6 @@ import { measureBurst } from './bursts.ts';
 import { defaultDetectorSettings, type DetectorSettings } from './detector-settings.ts';
 import { bandSections } from './onset-search.ts';
 
-export { defaultDetectorSettings, detectorVersion } from './detector-settings.ts';
-
 export interface DetectorOptions {
   readonly sampleRateHz: number;
   readonly channel: number;
