@@ -64,11 +64,12 @@ function feed(request: IncomingMessage, busboy: BusboyInstance): Promise<void> {
       reject(error);
     };
     busboy.once('finish', resolve);
-    busboy.once('error', (error: unknown) => stop(error instanceof Error ? error : new Error(String(error))));
-    request.once('error', stop);
+    busboy.on('error', (error: unknown) => stop(error instanceof Error ? error : new Error(String(error))));
+    const breakOff = () =>
+      stop(new ProblemError('malformed-request', 'The form ends before it is complete.'));
+    request.on('error', breakOff);
     request.once('close', () => {
-      if (!request.complete)
-        stop(new ProblemError('malformed-request', 'The form ends before it is complete.'));
+      if (!request.complete) breakOff();
     });
     request.pipe(busboy);
   });
@@ -90,6 +91,8 @@ class FileBranch {
   }
 
   take(name: string, stream: BusboyFileStream, fileName: string | undefined): void {
+    // A part that breaks off tells it here as well; the form's own error is the one that is answered.
+    stream.on('error', () => undefined);
     if (name !== 'file') {
       stream.resume();
       this.#busboy.destroy(

@@ -93,6 +93,32 @@ describe('a form that cannot be taken leaves nothing', () => {
   });
 });
 
+describe('a form that is not built as one', () => {
+  const disposition = 'Content-Disposition: form-data; name=';
+  test.each([
+    ['nothing', ''],
+    ['no boundary at all', 'just some text'],
+    ['no end', `--b\r\n${disposition}"licence"\r\n\r\nCC0-1.0`],
+    ['no end of the file', `--b\r\n${disposition}"file"; filename="a.wav"\r\n\r\nRIFF`],
+    ['no end of a file in another part', `--b\r\n${disposition}"x"; filename="a.wav"\r\n\r\nRIFF`],
+    ['a part without a head', '--b\r\n\r\nRIFF\r\n--b--\r\n'],
+    ['a head without an end', `--b\r\n${disposition}"file"${'x'.repeat(100_000)}`],
+    ['a name like a property of every object', `--b\r\n${disposition}"__proto__"\r\n\r\nx\r\n--b--\r\n`],
+    ['a hundred fields', `${`--b\r\n${disposition}"a"\r\n\r\nx\r\n`.repeat(100)}--b--\r\n`],
+  ])('%s', async (_name, body) => {
+    const answer = await post()
+      .set('Content-Type', 'multipart/form-data; boundary=b')
+      .send(Buffer.from(body));
+    expect([400, 422]).toContain(answer.status);
+    expect(answer.body.detail).not.toMatch(/undefined|Error|multipart data/);
+    expect(storedState(app)).toEqual(nothingStored);
+  });
+
+  test('a boundary that is not said', async () => {
+    expect((await post().set('Content-Type', 'multipart/form-data').send(Buffer.from('x'))).status).toBe(415);
+  });
+});
+
 describe('a connection that breaks within the file', () => {
   let server: Server;
   beforeAll(async () => {
