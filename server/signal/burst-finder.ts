@@ -5,7 +5,7 @@ import { type ChosenOnset, chooseOnsets } from './onset-choice.ts';
 import { findOnsets, type OnsetFound, searchLeadSamples } from './onset-search.ts';
 import { SampleRing } from './sample-ring.ts';
 
-const LEAST_BLOCK_SAMPLES = 4096;
+const LEAST_BLOCK_SAMPLES = 8192;
 const MOST_LEARNING_SAMPLES = 4_000_000;
 const NEIGHBOUR_GAP_S = 0.005;
 const LONGEST_GROUP_S = 0.3;

@@ -13,7 +13,7 @@ export interface BurstSpectrum {
   readonly valuesPerHz: number;
 }
 
-const LONGEST_SAMPLES = 16_384;
+const LONGEST_SAMPLES = 4096;
 const LEAST_LINES = 256;
 const TAPER_SHARE = 0.1;
 
@@ -21,7 +21,7 @@ const TAPER_SHARE = 0.1;
  * Spectrum of a burst, with the mean spectrum of the noise before it taken off.
  *
  * Both are cut to the same length, tapered by a tenth at both ends and filled up with zeros to a power of two. A burst
- * longer than 16,384 samples is judged by its beginning, where its energy lies.
+ * longer than 4,096 samples is judged by its beginning, where its energy lies.
  *
  * @param burst at least 2 samples.
  * @param noiseSamples samples without the burst; `null` or under 16 of them: nothing is subtracted.

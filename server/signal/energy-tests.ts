@@ -12,7 +12,7 @@ const LEAST_DEGREES = 8;
 const MOST_DEGREES = 64;
 
 /**
- * The sums tried in one octave, by rising hop: one, two, four or all eight neighbouring sub-bands, 8 to 64 cells in all.
+ * The sums tried in one octave: one, two, four or all eight neighbouring sub-bands, 8 to 64 cells in all.
  *
  * Wide and short sums find short clicks, narrow and long ones find ringing at one frequency. Neighbours overlap by half in
  * both directions.
@@ -29,10 +29,5 @@ export function planEnergyTests(leaves: number, longestCells: number): EnergyTes
       }
     }
   }
-  return tests.sort((a, b) => a.hop - b.hop);
-}
-
-/** How many of the tests are due at a cell whose number ends in 0 to 7 binary zeros. */
-export function countDueTests(tests: readonly EnergyTest[]): Int32Array {
-  return Int32Array.from({ length: 8 }, (_, zeros) => tests.filter((test) => test.hop <= 2 ** zeros).length);
+  return tests;
 }

@@ -28,6 +28,7 @@ export class OctaveFloor {
   #blockCells = 0;
   #quietCells = 0;
   #blocks = 0;
+  #isDue = false;
 
   constructor(leaves: number, cellS: number, memoryS: number) {
     this.#leaves = leaves;
@@ -69,7 +70,32 @@ export class OctaveFloor {
       this.#quietCells += 1;
     }
     this.#blockCells += 1;
-    if (this.#blockCells < this.#cellsPerBlock) return;
+    if (this.#blockCells === this.#cellsPerBlock) this.#endBlock();
+  }
+
+  /**
+   * Takes cells of which all are quiet, from running sums of gained energies over time and sub-bands.
+   * @param sums [row][sub-bands below]: row `firstRow - 1` stands before the first cell.
+   */
+  gatherQuiet(sums: Float64Array, firstRow: number, cells: number): void {
+    const width = BANDS_PER_OCTAVE + 1;
+    for (let done = 0; done < cells;) {
+      const count = Math.min(cells - done, this.#cellsPerBlock - this.#blockCells);
+      const before = (firstRow - 1 + done) * width;
+      const after = before + count * width;
+      for (let leaf = 0; leaf < this.#leaves; leaf++) {
+        const upTo = (sums[after + leaf + 1] ?? 0) - (sums[before + leaf + 1] ?? 0);
+        const below = (sums[after + leaf] ?? 0) - (sums[before + leaf] ?? 0);
+        this.#sums[leaf] = (this.#sums[leaf] ?? 0) + (upTo - below) / (this.gains[leaf] ?? 1);
+      }
+      done += count;
+      this.#blockCells += count;
+      this.#quietCells += count;
+      if (this.#blockCells === this.#cellsPerBlock) this.#endBlock();
+    }
+  }
+
+  #endBlock(): void {
     if (this.#quietCells >= LEAST_QUIET_SHARE * this.#blockCells) this.#pushBlock();
     this.#sums.fill(0);
     this.#blockCells = 0;
@@ -79,7 +105,13 @@ export class OctaveFloor {
   #pushBlock(): void {
     this.#floors.forEach((floor, leaf) => floor.push((this.#sums[leaf] ?? 0) / this.#quietCells));
     this.#blocks += 1;
-    if (this.#blocks % BLOCKS_PER_UPDATE !== 0 || this.#blocks < FEWEST_BLOCKS) return;
+    this.#isDue ||= this.#blocks % BLOCKS_PER_UPDATE === 0 && this.#blocks >= FEWEST_BLOCKS;
+  }
+
+  /** Reads the floors anew where enough blocks have come since the last time; `gains` and `levels` change only here. */
+  renew(): void {
+    if (!this.#isDue) return;
+    this.#isDue = false;
     this.#floors.forEach((floor, leaf) => this.#setLevel(leaf, floor, this.#cellsPerBlock));
   }
 

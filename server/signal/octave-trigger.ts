@@ -1,7 +1,7 @@
 import { BANDS_PER_OCTAVE, type OctaveBand } from './band-energy.ts';
 import { chiSquareThreshold } from './chi-square.ts';
 import type { DetectorSettings } from './detector-settings.ts';
-import { countDueTests, type EnergyTest, planEnergyTests } from './energy-tests.ts';
+import { type EnergyTest, planEnergyTests } from './energy-tests.ts';
 import { OctaveFloor } from './octave-floor.ts';
 
 /** A stretch of one octave in which energy stands over the floor by more than chance explains. */
@@ -21,6 +21,8 @@ export interface ActiveRegion {
   readonly noisePerHz: number;
   /** The floor learned while it lasted: a change of the background rather than a burst. */
   readonly cut: boolean;
+  /** It goes on from one that was cut: only what rises inside it is an onset. */
+  readonly continues: boolean;
 }
 
 export interface OctaveTriggerOptions {
@@ -30,9 +32,14 @@ export interface OctaveTriggerOptions {
   readonly settings: DetectorSettings;
 }
 
-/** Rows of running sums held: more than the longest window. */
-const RING = 128;
-const RING_MASK = RING - 1;
+interface Fired {
+  readonly cell: number;
+  readonly index: number;
+  readonly sum: number;
+}
+
+/** Rows of running sums kept from the block before: the longest test. */
+const HISTORY = 64;
 const ROW = BANDS_PER_OCTAVE + 1;
 
 /**
@@ -51,21 +58,19 @@ export class OctaveTrigger {
   readonly #band: OctaveBand;
   readonly #options: OctaveTriggerOptions;
   readonly #tests: readonly EnergyTest[];
-  /** Three numbers per test: first sub-band, end, cells. */
-  readonly #plan: Int32Array;
-  readonly #testCountByZeros: Int32Array;
   readonly #thresholds: Float64Array;
-  readonly #sums = new Float64Array(RING * ROW);
+  readonly #sums: Float64Array;
   readonly #floor: OctaveFloor;
   readonly #leaves: number;
   readonly #gapCells: number;
   readonly #longestCells: number;
   #learning: Float64Array[] | null = [];
   #cell = 0;
-  #open: { start: number; best: ActiveRegion } | null = null;
+  #open: { start: number; best: ActiveRegion; continues: boolean } | null = null;
   #quietFrom = 0;
   #regions: ActiveRegion[] = [];
   #relearnUntilCell = 0;
+  #cutCell = -Infinity;
 
   constructor(options: OctaveTriggerOptions) {
     const { band, settings, sampleRateHz, highestHz } = options;
@@ -76,8 +81,7 @@ export class OctaveTrigger {
     const usable = Math.floor((highestHz - band.lowHz) / leafHz + 1e-9);
     this.#leaves = Math.max(1, Math.min(BANDS_PER_OCTAVE, usable));
     this.#tests = planEnergyTests(this.#leaves, Math.max(2, Math.floor(settings.longestWindowS / cellS)));
-    this.#plan = Int32Array.from(this.#tests.flatMap((test) => [test.low, test.high, test.cells]));
-    this.#testCountByZeros = countDueTests(this.#tests);
+    this.#sums = new Float64Array((HISTORY + band.cellsPerBlock) * ROW);
     this.#thresholds = new Float64Array(this.#tests.length);
     this.testsPerSecond = this.#tests.reduce((sum, test) => sum + 1 / test.hop, 0) / cellS;
     this.#gapCells = Math.max(1, Math.ceil(settings.quietGapS / cellS));
@@ -137,38 +141,66 @@ export class OctaveTrigger {
   }
 
   #run(energies: Float64Array): void {
-    const sums = this.#sums;
-    const gains = this.#floor.gains;
-    const leaves = this.#leaves;
+    const cells = energies.length / BANDS_PER_OCTAVE;
+    this.#addUp(energies, cells);
+    const fired = this.#collectFired(cells);
+    if (fired.length === 0 && !this.#open) {
+      this.#cell += cells;
+      this.#floor.gatherQuiet(this.#sums, HISTORY, cells);
+    } else {
+      this.#replay(energies, fired);
+    }
+    this.#floor.renew();
+    this.#sums.copyWithin(0, cells * ROW, (cells + HISTORY) * ROW);
+  }
+
+  /** Walks the cells of a block in which something fires, or a region is open, one by one. */
+  #replay(energies: Float64Array, fired: readonly Fired[]): void {
+    let next = 0;
     for (let at = 0; at < energies.length; at += BANDS_PER_OCTAVE) {
-      const row = (this.#cell & RING_MASK) * ROW;
-      const previous = ((this.#cell - 1) & RING_MASK) * ROW;
-      let total = 0;
-      for (let leaf = 0; leaf < leaves; leaf++) {
-        total += (energies[at + leaf] ?? 0) * (gains[leaf] ?? 0);
-        sums[row + leaf + 1] = (sums[previous + leaf + 1] ?? 0) + total;
-      }
       this.#cell += 1;
-      this.#test(row);
+      for (let hit = fired[next]; hit?.cell === this.#cell; hit = fired[++next]) this.#fire(hit);
       if (this.#open) this.#follow(this.#cell);
       this.#floor.gather(energies, at, this.#open === null || this.#cell < this.#relearnUntilCell);
     }
   }
 
-  /** Sums that end with the cell just added; hops are powers of two, so the trailing zeros say which are due. */
-  #test(row: number): void {
-    const cell = this.#cell;
-    const due = this.#testCountByZeros[Math.min(7, 31 - Math.clz32(cell & -cell))] ?? 0;
+  #collectFired(cells: number): Fired[] {
+    const fired: Fired[] = [];
+    for (let index = 0; index < this.#tests.length; index++) this.#tryTest(index, cells, fired);
+    return fired.sort((a, b) => a.cell - b.cell || a.index - b.index);
+  }
+
+  /** Running sums over time and sub-bands, [cell][sub-bands below]: any rectangle's sum is four of them. */
+  #addUp(energies: Float64Array, cells: number): void {
     const sums = this.#sums;
-    const plan = this.#plan;
-    const thresholds = this.#thresholds;
-    for (let index = 0, at = 0; index < due; index++, at += 3) {
-      const low = plan[at] ?? 0;
-      const high = plan[at + 1] ?? 0;
-      const then = ((cell - 1 - (plan[at + 2] ?? 0)) & RING_MASK) * ROW;
+    const gains = this.#floor.gains;
+    const leaves = this.#leaves;
+    let row = HISTORY * ROW;
+    for (let cell = 0, at = 0; cell < cells; cell++, at += BANDS_PER_OCTAVE, row += ROW) {
+      let total = 0;
+      for (let leaf = 0; leaf < leaves; leaf++) {
+        total += (energies[at + leaf] ?? 0) * (gains[leaf] ?? 0);
+        sums[row + leaf + 1] = (sums[row - ROW + leaf + 1] ?? 0) + total;
+      }
+    }
+  }
+
+  /** Where one test's sums, taken every hop, exceed its threshold. Cells are counted from 1, by their ends. */
+  #tryTest(index: number, cells: number, fired: Fired[]): void {
+    const test = this.#tests[index];
+    if (!test) return;
+    const sums = this.#sums;
+    const threshold = this.#thresholds[index] ?? Infinity;
+    const back = test.cells * ROW;
+    const { hop, low, high } = test;
+    const first = hop - (this.#cell % hop);
+    for (let cell = first; cell <= cells; cell += hop) {
+      const now = (HISTORY + cell - 1) * ROW;
+      const then = now - back;
       const sum =
-        (sums[row + high] ?? 0) - (sums[row + low] ?? 0) - (sums[then + high] ?? 0) + (sums[then + low] ?? 0);
-      if (sum > (thresholds[index] ?? Infinity)) this.#fire(index, sum);
+        (sums[now + high] ?? 0) - (sums[now + low] ?? 0) - (sums[then + high] ?? 0) + (sums[then + low] ?? 0);
+      if (sum > threshold) fired.push({ cell: this.#cell + cell, index, sum });
     }
   }
 
@@ -178,8 +210,7 @@ export class OctaveTrigger {
     else if (cell - this.#open.start > this.#longestCells) this.#cutOpen();
   }
 
-  #fire(index: number, sum: number): void {
-    const cell = this.#cell;
+  #fire({ cell, index, sum }: Fired): void {
     const test = this.#tests[index];
     if (!test) return;
     this.#quietFrom = Math.max(this.#quietFrom, cell + test.hop - 1);
@@ -187,7 +218,8 @@ export class OctaveTrigger {
     const ratio = sum / degrees;
     const evidence = (degrees / 2) * (ratio - 1 - Math.log(ratio));
     if (!this.#open) {
-      this.#open = { start: Math.max(0, cell - test.cells), best: this.#describe(test, ratio, evidence) };
+      const best = this.#describe(test, ratio, evidence);
+      this.#open = { start: Math.max(0, cell - test.cells), best, continues: best.continues };
       return;
     }
     this.#open.start = Math.min(this.#open.start, Math.max(0, cell - test.cells));
@@ -212,24 +244,27 @@ export class OctaveTrigger {
       powerRatio,
       noisePerHz: noise / (test.high - test.low) / (this.#options.sampleRateHz / 2),
       cut: false,
+      continues: this.#cell <= this.#cutCell + HISTORY,
     };
   }
 
   #cutOpen(): void {
     const cell = this.#cell;
     this.#close(cell, true);
+    this.#cutCell = cell;
     this.#relearnUntilCell = cell + this.#longestCells;
   }
 
   #close(endCell: number, cut: boolean): void {
     if (!this.#open) return;
-    const { start, best } = this.#open;
+    const { start, best, continues } = this.#open;
     const step = this.#band.samplesPerCell;
     this.#regions.push({
       ...best,
       startSample: start * step,
       endSample: Math.min(endCell, this.#cell) * step,
       cut,
+      continues,
     });
     this.#open = null;
   }

@@ -1,6 +1,7 @@
 import { chiSquareThreshold } from './chi-square.ts';
 import { type Biquad, butterworth, filterInPlace, groupDelaySamples } from './biquad.ts';
 import type { DetectorSettings } from './detector-settings.ts';
+import { median } from './noise-floor.ts';
 import type { ActiveRegion } from './octave-trigger.ts';
 import { pickOnset } from './onset.ts';
 
@@ -28,6 +29,8 @@ export interface OnsetSearch {
 const LEAST_HALF_BAND_RATIO = 1.19;
 const PERIODS_PER_SMOOTHING = 2;
 const LOUD_ENOUGH = 40;
+/** A region longer than this may be a change of the background. */
+const LONG_REGION_S = 0.02;
 /** Chance that noise gives one smoothed energy as high as a new burst's. */
 const STEP_CHANCE = 1e-5;
 
@@ -62,7 +65,21 @@ export function findOnsets(search: OnsetSearch): OnsetFound[] {
   const degrees = Math.max(1, Math.round(4 * (band.highHz - band.lowHz) * band.smoothingS));
   const clear = chiSquareThreshold(degrees, STEP_CHANCE) / degrees;
   const step = 10 ** (settings.stepDb / 10);
-  const places = steepestPlaces({ past, future, from, to, apart, noise, step, clear, smoothing });
+  const level =
+    from < to ? backgroundOf(filtered.subarray(from, to), noise, LONG_REGION_S * sampleRateHz) : noise;
+  const places = steepestPlaces({
+    past,
+    future,
+    from,
+    to,
+    apart,
+    noise,
+    level,
+    step,
+    clear,
+    smoothing,
+    continues: region.continues,
+  });
   if (region.cut) places.splice(1);
   return places.flatMap((place, index) => {
     const before = Math.max(settle, index > 0 ? (places[index - 1] ?? 0) + smoothing / 2 : 0);
@@ -130,6 +147,20 @@ function oneSidedMeans(filtered: Float64Array, settle: number, smoothing: number
   return { past, future };
 }
 
+/**
+ * What the background may have become inside a long region: where a level lasts it is no burst, and chance rises of it are
+ * no onsets. The median of squared normal values is 0.4549 of their mean.
+ */
+function backgroundOf(filtered: Float64Array, noise: number, longSamples: number): number {
+  if (filtered.length < longSamples) return noise;
+  const stride = Math.max(1, Math.floor(filtered.length / 1000));
+  const squares = Float64Array.from(
+    { length: Math.floor(filtered.length / stride) },
+    (_, k) => (filtered[k * stride] ?? 0) ** 2,
+  );
+  return Math.max(noise, median(squares) / 0.4549);
+}
+
 interface PlaceSearch {
   readonly past: Float64Array;
   readonly future: Float64Array;
@@ -138,30 +169,59 @@ interface PlaceSearch {
   readonly apart: number;
   readonly noise: number;
   readonly smoothing: number;
+  /** Background inside the region, the noise or more. */
+  readonly level: number;
   /** Rise that begins a new burst inside another one. */
   readonly step: number;
+  /** Whether the region goes on from another one, so that its highest rise need not be an onset. */
+  readonly continues: boolean;
   /** Mean energy over the noise that chance does not explain. */
   readonly clear: number;
 }
 
 /** Places of the largest rises in order of time, none nearer to another than `apart`. */
 function steepestPlaces(search: PlaceSearch): number[] {
-  const { past, future, from, to, apart, noise, step, clear, smoothing } = search;
-  const rise = (n: number) => (future[n] ?? 0) / ((past[n] ?? 0) + noise);
-  const maxima: number[] = [];
-  for (let n = from; n < to; n++) if (rise(n) >= rise(n - 1) && rise(n) > rise(n + 1)) maxima.push(n);
-  maxima.sort((a, b) => rise(b) - rise(a));
+  const { past, future, apart, level, step, clear, smoothing, continues } = search;
+  const maxima = risingMaxima(search).sort((a, b) => b.rise - a.rise || a.place - b.place);
   const places: number[] = [];
-  for (const place of maxima) {
+  for (const { place } of maxima) {
     if (places.some((other) => Math.abs(other - place) < apart)) continue;
     // What comes before a later, larger rise must stand without it: the mean of the future already feels it.
     const next = places.reduce((least, other) => (other > place && other < least ? other : least), Infinity);
     const later = next === Infinity ? 0 : (future[next] ?? 0) * Math.exp((place - next) / smoothing);
-    const stands = (future[place] ?? 0) - later > step * (past[place] ?? 0) + clear * noise;
-    if (places.length > 0 && !stands) continue;
-    places.push(place);
+    const stands =
+      (future[place] ?? 0) - later >
+      Math.max(step * (past[place] ?? 0) + clear * search.noise, clear * level);
+    if (stands || (places.length === 0 && !continues)) places.push(place);
   }
   return places.sort((a, b) => a - b);
+}
+
+/** Local maxima of the rise: the highest, and those that may stand as bursts of their own. */
+function risingMaxima({
+  past,
+  future,
+  from,
+  to,
+  noise,
+  step,
+  clear,
+}: PlaceSearch): { place: number; rise: number }[] {
+  const maxima: { place: number; rise: number }[] = [];
+  let highest = { place: -1, rise: 0 };
+  let before = 0;
+  let here = (future[from] ?? 0) / ((past[from] ?? 0) + noise);
+  for (let n = from; n < to; n++) {
+    const after = n + 1 < future.length ? (future[n + 1] ?? 0) / ((past[n + 1] ?? 0) + noise) : 0;
+    if (here >= before && here > after) {
+      if (here > highest.rise) highest = { place: n, rise: here };
+      if ((future[n] ?? 0) > step * (past[n] ?? 0) + clear * noise) maxima.push({ place: n, rise: here });
+    }
+    before = here;
+    here = after;
+  }
+  if (highest.place >= 0 && !maxima.some(({ place }) => place === highest.place)) maxima.push(highest);
+  return maxima;
 }
 
 const VISIBLE_DELAY: readonly (readonly [number, number])[] = [

@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest';
 import { createDetector, expectedByChance } from '../../../server/signal/detector.ts';
 import { detectedCandidateSchema, type DetectedCandidate } from '../../../shared/contract/measurement.ts';
 import { compareWithTruth } from './click-truth.ts';
-import { addClick, clickScene, type SceneOptions } from './synthetic-clicks.ts';
+import { addClick, clickScene, seededNormal, seededUniform, type SceneOptions } from './synthetic-clicks.ts';
 
 function detect(
   samples: Float32Array,
@@ -83,6 +83,27 @@ describe('detector against damped sines of known onset in pink noise and hum', (
     expect(detect(samples, 96_000)).toEqual([]);
     expect(expectedByChance(600)).toBeLessThanOrEqual(2);
   }, 60_000);
+});
+
+describe('detector where the background changes', () => {
+  const { samples } = clickScene({ ...scene, seconds: 5, ratePerSecond: 0 });
+  const normal = seededNormal(seededUniform(8));
+  const from = 2 * scene.sampleRateHz;
+
+  it('takes a tone that is switched on for one burst, however long it lasts', () => {
+    const withTone = samples.map((value, n) => value + (n >= from ? 0.05 * Math.sin(1.1 * n) : 0));
+    const found = detect(withTone, scene.sampleRateHz);
+    expect(found).toHaveLength(1);
+    expect(Math.abs((found[0]?.onsetSample ?? 0) - from)).toBeLessThan(10);
+  });
+
+  it('takes noise that grows by 10 dB for a handful of bursts until the floor has followed', () => {
+    const louder = samples.map((value, n) => value + (n >= from ? 0.006 * normal() : 0));
+    const found = detect(louder, scene.sampleRateHz);
+    expect(found.length).toBeGreaterThan(0);
+    expect(found.length).toBeLessThan(8);
+    expect(found.every(({ onsetSample }) => onsetSample < from + scene.sampleRateHz)).toBe(true);
+  });
 });
 
 describe('detector as a stream', () => {
