@@ -1,0 +1,108 @@
+import { mount } from '@vue/test-utils';
+import { describe, expect, it } from 'vitest';
+import { sharingSchema } from '@shared/contract/recordings.ts';
+import QualityList from '@/components/recordings/QualityList.vue';
+import { downloadsOf } from '@/components/recordings/download.ts';
+import { fileFacts, provenanceFacts } from '@/components/recordings/file-facts.ts';
+import { formatOfFile, rateAndLength } from '@/components/recordings/format-words.ts';
+import {
+  meaningOfSharing,
+  sharingWords,
+  wordsOfProcessing,
+} from '@/components/recordings/recording-words.ts';
+import { format, recording } from './recording-fixture.ts';
+
+function plain(text: string): string {
+  return text.replace(/[\u00A0\u202F]/g, ' ');
+}
+
+describe('a recording in words', () => {
+  it('is told by format, rate and length', () => {
+    expect(plain(formatOfFile(format))).toBe('WAV, 16-bit integer, 1 channel');
+    expect(plain(formatOfFile({ ...format, container: 'RF64', channels: 2 }))).toBe(
+      'WAV (RF64), 16-bit integer, 2 channels',
+    );
+  });
+
+  it('has its rate and length as they were in life', () => {
+    const { rate, length } = rateAndLength({ sampleRateHz: 44_100, frames: 441_000 }, 10);
+    expect(plain(rate)).toBe('441 000 Hz');
+    expect(plain(length)).toBe('1 s');
+  });
+
+  it('has every state of sharing in words, and explains the ones that need it', () => {
+    for (const sharing of sharingSchema.options) expect(sharingWords[sharing].value).not.toBe('');
+    expect(meaningOfSharing('shared')).toBeNull();
+    expect(meaningOfSharing('held')?.sentence).toContain('a reviewer who did not bring it in');
+  });
+
+  it('tells the progress of its measurement', () => {
+    expect(plain(wordsOfProcessing({ processing: 'measuring', progress: 0.4 }).value)).toBe(
+      'being measured, 40 %',
+    );
+  });
+
+  it('has facts with units, and unknown where nothing was told', () => {
+    const facts = fileFacts(recording({ fullScaleV: null }));
+    const byKey = new Map(facts.map(({ key, value }) => [key, plain(value)]));
+    expect(byKey.get('rate')).toBe('1 000 000 Hz');
+    expect(byKey.get('length')).toBe('86.4 s, 172.8 MB');
+    expect(byKey.get('chain')).toBe('full scale unknown, preamplifier 40 dB');
+    expect(byKey.get('band')).toBe('1 kHz to 400 kHz');
+    expect(byKey.has('expansion')).toBe(false);
+  });
+
+  it('says what was declared as sensitive', () => {
+    const facts = provenanceFacts(recording({ sensitivity: ['voices'] }));
+    expect(facts.find(({ key }) => key === 'sensitivity')).toMatchObject({
+      value: 'people may be heard',
+      isGlowing: true,
+    });
+  });
+});
+
+describe('the downloads', () => {
+  const addressOf = (kind: string) => `/address/${kind}`;
+
+  it('hold what was recorded and what was measured', () => {
+    expect(downloadsOf(recording(), addressOf).map(({ href }) => href)).toEqual([
+      '/address/audio',
+      '/address/frames.csv',
+      '/address/spectrum',
+      '/address/candidates',
+    ]);
+  });
+
+  it('hold no candidates for whoever works blind', () => {
+    const hrefs = downloadsOf(recording({ blind: true }), addressOf).map(({ href }) => href);
+    expect(hrefs).not.toContain('/address/candidates');
+  });
+
+  it('hold only the original until it is measured', () => {
+    expect(downloadsOf(recording({ processing: 'queued' }), addressOf)).toHaveLength(1);
+  });
+});
+
+describe('the list of quality findings', () => {
+  it('puts the weightiest first, by shape and word, and names the place', () => {
+    const place = { channel: 0, startSample: 65_000_000, endSample: 65_000_010 };
+    const wrapper = mount(QualityList, {
+      props: {
+        sampleRateHz: 1_000_000,
+        findings: [
+          { code: 'mains', weight: 'note', sentence: 'Mains lines.', count: 1, places: [] },
+          { code: 'dropout', weight: 'serious', sentence: 'Samples were lost.', count: 1, places: [place] },
+        ],
+      },
+    });
+    const [first, second] = wrapper.findAll('li').map((item) => item.text());
+    expect(first).toContain('Serious: Samples were lost.');
+    expect(first).toContain('at 1:05');
+    expect(second).toContain('Note: Mains lines.');
+  });
+
+  it('says so where nothing stands out', () => {
+    const wrapper = mount(QualityList, { props: { sampleRateHz: 1, findings: [] } });
+    expect(wrapper.text()).toBe('Nothing stands out.');
+  });
+});
