@@ -1,0 +1,219 @@
+import type { Locator, Page } from 'playwright-core';
+import { describe, expect } from 'vitest';
+import { checkAxe } from '../support/browser/axe.ts';
+import { takeScreenshot } from '../support/browser/screenshot.ts';
+import { signIn } from '../support/browser/sign-in.ts';
+import { test } from '../support/browser/test.ts';
+
+interface PassFacts {
+  id: string;
+  recordingId: string;
+  blind: boolean;
+  recordingName: string;
+}
+
+async function openPasses(page: Page): Promise<PassFacts[]> {
+  const answer = await page.request.get('/api/passes?mine=true&state=assigned');
+  return ((await answer.json()) as { items: PassFacts[] }).items;
+}
+
+async function requirePass(page: Page, isBlind: boolean): Promise<PassFacts> {
+  const pass = (await openPasses(page)).find(({ blind }) => blind === isBlind);
+  if (!pass) throw new Error(`The demo has no open pass with blind: ${isBlind}.`);
+  return pass;
+}
+
+async function openBench(page: Page, address: string): Promise<void> {
+  await page.goto(address);
+  await page.locator('canvas.picture').waitFor();
+  await page.waitForLoadState('networkidle');
+}
+
+function saving(page: Page): Locator {
+  return page.locator('[data-saving]');
+}
+
+async function untilSaid(page: Page, words: RegExp): Promise<void> {
+  await saving(page).filter({ hasText: words }).waitFor();
+}
+
+function rows(page: Page): Locator {
+  return page.getByRole('group', { name: 'Marks in order of time' }).locator('tbody tr');
+}
+
+async function countMarks(page: Page): Promise<number> {
+  return rows(page).count();
+}
+
+describe('the bench', () => {
+  test('lets a labeler mark a blind pass with the keyboard alone, and keeps the marks', async ({ page }) => {
+    await signIn(page, 'labeler');
+    const pass = await requirePass(page, true);
+    const asked: string[] = [];
+    page.on('request', (request) => asked.push(request.url()));
+    await openBench(page, `/bench/${pass.recordingId}?pass=${pass.id}`);
+    const before = await countMarks(page);
+    for (const key of ['ArrowUp', 'ArrowUp', 'ArrowUp', 'ArrowUp', 'ArrowRight'])
+      await page.keyboard.press(key);
+    await page.keyboard.press('KeyF');
+    await untilSaid(page, /stored/);
+    await page.keyboard.press('PageDown');
+    for (let presses = 0; presses < 60; presses++) await page.keyboard.press('ArrowRight');
+    await page.keyboard.press('Shift+KeyD');
+    await untilSaid(page, /stored/);
+    await page.keyboard.press('Shift+Period');
+    await page.keyboard.press('Shift+KeyD');
+    await untilSaid(page, /stored/);
+    expect(await countMarks(page)).toBe(before + 2);
+    expect(await rows(page).filter({ hasText: 'crackle, unsure' }).count()).toBe(1);
+    await page.reload();
+    await page.locator('canvas.picture').waitFor();
+    expect(await countMarks(page)).toBe(before + 2);
+    expect(asked.filter((url) => url.includes('/candidates'))).toEqual([]);
+    expect(await page.getByRole('heading', { name: /Candidates/ }).count()).toBe(0);
+    await checkAxe(page);
+    await takeScreenshot(page, 'bench-blind');
+  });
+
+  test('takes changes back and does them again', async ({ page }) => {
+    await signIn(page, 'labeler');
+    const pass = await requirePass(page, false);
+    await openBench(page, `/bench/${pass.recordingId}?from=100000&to=200000`);
+    const before = await countMarks(page);
+    await page.keyboard.press('KeyS');
+    await untilSaid(page, /stored/);
+    await page.keyboard.press('Delete');
+    await untilSaid(page, /stored/);
+    expect(await countMarks(page)).toBe(before);
+    await page.keyboard.press('Control+KeyZ');
+    await untilSaid(page, /stored/);
+    expect(await countMarks(page)).toBe(before + 1);
+    await page.keyboard.press('Control+KeyZ');
+    await page.keyboard.press('Control+KeyZ');
+    await untilSaid(page, /stored/);
+    expect(await countMarks(page)).toBe(before);
+    await page.keyboard.press('Control+Shift+KeyZ');
+    await untilSaid(page, /stored/);
+    await page.reload();
+    await page.locator('canvas.picture').waitFor();
+    expect(await countMarks(page)).toBe(before + 1);
+  });
+
+  test('marks a drawn span with its band, and a candidate', async ({ page }) => {
+    await signIn(page, 'labeler');
+    const pass = await requirePass(page, false);
+    await openBench(page, `/bench/${pass.recordingId}?from=1500000&to=1800000`);
+    const stage = await page.locator('canvas.overlay').boundingBox();
+    if (!stage) throw new Error('The stage is not there.');
+    await page.mouse.move(stage.x + 300, stage.y + 80);
+    await page.mouse.down();
+    await page.mouse.move(stage.x + 360, stage.y + 160, { steps: 5 });
+    await page.mouse.up();
+    await page.keyboard.press('KeyG');
+    await untilSaid(page, /stored/);
+    expect(await page.getByLabel('From, kHz').inputValue()).not.toBe('');
+    expect(await page.getByLabel('Class').inputValue()).toBe('bubble');
+    const candidates = page.getByRole('group', { name: 'Candidates in the part that is shown' });
+    await candidates.locator('tbody tr button').last().click();
+    await page.mouse.move(5, 5);
+    await page
+      .getByRole('toolbar', { name: 'Probable cause' })
+      .getByRole('button', { name: /crack\b/ })
+      .click();
+    await untilSaid(page, /stored/);
+    await page.getByRole('heading', { name: /1 confirmed yet|[1-9]\d* confirmed yet/ }).waitFor();
+  });
+
+  test('keeps marks while the connection is lost and stores them afterwards', async ({ page, guard }) => {
+    guard.expectConsoleError(/ERR_INTERNET_DISCONNECTED/);
+    await signIn(page, 'labeler');
+    const pass = await requirePass(page, false);
+    await openBench(page, `/bench/${pass.recordingId}?from=400000&to=500000`);
+    const before = await countMarks(page);
+    await page.context().setOffline(true);
+    await page.keyboard.press('KeyW');
+    await untilSaid(page, /Not stored yet: 1 mark, the server cannot be reached/);
+    expect(await countMarks(page)).toBe(before + 1);
+    await page.context().setOffline(false);
+    await untilSaid(page, /stored/);
+    await page.reload();
+    await page.locator('canvas.picture').waitFor();
+    expect(await countMarks(page)).toBe(before + 1);
+  });
+
+  test('asks which form of a mark counts when it was changed elsewhere', async ({
+    page,
+    openPage,
+    guard,
+  }) => {
+    guard.expectAnswer(412, /\/api\/events\//);
+    await signIn(page, 'labeler');
+    const other = await openPage();
+    await signIn(other, 'labeler');
+    const pass = await requirePass(page, false);
+    const address = `/bench/${pass.recordingId}?from=600000&to=700000`;
+    await openBench(page, address);
+    await page.keyboard.press('KeyR');
+    await untilSaid(page, /stored/);
+    await openBench(other, address);
+    await other.keyboard.press('KeyL');
+    await other.keyboard.press('KeyJ');
+    for (const one of [page, other]) await one.keyboard.press('Escape');
+    const mine = rows(page).filter({ hasText: 'vessel' }).first();
+    const theirs = rows(other).filter({ hasText: 'vessel' }).first();
+    await mine.click();
+    await theirs.click();
+    await other.getByLabel('Note').fill('looked at twice');
+    await other.keyboard.press('Tab');
+    await untilSaid(other, /stored/);
+    await page.getByLabel('Confidence').selectOption('unsure');
+    await untilSaid(page, /1 mark to decide on/);
+    await page.getByRole('button', { name: 'Keep mine' }).click();
+    await untilSaid(page, /stored/);
+    expect(await mine.textContent()).toContain('unsure');
+  });
+
+  test('shows a recording without a lane of classes to those who only look', async ({ page }) => {
+    await signIn(page, 'contributor');
+    const list = await page.request.get('/api/recordings?limit=50');
+    const { items } = (await list.json()) as { items: { id: string; fileName: string }[] };
+    const recording = items.find(({ fileName }) => fileName.startsWith('coldstage_run-17'));
+    await openBench(page, `/bench/${recording?.id ?? ''}`);
+    expect(await page.getByRole('toolbar', { name: 'Probable cause' }).count()).toBe(0);
+    await page.getByText('none of yours, to look at only').waitFor();
+    await page.keyboard.press('KeyF');
+    expect(await saving(page).count()).toBe(0);
+    await checkAxe(page);
+    await takeScreenshot(page, 'bench-looking');
+  });
+
+  test('is usable in the dark theme, at the width of a tablet, and with its sheet of keys', async ({
+    openPage,
+  }) => {
+    const page = await openPage({ viewport: { width: 768, height: 1024 }, colorScheme: 'dark' });
+    await signIn(page, 'labeler');
+    const pass = await requirePass(page, false);
+    await openBench(page, `/bench/${pass.recordingId}`);
+    await page.keyboard.press('KeyL');
+    await checkAxe(page);
+    const overflowPx = await page.evaluate(() => document.documentElement.scrollWidth - innerWidth);
+    expect(overflowPx).toBeLessThanOrEqual(0);
+    await takeScreenshot(page, 'bench-tablet-dark');
+    await page.keyboard.press('Shift+Slash');
+    await page.getByRole('heading', { name: 'Keys of the bench' }).waitFor();
+    await checkAxe(page);
+    await page.keyboard.press('Escape');
+  });
+
+  test('plays a part slower and says what is heard', async ({ page }) => {
+    await signIn(page, 'labeler');
+    const pass = await requirePass(page, false);
+    await openBench(page, `/bench/${pass.recordingId}?from=1500000&to=1560000`);
+    await page.getByText('20\u00D7').click();
+    expect(await page.locator('[data-heard]').textContent()).toMatch(/^20 times slower: .+ is heard as .+/);
+    await page.keyboard.press('Space');
+    await page.getByRole('button', { name: 'Stop' }).waitFor();
+    await page.getByRole('button', { name: 'Play from the cursor' }).waitFor({ timeout: 15_000 });
+    expect(await page.locator('.listen [role="alert"]').count()).toBe(0);
+  });
+});
