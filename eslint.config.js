@@ -53,7 +53,14 @@ const lowServerLayer = [
 ];
 const pureServerLayer = [
   ...lowServerLayer,
-  group('This layer computes and nothing else.', '**/db/**', '**/store/**', '**/jobs/**', '**/services/**'),
+  group(
+    'This layer computes and nothing else.',
+    '**/db/**',
+    '**/store/**',
+    '!**/store/durable-file.ts',
+    '**/jobs/**',
+    '**/services/**',
+  ),
 ];
 const clientLayer = [group('src never imports server.', '**/server/**', 'node:*')];
 const componentLayer = [

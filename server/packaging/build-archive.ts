@@ -1,9 +1,10 @@
 import { randomUUID } from 'node:crypto';
-import { rm } from 'node:fs/promises';
+import { readdir, rm } from 'node:fs/promises';
 import { join } from 'node:path';
 import { releaseSnapshotSchema, type ReleaseSnapshot } from '../../shared/contract/release-snapshot.ts';
+import { moveDurably, syncFile, writeDurably } from '../store/durable-file.ts';
 import type { DigestedFile } from './bag-files.ts';
-import { publishFile, removeStaleParts, syncToDisk, writeDurably } from './durable-file.ts';
+
 import { verifyArchive } from './verify-archive.ts';
 import { planBag, writeBag, type BagPlan, type OpenAudio } from './write-bag.ts';
 import { openZipWriter } from './zip-writer.ts';
@@ -47,9 +48,9 @@ export async function buildArchive(input: BuildInput): Promise<BuiltArchive> {
   await removeStaleParts(input.outDir, fileName);
   try {
     const written = await writePart({ plan, partPath, date: entryDate(snapshot), input });
-    await syncToDisk(partPath);
+    await syncFile(partPath);
     await verifyPart({ plan, partPath, files: written.files, input });
-    await publishFile(partPath, path);
+    await moveDurably(partPath, path);
     await writeChecksum(path, fileName, written.sha256);
     const files = written.files.map(({ path: filePath, sizeBytes, sha256 }) => ({
       path: filePath,
@@ -69,13 +70,19 @@ function entryDate(snapshot: ReleaseSnapshot): Date {
 }
 
 async function writeChecksum(path: string, fileName: string, sha256: string): Promise<void> {
-  const partPath = `${path}.sha256.${randomUUID()}.part`;
   try {
-    await writeDurably(`${path}.sha256`, partPath, `${sha256}  ${fileName}\n`);
+    await writeDurably(`${path}.sha256`, `${sha256}  ${fileName}\n`);
   } catch (error) {
-    await Promise.all([path, partPath].map((left) => rm(left, { force: true })));
+    await rm(path, { force: true });
     throw error;
   }
+}
+
+/** What a crash left behind of earlier attempts at the same file. */
+async function removeStaleParts(directory: string, fileName: string): Promise<void> {
+  const names = await readdir(directory);
+  const stale = names.filter((name) => name.startsWith(`${fileName}.`) && name.endsWith('.part'));
+  await Promise.all(stale.map((name) => rm(join(directory, name), { force: true })));
 }
 
 interface WriteInput {

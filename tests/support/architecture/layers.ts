@@ -16,6 +16,8 @@ const shared = /^shared\//;
 
 const db = /^server\/db\//;
 const store = /^server\/store\//;
+/** Writing so that a crash loses nothing; it knows nothing of what is stored. */
+const durableFile = /^server\/store\/durable-file\.ts$/;
 const jobs = /^server\/jobs\//;
 const services = /^server\/services\//;
 const signal = /^server\/signal\//;
@@ -58,7 +60,7 @@ export const layers: Layer[] = [
 
   { files: signal, may: [shared] },
   { files: measuring, may: [shared, signal] },
-  { files: packaging, may: [shared] },
+  { files: packaging, may: [shared, durableFile] },
   { files: db, may: [shared] },
   { files: store, may: [shared] },
   { files: services, may: [shared, db, store, config, log] },
