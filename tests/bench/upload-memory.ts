@@ -3,9 +3,7 @@ import { existsSync, mkdtempSync, readFileSync, rmSync } from 'node:fs';
 import { createServer } from 'node:net';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
-import { Readable } from 'node:stream';
 import { setTimeout as wait } from 'node:timers/promises';
-import { Upload } from 'tus-js-client';
 import { z } from 'zod';
 import { addDampedSine } from '../../server/setup/demo-audio/damped-sine.ts';
 import { encodeFrames } from '../../server/setup/demo-audio/encode-frames.ts';
@@ -14,21 +12,24 @@ import { seededRandom } from '../../server/setup/demo-audio/seeded-random.ts';
 import { wavEnvelope } from '../../server/setup/demo-audio/wav-envelope.ts';
 
 // Brings one large recording into the built server and prints how much memory the server took until it was measured.
-// Run: npm run build:server && npx tsx tests/bench/upload-memory.ts [megabytes, 1000 where it is not said]
+// Run: npm run build:server && npx tsx tests/bench/upload-memory.ts [megabytes, or 1000] [folder of the build, or dist]
 const limitMegabytes = 400;
 const longestMs = 45 * 60_000;
 const sampleRateHz = 192_000;
-const blockFrames = sampleRateHz;
+/** The recording repeats this stretch, so that making it costs next to nothing. */
+const stretchFrames = 5 * sampleRateHz;
+const pieceBytes = 16 * 2 ** 20;
 const layout = { encoding: 'integer', bitsPerSample: 16, channels: 1 } as const;
 const projectRoot = path.resolve(import.meta.dirname, '../..');
 const password = 'five copper lanterns drift';
 
 const megabytes = Number(process.argv[2] ?? 1000);
+const mainFile = path.join(process.argv[3] ?? 'dist', 'server', 'main.js');
 const frames = Math.floor((megabytes * 1e6) / 2);
 await main();
 
 async function main(): Promise<void> {
-  if (!existsSync(path.join(projectRoot, 'dist/server/main.js'))) {
+  if (!existsSync(path.join(projectRoot, mainFile))) {
     throw new Error('Build the server first: npm run build:server');
   }
   const dataDir = mkdtempSync(path.join(tmpdir(), 'recalesce-bench-'));
@@ -71,7 +72,7 @@ function startServer(port: number, dataDir: string): ChildProcess {
     RECALESCE_LOG_LEVEL: 'warn',
     NODE_ENV: 'production',
   };
-  return spawn(process.execPath, ['dist/server/main.js'], {
+  return spawn(process.execPath, [mainFile], {
     cwd: projectRoot,
     env: { ...process.env, ...settings },
     stdio: ['ignore', 'pipe', 'inherit'],
@@ -148,13 +149,13 @@ async function create(here: Pick<Visit, 'origin' | 'cookie'>, route: string, bod
 }
 
 async function bringIn(visit: Visit, watch: ReturnType<typeof watchMemory>): Promise<void> {
-  const { head, tail } = wavEnvelope({ ...layout, sampleRateHz, frames });
-  const sizeBytes = head.length + frames * 2 + tail.length;
+  const { head } = wavEnvelope({ ...layout, sampleRateHz, frames });
+  const sizeBytes = head.length + frames * 2;
   const { runId, setupId } = visit;
   const facts = { runId, setupId, fileName: 'large.wav', sizeBytes, licence: 'CC0-1.0' };
   const id = await create(visit, '/api/uploads', facts);
   const startedAtMs = performance.now();
-  await sendBytes(visit, id, sizeBytes, Readable.from(wavBlocks(head, tail)));
+  await sendBytes(visit, id, sizeBytes, pieces(head, sizeBytes));
   tell('uploaded', startedAtMs, watch);
   const answer = await send(visit, 'POST', `/api/uploads/${id}/complete`, {});
   const { recording } = z.object({ recording: z.object({ id: z.string() }) }).parse(await answer.json());
@@ -169,37 +170,59 @@ function tell(what: string, startedAtMs: number, watch: ReturnType<typeof watchM
   );
 }
 
-function sendBytes(visit: Visit, id: string, sizeBytes: number, bytes: Readable): Promise<void> {
-  return new Promise((resolve, reject) => {
-    const upload = new Upload(bytes, {
-      endpoint: `${visit.origin}/api/uploads/bytes`,
-      uploadSize: sizeBytes,
-      chunkSize: 16 * 2 ** 20,
-      metadata: { uploadId: id },
-      headers: { Cookie: visit.cookie, Origin: visit.origin },
-      onError: reject,
-      onSuccess: () => resolve(),
-    });
-    upload.start();
-  });
+/** tus 1.0.0: one creation, then a request for each piece. */
+async function sendBytes(
+  { origin, cookie }: Visit,
+  id: string,
+  sizeBytes: number,
+  bytes: Iterable<Buffer<ArrayBuffer>>,
+) {
+  const bytesUrl = `${origin}/api/uploads/bytes`;
+  const common = { Cookie: cookie, Origin: origin, 'Tus-Resumable': '1.0.0' };
+  const metadata = `uploadId ${Buffer.from(id).toString('base64')}`;
+  const creation = { ...common, 'Upload-Length': String(sizeBytes), 'Upload-Metadata': metadata };
+  requireOk(await fetch(bytesUrl, { method: 'POST', headers: creation }));
+  let offset = 0;
+  for (const body of bytes) {
+    const piece = { 'Upload-Offset': String(offset), 'Content-Type': 'application/offset+octet-stream' };
+    requireOk(await fetch(`${bytesUrl}/${id}`, { method: 'PATCH', headers: { ...common, ...piece }, body }));
+    offset += body.length;
+  }
 }
 
-/** Noise with a click in each second, made as it is sent. */
-function* wavBlocks(head: Uint8Array, tail: Uint8Array): Generator<Uint8Array> {
-  yield head;
-  const addNoise = whiteNoise(seededRandom(7), 0.001);
-  for (let at = 0; at < frames; at += blockFrames) {
-    const block = new Float32Array(Math.min(blockFrames, frames - at));
-    addNoise(block);
+function requireOk(answer: Response): void {
+  if (!answer.ok) throw new Error(`${answer.url}: ${answer.status}`);
+}
+
+function* pieces(head: Uint8Array, sizeBytes: number): Generator<Buffer<ArrayBuffer>> {
+  yield Buffer.from(head);
+  const stretch = stretchBytes();
+  for (let left = sizeBytes - head.length, at = 0; left > 0;) {
+    const piece = Buffer.alloc(Math.min(pieceBytes, left));
+    for (let filled = 0; filled < piece.length;) {
+      const copied = stretch.copy(piece, filled, at);
+      filled += copied;
+      at = (at + copied) % stretch.length;
+    }
+    left -= piece.length;
+    yield piece;
+  }
+}
+
+/** Noise with five clicks. */
+function stretchBytes(): Buffer {
+  const stretch = new Float32Array(stretchFrames);
+  whiteNoise(seededRandom(7), 0.001)(stretch);
+  for (let second = 0; second < 5; second++) {
+    const onsetSample = second * sampleRateHz + 1000;
     addDampedSine(
-      block,
+      stretch,
       0,
-      { onsetSample: 1000, frequencyHz: 40_000, decayS: 0.0005, amplitude: 0.3 },
+      { onsetSample, frequencyHz: 40_000, decayS: 0.0005, amplitude: 0.3 },
       sampleRateHz,
     );
-    yield encodeFrames([block], layout);
   }
-  yield tail;
+  return Buffer.from(encodeFrames([stretch], layout));
 }
 
 async function untilMeasured(
@@ -214,7 +237,7 @@ async function untilMeasured(
     candidateCount: z.number().nullable(),
   });
   while (performance.now() - startedAtMs < longestMs) {
-    await wait(5000);
+    await wait(10_000);
     const answer = await send(visit, 'GET', `/api/recordings/${id}`);
     const { processing, progress, candidateCount } = stateSchema.parse(await answer.json());
     tell(

@@ -30,7 +30,9 @@ const loudestPeak = 10 ** (-6 / 20);
 const fadeS = 0.005;
 const outputPerTurn = 2048;
 /** What is read and filtered for one rendition at most; 120 s at 192 kHz. */
-const mostInputSamples = 24_000_000;
+const mostInputFrames = 24_000_000;
+/** Frames are decoded with all of their channels. */
+const mostDecodedSamples = 96_000_000;
 const renditionsAtOnce = 2;
 
 /** Slowed renditions for the ear. The stored sound is never changed. */
@@ -94,10 +96,11 @@ function requireListenable({ format }: RecordingRow, { startSample, endSample, s
       `is too far: at this speed the stretch would last longer than ${longestListenS} s`,
     );
   }
-  if (frames > mostInputSamples) {
+  const mostFrames = Math.min(mostInputFrames, Math.floor(mostDecodedSamples / format.channels));
+  if (frames > mostFrames) {
     throw invalidField(
       'endSample',
-      `is too far: at most ${mostInputSamples.toLocaleString('en')} samples are taken at once`,
+      `is too far: at most ${mostFrames.toLocaleString('en')} samples are taken at once`,
     );
   }
 }

@@ -1,4 +1,4 @@
-import { link } from 'node:fs/promises';
+import { link, rm } from 'node:fs/promises';
 import type { Declaration } from '../../../shared/contract/uploads.ts';
 import type { AudioFormat } from '../../../shared/contract/measurement.ts';
 import { personalMetadata } from '../../../shared/audio/personal-metadata.ts';
@@ -86,7 +86,11 @@ export function createIntakeService({ db, ids, store, activity, recordings, sens
   async function storeBytes(path: string, sha256: string): Promise<void> {
     const incoming = store.tempPath();
     await link(path, incoming);
-    await store.putFile(incoming, sha256);
+    try {
+      await store.putFile(incoming, sha256);
+    } finally {
+      await rm(incoming, { force: true });
+    }
   }
 
   return { bringIn };
