@@ -1,6 +1,9 @@
 import type { BurstParameters } from '@shared/contract/measurement.ts';
 import { formatNumber, formatShare, NO_VALUE } from '@/composables/useFormat.ts';
 
+const TWO_DECIMALS: Intl.NumberFormatOptions = { maximumFractionDigits: 2 };
+const THREE_DIGITS: Intl.NumberFormatOptions = { maximumSignificantDigits: 3 };
+
 type Peak = Pick<BurstParameters, 'peakDb' | 'peakDbAe'>;
 type Figures = Peak & Pick<BurstParameters, 'peakFrequencyHz' | 'ultrasonicShare'>;
 
@@ -18,7 +21,7 @@ export function burstFigures(burst: Figures | null) {
       minimumFractionDigits: 1,
       maximumFractionDigits: 1,
     }),
-    frequency: formatNumber(kilohertz, { maximumSignificantDigits: 3 }),
+    frequency: formatNumber(kilohertz, kilohertz !== null && kilohertz < 1 ? TWO_DECIMALS : THREE_DIGITS),
     share: formatShare(burst.ultrasonicShare).replace(/\u00A0%$/, ''),
   };
 }
