@@ -30,21 +30,22 @@ export function useMembers(collectionId: Ref<string>) {
 
   const adding = useSubmit(async (input: AddItems) => {
     lastTakenOut.value = null;
-    lastAdded.value = await addCollectionItems(collectionId.value, input);
+    const done = await addCollectionItems(collectionId.value, input);
     await refresh();
+    lastAdded.value = done;
   });
   const takingOut = useSubmit(async (item: TakenOut) => {
     lastAdded.value = null;
     await removeCollectionItem(collectionId.value, item.id);
-    lastTakenOut.value = { id: item.id, fileName: item.fileName };
     await refresh();
+    lastTakenOut.value = { id: item.id, fileName: item.fileName };
   });
   const takingBack = useSubmit(async () => {
     const item = lastTakenOut.value;
     if (!item) return;
     await addCollectionItems(collectionId.value, { recordingIds: [item.id] });
-    lastTakenOut.value = null;
     await refresh();
+    lastTakenOut.value = null;
     await announce(`${item.fileName} is in the collection again`);
   });
 
