@@ -68,10 +68,11 @@ describe('a curator', () => {
     await takeOut.first().waitFor();
     const count = await takeOut.count();
     await takeOut.first().click();
-    await page.getByText('was taken out').waitFor();
+    const putBack = page.getByRole('button', { name: 'Put it back' });
+    await putBack.waitFor();
     expect(await takeOut.count()).toBe(count - 1);
-    await page.getByRole('button', { name: 'Put it back' }).click();
-    await page.getByText('was taken out').waitFor({ state: 'detached' });
+    await putBack.click();
+    await putBack.waitFor({ state: 'detached' });
     expect(await takeOut.count()).toBe(count);
   });
 
