@@ -17,7 +17,8 @@ const canEnter: Readonly<Record<Area, (ability: AppAbility) => boolean>> = {
   runs: (ability) => ability.can('read', 'Run'),
   'bring-in': (ability) => ability.can('create', 'Upload'),
   sensors: (ability) => ability.can('read', 'Sensor'),
-  recordings: (ability) => ability.can('read', 'Recording'),
+  // A labeler sees the recordings of the own passes.
+  recordings: (ability) => ability.can('read', 'Recording') || ability.can('update', 'Pass'),
   bench: (ability) => ability.can('update', 'Pass') || ability.can('read', 'Recording'),
   reviews: (ability) => ability.can('decide', 'Recording'),
   collections: (ability) => ability.can('read', 'Collection'),
