@@ -2,8 +2,12 @@ import type { Candidate } from '@shared/contract/recordings.ts';
 import type { EventClass } from '@shared/contract/schemes.ts';
 import type { BenchMark } from '@/composables/bench/mark.ts';
 import { classGlyph, timeWords } from '@/composables/bench/mark-words.ts';
+import { windowSamples } from '@/composables/bench/time-axis.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
-import { formatCount, formatFrequency } from '@/composables/useFormat.ts';
+import type { Bench } from '@/composables/bench/useBench.ts';
+import { levelFor } from '@/composables/bench/tile-plan.ts';
+import { formatCount, formatFrequency, formatNumber } from '@/composables/useFormat.ts';
+import type { Look } from '@/components/bench/look.ts';
 import type { Fracture } from '@/components/bench/mark-drawing.ts';
 
 export interface FractureSources {
@@ -51,6 +55,25 @@ export function pointWords(
   if (!point) return '';
   const time = timeWords(point.sample, sampleRateHz);
   return point.hz === null ? time : `${time}, ${formatFrequency(point.hz)}`;
+}
+
+/** What the colours stand for: "−98 to −52 dB above 20 kHz, −80 to −34 dB below". */
+export function scaleWords({ layout, tiles, view, widthPx, quietOf }: Bench, look: Look): string {
+  // Until the first tile is here, nothing is known of the levels.
+  if (tiles.arrivals.value === 0) return '';
+  const samplesPerPixel = windowSamples(view.shown.value) / Math.max(1, widthPx.value);
+  const spans = layout.pictures.map((picture) => {
+    const lowDb = quietOf(picture.band, levelFor(picture, samplesPerPixel)) + look.floorOverQuietDb;
+    const place = picture.band === 'ultrasonic' ? 'above 20\u00A0kHz' : 'below';
+    return {
+      place,
+      text: `${formatNumber(lowDb)} to ${formatNumber(lowDb + look.rangeDb)}\u00A0dB ${place}`,
+    };
+  });
+  return spans
+    .sort((a, b) => (a.place < b.place ? -1 : 1))
+    .map(({ text }) => text)
+    .join(', ');
 }
 
 /** What the picture shows, for those who cannot see it. */

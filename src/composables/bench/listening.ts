@@ -58,7 +58,7 @@ export function gainOf(levelDb: number): number {
 /** Says what is heard: "20 times slower: 150 kHz is heard as 7.5 kHz". */
 export function heardWords(slow: SlowFactor, sampleRateHz: number, peakFrequencyHz: number | null): string {
   if (slow === 1) {
-    return sampleRateHz / 2 > HEARING_LINE_HZ ? 'As recorded: nothing above 20 kHz is heard' : 'As recorded';
+    return sampleRateHz / 2 > HEARING_LINE_HZ ? 'As recorded: heard up to 20 kHz' : 'As recorded';
   }
   const exampleHz = peakFrequencyHz ?? exampleFrequency(slow, sampleRateHz);
   return `${slow} times slower: ${formatFrequency(exampleHz)} is heard as ${formatFrequency(exampleHz / slow)}`;

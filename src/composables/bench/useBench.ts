@@ -1,4 +1,4 @@
-import { computed, ref, shallowRef } from 'vue';
+import { computed, shallowRef } from 'vue';
 import type { Candidate } from '@shared/contract/recordings.ts';
 import type { BenchData } from '@/composables/bench/load-bench.ts';
 import { lessSure } from '@/composables/bench/mark.ts';
@@ -8,38 +8,32 @@ import { defaultSpan, markByCandidate, markBySpan } from '@/composables/bench/ne
 import type { DraftSpan } from '@/composables/bench/new-mark.ts';
 import { pixelAtSample } from '@/composables/bench/time-axis.ts';
 import { useBenchMarks } from '@/composables/bench/useBenchMarks.ts';
+import { useBenchSources } from '@/composables/bench/useBenchSources.ts';
 import { useBenchWindow } from '@/composables/bench/useBenchWindow.ts';
-import { useCandidates } from '@/composables/bench/useCandidates.ts';
 import { useListening } from '@/composables/bench/useListening.ts';
-import { usePeaks } from '@/composables/bench/usePeaks.ts';
-import { useTiles } from '@/composables/bench/useTiles.ts';
 import { clampSpan } from '@shared/domain/event-span.ts';
 
 /** A class key changes the selected mark where the cursor is this near to it; elsewhere it sets a new one. */
 const NEAR_PX = 10;
-const FIRST_WIDTH_PX = 800;
 
 export type Bench = ReturnType<typeof useBench>;
 
 /** The state of one recording on the bench, and what can be done with it. */
 export function useBench({ recording, layout, pass, scheme, events }: BenchData) {
   const { frames, sampleRateHz } = layout;
-  const channel = ref(0);
-  const plotWidthPx = ref(FIRST_WIDTH_PX);
   const draft = shallowRef<DraftSpan | null>(null);
   const selectedCandidate = shallowRef<Candidate | null>(null);
   const canMark = pass?.state === 'assigned' && recording.may.mark;
   const areCandidatesShown = !recording.blind && !(pass?.blind && pass.state === 'assigned');
 
   const view = useBenchWindow(frames);
-  const sources = { recordingId: recording.id, channel, window: view.shown, widthPx: plotWidthPx };
-  const tiles = useTiles({ ...sources, layout });
-  const peaks = usePeaks({ ...sources, frames });
-  const candidates = useCandidates({
+  const sources = useBenchSources({
     recordingId: recording.id,
-    isShown: areCandidatesShown,
+    layout,
     window: view.shown,
+    areCandidatesShown,
   });
+  const { channel, plotWidthPx } = sources;
   const marks = useBenchMarks({
     recordingId: recording.id,
     sampleRateHz,
@@ -147,15 +141,11 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     layout,
     pass,
     scheme,
-    channel,
-    plotWidthPx,
+    ...sources,
     draft,
     canMark,
     areCandidatesShown,
     view,
-    tiles,
-    peaks,
-    candidates,
     selectedCandidate,
     marks,
     marked,
