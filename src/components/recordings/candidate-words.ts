@@ -9,14 +9,14 @@ export const hearingWords: Readonly<Record<HearingClass, string>> = {
   above: 'above',
   across: 'across',
   below: 'below',
-  unknown: 'not observable',
+  unknown: 'unknown',
 };
 
 export const hearingOptions = [
   { value: 'above', label: 'above the hearing line' },
   { value: 'across', label: 'across it' },
   { value: 'below', label: 'below it' },
-  { value: 'unknown', label: 'not observable' },
+  { value: 'unknown', label: 'unknown' },
 ] as const;
 
 /** Two or fewer: the count of chance is an expectation, so it is rounded up. */
@@ -35,7 +35,7 @@ export function candidateFacts({ verdict, candidates }: Ultrasound): Fact[] {
     { key: 'above', term: 'Above the hearing line', value: formatNumber(candidates.above) },
     { key: 'across', term: 'Across it', value: formatNumber(candidates.across) },
     { key: 'below', term: 'Below it', value: formatNumber(candidates.below) },
-    ...(unknown > 0 ? [{ key: 'unknown', term: 'Not to be told', value: formatNumber(unknown) }] : []),
+    ...(unknown > 0 ? [{ key: 'unknown', term: 'Unknown', value: formatNumber(unknown) }] : []),
     {
       key: 'chance',
       term: 'With energy above it by chance, whole file',

@@ -30,8 +30,14 @@ function sentenceOf(name: string, unit: string, values: readonly (number | null)
   return `${name} through the recording; highest at ${formatDuration(peak.index * stepS)} with ${figure}.`;
 }
 
+interface CourseFacts {
+  sampleRateHz: number;
+  /** A level above 20 kHz where nothing can be observed there would be one of nothing. */
+  hasUltrasound: boolean;
+}
+
 /** What can be shown of the course: withheld or empty rows are left out. */
-export function courseSeries(course: Course, sampleRateHz: number): CourseSeries[] {
+export function courseSeries(course: Course, { sampleRateHz, hasUltrasound }: CourseFacts): CourseSeries[] {
   const stepS = course.samplesPerStep / sampleRateHz;
   const all: CourseSeries[] = [
     {
@@ -53,7 +59,9 @@ export function courseSeries(course: Course, sampleRateHz: number): CourseSeries
       values: course.candidates,
     },
   ];
-  return all.filter(({ values }) => values.some((value) => value !== null));
+  return all
+    .filter(({ key }) => key !== 'ultrasonic' || hasUltrasound)
+    .filter(({ values }) => values.some((value) => value !== null));
 }
 
 /** Middles of the steps in seconds, and the values. */

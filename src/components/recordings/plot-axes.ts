@@ -23,6 +23,8 @@ export function frequencyAxis(palette: Palette, lowHz: number, highHz: number): 
     grid: { show: false },
     ticks: { stroke: palette.hairline, width: 1, size: 4 },
     splits: () => frequencyTicks(lowHz, highHz),
+    // The library keeps only powers of ten of a logarithmic axis unless told otherwise.
+    filter: (_plot, splits) => splits,
     values: (_plot, splits) => splits.map((hz) => formatFrequency(hz)),
     size: 30,
   };
@@ -45,5 +47,6 @@ export function valueAxis(palette: Palette, label: string): uPlot.Axis {
 
 /** Room to the next round step, so that a curve does not touch the frame. */
 export function roundRange(low: number, high: number, step: number): [number, number] {
-  return [Math.floor(low / step) * step, Math.ceil(high / step) * step];
+  // Adding zero turns the minus zero of a range that ends there into zero.
+  return [Math.floor(low / step) * step + 0, Math.ceil(high / step) * step + 0];
 }

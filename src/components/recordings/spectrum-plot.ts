@@ -7,6 +7,8 @@ import type { Palette } from '@/theme/palette.ts';
 
 export const hearingLineHz = 20_000;
 const levelStepDb = 20;
+/** Over the highest peak, for the name of its curve. */
+const labelRoomDb = 6;
 /** Below this the deep end of a spectrum says nothing of what anybody looks for. */
 const deepestDb = -200;
 
@@ -32,7 +34,7 @@ function extentOf(data: uPlot.AlignedData): { hz: [number, number]; db: [number,
   const all = levels.flatMap((row) => [...row]).filter((value) => typeof value === 'number');
   return {
     hz: [hz[0] ?? 1, hz[hz.length - 1] ?? 10],
-    db: roundRange(Math.min(...all), Math.max(...all), levelStepDb),
+    db: roundRange(Math.min(...all), Math.max(...all) + labelRoomDb, levelStepDb),
   };
 }
 
@@ -45,7 +47,7 @@ export function spectrumOptions(
   const { hz, db } = extentOf(data);
   return (palette: Palette, size: PlotSize): uPlot.Options => ({
     ...size,
-    padding: [10, 24, 0, 0],
+    padding: [22, 36, 0, 0],
     legend: { show: false },
     cursor: { drag: { x: false, y: false }, points: { show: false }, y: false },
     scales: {
@@ -110,9 +112,8 @@ function drawHearingLine(plot: uPlot, palette: Palette): void {
   ctx.save();
   ctx.fillStyle = palette.glowFill;
   ctx.fillRect(x - devicePixelRatio, top, 2 * devicePixelRatio, height);
-  const y = top + 10 * devicePixelRatio;
-  const gap = 8 * devicePixelRatio;
-  drawLabel(plot, palette, { text: 'hearing line', x: x - gap, y, colour: palette.glow, align: 'right' });
+  const y = top - 10 * devicePixelRatio;
+  drawLabel(plot, palette, { text: 'hearing line', x, y, colour: palette.glow, align: 'center' });
   ctx.restore();
 }
 
@@ -137,7 +138,7 @@ function drawNames(plot: uPlot, palette: Palette): void {
   const nameAt = (text: string, index: number, level: unknown, colour: string, shift: number) => {
     if (typeof level !== 'number') return;
     const x = plot.valToPos(hz[index] ?? 1, 'x', true);
-    const y = plot.valToPos(level, 'y', true) + shift;
+    const y = Math.max(plot.bbox.top + offset, plot.valToPos(level, 'y', true) + shift);
     const edge = 40 * devicePixelRatio;
     const kept = Math.min(plot.bbox.left + plot.bbox.width - edge, Math.max(plot.bbox.left + edge, x));
     drawLabel(plot, palette, { text, x: kept, y, colour, align: 'center' });

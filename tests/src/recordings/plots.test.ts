@@ -43,25 +43,33 @@ describe('the plot of a spectrum', () => {
 
   it('rounds its range outwards', () => {
     expect(roundRange(-117, -62, 20)).toEqual([-120, -60]);
+    expect(Object.is(roundRange(-37, -0.4, 10)[1], 0)).toBe(true);
   });
 });
 
 describe('the course through a recording', () => {
+  const facts = { sampleRateHz: 1_000_000, hasUltrasound: true };
+
   it('shows level, ultrasonic level and candidates, each with a sentence', () => {
-    const series = courseSeries(measurement().course, 1_000_000);
+    const series = courseSeries(measurement().course, facts);
     expect(series.map(({ key }) => key)).toEqual(['level', 'ultrasonic', 'candidates']);
     expect(series[2]?.sentence).toMatch(/highest at 1\u00A0s with 12/);
   });
 
   it('leaves out what is withheld from whoever works blind', () => {
     const course = { ...measurement().course, ultrasonicDb: [null, null, null], candidates: [] };
-    expect(courseSeries(course, 1_000_000).map(({ key }) => key)).toEqual(['level']);
+    expect(courseSeries(course, facts).map(({ key }) => key)).toEqual(['level']);
+  });
+
+  it('shows no level above 20 kHz where nothing can be observed there', () => {
+    const series = courseSeries(measurement().course, { ...facts, hasUltrasound: false });
+    expect(series.map(({ key }) => key)).toEqual(['level', 'candidates']);
   });
 
   it('counts candidates from zero and levels down to a floor', () => {
     const [level, , candidates] = courseSeries(
       { ...measurement().course, levelDb: [-180, -40, null] },
-      1_000_000,
+      facts,
     );
     expect(candidates && rangeOf(candidates)).toEqual([0, 12]);
     expect(level && rangeOf(level)).toEqual([-100, -30]);
