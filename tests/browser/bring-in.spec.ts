@@ -1,3 +1,4 @@
+import { createHash } from 'node:crypto';
 import type { Page } from 'playwright-core';
 import { describe, expect } from 'vitest';
 import { checkAxe } from '../support/browser/axe.ts';
@@ -19,6 +20,15 @@ const sampleRateHz = 96_000;
 function noiseFile(name: string, seconds: number): ChosenFile {
   const channels = [whiteNoiseSignal(sampleRateHz * seconds, 0.01, name.length + seconds)];
   return { name, mimeType: 'audio/wav', buffer: Buffer.from(writeWav({ sampleRateHz, channels })) };
+}
+
+/** A file whose recorder wrote down who used it: EBU Tech 3285, the chunk bext, originator at byte 256. */
+function namedFile(name: string): ChosenFile {
+  const bext = new Uint8Array(602);
+  bext.set(new TextEncoder().encode('Runa Tveit'), 256);
+  const channels = [whiteNoiseSignal(sampleRateHz, 0.01, 5)];
+  const bytes = writeWav({ sampleRateHz, channels, extraChunks: [{ id: 'bext', body: bext }] });
+  return { name, mimeType: 'audio/wav', buffer: Buffer.from(bytes) };
 }
 
 async function openForm(page: Page): Promise<void> {
@@ -50,11 +60,15 @@ describe('bringing in recordings', () => {
   test('shows what the header says, sends, measures, and leads to the recording', async ({ page }) => {
     await signIn(page, 'contributor');
     await openForm(page);
-    await choose(page, noiseFile('quiet-noise.wav', 2));
+    const file = noiseFile('quiet-noise.wav', 2);
+    const completion = page.waitForRequest(/\/api\/uploads\/[0-9a-f-]+\/complete$/);
+    await choose(page, file);
     const item = page.getByRole('listitem').filter({ hasText: 'quiet-noise.wav' });
     await item.getByText('WAV, 16-bit integer').waitFor();
     await checkAxe(page);
     await page.getByRole('button', { name: /^Bring in 1/ }).click();
+    const sha256 = createHash('sha256').update(file.buffer).digest('hex');
+    expect((await completion).postDataJSON()).toEqual({ sha256 });
     await item.getByText('measured', { exact: true }).waitFor({ timeout: 60_000 });
     await checkAxe(page);
     await takeScreenshot(page, 'bring-in-measured');
@@ -79,6 +93,33 @@ describe('bringing in recordings', () => {
     await checkAxe(page);
     expect(await page.getByRole('button', { name: /^Bring in \d/ }).count()).toBe(0);
     expect(sent).toEqual([]);
+  });
+
+  test('tells beforehand of a name in the header, and that a reviewer will look at it', async ({ page }) => {
+    await signIn(page, 'contributor');
+    await openForm(page);
+    await choose(page, namedFile('with-a-name.wav'));
+    const item = page.getByRole('listitem').filter({ hasText: 'with-a-name.wav' });
+    await item.getByText('This file names a person in its header').waitFor();
+    await item.getByText('What was found').click();
+    await item.getByText(/Runa Tveit/).waitFor();
+    await checkAxe(page);
+  });
+
+  test('goes on by itself when a lost connection comes back', async ({ page, guard }) => {
+    guard.expectConsoleError(/ERR_INTERNET_DISCONNECTED/);
+    await signIn(page, 'contributor');
+    await openForm(page);
+    await choose(page, noiseFile('lost-and-found.wav', 20));
+    const speedUp = await slowDown(page, 400_000);
+    await page.getByRole('button', { name: /^Bring in 1/ }).click();
+    const item = page.getByRole('listitem').filter({ hasText: 'lost-and-found.wav' });
+    await item.getByText(/left$/).waitFor();
+    await speedUp();
+    await page.context().setOffline(true);
+    await item.getByText('interrupted', { exact: true }).waitFor();
+    await page.context().setOffline(false);
+    await item.getByText('measured', { exact: true }).waitFor({ timeout: 90_000 });
   });
 
   test('says what is missing before anything is sent', async ({ page }) => {

@@ -1,9 +1,11 @@
 import type { Locator, Page } from 'playwright-core';
-import { describe, expect } from 'vitest';
+import { describe, expect, inject } from 'vitest';
 import { checkAxe } from '../support/browser/axe.ts';
 import { signIn } from '../support/browser/sign-in.ts';
 import { takeScreenshot } from '../support/browser/screenshot.ts';
 import { test } from '../support/browser/test.ts';
+import { whiteNoiseSignal } from '../support/wav/signals.ts';
+import { writeWav } from '../support/wav/write-wav.ts';
 
 async function openRecording(page: Page, fileName: string): Promise<void> {
   const answer = await page.request.get('/api/recordings?limit=200');
@@ -12,6 +14,31 @@ async function openRecording(page: Page, fileName: string): Promise<void> {
   expect(id, fileName).toBeDefined();
   await page.goto(`/recordings/${id}`);
   await page.getByRole('heading', { name: 'What this file is' }).waitFor();
+}
+
+async function getJson<Body>(page: Page, address: string): Promise<Body> {
+  return (await (await page.request.get(address)).json()) as Body;
+}
+
+/** Sends a file long enough to be looked at while it is measured; resolves to the id of its recording. */
+async function bringIn(page: Page, fileName: string): Promise<string> {
+  type Items = { items: { id: string; labId: string; editable?: boolean }[] };
+  const run = (await getJson<Items>(page, '/api/runs')).items.find(({ editable }) => editable);
+  const setup = (await getJson<Items>(page, `/api/setups?labId=${run?.labId}`)).items[0];
+  const sampleRateHz = 192_000;
+  const channels = [whiteNoiseSignal(30 * sampleRateHz, 0.01, 11)];
+  const buffer = Buffer.from(writeWav({ sampleRateHz, channels }));
+  const { origin } = inject('demoServer');
+  const answer = await page.request.post(`/api/runs/${run?.id}/recordings`, {
+    headers: { Origin: origin, 'Sec-Fetch-Site': 'same-origin' },
+    multipart: {
+      setupId: setup?.id ?? '',
+      licence: 'CC-BY-4.0',
+      file: { name: fileName, mimeType: 'audio/wav', buffer },
+    },
+  });
+  expect(answer.status(), await answer.text()).toBe(201);
+  return ((await answer.json()) as { recording: { id: string } }).recording.id;
 }
 
 function candidateRows(page: Page): Locator {
@@ -117,6 +144,17 @@ describe('the page of a recording', () => {
     expect(await page.getByRole('heading', { name: /^Candidates/ }).count()).toBe(0);
     await checkAxe(page);
     await takeScreenshot(page, 'recording-blind');
+  });
+
+  test('turns into the measurements while one watches', async ({ page }) => {
+    await signIn(page, 'contributor');
+    const id = await bringIn(page, 'watched.wav');
+    await page.goto(`/recordings/${id}`);
+    await page.getByRole('heading', { level: 1, name: /^(Waits to be|Is being) measured$/ }).waitFor();
+    await page.getByRole('progressbar', { name: 'Measured' }).waitFor();
+    await checkAxe(page);
+    await page.getByRole('heading', { name: 'Through the recording' }).waitFor({ timeout: 90_000 });
+    await page.getByRole('img', { name: /^Power density/ }).waitFor();
   });
 
   test('fits a tablet', async ({ openPage }) => {
