@@ -137,7 +137,7 @@ describe('sensors and set-ups', () => {
     await page.getByLabel('Volts at full scale').fill('10');
     await page.getByRole('button', { name: 'Create' }).click();
     await page
-      .getByRole('row', { name: /Under the crucible .*10.V, preamplifier 40.dB/ })
+      .getByRole('row', { name: /Under the crucible .*10.V 40.dB/ })
       .first()
       .waitFor();
     await checkAxe(page);

@@ -26,6 +26,10 @@ export function modelOf({ model, serial }: Sensor): string {
   return parts.length > 0 ? parts.join(', ') : 'unknown';
 }
 
+export function quantityOrUnknown(value: number | null, unit: string): string {
+  return value === null ? 'unknown' : formatQuantity(value, unit, 4);
+}
+
 /** 10 V, preamplifier 40 dB. */
 export function formatChain({
   fullScaleV,
