@@ -77,6 +77,21 @@ describe('bringing in recordings', () => {
     await page.getByRole('heading', { name: 'What this file is' }).waitFor();
   });
 
+  test('takes a recording of two samples, and its page can be read', async ({ page }) => {
+    await signIn(page, 'contributor');
+    await openForm(page);
+    const channels = [Float32Array.of(0.5, -0.5)];
+    const buffer = Buffer.from(writeWav({ sampleRateHz, channels }));
+    await choose(page, { name: 'two-samples.wav', mimeType: 'audio/wav', buffer });
+    await page.getByRole('button', { name: /^Bring in 1/ }).click();
+    const item = page.getByRole('listitem').filter({ hasText: 'two-samples.wav' });
+    await item.getByText('measured', { exact: true }).waitFor({ timeout: 60_000 });
+    await item.getByRole('link', { name: 'Open the recording' }).click();
+    await page.getByRole('heading', { name: 'What this file is' }).waitFor();
+    await page.waitForLoadState('networkidle');
+    await checkAxe(page);
+  });
+
   test('refuses what is no WAV file with a sentence, before a byte is sent', async ({ page }) => {
     await signIn(page, 'contributor');
     const sent: string[] = [];

@@ -2,6 +2,7 @@ import type uPlot from 'uplot';
 import type { Course } from '@shared/contract/measurement.ts';
 import { figureFont, roundRange } from '@/components/recordings/plot-axes.ts';
 import type { PlotSize } from '@/components/recordings/usePlot.ts';
+import { multiplesWithin, niceStep } from '@/composables/axis-ticks.ts';
 import { formatDuration, formatNumber } from '@/composables/useFormat.ts';
 import type { Palette } from '@/theme/palette.ts';
 
@@ -14,6 +15,8 @@ export interface CourseSeries {
 }
 
 const levelFloorSpanDb = 60;
+/** Steps of the axis of time, about. */
+const timeSteps = 8;
 
 function strongest(values: readonly (number | null)[]): { index: number; value: number } | null {
   let best: { index: number; value: number } | null = null;
@@ -105,6 +108,8 @@ export function courseOptions({ series, durationS, hasTimeAxis, onPoint }: Cours
         font: figureFont,
         grid: { show: false },
         ticks: { stroke: palette.hairline, width: 1, size: 4 },
+        // The library's own steps run into each other in a recording of a few samples.
+        splits: () => multiplesWithin(0, durationS, niceStep(durationS / timeSteps)),
         values: (_plot, splits) => splits.map((seconds) => (seconds === 0 ? '0' : formatDuration(seconds))),
         size: 28,
       },

@@ -1,5 +1,5 @@
 import { HEARING_LINE_HZ } from '@/composables/bench/hearing-line.ts';
-import { multiplesWithin, niceStep } from '@/composables/bench/time-axis.ts';
+import { multiplesWithin, niceStep } from '@/composables/axis-ticks.ts';
 import type { AxisTick } from '@/composables/bench/time-axis.ts';
 import type { PictureBand } from '@shared/contract/views.ts';
 

@@ -1,3 +1,5 @@
+import { decimalsOf, multiplesWithin, niceStep } from '@/composables/axis-ticks.ts';
+
 /**
  * The part of a recording that is shown, in samples from its start. Both edges may lie between samples, so that
  * zooming around a pointer is smooth and can be undone.
@@ -71,25 +73,6 @@ export function windowAround(span: TimeWindow, frames: number, room = 4): TimeWi
 export interface AxisTick {
   value: number;
   label: string;
-}
-
-/** The nearest of 1, 2, 5 times a power of ten that is not below `least`. */
-export function niceStep(least: number): number {
-  const power = 10 ** Math.floor(Math.log10(least));
-  const factor = [1, 2, 5, 10].find((candidate) => candidate * power >= least * (1 - 1e-9)) ?? 10;
-  return factor * power;
-}
-
-/** Digits after the point that tell one step from the next. */
-export function decimalsOf(step: number): number {
-  return Math.max(0, -Math.floor(Math.log10(step) + 1e-9));
-}
-
-/** Multiples of `step` inside `[low, high]`, each computed from its number so that no error adds up. */
-export function multiplesWithin(low: number, high: number, step: number): number[] {
-  const first = Math.ceil(low / step - 1e-9);
-  const last = Math.floor(high / step + 1e-9);
-  return Array.from({ length: Math.max(0, last - first + 1) }, (_, index) => (first + index) * step);
 }
 
 const CLOCK_STEPS_S = [10, 30, 60, 120, 300, 600, 1800, 3600, 7200, 21_600];

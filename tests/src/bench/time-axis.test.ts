@@ -1,9 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { decimalsOf, niceStep } from '@/composables/axis-ticks.ts';
 import {
   clampWindow,
-  decimalsOf,
-  niceStep,
   panBy,
   pixelAtSample,
   sampleAtPixel,
