@@ -2,6 +2,7 @@ import { candidatesPageSchema, recordingSchema, recordingsPageSchema } from '@sh
 import type { ListCandidatesQuery, ListRecordingsQuery, Recording } from '@shared/contract/recordings.ts';
 import { spectrumResponseSchema } from '@shared/contract/views.ts';
 import { apiAddress, apiGet, apiSend } from '@/api/client.ts';
+import type { Query } from '@/api/client.ts';
 
 export async function getRecording(id: string, signal?: AbortSignal): Promise<Recording> {
   return apiGet(`/api/recordings/${id}`, recordingSchema, signal ? { signal } : {});
@@ -39,7 +40,15 @@ export async function measureAgain(id: string): Promise<Recording> {
 
 export type DownloadKind = 'audio' | 'frames.csv' | 'spectrum' | 'candidates';
 
-/** Address of a file to keep; the views other than the audio are of one channel. */
-export function downloadAddress(id: string, kind: DownloadKind, channel = 0): string {
-  return apiAddress(`/api/recordings/${id}/${kind}`, kind === 'audio' ? {} : { channel });
+const mostCandidates = 2000;
+const queryOf: Readonly<Record<DownloadKind, Query>> = {
+  audio: {},
+  'frames.csv': { channel: 0 },
+  spectrum: { channel: 0 },
+  candidates: { limit: mostCandidates },
+};
+
+/** Address of a file to keep; descriptors and spectrum are those of the first channel. */
+export function downloadAddress(id: string, kind: DownloadKind): string {
+  return apiAddress(`/api/recordings/${id}/${kind}`, queryOf[kind]);
 }

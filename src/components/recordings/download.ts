@@ -32,7 +32,7 @@ export function downloadsOf(
         ]
       : []),
     ...(isMeasured && !blind
-      ? [item('candidates', 'Candidates, first page', 'JSON', 'candidates.json')]
+      ? [item('candidates', 'Candidates, the first 2\u202F000', 'JSON', 'candidates.json')]
       : []),
   ];
 }

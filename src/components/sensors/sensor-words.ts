@@ -9,7 +9,7 @@ export const sensorKindOptions = (Object.keys(sensorKindWords) as SensorKind[]).
 
 export const automaticGainOptions = [
   { value: 'off', label: 'off' },
-  { value: 'on', label: 'on', hint: 'Levels and energies are not comparable then.' },
+  { value: 'on', label: 'on' },
   { value: 'unknown', label: 'unknown' },
 ] as const;
 
