@@ -68,7 +68,10 @@ export class MainsTracker {
       this.#power.reduce((highest, power) => Math.max(highest, power), 0) *
         10 ** (LEAST_UNDER_STRONGEST_DB / 10),
     );
-    return BASES_HZ.flatMap((baseHz) => this.#linesOf(baseHz)).sort((a, b) => a.frequencyHz - b.frequencyHz);
+    const lines = BASES_HZ.flatMap((baseHz) => this.#linesOf(baseHz));
+    // 300 Hz is a multiple of both.
+    const distinct = new Map(lines.map((line) => [line.frequencyHz, line]));
+    return [...distinct.values()].sort((a, b) => a.frequencyHz - b.frequencyHz);
   }
 
   #closeMean(): void {

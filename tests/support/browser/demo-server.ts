@@ -6,7 +6,7 @@ import path from 'node:path';
 
 const projectRoot = path.resolve(import.meta.dirname, '../../..');
 const startLimitMs = 30_000;
-const seedLimitMs = 120_000;
+const seedLimitMs = 300_000;
 const stopLimitMs = 15_000;
 const pollMs = 100;
 
