@@ -1,4 +1,6 @@
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
+import { write } from '../../../../server/db/transaction.ts';
+import { replaceRoles } from '../../../../server/features/people/people.queries.ts';
 import { seedAssigned } from '../../../support/server/seed-marking.ts';
 import { seedMeasured, seedRecording, setSharing } from '../../../support/server/seed-recordings.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
@@ -53,6 +55,19 @@ describe('assigning a pass', () => {
 });
 
 describe('a blind pass', () => {
+  test('is blind for a labeler who has another role that shows the recording', async () => {
+    const { recordingId } = await seedAssigned(app);
+    const { db } = app.deps;
+    write(db, (tx) => replaceRoles(tx, app.personIds.labeler, ['labeler', 'curator']));
+    try {
+      const { body } = await app.as('labeler').get(`/api/recordings/${recordingId}`);
+      expect(body).toMatchObject({ blind: true, candidateCount: null });
+      await app.as('labeler').get(`/api/recordings/${recordingId}/candidates`).expect(404);
+    } finally {
+      write(db, (tx) => replaceRoles(tx, app.personIds.labeler, ['labeler']));
+    }
+  });
+
   test('hides candidates and counts from its labeler until it is finished', async () => {
     const { recordingId, passId } = await seedAssigned(app);
     const seen = async () => (await app.as('labeler').get(`/api/recordings/${recordingId}`)).body;
