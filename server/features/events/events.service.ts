@@ -172,7 +172,7 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
     audit.record(tx, {
       personId: actor.id,
       action,
-      subjectType: 'event',
+      subjectType: 'Event',
       subjectId: row.id,
       detail: { recordingId: row.recordingId, passId: row.passId, revision: row.revision },
     });

@@ -155,7 +155,7 @@ function entry(actor: Actor, action: string, pass: { id: string; labelerId: stri
   return {
     personId: actor.id,
     action,
-    subjectType: 'pass',
+    subjectType: 'Pass',
     subjectId: pass.id,
     detail: { labelerId: pass.labelerId },
   };
