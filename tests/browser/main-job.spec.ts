@@ -77,7 +77,7 @@ describe.sequential('from a WAV file to a released data set', () => {
     await dialog.getByLabel('Labeler').selectOption({ label: 'Ilse Marwick' });
     await checkAxe(page);
     await dialog.getByRole('button', { name: 'Assign' }).click();
-    await page.getByRole('cell', { name: 'Ilse Marwick' }).waitFor();
+    await page.getByRole('listitem').filter({ hasText: 'Ilse Marwick' }).waitFor();
   });
 
   test('a labeler marks a burst with one key and finishes the pass', async ({ page }) => {
