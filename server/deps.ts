@@ -9,6 +9,7 @@ import { createInvitationsService, type InvitationsService } from './features/pe
 import { createPeopleService, type PeopleService } from './features/people/people.service.ts';
 import { createSetupService, type SetupService } from './features/people/setup.service.ts';
 import { createIdentitiesService, type IdentitiesService } from './features/sessions/identities.service.ts';
+import { createPasswordService, type PasswordService } from './features/sessions/password.service.ts';
 import { createSessionsService, type SessionsService } from './features/sessions/sessions.service.ts';
 import { tokenLifeMs } from './features/sessions/session-token.ts';
 import { createTokensService, type TokensService } from './features/sessions/tokens.service.ts';
@@ -24,6 +25,7 @@ export interface Services extends RecordingServices, MarkingServices {
   sessions: SessionsService;
   identities: IdentitiesService;
   tokens: TokensService;
+  password: PasswordService;
   people: PeopleService;
   accounts: AccountsService;
   invitations: InvitationsService;
@@ -60,6 +62,7 @@ function createServices(ground: Ground): Services {
   const people = createPeopleService({ ...ground, audit, labs, sessions });
   const invitations = createInvitationsService({ ...ground, audit, labs });
   const accounts = createAccountsService(ground);
+  const password = createPasswordService({ ...ground, audit, actors, accounts });
   const acceptance = createAcceptanceService({ ...ground, audit, accounts });
   const setup = createSetupService({ ...ground, audit, accounts });
   const health = createHealthService(ground);
@@ -71,6 +74,7 @@ function createServices(ground: Ground): Services {
     sessions,
     identities,
     tokens,
+    password,
     people,
     accounts,
     invitations,

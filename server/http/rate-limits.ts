@@ -18,6 +18,7 @@ const budgets = {
     { windowMs: quarterHourMs, limit: 10, key: byAccountAndAddress, failuresOnly: true },
     { windowMs: quarterHourMs, limit: 60, key: byAddress, failuresOnly: true },
   ],
+  password: [{ windowMs: quarterHourMs, limit: 20, key: byAddress, failuresOnly: true }],
   'one-time-link': [{ windowMs: quarterHourMs, limit: 30, key: byAddress, failuresOnly: true }],
 } satisfies Record<string, Budget[]>;
 
@@ -27,6 +28,7 @@ export type RateLimitName = keyof typeof budgets;
 export function createRateLimits(): Record<RateLimitName, RequestHandler[]> {
   return {
     'sign-in': budgets['sign-in'].map(toLimiter),
+    password: budgets.password.map(toLimiter),
     'one-time-link': budgets['one-time-link'].map(toLimiter),
   };
 }

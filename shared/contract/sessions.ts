@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { idSchema, instantSchema } from './ids.ts';
-import { namedMembershipSchema, serviceRoleSchema } from './people.ts';
+import { namedMembershipSchema, passwordSchema, serviceRoleSchema } from './people.ts';
 
 export const signInSchema = z.object({
   email: z.string().trim().toLowerCase().min(1, 'is needed').max(254),
@@ -46,3 +46,9 @@ export const tokenRowSchema = z.object({
 export const tokensSchema = z.object({ items: z.array(tokenRowSchema) });
 /** `token` is told once and kept only as a hash. */
 export const createdTokenSchema = tokenRowSchema.extend({ token: z.string() });
+
+export const changePasswordSchema = z.object({
+  currentPassword: z.string().min(1, 'is needed').max(256),
+  newPassword: passwordSchema,
+});
+export type ChangePassword = z.infer<typeof changePasswordSchema>;

@@ -5,7 +5,7 @@ import {
   signedInSchema,
   tokensSchema,
 } from '@shared/contract/sessions.ts';
-import type { CreateToken, CurrentUser, SignIn } from '@shared/contract/sessions.ts';
+import type { ChangePassword, CreateToken, CurrentUser, SignIn } from '@shared/contract/sessions.ts';
 import { apiGet, apiSend, apiSendForNothing } from '@/api/client.ts';
 
 export async function signIn(input: SignIn): Promise<CurrentUser> {
@@ -38,4 +38,8 @@ export async function createToken(input: CreateToken) {
 
 export async function revokeToken(id: string): Promise<void> {
   await apiSendForNothing('DELETE', `/api/tokens/${id}`);
+}
+
+export async function changePassword(input: ChangePassword): Promise<void> {
+  await apiSendForNothing('PUT', '/api/password', { body: input });
 }

@@ -9,6 +9,7 @@ import {
   replaceMemberships,
   replaceRoles,
   selectUserByEmail,
+  updateUser,
 } from './people.queries.ts';
 
 export type AccountsService = ReturnType<typeof createAccountsService>;
@@ -21,8 +22,12 @@ export type NewAccount = Pick<CreateInvitation, 'email' | 'roles' | 'memberships
 /** How an account comes to be; by which right, the caller has to know. */
 export function createAccountsService({ clock, ids, hasher }: Pick<Ground, 'clock' | 'ids' | 'hasher'>) {
   /** Before the transaction, since hashing takes its time. */
-  async function hashNewPassword(password: string, owner: { email: string; name: string }): Promise<string> {
-    requireUncommonPassword(password, owner);
+  async function hashNewPassword(
+    password: string,
+    owner: { email: string; name: string },
+    field = 'password',
+  ): Promise<string> {
+    requireUncommonPassword(password, owner, field);
     return hasher.hash(password);
   }
 
@@ -36,7 +41,11 @@ export function createAccountsService({ clock, ids, hasher }: Pick<Ground, 'cloc
     return id;
   }
 
-  return { hashNewPassword, create, hasNone: (reader: Reader) => countUsers(reader) === 0 };
+  function setPasswordHash(tx: Tx, personId: string, passwordHash: string): void {
+    updateUser(tx, personId, { passwordHash });
+  }
+
+  return { hashNewPassword, create, setPasswordHash, hasNone: (reader: Reader) => countUsers(reader) === 0 };
 }
 
 export function requireNewEmail(reader: Reader, email: string): void {

@@ -7,13 +7,13 @@ interface Owner {
 }
 
 /** Length is the contract's; here only what many people try first is refused. No composition rules. */
-export function requireUncommonPassword(password: string, owner: Owner): void {
+export function requireUncommonPassword(password: string, owner: Owner, field = 'password'): void {
   if (isCommon(password)) {
-    throw invalidField('password', 'is one of those that are tried first; choose several unrelated words');
+    throw invalidField(field, 'is one of those that are tried first; choose several unrelated words');
   }
   if (isAboutOwner(password, owner)) {
     throw invalidField(
-      'password',
+      field,
       'must not be made from the name, the e-mail address or the name of this service',
     );
   }

@@ -1,4 +1,4 @@
-import { and, desc, eq, gt, isNull } from 'drizzle-orm';
+import { and, desc, eq, gt, isNull, ne } from 'drizzle-orm';
 import type { Reader, Tx } from '../../db/client.ts';
 import { apiTokens, sessions } from '../../db/schema/sessions.ts';
 
@@ -40,6 +40,15 @@ export function updateAllEnded(tx: Tx, userId: string, nowMs: number): void {
   tx.update(sessions).set({ endedAtMs: nowMs }).where(openSessions).run();
   const openTokens = and(eq(apiTokens.userId, userId), isNull(apiTokens.revokedAtMs));
   tx.update(apiTokens).set({ revokedAtMs: nowMs }).where(openTokens).run();
+}
+
+/** Everywhere else; personal tokens stay. */
+export function updateOthersEnded(
+  tx: Tx,
+  { userId, keptId, nowMs }: { userId: string; keptId: string; nowMs: number },
+): void {
+  const others = and(eq(sessions.userId, userId), ne(sessions.id, keptId), isNull(sessions.endedAtMs));
+  tx.update(sessions).set({ endedAtMs: nowMs }).where(others).run();
 }
 
 export function selectTokenByHash(db: Reader, tokenHash: string): TokenRow | undefined {

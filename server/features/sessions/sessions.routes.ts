@@ -1,5 +1,6 @@
 import { idParamsSchema } from '../../../shared/contract/ids.ts';
 import {
+  changePasswordSchema,
   createdTokenSchema,
   createTokenSchema,
   currentSessionSchema,
@@ -11,9 +12,10 @@ import {
 import type { Deps } from '../../deps.ts';
 import { identityOf } from '../../http/authenticate.ts';
 import { defineRoute, type Route } from '../../http/define-route.ts';
+import { forbidden } from '../../http/problem.ts';
 
 export function sessionsRoutes(deps: Deps): Route[] {
-  return [...sessionRoutes(deps), ...tokenRoutes(deps)];
+  return [...sessionRoutes(deps), ...passwordRoutes(deps), ...tokenRoutes(deps)];
 }
 
 function sessionRoutes({ services, cookie }: Deps): Route[] {
@@ -72,6 +74,26 @@ function sessionRoutes({ services, cookie }: Deps): Route[] {
       params: idParamsSchema,
       status: 204,
       handler: ({ actor, params }) => services.sessions.end(actor, params.id),
+    }),
+  ];
+}
+
+function passwordRoutes({ services }: Deps): Route[] {
+  return [
+    defineRoute({
+      method: 'put',
+      path: '/api/password',
+      summary: "Changes the person's own password, and signs out everywhere else.",
+      access: 'signed-in',
+      body: changePasswordSchema,
+      status: 204,
+      rateLimit: 'password',
+      handler: ({ actor, body, req }) => {
+        const identity = identityOf(req);
+        if (identity.via !== 'cookie')
+          throw forbidden('A password is changed in the browser, not by a script.');
+        return services.password.change(actor, identity.sessionId, body);
+      },
     }),
   ];
 }

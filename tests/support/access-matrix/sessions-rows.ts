@@ -33,6 +33,15 @@ export const sessionsRows: MatrixRow[] = [
     prepare: (app) => ({ path: `/api/sessions/${addSession(app)}` }),
     expected: signedIn(404, { contributor: 204 }),
   },
+  {
+    route: 'PUT /api/password',
+    state: 'with a wrong present password',
+    prepare: () => ({
+      path: '/api/password',
+      body: { currentPassword: 'not this one', newPassword: 'several quiet lanterns drift' },
+    }),
+    expected: signedIn(422),
+  },
   { route: 'GET /api/tokens', prepare: () => ({ path: '/api/tokens' }), expected: signedIn(200) },
   {
     route: 'POST /api/tokens',

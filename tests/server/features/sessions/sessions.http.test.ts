@@ -242,3 +242,44 @@ describe('a personal token', () => {
     },
   );
 });
+
+describe('changing the password', () => {
+  const newPassword = 'four amber rivers bend';
+  const change = (cookie: string, currentPassword: string, next = newPassword) =>
+    supertest(app.http)
+      .put('/api/password')
+      .set({ Cookie: cookie, Origin: app.deps.config.publicUrl })
+      .send({ currentPassword, newPassword: next });
+
+  test('takes the new one from then on, and ends every other session', async () => {
+    const here = cookieOf(await signIn('curator@lab.example', testPassword));
+    const elsewhere = cookieOf(await signIn('curator@lab.example', testPassword));
+    expect((await change(here, testPassword)).status).toBe(204);
+    expect((await whoAmI(here)).body.user).not.toBeNull();
+    expect((await whoAmI(elsewhere)).body.user).toBeNull();
+    expect((await signIn('curator@lab.example', testPassword)).status).toBe(401);
+    expect((await signIn('curator@lab.example', newPassword)).status).toBe(201);
+  });
+
+  test('needs the present one', async () => {
+    const here = cookieOf(await signIn('curator@lab.example', testPassword));
+    const answer = await change(here, 'something else entirely');
+    expect(answer.status).toBe(422);
+    expect(answer.body.fields).toEqual([expect.objectContaining({ path: 'currentPassword' })]);
+  });
+
+  test('refuses one that is tried first, at its field', async () => {
+    const here = cookieOf(await signIn('curator@lab.example', testPassword));
+    const answer = await change(here, testPassword, 'password1234567');
+    expect(answer.body.fields).toEqual([expect.objectContaining({ path: 'newPassword' })]);
+  });
+
+  test('is not for scripts', async () => {
+    const { body } = await app.as('curator').post('/api/tokens').send({ name: 'script' });
+    const answer = await supertest(app.http)
+      .put('/api/password')
+      .set('Authorization', `Bearer ${body.token}`)
+      .send({ currentPassword: testPassword, newPassword });
+    expect(answer.status).toBe(403);
+  });
+});
