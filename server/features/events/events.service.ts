@@ -110,7 +110,7 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
       keep(tx, actor, measured, 'event.created');
       return measured;
     });
-    recordings.announce(recordingId);
+    tellHold(stored);
     return toEvent(stored);
   }
 
@@ -132,7 +132,7 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
       passes.requireOwnOpenPass(tx, actor, row.passId);
       save(tx, actor, stored, 'event.changed');
     });
-    recordings.announce(row.recordingId);
+    tellHold(stored);
     return toEvent(stored);
   }
 
@@ -178,6 +178,11 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
     });
     if (row.classKey === voiceClassKey && row.deletedAtMs === null)
       recordings.holdForVoice(tx, row.recordingId, row);
+  }
+
+  /** Open pages hear of a recording that was held by a mark, not of every mark. */
+  function tellHold({ classKey, recordingId }: EventRow): void {
+    if (classKey === voiceClassKey) recordings.announce(recordingId);
   }
 
   function checkRow(actor: Actor, row: EventRow, schemeVersion: number): void {
