@@ -92,16 +92,3 @@ export const listRunsQuerySchema = pageQuerySchema.extend({
 });
 export type ListRunsQuery = z.infer<typeof listRunsQuerySchema>;
 export const runsPageSchema = pageSchema(runSchema);
-
-export const runPhaseNameSchema = z.enum([
-  'supercooled-liquid',
-  'nucleation',
-  'recalescence',
-  'dendritic-growth',
-  'cellular-growth',
-  'planar-growth',
-  'eutectic-growth',
-  'coarsening',
-  'cooling-solid',
-  'not-visible',
-]);

@@ -14,23 +14,9 @@ export function spanFault(span: SampleSpan, frames: number): string | null {
   return null;
 }
 
-export function spanFrames(span: SampleSpan): number {
-  return span.endSample - span.startSample;
-}
-
-export function spansOverlap(a: SampleSpan, b: SampleSpan): boolean {
-  return a.startSample < b.endSample && b.startSample < a.endSample;
-}
-
 /** Moves a span into `[0, frames)` and keeps at least one sample of it. */
 export function clampSpan(span: SampleSpan, frames: number): SampleSpan {
   const startSample = Math.min(Math.max(0, Math.round(span.startSample)), frames - 1);
   const endSample = Math.min(Math.max(startSample + 1, Math.round(span.endSample)), frames);
   return { startSample, endSample };
-}
-
-/** The sample span of `[startS, endS)`, widened to whole samples and never empty. */
-export function spanFromSeconds(startS: number, endS: number, sampleRateHz: number): SampleSpan {
-  const startSample = Math.floor(startS * sampleRateHz);
-  return { startSample, endSample: Math.max(startSample + 1, Math.ceil(endS * sampleRateHz)) };
 }

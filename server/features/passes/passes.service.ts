@@ -118,9 +118,6 @@ export function createPassesService({ db, clock, ids, activity, audit, schemes }
     finish,
     cancel,
     requireOwnOpenPass,
-    /** The pass this person has on the recording, the open one first. */
-    findOwn: (reader: Reader, actor: Actor, recordingId: string) =>
-      selectPassOf(reader, recordingId, actor.id),
     isBlindOn: (reader: Reader, actor: Actor, recordingId: string) =>
       selectOpenBlindPass(reader, recordingId, actor.id) !== undefined,
     ofRecording: (reader: Reader, recordingId: string) => selectUncancelledPasses(reader, recordingId),
