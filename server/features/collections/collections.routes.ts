@@ -12,7 +12,7 @@ import { idParamsSchema } from '../../../shared/contract/ids.ts';
 import { pageQuerySchema } from '../../../shared/contract/page.ts';
 import type { Deps } from '../../deps.ts';
 import { defineRoute, type Route } from '../../http/define-route.ts';
-import { readIfMatch, setRevision } from '../../http/revision.ts';
+import { readIfMatch, withRevision } from '../../http/revision.ts';
 
 export function collectionsRoutes({ services: { collections } }: Deps): Route[] {
   return [
@@ -33,11 +33,7 @@ export function collectionsRoutes({ services: { collections } }: Deps): Route[] 
       status: 201,
       body: saveCollectionSchema,
       response: collectionSchema,
-      handler: ({ actor, body, res }) => {
-        const collection = collections.create(actor, body);
-        setRevision({ res }, collection.revision);
-        return collection;
-      },
+      handler: ({ actor, body, res }) => withRevision(res, collections.create(actor, body)),
     }),
     defineRoute({
       method: 'get',
@@ -46,11 +42,7 @@ export function collectionsRoutes({ services: { collections } }: Deps): Route[] 
       access: 'signed-in',
       params: idParamsSchema,
       response: collectionSchema,
-      handler: ({ actor, params, res }) => {
-        const collection = collections.get(actor, params.id);
-        setRevision({ res }, collection.revision);
-        return collection;
-      },
+      handler: ({ actor, params, res }) => withRevision(res, collections.get(actor, params.id)),
     }),
     defineRoute({
       method: 'put',
@@ -60,11 +52,8 @@ export function collectionsRoutes({ services: { collections } }: Deps): Route[] 
       params: idParamsSchema,
       body: saveCollectionSchema,
       response: collectionSchema,
-      handler: ({ actor, params, body, req, res }) => {
-        const collection = collections.update(actor, params.id, readIfMatch({ req }), body);
-        setRevision({ res }, collection.revision);
-        return collection;
-      },
+      handler: ({ actor, params, body, req, res }) =>
+        withRevision(res, collections.update(actor, params.id, readIfMatch({ req }), body)),
     }),
     defineRoute({
       method: 'get',

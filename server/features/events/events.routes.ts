@@ -9,7 +9,7 @@ import {
 import { idParamsSchema } from '../../../shared/contract/ids.ts';
 import type { Deps } from '../../deps.ts';
 import { defineRoute, type Route } from '../../http/define-route.ts';
-import { readIfMatch, setRevision } from '../../http/revision.ts';
+import { readIfMatch, withRevision } from '../../http/revision.ts';
 
 export function eventsRoutes({ services: { events } }: Deps): Route[] {
   return [
@@ -32,11 +32,8 @@ export function eventsRoutes({ services: { events } }: Deps): Route[] {
       params: idParamsSchema,
       body: createEventSchema,
       response: eventSchema,
-      handler: async ({ actor, params, body, res }) => {
-        const event = await events.create(actor, params.id, body);
-        setRevision({ res }, event.revision);
-        return event;
-      },
+      handler: async ({ actor, params, body, res }) =>
+        withRevision(res, await events.create(actor, params.id, body)),
     }),
     defineRoute({
       method: 'put',
@@ -48,9 +45,7 @@ export function eventsRoutes({ services: { events } }: Deps): Route[] {
       response: eventSchema,
       handler: async ({ actor, params, body, req, res }) => {
         const revision = req.headers['if-match'] === undefined ? null : readIfMatch({ req });
-        const event = await events.put(actor, params.id, body, revision);
-        setRevision({ res }, event.revision);
-        return event;
+        return withRevision(res, await events.put(actor, params.id, body, revision));
       },
     }),
     defineRoute({
@@ -61,11 +56,8 @@ export function eventsRoutes({ services: { events } }: Deps): Route[] {
       params: idParamsSchema,
       body: patchEventSchema,
       response: eventSchema,
-      handler: async ({ actor, params, body, req, res }) => {
-        const event = await events.patch(actor, params.id, body, readIfMatch({ req }));
-        setRevision({ res }, event.revision);
-        return event;
-      },
+      handler: async ({ actor, params, body, req, res }) =>
+        withRevision(res, await events.patch(actor, params.id, body, readIfMatch({ req }))),
     }),
     defineRoute({
       method: 'delete',

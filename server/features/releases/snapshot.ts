@@ -64,9 +64,9 @@ export function takeSnapshot(
 
 /** A single finished pass counts as it is; where there are several, nothing is settled before they were compared. */
 export function settledPassIds(passes: readonly FinishedPass[]): Set<string> {
-  const isAlone = (pass: FinishedPass) =>
-    passes.filter((other) => other.recordingId === pass.recordingId).length === 1;
-  return new Set(passes.filter(isAlone).map((pass) => pass.id));
+  const counts = new Map<string, number>();
+  for (const { recordingId } of passes) counts.set(recordingId, (counts.get(recordingId) ?? 0) + 1);
+  return new Set(passes.filter((pass) => counts.get(pass.recordingId) === 1).map((pass) => pass.id));
 }
 
 function distinctRuns(members: readonly MemberFacts[]): MemberFacts[] {
