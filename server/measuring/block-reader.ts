@@ -1,6 +1,7 @@
 import { open, type FileHandle } from 'node:fs/promises';
 import { bytesPerFrame, type SampleLayout } from '../../shared/audio/audio-format.ts';
-import { decodeFrames } from '../../shared/audio/pcm-decode.ts';
+import { decodeFrames, zeroNonFinite } from '../../shared/audio/pcm-decode.ts';
+import { decodeWithWavDecoder, SMALL_RECORDING_BYTES } from './small-recording.ts';
 
 /** What a reader has to know of a header. */
 export interface AudioPlace {
@@ -11,13 +12,17 @@ export interface AudioPlace {
 
 const PIECE_BYTES = 1024 * 1024;
 
-/** Reads whole frames of a WAV file by their place and decodes them; memory depends on neither length nor request. */
+/**
+ * Reads whole frames of a WAV file by their place and decodes them; memory depends on neither length nor request. A small recording
+ * is decoded once, at the first read.
+ */
 export class BlockReader {
   readonly frames: number;
   readonly #place: AudioPlace;
   readonly #file: FileHandle;
   readonly #piece: Uint8Array;
   readonly #frameBytes: number;
+  #small: Promise<Float32Array[]> | undefined;
 
   static async open(filePath: string, place: AudioPlace): Promise<BlockReader> {
     return new BlockReader(await open(filePath, 'r'), place);
@@ -28,7 +33,8 @@ export class BlockReader {
     this.#place = place;
     this.frames = place.format.frames;
     this.#frameBytes = bytesPerFrame(place.format);
-    this.#piece = new Uint8Array(Math.floor(PIECE_BYTES / this.#frameBytes) * this.#frameBytes);
+    const wantedBytes = Math.min(PIECE_BYTES, Math.max(1, this.frames) * this.#frameBytes);
+    this.#piece = new Uint8Array(Math.floor(wantedBytes / this.#frameBytes) * this.#frameBytes);
   }
 
   /**
@@ -40,6 +46,9 @@ export class BlockReader {
   async read(startSample: number, count: number, out: readonly Float32Array[], at = 0): Promise<number[]> {
     if (startSample < 0 || startSample + count > this.frames) {
       throw new RangeError(`startSample: ${startSample} and ${count} more are not within ${this.frames}`);
+    }
+    if (this.frames * this.#frameBytes <= SMALL_RECORDING_BYTES) {
+      return this.#readSmall(startSample, count, out, at);
     }
     const nonFinite = new Array<number>(this.#place.format.channels).fill(0);
     const framesPerPiece = this.#piece.length / this.#frameBytes;
@@ -72,6 +81,25 @@ export class BlockReader {
 
   async close(): Promise<void> {
     await this.#file.close();
+  }
+
+  async #readSmall(
+    startSample: number,
+    count: number,
+    out: readonly Float32Array[],
+    at: number,
+  ): Promise<number[]> {
+    this.#small ??= this.#decodeWhole();
+    const channels = await this.#small;
+    return channels.map((samples, channel) => {
+      const target = out[channel]!.subarray(at, at + count);
+      target.set(samples.subarray(startSample, startSample + count));
+      return zeroNonFinite(target, count);
+    });
+  }
+
+  async #decodeWhole(): Promise<Float32Array[]> {
+    return decodeWithWavDecoder(await this.#readBytes(0, this.frames), this.#place.format);
   }
 
   async #readBytes(startSample: number, frames: number): Promise<Uint8Array> {

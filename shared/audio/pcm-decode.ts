@@ -86,7 +86,8 @@ const LANE_DECODERS: Record<string, (lane: Lane, out: Float32Array) => number> =
   },
 };
 
-function zeroNonFinite(samples: Float32Array, count: number): number {
+/** Puts 0 for every one of the first `count` samples that is not a number or infinite, and tells how many there were. */
+export function zeroNonFinite(samples: Float32Array, count: number): number {
   let found = 0;
   for (let i = 0; i < count; i++) {
     const sample = samples[i]!;

@@ -9,7 +9,7 @@ import { addDampedSine } from '../../server/setup/demo-audio/damped-sine.ts';
 import { encodeFrames } from '../../server/setup/demo-audio/encode-frames.ts';
 import { whiteNoise } from '../../server/setup/demo-audio/noise.ts';
 import { seededRandom } from '../../server/setup/demo-audio/seeded-random.ts';
-import { wavEnvelope } from '../../server/setup/demo-audio/wav-envelope.ts';
+import { wavEnvelope } from '../../shared/audio/wav-envelope.ts';
 
 // Brings one large recording into the built server and prints how much memory the server took until it was measured.
 // Run: npm run build:server && npx tsx tests/bench/upload-memory.ts [megabytes, or 1000] [folder of the build, or dist]

@@ -1,4 +1,10 @@
-import { asciiBytes, chunkBytes, concatBytes, uint32, type WavChunk } from './wav-envelope.ts';
+import {
+  asciiBytes,
+  chunkBytes,
+  concatBytes,
+  uint32,
+  type WavChunk,
+} from '../../../shared/audio/wav-envelope.ts';
 
 /** Text beside the audio as recorders write it. */
 export type DemoMetadata =

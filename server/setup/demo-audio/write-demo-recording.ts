@@ -8,7 +8,7 @@ import { metadataChunk } from './metadata-chunks.ts';
 import { pinkNoise, whiteNoise } from './noise.ts';
 import { seededRandom } from './seeded-random.ts';
 import { trueBursts } from './true-bursts.ts';
-import { wavEnvelope } from './wav-envelope.ts';
+import { wavEnvelope } from '../../../shared/audio/wav-envelope.ts';
 
 const BLOCK_FRAMES = 65_536;
 

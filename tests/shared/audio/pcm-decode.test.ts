@@ -1,10 +1,9 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import wavDecoder from 'wav-decoder';
-import { concatBytes, wavEnvelope } from '../../../server/setup/demo-audio/wav-envelope.ts';
 import { encodeFrames } from '../../../server/setup/demo-audio/encode-frames.ts';
 import { bytesPerFrame, type SampleLayout } from '../../../shared/audio/audio-format.ts';
-import { decodeFrames } from '../../../shared/audio/pcm-decode.ts';
+import { decodeFrames, zeroNonFinite } from '../../../shared/audio/pcm-decode.ts';
+import { decodeWithWavDecoder } from '../../../server/measuring/small-recording.ts';
 
 const WIDTHS = [
   { encoding: 'integer', bitsPerSample: 8 },
@@ -22,22 +21,11 @@ function decoded(bytes: Uint8Array, layout: SampleLayout): Float32Array[] {
   return out;
 }
 
-/** What wav-decoder 1.3.0 makes of the same block behind a canonical header, brought to our convention. */
+/** What wav-decoder 1.3.0 makes of the same block, with what is not finite put to 0. */
 function reference(bytes: Uint8Array, layout: SampleLayout): Float32Array[] {
-  const stride = bytesPerFrame(layout);
-  const frames = Math.floor(bytes.length / stride);
-  const { head } = wavEnvelope({ ...layout, sampleRateHz: 48_000, frames });
-  const file = concatBytes([head, bytes.subarray(0, frames * stride)]);
-  const { channelData } = wavDecoder.decode.sync(file.buffer, { symmetric: true });
-  return channelData.map((samples) => samples.map((sample) => toOurConvention(sample, layout)));
-}
-
-function toOurConvention(sample: number, layout: SampleLayout): number {
-  // Its 8-bit zero lies between two codes (127.5): silence would get an offset. Ours is 128, as the format defines it.
-  if (layout.bitsPerSample === 8) return (Math.round(sample * 127.5 + 127.5) - 128) / 128;
-  // It reads the 24-bit minimum as +1, which no other code can give.
-  if (layout.bitsPerSample === 24 && sample === 1) return -1;
-  return Number.isFinite(sample) ? sample : 0;
+  const channels = decodeWithWavDecoder(bytes, layout);
+  for (const samples of channels) zeroNonFinite(samples, samples.length);
+  return channels;
 }
 
 describe('decoding a block of frames', () => {

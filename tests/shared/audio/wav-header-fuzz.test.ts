@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { infoChunk } from '../../../server/setup/demo-audio/metadata-chunks.ts';
 import { seededRandom, type Random } from '../../../server/setup/demo-audio/seeded-random.ts';
-import { concatBytes } from '../../../server/setup/demo-audio/wav-envelope.ts';
+import { concatBytes } from '../../../shared/audio/wav-envelope.ts';
 import { personalMetadata } from '../../../shared/audio/personal-metadata.ts';
 import { readWavHeader } from '../../../shared/audio/wav-header.ts';
 import { readWavMetadata } from '../../../shared/audio/wav-metadata.ts';

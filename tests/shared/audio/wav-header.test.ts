@@ -1,11 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import {
-  asciiBytes,
-  chunkBytes,
-  concatBytes,
-  uint32,
-} from '../../../server/setup/demo-audio/wav-envelope.ts';
+import { asciiBytes, chunkBytes, concatBytes, uint32 } from '../../../shared/audio/wav-envelope.ts';
 import { blobSource, bytesSource } from '../../../shared/audio/byte-source.ts';
 import { readWavHeader, type WavHeader } from '../../../shared/audio/wav-header.ts';
 import { countingSource } from '../../support/wav/counting-source.ts';

@@ -6,7 +6,7 @@ import {
   concatBytes,
   uint32,
   type WavChunk,
-} from '../../../server/setup/demo-audio/wav-envelope.ts';
+} from '../../../shared/audio/wav-envelope.ts';
 import { bytesSource } from '../../../shared/audio/byte-source.ts';
 import type { MetadataField } from '../../../shared/audio/metadata-field.ts';
 import { readWavHeader } from '../../../shared/audio/wav-header.ts';

@@ -1,5 +1,5 @@
 import { encodeFrames } from '../../../server/setup/demo-audio/encode-frames.ts';
-import { concatBytes, wavEnvelope, type WavChunk } from '../../../server/setup/demo-audio/wav-envelope.ts';
+import { concatBytes, wavEnvelope, type WavChunk } from '../../../shared/audio/wav-envelope.ts';
 
 export type WriteWavInput = {
   sampleRateHz: number;

@@ -1,4 +1,4 @@
-import { bytesPerFrame, type SampleLayout } from '../../../shared/audio/audio-format.ts';
+import { bytesPerFrame, type SampleLayout } from './audio-format.ts';
 
 export type WavChunk = { id: string; body: Uint8Array };
 
