@@ -104,6 +104,14 @@ describe('texts beside the audio', () => {
     expect(note?.value).toBe('&b;&b;');
   });
 
+  it('a billion laughs cost nothing: the fields hold no more characters than the chunk', async () => {
+    const laughs = Array.from({ length: 30 }, (_, n) => `<!ENTITY l${n + 1} "${`&l${n};`.repeat(10)}">`);
+    const xml = `<?xml version="1.0"?><!DOCTYPE x [<!ENTITY l0 "ha">${laughs.join('')}]><BWFXML><NOTE>&l30;</NOTE></BWFXML>`;
+    const fields = await ixml(xml);
+    expect(fields.find(({ key }) => key.endsWith('NOTE'))?.value).toBe('&l30;');
+    expect(fields.reduce((sum, { value }) => sum + value.length, 0)).toBeLessThan(xml.length);
+  });
+
   it('a megabyte of opening elements ends soon and gives few fields', async () => {
     expect((await ixml('<a>x'.repeat(250_000))).length).toBeLessThanOrEqual(1000);
     expect((await ixml('<'.repeat(1_000_000))).length).toBeLessThanOrEqual(1);
