@@ -2,8 +2,10 @@ import { sharingAfterScreen } from '../../../shared/domain/recording-status.ts';
 import type { Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
+import { HopelessJobError } from '../../jobs/registry.ts';
 import type { MeasureContext } from '../../measuring/measure-context.ts';
 import type { MeasureControls, MeasureInput, MeasureResult } from '../../measuring/measure-file.ts';
+import { nonFiniteRefusal } from '../../signal/non-finite.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import { storeResult } from './measurement-result.ts';
 import { deleteUnfinishedMeasurements } from './measurement.queries.ts';
@@ -69,6 +71,7 @@ export function createMeasuringService(parts: Parts) {
     const { format, dataOffset } = header;
     const input = { filePath, header: { format, dataOffset }, context: contextOf(view), viewsDir };
     const result = await measureFile(input, { signal: task.signal, onProgress: throttled(recording, task) });
+    requireFinite(result);
     await storeResult(parts, {
       recordingId: recording.id,
       measurementId,
@@ -133,6 +136,12 @@ export function contextOf({ sensor, setup, recording }: RecordingView): MeasureC
   const { lowHz: sensorLowHz, highHz: sensorHighHz } = sensor;
   const { fullScaleV, preampGainDb } = setup;
   return { sensorLowHz, sensorHighHz, fullScaleV, preampGainDb, timeExpansion: recording.timeExpansion };
+}
+
+function requireFinite({ summary }: MeasureResult): void {
+  const counts = summary.levels.map(({ nonFiniteSamples }) => nonFiniteSamples);
+  const refusal = nonFiniteRefusal(counts, summary.format.frames);
+  if (refusal !== undefined) throw new HopelessJobError(refusal);
 }
 
 /** Messages of the system name its codes and paths; people get a sentence. */
