@@ -8,7 +8,7 @@ import { createMeasuringService } from '../../../../server/features/recordings/m
 import { selectRecordingRow } from '../../../../server/features/recordings/recordings.queries.ts';
 import { createViewFolders } from '../../../../server/features/recordings/view-folders.ts';
 import { measureFile, type MeasureResult } from '../../../../server/measuring/measure-file.ts';
-import { measureHere, seedRecording } from '../../../support/server/seed-recordings.ts';
+import { measureHere, seedRecording, smallWav } from '../../../support/server/seed-recordings.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
 
 let app: TestApp;
@@ -127,6 +127,22 @@ describe('measuring', () => {
     });
     app.deps.services.measuring.giveUp(id, 'The audio file ends before the length that its header gives.');
     expect(rowOf(id)?.failure).toBe('The audio file ends before the length that its header gives.');
+  });
+
+  test('of a file with more than a trace of samples that are no numbers fails at once, in a sentence', async () => {
+    const withNaN = (count: number) => {
+      const samples = Float32Array.from({ length: 5000 }, (_, n) => (n < count ? NaN : Math.sin(n) / 2));
+      return smallWav({ channels: [samples], encoding: 'float', bitsPerSample: 32 });
+    };
+    const trace = await seedRecording(app, { wav: withNaN(5) });
+    const more = await seedRecording(app, { wav: withNaN(6) });
+    expect(await app.runJobs()).toBe(2);
+    expect(rowOf(trace)?.processing).toBe('measured');
+    const [row] = app.deps.db.select().from(measurements).all();
+    expect(row?.summary.quality.map(({ code }) => code)).toContain('non-finite');
+    expect(rowOf(more)?.processing).toBe('failed');
+    expect(rowOf(more)?.failure).toContain('6 of 5,000 samples are not a number or infinite');
+    expect(viewNames(more)).toEqual([]);
   });
 
   test('whose bytes are gone is tried five times, then given up, and can be tried again', async () => {
