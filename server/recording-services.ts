@@ -25,8 +25,8 @@ import {
 import { createUploadsService, type UploadsService } from './features/uploads/uploads.service.ts';
 import type { Ground } from './ground.ts';
 import { createWorkerPool } from './jobs/worker-pool.ts';
-import type { MeasureResult } from './measuring/measure-file.ts';
-import { measureInWorker, measureWorkerModule } from './measuring/measure-in-worker.ts';
+import type { MeasureResult } from './measuring/join-segments.ts';
+import { measureInWorkers, measureWorkerModule } from './measuring/measure-in-workers.ts';
 import type { MeasureTask } from './measuring/measure.worker.ts';
 
 /** Everything from the run to the measured recording. */
@@ -76,10 +76,10 @@ function createMeasureFile({
   config,
   onStop,
 }: Ground): Parameters<typeof createMeasuringService>[0]['measureFile'] {
-  const pool = createWorkerPool<MeasureTask, MeasureResult>({
+  const pool = createWorkerPool<MeasureTask, MeasureResult | null>({
     module: measureWorkerModule,
     workers: config.measureWorkers,
   });
   onStop(() => pool.close());
-  return (input, controls) => measureInWorker(pool, input, controls);
+  return (input, controls) => measureInWorkers(pool, config.measureWorkers, input, controls);
 }

@@ -1,24 +1,33 @@
 import type { MessagePort } from 'node:worker_threads';
-import { measureFile, type MeasureInput, type MeasureResult } from './measure-file.ts';
+import { joinSegments, type MeasureResult } from './join-segments.ts';
+import type { MeasureInput } from './measure-plan.ts';
+import { measureSegment } from './measure-segment.ts';
 
-export interface MeasureTask extends MeasureInput {
-  /** Gets a number from 0 to 1 now and then. */
-  port: MessagePort;
-}
+/** One segment, or the join of all when there is no index. */
+export type MeasureTask =
+  | {
+      input: MeasureInput;
+      segmentIndex: number;
+      /** Gets a number from 0 to 1 now and then. */ port: MessagePort;
+    }
+  | { input: MeasureInput; segmentIndex: null };
 
 const LEAST_INTERVAL_MS = 100;
 
-/** Measures one recording in a thread of its own, so that the server goes on answering. */
-export default async function measureTask({ port, ...input }: MeasureTask): Promise<MeasureResult> {
+/** Does one step of a measurement in a thread of its own, so that the server goes on answering. */
+export default async function measureTask(task: MeasureTask): Promise<MeasureResult | null> {
+  if (task.segmentIndex === null) return joinSegments(task.input);
+  const { port } = task;
   let lastAtMs = 0;
   const onProgress = (fraction: number) => {
     const nowMs = performance.now();
-    if (fraction < 1 && nowMs - lastAtMs < LEAST_INTERVAL_MS) return;
+    if (nowMs - lastAtMs < LEAST_INTERVAL_MS) return;
     lastAtMs = nowMs;
     port.postMessage(fraction);
   };
   try {
-    return await measureFile({ ...input, onProgress });
+    await measureSegment(task.input, task.segmentIndex, { onProgress });
+    return null;
   } finally {
     port.close();
   }

@@ -1,29 +1,40 @@
 import type { SampleWindow } from '../signal/frame-cursor.ts';
 import type { BlockReader } from './block-reader.ts';
 
+export interface SampleWindowsSettings {
+  channels: number;
+  /** First sample that will be read. */
+  startSample: number;
+  historySamples: number;
+  blockFrames: number;
+}
+
 /** The newest samples of every channel: the block just read, and as many before it as its readers look back. */
 export class SampleWindows {
   readonly channels: SampleWindow[];
   /** Place in every window of the first sample of the newest block. */
   from = 0;
-  readonly blockFrames: number;
+  readonly #blockFrames: number;
   readonly #historySamples: number;
 
-  constructor(channels: number, historySamples: number, blockFrames: number) {
+  constructor({ channels, startSample, historySamples, blockFrames }: SampleWindowsSettings) {
     this.#historySamples = historySamples;
-    this.blockFrames = blockFrames;
+    this.#blockFrames = blockFrames;
     this.channels = Array.from({ length: channels }, () => ({
       samples: new Float32Array(historySamples + blockFrames),
-      startSample: 0,
-      endSample: 0,
+      startSample,
+      endSample: startSample,
     }));
   }
 
-  /** Reads the next block. @returns samples that were not finite, per channel; `null` at the end. */
-  async readNext(reader: BlockReader): Promise<number[] | null> {
-    const endSample = this.channels[0]!.endSample;
-    const count = Math.min(this.blockFrames, reader.frames - endSample);
-    if (count <= 0) return null;
+  get endSample(): number {
+    return this.channels[0]!.endSample;
+  }
+
+  /** Reads the next block, at most up to `stopSample`. @returns samples that were not finite, per channel. */
+  async readNext(reader: BlockReader, stopSample: number): Promise<number[]> {
+    const { endSample } = this;
+    const count = Math.min(this.#blockFrames, stopSample - endSample);
     this.#dropOldest();
     this.from = endSample - this.channels[0]!.startSample;
     const nonFinite = await reader.read(

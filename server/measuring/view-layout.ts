@@ -4,9 +4,17 @@ import type { AudioFormat } from '../../shared/contract/measurement.ts';
 import { audioFormatSchema } from '../../shared/contract/measurement.ts';
 import type { PictureBand, TileLayout } from '../../shared/contract/views.ts';
 import { FRAME_COLUMNS, FRAME_ROW_LENGTH } from '../signal/frame-row.ts';
-import { frameStart, planFrames, type FramePlan } from '../signal/frame-plan.ts';
-import { pyramidLevels } from '../signal/pyramid.ts';
-import { columnsAtLevel, planPictures, type Picture } from '../signal/spectrogram-columns.ts';
+import { framesIn, frameStart, planFrames, type FramePlan } from '../signal/frame-plan.ts';
+import type { Span } from '../signal/place-list.ts';
+import { pyramidCell, pyramidLevels, pyramidLevelsWithin } from '../signal/pyramid.ts';
+import {
+  COLUMN_FACTOR,
+  columnLevelsWithin,
+  columnsAtLevel,
+  planPictures,
+  type Picture,
+} from '../signal/spectrogram-columns.ts';
+import { segmentSamples } from './segment-plan.ts';
 
 /** The files of one recording's views; all of them can be made again from its audio. */
 export const VIEW_FILES = {
@@ -43,8 +51,11 @@ type RecordingShape = Pick<AudioFormat, 'sampleRateHz' | 'frames' | 'channels'>;
 
 const FLOAT_BYTES = 4;
 const PEAK_BYTES = 2 * FLOAT_BYTES;
-/** Level 0 of a picture is made from the samples when asked for; the levels above are kept. */
-export const FIRST_STORED_LEVEL = 1;
+/**
+ * Finer levels of a picture are made from the samples when asked for; these and the levels above are kept. Short frames
+ * follow each other quickly: their level 1 alone would take a fifteenth of the audio's bytes.
+ */
+export const FIRST_STORED_LEVELS: Record<PictureBand, number> = { audible: 1, ultrasonic: 2 };
 
 /** Where everything lies in the view files: all sizes follow from rate, frames and channels. */
 export class ViewLayout {
@@ -64,6 +75,17 @@ export class ViewLayout {
     return this.pictures.find((picture) => picture.layout.band === band);
   }
 
+  /** Levels of the peaks whose points lie whole in a segment; those above are joined from them. */
+  get peakLevelsWithin(): number {
+    return pyramidLevelsWithin(this.shape.frames, segmentSamples(this.shape.sampleRateHz)).length;
+  }
+
+  /** Levels of a picture whose columns lie whole in a segment; 0 without the picture. */
+  columnLevelsWithin(band: PictureBand): number {
+    const picture = this.picture(band);
+    return picture ? columnLevelsWithin(picture.layout, segmentSamples(this.shape.sampleRateHz)) : 0;
+  }
+
   /** Pairs of float32, minimum and maximum. */
   peakRegion(channel: number, level: number): FileRegion {
     return regionIn(
@@ -75,12 +97,29 @@ export class ViewLayout {
 
   /** One byte per bin, column after column. */
   pictureRegion(band: PictureBand, channel: number, level: number): FileRegion {
-    return regionIn(channel, level - FIRST_STORED_LEVEL, this.#storedBytes(band));
+    return regionIn(channel, level - FIRST_STORED_LEVELS[band], this.#storedBytes(band));
   }
 
   /** Rows of float32, one per long frame. */
   frameRegion(channel: number): FileRegion {
     return regionIn(channel, 0, [this.plan.long.count * FRAME_ROW_LENGTH * FLOAT_BYTES]);
+  }
+
+  /** The part of `peakRegion` that a segment fills. */
+  peakRegionOf(segment: Span, channel: number, level: number): FileRegion {
+    return partOf(this.peakRegion(channel, level), segment, pyramidCell(level), PEAK_BYTES);
+  }
+
+  /** The part of `pictureRegion` that a segment fills. */
+  pictureRegionOf(segment: Span, band: PictureBand, channel: number, level: number): FileRegion {
+    const { samplesPerColumn, bins } = this.picture(band)!.layout;
+    const columnSamples = samplesPerColumn * COLUMN_FACTOR ** level;
+    return partOf(this.pictureRegion(band, channel, level), segment, columnSamples, bins);
+  }
+
+  /** The part of `frameRegion` that a segment fills. */
+  frameRegionOf(segment: Span, channel: number): FileRegion {
+    return partOf(this.frameRegion(channel), segment, this.plan.long.hop, FRAME_ROW_LENGTH * FLOAT_BYTES);
   }
 
   /** Samples that a long frame was computed from, `endSample` exclusive. */
@@ -93,9 +132,10 @@ export class ViewLayout {
   #storedBytes(band: PictureBand): number[] {
     const layout = this.picture(band)?.layout;
     if (!layout) return [];
+    const first = FIRST_STORED_LEVELS[band];
     return Array.from(
-      { length: layout.levels - FIRST_STORED_LEVEL },
-      (_, index) => columnsAtLevel(layout.columns, index + FIRST_STORED_LEVEL) * layout.bins,
+      { length: Math.max(0, layout.levels - first) },
+      (_, index) => columnsAtLevel(layout.columns, index + first) * layout.bins,
     );
   }
 }
@@ -110,6 +150,12 @@ function regionIn(channel: number, part: number, partBytes: number[]): FileRegio
   const channelBytes = partBytes.reduce((sum, bytes) => sum + bytes, 0);
   const before = partBytes.slice(0, part).reduce((sum, bytes) => sum + bytes, 0);
   return { offsetBytes: channel * channelBytes + before, sizeBytes: partBytes[part] ?? 0 };
+}
+
+/** Bytes of the points that begin in a segment. */
+function partOf(region: FileRegion, segment: Span, samplesPerPoint: number, pointBytes: number): FileRegion {
+  const { first, end } = framesIn({ hop: samplesPerPoint }, segment);
+  return { offsetBytes: region.offsetBytes + first * pointBytes, sizeBytes: (end - first) * pointBytes };
 }
 
 /** What a client has to know to ask for tiles. @param format with the true sample rate, as the summary states it. */

@@ -11,10 +11,10 @@ import {
   type Picture,
 } from '../signal/spectrogram-columns.ts';
 import type { AudioPlace } from './block-reader.ts';
-import { levelZeroColumns } from './level-zero-columns.ts';
+import { computedColumns } from './computed-columns.ts';
 import { peaksFromPyramid, peaksFromSamples, samplesPerPointFor } from './peaks-reader.ts';
 import {
-  FIRST_STORED_LEVEL,
+  FIRST_STORED_LEVELS,
   ViewLayout,
   viewManifestSchema,
   viewPath,
@@ -70,11 +70,12 @@ export async function readTile(request: TileRequest): Promise<Uint8Array> {
   if (!picture) throw new NoSuchViewError(`The sample rate leaves no ${request.band} picture.`);
   const span = tileSpan(picture, request.level, request.tile);
   const { bins, lowHz, highHz, samplesPerColumn } = picture.layout;
+  const { channel, level } = request;
   const codes =
-    request.level < FIRST_STORED_LEVEL
-      ? await levelZeroColumns({ source: request, picture, channel: request.channel, ...span })
+    level < FIRST_STORED_LEVELS[request.band]
+      ? await computedColumns({ source: request, picture, channel, level, ...span })
       : await storedColumns(request, layout, span);
-  const columnSamples = samplesPerColumn * COLUMN_FACTOR ** request.level;
+  const columnSamples = samplesPerColumn * COLUMN_FACTOR ** level;
   return encodeTile({
     bins,
     columns: span.columns,

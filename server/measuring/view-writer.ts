@@ -1,20 +1,24 @@
-import { closeSync, openSync, writeFileSync } from 'node:fs';
-import { mkdir } from 'node:fs/promises';
-import type { Spectrum } from '../../shared/contract/measurement.ts';
+import { closeSync, constants, fdatasyncSync, openSync } from 'node:fs';
 import type { PictureBand } from '../../shared/contract/views.ts';
 import type { ViewSink } from '../signal/channel-pass.ts';
+import type { Span } from '../signal/place-list.ts';
 import { RegionWriter } from './region-writer.ts';
-import { FIRST_STORED_LEVEL, viewPath, type ViewLayout, type ViewManifest } from './view-layout.ts';
+import { FIRST_STORED_LEVELS, viewPath, type FileRegion, type ViewLayout } from './view-layout.ts';
 
 const BUFFER_BYTES = 64 * 1024;
 /** With many channels many regions grow at once. */
 const BUFFER_BYTES_MANY_CHANNELS = 8 * 1024;
 const MANY_CHANNELS = 4;
 
-/** Writes the views of a recording while it is measured. */
+/** Opens a view file for writing; made when missing, kept as it is otherwise. */
+export function openViewFile(path: string): number {
+  return openSync(path, constants.O_RDWR | constants.O_CREAT);
+}
+
+/** Writes what a segment has of the views of a recording while it is measured. */
 export class ViewWriter {
-  readonly #viewsDir: string;
   readonly #layout: ViewLayout;
+  readonly #segment: Span;
   readonly #files: number[] = [];
   readonly #regions: RegionWriter[] = [];
   readonly #bufferBytes: number;
@@ -22,29 +26,25 @@ export class ViewWriter {
   readonly #framesFile: number;
   readonly #pictureFiles = new Map<PictureBand, number>();
 
-  static async create(viewsDir: string, layout: ViewLayout): Promise<ViewWriter> {
-    await mkdir(viewsDir, { recursive: true });
-    return new ViewWriter(viewsDir, layout);
-  }
-
-  private constructor(viewsDir: string, layout: ViewLayout) {
-    this.#viewsDir = viewsDir;
+  constructor(viewsDir: string, layout: ViewLayout, segment: Span) {
     this.#layout = layout;
+    this.#segment = segment;
     this.#bufferBytes = layout.shape.channels > MANY_CHANNELS ? BUFFER_BYTES_MANY_CHANNELS : BUFFER_BYTES;
-    this.#peaksFile = this.#create(viewPath(viewsDir, 'peaks'));
-    this.#framesFile = this.#create(viewPath(viewsDir, 'frames'));
+    this.#peaksFile = this.#open(viewPath(viewsDir, 'peaks'));
+    this.#framesFile = this.#open(viewPath(viewsDir, 'frames'));
     for (const { layout: picture } of layout.pictures) {
-      this.#pictureFiles.set(picture.band, this.#create(viewPath(viewsDir, picture.band)));
+      this.#pictureFiles.set(picture.band, this.#open(viewPath(viewsDir, picture.band)));
     }
   }
 
   channel(channel: number): ViewSink {
     const layout = this.#layout;
-    const peaks = layout.peakLevels.map((_, level) =>
-      this.#region(this.#peaksFile, layout.peakRegion(channel, level)),
+    const segment = this.#segment;
+    const peaks = Array.from({ length: layout.peakLevelsWithin }, (_, level) =>
+      this.#region(this.#peaksFile, layout.peakRegionOf(segment, channel, level)),
     );
     const columns = this.#columnRegions(channel);
-    const frames = this.#region(this.#framesFile, layout.frameRegion(channel));
+    const frames = this.#region(this.#framesFile, layout.frameRegionOf(segment, channel));
     const pair = new Float32Array(2);
     const pairBytes = new Uint8Array(pair.buffer);
     return {
@@ -58,11 +58,10 @@ export class ViewWriter {
     };
   }
 
-  /** Completes the files; the manifest comes last and says that they are whole. */
-  finish(manifest: ViewManifest, spectra: Spectrum[]): void {
+  /** Puts everything on the disk. @throws RangeError when a region was not filled. */
+  finish(): void {
     for (const region of this.#regions) region.finish();
-    writeFileSync(viewPath(this.#viewsDir, 'spectra'), JSON.stringify(spectra));
-    writeFileSync(viewPath(this.#viewsDir, 'manifest'), JSON.stringify(manifest));
+    for (const file of this.#files) fdatasyncSync(file);
   }
 
   close(): void {
@@ -72,21 +71,22 @@ export class ViewWriter {
   #columnRegions(channel: number): Record<PictureBand, (RegionWriter | undefined)[]> {
     const regions: Record<PictureBand, (RegionWriter | undefined)[]> = { audible: [], ultrasonic: [] };
     for (const [band, file] of this.#pictureFiles) {
-      const levels = this.#layout.picture(band)?.layout.levels ?? 0;
-      for (let level = FIRST_STORED_LEVEL; level < levels; level++) {
-        regions[band][level] = this.#region(file, this.#layout.pictureRegion(band, channel, level));
+      const levels = this.#layout.columnLevelsWithin(band);
+      for (let level = FIRST_STORED_LEVELS[band]; level < levels; level++) {
+        const region = this.#layout.pictureRegionOf(this.#segment, band, channel, level);
+        regions[band][level] = this.#region(file, region);
       }
     }
     return regions;
   }
 
-  #create(path: string): number {
-    const file = openSync(path, 'w');
+  #open(path: string): number {
+    const file = openViewFile(path);
     this.#files.push(file);
     return file;
   }
 
-  #region(file: number, region: { offsetBytes: number; sizeBytes: number }): RegionWriter {
+  #region(file: number, region: FileRegion): RegionWriter {
     const writer = new RegionWriter(file, region, this.#bufferBytes);
     this.#regions.push(writer);
     return writer;

@@ -5,6 +5,18 @@ export interface ChannelPair {
   inverted: boolean;
 }
 
+/** The pairs that are the same in every segment. */
+export function joinChannelPairs(parts: readonly ChannelPair[][]): ChannelPair[] {
+  const [first = [], ...rest] = parts;
+  return first
+    .filter((pair) => rest.every((part) => part.some((other) => isSamePair(pair, other))))
+    .filter((pair, _, kept) => !pair.inverted || !kept.some((same) => isPlain(same, pair)));
+}
+
+function isSamePair(a: ChannelPair, b: ChannelPair): boolean {
+  return a.channel === b.channel && a.other === b.other && a.inverted === b.inverted;
+}
+
 /** Keeps the pairs of channels that have not differed yet; a silent pair is equal and inverted at once. */
 export class ChannelPairs {
   #pairs: ChannelPair[];
@@ -23,9 +35,8 @@ export class ChannelPairs {
     this.#pairs = this.#pairs.filter((pair) => isSame(channels, pair, from, to));
   }
 
-  /** Each pair once. */
   finish(): ChannelPair[] {
-    return this.#pairs.filter((pair) => !pair.inverted || !this.#pairs.some((same) => isPlain(same, pair)));
+    return this.#pairs;
   }
 }
 

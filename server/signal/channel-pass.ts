@@ -1,16 +1,17 @@
 import type { PictureBand } from '../../shared/contract/views.ts';
-import { CourseTracker, type CoursePlan } from './course.ts';
+import { CourseTracker, type CoursePart, type CoursePlan } from './course.ts';
 import type { DescriptorEngine } from './descriptors.ts';
-import { DropoutTracker } from './dropouts.ts';
+import { DropoutTracker, type DropoutPart } from './dropouts.ts';
 import { FrameCursor, type SampleWindow } from './frame-cursor.ts';
 import { bandBins, type FramePlan } from './frame-plan.ts';
 import type { FrameRow } from './frame-row.ts';
 import { FrameSpectrum, meanSquareOfBins } from './frame-spectrum.ts';
-import { LevelTracker } from './levels.ts';
-import { LongFrames, type LongFrameResult } from './long-frames.ts';
-import { MainsTracker } from './mains.ts';
+import { LevelTracker, type LevelPart } from './levels.ts';
+import type { LongFramePart } from './long-frame-statistics.ts';
+import { LongFrames } from './long-frames.ts';
+import { MainsTracker, type MainsPart } from './mains.ts';
+import type { Span } from './place-list.ts';
 import { PeakPyramid } from './pyramid.ts';
-import type { ChannelFacts } from './quality.ts';
 import { forEachCell } from './sample-cells.ts';
 import { ColumnPyramid, type Picture } from './spectrogram-columns.ts';
 
@@ -34,9 +35,13 @@ export interface ShortFrame {
 }
 
 export interface ChannelPassSettings {
-  channel: number;
   plan: FramePlan;
+  /** What is measured of the recording; begins on a whole point of every level of the views. */
+  segment: Span;
   pictures: Picture[];
+  /** Levels of the peaks and of each picture whose points lie in the segment. */
+  peakLevels: number;
+  columnLevels: Record<PictureBand, number>;
   course: CoursePlan;
   engine: DescriptorEngine;
   spectrumPoints: number;
@@ -47,12 +52,20 @@ export interface ChannelPassSettings {
   shortFrame?: ShortFrameSink;
 }
 
-export interface ChannelResult extends LongFrameResult {
-  facts: ChannelFacts;
-  course: ReturnType<CourseTracker['finish']>;
+/** What one segment of a channel adds to the channel: plain data, joined by `ChannelJoin`. */
+export interface ChannelPart {
+  nonFiniteSamples: number;
+  levels: LevelPart;
+  dropouts: DropoutPart;
+  mains: MainsPart;
+  course: CoursePart;
+  longFrames: LongFramePart;
 }
 
-/** All that is measured on one channel in one pass, save the detector; memory depends on the sample rate alone. */
+/**
+ * All that is measured on one segment of a channel in one pass, save the detector; memory depends on the sample rate
+ * alone. Samples before and after the segment are looked at only where a frame or a run reaches over its ends.
+ */
 export class ChannelPass {
   readonly historySamples: number;
   readonly #settings: ChannelPassSettings;
@@ -65,59 +78,69 @@ export class ChannelPass {
   readonly #longCursor: FrameCursor;
   readonly #shortFrames: ShortFrames;
   readonly #audible: PictureFrames | undefined;
+  #dropoutPart: DropoutPart | undefined;
 
   constructor(settings: ChannelPassSettings) {
-    const { plan, views, pictures, fullScale, stepSize } = settings;
+    const { plan, segment, views, pictures, fullScale, stepSize } = settings;
     const { sampleRateHz, frames } = plan;
     this.#settings = settings;
-    this.#levels = new LevelTracker(fullScale);
+    this.#levels = new LevelTracker(fullScale, segment);
     this.#dropouts = new DropoutTracker({ sampleRateHz, stepSize, fullScale });
     this.#mains = new MainsTracker(sampleRateHz);
-    this.#course = new CourseTracker(settings.course);
-    this.#pyramid = new PeakPyramid(frames, (level, low, high) => views.peak(level, low, high));
+    this.#course = new CourseTracker(settings.course, segment);
+    this.#pyramid = new PeakPyramid(settings.peakLevels, (level, low, high) => views.peak(level, low, high));
     this.#longFrames = new LongFrames({
       sampleRateHz,
       size: plan.long.size,
       spectrumPoints: settings.spectrumPoints,
       engine: settings.engine,
     });
-    this.#longCursor = new FrameCursor(plan.long, frames);
+    this.#longCursor = new FrameCursor(plan.long, frames, segment);
     this.#shortFrames = new ShortFrames(settings, this.#course);
     const audible = pictures.find((picture) => picture.layout.band === 'audible');
-    this.#audible = audible && new PictureFrames(audible, frames, views);
+    this.#audible = audible && new PictureFrames(audible, settings);
     this.historySamples = Math.max(plan.audible.size, this.#dropouts.historySamples);
   }
 
   /** @param from place in the window of the first sample not yet seen. */
   push(window: SampleWindow, from: number): void {
+    const { startSample, endSample } = this.#settings.segment;
+    const first = Math.max(from, startSample - window.startSample);
+    const end = Math.min(window.endSample, endSample) - window.startSample;
+    if (first < end) this.#pushSamples(window, first, end);
+    this.#longCursor.advance(window, (_index, values, start, stop) => this.#pushLong(values, start, stop));
+    if (!this.#sharesLongFrames) this.#audible?.advance(window);
+    this.#shortFrames.advance(window);
+  }
+
+  finish(nonFiniteSamples: number): ChannelPart {
+    if (!this.#dropoutPart) throw new RangeError('segment: its last sample was never pushed');
+    this.#pyramid.finish();
+    this.#audible?.finish();
+    this.#shortFrames.finish();
+    return {
+      nonFiniteSamples,
+      levels: this.#levels.finish(),
+      dropouts: this.#dropoutPart,
+      mains: this.#mains.finish(),
+      course: this.#course.finish(),
+      longFrames: this.#longFrames.finish(),
+    };
+  }
+
+  /** The samples `[from, to)` of the window, all of them in the segment. */
+  #pushSamples(window: SampleWindow, from: number, to: number): void {
     const { samples } = window;
-    const to = window.endSample - window.startSample;
     forEachCell(samples, { from, to, startSample: window.startSample + from }, (cell, start) => {
       this.#levels.push(cell, samples, start, window.startSample + start);
       this.#course.push(cell);
       this.#pyramid.push(cell);
     });
-    this.#dropouts.push(window, from);
+    this.#dropouts.push(window, from, to);
     this.#mains.push(samples, from, to);
-    this.#longCursor.advance(window, (_index, values, start, end) => this.#pushLong(values, start, end));
-    if (!this.#sharesLongFrames) this.#audible?.advance(window);
-    this.#shortFrames.advance(window);
-  }
-
-  finish(nonFiniteSamples: number): ChannelResult {
-    this.#pyramid.finish();
-    this.#audible?.finish();
-    this.#shortFrames.finish();
-    return {
-      ...this.#longFrames.finish(),
-      facts: {
-        levels: this.#levels.finish(this.#settings.channel, nonFiniteSamples),
-        clipped: this.#levels.clippedPlaces,
-        dropouts: this.#dropouts.places,
-        mains: this.#mains.finish(),
-      },
-      course: this.#course.finish(),
-    };
+    if (window.startSample + to === this.#settings.segment.endSample) {
+      this.#dropoutPart = this.#dropouts.finish(window, to);
+    }
   }
 
   get #sharesLongFrames(): boolean {
@@ -138,11 +161,13 @@ class PictureFrames {
   readonly #columns: ColumnPyramid;
   #spectrum: FrameSpectrum | undefined;
 
-  constructor(picture: Picture, frames: number, views: ViewSink) {
-    const { layout } = picture;
+  constructor(picture: Picture, { plan, segment, columnLevels, views }: ChannelPassSettings) {
+    const { band } = picture.layout;
     this.#picture = picture;
-    this.#cursor = new FrameCursor(picture.grid, frames);
-    this.#columns = new ColumnPyramid(picture, (level, codes) => views.column(layout.band, level, codes));
+    this.#cursor = new FrameCursor(picture.grid, plan.frames, segment);
+    this.#columns = new ColumnPyramid(picture, columnLevels[band], (level, codes) =>
+      views.column(band, level, codes),
+    );
   }
 
   advance(window: SampleWindow): void {
@@ -175,12 +200,12 @@ class ShortFrames {
   readonly #hop: number;
 
   constructor(settings: ChannelPassSettings, course: CourseTracker) {
-    const { plan, pictures, views } = settings;
+    const { plan, pictures, segment } = settings;
     const { first, end } = bandBins('ultrasonic', plan.short.size, plan.sampleRateHz);
-    this.#cursor = new FrameCursor(plan.short, plan.frames);
+    this.#cursor = new FrameCursor(plan.short, plan.frames, segment);
     this.#spectrum = new FrameSpectrum(plan.short.size);
     const picture = pictures.find(({ layout }) => layout.band === 'ultrasonic');
-    this.#picture = picture && new PictureFrames(picture, plan.frames, views);
+    this.#picture = picture && new PictureFrames(picture, settings);
     this.#course = course;
     this.#sink = settings.shortFrame;
     this.#hop = plan.short.hop;

@@ -1,6 +1,7 @@
 import { rmsToDb } from '../../shared/audio/units.ts';
 import type { Course } from '../../shared/contract/measurement.ts';
 import { SILENCE_MEAN_SQUARE } from './frame-spectrum.ts';
+import type { Span } from './place-list.ts';
 import { CELL_SAMPLES, type SampleCell } from './sample-cells.ts';
 
 export const MAXIMUM_STEPS = 1000;
@@ -17,62 +18,95 @@ export function planCourse(frames: number, shortHop: number): CoursePlan {
   return { samplesPerStep, steps: Math.ceil(frames / samplesPerStep) };
 }
 
-/** Level of one channel through the recording, and of what lies above the hearing line; both by AES17. */
+/** Sums over the steps that one segment touches, from `firstStep` on. */
+export interface CoursePart {
+  firstStep: number;
+  counts: Float64Array;
+  sums: Float64Array;
+  squares: Float64Array;
+  ultrasonicSums: Float64Array;
+  ultrasonicFrames: Float64Array;
+}
+
+/** Sums for the level of one channel through a segment, and for what lies above the hearing line. */
 export class CourseTracker {
   readonly #plan: CoursePlan;
-  readonly #meanSquares: Float64Array;
-  readonly #ultrasonicSums: Float64Array;
-  readonly #ultrasonicFrames: Uint32Array;
-  #step = 0;
-  #count = 0;
-  #sum = 0;
-  #squares = 0;
+  readonly #part: CoursePart;
+  #step: number;
+  #room: number;
 
-  constructor(plan: CoursePlan) {
+  constructor(plan: CoursePlan, segment: Span) {
+    const { samplesPerStep } = plan;
+    const firstStep = Math.floor(segment.startSample / samplesPerStep);
+    const steps = Math.ceil(segment.endSample / samplesPerStep) - firstStep;
+    const zeros = () => new Float64Array(steps);
     this.#plan = plan;
-    this.#meanSquares = new Float64Array(plan.steps);
-    this.#ultrasonicSums = new Float64Array(plan.steps);
-    this.#ultrasonicFrames = new Uint32Array(plan.steps);
+    this.#part = {
+      firstStep,
+      counts: zeros(),
+      sums: zeros(),
+      squares: zeros(),
+      ultrasonicSums: zeros(),
+      ultrasonicFrames: zeros(),
+    };
+    this.#step = 0;
+    this.#room = (firstStep + 1) * samplesPerStep - segment.startSample;
   }
 
   push(cell: SampleCell): void {
-    this.#sum += cell.sum;
-    this.#squares += cell.squares;
-    this.#count += cell.count;
-    if (this.#count === this.#plan.samplesPerStep) this.#closeStep();
+    const { counts, sums, squares } = this.#part;
+    sums[this.#step]! += cell.sum;
+    squares[this.#step]! += cell.squares;
+    counts[this.#step]! += cell.count;
+    this.#room -= cell.count;
+    if (this.#room > 0) return;
+    this.#step++;
+    this.#room = this.#plan.samplesPerStep;
   }
 
   /** @param sample where the middle of a short frame lies. @param meanSquare of its lines above 20 kHz. */
   pushUltrasonic(sample: number, meanSquare: number): void {
-    const step = Math.min(this.#plan.steps - 1, Math.floor(sample / this.#plan.samplesPerStep));
-    this.#ultrasonicSums[step]! += meanSquare;
-    this.#ultrasonicFrames[step]!++;
+    const { firstStep, ultrasonicSums, ultrasonicFrames } = this.#part;
+    const place = Math.floor(sample / this.#plan.samplesPerStep) - firstStep;
+    const step = Math.min(ultrasonicSums.length - 1, place);
+    ultrasonicSums[step]! += meanSquare;
+    ultrasonicFrames[step]!++;
   }
 
-  finish(): { levelMeanSquares: Float64Array; ultrasonicMeanSquares: Float64Array } {
-    if (this.#count > 0) this.#closeStep();
-    const ultrasonicMeanSquares = this.#ultrasonicSums.map((sum, step) => {
-      const frames = this.#ultrasonicFrames[step]!;
-      return frames > 0 ? sum / frames : 0;
-    });
-    return { levelMeanSquares: this.#meanSquares, ultrasonicMeanSquares };
-  }
-
-  #closeStep(): void {
-    const mean = this.#sum / this.#count;
-    this.#meanSquares[this.#step++] = Math.max(0, this.#squares / this.#count - mean * mean);
-    this.#count = 0;
-    this.#sum = 0;
-    this.#squares = 0;
+  finish(): CoursePart {
+    return this.#part;
   }
 }
 
+/** Mean squares of one channel at each step, mean removed; by AES17 a full-scale sine has 0.5. */
+export interface ChannelCourse {
+  levelMeanSquares: Float64Array;
+  ultrasonicMeanSquares: Float64Array;
+}
+
+/** The course of a whole channel. @param parts of all segments. */
+export function joinChannelCourse(plan: CoursePlan, parts: readonly CoursePart[]): ChannelCourse {
+  const added = (of: (part: CoursePart) => Float64Array) => {
+    const whole = new Float64Array(plan.steps);
+    for (const part of parts) of(part).forEach((value, step) => (whole[part.firstStep + step]! += value));
+    return whole;
+  };
+  const counts = added((part) => part.counts);
+  const sums = added((part) => part.sums);
+  const ultrasonicFrames = added((part) => part.ultrasonicFrames);
+  const levelMeanSquares = added((part) => part.squares).map((squares, step) => {
+    const count = counts[step]!;
+    return Math.max(0, squares / count - (sums[step]! / count) ** 2);
+  });
+  const ultrasonicMeanSquares = added((part) => part.ultrasonicSums).map((sum, step) => {
+    const frames = ultrasonicFrames[step]!;
+    return frames > 0 ? sum / frames : 0;
+  });
+  return { levelMeanSquares, ultrasonicMeanSquares };
+}
+
 /** Joins the channels: at each step the loudest counts. @param candidates number of onsets per step. */
-export function joinCourses(
-  plan: CoursePlan,
-  channels: ReturnType<CourseTracker['finish']>[],
-  candidates: Uint32Array,
-): Course {
+export function joinCourses(plan: CoursePlan, channels: ChannelCourse[], candidates: Uint32Array): Course {
   return {
     samplesPerStep: plan.samplesPerStep,
     levelDb: loudest(

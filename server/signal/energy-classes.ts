@@ -7,6 +7,9 @@ interface EnergyClass {
   sums: Float64Array;
 }
 
+/** The classes, to be added to those of other segments. */
+export type EnergyClassesPart = (EnergyClass | undefined)[];
+
 /**
  * Sums of spectra kept apart by the energy of their frames, in classes of 2 dB, so that which frames are quiet can be
  * decided after the last one. A class takes memory once a frame falls into it.
@@ -28,6 +31,21 @@ export class EnergyClasses {
     for (let p = 0; p < sums.length; p++) sums[p]! += spectrum[p]!;
     found.frames++;
     this.#frames++;
+  }
+
+  get part(): EnergyClassesPart {
+    return this.#classes;
+  }
+
+  /** Takes in the frames that another one of the same points was given. */
+  absorb(part: EnergyClassesPart): void {
+    part.forEach((other, index) => {
+      if (!other) return;
+      const own = (this.#classes[index] ??= { frames: 0, sums: new Float64Array(this.#points) });
+      other.sums.forEach((sum, p) => (own.sums[p]! += sum));
+      own.frames += other.frames;
+      this.#frames += other.frames;
+    });
   }
 
   /** Mean spectrum of all frames; zeros without any. */

@@ -1,4 +1,5 @@
-import { frameStart, type FrameGrid } from './frame-plan.ts';
+import { frameStart, framesIn, type FrameGrid } from './frame-plan.ts';
+import type { Span } from './place-list.ts';
 
 /** The newest samples of one channel: `samples[0]` is sample `startSample` of the recording. */
 export interface SampleWindow {
@@ -11,21 +12,26 @@ export interface SampleWindow {
 /** `from` and `to` are places in the window's samples. */
 export type FrameVisitor = (index: number, samples: Float32Array, from: number, to: number) => void;
 
-/** Walks the frames of a grid as the samples of a recording arrive. */
+/** Walks the frames of a grid that belong to a segment as its samples arrive. */
 export class FrameCursor {
   readonly #grid: FrameGrid;
   readonly #frames: number;
-  #next = 0;
+  readonly #end: number;
+  #next: number;
 
-  constructor(grid: FrameGrid, frames: number) {
+  /** @param frames samples of the whole recording. */
+  constructor(grid: FrameGrid, frames: number, segment: Span) {
+    const { first, end } = framesIn(grid, segment);
     this.#grid = grid;
     this.#frames = frames;
+    this.#end = end;
+    this.#next = first;
   }
 
   /** Visits every frame not yet visited that lies whole in the window (or ends with the recording). */
   advance(window: SampleWindow, visit: FrameVisitor): void {
-    const { size, count } = this.#grid;
-    while (this.#next < count) {
+    const { size } = this.#grid;
+    while (this.#next < this.#end) {
       const start = frameStart(this.#grid, this.#next, this.#frames);
       const end = Math.min(start + size, this.#frames);
       if (end > window.endSample) return;

@@ -1,4 +1,5 @@
 import { HEARING_LINE_HZ } from './hearing-line.ts';
+import type { Span } from './place-list.ts';
 
 /** Where the frames of one kind lie in a recording. */
 export interface FrameGrid {
@@ -63,6 +64,14 @@ function gridOf(size: number, frames: number): FrameGrid {
 export function frameStart(grid: FrameGrid, index: number, frames: number): number {
   const centred = index * grid.hop - grid.hop / 2;
   return Math.max(0, Math.min(centred, frames - grid.size));
+}
+
+/** The frames `[first, end)` whose hops begin in a segment. */
+export function framesIn(
+  { hop }: { hop: number },
+  { startSample, endSample }: Span,
+): { first: number; end: number } {
+  return { first: Math.ceil(startSample / hop), end: Math.ceil(endSample / hop) };
 }
 
 /** Bins `[first, end)` of a transform of `size` whose middles lie at or above, or below, the hearing line. */

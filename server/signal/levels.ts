@@ -4,6 +4,24 @@ import { SILENCE_MEAN_SQUARE } from './frame-spectrum.ts';
 import { PlaceList, type Span } from './place-list.ts';
 import type { SampleCell } from './sample-cells.ts';
 
+/** A run at full scale that touches an end of its segment, and may go on in the next one. */
+interface EdgeRun extends Span {
+  sign: number;
+}
+
+/** What one segment says of a channel's levels. */
+export interface LevelPart {
+  count: number;
+  sum: number;
+  squares: number;
+  peak: number;
+  clippedSamples: number;
+  clippedRuns: number;
+  /** The first places, without the runs at the edges. */
+  places: Span[];
+  edgeRuns: EdgeRun[];
+}
+
 /** Fewer samples at full scale in a row can be the tip of a wave that just fits. */
 const CLIPPED_RUN_SAMPLES = 2;
 
@@ -24,20 +42,23 @@ export function fullScaleThreshold(encoding: 'integer' | 'float', bitsPerSample:
  * Source: AES17-2015, 3.12.
  */
 export class LevelTracker {
-  readonly clippedPlaces = new PlaceList();
   readonly #threshold: number;
+  readonly #segment: Span;
+  readonly #places = new PlaceList();
+  readonly #edgeRuns: EdgeRun[] = [];
   #count = 0;
   #sum = 0;
   #squares = 0;
   #peak = 0;
   #clippedSamples = 0;
-  #clippedRuns = 0;
   #runStart = 0;
   #runLength = 0;
   #runSign = 0;
 
-  constructor(threshold: number) {
+  /** @param threshold magnitude that counts as full scale. @param segment the samples that will be pushed. */
+  constructor(threshold: number, segment: Span) {
     this.#threshold = threshold;
+    this.#segment = segment;
   }
 
   /** @param cell sums of the samples `[from, to)`. @param startSample place in the recording of `samples[from]`. */
@@ -52,20 +73,17 @@ export class LevelTracker {
     }
   }
 
-  finish(channel: number, nonFiniteSamples: number): ChannelLevels {
+  finish(): LevelPart {
     this.#closeRun();
-    const mean = this.#count > 0 ? this.#sum / this.#count : 0;
-    const meanSquare = this.#count > 0 ? this.#squares / this.#count - mean * mean : 0;
-    const rms = meanSquare < SILENCE_MEAN_SQUARE ? 0 : Math.sqrt(meanSquare);
     return {
-      channel,
-      rmsDb: rmsToDb(rms),
-      peakDb: amplitudeToDb(this.#peak),
-      crestDb: rms > 0 ? 20 * Math.log10(this.#peak / rms) : null,
-      dcFraction: mean,
+      count: this.#count,
+      sum: this.#sum,
+      squares: this.#squares,
+      peak: this.#peak,
       clippedSamples: this.#clippedSamples,
-      clippedRuns: this.#clippedRuns,
-      nonFiniteSamples,
+      clippedRuns: this.#places.count,
+      places: this.#places.spans,
+      edgeRuns: this.#edgeRuns,
     };
   }
 
@@ -86,13 +104,61 @@ export class LevelTracker {
   }
 
   #closeRun(): void {
-    if (this.#runLength >= CLIPPED_RUN_SAMPLES) {
-      const span: Span = { startSample: this.#runStart, endSample: this.#runStart + this.#runLength };
+    const span = { startSample: this.#runStart, endSample: this.#runStart + this.#runLength };
+    const touchesEdge =
+      span.startSample === this.#segment.startSample || span.endSample === this.#segment.endSample;
+    if (this.#runLength > 0 && touchesEdge) {
+      this.#edgeRuns.push({ ...span, sign: this.#runSign });
+    } else if (this.#runLength >= CLIPPED_RUN_SAMPLES) {
       this.#clippedSamples += this.#runLength;
-      this.#clippedRuns++;
-      this.clippedPlaces.add(span);
+      this.#places.add(span);
     }
     this.#runLength = 0;
     this.#runSign = 0;
   }
+}
+
+/** The levels of a whole channel. @param parts of all segments in order, one or more. */
+export function joinLevels(
+  channel: number,
+  parts: readonly LevelPart[],
+  nonFiniteSamples: number,
+): { levels: ChannelLevels; clipped: PlaceList } {
+  const total = (of: (part: LevelPart) => number) => parts.reduce((sum, part) => sum + of(part), 0);
+  const across = joinEdgeRuns(parts.flatMap((part) => part.edgeRuns));
+  const clipped = new PlaceList();
+  const spans = [...parts.flatMap((part) => part.places), ...across];
+  for (const span of spans.sort((a, b) => a.startSample - b.startSample)) clipped.add(span);
+  clipped.count = total((part) => part.clippedRuns) + across.length;
+  const count = total((part) => part.count);
+  const mean = total((part) => part.sum) / count;
+  const meanSquare = total((part) => part.squares) / count - mean * mean;
+  const rms = meanSquare < SILENCE_MEAN_SQUARE ? 0 : Math.sqrt(meanSquare);
+  const peak = parts.reduce((highest, part) => Math.max(highest, part.peak), 0);
+  const levels = {
+    channel,
+    rmsDb: rmsToDb(rms),
+    peakDb: amplitudeToDb(peak),
+    crestDb: rms > 0 ? 20 * Math.log10(peak / rms) : null,
+    dcFraction: mean,
+    clippedSamples:
+      total((part) => part.clippedSamples) +
+      across.reduce((sum, { startSample, endSample }) => sum + endSample - startSample, 0),
+    clippedRuns: clipped.count,
+    nonFiniteSamples,
+  };
+  return { levels, clipped };
+}
+
+/** Runs that touch where two segments meet are one; those long enough to be clipping remain. */
+function joinEdgeRuns(runs: readonly EdgeRun[]): Span[] {
+  const joined: EdgeRun[] = [];
+  for (const run of runs) {
+    const before = joined.at(-1);
+    if (before?.endSample === run.startSample && before.sign === run.sign) before.endSample = run.endSample;
+    else joined.push({ ...run });
+  }
+  return joined
+    .filter((run) => run.endSample - run.startSample >= CLIPPED_RUN_SAMPLES)
+    .map(({ startSample, endSample }) => ({ startSample, endSample }));
 }

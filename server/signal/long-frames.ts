@@ -1,26 +1,20 @@
-import type { ChannelDescriptors } from '../../shared/contract/measurement.ts';
-import { BinnedMedian } from './binned-median.ts';
-import { emptyDescriptors, type DescriptorEngine } from './descriptors.ts';
+import type { DescriptorEngine } from './descriptors.ts';
+import { emptyDescriptors } from './descriptors.ts';
 import { FRAME_ROW_LENGTH, type FrameRow } from './frame-row.ts';
 import { bandBins } from './frame-plan.ts';
 import { FrameSpectrum, meanSquareOfBins, SILENCE_MEAN_SQUARE } from './frame-spectrum.ts';
-import { LongTermSpectrum, type LongTermSpectra } from './long-term-spectrum.ts';
+import {
+  LongFrameStatistics,
+  type LongFramePart,
+  type LongFrameStatisticsSettings,
+} from './long-frame-statistics.ts';
 
-interface LongFrameSettings {
-  sampleRateHz: number;
-  size: number;
-  /** Most points of the long-term spectra. */
-  spectrumPoints: number;
+interface LongFrameSettings extends LongFrameStatisticsSettings {
   engine: DescriptorEngine;
 }
 
-export interface LongFrameResult {
-  descriptors: Omit<ChannelDescriptors, 'channel'>;
-  spectra: LongTermSpectra;
-}
-
 /**
- * Measures the long frames of one channel: one row of descriptors each, their medians, and the long-term spectra.
+ * Measures the long frames of a segment of one channel: one row of descriptors each, and what they add to the statistics.
  *
  * Levels by AES17; spectral columns by meyda's definitions; a silent frame has NaN in every column but the first
  * two levels, which are NaN too when they do not exist, and counts in no median.
@@ -31,26 +25,16 @@ export class LongFrames {
   readonly #settings: LongFrameSettings;
   readonly #amplitude: Float32Array;
   readonly #found = emptyDescriptors();
-  readonly #longTerm: LongTermSpectrum;
+  readonly #statistics: LongFrameStatistics;
   readonly #ultrasonic: { first: number; end: number };
-  readonly #medians: Record<keyof LongFrameResult['descriptors'], BinnedMedian>;
 
   constructor(settings: LongFrameSettings) {
     const { size, sampleRateHz } = settings;
-    const nyquistHz = sampleRateHz / 2;
     this.#settings = settings;
     this.spectrum = new FrameSpectrum(size);
     this.#amplitude = new Float32Array(size / 2);
-    this.#longTerm = new LongTermSpectrum({ size, sampleRateHz, maximumPoints: settings.spectrumPoints });
+    this.#statistics = new LongFrameStatistics(settings);
     this.#ultrasonic = bandBins('ultrasonic', size, sampleRateHz);
-    this.#medians = {
-      centroidHz: new BinnedMedian(0, nyquistHz),
-      spreadHz: new BinnedMedian(0, nyquistHz),
-      flatness: new BinnedMedian(0, 1),
-      rolloff99AmplitudeHz: new BinnedMedian(0, nyquistHz),
-      zeroCrossingRateHz: new BinnedMedian(0, sampleRateHz),
-      ultrasonicShare: new BinnedMedian(0, 1),
-    };
   }
 
   /** Renews `row` and `spectrum` from the samples `[from, to)`. */
@@ -65,22 +49,11 @@ export class LongFrames {
     row[0] = 20 * Math.log10(rms * Math.SQRT2);
     row[2] = 20 * Math.log10(peak / rms);
     this.#describe((spectrum.crossings * this.#settings.sampleRateHz) / (to - from));
-    this.#longTerm.push(spectrum.power);
+    this.#statistics.longTerm.push(spectrum.power);
   }
 
-  finish(): LongFrameResult {
-    const medians = this.#medians;
-    return {
-      descriptors: {
-        centroidHz: medians.centroidHz.median(),
-        spreadHz: medians.spreadHz.median(),
-        flatness: medians.flatness.median(),
-        rolloff99AmplitudeHz: medians.rolloff99AmplitudeHz.median(),
-        zeroCrossingRateHz: medians.zeroCrossingRateHz.median(),
-        ultrasonicShare: this.#seesUltrasound ? medians.ultrasonicShare.median() : null,
-      },
-      spectra: this.#longTerm.finish(),
-    };
+  finish(): LongFramePart {
+    return this.#statistics.part;
   }
 
   get #seesUltrasound(): boolean {
@@ -100,7 +73,7 @@ export class LongFrames {
     row[5] = found.spreadHz;
     row[6] = found.flatness;
     row[7] = found.rolloff99AmplitudeHz;
-    const medians = this.#medians;
+    const { medians } = this.#statistics;
     medians.centroidHz.push(found.centroidHz);
     medians.spreadHz.push(found.spreadHz);
     medians.flatness.push(found.flatness);
@@ -116,6 +89,6 @@ export class LongFrames {
     const total = meanSquareOfBins(spectrum.power, 1, first) + above;
     if (above >= SILENCE_MEAN_SQUARE) row[8] = 10 * Math.log10(2 * above);
     row[9] = above / total;
-    this.#medians.ultrasonicShare.push(above / total);
+    this.#statistics.medians.ultrasonicShare.push(above / total);
   }
 }

@@ -1,6 +1,6 @@
-import { EnergyClasses } from './energy-classes.ts';
+import { EnergyClasses, type EnergyClassesPart } from './energy-classes.ts';
 import { sumOf } from './frame-spectrum.ts';
-import { PowerQuantiles } from './power-quantiles.ts';
+import { PowerQuantiles, type PowerQuantilesPart } from './power-quantiles.ts';
 
 /** Densities of one channel on one axis; dB re full scale squared per hertz, so that their integral is the mean square. */
 export interface LongTermSpectra {
@@ -18,6 +18,13 @@ export interface LongTermSettings {
   size: number;
   sampleRateHz: number;
   maximumPoints: number;
+}
+
+/** What one segment adds to the spectra of a channel. */
+export interface LongTermPart {
+  maximum: Float32Array;
+  classes: EnergyClassesPart;
+  quantiles: PowerQuantilesPart;
 }
 
 /** What a density without any power is shown as. */
@@ -72,6 +79,17 @@ export class LongTermSpectrum {
     // Frames overlap by half: every other one holds all samples once.
     if (this.#frames++ % 2 === 0) this.#quantiles.push(points);
     this.#classes.push(sumOf(power, this.#firstActivityBin, power.length), points);
+  }
+
+  get part(): LongTermPart {
+    return { maximum: this.#maximum, classes: this.#classes.part, quantiles: this.#quantiles.part };
+  }
+
+  /** Takes in the frames that another one of the same settings was given. */
+  absorb({ maximum, classes, quantiles }: LongTermPart): void {
+    maximum.forEach((value, p) => (this.#maximum[p] = Math.max(this.#maximum[p]!, value)));
+    this.#classes.absorb(classes);
+    this.#quantiles.absorb(quantiles);
   }
 
   finish(): LongTermSpectra {

@@ -7,6 +7,12 @@ export interface MainsLine {
   prominenceDb: number;
 }
 
+/** What one segment says of the lowest frequencies: summed power spectra of its frames. */
+export interface MainsPart {
+  frames: number;
+  power: Float64Array;
+}
+
 const REDUCED_RATE_HZ = 4000;
 const FRAME_SIZE = 4096;
 const BASES_HZ = [50, 60];
@@ -32,19 +38,16 @@ const SURROUNDING_BINS = 24;
  */
 export class MainsTracker {
   readonly #samplesPerMean: number;
-  readonly #binHz: number;
   readonly #spectrum = new FrameSpectrum(FRAME_SIZE);
   readonly #frame = new Float32Array(FRAME_SIZE);
   readonly #power = new Float64Array(FRAME_SIZE / 2);
-  #leastPower = 0;
   #filled = 0;
   #frames = 0;
   #sum = 0;
   #count = 0;
 
   constructor(sampleRateHz: number) {
-    this.#samplesPerMean = Math.max(1, Math.floor(sampleRateHz / REDUCED_RATE_HZ));
-    this.#binHz = sampleRateHz / this.#samplesPerMean / FRAME_SIZE;
+    this.#samplesPerMean = samplesPerMean(sampleRateHz);
   }
 
   push(samples: Float32Array, from: number, to: number): void {
@@ -60,18 +63,8 @@ export class MainsTracker {
     }
   }
 
-  /** Empty for recordings under a second, and where nothing stands out. */
-  finish(): MainsLine[] {
-    if (this.#frames === 0) return [];
-    this.#leastPower = Math.max(
-      this.#frames * 10 ** (LEAST_LEVEL_DB / 10),
-      this.#power.reduce((highest, power) => Math.max(highest, power), 0) *
-        10 ** (LEAST_UNDER_STRONGEST_DB / 10),
-    );
-    const lines = BASES_HZ.flatMap((baseHz) => this.#linesOf(baseHz));
-    // 300 Hz is a multiple of both.
-    const distinct = new Map(lines.map((line) => [line.frequencyHz, line]));
-    return [...distinct.values()].sort((a, b) => a.frequencyHz - b.frequencyHz);
+  finish(): MainsPart {
+    return { frames: this.#frames, power: this.#power };
   }
 
   #closeMean(): void {
@@ -85,35 +78,67 @@ export class MainsTracker {
     this.#frame.copyWithin(0, FRAME_SIZE / 2);
     this.#filled = FRAME_SIZE / 2;
   }
+}
 
-  #linesOf(baseHz: number): MainsLine[] {
-    const lines: MainsLine[] = [];
-    for (let harmonic = 1; harmonic <= MAXIMUM_HARMONIC; harmonic++) {
-      const line = this.#lineAt(harmonic * baseHz);
-      if (line) lines.push(line);
-    }
-    const standsAlone = lines.some((line) => line.prominenceDb >= ALONE_DB);
-    return lines.length >= 2 || standsAlone ? lines : [];
-  }
+/** Lines of a whole channel; empty for segments all shorter than a second, and where nothing stands out. */
+export function joinMains(parts: readonly MainsPart[], sampleRateHz: number): MainsLine[] {
+  const frames = parts.reduce((sum, part) => sum + part.frames, 0);
+  if (frames === 0) return [];
+  const power = new Float64Array(FRAME_SIZE / 2);
+  for (const part of parts) part.power.forEach((value, k) => (power[k]! += value));
+  const strongest = power.reduce((highest, value) => Math.max(highest, value), 0);
+  const lineSpectrum = {
+    frames,
+    power,
+    binHz: sampleRateHz / samplesPerMean(sampleRateHz) / FRAME_SIZE,
+    leastPower: Math.max(
+      frames * 10 ** (LEAST_LEVEL_DB / 10),
+      strongest * 10 ** (LEAST_UNDER_STRONGEST_DB / 10),
+    ),
+  };
+  const lines = BASES_HZ.flatMap((baseHz) => linesOf(lineSpectrum, baseHz));
+  // 300 Hz is a multiple of both.
+  const distinct = new Map(lines.map((line) => [line.frequencyHz, line]));
+  return [...distinct.values()].sort((a, b) => a.frequencyHz - b.frequencyHz);
+}
 
-  #lineAt(frequencyHz: number): MainsLine | undefined {
-    const bin = Math.round(frequencyHz / this.#binHz);
-    if (bin - LINE_BINS < 1 || bin + SURROUNDING_BINS >= this.#power.length) return undefined;
-    let power = 0;
-    for (let k = bin - LINE_BINS; k <= bin + LINE_BINS; k++) power = Math.max(power, this.#power[k]!);
-    if (power < this.#leastPower) return undefined;
-    const prominenceDb = 10 * Math.log10(power / this.#surroundings(bin));
-    const needed = this.#frames < FEW_FRAMES ? PROMINENT_IN_FEW_FRAMES_DB : PROMINENT_DB;
-    if (!(prominenceDb >= needed)) return undefined;
-    return { frequencyHz, levelDb: 10 * Math.log10(power / this.#frames), prominenceDb };
-  }
+interface LineSpectrum extends MainsPart {
+  binHz: number;
+  leastPower: number;
+}
 
-  #surroundings(bin: number): number {
-    const values: number[] = [];
-    for (let k = Math.max(1, bin - SURROUNDING_BINS); k <= bin + SURROUNDING_BINS; k++) {
-      if (Math.abs(k - bin) > 2 * LINE_BINS) values.push(this.#power[k]!);
-    }
-    values.sort((a, b) => a - b);
-    return Math.max(values[values.length >> 1] ?? 0, Number.MIN_VALUE);
+function samplesPerMean(sampleRateHz: number): number {
+  return Math.max(1, Math.floor(sampleRateHz / REDUCED_RATE_HZ));
+}
+
+function linesOf(spectrum: LineSpectrum, baseHz: number): MainsLine[] {
+  const lines: MainsLine[] = [];
+  for (let harmonic = 1; harmonic <= MAXIMUM_HARMONIC; harmonic++) {
+    const line = lineAt(spectrum, harmonic * baseHz);
+    if (line) lines.push(line);
   }
+  const standsAlone = lines.some((line) => line.prominenceDb >= ALONE_DB);
+  return lines.length >= 2 || standsAlone ? lines : [];
+}
+
+function lineAt(spectrum: LineSpectrum, frequencyHz: number): MainsLine | undefined {
+  const { frames, power: powers, binHz, leastPower } = spectrum;
+  const bin = Math.round(frequencyHz / binHz);
+  if (bin - LINE_BINS < 1 || bin + SURROUNDING_BINS >= powers.length) return undefined;
+  let power = 0;
+  for (let k = bin - LINE_BINS; k <= bin + LINE_BINS; k++) power = Math.max(power, powers[k]!);
+  if (power < leastPower) return undefined;
+  const prominenceDb = 10 * Math.log10(power / surroundings(powers, bin));
+  const needed = frames < FEW_FRAMES ? PROMINENT_IN_FEW_FRAMES_DB : PROMINENT_DB;
+  if (!(prominenceDb >= needed)) return undefined;
+  return { frequencyHz, levelDb: 10 * Math.log10(power / frames), prominenceDb };
+}
+
+function surroundings(power: Float64Array, bin: number): number {
+  const values: number[] = [];
+  for (let k = Math.max(1, bin - SURROUNDING_BINS); k <= bin + SURROUNDING_BINS; k++) {
+    if (Math.abs(k - bin) > 2 * LINE_BINS) values.push(power[k]!);
+  }
+  values.sort((a, b) => a - b);
+  return Math.max(values[values.length >> 1] ?? 0, Number.MIN_VALUE);
 }

@@ -8,6 +8,12 @@ const OCTAVES = 72;
 const FIRST_CELL = (LOWEST_EXPONENT + 127) << MANTISSA_BITS;
 const CELLS = OCTAVES * CELLS_PER_OCTAVE;
 
+/** Histograms of all points, to be added to those of other segments. */
+export interface PowerQuantilesPart {
+  counts: Uint32Array;
+  frames: number;
+}
+
 /**
  * Quantiles over time of each point of a spectrum, in constant memory: a histogram per point whose cells are the upper
  * bits of a float32, which costs no logarithm. The error is under half a cell, 0.5 dB.
@@ -36,6 +42,16 @@ export class PowerQuantiles {
       counts[row + (cell < 0 ? 0 : cell >= CELLS ? CELLS - 1 : cell)]!++;
     }
     this.#frames++;
+  }
+
+  get part(): PowerQuantilesPart {
+    return { counts: this.#counts, frames: this.#frames };
+  }
+
+  /** Takes in the frames that another one of the same points was given. */
+  absorb({ counts, frames }: PowerQuantilesPart): void {
+    for (let cell = 0; cell < counts.length; cell++) this.#counts[cell]! += counts[cell]!;
+    this.#frames += frames;
   }
 
   /** @param share 0 to 1. @returns one value per point; zeros without any frame. */

@@ -25,8 +25,13 @@ interface OpenPoint {
   parts: number;
 }
 
+/** Levels whose points lie whole in segments of so many samples. */
+export function pyramidLevelsWithin(frames: number, segmentSamples: number): number[] {
+  return pyramidLevels(frames).filter((_, level) => pyramidCell(level) <= segmentSamples);
+}
+
 /**
- * Least and greatest sample of every 256, 1024, 4096 ... samples of a channel, exact, in order of time.
+ * Least and greatest sample of every 256, 1024, 4096 ... samples of one segment of a channel, exact, in order of time.
  */
 export class PeakPyramid {
   readonly #sink: PeakSink;
@@ -35,9 +40,10 @@ export class PeakPyramid {
   #maximum = -Infinity;
   #count = 0;
 
-  constructor(frames: number, sink: PeakSink) {
+  /** @param levels how many; each point of the highest lies in the segment. */
+  constructor(levels: number, sink: PeakSink) {
     this.#sink = sink;
-    this.#open = pyramidLevels(frames).map(() => emptyPoint());
+    this.#open = Array.from({ length: levels }, () => emptyPoint());
   }
 
   push(cell: SampleCell): void {

@@ -50,6 +50,16 @@ export function columnsAtLevel(columns: number, level: number): number {
   return Math.ceil(columns / COLUMN_FACTOR ** level);
 }
 
+/** Levels of a picture whose columns lie whole in segments of so many samples, level 0 counted. */
+export function columnLevelsWithin(
+  { levels, samplesPerColumn }: PictureLayout,
+  segmentSamples: number,
+): number {
+  let within = 1;
+  while (within < levels && samplesPerColumn * COLUMN_FACTOR ** within <= segmentSamples) within++;
+  return within;
+}
+
 /** Levels until one tile holds the whole recording. */
 function countLevels(columns: number): number {
   let levels = 1;
@@ -106,14 +116,14 @@ export class ColumnPyramid {
   readonly #firstBin: number;
   #parts = 0;
 
-  constructor({ layout, firstBin }: Picture, sink: ColumnSink) {
+  /** @param levels how many, level 0 counted; each column of the highest lies in the segment. */
+  constructor({ layout, firstBin }: Picture, levels: number, sink: ColumnSink) {
     this.#sink = sink;
     this.#firstBin = firstBin;
     this.#power = new Float32Array(layout.bins);
     this.#powerBits = new Int32Array(this.#power.buffer);
     this.#codes = new Uint8Array(layout.bins);
-    const levelsAbove = Math.max(0, layout.levels - 1);
-    this.#open = Array.from({ length: levelsAbove }, () => ({
+    this.#open = Array.from({ length: Math.max(0, levels - 1) }, () => ({
       codes: new Uint8Array(layout.bins),
       parts: 0,
     }));

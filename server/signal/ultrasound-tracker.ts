@@ -23,8 +23,13 @@ export interface ShortFramePower {
 export interface UltrasoundTracker {
   /** Frames in order. */
   push(frame: ShortFramePower): void;
-  /** The spans by start (of more than 1,000 the strongest), and how many there were. */
-  finish(): { spans: FlaggedSpan[]; spanCount: number };
+  finish(): SpanPart;
+}
+
+/** Spans of a segment by start (of more than 1,000 the strongest), and how many there were. */
+export interface SpanPart {
+  spans: FlaggedSpan[];
+  spanCount: number;
 }
 
 export const LEAST_EXCESS_DB = 6;
@@ -45,6 +50,30 @@ const SMALLEST_FLOOR = 1e-18;
  */
 export function createUltrasoundTracker(options: UltrasoundTrackerOptions): UltrasoundTracker {
   return new BandTracker(options);
+}
+
+/** The spans of a whole channel: what ends one segment and begins the next is one span. @param hop of the frames. */
+export function joinSpans(parts: readonly SpanPart[], hop: number): SpanPart {
+  const joined: FlaggedSpan[] = [];
+  let spanCount = 0;
+  for (const part of parts) {
+    spanCount += part.spanCount;
+    for (const span of part.spans) {
+      const before = joined.at(-1);
+      if (before && span.startSample - before.endSample < JOIN_FRAMES * hop) {
+        before.endSample = span.endSample;
+        before.excessDb = Math.max(before.excessDb, span.excessDb);
+        spanCount -= 1;
+      } else joined.push({ ...span });
+    }
+  }
+  return { spans: strongest(joined).sort((a, b) => a.startSample - b.startSample), spanCount };
+}
+
+/** Of more than 1,000 the strongest. */
+function strongest(spans: FlaggedSpan[]): FlaggedSpan[] {
+  if (spans.length <= MOST_SPANS) return spans;
+  return spans.sort((a, b) => b.excessDb - a.excessDb || a.startSample - b.startSample).slice(0, MOST_SPANS);
 }
 
 class BandTracker implements UltrasoundTracker {
@@ -82,7 +111,7 @@ class BandTracker implements UltrasoundTracker {
     if (this.#learning.length === LEARNING_FRAMES) this.#learn();
   }
 
-  finish(): { spans: FlaggedSpan[]; spanCount: number } {
+  finish(): SpanPart {
     this.#learn();
     return this.#spans.finish();
   }
@@ -145,10 +174,10 @@ class SpanCollector {
     this.#open = { first: index, last: index, excessDb };
   }
 
-  finish(): { spans: FlaggedSpan[]; spanCount: number } {
+  finish(): SpanPart {
     this.#close();
-    this.#keepStrongest();
-    return { spans: this.#spans.sort((a, b) => a.startSample - b.startSample), spanCount: this.#count };
+    const spans = strongest(this.#spans).sort((a, b) => a.startSample - b.startSample);
+    return { spans, spanCount: this.#count };
   }
 
   #close(): void {
@@ -159,12 +188,6 @@ class SpanCollector {
     this.#count += 1;
     const endSample = Math.min(frames, (last + 1) * hop);
     this.#spans.push({ channel, startSample: first * hop, endSample, excessDb });
-    if (this.#spans.length >= 2 * MOST_SPANS) this.#keepStrongest();
-  }
-
-  #keepStrongest(): void {
-    if (this.#spans.length <= MOST_SPANS) return;
-    this.#spans.sort((a, b) => b.excessDb - a.excessDb || a.startSample - b.startSample);
-    this.#spans.length = MOST_SPANS;
+    if (this.#spans.length >= 2 * MOST_SPANS) this.#spans = strongest(this.#spans);
   }
 }

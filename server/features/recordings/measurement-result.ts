@@ -1,10 +1,10 @@
 import { createReadStream } from 'node:fs';
 import { createInterface } from 'node:readline';
-import { detectedCandidateSchema, type DetectedCandidate } from '../../../shared/contract/measurement.ts';
+import { detectedCandidateSchema } from '../../../shared/contract/measurement.ts';
 import type { Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
-import type { MeasureResult } from '../../measuring/measure-file.ts';
+import type { MeasureResult } from '../../measuring/join-segments.ts';
 import {
   insertCandidates,
   insertDetectorRun,
@@ -37,7 +37,7 @@ export async function storeResult(parts: Parts, outcome: Outcome): Promise<void>
   let batch: NewCandidate[] = [];
   let ordinal = 0;
   for await (const candidate of readCandidates(outcome.result.candidatesPath)) {
-    batch.push({ id: ids.next(), ordinal: ordinal++, parameters: judged(candidate, outcome.result) });
+    batch.push({ id: ids.next(), ordinal: ordinal++, parameters: candidate });
     if (batch.length < candidatesPerStep) continue;
     write(db, () => insertCandidates(db, detectorRunId, batch));
     batch = [];
@@ -57,12 +57,6 @@ function insertSummary(
   const { version: detectorVersion, settings } = summary.detector;
   const facts = { detectorVersion, settings, candidateCount, createdAtMs };
   insertDetectorRun(tx, { id: detectorRunId, recordingId, measurementId, ...facts });
-}
-
-/** That the floor itself ends below the hearing line is known only after the last sample: then no share means anything. */
-function judged(candidate: DetectedCandidate, { summary }: MeasureResult): DetectedCandidate {
-  if (summary.ultrasonic.verdict !== 'not-observable') return candidate;
-  return { ...candidate, ultrasonicShare: null, hearingClass: 'unknown' };
 }
 
 async function* readCandidates(file: string) {

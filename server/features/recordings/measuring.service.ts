@@ -4,7 +4,9 @@ import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
 import { HopelessJobError } from '../../jobs/registry.ts';
 import type { MeasureContext } from '../../measuring/measure-context.ts';
-import type { MeasureControls, MeasureInput, MeasureResult } from '../../measuring/measure-file.ts';
+import type { MeasureResult } from '../../measuring/join-segments.ts';
+import type { MeasureControls } from '../../measuring/measure-controls.ts';
+import type { MeasureInput } from '../../measuring/measure-plan.ts';
 import { nonFiniteRefusal } from '../../signal/non-finite.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import { storeResult } from './measurement-result.ts';
@@ -26,7 +28,7 @@ type Parts = Pick<Ground, 'db' | 'clock' | 'ids' | 'activity'> & {
   audit: AuditService;
   viewFolders: ViewFolders;
   readStoredAudio: StoredAudioReader;
-  /** Computes in a thread of its own. */
+  /** Computes in threads of its own. */
   measureFile: (input: MeasureInput, controls: MeasureControls) => Promise<MeasureResult>;
 };
 
@@ -44,7 +46,10 @@ const announcedEveryMs = 500;
 export function createMeasuringService(parts: Parts) {
   const { db, clock, ids, activity, audit, viewFolders, readStoredAudio, measureFile } = parts;
 
-  /** Idempotent: what is measured stays as it is, and what an interrupted try left is removed first. */
+  /**
+   * Idempotent: what is measured stays as it is. The segments that an interrupted try finished are used again; what it
+   * left of rows is removed first.
+   */
   async function measure(recordingId: string, task: MeasuringTask): Promise<void> {
     const view = selectUnscopedRecording(db, recordingId);
     if (view === undefined || view.recording.processing === 'measured') return;
@@ -58,7 +63,8 @@ export function createMeasuringService(parts: Parts) {
     try {
       await compute(view, measurementId, task);
     } catch (error) {
-      await viewFolders.discard(recordingId, measurementId);
+      // A stop or a kill leaves whole segments, a fault may have left anything.
+      if (!task.signal.aborted) await viewFolders.discardUnfinished(recordingId);
       throw error;
     }
     finish(recordingId, task);
@@ -66,7 +72,7 @@ export function createMeasuringService(parts: Parts) {
 
   async function compute(view: RecordingView, measurementId: string, task: MeasuringTask): Promise<void> {
     const { recording } = view;
-    const viewsDir = await viewFolders.makeTemporary(recording.id, measurementId);
+    const viewsDir = await viewFolders.openUnfinished(recording.id);
     const { filePath, header } = await readStoredAudio(recording);
     const { format, dataOffset } = header;
     const input = { filePath, header: { format, dataOffset }, context: contextOf(view), viewsDir };

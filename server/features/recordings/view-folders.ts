@@ -2,7 +2,10 @@ import { mkdir, readdir, rename, rm } from 'node:fs/promises';
 import path from 'node:path';
 import { syncFolder } from '../../store/durable-file.ts';
 
-/** Folders of views, one for each measurement of a recording: `<recording>/<measurement>`. */
+/**
+ * Folders of views, one for each measurement of a recording: `<recording>/<measurement>`, and one that is being filled:
+ * `<recording>/unfinished`.
+ */
 export type ViewFolders = ReturnType<typeof createViewFolders>;
 
 export function createViewFolders(root: string) {
@@ -10,31 +13,27 @@ export function createViewFolders(root: string) {
   const ofMeasurement = (recordingId: string, measurementId: string) =>
     path.join(root, recordingId, measurementId);
 
-  /** An empty folder to write into, after everything but the folder of `keptMeasurementId` was removed. */
-  async function makeTemporary(
-    recordingId: string,
-    measurementId: string,
-    keptMeasurementId?: string,
-  ): Promise<string> {
-    const folder = ofRecording(recordingId);
-    await mkdir(folder, { recursive: true });
-    for (const name of await readdir(folder)) {
-      if (name !== keptMeasurementId) await rm(path.join(folder, name), { recursive: true, force: true });
+  const ofUnfinished = (recordingId: string) => path.join(root, recordingId, 'unfinished');
+
+  /** The folder to write into, with what an earlier try left there, after every measurement before was removed. */
+  async function openUnfinished(recordingId: string): Promise<string> {
+    const unfinished = ofUnfinished(recordingId);
+    await mkdir(unfinished, { recursive: true });
+    for (const name of await readdir(path.dirname(unfinished))) {
+      if (name === path.basename(unfinished)) continue;
+      await rm(path.join(path.dirname(unfinished), name), { recursive: true, force: true });
     }
-    const temporary = path.join(folder, `${measurementId}.part`);
-    await mkdir(temporary);
-    return temporary;
+    return unfinished;
   }
 
   async function publish(recordingId: string, measurementId: string): Promise<void> {
-    const folder = ofMeasurement(recordingId, measurementId);
-    await rename(`${folder}.part`, folder);
+    await rename(ofUnfinished(recordingId), ofMeasurement(recordingId, measurementId));
     await syncFolder(ofRecording(recordingId));
   }
 
-  async function discard(recordingId: string, measurementId: string): Promise<void> {
-    await rm(`${ofMeasurement(recordingId, measurementId)}.part`, { recursive: true, force: true });
+  async function discardUnfinished(recordingId: string): Promise<void> {
+    await rm(ofUnfinished(recordingId), { recursive: true, force: true });
   }
 
-  return { ofMeasurement, makeTemporary, publish, discard };
+  return { ofMeasurement, openUnfinished, publish, discardUnfinished };
 }

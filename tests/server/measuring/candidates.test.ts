@@ -1,7 +1,6 @@
 import { readFile } from 'node:fs/promises';
 import { describe, expect, it } from 'vitest';
 import { detectedCandidateSchema, type DetectedCandidate } from '../../../shared/contract/measurement.ts';
-import { CandidateStream } from '../../../server/measuring/candidate-stream.ts';
 import { mix, whiteNoiseSignal, dampedSines } from '../../support/wav/signals.ts';
 import { measured, plainContext } from './measured.ts';
 
@@ -77,29 +76,5 @@ describe('the candidates of a measurement', () => {
     expect(candidateCount).toBe(0);
     expect(summary.ultrasonic.verdict).toBe('not-found');
     expect(summary.ultrasonic.spanCount).toBe(0);
-  });
-});
-
-describe('the stream of candidates', () => {
-  function candidate(channel: number, onsetSample: number): DetectedCandidate {
-    return { channel, channels: [channel], onsetSample } as DetectedCandidate;
-  }
-
-  it('hands on by onset what every channel must have decided, joined, and the rest at the end', () => {
-    const seen: [number, number[]][] = [];
-    const stream = new CandidateStream({ sampleRateHz: 1000, channels: 2 }, (one) =>
-      seen.push([one.onsetSample, one.channels]),
-    );
-    stream.add(1, [candidate(1, 500), candidate(1, 100_000)]);
-    stream.add(0, [candidate(0, 500), candidate(0, 20)]);
-    stream.settle(10_000);
-    expect(seen).toEqual([]);
-    stream.settle(90_000);
-    expect(seen).toEqual([
-      [20, [0]],
-      [500, [0, 1]],
-    ]);
-    stream.finish();
-    expect(seen.at(-1)).toEqual([100_000, [1]]);
   });
 });

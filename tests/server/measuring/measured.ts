@@ -4,11 +4,9 @@ import { join } from 'node:path';
 import { onTestFinished } from 'vitest';
 import { bytesSource } from '../../../shared/audio/byte-source.ts';
 import { readWavHeader } from '../../../shared/audio/wav-header.ts';
-import {
-  measureFile,
-  type MeasureControls,
-  type MeasureResult,
-} from '../../../server/measuring/measure-file.ts';
+import type { MeasureResult } from '../../../server/measuring/join-segments.ts';
+import type { MeasureControls } from '../../../server/measuring/measure-controls.ts';
+import { measureFile } from '../../../server/measuring/measure-file.ts';
 import type { MeasureContext } from '../../../server/measuring/measure-context.ts';
 import type { ViewSource } from '../../../server/measuring/view-reader.ts';
 import { writeWav, type WriteWavInput } from '../../support/wav/write-wav.ts';
@@ -37,6 +35,6 @@ export async function measured(
   { context = plainContext, ...controls }: MeasureControls & { context?: MeasureContext } = {},
 ): Promise<MeasureResult & { source: ViewSource }> {
   const source = await storedWav(writeWav(wav));
-  const result = await measureFile({ ...source, context, ...controls });
+  const result = await measureFile({ ...source, context }, controls);
   return { ...result, source };
 }

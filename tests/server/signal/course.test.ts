@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { CourseTracker, joinCourses, planCourse } from '../../../server/signal/course.ts';
+import { CourseTracker, joinChannelCourse, joinCourses, planCourse } from '../../../server/signal/course.ts';
 import { forEachCell } from '../../../server/signal/sample-cells.ts';
 import { sine } from '../../support/wav/signals.ts';
 
@@ -13,19 +13,25 @@ describe('the course', () => {
     }
   });
 
-  it('follows the level without its mean, null in silence, whatever the blocks', () => {
+  it('follows the level without its mean, null in silence, whatever the blocks and segments', () => {
     const plan = { samplesPerStep: 1024, steps: 3 };
     const samples = new Float32Array(2560);
     samples.set(sine(1024, 8, 1024, 0.1).map((x) => x + 0.3));
     samples.set(sine(512, 8, 1024, 0.01), 2048);
-    const tracker = new CourseTracker(plan);
-    for (let from = 0; from < 2560; from += 333) {
-      const to = Math.min(from + 333, 2560);
-      forEachCell(samples, { from, to, startSample: from }, (cell) => tracker.push(cell));
-    }
-    tracker.pushUltrasonic(1500, 0.0005);
-    tracker.pushUltrasonic(1999, 0.0015);
-    const course = joinCourses(plan, [tracker.finish()], Uint32Array.from([0, 2, 1]));
+    const parts = [
+      { startSample: 0, endSample: 1536 },
+      { startSample: 1536, endSample: 2560 },
+    ].map(({ startSample, endSample }) => {
+      const tracker = new CourseTracker(plan, { startSample, endSample });
+      for (let from = startSample; from < endSample; from += 333) {
+        const to = Math.min(from + 333, endSample);
+        forEachCell(samples, { from, to, startSample: from }, (cell) => tracker.push(cell));
+      }
+      if (startSample === 0) tracker.pushUltrasonic(1500, 0.0005);
+      else tracker.pushUltrasonic(1999, 0.0015);
+      return tracker.finish();
+    });
+    const course = joinCourses(plan, [joinChannelCourse(plan, parts)], Uint32Array.from([0, 2, 1]));
     expect(course.levelDb[0]).toBeCloseTo(-20, 2);
     expect(course.levelDb[1]).toBeNull();
     expect(course.levelDb[2]).toBeCloseTo(-40, 2);

@@ -65,7 +65,7 @@ describe('the frame cursor', () => {
     const { long } = planFrames(48_000, frames);
     const samples = Float32Array.from({ length: frames }, (_, n) => n);
     const visitedWith = (blockFrames: number) => {
-      const cursor = new FrameCursor(long, frames);
+      const cursor = new FrameCursor(long, frames, { startSample: 0, endSample: frames });
       const seen: number[][] = [];
       for (let end = blockFrames; end < frames + blockFrames; end += blockFrames) {
         const window = { samples, startSample: 0, endSample: Math.min(end, frames) };
@@ -79,7 +79,7 @@ describe('the frame cursor', () => {
 
   it('has one short frame when the recording is shorter than a frame', () => {
     const { long } = planFrames(48_000, 3);
-    const cursor = new FrameCursor(long, 3);
+    const cursor = new FrameCursor(long, 3, { startSample: 0, endSample: 3 });
     const seen: number[] = [];
     const window = { samples: new Float32Array(3), startSample: 0, endSample: 3 };
     cursor.advance(window, (_index, _samples, from, to) => seen.push(from, to));

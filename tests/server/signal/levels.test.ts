@@ -1,17 +1,28 @@
 import { describe, expect, it } from 'vitest';
-import { fullScaleThreshold, LevelTracker } from '../../../server/signal/levels.ts';
+import { fullScaleThreshold, joinLevels, LevelTracker } from '../../../server/signal/levels.ts';
 import { forEachCell } from '../../../server/signal/sample-cells.ts';
 import { sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
 
 function levelsOf(samples: Float32Array, blockFrames = samples.length, threshold = 1) {
-  const tracker = new LevelTracker(threshold);
-  for (let from = 0; from < samples.length; from += blockFrames) {
-    const to = Math.min(from + blockFrames, samples.length);
+  const { levels, clipped } = joinLevels(0, [partOf(samples, 0, samples.length, blockFrames, threshold)], 0);
+  return { levels, places: clipped };
+}
+
+function partOf(
+  samples: Float32Array,
+  startSample: number,
+  endSample: number,
+  blockFrames = samples.length,
+  threshold = 1,
+) {
+  const tracker = new LevelTracker(threshold, { startSample, endSample });
+  for (let from = startSample; from < endSample; from += blockFrames) {
+    const to = Math.min(from + blockFrames, endSample);
     forEachCell(samples, { from, to, startSample: from }, (cell, start) => {
       tracker.push(cell, samples, start, start);
     });
   }
-  return { levels: tracker.finish(0, 0), places: tracker.clippedPlaces };
+  return tracker.finish();
 }
 
 /** AES17: a full-scale sine has 0 dB rms, a full-scale square wave +3.01 dB. */
@@ -58,6 +69,27 @@ describe('levels', () => {
     expect(cut.clippedSamples).toBe(whole.clippedSamples);
     expect(cut.clippedRuns).toBe(whole.clippedRuns);
     expect(cut.rmsDb).toBeCloseTo(whole.rmsDb!, 9);
+  });
+});
+
+describe('levels of segments', () => {
+  it('join to those of the whole, with clipped runs that cross the ends of segments', () => {
+    const samples = whiteNoiseSignal(9000, 0.3, 5).map((x) => Math.max(-1, Math.min(1, x)));
+    samples.fill(1, 2990, 6010);
+    samples[7000] = -1;
+    samples[7001] = -1;
+    samples[8001] = 0;
+    samples[8000] = 1;
+    samples[7999] = 0;
+    const whole = levelsOf(samples);
+    const ends = [0, 3000, 6000, 7001, 8000, 9000];
+    const parts = ends.slice(1).map((end, index) => partOf(samples, ends[index]!, end));
+    const { levels, clipped } = joinLevels(0, parts, 0);
+    expect(clipped).toEqual(whole.places);
+    expect(clipped.spans).toContainEqual({ startSample: 2990, endSample: 6010 });
+    expect(levels.clippedSamples).toBe(whole.levels.clippedSamples);
+    expect(levels.rmsDb).toBeCloseTo(whole.levels.rmsDb!, 9);
+    expect(levels.peakDb).toBe(whole.levels.peakDb);
   });
 });
 

@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { MainsTracker } from '../../../server/signal/mains.ts';
+import { joinMains, MainsTracker } from '../../../server/signal/mains.ts';
 import { mix, sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
 
 const sampleRateHz = 8000;
@@ -9,7 +9,7 @@ function linesOf(...frequenciesHz: number[]): number[] {
   const tracker = new MainsTracker(sampleRateHz);
   const lines = frequenciesHz.map((hz) => sine(frames, hz, sampleRateHz, 0.01));
   tracker.push(mix(whiteNoiseSignal(frames, 0.0001, 5), ...lines), 0, frames);
-  return tracker.finish().map((line) => line.frequencyHz);
+  return joinMains([tracker.finish()], sampleRateHz).map((line) => line.frequencyHz);
 }
 
 describe('lines of the mains', () => {

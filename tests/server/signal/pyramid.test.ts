@@ -6,7 +6,9 @@ import { whiteNoiseSignal } from '../../support/wav/signals.ts';
 
 function pyramidOf(samples: Float32Array, blockFrames: number): [number, number][][] {
   const levels: [number, number][][] = pyramidLevels(samples.length).map(() => []);
-  const pyramid = new PeakPyramid(samples.length, (level, low, high) => levels[level]!.push([low, high]));
+  const pyramid = new PeakPyramid(pyramidLevels(samples.length).length, (level, low, high) =>
+    levels[level]!.push([low, high]),
+  );
   for (let from = 0; from < samples.length; from += blockFrames) {
     const to = Math.min(from + blockFrames, samples.length);
     forEachCell(samples, { from, to, startSample: from }, (cell) => pyramid.push(cell));

@@ -1,9 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import type { QualityFinding } from '../../../shared/contract/measurement.ts';
-import { ChannelPairs } from '../../../server/signal/channel-pairs.ts';
-import { DropoutTracker } from '../../../server/signal/dropouts.ts';
-import { LevelTracker } from '../../../server/signal/levels.ts';
-import { MainsTracker } from '../../../server/signal/mains.ts';
+import { ChannelPairs, joinChannelPairs } from '../../../server/signal/channel-pairs.ts';
+import { DropoutTracker, joinDropouts } from '../../../server/signal/dropouts.ts';
+import { joinLevels, LevelTracker } from '../../../server/signal/levels.ts';
+import { joinMains, MainsTracker } from '../../../server/signal/mains.ts';
 import { qualityFindings } from '../../../server/signal/quality.ts';
 import { forEachCell } from '../../../server/signal/sample-cells.ts';
 import { mix, sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
@@ -22,32 +22,39 @@ function findingsOf(
     sampleRateHz,
     frames,
     stepSize: STEP,
-    pairs: pairs.finish(),
+    pairs: joinChannelPairs([pairs.finish()]),
     headerWarnings: warnings,
     channels: channels.map((samples, channel) => {
-      const levels = new LevelTracker(1 - STEP);
+      const levels = new LevelTracker(1 - STEP, { startSample: 0, endSample: frames });
       forEachCell(samples, { from: 0, to: frames, startSample: 0 }, (cell, start) => {
         levels.push(cell, samples, start, start);
       });
       const mains = new MainsTracker(sampleRateHz);
       mains.push(samples, 0, frames);
       return {
-        levels: levels.finish(channel, 0),
-        clipped: levels.clippedPlaces,
+        ...joinLevels(channel, [levels.finish()], 0),
         dropouts: dropoutsOf(samples, frames, sampleRateHz),
-        mains: mains.finish(),
+        mains: joinMains([mains.finish()], sampleRateHz),
       };
     }),
   });
 }
 
-function dropoutsOf(samples: Float32Array, blockFrames: number, sampleRateHz = 48_000) {
-  const tracker = new DropoutTracker({ sampleRateHz, stepSize: STEP, fullScale: 1 - STEP });
-  for (let from = 0; from < samples.length; from += blockFrames) {
-    const window = { samples, startSample: 0, endSample: Math.min(from + blockFrames, samples.length) };
-    tracker.push(window, from);
-  }
-  return tracker.places;
+function dropoutsOf(
+  samples: Float32Array,
+  blockFrames: number,
+  sampleRateHz = 48_000,
+  ends = [samples.length],
+) {
+  const parts = ends.map((end, index) => {
+    const tracker = new DropoutTracker({ sampleRateHz, stepSize: STEP, fullScale: 1 - STEP });
+    const window = { samples, startSample: 0, endSample: samples.length };
+    for (let from = ends[index - 1] ?? 0; from < end; from += blockFrames) {
+      tracker.push(window, from, Math.min(from + blockFrames, end));
+    }
+    return tracker.finish(window, end);
+  });
+  return joinDropouts(parts, sampleRateHz);
 }
 
 function codesOf(findings: QualityFinding[]): string[] {
@@ -147,7 +154,7 @@ describe('mains lines', () => {
     );
     const tracker = new MainsTracker(192_000);
     tracker.push(hum, 0, hum.length);
-    const lines = tracker.finish();
+    const lines = joinMains([tracker.finish()], 192_000);
     expect(lines.map((line) => line.frequencyHz)).toEqual([50, 150]);
     expect(Math.abs(lines[0]!.levelDb + 40)).toBeLessThan(1.5);
   });
@@ -160,7 +167,7 @@ describe('mains lines', () => {
     );
     const tracker = new MainsTracker(44_100);
     tracker.push(hum, 0, hum.length);
-    expect(tracker.finish().map((line) => line.frequencyHz)).toEqual([60, 120]);
+    expect(joinMains([tracker.finish()], 44_100).map((line) => line.frequencyHz)).toEqual([60, 120]);
   });
 
   it('are none in noise, and none in less than a second', () => {
@@ -168,7 +175,7 @@ describe('mains lines', () => {
       const tracker = new MainsTracker(48_000);
       const noise = whiteNoiseSignal(frames, 0.1, frames);
       tracker.push(noise, 0, frames);
-      expect(tracker.finish()).toEqual([]);
+      expect(joinMains([tracker.finish()], 48_000)).toEqual([]);
     }
   });
 });

@@ -65,7 +65,9 @@ describe('the levels above', () => {
     const [, picture] = planPictures(planFrames(192_000, 128 * 5000));
     const { layout } = picture!;
     const seen: number[][] = Array.from({ length: layout.levels }, () => []);
-    const pyramid = new ColumnPyramid(picture!, (level, codes) => seen[level]!.push(codes[50]!));
+    const pyramid = new ColumnPyramid(picture!, layout.levels, (level, codes) =>
+      seen[level]!.push(codes[50]!),
+    );
     const power = new Float32Array(128);
     for (let index = 0; index < layout.columns; index++) {
       power.fill(index === 3333 ? 1e-2 : 1e-11);

@@ -119,7 +119,7 @@ export function measureHere(app: TestApp, recordingId: string): Promise<void> {
     audit,
     readStoredAudio,
     viewFolders,
-    measureFile: (input, controls) => measureFile({ ...input, ...controls }),
+    measureFile: (input, controls) => measureFile(input, controls),
   });
   const task = {
     signal: new AbortController().signal,

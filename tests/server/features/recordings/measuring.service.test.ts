@@ -7,7 +7,8 @@ import { candidates, detectorRuns, measurements } from '../../../../server/db/sc
 import { createMeasuringService } from '../../../../server/features/recordings/measuring.service.ts';
 import { selectRecordingRow } from '../../../../server/features/recordings/recordings.queries.ts';
 import { createViewFolders } from '../../../../server/features/recordings/view-folders.ts';
-import { measureFile, type MeasureResult } from '../../../../server/measuring/measure-file.ts';
+import type { MeasureResult } from '../../../../server/measuring/join-segments.ts';
+import { measureFile } from '../../../../server/measuring/measure-file.ts';
 import { measureHere, seedRecording, smallWav } from '../../../support/server/seed-recordings.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
 
@@ -68,10 +69,7 @@ describe('measuring', () => {
   test('stores as many candidates as the detector wrote, in their order', async () => {
     const id = await seedRecording(app);
     let written: MeasureResult | undefined;
-    await measureWith(
-      id,
-      async (input, controls) => (written = await measureFile({ ...input, ...controls })),
-    );
+    await measureWith(id, async (input, controls) => (written = await measureFile(input, controls)));
     const rows = app.deps.db.select().from(candidates).all();
     expect(rows.map(({ ordinal }) => ordinal)).toEqual(
       Array.from({ length: written?.candidateCount ?? -1 }, (_, n) => n),
@@ -84,7 +82,7 @@ describe('measuring', () => {
     await expect(measureWith(id, () => Promise.reject(new Error('broken')))).rejects.toThrow('broken');
     expect(viewNames(id)).toEqual([]);
     const afterStoring: MeasureFile = async (input, controls) => {
-      const result = await measureFile({ ...input, ...controls });
+      const result = await measureFile(input, controls);
       // The summary is stored, the candidates cannot be read any more.
       rmSync(result.candidatesPath);
       return result;

@@ -1,7 +1,8 @@
 import { frameStart } from '../signal/frame-plan.ts';
 import { FrameSpectrum } from '../signal/frame-spectrum.ts';
-import { encodeColumn, type Picture } from '../signal/spectrogram-columns.ts';
+import { COLUMN_FACTOR, columnsAtLevel, encodeColumn, type Picture } from '../signal/spectrogram-columns.ts';
 import { BlockReader, type AudioPlace } from './block-reader.ts';
+import { maximaOf } from './view-join.ts';
 
 export interface ColumnsRequest {
   source: { filePath: string; header: AudioPlace };
@@ -15,8 +16,19 @@ const spectra = new Map<number, FrameSpectrum>();
 /** Columns computed from one read, so that no request holds more than a few megabytes. */
 const SAMPLES_PER_READ = 1 << 20;
 
+/** Columns of a level that is not kept, made from the samples: each is the maximum of those of level 0. */
+export async function computedColumns(request: ColumnsRequest & { level: number }): Promise<Uint8Array> {
+  const { picture, level } = request;
+  const factor = COLUMN_FACTOR ** level;
+  const firstColumn = request.firstColumn * factor;
+  const columns = Math.min(request.columns * factor, columnsAtLevel(picture.layout.columns, 0) - firstColumn);
+  let codes = await levelZeroColumns({ ...request, firstColumn, columns });
+  for (let below = 0; below < level; below++) codes = maximaOf(codes, picture.layout.bins);
+  return codes;
+}
+
 /** The finest columns of a picture, made from the samples; the same as those the kept levels were made from. */
-export async function levelZeroColumns(request: ColumnsRequest): Promise<Uint8Array> {
+async function levelZeroColumns(request: ColumnsRequest): Promise<Uint8Array> {
   const { picture, columns } = request;
   const codes = new Uint8Array(columns * picture.layout.bins);
   const columnsPerRead = Math.max(1, Math.floor(SAMPLES_PER_READ / picture.grid.hop));

@@ -1,14 +1,18 @@
 import { afterAll, describe, expect, it } from 'vitest';
 import { createWorkerPool } from '../../../server/jobs/worker-pool.ts';
-import { measureInWorker, measureWorkerModule } from '../../../server/measuring/measure-in-worker.ts';
-import { measureFile, type MeasureResult } from '../../../server/measuring/measure-file.ts';
+import { measureInWorkers, measureWorkerModule } from '../../../server/measuring/measure-in-workers.ts';
+import type { MeasureResult } from '../../../server/measuring/join-segments.ts';
+import { measureFile } from '../../../server/measuring/measure-file.ts';
 import type { MeasureTask } from '../../../server/measuring/measure.worker.ts';
 import { whiteNoiseSignal } from '../../support/wav/signals.ts';
 import { writeWav } from '../../support/wav/write-wav.ts';
 import { plainContext, storedWav } from './measured.ts';
 
 describe('measuring in a worker thread', () => {
-  const pool = createWorkerPool<MeasureTask, MeasureResult>({ module: measureWorkerModule, workers: 1 });
+  const pool = createWorkerPool<MeasureTask, MeasureResult | null>({
+    module: measureWorkerModule,
+    workers: 2,
+  });
   afterAll(() => pool.close());
   const wav = writeWav({ sampleRateHz: 192_000, channels: [whiteNoiseSignal(2_000_000, 0.1, 1)] });
 
@@ -16,7 +20,7 @@ describe('measuring in a worker thread', () => {
     const source = await storedWav(wav);
     const seen: number[] = [];
     const input = { ...source, context: plainContext };
-    const there = await measureInWorker(pool, input, { onProgress: (fraction) => seen.push(fraction) });
+    const there = await measureInWorkers(pool, 2, input, { onProgress: (fraction) => seen.push(fraction) });
     const here = await measureFile({ ...input, viewsDir: `${source.viewsDir}-here` });
     expect(there.summary).toEqual(here.summary);
     expect(seen.at(-1)).toBe(1);
@@ -25,8 +29,9 @@ describe('measuring in a worker thread', () => {
   it('ends when it is aborted', async () => {
     const source = await storedWav(wav);
     const controller = new AbortController();
-    const measuring = measureInWorker(
+    const measuring = measureInWorkers(
       pool,
+      2,
       { ...source, context: plainContext },
       { signal: controller.signal, onProgress: () => controller.abort() },
     );
@@ -36,6 +41,6 @@ describe('measuring in a worker thread', () => {
   it('passes on the sentence of a failure', async () => {
     const source = await storedWav(wav);
     const input = { ...source, filePath: `${source.filePath}-gone`, context: plainContext };
-    await expect(measureInWorker(pool, input)).rejects.toThrow(/ENOENT/);
+    await expect(measureInWorkers(pool, 2, input)).rejects.toThrow(/ENOENT/);
   });
 });

@@ -1,0 +1,107 @@
+import { writeFileSync } from 'node:fs';
+import type { Bandwidth, MeasurementSummary, Spectrum } from '../../shared/contract/measurement.ts';
+import { findBandwidth } from '../signal/bandwidth.ts';
+import { ChannelJoin, type ChannelResult } from '../signal/channel-join.ts';
+import { joinChannelPairs, type ChannelPair } from '../signal/channel-pairs.ts';
+import { joinCourses } from '../signal/course.ts';
+import { qualityFindings } from '../signal/quality.ts';
+import { joinDetection, type SegmentFindings } from './detection-join.ts';
+import { describeMeasurement, type MeasureInput, type MeasurePlan } from './measure-plan.ts';
+import { stepSize } from './measure-segment.ts';
+import { SegmentParts } from './segment-parts.ts';
+import { makeManifest, viewPath } from './view-layout.ts';
+import { joinViews } from './view-join.ts';
+
+export interface MeasureResult {
+  summary: MeasurementSummary;
+  /** One `DetectedCandidate` as JSON per line, by rising onset. */
+  candidatesPath: string;
+  candidateCount: number;
+}
+
+/** Makes the measurement of the recording of its finished segments, completes the views and removes what is left over. */
+export async function joinSegments(input: MeasureInput): Promise<MeasureResult> {
+  const plan = describeMeasurement(input);
+  const parts = new SegmentParts(input.viewsDir);
+  const candidatesPath = viewPath(input.viewsDir, 'candidates');
+  const { results, pairs, findings } = readParts(plan, parts);
+  const { format, course, layout } = plan;
+  const bandwidth = widestBandwidth(format.sampleRateHz, results);
+  const { context } = input;
+  const shortHop = layout.plan.short.hop;
+  const found = await joinDetection({
+    ...{ format, context, course, shortHop, results, bandwidth, findings },
+    candidatesPath,
+  });
+  const summary: MeasurementSummary = {
+    version: 1,
+    format,
+    levels: results.map((result) => result.facts.levels),
+    descriptors: results.map((result, channel) => ({ channel, ...result.descriptors })),
+    quality: qualityFindings({
+      sampleRateHz: format.sampleRateHz,
+      frames: format.frames,
+      stepSize: stepSize(format),
+      channels: results.map((result) => result.facts),
+      pairs,
+      headerWarnings: input.header.format.warnings,
+    }),
+    bandwidth,
+    ultrasonic: found.ultrasonic,
+    course: joinCourses(
+      course,
+      results.map((result) => result.course),
+      found.candidatesPerStep,
+    ),
+    detector: found.detector,
+  };
+  joinViews(input.viewsDir, layout);
+  writeFileSync(viewPath(input.viewsDir, 'spectra'), JSON.stringify(results.map(toSpectrum)));
+  writeFileSync(viewPath(input.viewsDir, 'manifest'), JSON.stringify(makeManifest(format, plan.engine)));
+  await parts.remove();
+  return { summary, candidatesPath, candidateCount: found.candidateCount };
+}
+
+interface JoinedParts {
+  results: ChannelResult[];
+  pairs: ChannelPair[];
+  findings: SegmentFindings[];
+}
+
+/** One part at a time is held in memory. */
+function readParts(
+  { format, layout, course, segments, spectrumPoints }: MeasurePlan,
+  parts: SegmentParts,
+): JoinedParts {
+  const { sampleRateHz } = format;
+  const { size } = layout.plan.long;
+  const joins = Array.from(
+    { length: format.channels },
+    (_, channel) => new ChannelJoin({ channel, course, sampleRateHz, size, spectrumPoints }),
+  );
+  const pairs: ChannelPair[][] = [];
+  const findings = segments.map((segment) => {
+    const part = parts.read(segment.index);
+    for (const [channel, join] of joins.entries()) join.add(part.channels[channel]!);
+    pairs.push(part.pairs);
+    return { segment, part: part.detection, candidatesPath: parts.candidatesPath(segment.index) };
+  });
+  return { results: joins.map((join) => join.finish()), pairs: joinChannelPairs(pairs), findings };
+}
+
+/** A recording can show what its best channel can. */
+function widestBandwidth(sampleRateHz: number, results: ChannelResult[]): Bandwidth {
+  const each = results.map(({ spectra }) =>
+    findBandwidth({
+      sampleRateHz,
+      frequenciesHz: spectra.frequenciesHz,
+      floorDbPerHz: spectra.medianDbPerHz,
+    }),
+  );
+  return each.reduce((widest, one) => (one.effectiveHz > widest.effectiveHz ? one : widest));
+}
+
+function toSpectrum({ spectra }: ChannelResult, channel: number): Spectrum {
+  const { frequenciesHz, quietDbPerHz, activeDbPerHz, maximumDbPerHz } = spectra;
+  return { channel, frequenciesHz, quietDbPerHz, activeDbPerHz, maximumDbPerHz };
+}

@@ -1,0 +1,71 @@
+import type { ChannelPart } from './channel-pass.ts';
+import { joinChannelCourse, type ChannelCourse, type CoursePlan } from './course.ts';
+import { joinDropouts } from './dropouts.ts';
+import { joinLevels } from './levels.ts';
+import {
+  LongFrameStatistics,
+  type LongFrameResult,
+  type LongFrameStatisticsSettings,
+} from './long-frame-statistics.ts';
+import { joinMains } from './mains.ts';
+import type { ChannelFacts } from './quality.ts';
+
+export interface ChannelResult extends LongFrameResult {
+  facts: ChannelFacts;
+  course: ChannelCourse;
+}
+
+export interface ChannelJoinSettings extends LongFrameStatisticsSettings {
+  channel: number;
+  course: CoursePlan;
+}
+
+type SmallParts = Omit<ChannelPart, 'longFrames'>;
+
+/** Joins the segments of a channel, one after the other; the large tables are added up as they come. */
+export class ChannelJoin {
+  readonly #settings: ChannelJoinSettings;
+  readonly #statistics: LongFrameStatistics;
+  readonly #parts: SmallParts[] = [];
+
+  constructor(settings: ChannelJoinSettings) {
+    this.#settings = settings;
+    this.#statistics = new LongFrameStatistics(settings);
+  }
+
+  /** Parts in order of their segments. */
+  add({ longFrames, ...small }: ChannelPart): void {
+    this.#statistics.absorb(longFrames);
+    this.#parts.push(small);
+  }
+
+  finish(): ChannelResult {
+    const { channel, course, sampleRateHz } = this.#settings;
+    const each = <Part>(of: (part: SmallParts) => Part) => this.#parts.map(of);
+    const nonFiniteSamples = this.#parts.reduce((sum, part) => sum + part.nonFiniteSamples, 0);
+    const { levels, clipped } = joinLevels(
+      channel,
+      each((part) => part.levels),
+      nonFiniteSamples,
+    );
+    return {
+      ...this.#statistics.finish(),
+      facts: {
+        levels,
+        clipped,
+        dropouts: joinDropouts(
+          each((part) => part.dropouts),
+          sampleRateHz,
+        ),
+        mains: joinMains(
+          each((part) => part.mains),
+          sampleRateHz,
+        ),
+      },
+      course: joinChannelCourse(
+        course,
+        each((part) => part.course),
+      ),
+    };
+  }
+}
