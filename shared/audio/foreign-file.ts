@@ -1,5 +1,5 @@
 import { asciiText } from '../lib/byte-text.ts';
-import { WavRefusedError, type WavRefusal } from './wav-refused-error.ts';
+import { RefusedFileError, type FileRefusal } from './refused-file-error.ts';
 
 type Mark = { at: number; bytes: string; name: string; kind: 'lossy' | 'audio' | 'video' | 'other' };
 
@@ -53,9 +53,9 @@ const ADVICE = {
 };
 
 /** The refusal for a file whose first bytes are not those of a WAV file; names what it is where that can be seen. */
-export function foreignFileRefusal(head: Uint8Array): WavRefusedError {
+export function foreignFileRefusal(head: Uint8Array): RefusedFileError {
   if (asciiText(head, 0, 4) === 'RIFX') {
-    return new WavRefusedError(
+    return new RefusedFileError(
       'big-endian',
       'This is a big-endian WAV file (RIFX), which is not read here. Save it as an ordinary WAV file (RIFF).',
     );
@@ -68,9 +68,9 @@ export function foreignFileRefusal(head: Uint8Array): WavRefusedError {
   return refusal(textKind(head) ?? 'no WAV file (its first bytes are not RIFF, RF64 or BW64)', 'other');
 }
 
-function refusal(name: string, kind: Mark['kind']): WavRefusedError {
-  const code: WavRefusal = kind === 'other' ? 'not-audio' : 'other-audio';
-  return new WavRefusedError(code, `This is ${name}. ${ADVICE[kind]}`);
+function refusal(name: string, kind: Mark['kind']): RefusedFileError {
+  const code: FileRefusal = kind === 'other' ? 'not-audio' : 'other-audio';
+  return new RefusedFileError(code, `This is ${name}. ${ADVICE[kind]}`);
 }
 
 function hasMark(head: Uint8Array, mark: Mark): boolean {

@@ -3,7 +3,7 @@ import { formatBytes } from '../lib/format-bytes.ts';
 import { isChunkId, isKnownChunk, TECHNICAL_CHUNKS, TEXT_CHUNKS } from './wav-chunk-ids.ts';
 import { dataExtent, type DataExtent } from './wav-data-extent.ts';
 import { parseFormatChunk, type FormatChunk } from './wav-format-chunk.ts';
-import { WavRefusedError } from './wav-refused-error.ts';
+import { RefusedFileError } from './refused-file-error.ts';
 import { DS64_READ_BYTES, parseWideSizes, SIZE_ELSEWHERE, type WideSizes } from './wav-wide-sizes.ts';
 import type { ReadBytes } from './window-reader.ts';
 
@@ -122,7 +122,7 @@ function breakOff(walk: Walk, at: number): WalkedChunks {
 
 function stopCounting(walk: Walk, at: number): WalkedChunks {
   if (!walk.format || !walk.data) {
-    throw new WavRefusedError(
+    throw new RefusedFileError(
       'too-many-chunks',
       `No audio was found within the first ${MAX_CHUNKS.toLocaleString('en')} chunks of the file.`,
     );

@@ -1,6 +1,6 @@
 import { bytesPerFrame, type SampleLayout } from './audio-format.ts';
 import { frequencyText } from './unit-text.ts';
-import { WavRefusedError } from './wav-refused-error.ts';
+import { RefusedFileError } from './refused-file-error.ts';
 import { codecName, TAG_EXTENSIBLE, TAG_FLOAT, TAG_PCM } from './wave-codec.ts';
 
 const MAX_CHANNELS = 64;
@@ -20,10 +20,10 @@ export type FormatChunk = SampleLayout & {
   warnings: string[];
 };
 
-/** Reads and checks the body of a `fmt ` chunk (WAVEFORMATEX, WAVEFORMATEXTENSIBLE). Throws WavRefusedError. */
+/** Reads and checks the body of a `fmt ` chunk (WAVEFORMATEX, WAVEFORMATEXTENSIBLE). Throws RefusedFileError. */
 export function parseFormatChunk(body: Uint8Array): FormatChunk {
   if (body.length < PLAIN_BYTES) {
-    throw new WavRefusedError(
+    throw new RefusedFileError(
       'broken-format',
       `The format chunk has ${body.length} bytes; a WAV file needs at least 16.`,
     );
@@ -46,13 +46,13 @@ export function parseFormatChunk(body: Uint8Array): FormatChunk {
 
 function extensibleTag(body: Uint8Array, view: DataView): number {
   if (body.length < EXTENSIBLE_BYTES || view.getUint16(16, true) < 22) {
-    throw new WavRefusedError(
+    throw new RefusedFileError(
       'broken-format',
       'The header says its format is extended but the extension is missing or cut off, so the coding of the samples is unknown.',
     );
   }
   if (!SUBTYPE_TAIL.every((byte, i) => body[26 + i] === byte)) {
-    throw new WavRefusedError(
+    throw new RefusedFileError(
       'compressed',
       'The header names a sub-format that is neither integer nor float samples. Save the file as uncompressed WAV.',
     );
@@ -63,7 +63,7 @@ function extensibleTag(body: Uint8Array, view: DataView): number {
 function encodingOf(tag: number): 'integer' | 'float' {
   if (tag === TAG_PCM) return 'integer';
   if (tag === TAG_FLOAT) return 'float';
-  throw new WavRefusedError(
+  throw new RefusedFileError(
     'compressed',
     `The samples are coded with ${codecName(tag)}. Only uncompressed integer or float samples can be measured: bring in the WAV file from the recorder.`,
   );
@@ -73,19 +73,19 @@ function requireBounds(layout: SampleLayout, sampleRateHz: number): void {
   const { encoding, bitsPerSample, channels } = layout;
   if (!WIDTHS[encoding].includes(bitsPerSample)) {
     const widths = encoding === 'integer' ? '8, 16, 24 or 32 bits' : '32 or 64 bits';
-    throw new WavRefusedError(
+    throw new RefusedFileError(
       'width',
       `The header says ${encoding} samples of ${bitsPerSample} bits; ${encoding} samples must have ${widths}.`,
     );
   }
   if (channels < 1 || channels > MAX_CHANNELS) {
-    throw new WavRefusedError(
+    throw new RefusedFileError(
       'channels',
       `The header says ${channels} channels; 1 to ${MAX_CHANNELS} can be brought in.`,
     );
   }
   if (sampleRateHz < 1 || sampleRateHz > MAX_RATE_HZ) {
-    throw new WavRefusedError(
+    throw new RefusedFileError(
       'rate',
       `The header says a sample rate of ${frequencyText(sampleRateHz)}; 1 Hz to ${frequencyText(MAX_RATE_HZ)} can be brought in.`,
     );
@@ -95,7 +95,7 @@ function requireBounds(layout: SampleLayout, sampleRateHz: number): void {
 function requireBlockAlign(layout: SampleLayout, blockAlign: number): number {
   const expected = bytesPerFrame(layout);
   if (blockAlign === expected) return blockAlign;
-  throw new WavRefusedError(
+  throw new RefusedFileError(
     'block-align',
     `The header contradicts itself: ${layout.channels} channels of ${layout.bitsPerSample} bits make ${expected} bytes a frame, but it says ${blockAlign}.`,
   );
@@ -105,7 +105,7 @@ function validBitsOf(view: DataView, bitsPerSample: number): number {
   const validBits = view.getUint16(18, true);
   if (validBits === 0) return bitsPerSample;
   if (validBits <= bitsPerSample) return validBits;
-  throw new WavRefusedError(
+  throw new RefusedFileError(
     'width',
     `The header says that ${validBits} bits of each sample are valid, but a sample has only ${bitsPerSample}.`,
   );

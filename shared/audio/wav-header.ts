@@ -6,7 +6,7 @@ import { foreignFileRefusal } from './foreign-file.ts';
 import { walkChunks, type MetadataChunk, type WalkedChunks } from './wav-chunks.ts';
 import type { DataExtent } from './wav-data-extent.ts';
 import type { FormatChunk } from './wav-format-chunk.ts';
-import { WavRefusedError } from './wav-refused-error.ts';
+import { RefusedFileError } from './refused-file-error.ts';
 import { windowReader } from './window-reader.ts';
 
 export type WavHeader = {
@@ -25,17 +25,17 @@ const HEAD_BYTES = 512;
 
 /**
  * Reads the header of a WAV file and checks it against the file's real size. Accepts what can be measured, with warnings in
- * `format.warnings`; throws WavRefusedError, whose message is a sentence for the person who chose the file.
+ * `format.warnings`; throws RefusedFileError, whose message is a sentence for the person who chose the file.
  */
 export async function readWavHeader(source: ByteSource): Promise<WavHeader> {
-  if (source.sizeBytes === 0) throw new WavRefusedError('empty', 'The file is empty.');
+  if (source.sizeBytes === 0) throw new RefusedFileError('empty', 'The file is empty.');
   const read = windowReader(source);
   const container = containerOf(await read(0, HEAD_BYTES));
   const chunks = await walkChunks(read, source.sizeBytes);
   const { format, data } = requireAudio(chunks);
   const frames = Math.floor(data.presentBytes / format.blockAlign);
   if (frames === 0) {
-    throw new WavRefusedError(
+    throw new RefusedFileError(
       'no-frames',
       'The file has a correct header but not a single whole frame of audio.',
     );
@@ -68,12 +68,12 @@ function requireAudio(chunks: WalkedChunks): { format: FormatChunk; data: DataEx
   const { format, data, brokenAt } = chunks;
   const breakOff = brokenAt === undefined ? '' : ` Its list of chunks breaks off at byte ${brokenAt}.`;
   if (!format) {
-    throw new WavRefusedError(
+    throw new RefusedFileError(
       'no-format',
       `The file has no format chunk, so nothing says how its samples lie.${breakOff}`,
     );
   }
-  if (!data) throw new WavRefusedError('no-data', `The file has a WAV header but no audio in it.${breakOff}`);
+  if (!data) throw new RefusedFileError('no-data', `The file has a WAV header but no audio in it.${breakOff}`);
   return { format, data };
 }
 

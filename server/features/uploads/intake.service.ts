@@ -4,7 +4,7 @@ import type { AudioFormat } from '../../../shared/contract/measurement.ts';
 import { personalMetadata } from '../../../shared/audio/personal-metadata.ts';
 import { readWavHeader, type WavHeader } from '../../../shared/audio/wav-header.ts';
 import { readWavMetadata } from '../../../shared/audio/wav-metadata.ts';
-import { WavRefusedError } from '../../../shared/audio/wav-refused-error.ts';
+import { RefusedFileError } from '../../../shared/audio/refused-file-error.ts';
 import type { Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
@@ -100,7 +100,7 @@ async function readHeader(path: string): Promise<WavHeader> {
   try {
     return await withFileSource(path, readWavHeader);
   } catch (error) {
-    if (error instanceof WavRefusedError)
+    if (error instanceof RefusedFileError)
       throw new ProblemError('file-refused', error.message, { cause: error });
     throw error;
   }

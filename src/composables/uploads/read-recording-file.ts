@@ -4,7 +4,7 @@ import { personalMetadata } from '@shared/audio/personal-metadata.ts';
 import type { PersonalFinding } from '@shared/audio/personal-metadata.ts';
 import { readWavHeader } from '@shared/audio/wav-header.ts';
 import { readWavMetadata } from '@shared/audio/wav-metadata.ts';
-import { WavRefusedError } from '@shared/audio/wav-refused-error.ts';
+import { RefusedFileError } from '@shared/audio/refused-file-error.ts';
 
 /** What a file's header tells before a byte of it is sent. */
 export interface FileReading {
@@ -21,7 +21,7 @@ export async function readRecordingFile(file: Blob): Promise<ReadOutcome> {
     const { format, metadata } = await readWavHeader(blobSource(file));
     return { reading: { format, findings: personalMetadata(readWavMetadata(metadata)) } };
   } catch (error) {
-    if (error instanceof WavRefusedError) return { refusal: error.message };
+    if (error instanceof RefusedFileError) return { refusal: error.message };
     return { refusal: 'The browser could not read this file. It may have been moved or changed.' };
   }
 }

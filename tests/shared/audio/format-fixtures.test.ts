@@ -138,7 +138,7 @@ describe('files that are not what their ending says, or hold coded samples', () 
     ['renamed-zip.wav', 'not-audio', 'a ZIP archive'],
   ])('%s is refused and named', async (name, code, words) => {
     const refused: unknown = await headerOf(fixtureBytes(name)).catch((error: unknown) => error);
-    expect(refused).toMatchObject({ name: 'WavRefusedError', code });
+    expect(refused).toMatchObject({ name: 'RefusedFileError', code });
     expect((refused as Error).message).toContain(words);
   });
 

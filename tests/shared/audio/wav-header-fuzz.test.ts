@@ -3,7 +3,7 @@ import { personalMetadata } from '../../../shared/audio/personal-metadata.ts';
 import { asciiBytes } from '../../../shared/audio/wav-envelope.ts';
 import { readWavHeader } from '../../../shared/audio/wav-header.ts';
 import { readWavMetadata } from '../../../shared/audio/wav-metadata.ts';
-import { WavRefusedError, type WavRefusal } from '../../../shared/audio/wav-refused-error.ts';
+import { RefusedFileError, type FileRefusal } from '../../../shared/audio/refused-file-error.ts';
 import { countingSource, type CountingSource } from '../../support/wav/counting-source.ts';
 import { wavMutator } from '../../support/wav/mutate-wav.ts';
 
@@ -14,7 +14,7 @@ const isLongRun = mutants > 5000;
 const longestMs = 10 * 60_000;
 const windowBytes = 4096;
 
-type Outcome = 'accepted' | WavRefusal;
+type Outcome = 'accepted' | FileRefusal;
 
 async function outcomeOf(source: CountingSource): Promise<Outcome> {
   try {
@@ -25,8 +25,8 @@ async function outcomeOf(source: CountingSource): Promise<Outcome> {
     expect(header.format.frames).toBeGreaterThan(0);
     return 'accepted';
   } catch (error) {
-    expect(error).toBeInstanceOf(WavRefusedError);
-    return (error as WavRefusedError).code;
+    expect(error).toBeInstanceOf(RefusedFileError);
+    return (error as RefusedFileError).code;
   }
 }
 
@@ -55,7 +55,7 @@ describe('broken and hostile headers', () => {
       expect(mostBytesRead).toBeLessThan(1_000_000);
       // All ends must be met, or the mutations test nothing.
       expect(met.get('accepted')).toBeGreaterThan(mutants / 10);
-      const seldom: WavRefusal[] = [
+      const seldom: FileRefusal[] = [
         'compressed',
         'width',
         'channels',
@@ -77,7 +77,7 @@ describe('broken and hostile headers', () => {
 
   it('a file of zeros that claims terabytes is refused at once', async () => {
     const source = countingSource(asciiBytes('RIFF\0\0\0\0WAVE'), 5e12);
-    await expect(readWavHeader(source)).rejects.toBeInstanceOf(WavRefusedError);
+    await expect(readWavHeader(source)).rejects.toBeInstanceOf(RefusedFileError);
     expect(source.bytesRead()).toBeLessThan(20_000);
   });
 

@@ -315,7 +315,7 @@ describe('what is refused, and in which words', () => {
   for (const [what, bytes, code, words] of table) {
     it(`${what} is refused in words`, async () => {
       const refused: unknown = await header(bytes).catch((error: unknown) => error);
-      expect(refused).toMatchObject({ name: 'WavRefusedError', code });
+      expect(refused).toMatchObject({ name: 'RefusedFileError', code });
       const { message } = refused as Error;
       expect(message).toContain(words);
       expect(message).toMatch(/^[A-Z].*\.$/);

@@ -1,4 +1,4 @@
-export type WavRefusal =
+export type FileRefusal =
   | 'empty'
   | 'not-audio'
   | 'other-audio'
@@ -15,12 +15,12 @@ export type WavRefusal =
   | 'too-many-chunks';
 
 /** A file that cannot be brought in; `message` is a whole sentence for the person who chose it. */
-export class WavRefusedError extends Error {
-  readonly code: WavRefusal;
+export class RefusedFileError extends Error {
+  readonly code: FileRefusal;
 
-  constructor(code: WavRefusal, message: string) {
+  constructor(code: FileRefusal, message: string) {
     super(message);
-    this.name = 'WavRefusedError';
+    this.name = 'RefusedFileError';
     this.code = code;
   }
 }
