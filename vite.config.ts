@@ -66,6 +66,7 @@ export default defineConfig({
           name: 'node',
           environment: 'node',
           pool: 'forks',
+          globalSetup: ['tests/support/kernel-setup.ts'],
           include: [
             'tests/shared/**/*.test.ts',
             'tests/server/**/*.test.ts',

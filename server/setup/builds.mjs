@@ -1,7 +1,7 @@
-import { existsSync, rmSync } from 'node:fs';
+import { copyFileSync, existsSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { clearStamp, hashOfSources, readStamp, writeStamp } from './stamp.mjs';
-import { SetupError, projectRoot, run, say } from './terminal.mjs';
+import { SetupError, projectRoot, runStep, say } from './terminal.mjs';
 
 /**
  * @typedef {object} Build
@@ -10,7 +10,20 @@ import { SetupError, projectRoot, run, say } from './terminal.mjs';
  * @property {string[]} outputs emptied before the build
  * @property {string} proof a file the build must leave
  * @property {string[]} command arguments of Node.js
+ * @property {[from: string, to: string][]} [copies] what goes with the result as it is
  */
+
+/** Stays beside its loader, where the server finds it when it runs from its source; overwritten, so that nobody misses it. */
+const kernelFile = 'server/kernel/kernel.wasm';
+
+/** @type {Build} */
+const kernel = {
+  name: 'kernel',
+  sources: ['server/kernel/assembly', 'server/kernel/asconfig.json', 'package-lock.json'],
+  outputs: [],
+  proof: kernelFile,
+  command: ['node_modules/assemblyscript/bin/asc.js', '--config', 'server/kernel/asconfig.json'],
+};
 
 /** @type {Build} */
 const client = {
@@ -44,15 +57,17 @@ const server = {
   outputs: ['dist/server', 'dist/shared'],
   proof: 'dist/server/main.js',
   command: ['node_modules/typescript/bin/tsc', '-p', 'tsconfig.server.build.json'],
+  copies: [[kernelFile, 'dist/server/kernel/kernel.wasm']],
 };
 
 /** @param {Build} build */
 async function makeBuild(build) {
   say(`Building the ${build.name} ...`);
   for (const output of build.outputs) rmSync(join(projectRoot, output), { recursive: true, force: true });
-  const code = await run(process.execPath, build.command);
+  const code = await runStep(process.execPath, build.command);
   if (code !== 0 || !existsSync(join(projectRoot, build.proof)))
     throw new SetupError(`The ${build.name} could not be built; the lines above say why.`);
+  for (const [from, to] of build.copies ?? []) copyFileSync(join(projectRoot, from), join(projectRoot, to));
 }
 
 /** @param {Build} build */
@@ -65,8 +80,18 @@ async function ensureBuild(build) {
   writeStamp(stampFile, wanted);
 }
 
-/** Builds client and server, each only when its sources changed since its last build. */
-export async function ensureBuilds() {
+/** Builds what the server needs to run from its source. */
+export async function ensureKernel() {
+  await ensureBuild(kernel);
+}
+
+export async function ensureServer() {
+  await ensureKernel();
   await ensureBuild(server);
+}
+
+/** Builds kernel, server and client, each only when its sources changed since its last build. */
+export async function ensureBuilds() {
+  await ensureServer();
   await ensureBuild(client);
 }

@@ -21,6 +21,7 @@ const durableFile = /^server\/store\/durable-file\.ts$/;
 const jobs = /^server\/jobs\//;
 const services = /^server\/services\//;
 const signal = /^server\/signal\//;
+const kernel = /^server\/kernel\//;
 const measuring = /^server\/measuring\//;
 const packaging = /^server\/packaging\//;
 const authorize = /^server\/authorize\//;
@@ -59,7 +60,8 @@ export const layers: Layer[] = [
   { files: shared, may: [] },
 
   { files: signal, may: [shared] },
-  { files: measuring, may: [shared, signal] },
+  { files: kernel, may: [shared, signal] },
+  { files: measuring, may: [shared, signal, kernel] },
   { files: packaging, may: [shared, durableFile] },
   { files: db, may: [shared] },
   { files: store, may: [shared] },

@@ -1,0 +1,44 @@
+import type {
+  FrameEngine,
+  LongFrameRows,
+  LongFrameSettings,
+  ShortFrameRows,
+  ShortFrameSettings,
+} from '../signal/frame-engine.ts';
+import { packageLongFrames, packageShortFrames } from '../signal/package-rows.ts';
+import { kernelBlockSummer, kernelCellSummer } from './kernel-cells.ts';
+import { kernelDecoder } from './kernel-decoder.ts';
+import { KernelLongFrames, KernelShortFrames } from './kernel-rows.ts';
+import { Kernel } from './kernel.ts';
+
+/**
+ * The engine on the SIMD kernel, with a memory of its own that grows only while something is set up. Samples and bytes that
+ * lie in this memory (`samples`, `bytes`) are read where they are, others are copied in.
+ *
+ * A recording shorter than one frame is left to the other engine.
+ * Cost per sample on one core of 2024: long frames with all features 6 ns, short frames 5 ns, cells and decoding under 1 ns.
+ * @throws Error where the kernel has not been built.
+ */
+export function kernelEngine(): FrameEngine {
+  const kernel = new Kernel();
+  return {
+    name: 'kernel',
+    samples: (length) => kernel.array(Float32Array, length),
+    bytes: (length) => kernel.array(Uint8Array, length),
+    longFrames: (settings) => longFrames(kernel, settings),
+    shortFrames: (settings) => shortFrames(kernel, settings),
+    decoder: (layout, maximumBytes) => kernelDecoder(kernel, layout, maximumBytes),
+    cellSummer: (maximumCells) => kernelCellSummer(kernel, maximumCells),
+    blockSummer: (length, maximumBlocks) => kernelBlockSummer(kernel, length, maximumBlocks),
+  };
+}
+
+function longFrames(kernel: Kernel, settings: LongFrameSettings): LongFrameRows {
+  const isWhole = settings.frames >= settings.grid.size;
+  return isWhole ? new KernelLongFrames(kernel, settings) : packageLongFrames(settings);
+}
+
+function shortFrames(kernel: Kernel, settings: ShortFrameSettings): ShortFrameRows {
+  const isWhole = settings.frames >= settings.grid.size;
+  return isWhole ? new KernelShortFrames(kernel, settings) : packageShortFrames(settings);
+}

@@ -1,0 +1,124 @@
+import type { SampleWindow } from './frame-cursor.ts';
+import {
+  FEATURE,
+  type BinRange,
+  type LongFrameRows,
+  type LongFrameSettings,
+  type RowRange,
+  type ShortFrameRows,
+  type ShortFrameSettings,
+} from './frame-engine.ts';
+import { FrameFeatures } from './frame-features.ts';
+import { frameStart, type FrameGrid } from './frame-plan.ts';
+import { FrameSpectrum, meanSquareOfBins } from './frame-spectrum.ts';
+import { encodeColumn } from './spectrogram-columns.ts';
+
+interface RowSettings {
+  grid: FrameGrid;
+  frames: number;
+  firstBin: number;
+  endBin: number;
+  capacity: number;
+}
+
+abstract class PackageRows {
+  readonly power: Float32Array;
+  readonly powerStride: number;
+  readonly firstBin: number;
+  readonly bins: number;
+  protected readonly spectrum: FrameSpectrum;
+  readonly #settings: RowSettings;
+  readonly #codes: Uint8Array;
+  readonly #greatest: Float32Array;
+
+  constructor(settings: RowSettings) {
+    const { grid, firstBin, endBin, capacity } = settings;
+    this.#settings = settings;
+    this.firstBin = firstBin;
+    this.bins = endBin - firstBin;
+    this.powerStride = this.bins;
+    this.power = new Float32Array(capacity * this.bins);
+    this.spectrum = new FrameSpectrum(grid.size);
+    this.#codes = new Uint8Array(capacity * this.bins);
+    this.#greatest = new Float32Array(this.bins);
+  }
+
+  analyse({ samples, startSample }: SampleWindow, first: number, end: number): void {
+    const { grid, frames, capacity, firstBin, endBin } = this.#settings;
+    if (end - first > capacity) throw new RangeError(`frames: ${end - first} are more than ${capacity}`);
+    for (let index = first, row = 0; index < end; index++, row++) {
+      const start = frameStart(grid, index, frames);
+      const from = start - startSample;
+      const to = Math.min(start + grid.size, frames) - startSample;
+      if (from < 0 || to > samples.length) {
+        throw new RangeError(`samples: ${from} to ${to} are not within ${samples.length}`);
+      }
+      this.analyseFrame(samples, from, to, row);
+      this.power.set(this.spectrum.power.subarray(firstBin, endBin), row * this.powerStride);
+    }
+  }
+
+  encode({ firstRow, endRow }: RowRange, { first, end }: BinRange, group: number): Uint8Array {
+    const bins = end - first;
+    const greatest = this.#greatest;
+    let at = 0;
+    for (let row = firstRow; row < endRow; row += group, at += bins) {
+      const offset = row * this.powerStride + first - this.firstBin;
+      greatest.set(this.power.subarray(offset, offset + bins));
+      for (let more = 1; more < Math.min(group, endRow - row); more++) {
+        raise(greatest, this.power, offset + more * this.powerStride, bins);
+      }
+      encodeColumn(greatest, 0, bins, this.#codes, at);
+    }
+    return this.#codes.subarray(0, at);
+  }
+
+  /** Renews `spectrum`. */
+  protected abstract analyseFrame(samples: Float32Array, from: number, to: number, row: number): void;
+}
+
+function raise(greatest: Float32Array, power: Float32Array, from: number, bins: number): void {
+  for (let b = 0; b < bins; b++) greatest[b] = Math.max(greatest[b]!, power[from + b]!);
+}
+
+class PackageLongFrames extends PackageRows implements LongFrameRows {
+  readonly features: Float32Array;
+  readonly featureStride: number;
+  readonly #frameFeatures: FrameFeatures;
+
+  constructor(settings: LongFrameSettings) {
+    super({ ...settings, firstBin: 0, endBin: settings.grid.size / 2 });
+    this.featureStride = FEATURE.thirdOctaves + settings.bands.length;
+    this.features = new Float32Array(settings.capacity * this.featureStride);
+    this.#frameFeatures = new FrameFeatures({ ...settings, size: settings.grid.size });
+  }
+
+  protected analyseFrame(samples: Float32Array, from: number, to: number, row: number): void {
+    this.spectrum.analyse(samples, from, to);
+    this.#frameFeatures.describe(this.spectrum, this.features, row * this.featureStride);
+  }
+}
+
+class PackageShortFrames extends PackageRows implements ShortFrameRows {
+  readonly meanSquares: Float32Array;
+
+  constructor(settings: ShortFrameSettings) {
+    super(settings);
+    this.meanSquares = new Float32Array(settings.capacity);
+  }
+
+  protected analyseFrame(samples: Float32Array, from: number, to: number, row: number): void {
+    const first = this.firstBin;
+    const end = first + this.bins;
+    this.spectrum.analyseBins(samples, from, to, { first, end });
+    this.meanSquares[row] = meanSquareOfBins(this.spectrum.power, first, end);
+  }
+}
+
+export function packageLongFrames(settings: LongFrameSettings): LongFrameRows {
+  return new PackageLongFrames(settings);
+}
+
+export function packageShortFrames(settings: ShortFrameSettings): ShortFrameRows {
+  return new PackageShortFrames(settings);
+}
