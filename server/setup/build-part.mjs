@@ -1,8 +1,8 @@
-import { ensureKernel, ensureServer } from './builds.mjs';
+import { ensureKernel, ensureServerBuild } from './builds.mjs';
 import { SetupError, runCommand } from './terminal.mjs';
 
 /** @type {Record<string, () => Promise<void>>} */
-const parts = { kernel: ensureKernel, server: ensureServer };
+const parts = { kernel: ensureKernel, server: ensureServerBuild };
 
 await runCommand(async () => {
   const build = parts[process.argv[2] ?? ''];

@@ -85,13 +85,14 @@ export async function ensureKernel() {
   await ensureBuild(kernel);
 }
 
-export async function ensureServer() {
+/** Builds kernel and server. */
+export async function ensureServerBuild() {
   await ensureKernel();
   await ensureBuild(server);
 }
 
 /** Builds kernel, server and client, each only when its sources changed since its last build. */
 export async function ensureBuilds() {
-  await ensureServer();
+  await ensureServerBuild();
   await ensureBuild(client);
 }
