@@ -1,4 +1,5 @@
 import { index, integer, real, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
+import type { StoredLayout } from '../../../shared/contract/layouts.ts';
 import type { Licence } from '../../../shared/contract/licence.ts';
 import type { AudioFormat } from '../../../shared/contract/measurement.ts';
 import type { GuardFinding, Processing, Sensitivity, Sharing } from '../../../shared/contract/recordings.ts';
@@ -35,6 +36,10 @@ export const recordings = sqliteTable(
     runOffsetNs: integer(),
     clockPpm: real().notNull().default(0),
     timeExpansion: real().notNull().default(1),
+    /** How the samples lie, where the file itself does not say. */
+    layout: text({ mode: 'json' }).$type<StoredLayout>(),
+    /** How long a trigger would have been answered; `null` where the recording is continuous, or nobody said. */
+    liveTimeNs: integer(),
     processing: text().$type<Processing>().notNull(),
     progress: real().notNull().default(0),
     failure: text(),
@@ -64,6 +69,8 @@ export const recordingSegments = sqliteTable(
     startSample: integer().notNull(),
     frames: integer().notNull(),
     runTimeNs: integer(),
+    /** Frames of it before its trigger. */
+    preTriggerFrames: integer(),
   },
   (table) => [uniqueIndex('recording_segments_start_idx').on(table.recordingId, table.startSample)],
 );

@@ -1,4 +1,5 @@
 import { index, integer, real, sqliteTable, text } from 'drizzle-orm/sqlite-core';
+import type { DeclaredLayout } from '../../../shared/contract/layouts.ts';
 import type { Licence } from '../../../shared/contract/licence.ts';
 import type { Sensitivity } from '../../../shared/contract/recordings.ts';
 import type { UploadState } from '../../../shared/contract/uploads.ts';
@@ -32,6 +33,8 @@ export const uploads = sqliteTable(
     note: text().notNull(),
     runOffsetNs: integer(),
     timeExpansion: real().notNull(),
+    /** Told with a file that says nothing of its samples itself. */
+    layout: text({ mode: 'json' }).$type<DeclaredLayout>(),
     state: text().$type<UploadState>().notNull(),
     /** Name of the byte stream in the folder of unfinished uploads; set when the first byte is announced. */
     streamId: text(),
