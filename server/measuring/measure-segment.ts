@@ -8,7 +8,7 @@ import { BlockReader } from './block-reader.ts';
 import type { MeasureControls } from './measure-controls.ts';
 import { describeMeasurement, type MeasureInput, type MeasurePlan } from './measure-plan.ts';
 import { SampleWindows } from './sample-windows.ts';
-import { SegmentDetection } from './segment-detection.ts';
+import { openSegmentDetection, type OpenDetection, type SegmentDetection } from './segment-detection.ts';
 import { SegmentParts } from './segment-parts.ts';
 import type { Segment } from './segment-plan.ts';
 import { ViewWriter } from './view-writer.ts';
@@ -29,6 +29,7 @@ export async function measureSegment(
   input: MeasureInput,
   segmentIndex: number,
   controls: MeasureControls = {},
+  openDetection: OpenDetection = openSegmentDetection,
 ): Promise<void> {
   const plan = describeMeasurement(input);
   const segment = plan.segments[segmentIndex]!;
@@ -36,7 +37,7 @@ export async function measureSegment(
   const reader = await BlockReader.open(input.filePath, input.header);
   const views = new ViewWriter(input.viewsDir, plan.layout, segment);
   const reach = reachOf(plan, segment);
-  const detection = new SegmentDetection({
+  const detection = openDetection({
     format: plan.format,
     plan: plan.layout.plan,
     context: input.context,

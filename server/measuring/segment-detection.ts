@@ -43,8 +43,24 @@ export function edgeSamples(sampleRateHz: number): number {
   return Math.max(LEAST_EDGE_SAMPLES, Math.round(EDGE_S * sampleRateHz));
 }
 
+/** Looks for candidates while a segment is read. */
+export interface SegmentDetection {
+  /** Looks for spans above 20 kHz in the short frames of a channel; nothing where the rate leaves nothing to see. */
+  shortFrameSink(channel: number): ShortFrameSink | undefined;
+  /** Every channel gets the same samples before the next ones come. */
+  push(channel: number, samples: Float32Array): void;
+  /** Writes what no channel can add to any more. */
+  settle(): void;
+  finish(): DetectionPart;
+  close(): void;
+}
+
+export type OpenDetection = (settings: SegmentDetectionSettings) => SegmentDetection;
+
+export const openSegmentDetection: OpenDetection = (settings) => new DetectorsOfSegment(settings);
+
 /** The detectors of all channels over one segment: their candidates go to a file as they are found. */
-export class SegmentDetection {
+class DetectorsOfSegment implements SegmentDetection {
   readonly #settings: SegmentDetectionSettings;
   readonly #lines: LineWriter;
   readonly #merger: CandidateMerger;
@@ -64,20 +80,17 @@ export class SegmentDetection {
     this.#detectors = Array.from({ length: format.channels }, (_, channel) => this.#openDetector(channel));
   }
 
-  /** Looks for spans above 20 kHz in the short frames of a channel; nothing where the rate leaves nothing to see. */
   shortFrameSink(channel: number): ShortFrameSink | undefined {
     const tracker = this.#trackers[channel];
     return tracker && ((frame) => tracker.push(frame));
   }
 
-  /** Every channel gets the same samples before the next ones come. */
   push(channel: number, samples: Float32Array): void {
     const detector = this.#detectors[channel]!;
     detector.push(samples);
     this.#merger.push(detector.take());
   }
 
-  /** Writes what no channel can add to any more. */
   settle(): void {
     const settled = this.#detectors.reduce(
       (least, detector) => Math.min(least, detector.settledSample()),

@@ -2,7 +2,7 @@ import { existsSync, readFileSync } from 'node:fs';
 import { dirname, join } from 'node:path';
 import { hashOfSources, readStamp, writeStamp } from './stamp.mjs';
 import { installSystemPackages } from './system-packages.mjs';
-import { SetupError, findProgram, projectRoot, run, say } from './terminal.mjs';
+import { SetupError, findProgram, projectRoot, runStep, say } from './terminal.mjs';
 
 const stampFile = join(projectRoot, 'node_modules', '.setup-stamp');
 const compilerPrograms = ['g++', 'make', 'python3'];
@@ -38,7 +38,7 @@ function areDependenciesPresent() {
 
 async function doesDatabaseLoad() {
   const probe = "try { new (require('better-sqlite3'))(':memory:').close() } catch { process.exit(1) }";
-  return (await run(process.execPath, ['--input-type=commonjs', '-e', probe])) === 0;
+  return (await runStep(process.execPath, ['--input-type=commonjs', '-e', probe])) === 0;
 }
 
 /** Node.js headers that came with this Node.js need no download. */
@@ -50,7 +50,7 @@ function headerEnvironment() {
 
 async function buildDatabase() {
   say('Building the database library (some minutes when it has to be compiled) ...');
-  await run('npm', ['rebuild', '--no-audit', '--no-fund', 'better-sqlite3'], headerEnvironment());
+  await runStep('npm', ['rebuild', '--no-audit', '--no-fund', 'better-sqlite3'], headerEnvironment());
   return doesDatabaseLoad();
 }
 
@@ -71,7 +71,7 @@ async function ensureDatabaseLoads() {
 
 async function installPackages() {
   say('Installing the packages of package-lock.json ...');
-  const code = await run('npm', [
+  const code = await runStep('npm', [
     'ci',
     '--include=dev',
     '--ignore-scripts',

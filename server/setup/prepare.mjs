@@ -1,4 +1,4 @@
-import { ensureBuilds } from './builds.mjs';
+import { ensureBuilds, ensureServer } from './builds.mjs';
 import { ensureDependencies } from './dependencies.mjs';
 import { checkNodeVersion } from './node-version.mjs';
 
@@ -7,4 +7,11 @@ export async function prepare() {
   checkNodeVersion();
   await ensureDependencies();
   await ensureBuilds();
+}
+
+/** The same for a command that needs no browser: only the server is built. */
+export async function prepareServer() {
+  checkNodeVersion();
+  await ensureDependencies();
+  await ensureServer();
 }

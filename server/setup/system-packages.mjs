@@ -1,4 +1,4 @@
-import { SetupError, findProgram, run, say } from './terminal.mjs';
+import { SetupError, findProgram, runStep, say } from './terminal.mjs';
 
 /** Whether this process may install system packages: Debian's way, and only as root. */
 function mayInstall() {
@@ -20,8 +20,8 @@ export async function installSystemPackages(packages, purpose) {
   say(`${purpose}: installing ${names} ...`);
   const environment = { DEBIAN_FRONTEND: 'noninteractive' };
   // A failed update is no reason to stop: the lists at hand may be good enough.
-  await run('apt-get', ['update', '-qq'], environment);
-  const code = await run(
+  await runStep('apt-get', ['update', '-qq'], environment);
+  const code = await runStep(
     'apt-get',
     ['install', '-y', '-qq', '--no-install-recommends', ...packages],
     environment,

@@ -9,9 +9,12 @@ export const projectRoot = fileURLToPath(new URL('../../', import.meta.url));
 /** What stops a command, said in a sentence for the person at the terminal. */
 export class SetupError extends Error {}
 
-/** @param {string} line */
+/**
+ * Tells a person how far the set-up is, beside what the command itself writes.
+ * @param {string} line
+ */
 export function say(line) {
-  console.log(line);
+  console.error(line);
 }
 
 /**
@@ -32,14 +35,15 @@ export async function runCommand(command) {
  * @param {string} program
  * @param {string[]} programArguments
  * @param {Record<string, string | undefined>} [environment] added to the present one
+ * @param {'stdout' | 'stderr'} [output] where its output goes
  * @returns {Promise<number>} exit code; 128 when it was ended by a signal
  */
-export function run(program, programArguments, environment = {}) {
+export function run(program, programArguments, environment = {}, output = 'stdout') {
   return new Promise((resolve, reject) => {
     const child = spawn(program, programArguments, {
       cwd: projectRoot,
       env: { ...process.env, ...environment },
-      stdio: ['ignore', 'inherit', 'inherit'],
+      stdio: ['ignore', output === 'stdout' ? 'inherit' : 2, 'inherit'],
     });
     const passOn = () => child.kill('SIGTERM');
     process.on('SIGINT', passOn).on('SIGTERM', passOn);
@@ -49,6 +53,16 @@ export function run(program, programArguments, environment = {}) {
       resolve(code ?? 128);
     });
   });
+}
+
+/**
+ * Runs a step of the set-up, whose output is no part of what the command itself writes.
+ * @param {string} program
+ * @param {string[]} programArguments
+ * @param {Record<string, string | undefined>} [environment] added to the present one
+ */
+export function runStep(program, programArguments, environment = {}) {
+  return run(program, programArguments, environment, 'stderr');
 }
 
 /**

@@ -1,0 +1,132 @@
+import { mkdtemp, readdir, rm, writeFile } from 'node:fs/promises';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { PassThrough } from 'node:stream';
+import { text } from 'node:stream/consumers';
+import { describe, expect, it, onTestFinished } from 'vitest';
+import { detectedCandidateSchema, measurementSummarySchema } from '../../../shared/contract/measurement.ts';
+import { measureFiles } from '../../../server/setup/measure/measure-files.ts';
+import { readOptions, UsageError } from '../../../server/setup/measure/options.ts';
+import { dampedSines, mix, whiteNoiseSignal } from '../../support/wav/signals.ts';
+import { writeWav } from '../../support/wav/write-wav.ts';
+
+const RATE_HZ = 192_000;
+
+function clickRecording(): Uint8Array {
+  const frames = 2 * RATE_HZ;
+  const burst = { onsetSample: RATE_HZ, amplitude: 0.05, frequencyHz: 40_000, decayS: 0.0002 };
+  const samples = mix(whiteNoiseSignal(frames, 0.001, 3), dampedSines(frames, [burst], RATE_HZ));
+  return writeWav({ sampleRateHz: RATE_HZ, bitsPerSample: 24, channels: [samples] });
+}
+
+async function folderWith(files: Record<string, Uint8Array | string>): Promise<string> {
+  const folder = await mkdtemp(join(tmpdir(), 'recalesce-command-'));
+  onTestFinished(() => rm(folder, { recursive: true, force: true }));
+  for (const [name, bytes] of Object.entries(files)) await writeFile(join(folder, name), bytes);
+  return folder;
+}
+
+async function run(folder: string, ...argumentList: string[]) {
+  const output = new PassThrough();
+  const errors = Object.assign(new PassThrough(), { isTTY: false }) as unknown as NodeJS.WriteStream &
+    PassThrough;
+  const written = Promise.all([text(output), text(errors)]);
+  const exitCode = await measureFiles({ argumentList, folder, output, errors });
+  output.end();
+  errors.end();
+  const [out, err] = await written;
+  return { exitCode, out, err };
+}
+
+describe('the measure command', () => {
+  it('tells a person what a recording shows', async () => {
+    const folder = await folderWith({ 'click.wav': clickRecording() });
+    const { exitCode, out, err } = await run(folder, 'click.wav');
+    expect(exitCode).toBe(0);
+    expect(err).toBe('');
+    expect(out).toContain('24-bit integer, 1 channel, 192 kHz, 2 s');
+    expect(out).toMatch(/Above 20 kHz\s+Found\./);
+    expect(out).toMatch(/Candidates\s+1 \(0 below the hearing line, 0 across, 1 above\)/);
+    expect(out).toMatch(/1\.00000\d/);
+  });
+
+  it('writes everything as JSON: the summary, the spectra and every candidate', async () => {
+    const folder = await folderWith({ 'click.wav': clickRecording() });
+    const { exitCode, out } = await run(folder, '--json', 'click.wav');
+    expect(exitCode).toBe(0);
+    const report = JSON.parse(out) as Record<string, unknown>;
+    expect(report).toMatchObject({ file: 'click.wav', candidateCount: 1 });
+    const summary = measurementSummarySchema.parse(report);
+    expect(summary.format).toMatchObject({ sampleRateHz: RATE_HZ, channels: 1, frames: 2 * RATE_HZ });
+    const [candidate] = detectedCandidateSchema.array().parse(report.candidates);
+    expect(Math.abs(candidate!.onsetSample - RATE_HZ)).toBeLessThan(10);
+    expect(candidate).toMatchObject({ channel: 0, hearingClass: 'above' });
+    expect(report.spectra).toHaveLength(1);
+  });
+
+  it('goes on after a file that is refused, says why, and ends with code 2', async () => {
+    const folder = await folderWith({ 'notes.wav': 'only words', 'click.wav': clickRecording() });
+    const { exitCode, out, err } = await run(folder, '--json', 'notes.wav', 'none.wav', 'click.wav');
+    expect(exitCode).toBe(2);
+    expect(err).toMatch(/^notes\.wav: .+\.\nnone\.wav: There is no such file\.\n$/);
+    const lines = out
+      .trim()
+      .split('\n')
+      .map((line) => JSON.parse(line) as { file: string; refused?: string });
+    expect(lines.map((line) => line.file)).toEqual(['notes.wav', 'none.wav', 'click.wav']);
+    expect(lines.map((line) => line.refused !== undefined)).toEqual([true, true, false]);
+  });
+
+  it('says what is wrong with its command line, and explains itself', async () => {
+    const folder = await folderWith({});
+    expect(await run(folder)).toMatchObject({
+      exitCode: 2,
+      err: expect.stringContaining('No file') as string,
+    });
+    expect(await run(folder, '--colour', 'a.wav')).toMatchObject({ exitCode: 2 });
+    expect(await run(folder, '--help')).toMatchObject({ exitCode: 0, err: '' });
+  });
+
+  it('keeps the views where it is told to, and leaves nothing elsewhere', async () => {
+    const folder = await folderWith({ 'click.wav': clickRecording() });
+    const before = (await readdir(tmpdir())).filter((name) => name.startsWith('recalesce-measure-'));
+    await run(folder, '--views', 'kept', 'click.wav');
+    expect(await readdir(join(folder, 'kept', 'click.wav'))).toContain('peaks.f32');
+    const after = (await readdir(tmpdir())).filter((name) => name.startsWith('recalesce-measure-'));
+    expect(after).toEqual(before);
+  });
+});
+
+describe('the options of the measure command', () => {
+  it('carry what is known of sensor and recorder', () => {
+    const options = readOptions(
+      [
+        '--sensor-low-hz=1000',
+        '--sensor-high-hz',
+        '90000',
+        '--time-expansion',
+        '10',
+        '--workers=1',
+        'a.wav',
+        '/b.wav',
+      ],
+      '/data',
+    );
+    expect(options).toMatchObject({
+      isJson: false,
+      workers: 1,
+      files: [
+        { name: 'a.wav', path: '/data/a.wav' },
+        { name: '/b.wav', path: '/b.wav' },
+      ],
+      context: { sensorLowHz: 1000, sensorHighHz: 90_000, fullScaleV: null, timeExpansion: 10 },
+    });
+  });
+
+  it('refuse numbers that cannot be', () => {
+    for (const wrong of ['--time-expansion=0', '--workers=none', '--sensor-high-hz=-1', '--full-scale-v=']) {
+      expect(() => readOptions([wrong, 'a.wav'], '/')).toThrow(UsageError);
+    }
+    expect(() => readOptions(['--sensor-low-hz=9', '--sensor-high-hz=5', 'a.wav'], '/')).toThrow(/below/);
+  });
+});
