@@ -18,7 +18,6 @@ interface FrameFeatureSettings {
  */
 export class FrameFeatures {
   readonly #binHz: number;
-  readonly #amplitude: Float32Array;
   readonly #ultrasonic: { first: number; end: number };
   readonly #cepstrum: Cepstrum;
   readonly #bands: BandSummer;
@@ -26,7 +25,6 @@ export class FrameFeatures {
 
   constructor({ size, sampleRateHz, bands }: FrameFeatureSettings) {
     this.#binHz = sampleRateHz / size;
-    this.#amplitude = new Float32Array(size / 2);
     this.#ultrasonic = bandBins('ultrasonic', size, sampleRateHz);
     this.#cepstrum = new Cepstrum(size, sampleRateHz);
     this.#bands = new BandSummer(bands, this.#binHz);
@@ -56,37 +54,28 @@ export class FrameFeatures {
   }
 
   #describeShape(power: Float32Array, features: Float32Array, at: number): void {
-    const amplitude = this.#amplitude;
     const bins = power.length;
     let sum = 0;
     let firstMoment = 0;
     let secondMoment = 0;
     let logSum = 0;
-    // Eight powers of float32 stay inside the range of a double; four sums at a time wait for none of each other.
-    for (let k = 0; k < bins; k += 8) {
+    let product = 1;
+    for (let k = 0; k < bins; k += 4) {
       const a = Math.sqrt(power[k]!);
       const b = Math.sqrt(power[k + 1]!);
       const c = Math.sqrt(power[k + 2]!);
       const d = Math.sqrt(power[k + 3]!);
-      const e = Math.sqrt(power[k + 4]!);
-      const f = Math.sqrt(power[k + 5]!);
-      const g = Math.sqrt(power[k + 6]!);
-      const h = Math.sqrt(power[k + 7]!);
-      amplitude[k] = a;
-      amplitude[k + 1] = b;
-      amplitude[k + 2] = c;
-      amplitude[k + 3] = d;
-      amplitude[k + 4] = e;
-      amplitude[k + 5] = f;
-      amplitude[k + 6] = g;
-      amplitude[k + 7] = h;
-      const eight = a + b + (c + d) + (e + f + (g + h));
-      const moment = b + 2 * c + 3 * d + 4 * e + 5 * f + (6 * g + 7 * h);
-      const square = b + 4 * c + 9 * d + 16 * e + 25 * f + (36 * g + 49 * h);
-      sum += eight;
-      firstMoment += moment + k * eight;
-      secondMoment += square + k * (2 * moment + k * eight);
-      logSum += Math.log(a * b * (c * d) * (e * f * (g * h)));
+      const four = a + b + (c + d);
+      const moment = b + 2 * c + 3 * d;
+      sum += four;
+      firstMoment += moment + k * four;
+      secondMoment += b + 4 * c + 9 * d + k * (2 * moment + k * four);
+      product *= a * b * (c * d);
+      // Sixteen square roots of float32 stay inside the range of a double.
+      if (k % 16 === 12) {
+        logSum += Math.log(product);
+        product = 1;
+      }
     }
     const centroid = firstMoment / sum;
     const binHz = this.#binHz;
@@ -94,7 +83,7 @@ export class FrameFeatures {
     features[at + FEATURE.spreadHz] =
       Math.sqrt(Math.max(0, secondMoment / sum - centroid * centroid)) * binHz;
     features[at + FEATURE.flatness] = (Math.exp(logSum / bins) * bins) / sum;
-    features[at + FEATURE.rolloff99AmplitudeHz] = (rolloffBin(amplitude, sum) + 1) * binHz;
+    features[at + FEATURE.rolloff99AmplitudeHz] = (rolloffBin(power, sum) + 1) * binHz;
   }
 }
 
@@ -151,12 +140,12 @@ class Cepstrum {
   }
 }
 
-function rolloffBin(amplitude: Float32Array, sum: number): number {
+function rolloffBin(power: Float32Array, sum: number): number {
   const threshold = 0.99 * sum;
   let left = sum;
-  let bin = amplitude.length - 1;
+  let bin = power.length - 1;
   while (left > threshold && bin >= 0) {
-    left -= amplitude[bin]!;
+    left -= Math.sqrt(power[bin]!);
     bin--;
   }
   return bin;

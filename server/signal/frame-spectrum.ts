@@ -85,8 +85,7 @@ export class FrameSpectrum {
     const mean = sumOf(samples, from, to) / count;
     let evenSquares = 0;
     let oddSquares = 0;
-    let highest = 0;
-    let lowest = 0;
+    let peak = 0;
     for (let n = 0; n < count; n += 2) {
       const first = samples[from + n]!;
       // Past the end of an odd count, the mean stands in: it adds nothing.
@@ -97,15 +96,13 @@ export class FrameSpectrum {
       input[n + 1] = b * weights[n + 1]!;
       evenSquares += a * a;
       oddSquares += b * b;
-      if (first > highest) highest = first;
-      else if (first < lowest) lowest = first;
-      if (second > highest) highest = second;
-      else if (second < lowest) lowest = second;
+      if (Math.abs(first) > peak) peak = Math.abs(first);
+      if (Math.abs(second) > peak) peak = Math.abs(second);
     }
     if (count < this.size) input.fill(0, count);
     this.mean = mean;
     this.meanSquare = (evenSquares + oddSquares) / count;
-    this.peak = Math.max(highest, -lowest);
+    this.peak = peak;
     this.crossings = this.#countCrossings(count);
   }
 
@@ -116,21 +113,33 @@ export class FrameSpectrum {
   #countCrossings(count: number): number {
     const bits = this.#fft.inputBits;
     let crossings = 0;
-    for (let n = 1; n < count; n++) crossings += (bits[n]! ^ bits[n - 1]!) >>> 31;
-    return crossings;
+    let last = bits[0]!;
+    let n = 1;
+    for (; n + 1 < count; n += 2) {
+      const first = bits[n]!;
+      const second = bits[n + 1]!;
+      crossings += ((last ^ first) >>> 31) + ((first ^ second) >>> 31);
+      last = second;
+    }
+    return n < count ? crossings + ((last ^ bits[n]!) >>> 31) : crossings;
   }
 }
 
-/** Two sums run side by side: one addition would have to wait for the one before. */
+/** Four sums run side by side: one addition would have to wait for the one before. */
 export function sumOf(samples: Float32Array, from: number, to: number): number {
-  let even = 0;
-  let odd = 0;
+  let first = 0;
+  let second = 0;
+  let third = 0;
+  let fourth = 0;
   let i = from;
-  for (; i + 1 < to; i += 2) {
-    even += samples[i]!;
-    odd += samples[i + 1]!;
+  for (; i + 3 < to; i += 4) {
+    first += samples[i]!;
+    second += samples[i + 1]!;
+    third += samples[i + 2]!;
+    fourth += samples[i + 3]!;
   }
-  return i < to ? even + odd + samples[i]! : even + odd;
+  for (; i < to; i++) first += samples[i]!;
+  return first + second + (third + fourth);
 }
 
 /**
