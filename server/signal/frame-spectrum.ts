@@ -86,10 +86,9 @@ export class FrameSpectrum {
     let evenSquares = 0;
     let oddSquares = 0;
     let peak = 0;
-    for (let n = 0; n < count; n += 2) {
+    for (let n = 0; n + 1 < count; n += 2) {
       const first = samples[from + n]!;
-      // Past the end of an odd count, the mean stands in: it adds nothing.
-      const second = n + 1 < count ? samples[from + n + 1]! : mean;
+      const second = samples[from + n + 1]!;
       const a = first - mean;
       const b = second - mean;
       input[n] = a * weights[n]!;
@@ -98,6 +97,12 @@ export class FrameSpectrum {
       oddSquares += b * b;
       if (Math.abs(first) > peak) peak = Math.abs(first);
       if (Math.abs(second) > peak) peak = Math.abs(second);
+    }
+    if (count % 2 === 1) {
+      const last = samples[to - 1]!;
+      input[count - 1] = (last - mean) * weights[count - 1]!;
+      evenSquares += (last - mean) ** 2;
+      peak = Math.max(peak, Math.abs(last));
     }
     if (count < this.size) input.fill(0, count);
     this.mean = mean;
