@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 
 /** Samples under one hash. Segments that are measured apart begin at multiples of it. */
-export const PCM_CHUNK_SAMPLES = 1 << 16;
+export const PCM_CHUNK_SAMPLES = 1 << 20;
 const DIGEST_BYTES = 32;
 
 /** The hashes of the chunks of one stretch of a channel, one after the other; plain data. */
@@ -13,7 +13,7 @@ export interface PcmHashPart {
  * Hashes the samples of one channel as they sound, whatever file they are wrapped in.
  *
  * Definition `pcm-1`: the samples as float32 re full scale (integers of n bits over 2^(n-1)), little-endian; sha256 of each
- * 65,536 of them from the first sample on, the last chunk as long as it is; the hash of the channel is the sha256 of those
+ * 1,048,576 of them from the first sample on, the last chunk as long as it is; the hash of the channel is the sha256 of those
  * digests, each 32 bytes, in order. So 16 bits, the same 16 bits in 24 and the same in floats have one hash, and so has each
  * channel by itself. Beyond 24 bits nothing is told apart; 0 and -0 are.
  *

@@ -19,14 +19,14 @@ const LEARNING_RANK = 2;
 const LONG_LAG_DISCOUNT = 0.1;
 /** One resonance that rings has a pitch as well; a voice has a series of harmonics. */
 const LOOKED_AT_HARMONICS = 8;
-const LEAST_HARMONICS = 3;
+const LEAST_HARMONICS = 4;
 const LEAST_SALIENCE = 0.2;
-const LEVEL_STEPS_PER_DB = 10;
+const LEVEL_STEPS_PER_DB = 5;
 const PITCH_STEPS_PER_OCTAVE = 100;
 
 /** One byte of each kind per frame; plain data. */
 export interface SpeechFrames {
-  /** How far the lines from 300 to 3400 Hz stand out on average, in tenths of a decibel. */
+  /** How far the lines from 300 to 3400 Hz stand out on average, in fifths of a decibel. */
   levels: Uint8Array;
   /** 1 + hundredths of an octave over 70 Hz; 0 where no harmonic series stands out. */
   pitches: Uint8Array;

@@ -19,12 +19,12 @@ describe('the hash of samples', () => {
   const samples = whiteNoiseSignal(3 * PCM_CHUNK_SAMPLES + 777, 0.1, 1);
   const whole = hashOf(samples, 4096);
 
-  it('is the sha256 of the sha256 of each 65,536 samples', () => {
+  it('is the sha256 of the sha256 of each 1,048,576 samples', () => {
     const view = new DataView(new ArrayBuffer(4 * samples.length));
     for (const [n, sample] of samples.entries()) view.setFloat32(4 * n, sample, true);
     const outer = createHash('sha256');
-    for (let at = 0; at < samples.length; at += 65_536) {
-      const bytes = new Uint8Array(view.buffer, 4 * at, 4 * Math.min(65_536, samples.length - at));
+    for (let at = 0; at < samples.length; at += 1_048_576) {
+      const bytes = new Uint8Array(view.buffer, 4 * at, 4 * Math.min(1_048_576, samples.length - at));
       outer.update(createHash('sha256').update(bytes).digest());
     }
     expect(whole).toBe(outer.digest('hex'));
