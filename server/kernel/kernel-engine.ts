@@ -16,7 +16,8 @@ import { Kernel } from './kernel.ts';
  * lie in this memory (`samples`, `bytes`) are read where they are, others are copied in.
  *
  * A recording shorter than one frame is left to the other engine.
- * Cost per sample on one core of 2024: long frames with all features 6 ns, short frames 5 ns, cells and decoding under 1 ns.
+ * Cost per sample on one core of 2024: long frames with all features 5 ns, short frames 3 ns, their codes 1 ns, cells and decoding
+ * under 1 ns.
  * @throws Error where the kernel has not been built.
  */
 export function kernelEngine(): FrameEngine {

@@ -1,5 +1,6 @@
 import type { SampleWindow } from '../signal/frame-cursor.ts';
 import {
+  checkRows,
   FEATURE,
   type BinRange,
   type LongFrameRows,
@@ -62,12 +63,14 @@ abstract class KernelRows {
     }
   }
 
-  encode({ firstRow, endRow }: RowRange, { first, end }: BinRange, group: number): Uint8Array {
-    const rows = endRow - firstRow;
-    const from = firstRow * this.powerStride + first - this.firstBin;
+  encode(rows: RowRange, range: BinRange, group: number): Uint8Array {
+    checkRows(this, rows, range, this.#settings.capacity);
+    const count = rows.endRow - rows.firstRow;
+    const bins = range.end - range.first;
+    const from = rows.firstRow * this.powerStride + range.first - this.firstBin;
     const power = this.powers.address + from * FLOAT_BYTES;
-    this.kernel.call.codes(power, this.powerStride, rows, end - first, group, this.#codes.address);
-    return this.#codes.values.subarray(0, Math.ceil(rows / group) * (end - first));
+    this.kernel.call.codes(power, this.powerStride, count, bins, group, this.#codes.address);
+    return this.#codes.values.subarray(0, Math.ceil(count / group) * bins);
   }
 
   protected abstract analyseRun(samples: number, count: number, row: number): void;

@@ -76,6 +76,21 @@ export interface BinRange {
   end: number;
 }
 
+/** @throws RangeError for rows or bins that are not there. */
+export function checkRows(
+  { firstBin, bins }: Pick<PowerRows, 'firstBin' | 'bins'>,
+  { firstRow, endRow }: RowRange,
+  { first, end }: BinRange,
+  capacity: number,
+): void {
+  if (firstRow < 0 || endRow < firstRow || endRow > capacity) {
+    throw new RangeError(`rows: ${firstRow} to ${endRow} are not within ${capacity}`);
+  }
+  if (first < firstBin || end < first || end > firstBin + bins) {
+    throw new RangeError(`bins: ${first} to ${end} are not within ${firstBin} to ${firstBin + bins}`);
+  }
+}
+
 export interface LongFrameRows extends PowerRows {
   /** Columns by `FEATURE`; a silent frame has NaN in all but the first four. */
   readonly features: Float32Array;

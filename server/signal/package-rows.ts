@@ -1,5 +1,6 @@
 import type { SampleWindow } from './frame-cursor.ts';
 import {
+  checkRows,
   FEATURE,
   type BinRange,
   type LongFrameRows,
@@ -29,7 +30,9 @@ abstract class PackageRows {
   protected readonly spectrum: FrameSpectrum;
   readonly #settings: RowSettings;
   readonly #codes: Uint8Array;
+  readonly #powerBits: Int32Array;
   readonly #greatest: Float32Array;
+  readonly #greatestBits: Int32Array;
 
   constructor(settings: RowSettings) {
     const { grid, firstBin, endBin, capacity } = settings;
@@ -40,7 +43,9 @@ abstract class PackageRows {
     this.power = new Float32Array(capacity * this.bins);
     this.spectrum = new FrameSpectrum(grid.size);
     this.#codes = new Uint8Array(capacity * this.bins);
+    this.#powerBits = new Int32Array(this.power.buffer);
     this.#greatest = new Float32Array(this.bins);
+    this.#greatestBits = new Int32Array(this.#greatest.buffer);
   }
 
   analyse({ samples, startSample }: SampleWindow, first: number, end: number): void {
@@ -58,27 +63,37 @@ abstract class PackageRows {
     }
   }
 
-  encode({ firstRow, endRow }: RowRange, { first, end }: BinRange, group: number): Uint8Array {
+  encode(rows: RowRange, range: BinRange, group: number): Uint8Array {
+    checkRows(this, rows, range, this.#settings.capacity);
+    const { firstRow, endRow } = rows;
+    const { first, end } = range;
     const bins = end - first;
-    const greatest = this.#greatest;
+    const greatest = this.#greatestBits;
     let at = 0;
     for (let row = firstRow; row < endRow; row += group, at += bins) {
       const offset = row * this.powerStride + first - this.firstBin;
-      greatest.set(this.power.subarray(offset, offset + bins));
+      greatest.set(this.#powerBits.subarray(offset, offset + bins));
       for (let more = 1; more < Math.min(group, endRow - row); more++) {
-        raise(greatest, this.power, offset + more * this.powerStride, bins);
+        this.#raise(offset + more * this.powerStride, bins);
       }
-      encodeColumn(greatest, 0, bins, this.#codes, at);
+      encodeColumn(this.#greatest, 0, bins, this.#codes, at);
     }
     return this.#codes.subarray(0, at);
   }
 
+  /** Positive float32 compare as their bits do, which needs no branch. */
+  #raise(from: number, bins: number): void {
+    const greatest = this.#greatestBits;
+    const power = this.#powerBits;
+    for (let b = 0; b < bins; b++) {
+      const old = greatest[b]!;
+      const less = old - power[from + b]!;
+      greatest[b] = old - (less & (less >> 31));
+    }
+  }
+
   /** Renews `spectrum`. */
   protected abstract analyseFrame(samples: Float32Array, from: number, to: number, row: number): void;
-}
-
-function raise(greatest: Float32Array, power: Float32Array, from: number, bins: number): void {
-  for (let b = 0; b < bins; b++) greatest[b] = Math.max(greatest[b]!, power[from + b]!);
 }
 
 class PackageLongFrames extends PackageRows implements LongFrameRows {

@@ -58,4 +58,19 @@ describe('codes of powers', () => {
     expect(grouped).toEqual(greatest);
     expect(Math.max(...grouped)).toBeGreaterThan(100);
   });
+
+  it('of rows or bins that are not there are refused', () => {
+    for (const engine of [kernelEngine(), packageEngine()]) {
+      const { rows, count } = analyseLong(engine, {
+        samples: whiteNoiseSignal(2048, 0.1, 2),
+        sampleRateHz: 48_000,
+        size: 512,
+      });
+      const bins = { first: 0, end: 256 };
+      expect(() => rows.encode({ firstRow: 0, endRow: count + 1 }, bins, 4)).toThrow(RangeError);
+      expect(() => rows.encode({ firstRow: 0, endRow: count }, { first: 0, end: 257 }, 4)).toThrow(
+        RangeError,
+      );
+    }
+  });
 });
