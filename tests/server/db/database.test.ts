@@ -1,4 +1,4 @@
-import { mkdirSync, mkdtempSync, readdirSync, rmSync, writeFileSync } from 'node:fs';
+import { mkdirSync, mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { sql } from 'drizzle-orm';
@@ -122,6 +122,31 @@ CREATE TABLE \`children\` (\`id\` text PRIMARY KEY NOT NULL, \`parent_id\` text 
     const before = db.all(sql`select name, sql from sqlite_master order by name`);
     migrateDatabase(db, migrationsFolder);
     expect(db.all(sql`select name, sql from sqlite_master order by name`)).toEqual(before);
+  });
+
+  test('candidates from before get the columns that lists are ordered by out of their parameters', () => {
+    const db = open(':memory:');
+    const run = (tag: string) => {
+      const text = readFileSync(path.join(migrationsFolder, `${tag}.sql`), 'utf8');
+      db.$client.exec(text.replaceAll('--> statement-breakpoint', ''));
+    };
+    db.$client.pragma('foreign_keys = OFF');
+    run('0000_first');
+    const facts = {
+      snrDb: 12.25,
+      peakFrequencyHz: null,
+      durationUs: 300,
+      energyFs2S: 1e-9,
+      ultrasonicShare: 0.5,
+    };
+    db.run(sql`insert into candidates
+      (id, detector_run_id, ordinal, channel, onset_sample, end_sample, peak_db, hearing_class, parameters)
+      values ('c', 'r', 0, 0, 10, 20, -3, 'above', ${JSON.stringify(facts)})`);
+    run('0003_candidate-facts');
+    const [row] = db.all(sql`
+      select snr_db as snrDb, peak_frequency_hz as peakFrequencyHz, duration_us as durationUs,
+        energy_fs2_s as energyFs2S, ultrasonic_share as ultrasonicShare from candidates`);
+    expect(row).toEqual(facts);
   });
 
   test('the audit log takes rows and never lets one be changed or removed', () => {
