@@ -2,7 +2,7 @@ import { z } from 'zod';
 
 /** What the server says about the bytes: read from the header, before anything is computed. */
 export const audioFormatSchema = z.object({
-  container: z.enum(['RIFF', 'RF64', 'BW64']),
+  container: z.enum(['RIFF', 'RF64', 'BW64', 'FLAC', 'raw', 'CSV', 'capture-set']),
   encoding: z.enum(['integer', 'float']),
   bitsPerSample: z.number().int(),
   channels: z.number().int().min(1).max(64),
@@ -53,10 +53,15 @@ export const qualityFindingSchema = z.object({
     'dropout',
     'mains',
     'channels-equal',
+    'channels-alike',
     'channel-silent',
     'non-finite',
     'truncated',
     'header',
+    'effective-bits',
+    'band-limited',
+    'lossy-or-converted',
+    'speech',
   ]),
   weight: z.enum(['note', 'caution', 'serious']),
   sentence: z.string(),
@@ -123,15 +128,34 @@ export const measurementSummarySchema = z.object({
 export type MeasurementSummary = z.infer<typeof measurementSummarySchema>;
 
 /**
- * Power density of quiet and of active frames on one axis, dB re full scale squared per hertz: the integral over frequency is
- * the mean square, which is 0.5 for a full-scale sine.
+ * A third octave (IEC 61260-1, exact mid-band frequency) over time, levels by AES17: what nine frames of ten exceed, the median,
+ * the mean power and the highest frame. `null` where it carries nothing.
+ */
+export const bandLevelSchema = z.object({
+  lowHz: z.number(),
+  middleHz: z.number(),
+  highHz: z.number(),
+  floorDb: z.number().nullable(),
+  medianDb: z.number().nullable(),
+  meanDb: z.number().nullable(),
+  maximumDb: z.number().nullable(),
+});
+export type BandLevel = z.infer<typeof bandLevelSchema>;
+
+/**
+ * Power densities on one axis, dB re full scale squared per hertz: the integral over frequency is the mean square, which is 0.5
+ * for a full-scale sine. Quiet and active are means over the frames with least and most energy; median, mean and maximum are over
+ * all frames. Bands come in the order of their frequencies, as far as the frames resolve them.
  */
 export const spectrumSchema = z.object({
   channel: z.number().int().min(0),
   frequenciesHz: z.array(z.number()),
   quietDbPerHz: z.array(z.number()),
   activeDbPerHz: z.array(z.number()).nullable(),
+  medianDbPerHz: z.array(z.number()),
+  meanDbPerHz: z.array(z.number()),
   maximumDbPerHz: z.array(z.number()),
+  bands: z.array(bandLevelSchema),
 });
 export type Spectrum = z.infer<typeof spectrumSchema>;
 
