@@ -1,4 +1,4 @@
-import { ensureBuilds, ensureServer } from './builds.mjs';
+import { ensureBuilds, ensureServerBuild } from './builds.mjs';
 import { ensureDependencies } from './dependencies.mjs';
 import { checkNodeVersion } from './node-version.mjs';
 
@@ -13,5 +13,5 @@ export async function prepare() {
 export async function prepareServer() {
   checkNodeVersion();
   await ensureDependencies();
-  await ensureServer();
+  await ensureServerBuild();
 }
