@@ -10,6 +10,8 @@ export interface DataPaths {
   uploads: string;
   keys: string;
   archives: string;
+  /** WAV files made of recordings that came in as something else; whatever is missing is made anew. */
+  working: string;
 }
 
 export interface Config {
@@ -121,6 +123,7 @@ export function dataPaths(dataDir: string): DataPaths {
     uploads: inside('uploads'),
     keys: inside('keys'),
     archives: inside('archives'),
+    working: inside('working'),
   };
 }
 

@@ -8,6 +8,7 @@ import {
 } from './features/recordings/recording-views.service.ts';
 import { createRecordingsService, type RecordingsService } from './features/recordings/recordings.service.ts';
 import { createStoredAudioReader, type StoredAudioReader } from './features/recordings/stored-audio.ts';
+import { createWorkingCopies } from './features/recordings/working-copies.ts';
 import { createViewFolders } from './features/recordings/view-folders.ts';
 import { createRunsService, type RunsService } from './features/runs/runs.service.ts';
 import { createSensorsService, type SensorsService } from './features/sensors/sensors.service.ts';
@@ -24,6 +25,8 @@ import {
 } from './features/uploads/upload-sweep.service.ts';
 import { createUploadsService, type UploadsService } from './features/uploads/uploads.service.ts';
 import type { Ground } from './ground.ts';
+import { importInWorker, importWorkerModule } from './importing/import-in-worker.ts';
+import type { ImportOutcome, ImportTask } from './importing/import.worker.ts';
 import { createWorkerPool } from './jobs/worker-pool.ts';
 import type { MeasureResult } from './measuring/join-segments.ts';
 import { measureInWorkers, measureWorkerModule } from './measuring/measure-in-workers.ts';
@@ -54,7 +57,11 @@ export function createRecordingServices(ground: Ground, audit: AuditService): Re
   const sensors = createSensorsService({ ...ground, audit });
   const recordings = createRecordingsService({ ...ground, audit });
   const viewFolders = createViewFolders(config.paths.views);
-  const readStoredAudio = createStoredAudioReader(store);
+  const workingCopies = createWorkingCopies({
+    folder: config.paths.working,
+    importRecording: createImportRecording(ground),
+  });
+  const readStoredAudio = createStoredAudioReader(store, workingCopies);
   const recordingViews = createRecordingViewsService({ ...ground, recordings, viewFolders, readStoredAudio });
   const candidates = createCandidatesService({ ...ground, recordingViews });
   const listening = createListeningService({ recordingViews, readStoredAudio });
@@ -82,4 +89,12 @@ function createMeasureFile({
   });
   onStop(() => pool.close());
   return (input, controls) => measureInWorkers(pool, config.measureWorkers, input, controls);
+}
+
+function createImportRecording({
+  onStop,
+}: Ground): Parameters<typeof createWorkingCopies>[0]['importRecording'] {
+  const pool = createWorkerPool<ImportTask, ImportOutcome>({ module: importWorkerModule, workers: 1 });
+  onStop(() => pool.close());
+  return (input, controls) => importInWorker(pool, input, controls);
 }

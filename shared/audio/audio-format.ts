@@ -6,9 +6,12 @@ export type SampleLayout = {
   channels: number;
 };
 
+/** What the bytes are packed in, as they were brought in. */
+export type AudioContainer = 'RIFF' | 'RF64' | 'BW64' | 'FLAC' | 'raw' | 'CSV' | 'capture-set';
+
 /** The format of a recording as its header and its real size tell it. */
 export type AudioFormat = SampleLayout & {
-  container: 'RIFF' | 'RF64' | 'BW64';
+  container: AudioContainer;
   sampleRateHz: number;
   /** Whole frames that are really there. */
   frames: number;

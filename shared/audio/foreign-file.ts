@@ -7,7 +7,6 @@ type Mark = { at: number; bytes: string; name: string; kind: 'lossy' | 'audio' |
 const MARKS: Mark[] = [
   { at: 0, bytes: 'ID3', name: 'an MP3 file', kind: 'lossy' },
   { at: 0, bytes: 'OggS', name: 'an Ogg file (Vorbis or Opus)', kind: 'lossy' },
-  { at: 0, bytes: 'fLaC', name: 'a FLAC file', kind: 'audio' },
   { at: 0, bytes: 'FORM', name: 'an AIFF file', kind: 'audio' },
   { at: 0, bytes: 'caff', name: 'a Core Audio file', kind: 'audio' },
   { at: 0, bytes: '.snd', name: 'an AU file', kind: 'audio' },
@@ -46,10 +45,10 @@ const RIFF_FORMS: Record<string, string> = {
 
 const ADVICE = {
   lossy:
-    'Lossy compression has removed what lies above about 16 to 20 kHz, so it cannot be measured: bring in the WAV file from the recorder.',
-  audio: 'Only WAV files (RIFF, RF64, BW64) can be brought in: save it as WAV with the same rate and width.',
-  video: 'Only WAV files can be brought in: take the sound track out as uncompressed WAV.',
-  other: 'Only WAV files (RIFF, RF64, BW64) can be brought in.',
+    'Lossy compression has removed what lies above about 16 to 20 kHz, so it cannot be measured: bring in the file from the recorder.',
+  audio: 'Save it as WAV or FLAC with the same rate and width.',
+  video: 'Take the sound track out as uncompressed WAV.',
+  other: 'WAV and FLAC files can be brought in, and samples whose layout is declared.',
 };
 
 /** The refusal for a file whose first bytes are not those of a WAV file; names what it is where that can be seen. */
@@ -65,7 +64,20 @@ export function foreignFileRefusal(head: Uint8Array): RefusedFileError {
   const mark = MARKS.find((candidate) => hasMark(head, candidate));
   if (mark) return refusal(mark.name, mark.kind);
   if (isMpegFrame(head)) return refusal('an MP3 file', 'lossy');
-  return refusal(textKind(head) ?? 'no WAV file (its first bytes are not RIFF, RF64 or BW64)', 'other');
+  if (isText(head)) return textRefusal(head);
+  return new RefusedFileError(
+    'unknown',
+    'The first bytes of this file do not say what it is; it is neither WAV nor FLAC. Raw samples can be brought in once it is declared how they lie.',
+  );
+}
+
+function textRefusal(head: Uint8Array): RefusedFileError {
+  const start = asciiText(head, 0, head.length).trimStart().toLowerCase();
+  if (/^(\?*)(<!doctype html|<html)/.test(start)) return refusal('a web page (HTML)', 'other');
+  return new RefusedFileError(
+    'text',
+    'This is a text file. A table of numbers can be brought in once it is declared what its columns hold.',
+  );
 }
 
 function refusal(name: string, kind: Mark['kind']): RefusedFileError {
@@ -80,16 +92,20 @@ function hasMark(head: Uint8Array, mark: Mark): boolean {
   return true;
 }
 
-/** ISO 11172-3, 2.4.1.3: eleven set bits, then a version and a layer that are not the reserved ones. */
+/** ISO 11172-3, 2.4.1.3: eleven set bits, then version, layer, bit rate and rate that are not the reserved ones. */
 function isMpegFrame(head: Uint8Array): boolean {
   const second = head[1] ?? 0;
-  return head[0] === 0xff && (second & 0xe0) === 0xe0 && (second & 0x18) !== 0x08 && (second & 0x06) !== 0;
+  const third = head[2] ?? 0;
+  const isSync = head[0] === 0xff && (second & 0xe0) === 0xe0;
+  return (
+    isSync && (second & 0x18) !== 0x08 && (second & 0x06) !== 0 && third >> 4 !== 15 && (third & 12) !== 12
+  );
 }
 
-function textKind(head: Uint8Array): string | undefined {
-  if (head.length < 4 || !head.every(isTextByte)) return undefined;
-  const start = asciiText(head, 0, head.length).trimStart().toLowerCase();
-  return /^(\?*)(<!doctype html|<html)/.test(start) ? 'a web page (HTML)' : 'a text file';
+/** No control characters, and few letters past ASCII: samples can look like text of another script. */
+function isText(head: Uint8Array): boolean {
+  if (head.length < 4 || !head.every(isTextByte)) return false;
+  return head.filter((byte) => byte >= 0x80).length <= head.length / 8;
 }
 
 function isTextByte(byte: number): boolean {

@@ -30,17 +30,20 @@ const BEXT_RULES: Record<string, Rule> = {
   Description: { kind: 'free-text', what: 'a description' },
 };
 
-/** iXML and guan: the first pattern that fits the key decides. */
+/** iXML, guan and the comments of FLAC: the first pattern that fits the key decides. */
 const KEY_RULES: [pattern: RegExp, rule: Rule][] = [
   [
     /GPS|LATITUDE|LONGITUDE|ALTITUDE|LOCATION|^LOC |ADDRESS|COUNTRY|CITY/i,
     { kind: 'place', what: 'a place' },
   ],
   [
-    /ORIGINATOR|USER|OPERATOR|MIXER|AUTHOR|OWNER|PERSON|SURVEYOR|OBSERVER/i,
+    /ORIGINATOR|USER|OPERATOR|MIXER|AUTHOR|OWNER|PERSON|SURVEYOR|OBSERVER|ARTIST|PERFORMER|COMPOSER|ENGINEER|CONTACT|ORGANI[SZ]ATION|COPYRIGHT|ENCODED.?BY/i,
     { kind: 'person', what: 'a person' },
   ],
-  [/NOTE|DESCRIPTION|COMMENT|PROJECT|SCENE|TRACK\/NAME/i, { kind: 'free-text', what: 'a free text' }],
+  [
+    /NOTE|DESCRIPTION|COMMENT|PROJECT|SCENE|TITLE|ALBUM|TRACK\/NAME/i,
+    { kind: 'free-text', what: 'a free text' },
+  ],
 ];
 
 /** Texts of cues that only count or name the kind of mark. */
@@ -66,6 +69,9 @@ const UNREAD_RULES: Record<string, string> = {
   afsp: 'a text that often names the account and the program',
   wamd: 'notes of a field recorder, often with the place',
   exif: 'notes of a camera, often with the place',
+  PICTURE: 'a picture that can show people or a place',
+  APPLICATION: 'notes of a program',
+  header: 'of which nobody here knows what it says',
 };
 
 /**
@@ -88,14 +94,20 @@ function ruleFor(field: MetadataField): Rule | undefined {
 function unreadRule({ chunk }: MetadataField): Rule | undefined {
   const known = UNREAD_RULES[chunk];
   if (known) return { kind: 'unread', what: known };
-  const isCutText = chunk === 'bext' || chunk === 'iXML' || chunk === 'guan' || chunk.startsWith('LIST');
+  const isCutText =
+    chunk === 'bext' ||
+    chunk === 'iXML' ||
+    chunk === 'guan' ||
+    chunk === 'Vorbis' ||
+    chunk.startsWith('LIST');
   return isCutText ? { kind: 'unread', what: 'a text too long to be read whole' } : undefined;
 }
 
 function fieldRule({ chunk, key, value }: MetadataField): Rule | undefined {
   if (chunk === 'INFO') return INFO_RULES[key];
   if (chunk === 'bext') return BEXT_RULES[key];
-  if (chunk === 'iXML' || chunk === 'guan') return KEY_RULES.find(([pattern]) => pattern.test(key))?.[1];
+  if (chunk === 'iXML' || chunk === 'guan' || chunk === 'Vorbis')
+    return KEY_RULES.find(([pattern]) => pattern.test(key))?.[1];
   const isCueText = chunk === 'adtl' && !PLAIN_MARK.test(value);
   return isCueText ? { kind: 'free-text', what: 'the text of a mark' } : undefined;
 }

@@ -12,7 +12,12 @@ export type FileRefusal =
   | 'block-align'
   | 'no-data'
   | 'no-frames'
-  | 'too-many-chunks';
+  | 'too-many-chunks'
+  | 'damaged'
+  | 'layout'
+  /** Could be brought in with a declared layout: a table of numbers, or raw samples. */
+  | 'text'
+  | 'unknown';
 
 /** A file that cannot be brought in; `message` is a whole sentence for the person who chose it. */
 export class RefusedFileError extends Error {

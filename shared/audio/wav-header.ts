@@ -73,7 +73,8 @@ function requireAudio(chunks: WalkedChunks): { format: FormatChunk; data: DataEx
       `The file has no format chunk, so nothing says how its samples lie.${breakOff}`,
     );
   }
-  if (!data) throw new RefusedFileError('no-data', `The file has a WAV header but no audio in it.${breakOff}`);
+  if (!data)
+    throw new RefusedFileError('no-data', `The file has a WAV header but no audio in it.${breakOff}`);
   return { format, data };
 }
 

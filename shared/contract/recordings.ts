@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { idSchema, instantSchema, revisionSchema, sha256Schema } from './ids.ts';
+import { storedLayoutSchema } from './layouts.ts';
 import { licenceSchema } from './licence.ts';
 import { audioFormatSchema, burstParametersSchema, measurementSummarySchema } from './measurement.ts';
 import { pageSchema, pageQuerySchema } from './page.ts';
@@ -80,6 +81,8 @@ export const recordingSchema = recordingListItemSchema.extend({
   timeExpansion: z.number(),
   uploadedByName: z.string().nullable(),
   format: audioFormatSchema,
+  /** As it was declared, where the file itself does not say how its samples lie. */
+  layout: storedLayoutSchema.nullable(),
   /** `null` until measured; without ultrasonic counts and course where the person works blind. */
   measurement: measurementSummarySchema.nullable(),
   failure: z.string().nullable(),

@@ -1,6 +1,8 @@
 import { z } from 'zod';
+import { FILE_KINDS } from '../audio/file-kind.ts';
 import { eventOriginSchema } from './events.ts';
 import { sha256Schema } from './ids.ts';
+import { storedLayoutSchema } from './layouts.ts';
 import { licenceSchema } from './licence.ts';
 import { audioFormatSchema, burstParametersSchema, ultrasoundSchema } from './measurement.ts';
 import { creditSchema, runKindSchema, processSchema } from './runs.ts';
@@ -142,6 +144,8 @@ export const snapshotRecordingSchema = z
     labName: z.string().min(1),
     /** As the header says it. */
     format: audioFormatSchema.omit({ warnings: true }),
+    /** How the samples lie, where the file does not say it itself. */
+    layout: storedLayoutSchema.nullable().default(null),
     /** Samples per second of the sound itself: the header's rate times the declared time expansion. */
     sampleRateHz: z.number().positive(),
     timeExpansion: z.number().min(1),
@@ -151,9 +155,9 @@ export const snapshotRecordingSchema = z
     measured: snapshotMeasuredSchema,
     note: z.string(),
   })
-  .refine((recording) => recording.fileName === `${recording.id}.wav`, {
+  .refine(({ id, fileName, format }) => fileName === `${id}.${FILE_KINDS[format.container].extension}`, {
     path: ['fileName'],
-    message: 'must be the id with .wav',
+    message: 'must be the id with the ending of its format',
   });
 export type SnapshotRecording = z.infer<typeof snapshotRecordingSchema>;
 

@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { idSchema, instantSchema, sha256Schema } from './ids.ts';
+import { declaredLayoutSchema } from './layouts.ts';
 import { licenceSchema } from './licence.ts';
 import { recordingSchema, sensitivitySchema } from './recordings.ts';
 
@@ -16,6 +17,8 @@ export const declarationSchema = z.object({
   /** The factor by which the file plays slower than life; 1 where it does not. */
   timeExpansion: z.number().min(1).max(1000).default(1),
   note: z.string().trim().max(2000).default(''),
+  /** How the samples lie, for a file that does not say it itself. */
+  layout: declaredLayoutSchema.nullable().default(null),
 });
 export type Declaration = z.infer<typeof declarationSchema>;
 

@@ -42,13 +42,15 @@ export function toRecording(view: RecordingView, standing: Standing): Recording 
     runOffsetNs,
     timeExpansion,
     format,
+    layout,
     failure,
     revision,
   } = recording;
   const { blind, may, findings, eventCount, measurement } = standing;
   return {
     ...toListItem(view, blind),
-    ...{ setupId, sha256, licence, sensitivity, note, runOffsetNs, timeExpansion, format, failure, revision },
+    ...{ setupId, sha256, licence, sensitivity, note, runOffsetNs, timeExpansion, format, layout },
+    ...{ failure, revision },
     setupName: setup.name,
     fullScaleV: setup.fullScaleV,
     preampGainDb: setup.preampGainDb,

@@ -1,3 +1,5 @@
+import type { AudioContainer } from '../../../shared/audio/audio-format.ts';
+import { FILE_KINDS } from '../../../shared/audio/file-kind.ts';
 import { idParamsSchema } from '../../../shared/contract/ids.ts';
 import {
   candidatesPageSchema,
@@ -52,7 +54,8 @@ export function recordingsRoutes({ services, store }: Deps): Route[] {
       handler: ({ actor, params, res }) => {
         const { row } = recordings.requireVisible(actor, params.id);
         const kept = { etag: row.sha256, cacheControl: 'private, no-cache' };
-        const file = { path: store.pathOf(row.sha256), contentType: 'audio/wav', downloadName: row.fileName };
+        const contentType = contentTypeOf(row.format.container);
+        const file = { path: store.pathOf(row.sha256), contentType, downloadName: row.fileName };
         return sendFile(res, { ...file, ...kept });
       },
     }),
@@ -67,4 +70,10 @@ export function recordingsRoutes({ services, store }: Deps): Route[] {
       handler: ({ actor, params, query }) => candidates.list(actor, params.id, query),
     }),
   ];
+}
+
+/** Browsers know WAV by a name of its own. */
+function contentTypeOf(container: AudioContainer): string {
+  const { extension, mediaType } = FILE_KINDS[container];
+  return extension === 'wav' ? 'audio/wav' : mediaType;
 }

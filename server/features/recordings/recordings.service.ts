@@ -43,7 +43,7 @@ export type RecordingsService = ReturnType<typeof createRecordingsService>;
 export type NewRecording = Pick<
   RecordingRow,
   | ('id' | 'runId' | 'labId' | 'setupId' | 'uploadedById' | 'fileName' | 'sizeBytes' | 'sha256' | 'format')
-  | ('licence' | 'sensitivity' | 'note' | 'runOffsetNs' | 'timeExpansion')
+  | ('licence' | 'sensitivity' | 'note' | 'runOffsetNs' | 'timeExpansion' | 'layout')
 >;
 export type NewFinding = Pick<FindingRow, 'kind' | 'sentence' | 'place'>;
 

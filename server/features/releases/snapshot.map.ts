@@ -1,3 +1,4 @@
+import { FILE_KINDS } from '../../../shared/audio/file-kind.ts';
 import type {
   SnapshotEvent,
   SnapshotMark,
@@ -24,8 +25,9 @@ export function toSnapshotRecording(facts: MemberFacts, measured: Measured): Sna
   const { warnings: _warnings, ...format } = recording.format;
   return {
     ...{ id, runId, sha256, sizeBytes, licence, labName, timeExpansion, runOffsetNs, note },
-    fileName: `${id}.wav`,
+    fileName: `${id}.${FILE_KINDS[recording.format.container].extension}`,
     format: { ...format, sampleRateHz: Math.round(format.sampleRateHz / timeExpansion) },
+    layout: recording.layout,
     sampleRateHz: format.sampleRateHz,
     sensor: toSnapshotSensor(sensor),
     setup: toSnapshotSetup(setup),

@@ -22,8 +22,19 @@ function toValue(name: string, values: string[]): unknown {
       .map((part) => part.trim())
       .filter(Boolean);
   if (values.length > 1) return values;
+  if (name === 'layout') return toLayout(first);
   if (name === 'runOffsetNs' || name === 'timeExpansion') return toNumber(first);
   return first;
+}
+
+/** A layout has parts: it comes as JSON. What is none is told by the schema. */
+function toLayout(text: string): unknown {
+  if (text.trim() === '') return undefined;
+  try {
+    return JSON.parse(text);
+  } catch {
+    return text;
+  }
 }
 
 function toNumber(text: string): number | string | undefined {

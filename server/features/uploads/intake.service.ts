@@ -1,9 +1,9 @@
 import { link, rm } from 'node:fs/promises';
 import type { Declaration } from '../../../shared/contract/uploads.ts';
+import type { StoredLayout } from '../../../shared/contract/layouts.ts';
 import type { AudioFormat } from '../../../shared/contract/measurement.ts';
 import { personalMetadata } from '../../../shared/audio/personal-metadata.ts';
-import { readWavHeader, type WavHeader } from '../../../shared/audio/wav-header.ts';
-import { readWavMetadata } from '../../../shared/audio/wav-metadata.ts';
+import { readRecordingFile, type RecordingFile } from '../../../shared/audio/recording-file.ts';
 import { RefusedFileError } from '../../../shared/audio/refused-file-error.ts';
 import type { Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
@@ -22,7 +22,8 @@ type Parts = Pick<Ground, 'db' | 'ids' | 'store' | 'activity'> & {
 };
 
 /** Bytes that have arrived whole, and what was declared with them. */
-export interface Arrival extends Declaration {
+export interface Arrival extends Omit<Declaration, 'layout'> {
+  layout?: Declaration['layout'];
   path: string;
   fileName: string;
   sizeBytes: number;
@@ -44,8 +45,10 @@ export function createIntakeService({ db, ids, store, activity, recordings, sens
     arrival: Arrival,
     alongside: (tx: Tx, recordingId: string) => void,
   ): Promise<string> {
-    const header = await readHeader(arrival.path);
-    const format = toTrueFormat(header.format, arrival.timeExpansion);
+    const setup = sensors.requireSetupOfLab(db, arrival.setupId, arrival.run.labId);
+    const layout = toStoredLayout(arrival.layout ?? null, setup.fullScaleV);
+    const file = await readFile(arrival.path, layout);
+    const format = toTrueFormat(file.format, arrival.timeExpansion);
     const sha256 = await hashFile(arrival.path);
     requireAnnounced(arrival.sha256, sha256);
     await storeBytes(arrival.path, sha256);
@@ -65,10 +68,17 @@ export function createIntakeService({ db, ids, store, activity, recordings, sens
         sha256,
         format,
       };
-      const declared = { licence, sensitivity: [...new Set(sensitivity)], note, runOffsetNs, timeExpansion };
+      const declared = {
+        licence,
+        sensitivity: [...new Set(sensitivity)],
+        note,
+        runOffsetNs,
+        timeExpansion,
+        layout,
+      };
       recordings.add(tx, { ...facts, ...declared }, [
         ...declaredFindings(declared.sensitivity),
-        ...foundIn(header),
+        ...foundIn(file),
       ]);
       alongside(tx, id);
     });
@@ -96,9 +106,20 @@ export function createIntakeService({ db, ids, store, activity, recordings, sens
   return { bringIn };
 }
 
-async function readHeader(path: string): Promise<WavHeader> {
+/** Numbers in volts become parts of the full scale that the set-up has now. */
+function toStoredLayout(layout: Declaration['layout'], fullScaleV: number | null): StoredLayout | null {
+  if (layout?.kind !== 'CSV') return layout;
+  if (layout.unit === 'full-scale') return { ...layout, fullScaleV: null };
+  if (fullScaleV !== null) return { ...layout, fullScaleV };
+  throw new ProblemError(
+    'file-refused',
+    'The numbers are declared to be volts, but the set-up does not say how many volts full scale is. Add that to the set-up first.',
+  );
+}
+
+async function readFile(path: string, layout: StoredLayout | null): Promise<RecordingFile> {
   try {
-    return await withFileSource(path, readWavHeader);
+    return await withFileSource(path, (source) => readRecordingFile(source, layout));
   } catch (error) {
     if (error instanceof RefusedFileError)
       throw new ProblemError('file-refused', error.message, { cause: error });
@@ -143,8 +164,8 @@ function declaredFindings(sensitivity: Declaration['sensitivity']): NewFinding[]
 
 const mostFindings = 200;
 
-function foundIn(header: WavHeader): NewFinding[] {
-  const found = personalMetadata(readWavMetadata(header.metadata)).slice(0, mostFindings);
+function foundIn({ metadata }: RecordingFile): NewFinding[] {
+  const found = personalMetadata(metadata).slice(0, mostFindings);
   return found.map(({ chunk, key, sentence }) => ({
     kind: 'personal-metadata',
     sentence,

@@ -1,3 +1,4 @@
+import { FILE_KINDS } from '../../../shared/audio/file-kind.ts';
 import type { ReleaseSnapshot, SnapshotRecording } from '../../../shared/contract/release-snapshot.ts';
 import { licences, type LicenceId } from '../../../shared/domain/licence-mix.ts';
 import { compareBytes } from '../byte-order.ts';
@@ -108,11 +109,12 @@ function field(column: ColumnFacts) {
 }
 
 function audioResource(recording: SnapshotRecording) {
+  const { extension, mediaType } = FILE_KINDS[recording.format.container];
   return {
     name: `audio-${recording.id.toLowerCase()}`,
     path: audioPath(recording),
-    format: 'wav',
-    mediatype: 'audio/vnd.wave',
+    format: extension,
+    mediatype: mediaType,
     bytes: recording.sizeBytes,
     hash: `sha256:${recording.sha256}`,
     licenses: [licenceOf(recording.licence)],

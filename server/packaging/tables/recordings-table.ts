@@ -14,7 +14,7 @@ const identity: RecordingColumn[] = [
     type: 'string',
     required: true,
     unique: true,
-    pattern: 'audio/[A-Za-z0-9-]+\\.wav',
+    pattern: 'audio/[A-Za-z0-9-]+\\.(wav|flac|raw|csv|zip)',
     description: 'Path of the audio file, relative to the folder of this table.',
     value: audioPath,
   },
@@ -123,7 +123,8 @@ const format: RecordingColumn[] = [
     type: 'string',
     required: true,
     enum: audioFormatSchema.shape.container.options,
-    description: 'Form of the file: RIFF, or its 64-bit forms RF64 and BW64.',
+    description:
+      'Form of the file: RIFF, or its 64-bit forms RF64 and BW64; FLAC; raw, samples without a header; CSV; capture-set, a ZIP of triggered segments.',
     value: (row) => row.format.container,
   },
   {
@@ -142,6 +143,13 @@ const format: RecordingColumn[] = [
     maximum: 64,
     description: 'Bits of one sample of one channel.',
     value: (row) => row.format.bitsPerSample,
+  },
+  {
+    name: 'declared_layout',
+    type: 'string',
+    description:
+      'How the samples lie, as JSON, where the file does not say it itself: in raw files and CSV. Columns count from 0.',
+    value: (row) => (row.layout === null ? null : JSON.stringify(row.layout)),
   },
   {
     name: 'run_offset_ns',

@@ -3,10 +3,19 @@ import { formatBytes, formatCount, formatDuration, formatSampleRate } from '@/co
 
 type Samples = Pick<AudioFormat, 'container' | 'encoding' | 'bitsPerSample' | 'channels'>;
 
+const containerNames: Readonly<Record<AudioFormat['container'], string>> = {
+  RIFF: 'WAV',
+  RF64: 'WAV (RF64)',
+  BW64: 'WAV (BW64)',
+  FLAC: 'FLAC',
+  raw: 'Raw samples',
+  CSV: 'CSV',
+  'capture-set': 'Capture set',
+};
+
 /** WAV, 16-bit integer, 1 channel. */
 export function formatOfFile({ container, encoding, bitsPerSample, channels }: Samples): string {
-  const name = container === 'RIFF' ? 'WAV' : `WAV (${container})`;
-  return `${name}, ${bitsPerSample}-bit ${encoding}, ${formatCount(channels, 'channel')}`;
+  return `${containerNames[container]}, ${bitsPerSample}-bit ${encoding}, ${formatCount(channels, 'channel')}`;
 }
 
 /** Rate and length as they were in life: a file that plays ten times slower was recorded at ten times the rate. */

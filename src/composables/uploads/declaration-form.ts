@@ -5,9 +5,9 @@ import { declarationSchema } from '@shared/contract/uploads.ts';
 
 const nsPerSecond = 1e9;
 
-/** The declaration as a form holds it: the place on the clock of the run in seconds. */
+/** The declaration as a form holds it, for all files at once: the place on the clock of the run in seconds. */
 export const declarationFormSchema = declarationSchema
-  .omit({ runOffsetNs: true })
+  .omit({ runOffsetNs: true, layout: true })
   .extend({ runOffsetS: z.number().min(-1e6).max(1e6).nullable() })
   .transform(({ runOffsetS, ...declared }) => ({
     ...declared,

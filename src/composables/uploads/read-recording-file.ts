@@ -2,9 +2,10 @@ import type { AudioFormat } from '@shared/audio/audio-format.ts';
 import { blobSource } from '@shared/audio/byte-source.ts';
 import { personalMetadata } from '@shared/audio/personal-metadata.ts';
 import type { PersonalFinding } from '@shared/audio/personal-metadata.ts';
-import { readWavHeader } from '@shared/audio/wav-header.ts';
-import { readWavMetadata } from '@shared/audio/wav-metadata.ts';
+import { readRecordingFile as readFacts } from '@shared/audio/recording-file.ts';
 import { RefusedFileError } from '@shared/audio/refused-file-error.ts';
+import type { FileRefusal } from '@shared/audio/refused-file-error.ts';
+import type { DeclaredLayout } from '@shared/contract/layouts.ts';
 
 /** What a file's header tells before a byte of it is sent. */
 export interface FileReading {
@@ -13,15 +14,27 @@ export interface FileReading {
   findings: PersonalFinding[];
 }
 
-export type ReadOutcome = { reading: FileReading } | { refusal: string };
+/** `canDeclare`: what the file could be once it is declared how its samples lie. */
+export type ReadOutcome =
+  { reading: FileReading } | { refusal: string; canDeclare: DeclaredLayout['kind'] | null };
+
+const declarableKinds: Readonly<Partial<Record<FileRefusal, DeclaredLayout['kind']>>> = {
+  text: 'CSV',
+  unknown: 'raw',
+};
 
 /** Reads the header of a chosen file; a file that cannot be brought in gives the sentence that says why. */
-export async function readRecordingFile(file: Blob): Promise<ReadOutcome> {
+export async function readRecordingFile(
+  file: Blob,
+  layout: DeclaredLayout | null = null,
+): Promise<ReadOutcome> {
   try {
-    const { format, metadata } = await readWavHeader(blobSource(file));
-    return { reading: { format, findings: personalMetadata(readWavMetadata(metadata)) } };
+    const { format, metadata } = await readFacts(blobSource(file), layout);
+    return { reading: { format, findings: personalMetadata(metadata) } };
   } catch (error) {
-    if (error instanceof RefusedFileError) return { refusal: error.message };
-    return { refusal: 'The browser could not read this file. It may have been moved or changed.' };
+    if (error instanceof RefusedFileError)
+      return { refusal: error.message, canDeclare: declarableKinds[error.code] ?? null };
+    const refusal = 'The browser could not read this file. It may have been moved or changed.';
+    return { refusal, canDeclare: null };
   }
 }

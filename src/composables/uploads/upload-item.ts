@@ -1,3 +1,4 @@
+import type { DeclaredLayout } from '@shared/contract/layouts.ts';
 import type { Declaration } from '@shared/contract/uploads.ts';
 import type { FileReading } from '@/composables/uploads/read-recording-file.ts';
 
@@ -21,6 +22,9 @@ export type UploadStage =
   | 'cancelled'
   | 'missing';
 
+/** What is declared of all files that are sent together. */
+export type UploadTarget = Omit<Declaration, 'layout'> & { runId: string };
+
 export interface UploadItem {
   key: string;
   fileName: string;
@@ -28,7 +32,9 @@ export interface UploadItem {
   stage: UploadStage;
   reading: FileReading | null;
   /** Told once for all files that are sent together. */
-  target: (Declaration & { runId: string }) | null;
+  target: UploadTarget | null;
+  /** Of a file that does not say itself how its samples lie. */
+  layout: DeclaredLayout | null;
   runTitle: string;
   uploadId: string | null;
   sentBytes: number;
@@ -49,6 +55,7 @@ export function newUploadItem(key: string, facts: Pick<UploadItem, 'fileName' | 
     stage: 'reading',
     reading: null,
     target: null,
+    layout: null,
     runTitle: '',
     uploadId: null,
     sentBytes: 0,

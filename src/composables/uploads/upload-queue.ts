@@ -1,14 +1,14 @@
 import { reactive } from 'vue';
 import type { Activity } from '@shared/contract/activity.ts';
 import type { Recording } from '@shared/contract/recordings.ts';
-import type { CreateUpload, Declaration, Upload } from '@shared/contract/uploads.ts';
+import type { CreateUpload, Upload } from '@shared/contract/uploads.ts';
 import type { ByteTransfer, ByteTransferOptions } from '@/api/upload-bytes.ts';
 import type { Hashing } from '@/composables/uploads/hash-file.ts';
 import type { ReadOutcome } from '@/composables/uploads/read-recording-file.ts';
 import { createTransferRate } from '@/composables/uploads/transfer-rate.ts';
 import { failureOf, failureOfError } from '@/composables/uploads/upload-failure.ts';
 import { isSameFile, newUploadItem } from '@/composables/uploads/upload-item.ts';
-import type { UploadItem } from '@/composables/uploads/upload-item.ts';
+import type { UploadItem, UploadTarget } from '@/composables/uploads/upload-item.ts';
 
 /** What the queue needs of the browser and the server. */
 export interface UploadGateway {
@@ -84,7 +84,7 @@ export function createUploadQueue(gateway: UploadGateway) {
     }
   }
 
-  function send(target: Declaration & { runId: string }, runTitle: string): void {
+  function send(target: UploadTarget, runTitle: string): void {
     for (const item of items) {
       if (item.stage === 'ready') Object.assign(item, { stage: 'waiting', target, runTitle });
     }
@@ -114,9 +114,9 @@ export function createUploadQueue(gateway: UploadGateway) {
     work.transfer.start();
   }
 
-  async function announce({ fileName, sizeBytes, target }: UploadItem): Promise<string> {
+  async function announce({ fileName, sizeBytes, target, layout }: UploadItem): Promise<string> {
     if (!target) throw new Error('An upload needs its declaration.');
-    return gateway.create({ ...target, fileName, sizeBytes });
+    return gateway.create({ ...target, fileName, sizeBytes, layout });
   }
 
   function transferOf(item: UploadItem, work: Work, isResumed: boolean): ByteTransfer {

@@ -86,6 +86,7 @@ function recordingRow(index: number, wav: Buffer): SnapshotRecording {
       frames: 480,
       extensible: false,
     },
+    layout: null,
     sampleRateHz: 48_000,
     timeExpansion: 1,
     runOffsetNs: index === 0 ? null : 1_500_000_000,

@@ -93,6 +93,7 @@ export function recording(part: Partial<Recording> = {}): Recording {
     note: '',
     runOffsetNs: 0,
     timeExpansion: 1,
+    layout: null,
     uploadedByName: 'Tomasz Brandvold',
     format,
     measurement: measurement(),

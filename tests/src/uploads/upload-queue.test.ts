@@ -35,7 +35,7 @@ function makeGateway() {
     read: (file) =>
       Promise.resolve(
         file.name.endsWith('.mp3')
-          ? { refusal: 'This is an MP3 file.' }
+          ? { refusal: 'This is an MP3 file.', canDeclare: null }
           : { reading: { format, findings: [] } },
       ),
     hash: () => ({ sha256: Promise.resolve('a'.repeat(64)), stop: () => undefined }),

@@ -24,6 +24,9 @@ const signal = /^server\/signal\//;
 const kernel = /^server\/kernel\//;
 const measuring = /^server\/measuring\//;
 const packaging = /^server\/packaging\//;
+const importing = /^server\/importing\//;
+/** A file as bytes by place, which knows nothing of what is stored either. */
+const fileSource = /^server\/store\/file-source\.ts$/;
 const authorize = /^server\/authorize\//;
 const http = /^server\/http\//;
 /** The parts of the interface that are no part of Express: the error that names a code, revisions, cursors of lists. */
@@ -63,6 +66,7 @@ export const layers: Layer[] = [
   { files: kernel, may: [shared, signal] },
   { files: measuring, may: [shared, signal, kernel] },
   { files: packaging, may: [shared, durableFile] },
+  { files: importing, may: [shared, fileSource] },
   { files: db, may: [shared] },
   { files: store, may: [shared] },
   { files: services, may: [shared, db, store, config, log] },
@@ -79,9 +83,12 @@ export const layers: Layer[] = [
   },
   {
     files: /^server\/features\/[^/]+\/[^/.]+\.ts$/,
-    may: [...foundations, ground, http, signal, measuring, packaging, deps],
+    may: [...foundations, ground, http, signal, measuring, packaging, importing, deps],
   },
-  { files: /^server\/features\//, may: [...foundations, ground, signal, measuring, packaging, deps] },
+  {
+    files: /^server\/features\//,
+    may: [...foundations, ground, signal, measuring, packaging, importing, deps],
+  },
   { files: composition, may: [/^server\//, shared] },
 
   { files: api, may: [shared] },

@@ -1,0 +1,75 @@
+import { rm } from 'node:fs/promises';
+import type { AudioFormat } from '../../shared/audio/audio-format.ts';
+import type { RawLayout, StoredLayout } from '../../shared/audio/declared-layout.ts';
+import { readFlacHeader } from '../../shared/audio/flac-header.ts';
+import { rawFileFacts } from '../../shared/audio/raw-file.ts';
+import { withFileSource } from '../store/file-source.ts';
+import { importFlac } from './import-flac.ts';
+import type { ImportControls } from './import-controls.ts';
+import { importRaw } from './import-raw.ts';
+import { WavFileWriter } from './wav-file-writer.ts';
+
+export interface ImportInput {
+  filePath: string;
+  /** Gets the WAV file; must not be there yet. */
+  targetPath: string;
+  layout: StoredLayout | null;
+}
+
+/** What the file really held. */
+export interface Imported {
+  format: AudioFormat;
+}
+
+/**
+ * Makes a WAV file of a recording that came in as something else, without changing a sample. On failure nothing is left at
+ * `targetPath`.
+ *
+ * @throws RefusedFileError where the file cannot be read after all
+ */
+export async function importRecording(input: ImportInput, controls: ImportControls = {}): Promise<Imported> {
+  try {
+    if (input.layout?.kind === 'raw') return await importRawFile(input, input.layout, controls);
+    return await importFlacFile(input, controls);
+  } catch (error) {
+    await rm(input.targetPath, { force: true });
+    throw error;
+  }
+}
+
+async function importFlacFile(input: ImportInput, controls: ImportControls): Promise<Imported> {
+  const header = await withFileSource(input.filePath, readFlacHeader);
+  const { format } = header;
+  return writing(input.targetPath, format, async (writer) => {
+    const warnings = await importFlac(input.filePath, header, writer, controls);
+    return { format: { ...format, frames: writer.frames, warnings: [...format.warnings, ...warnings] } };
+  });
+}
+
+async function importRawFile(
+  input: ImportInput,
+  layout: RawLayout,
+  controls: ImportControls,
+): Promise<Imported> {
+  const sizeBytes = await withFileSource(input.filePath, (source) => Promise.resolve(source.sizeBytes));
+  const { format } = rawFileFacts(sizeBytes, layout);
+  return writing(input.targetPath, format, async (writer) => {
+    await importRaw(input.filePath, layout, format, writer, controls);
+    return { format };
+  });
+}
+
+async function writing(
+  targetPath: string,
+  format: AudioFormat,
+  write: (writer: WavFileWriter) => Promise<Imported>,
+): Promise<Imported> {
+  const writer = new WavFileWriter(targetPath, format);
+  try {
+    const imported = await write(writer);
+    writer.finish();
+    return imported;
+  } finally {
+    writer.close();
+  }
+}

@@ -1,0 +1,43 @@
+import type { AudioFormat } from './audio-format.ts';
+import type { ByteSource } from './byte-source.ts';
+import type { DeclaredLayout, RawLayout } from './declared-layout.ts';
+import { isFlac, readFlacHeader } from './flac-header.ts';
+import type { MetadataField } from './metadata-field.ts';
+import { rawFileFacts } from './raw-file.ts';
+import { RefusedFileError } from './refused-file-error.ts';
+import { readWavHeader } from './wav-header.ts';
+import { readWavMetadata } from './wav-metadata.ts';
+
+/** What can be told of a file that is brought in before its samples are looked at. */
+export type RecordingFile = { format: AudioFormat; metadata: MetadataField[] };
+
+/**
+ * Reads what a file says of itself, or what was declared of one that says nothing. Its name has no say. Throws RefusedFileError,
+ * whose message is a sentence for the person who chose the file.
+ */
+export async function readRecordingFile(
+  source: ByteSource,
+  layout: DeclaredLayout | null = null,
+): Promise<RecordingFile> {
+  if (layout?.kind === 'raw') return readRawFile(source, layout);
+  return readSelfTelling(source);
+}
+
+async function readSelfTelling(source: ByteSource): Promise<RecordingFile> {
+  if (isFlac(await source.read(0, 4))) {
+    const { format, metadata } = await readFlacHeader(source);
+    return { format, metadata };
+  }
+  const { format, metadata } = await readWavHeader(source);
+  return { format, metadata: readWavMetadata(metadata) };
+}
+
+async function readRawFile(source: ByteSource, layout: RawLayout): Promise<RecordingFile> {
+  const told = await readSelfTelling(source).catch(() => undefined);
+  if (told === undefined) return rawFileFacts(source.sizeBytes, layout);
+  const name = told.format.container === 'FLAC' ? 'FLAC' : 'WAV';
+  throw new RefusedFileError(
+    'layout',
+    `This is a ${name} file, which says itself how its samples lie. Bring it in without a declared layout.`,
+  );
+}
