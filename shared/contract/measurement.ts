@@ -145,7 +145,7 @@ export type BandLevel = z.infer<typeof bandLevelSchema>;
 /**
  * Power densities on one axis, dB re full scale squared per hertz: the integral over frequency is the mean square, which is 0.5
  * for a full-scale sine. Quiet and active are means over the frames with least and most energy; median, mean and maximum are over
- * all frames. Bands come in the order of their frequencies, as far as the frames resolve them.
+ * all frames.
  */
 export const spectrumSchema = z.object({
   channel: z.number().int().min(0),
@@ -155,7 +155,6 @@ export const spectrumSchema = z.object({
   medianDbPerHz: z.array(z.number()),
   meanDbPerHz: z.array(z.number()),
   maximumDbPerHz: z.array(z.number()),
-  bands: z.array(bandLevelSchema),
 });
 export type Spectrum = z.infer<typeof spectrumSchema>;
 

@@ -10,6 +10,8 @@ const spectrum = {
   frequenciesHz: [0, 100, 1000, 20_000, 100_000],
   quietDbPerHz: [-60, -70, -80, -90, -300],
   activeDbPerHz: [-60, -70, -79, -60, -250],
+  medianDbPerHz: [-82, -88, -98, -96, -112],
+  meanDbPerHz: [-75, -80, -90, -70, -108],
   maximumDbPerHz: [-50, -60, -70, -50, -100],
 };
 
