@@ -1,6 +1,8 @@
 import { open, type FileHandle } from 'node:fs/promises';
 import { bytesPerFrame, type SampleLayout } from '../../shared/audio/audio-format.ts';
-import { decodeFrames, zeroNonFinite } from '../../shared/audio/pcm-decode.ts';
+import { zeroNonFinite } from '../../shared/audio/pcm-decode.ts';
+import type { EngineArray, FrameDecoder, FrameEngine } from '../signal/frame-engine.ts';
+import { packageEngine } from '../signal/package-engine.ts';
 import { decodeWithWavDecoder, SMALL_RECORDING_BYTES } from './small-recording.ts';
 
 /** What a reader has to know of a header. */
@@ -20,21 +22,26 @@ export class BlockReader {
   readonly frames: number;
   readonly #place: AudioPlace;
   readonly #file: FileHandle;
-  readonly #piece: Uint8Array;
+  readonly #piece: EngineArray<Uint8Array>;
+  readonly #pieceBytes: number;
+  readonly #decode: FrameDecoder;
   readonly #frameBytes: number;
   #small: Promise<Float32Array[]> | undefined;
 
-  static async open(filePath: string, place: AudioPlace): Promise<BlockReader> {
-    return new BlockReader(await open(filePath, 'r'), place);
+  /** @param engine that decodes; where its samples are read into its own memory, they are not copied. */
+  static async open(filePath: string, place: AudioPlace, engine = packageEngine()): Promise<BlockReader> {
+    return new BlockReader(await open(filePath, 'r'), place, engine);
   }
 
-  private constructor(file: FileHandle, place: AudioPlace) {
+  private constructor(file: FileHandle, place: AudioPlace, engine: FrameEngine) {
     this.#file = file;
     this.#place = place;
     this.frames = place.format.frames;
     this.#frameBytes = bytesPerFrame(place.format);
     const wantedBytes = Math.min(PIECE_BYTES, Math.max(1, this.frames) * this.#frameBytes);
-    this.#piece = new Uint8Array(Math.floor(wantedBytes / this.#frameBytes) * this.#frameBytes);
+    this.#pieceBytes = Math.floor(wantedBytes / this.#frameBytes) * this.#frameBytes;
+    this.#piece = engine.bytes(this.#pieceBytes);
+    this.#decode = engine.decoder(place.format, this.#pieceBytes);
   }
 
   /**
@@ -51,12 +58,12 @@ export class BlockReader {
       return this.#readSmall(startSample, count, out, at);
     }
     const nonFinite = new Array<number>(this.#place.format.channels).fill(0);
-    const framesPerPiece = this.#piece.length / this.#frameBytes;
+    const framesPerPiece = this.#pieceBytes / this.#frameBytes;
     for (let done = 0; done < count; done += framesPerPiece) {
       const frames = Math.min(framesPerPiece, count - done);
       const bytes = await this.#readBytes(startSample + done, frames);
       const targets = out.map((samples) => samples.subarray(at + done, at + done + frames));
-      const decoded = decodeFrames(bytes, this.#place.format, targets);
+      const decoded = this.#decode(bytes, targets);
       for (const [channel, found] of decoded.nonFiniteSamples.entries()) nonFinite[channel]! += found;
     }
     return nonFinite;
@@ -65,7 +72,7 @@ export class BlockReader {
   /** The samples of one channel, `count` from `startSample`. */
   async readChannel(channel: number, startSample: number, count: number): Promise<Float32Array> {
     const samples = new Float32Array(count);
-    const framesPerPiece = this.#piece.length / this.#frameBytes;
+    const framesPerPiece = this.#pieceBytes / this.#frameBytes;
     const scratch =
       this.#place.format.channels > 1 ? new Float32Array(Math.min(count, framesPerPiece)) : samples;
     for (let done = 0; done < count; done += framesPerPiece) {
@@ -107,10 +114,15 @@ export class BlockReader {
     const position = this.#place.dataOffset + startSample * this.#frameBytes;
     let filled = 0;
     while (filled < length) {
-      const { bytesRead } = await this.#file.read(this.#piece, filled, length - filled, position + filled);
+      const { bytesRead } = await this.#file.read(
+        this.#piece.values,
+        filled,
+        length - filled,
+        position + filled,
+      );
       if (bytesRead === 0) throw new Error('The audio file ends before the length that its header gives.');
       filled += bytesRead;
     }
-    return this.#piece.subarray(0, length);
+    return this.#piece.values.subarray(0, length);
   }
 }

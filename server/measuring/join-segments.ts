@@ -4,10 +4,10 @@ import { findBandwidth } from '../signal/bandwidth.ts';
 import { ChannelJoin, type ChannelResult } from '../signal/channel-join.ts';
 import { joinChannelPairs, type ChannelPair } from '../signal/channel-pairs.ts';
 import { joinCourses } from '../signal/course.ts';
+import { stepSize } from '../signal/levels.ts';
 import { qualityFindings } from '../signal/quality.ts';
 import { joinDetection, type SegmentFindings } from './detection-join.ts';
 import { describeMeasurement, type MeasureInput, type MeasurePlan } from './measure-plan.ts';
-import { stepSize } from './measure-segment.ts';
 import { SegmentParts } from './segment-parts.ts';
 import { makeManifest, viewPath } from './view-layout.ts';
 import { joinViews } from './view-join.ts';
@@ -57,7 +57,10 @@ export async function joinSegments(input: MeasureInput): Promise<MeasureResult> 
   };
   joinViews(input.viewsDir, layout);
   writeFileSync(viewPath(input.viewsDir, 'spectra'), JSON.stringify(results.map(toSpectrum)));
-  writeFileSync(viewPath(input.viewsDir, 'manifest'), JSON.stringify(makeManifest(format, plan.engine)));
+  writeFileSync(
+    viewPath(input.viewsDir, 'manifest'),
+    JSON.stringify(makeManifest(format, layout.frameColumns, plan.descriptors)),
+  );
   await parts.remove();
   return { summary, candidatesPath, candidateCount: found.candidateCount };
 }
@@ -102,6 +105,5 @@ function widestBandwidth(sampleRateHz: number, results: ChannelResult[]): Bandwi
 }
 
 function toSpectrum({ spectra }: ChannelResult, channel: number): Spectrum {
-  const { frequenciesHz, quietDbPerHz, activeDbPerHz, maximumDbPerHz } = spectra;
-  return { channel, frequenciesHz, quietDbPerHz, activeDbPerHz, maximumDbPerHz };
+  return { channel, ...spectra };
 }

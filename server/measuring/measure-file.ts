@@ -17,7 +17,7 @@ export interface MeasureSteps {
 const stepsHere: MeasureSteps = { atOnce: 1, measureSegment, joinSegments };
 
 /** Changed whenever what a segment leaves for the join changes. */
-const PARTS_VERSION = 1;
+const PARTS_VERSION = 2;
 
 /**
  * Measures a recording, segment by segment, and writes its views.
@@ -72,6 +72,6 @@ async function measureSegments({ input, plan, parts, controls, steps }: Segments
 }
 
 /** Everything that decides what a segment gives: parts made under another description are of no use. */
-function descriptionOf({ header, context }: MeasureInput, { engine }: MeasurePlan): string {
-  return JSON.stringify({ version: PARTS_VERSION, detectorVersion, engine, header, context });
+function descriptionOf({ header, context }: MeasureInput, { descriptors }: MeasurePlan): string {
+  return JSON.stringify({ version: PARTS_VERSION, detectorVersion, descriptors, header, context });
 }

@@ -20,12 +20,13 @@ export interface MeasurePlan {
   layout: ViewLayout;
   course: CoursePlan;
   segments: Segment[];
-  engine: 'meyda' | 'direct';
+  /** Who computes the spectral descriptors of the frames; both are equal. */
+  descriptors: 'meyda' | 'engine';
   spectrumPoints: number;
 }
 
-/** meyda's own extractors cost more than all the rest together; past this many frames the equal direct ones run. */
-const FRAMES_BY_MEYDA = 20_000;
+/** meyda's own extractors cost more than all the rest together; past this many frames the equal ones of the engine run. */
+const FRAMES_BY_MEYDA = 5000;
 const SPECTRUM_POINTS = 1024;
 const SPECTRUM_POINTS_MANY_CHANNELS = 256;
 const MANY_CHANNELS = 8;
@@ -41,7 +42,7 @@ export function describeMeasurement({
     layout,
     course: planCourse(format.frames, layout.plan.short.hop),
     segments: planSegments(format),
-    engine: layout.plan.long.count * format.channels <= FRAMES_BY_MEYDA ? 'meyda' : 'direct',
+    descriptors: layout.plan.long.count * format.channels <= FRAMES_BY_MEYDA ? 'meyda' : 'engine',
     spectrumPoints: format.channels > MANY_CHANNELS ? SPECTRUM_POINTS_MANY_CHANNELS : SPECTRUM_POINTS,
   };
 }

@@ -1,4 +1,5 @@
 import type { SampleWindow } from '../signal/frame-cursor.ts';
+import type { EngineArray, FrameEngine } from '../signal/frame-engine.ts';
 import type { BlockReader } from './block-reader.ts';
 
 export interface SampleWindowsSettings {
@@ -17,14 +18,16 @@ export class SampleWindows {
   readonly #blockFrames: number;
   readonly #historySamples: number;
 
-  constructor({ channels, startSample, historySamples, blockFrames }: SampleWindowsSettings) {
+  constructor(
+    engine: Pick<FrameEngine, 'samples'>,
+    { channels, startSample, historySamples, blockFrames }: SampleWindowsSettings,
+  ) {
     this.#historySamples = historySamples;
     this.#blockFrames = blockFrames;
-    this.channels = Array.from({ length: channels }, () => ({
-      samples: new Float32Array(historySamples + blockFrames),
-      startSample,
-      endSample: startSample,
-    }));
+    this.channels = Array.from(
+      { length: channels },
+      () => new EngineWindow(engine.samples(historySamples + blockFrames), startSample),
+    );
   }
 
   get endSample(): number {
@@ -55,5 +58,22 @@ export class SampleWindows {
       window.samples.copyWithin(0, surplus, held);
       window.startSample += surplus;
     }
+  }
+}
+
+/** A window in memory that the engine reads without copying. */
+class EngineWindow implements SampleWindow {
+  startSample: number;
+  endSample: number;
+  readonly #memory: EngineArray<Float32Array>;
+
+  constructor(memory: EngineArray<Float32Array>, startSample: number) {
+    this.#memory = memory;
+    this.startSample = startSample;
+    this.endSample = startSample;
+  }
+
+  get samples(): Float32Array {
+    return this.#memory.values;
   }
 }

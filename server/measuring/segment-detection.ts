@@ -1,10 +1,10 @@
 import type { AudioFormat, DetectedCandidate } from '../../shared/contract/measurement.ts';
 import { CandidateMerger } from '../signal/candidate-merge.ts';
-import type { ShortFrameSink } from '../signal/channel-pass.ts';
 import { createDetector, type Detector } from '../signal/detector.ts';
 import type { FramePlan } from '../signal/frame-plan.ts';
 import { fullScaleThreshold } from '../signal/levels.ts';
 import type { Span } from '../signal/place-list.ts';
+import type { ShortFrameSink } from '../signal/short-frames.ts';
 import { observableBand, USABLE_SHARE_OF_RATE } from '../signal/ultrasound-band.ts';
 import {
   createUltrasoundTracker,

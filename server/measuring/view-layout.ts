@@ -3,7 +3,7 @@ import { z } from 'zod';
 import type { AudioFormat } from '../../shared/contract/measurement.ts';
 import { audioFormatSchema } from '../../shared/contract/measurement.ts';
 import type { PictureBand, TileLayout } from '../../shared/contract/views.ts';
-import { FRAME_COLUMNS, FRAME_ROW_LENGTH } from '../signal/frame-row.ts';
+import { frameColumns, rowBands } from '../signal/frame-row.ts';
 import { framesIn, frameStart, planFrames, type FramePlan } from '../signal/frame-plan.ts';
 import type { Span } from '../signal/place-list.ts';
 import { pyramidCell, pyramidLevels, pyramidLevelsWithin } from '../signal/pyramid.ts';
@@ -28,19 +28,20 @@ export const VIEW_FILES = {
 } as const;
 
 export const viewManifestSchema = z.object({
-  version: z.literal(1),
+  version: z.literal(2),
   /** With the true sample rate, after a declared time expansion. */
   format: audioFormatSchema,
   frameColumns: z.array(z.string()),
-  descriptorEngine: z.enum(['meyda', 'direct']),
+  descriptors: z.enum(['meyda', 'engine']),
 });
 export type ViewManifest = z.infer<typeof viewManifestSchema>;
 
 export function makeManifest(
   format: AudioFormat,
-  descriptorEngine: ViewManifest['descriptorEngine'],
+  frameColumns: string[],
+  descriptors: ViewManifest['descriptors'],
 ): ViewManifest {
-  return { version: 1, format, frameColumns: [...FRAME_COLUMNS], descriptorEngine };
+  return { version: 2, format, frameColumns, descriptors };
 }
 
 export function viewPath(viewsDir: string, file: keyof typeof VIEW_FILES): string {
@@ -63,12 +64,15 @@ export class ViewLayout {
   readonly plan: FramePlan;
   readonly pictures: Picture[];
   readonly peakLevels: number[];
+  /** Of the table of long frames. */
+  readonly frameColumns: string[];
 
   constructor(shape: RecordingShape) {
     this.shape = shape;
     this.plan = planFrames(shape.sampleRateHz, shape.frames);
     this.pictures = planPictures(this.plan);
     this.peakLevels = pyramidLevels(shape.frames);
+    this.frameColumns = frameColumns(rowBands(this.plan));
   }
 
   picture(band: PictureBand): Picture | undefined {
@@ -100,9 +104,13 @@ export class ViewLayout {
     return regionIn(channel, level - FIRST_STORED_LEVELS[band], this.#storedBytes(band));
   }
 
+  get frameRowBytes(): number {
+    return this.frameColumns.length * FLOAT_BYTES;
+  }
+
   /** Rows of float32, one per long frame. */
   frameRegion(channel: number): FileRegion {
-    return regionIn(channel, 0, [this.plan.long.count * FRAME_ROW_LENGTH * FLOAT_BYTES]);
+    return regionIn(channel, 0, [this.plan.long.count * this.frameRowBytes]);
   }
 
   /** The part of `peakRegion` that a segment fills. */
@@ -119,7 +127,7 @@ export class ViewLayout {
 
   /** The part of `frameRegion` that a segment fills. */
   frameRegionOf(segment: Span, channel: number): FileRegion {
-    return partOf(this.frameRegion(channel), segment, this.plan.long.hop, FRAME_ROW_LENGTH * FLOAT_BYTES);
+    return partOf(this.frameRegion(channel), segment, this.plan.long.hop, this.frameRowBytes);
   }
 
   /** Samples that a long frame was computed from, `endSample` exclusive. */

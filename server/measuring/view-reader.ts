@@ -3,7 +3,6 @@ import { z } from 'zod';
 import { encodeTile, TILE_DB_PER_CODE, TILE_MINIMUM_DB } from '../../shared/audio/tile.ts';
 import { spectrumSchema, type Spectrum } from '../../shared/contract/measurement.ts';
 import type { Peaks, PictureBand } from '../../shared/contract/views.ts';
-import { FRAME_COLUMNS, FRAME_ROW_LENGTH } from '../signal/frame-row.ts';
 import {
   columnsAtLevel,
   COLUMNS_PER_TILE,
@@ -97,27 +96,41 @@ export async function readSpectrum(viewsDir: string, channel: number): Promise<S
   return found;
 }
 
-/** Names of the columns that `frameRows` gives: the place of the frame first. */
-export const frameRowColumns: readonly string[] = ['startSample', 'endSample', 'timeS', ...FRAME_COLUMNS];
+/** The long frames of a channel. */
+export interface FrameTable {
+  /** The place of the frame first. */
+  columns: string[];
+  /** One after the other; `null` where a silent frame has no value. */
+  rows: AsyncGenerator<(number | null)[]>;
+}
 
-const ROWS_PER_READ = 4096;
+const ROWS_PER_READ = 1024;
 
-/** The table of long frames, a row at a time; `null` where a silent frame has no value. */
-export async function* frameRows(viewsDir: string, channel: number): AsyncGenerator<(number | null)[]> {
+export async function readFrameTable(viewsDir: string, channel: number): Promise<FrameTable> {
   const layout = await layoutOf(viewsDir);
   requireChannel(layout, channel);
+  const columns = ['startSample', 'endSample', 'timeS', ...layout.frameColumns];
+  return { columns, rows: frameRows(viewsDir, layout, channel) };
+}
+
+async function* frameRows(
+  viewsDir: string,
+  layout: ViewLayout,
+  channel: number,
+): AsyncGenerator<(number | null)[]> {
   const { long } = layout.plan;
+  const { frameRowBytes } = layout;
   const file = await open(viewPath(viewsDir, 'frames'), 'r');
   try {
     for (let first = 0; first < long.count; first += ROWS_PER_READ) {
       const rows = Math.min(ROWS_PER_READ, long.count - first);
       const bytes = await readRegion(file, layout.frameRegion(channel), {
-        offsetBytes: first * FRAME_ROW_LENGTH * 4,
-        sizeBytes: rows * FRAME_ROW_LENGTH * 4,
+        offsetBytes: first * frameRowBytes,
+        sizeBytes: rows * frameRowBytes,
       });
       const values = new Float32Array(bytes.buffer, bytes.byteOffset, bytes.byteLength / 4);
       for (let row = 0; row < rows; row++)
-        yield frameRow(layout, first + row, values.subarray(row * FRAME_ROW_LENGTH));
+        yield frameRow(layout, first + row, values.subarray(row * layout.frameColumns.length));
     }
   } finally {
     await file.close();
@@ -128,7 +141,7 @@ function frameRow(layout: ViewLayout, index: number, values: Float32Array): (num
   const { sampleRateHz } = layout.shape;
   const { startSample, endSample } = layout.longFrameSpan(index);
   const row: (number | null)[] = [startSample, endSample, startSample / sampleRateHz];
-  for (let column = 0; column < FRAME_ROW_LENGTH; column++) {
+  for (let column = 0; column < layout.frameColumns.length; column++) {
     const value = values[column]!;
     // Seven figures are what a float32 holds; more would only look exact.
     row.push(Number.isNaN(value) ? null : Number(value.toPrecision(7)));

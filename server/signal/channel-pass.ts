@@ -1,19 +1,21 @@
 import type { PictureBand } from '../../shared/contract/views.ts';
 import { CourseTracker, type CoursePart, type CoursePlan } from './course.ts';
-import type { DescriptorEngine } from './descriptors.ts';
 import { DropoutTracker, type DropoutPart } from './dropouts.ts';
-import { FrameCursor, type SampleWindow } from './frame-cursor.ts';
-import { bandBins, type FramePlan } from './frame-plan.ts';
-import type { FrameRow } from './frame-row.ts';
-import { FrameSpectrum, meanSquareOfBins } from './frame-spectrum.ts';
+import { FrameCursor, FRAMES_TOGETHER, type SampleWindow } from './frame-cursor.ts';
+import type { PowerRows } from './frame-engine.ts';
+import type { FramePlan } from './frame-plan.ts';
+import { rowBands, type FrameRow } from './frame-row.ts';
 import { LevelTracker, type LevelPart } from './levels.ts';
 import type { LongFramePart } from './long-frame-statistics.ts';
 import { LongFrames } from './long-frames.ts';
 import { MainsTracker, type MainsPart } from './mains.ts';
+import { LONG_FRAMES_AT_ONCE, type PassArithmetic } from './pass-arithmetic.ts';
+import { PictureColumns } from './picture-columns.ts';
 import type { Span } from './place-list.ts';
 import { PeakPyramid } from './pyramid.ts';
-import { forEachCell } from './sample-cells.ts';
-import { ColumnPyramid, type Picture } from './spectrogram-columns.ts';
+import type { SampleCell } from './sample-cells.ts';
+import { ShortFrames, type ShortFrameSink } from './short-frames.ts';
+import type { Picture } from './spectrogram-columns.ts';
 
 /** Where the views of one channel go, in order of time. Arrays are reused by the caller. */
 export interface ViewSink {
@@ -22,28 +24,17 @@ export interface ViewSink {
   frameRow(row: FrameRow): void;
 }
 
-/** Takes the lines above the hearing line of every short frame: `power[first]` to `power[end - 1]`. */
-export type ShortFrameSink = (frame: ShortFrame) => void;
-
-export interface ShortFrame {
-  index: number;
-  /** Sample in the middle of the frame. */
-  middleSample: number;
-  power: Float32Array;
-  first: number;
-  end: number;
-}
-
 export interface ChannelPassSettings {
   plan: FramePlan;
   /** What is measured of the recording; begins on a whole point of every level of the views. */
   segment: Span;
-  pictures: Picture[];
+  pictures: readonly Picture[];
   /** Levels of the peaks and of each picture whose points lie in the segment. */
   peakLevels: number;
   columnLevels: Record<PictureBand, number>;
   course: CoursePlan;
-  engine: DescriptorEngine;
+  arithmetic: PassArithmetic;
+  descriptorsByMeyda: boolean;
   spectrumPoints: number;
   /** Height of the last bit re full scale, and the magnitude that counts as full scale. */
   stepSize: number;
@@ -75,31 +66,26 @@ export class ChannelPass {
   readonly #course: CourseTracker;
   readonly #pyramid: PeakPyramid;
   readonly #longFrames: LongFrames;
-  readonly #longCursor: FrameCursor;
-  readonly #shortFrames: ShortFrames;
-  readonly #audible: PictureFrames | undefined;
+  readonly #shortFrames: ShortFrames | undefined;
+  readonly #audible: AudibleFrames | undefined;
+  readonly #cell: SampleCell = { count: 0, sum: 0, squares: 0, minimum: 0, maximum: 0 };
   #dropoutPart: DropoutPart | undefined;
 
   constructor(settings: ChannelPassSettings) {
-    const { plan, segment, views, pictures, fullScale, stepSize } = settings;
-    const { sampleRateHz, frames } = plan;
+    const { plan, segment, arithmetic, views, fullScale, stepSize } = settings;
+    const { sampleRateHz } = plan;
     this.#settings = settings;
     this.#levels = new LevelTracker(fullScale, segment);
     this.#dropouts = new DropoutTracker({ sampleRateHz, stepSize, fullScale });
-    this.#mains = new MainsTracker(sampleRateHz);
+    this.#mains = new MainsTracker(sampleRateHz, arithmetic.sumMeans);
     this.#course = new CourseTracker(settings.course, segment);
     this.#pyramid = new PeakPyramid(settings.peakLevels, (level, low, high) => views.peak(level, low, high));
-    this.#longFrames = new LongFrames({
-      sampleRateHz,
-      size: plan.long.size,
-      spectrumPoints: settings.spectrumPoints,
-      engine: settings.engine,
-    });
-    this.#longCursor = new FrameCursor(plan.long, frames, segment);
-    this.#shortFrames = new ShortFrames(settings, this.#course);
-    const audible = pictures.find((picture) => picture.layout.band === 'audible');
-    this.#audible = audible && new PictureFrames(audible, settings);
-    this.historySamples = Math.max(plan.audible.size, this.#dropouts.historySamples);
+    this.#audible = openAudible(settings);
+    this.#longFrames = this.#openLongFrames();
+    this.#shortFrames = arithmetic.short && new ShortFrames(settings, arithmetic.short, this.#course);
+    // Frames wait for others until they are four.
+    const { size, hop } = plan.audible;
+    this.historySamples = Math.max(size + FRAMES_TOGETHER * hop, this.#dropouts.historySamples);
   }
 
   /** @param from place in the window of the first sample not yet seen. */
@@ -108,16 +94,16 @@ export class ChannelPass {
     const first = Math.max(from, startSample - window.startSample);
     const end = Math.min(window.endSample, endSample) - window.startSample;
     if (first < end) this.#pushSamples(window, first, end);
-    this.#longCursor.advance(window, (_index, values, start, stop) => this.#pushLong(values, start, stop));
-    if (!this.#sharesLongFrames) this.#audible?.advance(window);
-    this.#shortFrames.advance(window);
+    this.#longFrames.advance(window);
+    this.#audible?.advance(window);
+    this.#shortFrames?.advance(window);
   }
 
   finish(nonFiniteSamples: number): ChannelPart {
     if (!this.#dropoutPart) throw new RangeError('segment: its last sample was never pushed');
     this.#pyramid.finish();
-    this.#audible?.finish();
-    this.#shortFrames.finish();
+    this.#audible?.columns.finish();
+    this.#shortFrames?.finish();
     return {
       nonFiniteSamples,
       levels: this.#levels.finish(),
@@ -130,103 +116,75 @@ export class ChannelPass {
 
   /** The samples `[from, to)` of the window, all of them in the segment. */
   #pushSamples(window: SampleWindow, from: number, to: number): void {
-    const { samples } = window;
-    forEachCell(samples, { from, to, startSample: window.startSample + from }, (cell, start) => {
-      this.#levels.push(cell, samples, start, window.startSample + start);
-      this.#course.push(cell);
-      this.#pyramid.push(cell);
-    });
+    this.#pushCells(window, from, to);
     this.#dropouts.push(window, from, to);
-    this.#mains.push(samples, from, to);
+    this.#mains.push(window.samples, from, to);
     if (window.startSample + to === this.#settings.segment.endSample) {
       this.#dropoutPart = this.#dropouts.finish(window, to);
     }
   }
 
-  get #sharesLongFrames(): boolean {
-    return this.#settings.plan.audible.size === this.#settings.plan.long.size;
+  #pushCells({ samples, startSample }: SampleWindow, from: number, to: number): void {
+    const table = this.#settings.arithmetic.sumCells(samples, { from, to, startSample: startSample + from });
+    const { count, sums, squares, minima, maxima } = table;
+    const cell = this.#cell;
+    for (let c = 0, at = from; c < count; c++, at += cell.count) {
+      cell.count = table.samples[c]!;
+      cell.sum = sums[c]!;
+      cell.squares = squares[c]!;
+      cell.minimum = minima[c]!;
+      cell.maximum = maxima[c]!;
+      this.#levels.push(cell, samples, at, startSample + at);
+      this.#course.push(cell);
+      this.#pyramid.push(cell);
+    }
   }
 
-  #pushLong(samples: Float32Array, from: number, to: number): void {
-    this.#longFrames.push(samples, from, to);
-    this.#settings.views.frameRow(this.#longFrames.row);
-    if (this.#sharesLongFrames) this.#audible?.pushPower(this.#longFrames.spectrum);
+  #openLongFrames(): LongFrames {
+    const { plan, segment, arithmetic, spectrumPoints, descriptorsByMeyda, views } = this.#settings;
+    const audible = this.#audible;
+    const sharing = audible?.rows === arithmetic.long ? audible : undefined;
+    return new LongFrames({
+      cursor: new FrameCursor(plan.long, plan.frames, segment, LONG_FRAMES_AT_ONCE),
+      rows: arithmetic.long,
+      bands: rowBands(plan).length,
+      sampleRateHz: plan.sampleRateHz,
+      size: plan.long.size,
+      spectrumPoints,
+      byMeyda: descriptorsByMeyda,
+      onRow: (row) => views.frameRow(row),
+      onRows: (count) => sharing?.columns.push(sharing.rows, count),
+    });
   }
 }
 
-/** The frames of a picture that has a transform of its own, or takes the power of another one. */
-class PictureFrames {
-  readonly #picture: Picture;
-  readonly #cursor: FrameCursor;
-  readonly #columns: ColumnPyramid;
-  #spectrum: FrameSpectrum | undefined;
+/** The frames of the audible picture: those of the long frames, or longer ones that have a transform of their own. */
+class AudibleFrames {
+  readonly rows: PowerRows;
+  readonly columns: PictureColumns;
+  readonly #cursor: FrameCursor | undefined;
 
-  constructor(picture: Picture, { plan, segment, columnLevels, views }: ChannelPassSettings) {
-    const { band } = picture.layout;
-    this.#picture = picture;
-    this.#cursor = new FrameCursor(picture.grid, plan.frames, segment);
-    this.#columns = new ColumnPyramid(picture, columnLevels[band], (level, codes) =>
-      views.column(band, level, codes),
-    );
+  constructor(rows: PowerRows, columns: PictureColumns, cursor: FrameCursor | undefined) {
+    this.rows = rows;
+    this.columns = columns;
+    this.#cursor = cursor;
   }
 
   advance(window: SampleWindow): void {
-    const { grid, firstBin, endBin } = this.#picture;
-    const bins = { first: firstBin, end: endBin };
-    const spectrum = (this.#spectrum ??= new FrameSpectrum(grid.size));
-    this.#cursor.advance(window, (_index, samples, from, to) => {
-      spectrum.analyseBins(samples, from, to, bins);
-      this.pushPower(spectrum);
-    });
-  }
-
-  pushPower(spectrum: FrameSpectrum): void {
-    this.#columns.push(spectrum.powerBits);
-  }
-
-  finish(): void {
-    this.#columns.finish();
+    const cursor = this.#cursor;
+    for (let run = cursor?.take(window); run !== undefined; run = cursor?.take(window)) {
+      this.rows.analyse(window, run.first, run.end);
+      this.columns.push(this.rows, run.end - run.first);
+    }
   }
 }
 
-/** Short frames: ultrasonic picture, course above 20 kHz, and whoever else looks at them. */
-class ShortFrames {
-  readonly #cursor: FrameCursor;
-  readonly #spectrum: FrameSpectrum;
-  readonly #picture: PictureFrames | undefined;
-  readonly #course: CourseTracker;
-  readonly #sink: ShortFrameSink | undefined;
-  readonly #frame: ShortFrame;
-  readonly #hop: number;
-
-  constructor(settings: ChannelPassSettings, course: CourseTracker) {
-    const { plan, pictures, segment } = settings;
-    const { first, end } = bandBins('ultrasonic', plan.short.size, plan.sampleRateHz);
-    this.#cursor = new FrameCursor(plan.short, plan.frames, segment);
-    this.#spectrum = new FrameSpectrum(plan.short.size);
-    const picture = pictures.find(({ layout }) => layout.band === 'ultrasonic');
-    this.#picture = picture && new PictureFrames(picture, settings);
-    this.#course = course;
-    this.#sink = settings.shortFrame;
-    this.#hop = plan.short.hop;
-    this.#frame = { index: 0, middleSample: 0, power: this.#spectrum.power, first, end };
-  }
-
-  advance(window: SampleWindow): void {
-    const frame = this.#frame;
-    const spectrum = this.#spectrum;
-    if (frame.end <= frame.first) return;
-    this.#cursor.advance(window, (index, samples, from, to) => {
-      spectrum.analyseBins(samples, from, to, frame);
-      this.#picture?.pushPower(spectrum);
-      frame.index = index;
-      frame.middleSample = index * this.#hop + this.#hop / 2;
-      this.#course.pushUltrasonic(frame.middleSample, meanSquareOfBins(frame.power, frame.first, frame.end));
-      this.#sink?.(frame);
-    });
-  }
-
-  finish(): void {
-    this.#picture?.finish();
-  }
+function openAudible(settings: ChannelPassSettings): AudibleFrames | undefined {
+  const { pictures, plan, segment, arithmetic } = settings;
+  const picture = pictures.find(({ layout }) => layout.band === 'audible');
+  if (!picture) return undefined;
+  const columns = new PictureColumns(picture, settings);
+  if (!arithmetic.audible) return new AudibleFrames(arithmetic.long, columns, undefined);
+  const cursor = new FrameCursor(picture.grid, plan.frames, segment, LONG_FRAMES_AT_ONCE);
+  return new AudibleFrames(arithmetic.audible, columns, cursor);
 }

@@ -9,34 +9,47 @@ export interface SampleWindow {
   endSample: number;
 }
 
-/** `from` and `to` are places in the window's samples. */
-export type FrameVisitor = (index: number, samples: Float32Array, from: number, to: number) => void;
+/** Frames `[first, end)`. */
+export interface FrameRun {
+  first: number;
+  end: number;
+}
 
-/** Walks the frames of a grid that belong to a segment as its samples arrive. */
+/** Frames of a run, so that four of them make a column of level 1 of a picture; only the last run may be cut. */
+export const FRAMES_TOGETHER = 4;
+
+/** Hands out the frames of a grid that belong to a segment, many at a time, as its samples arrive. */
 export class FrameCursor {
   readonly #grid: FrameGrid;
   readonly #frames: number;
   readonly #end: number;
+  readonly #most: number;
   #next: number;
 
-  /** @param frames samples of the whole recording. */
-  constructor(grid: FrameGrid, frames: number, segment: Span) {
+  /** @param frames samples of the whole recording. @param most frames of one run, a multiple of four. */
+  constructor(grid: FrameGrid, frames: number, segment: Span, most: number) {
     const { first, end } = framesIn(grid, segment);
     this.#grid = grid;
     this.#frames = frames;
     this.#end = end;
+    this.#most = most;
     this.#next = first;
   }
 
-  /** Visits every frame not yet visited that lies whole in the window (or ends with the recording). */
-  advance(window: SampleWindow, visit: FrameVisitor): void {
-    const { size } = this.#grid;
-    while (this.#next < this.#end) {
-      const start = frameStart(this.#grid, this.#next, this.#frames);
-      const end = Math.min(start + size, this.#frames);
-      if (end > window.endSample) return;
-      visit(this.#next, window.samples, start - window.startSample, end - window.startSample);
-      this.#next++;
-    }
+  /** The next frames that lie whole in the window (or end with the recording); `undefined` when it takes more samples. */
+  take({ endSample }: SampleWindow): FrameRun | undefined {
+    const first = this.#next;
+    let end = first;
+    const last = Math.min(this.#end, first + this.#most);
+    while (end < last && frameStart(this.#grid, end, this.#frames) + this.samplesOf(end) <= endSample) end++;
+    if (end < this.#end) end -= (end - first) % FRAMES_TOGETHER;
+    if (end === first) return undefined;
+    this.#next = end;
+    return { first, end };
+  }
+
+  /** Samples that a frame holds: the size of the grid, or fewer where the recording is shorter. */
+  samplesOf(index: number): number {
+    return Math.min(this.#grid.size, this.#frames - frameStart(this.#grid, index, this.#frames));
   }
 }

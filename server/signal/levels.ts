@@ -31,6 +31,17 @@ export function fullScaleThreshold(encoding: 'integer' | 'float', bitsPerSample:
   return encoding === 'float' ? 1 : 1 - 2 ** (1 - Math.min(bitsPerSample, 24));
 }
 
+/** Height of the last bit re full scale; of floats, what single precision resolves near full scale. */
+export function stepSize({
+  encoding,
+  bitsPerSample,
+}: {
+  encoding: 'integer' | 'float';
+  bitsPerSample: number;
+}): number {
+  return encoding === 'float' ? 2 ** -23 : 2 ** (1 - Math.min(bitsPerSample, 24));
+}
+
 /**
  * Levels of one channel over the whole recording.
  *

@@ -1,6 +1,7 @@
 import type { ChannelDescriptors } from '../../shared/contract/measurement.ts';
 import { BinnedMedian, type BinnedMedianPart } from './binned-median.ts';
 import { bandBins } from './frame-plan.ts';
+import type { FrameRow } from './frame-row.ts';
 import { LongTermSpectrum, type LongTermPart, type LongTermSpectra } from './long-term-spectrum.ts';
 
 export interface LongFrameStatisticsSettings {
@@ -26,8 +27,8 @@ export interface LongFrameResult {
 
 /** Medians of the descriptors and long-term spectra of the long frames that are not silent, in constant memory. */
 export class LongFrameStatistics {
-  readonly medians: Record<DescriptorName, BinnedMedian>;
   readonly longTerm: LongTermSpectrum;
+  readonly #medians: Record<DescriptorName, BinnedMedian>;
   readonly #seesUltrasound: boolean;
 
   constructor({ sampleRateHz, size, spectrumPoints }: LongFrameStatisticsSettings) {
@@ -35,7 +36,7 @@ export class LongFrameStatistics {
     const ultrasonic = bandBins('ultrasonic', size, sampleRateHz);
     this.#seesUltrasound = ultrasonic.end > ultrasonic.first;
     this.longTerm = new LongTermSpectrum({ size, sampleRateHz, maximumPoints: spectrumPoints });
-    this.medians = {
+    this.#medians = {
       centroidHz: new BinnedMedian(0, nyquistHz),
       spreadHz: new BinnedMedian(0, nyquistHz),
       flatness: new BinnedMedian(0, 1),
@@ -43,6 +44,17 @@ export class LongFrameStatistics {
       zeroCrossingRateHz: new BinnedMedian(0, sampleRateHz),
       ultrasonicShare: new BinnedMedian(0, 1),
     };
+  }
+
+  /** @param row of a frame that is not silent, as `LongFrames` writes it. */
+  pushRow(row: FrameRow): void {
+    const medians = this.#medians;
+    medians.zeroCrossingRateHz.push(row[3]!);
+    medians.centroidHz.push(row[4]!);
+    medians.spreadHz.push(row[5]!);
+    medians.flatness.push(row[6]!);
+    medians.rolloff99AmplitudeHz.push(row[7]!);
+    medians.ultrasonicShare.push(row[9]!);
   }
 
   get part(): LongFramePart {
@@ -62,7 +74,7 @@ export class LongFrameStatistics {
   }
 
   #each<Value>(of: (median: BinnedMedian, name: DescriptorName) => Value): Record<DescriptorName, Value> {
-    const { medians } = this;
+    const medians = this.#medians;
     return {
       centroidHz: of(medians.centroidHz, 'centroidHz'),
       spreadHz: of(medians.spreadHz, 'spreadHz'),

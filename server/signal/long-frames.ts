@@ -1,16 +1,25 @@
-import type { DescriptorEngine } from './descriptors.ts';
-import { emptyDescriptors } from './descriptors.ts';
-import { FRAME_ROW_LENGTH, type FrameRow } from './frame-row.ts';
-import { bandBins } from './frame-plan.ts';
-import { FrameSpectrum, meanSquareOfBins, SILENCE_MEAN_SQUARE } from './frame-spectrum.ts';
+import { meydaColumns } from './descriptors.ts';
+import type { FrameCursor } from './frame-cursor.ts';
+import { type SampleWindow } from './frame-cursor.ts';
+import { FEATURE, type LongFrameRows } from './frame-engine.ts';
+import { SILENCE_MEAN_SQUARE } from './frame-spectrum.ts';
+import { BAND_COLUMN, CEPSTRAL_COLUMN, type FrameRow } from './frame-row.ts';
 import {
   LongFrameStatistics,
   type LongFramePart,
   type LongFrameStatisticsSettings,
 } from './long-frame-statistics.ts';
+import { CEPSTRAL_COEFFICIENTS } from './mel-bank.ts';
 
-interface LongFrameSettings extends LongFrameStatisticsSettings {
-  engine: DescriptorEngine;
+export interface LongFramesSettings extends LongFrameStatisticsSettings {
+  cursor: FrameCursor;
+  rows: LongFrameRows;
+  bands: number;
+  /** Whether meyda's own extractors give the descriptors, instead of the engine's, which are equal. */
+  byMeyda: boolean;
+  onRow: (row: FrameRow) => void;
+  /** Called when the rows of some frames have been renewed. */
+  onRows: (count: number) => void;
 }
 
 /**
@@ -20,75 +29,68 @@ interface LongFrameSettings extends LongFrameStatisticsSettings {
  * two levels, which are NaN too when they do not exist, and counts in no median.
  */
 export class LongFrames {
-  readonly spectrum: FrameSpectrum;
-  readonly row: FrameRow = new Float32Array(FRAME_ROW_LENGTH);
-  readonly #settings: LongFrameSettings;
-  readonly #amplitude: Float32Array;
-  readonly #found = emptyDescriptors();
+  readonly #settings: LongFramesSettings;
   readonly #statistics: LongFrameStatistics;
-  readonly #ultrasonic: { first: number; end: number };
+  readonly #row: FrameRow;
 
-  constructor(settings: LongFrameSettings) {
-    const { size, sampleRateHz } = settings;
+  constructor(settings: LongFramesSettings) {
     this.#settings = settings;
-    this.spectrum = new FrameSpectrum(size);
-    this.#amplitude = new Float32Array(size / 2);
     this.#statistics = new LongFrameStatistics(settings);
-    this.#ultrasonic = bandBins('ultrasonic', size, sampleRateHz);
+    this.#row = new Float32Array(BAND_COLUMN + settings.bands);
   }
 
-  /** Renews `row` and `spectrum` from the samples `[from, to)`. */
-  push(samples: Float32Array, from: number, to: number): void {
-    const { spectrum, row } = this;
-    spectrum.analyse(samples, from, to);
-    row.fill(Number.NaN);
-    const { peak } = spectrum;
-    if (peak > 0) row[1] = 20 * Math.log10(peak);
-    if (spectrum.isSilent) return;
-    const rms = Math.sqrt(spectrum.meanSquare);
-    row[0] = 20 * Math.log10(rms * Math.SQRT2);
-    row[2] = 20 * Math.log10(peak / rms);
-    this.#describe((spectrum.crossings * this.#settings.sampleRateHz) / (to - from));
-    this.#statistics.longTerm.push(spectrum.power);
+  advance(window: SampleWindow): void {
+    const { cursor, rows, onRow, onRows } = this.#settings;
+    for (let run = cursor.take(window); run !== undefined; run = cursor.take(window)) {
+      rows.analyse(window, run.first, run.end);
+      const count = run.end - run.first;
+      onRows(count);
+      for (let index = 0; index < count; index++) {
+        this.#describe(index, cursor.samplesOf(run.first + index));
+        onRow(this.#row);
+      }
+    }
   }
 
   finish(): LongFramePart {
     return this.#statistics.part;
   }
 
-  get #seesUltrasound(): boolean {
-    return this.#ultrasonic.end > this.#ultrasonic.first;
+  #describe(index: number, samples: number): void {
+    const { rows, sampleRateHz, byMeyda } = this.#settings;
+    const row = this.#row;
+    const features = rows.features;
+    const at = index * rows.featureStride;
+    const peak = features[at + FEATURE.peak]!;
+    const meanSquare = features[at + FEATURE.meanSquare]!;
+    row.fill(Number.NaN);
+    if (peak > 0) row[1] = 20 * Math.log10(peak);
+    if (meanSquare < SILENCE_MEAN_SQUARE) return;
+    const rms = Math.sqrt(meanSquare);
+    row[0] = 20 * Math.log10(rms * Math.SQRT2);
+    row[2] = 20 * Math.log10(peak / rms);
+    row[3] = (features[at + FEATURE.crossings]! * sampleRateHz) / samples;
+    const power = rows.power.subarray(index * rows.powerStride, index * rows.powerStride + rows.bins);
+    if (byMeyda) meydaColumns(power, sampleRateHz, features, at);
+    this.#copyShape(features, at);
+    this.#statistics.longTerm.push(power);
+    this.#statistics.pushRow(row);
   }
 
-  /** @param crossingRateHz sign changes per second of the unwindowed samples: a sine of f Hz has 2 f. */
-  #describe(crossingRateHz: number): void {
-    const { row, spectrum } = this;
-    const { sampleRateHz, engine } = this.#settings;
-    const found = this.#found;
-    const amplitude = this.#amplitude;
-    for (let k = 0; k < amplitude.length; k++) amplitude[k] = Math.sqrt(spectrum.power[k]!);
-    engine(amplitude, sampleRateHz, found);
-    row[3] = crossingRateHz;
-    row[4] = found.centroidHz;
-    row[5] = found.spreadHz;
-    row[6] = found.flatness;
-    row[7] = found.rolloff99AmplitudeHz;
-    const { medians } = this.#statistics;
-    medians.centroidHz.push(found.centroidHz);
-    medians.spreadHz.push(found.spreadHz);
-    medians.flatness.push(found.flatness);
-    medians.rolloff99AmplitudeHz.push(found.rolloff99AmplitudeHz);
-    medians.zeroCrossingRateHz.push(crossingRateHz);
-    if (this.#seesUltrasound) this.#weighUltrasound();
-  }
-
-  #weighUltrasound(): void {
-    const { row, spectrum } = this;
-    const { first, end } = this.#ultrasonic;
-    const above = meanSquareOfBins(spectrum.power, first, end);
-    const total = meanSquareOfBins(spectrum.power, 1, first) + above;
+  #copyShape(features: Float32Array, at: number): void {
+    const row = this.#row;
+    row[4] = features[at + FEATURE.centroidHz]!;
+    row[5] = features[at + FEATURE.spreadHz]!;
+    row[6] = features[at + FEATURE.flatness]!;
+    row[7] = features[at + FEATURE.rolloff99AmplitudeHz]!;
+    const above = features[at + FEATURE.ultrasonicMeanSquare]!;
     if (above >= SILENCE_MEAN_SQUARE) row[8] = 10 * Math.log10(2 * above);
-    row[9] = above / total;
-    this.#statistics.medians.ultrasonicShare.push(above / total);
+    row[9] = above / features[at + FEATURE.totalMeanSquare]!;
+    for (let c = 0; c < CEPSTRAL_COEFFICIENTS; c++)
+      row[CEPSTRAL_COLUMN + c] = features[at + FEATURE.cepstral + c]!;
+    for (let band = 0; band < this.#settings.bands; band++) {
+      const meanSquare = features[at + FEATURE.thirdOctaves + band]!;
+      if (meanSquare >= SILENCE_MEAN_SQUARE) row[BAND_COLUMN + band] = 10 * Math.log10(2 * meanSquare);
+    }
   }
 }

@@ -1,4 +1,5 @@
-import { FrameSpectrum } from './frame-spectrum.ts';
+import type { BlockSummer } from './frame-engine.ts';
+import { FrameSpectrum, sumOf } from './frame-spectrum.ts';
 
 /** A line at a multiple of 50 or 60 Hz, with its level re full scale and how far it stands over its surroundings. */
 export interface MainsLine {
@@ -38,6 +39,7 @@ const SURROUNDING_BINS = 24;
  */
 export class MainsTracker {
   readonly #samplesPerMean: number;
+  readonly #sumBlocks: BlockSummer;
   readonly #spectrum = new FrameSpectrum(FRAME_SIZE);
   readonly #frame = new Float32Array(FRAME_SIZE);
   readonly #power = new Float64Array(FRAME_SIZE / 2);
@@ -46,31 +48,38 @@ export class MainsTracker {
   #sum = 0;
   #count = 0;
 
-  constructor(sampleRateHz: number) {
+  /** @param sumBlocks sums of `samplesPerMean` samples each. */
+  constructor(sampleRateHz: number, sumBlocks: BlockSummer) {
     this.#samplesPerMean = samplesPerMean(sampleRateHz);
+    this.#sumBlocks = sumBlocks;
   }
 
   push(samples: Float32Array, from: number, to: number): void {
     const length = this.#samplesPerMean;
-    let i = from;
-    while (i < to) {
-      const end = Math.min(to, i + length - this.#count);
-      this.#count += end - i;
-      let sum = this.#sum;
-      for (; i < end; i++) sum += samples[i]!;
-      this.#sum = sum;
-      if (this.#count === length) this.#closeMean();
-    }
+    const start =
+      this.#count === 0 ? from : this.#add(samples, from, Math.min(to, from + length - this.#count));
+    const blocks = Math.floor((to - start) / length);
+    for (const sum of this.#sumBlocks(samples, start, blocks)) this.#pushMean(sum / length);
+    this.#add(samples, start + blocks * length, to);
+  }
+
+  /** Adds to the mean that is open. @returns `to`. */
+  #add(samples: Float32Array, from: number, to: number): number {
+    this.#sum += sumOf(samples, from, to);
+    this.#count += to - from;
+    if (this.#count < this.#samplesPerMean) return to;
+    this.#pushMean(this.#sum / this.#count);
+    this.#sum = 0;
+    this.#count = 0;
+    return to;
   }
 
   finish(): MainsPart {
     return { frames: this.#frames, power: this.#power };
   }
 
-  #closeMean(): void {
-    this.#frame[this.#filled++] = this.#sum / this.#count;
-    this.#sum = 0;
-    this.#count = 0;
+  #pushMean(mean: number): void {
+    this.#frame[this.#filled++] = mean;
     if (this.#filled < FRAME_SIZE) return;
     this.#spectrum.analyse(this.#frame, 0, FRAME_SIZE);
     for (let k = 0; k < this.#power.length; k++) this.#power[k]! += this.#spectrum.power[k]!;
@@ -107,7 +116,8 @@ interface LineSpectrum extends MainsPart {
   leastPower: number;
 }
 
-function samplesPerMean(sampleRateHz: number): number {
+/** Samples that are averaged to one of about 4 kHz. */
+export function samplesPerMean(sampleRateHz: number): number {
   return Math.max(1, Math.floor(sampleRateHz / REDUCED_RATE_HZ));
 }
 

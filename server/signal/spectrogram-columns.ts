@@ -101,64 +101,34 @@ export function encodeColumn(
 /** Takes the finished columns of a level in order; `codes` is reused. */
 export type ColumnSink = (level: number, codes: Uint8Array) => void;
 
-/**
- * Levels 1 and up of a picture: each column is the maximum of four of the level below, so that no click vanishes.
- *
- * Level 1 is gathered as power: a code grows with the power, so the code of the greatest is the greatest code, and one
- * column in four is coded. Positive float32 compare as their bits do, which needs no branch.
- */
+/** Levels 1 and up of a picture: each column is the maximum of four of the level below, so that no click vanishes. */
 export class ColumnPyramid {
   readonly #sink: ColumnSink;
-  readonly #power: Float32Array;
-  readonly #powerBits: Int32Array;
-  readonly #codes: Uint8Array;
   readonly #open: { codes: Uint8Array; parts: number }[];
-  readonly #firstBin: number;
-  #parts = 0;
 
   /** @param levels how many, level 0 counted; each column of the highest lies in the segment. */
-  constructor({ layout, firstBin }: Picture, levels: number, sink: ColumnSink) {
+  constructor(bins: number, levels: number, sink: ColumnSink) {
     this.#sink = sink;
-    this.#firstBin = firstBin;
-    this.#power = new Float32Array(layout.bins);
-    this.#powerBits = new Int32Array(this.#power.buffer);
-    this.#codes = new Uint8Array(layout.bins);
-    this.#open = Array.from({ length: Math.max(0, levels - 1) }, () => ({
-      codes: new Uint8Array(layout.bins),
+    this.#open = Array.from({ length: Math.max(0, levels - 2) }, () => ({
+      codes: new Uint8Array(bins),
       parts: 0,
     }));
   }
 
-  /** @param powerBits the bits of the power spectrum that the next column of level 0 shows. */
-  push(powerBits: Int32Array): void {
-    const kept = this.#powerBits;
-    const first = this.#firstBin;
-    for (let b = 0; b < kept.length; b++) {
-      const old = kept[b]!;
-      const less = old - powerBits[first + b]!;
-      kept[b] = old - (less & (less >> 31));
-    }
-    this.#parts++;
-    if (this.#parts === COLUMN_FACTOR) this.#closeFirst();
+  /** @param codes the next column of level 1. */
+  push(codes: Uint8Array): void {
+    this.#sink(1, codes);
+    this.#merge(2, codes);
   }
 
   finish(): void {
-    if (this.#parts > 0) this.#closeFirst();
-    for (let level = 2; level <= this.#open.length; level++) {
-      if (this.#open[level - 1]!.parts > 0) this.#emit(level);
+    for (let level = 2; level < this.#open.length + 2; level++) {
+      if (this.#open[level - 2]!.parts > 0) this.#emit(level);
     }
   }
 
-  #closeFirst(): void {
-    encodeColumn(this.#power, 0, this.#power.length, this.#codes);
-    if (this.#open.length > 0) this.#sink(1, this.#codes);
-    this.#merge(2, this.#codes);
-    this.#power.fill(0);
-    this.#parts = 0;
-  }
-
   #merge(level: number, codes: Uint8Array): void {
-    const open = this.#open[level - 1];
+    const open = this.#open[level - 2];
     if (!open) return;
     const kept = open.codes;
     for (let b = 0; b < kept.length; b++) if (codes[b]! > kept[b]!) kept[b] = codes[b]!;
@@ -167,7 +137,7 @@ export class ColumnPyramid {
   }
 
   #emit(level: number): void {
-    const open = this.#open[level - 1]!;
+    const open = this.#open[level - 2]!;
     this.#sink(level, open.codes);
     this.#merge(level + 1, open.codes);
     open.codes.fill(0);

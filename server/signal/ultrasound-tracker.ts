@@ -1,4 +1,5 @@
 import type { FlaggedSpan } from '../../shared/contract/measurement.ts';
+import { sumOf } from './frame-spectrum.ts';
 import { RunningFloor } from './noise-floor.ts';
 
 export interface UltrasoundTrackerOptions {
@@ -12,10 +13,11 @@ export interface UltrasoundTrackerOptions {
   readonly band: { readonly lowHz: number; readonly highHz: number };
 }
 
-/** A short frame's power per line, `power[k]` at k fs / N, valid from `first` up to `end`. */
+/** A short frame's power per line: `power[offset + k - first]` at k fs / N, k from `first` up to `end`. */
 export interface ShortFramePower {
   readonly index: number;
   readonly power: Float32Array;
+  readonly offset: number;
   readonly first: number;
   readonly end: number;
 }
@@ -99,9 +101,9 @@ class BandTracker implements UltrasoundTracker {
   }
 
   push(frame: ShortFramePower): void {
-    let energy = 0;
-    const end = Math.min(this.#endBin, frame.end);
-    for (let bin = Math.max(this.#firstBin, frame.first); bin < end; bin++) energy += frame.power[bin] ?? 0;
+    const { power, offset, first } = frame;
+    const from = offset + Math.max(this.#firstBin, first) - first;
+    const energy = sumOf(power, from, Math.max(from, offset + Math.min(this.#endBin, frame.end) - first));
     if (!this.#learning) {
       this.#judge(frame.index, energy);
       return;

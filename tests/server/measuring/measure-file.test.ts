@@ -5,8 +5,7 @@ import { measurementSummarySchema } from '../../../shared/contract/measurement.t
 import { measureFile } from '../../../server/measuring/measure-file.ts';
 import { tileLayout } from '../../../server/measuring/view-layout.ts';
 import {
-  frameRowColumns,
-  frameRows,
+  readFrameTable,
   readPeaks,
   readSpectrum,
   readTile,
@@ -67,7 +66,7 @@ describe('a measured recording', () => {
     expect(summary.course.levelDb.every((level) => level === null)).toBe(true);
     expect(summary.quality.map((finding) => finding.code)).toEqual(['channel-silent']);
     expect(JSON.stringify(summary)).not.toMatch(/NaN|Infinity/);
-    for await (const row of frameRows(source.viewsDir, 0))
+    for await (const row of (await readFrameTable(source.viewsDir, 0)).rows)
       expect(row.slice(3).every((x) => x === null)).toBe(true);
   });
 
@@ -77,7 +76,8 @@ describe('a measured recording', () => {
     expect(summary.levels[0]!.peakDb).toBeCloseTo(-6.02, 2);
     expect(() => measurementSummarySchema.parse(summary)).not.toThrow();
     const rows = [];
-    for await (const row of frameRows(source.viewsDir, 0)) rows.push(row);
+    const table = await readFrameTable(source.viewsDir, 0);
+    for await (const row of table.rows) rows.push(row);
     expect(rows).toHaveLength(1);
   });
 
@@ -93,9 +93,10 @@ describe('a measured recording', () => {
     expect(summary.levels[0]!.peakDb).toBeCloseTo(20 * Math.log10(0.9), 4);
     expect(summary.course.levelDb.at(-1)).not.toBeNull();
     const rows = [];
-    for await (const row of frameRows(source.viewsDir, 0)) rows.push(row);
+    const table = await readFrameTable(source.viewsDir, 0);
+    for await (const row of table.rows) rows.push(row);
     expect(rows.at(-1)![1]).toBe(300_001);
-    expect(rows.at(-1)![frameRowColumns.indexOf('peakDbFs')]).toBeCloseTo(20 * Math.log10(0.9), 4);
+    expect(rows.at(-1)![table.columns.indexOf('peakDbFs')]).toBeCloseTo(20 * Math.log10(0.9), 4);
   });
 
   it('keeps its channels apart', async () => {
@@ -146,8 +147,8 @@ describe('a measured recording', () => {
     const long = await measured({ sampleRateHz: 8000, channels: [tone] });
     const short = await measured({ sampleRateHz: 8000, channels: [tone.subarray(0, 100_000)] });
     const manifestOf = ({ viewsDir }: ViewSource) => readFile(`${viewsDir}/views.json`, 'utf8');
-    expect(await manifestOf(long.source)).toContain('"descriptorEngine":"direct"');
-    expect(await manifestOf(short.source)).toContain('"descriptorEngine":"meyda"');
+    expect(await manifestOf(long.source)).toContain('"descriptors":"engine"');
+    expect(await manifestOf(short.source)).toContain('"descriptors":"meyda"');
     const ratio = long.summary.descriptors[0]!.centroidHz! / short.summary.descriptors[0]!.centroidHz!;
     expect(ratio).toBeCloseTo(1, 2);
   });

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { ViewLayout } from '../../../server/measuring/view-layout.ts';
 import { SampleWindows } from '../../../server/measuring/sample-windows.ts';
+import { packageEngine } from '../../../server/signal/package-engine.ts';
 import { BlockReader } from '../../../server/measuring/block-reader.ts';
 import { whiteNoiseSignal } from '../../support/wav/signals.ts';
 import { writeWav } from '../../support/wav/write-wav.ts';
@@ -12,7 +13,7 @@ describe('memory while measuring', () => {
       writeWav({ sampleRateHz: 48_000, channels: [whiteNoiseSignal(50_000, 0.1, 2)] }),
     );
     const reader = await BlockReader.open(source.filePath, source.header);
-    const windows = new SampleWindows({
+    const windows = new SampleWindows(packageEngine(), {
       channels: 1,
       startSample: 0,
       historySamples: 512,

@@ -68,7 +68,8 @@ describe('segments', () => {
           .reduce((a, b) => Math.max(a, b)),
       );
       expect(peaks.maximum).toHaveLength(Math.ceil(FRAMES / samplesPerPoint));
-      for (const [point, maximum] of peaks.maximum.entries()) expect(maximum).toBeCloseTo(expected[point]!, 4);
+      for (const [point, maximum] of peaks.maximum.entries())
+        expect(maximum).toBeCloseTo(expected[point]!, 4);
     }
   });
 

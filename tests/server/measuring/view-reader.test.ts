@@ -3,8 +3,7 @@ import { decodeTile } from '../../../shared/audio/tile.ts';
 import { tileLayoutSchema } from '../../../shared/contract/views.ts';
 import { tileLayout } from '../../../server/measuring/view-layout.ts';
 import {
-  frameRowColumns,
-  frameRows,
+  readFrameTable,
   NoSuchViewError,
   readPeaks,
   readTile,
@@ -177,11 +176,12 @@ describe('the table of frames', () => {
       channels: [new Float32Array(200_000), tone],
     });
     const rows = [];
-    for await (const row of frameRows(source.viewsDir, 1)) rows.push(row);
+    const table = await readFrameTable(source.viewsDir, 1);
+    for await (const row of table.rows) rows.push(row);
     expect(rows).toHaveLength(Math.ceil(200_000 / 1024));
-    expect(rows.every((row) => row.length === frameRowColumns.length)).toBe(true);
+    expect(rows.every((row) => row.length === table.columns.length)).toBe(true);
     const middle = rows[100]!;
-    const value = (name: string) => middle[frameRowColumns.indexOf(name)]!;
+    const value = (name: string) => middle[table.columns.indexOf(name)]!;
     expect(value('startSample')).toBe(100 * 1024 - 512);
     expect(value('endSample')).toBe(100 * 1024 - 512 + 2048);
     expect(value('timeS')).toBeCloseTo((100 * 1024 - 512) / RATE_HZ, 9);

@@ -60,29 +60,33 @@ describe('the frame plan', () => {
 });
 
 describe('the frame cursor', () => {
-  it('visits the same frames however the samples arrive', () => {
+  it('hands out every frame once, in fours, however the samples arrive', () => {
     const frames = 5000;
     const { long } = planFrames(48_000, frames);
-    const samples = Float32Array.from({ length: frames }, (_, n) => n);
-    const visitedWith = (blockFrames: number) => {
-      const cursor = new FrameCursor(long, frames, { startSample: 0, endSample: frames });
-      const seen: number[][] = [];
+    const takenWith = (blockFrames: number) => {
+      const cursor = new FrameCursor(long, frames, { startSample: 0, endSample: frames }, 8);
+      const seen: number[] = [];
       for (let end = blockFrames; end < frames + blockFrames; end += blockFrames) {
-        const window = { samples, startSample: 0, endSample: Math.min(end, frames) };
-        cursor.advance(window, (index, values, from, to) => seen.push([index, values[from]!, to - from]));
+        const window = { samples: new Float32Array(0), startSample: 0, endSample: Math.min(end, frames) };
+        for (let run = cursor.take(window); run !== undefined; run = cursor.take(window)) {
+          expect(run.end === long.count || (run.end - run.first) % 4 === 0).toBe(true);
+          expect(run.end - run.first).toBeLessThanOrEqual(8);
+          for (let index = run.first; index < run.end; index++) seen.push(index);
+        }
       }
       return seen;
     };
-    expect(visitedWith(1)).toEqual(visitedWith(frames));
-    expect(visitedWith(777)).toHaveLength(long.count);
+    expect(takenWith(frames)).toEqual(Array.from({ length: long.count }, (_, index) => index));
+    expect(takenWith(1)).toEqual(takenWith(frames));
+    expect(takenWith(777)).toEqual(takenWith(frames));
   });
 
   it('has one short frame when the recording is shorter than a frame', () => {
     const { long } = planFrames(48_000, 3);
-    const cursor = new FrameCursor(long, 3, { startSample: 0, endSample: 3 });
-    const seen: number[] = [];
+    const cursor = new FrameCursor(long, 3, { startSample: 0, endSample: 3 }, 8);
     const window = { samples: new Float32Array(3), startSample: 0, endSample: 3 };
-    cursor.advance(window, (_index, _samples, from, to) => seen.push(from, to));
-    expect(seen).toEqual([0, 3]);
+    expect(cursor.take(window)).toEqual({ first: 0, end: 1 });
+    expect(cursor.samplesOf(0)).toBe(3);
+    expect(cursor.take(window)).toBeUndefined();
   });
 });

@@ -1,15 +1,14 @@
 import { describe, expect, test } from 'vitest';
-import { joinMains, MainsTracker } from '../../../server/signal/mains.ts';
 import { mix, sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
+import { mainsLinesOf } from './mains-lines.ts';
 
 const sampleRateHz = 8000;
 const frames = 8 * sampleRateHz;
 
 function linesOf(...frequenciesHz: number[]): number[] {
-  const tracker = new MainsTracker(sampleRateHz);
   const lines = frequenciesHz.map((hz) => sine(frames, hz, sampleRateHz, 0.01));
-  tracker.push(mix(whiteNoiseSignal(frames, 0.0001, 5), ...lines), 0, frames);
-  return joinMains([tracker.finish()], sampleRateHz).map((line) => line.frequencyHz);
+  const signal = mix(whiteNoiseSignal(frames, 0.0001, 5), ...lines);
+  return mainsLinesOf(signal, sampleRateHz).map((line) => line.frequencyHz);
 }
 
 describe('lines of the mains', () => {

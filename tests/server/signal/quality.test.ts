@@ -3,10 +3,10 @@ import type { QualityFinding } from '../../../shared/contract/measurement.ts';
 import { ChannelPairs, joinChannelPairs } from '../../../server/signal/channel-pairs.ts';
 import { DropoutTracker, joinDropouts } from '../../../server/signal/dropouts.ts';
 import { joinLevels, LevelTracker } from '../../../server/signal/levels.ts';
-import { joinMains, MainsTracker } from '../../../server/signal/mains.ts';
 import { qualityFindings } from '../../../server/signal/quality.ts';
 import { forEachCell } from '../../../server/signal/sample-cells.ts';
 import { mix, sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
+import { mainsLinesOf } from './mains-lines.ts';
 
 const STEP = 2 ** -15;
 
@@ -29,12 +29,10 @@ function findingsOf(
       forEachCell(samples, { from: 0, to: frames, startSample: 0 }, (cell, start) => {
         levels.push(cell, samples, start, start);
       });
-      const mains = new MainsTracker(sampleRateHz);
-      mains.push(samples, 0, frames);
       return {
         ...joinLevels(channel, [levels.finish()], 0),
         dropouts: dropoutsOf(samples, frames, sampleRateHz),
-        mains: joinMains([mains.finish()], sampleRateHz),
+        mains: mainsLinesOf(samples, sampleRateHz),
       };
     }),
   });
@@ -152,9 +150,7 @@ describe('mains lines', () => {
       sine(960_000, 150, 192_000, 0.003),
       whiteNoiseSignal(960_000, 0.01, 7),
     );
-    const tracker = new MainsTracker(192_000);
-    tracker.push(hum, 0, hum.length);
-    const lines = joinMains([tracker.finish()], 192_000);
+    const lines = mainsLinesOf(hum, 192_000);
     expect(lines.map((line) => line.frequencyHz)).toEqual([50, 150]);
     expect(Math.abs(lines[0]!.levelDb + 40)).toBeLessThan(1.5);
   });
@@ -165,17 +161,13 @@ describe('mains lines', () => {
       sine(441_000, 120.2, 44_100, 0.01),
       whiteNoiseSignal(441_000, 0.01, 8),
     );
-    const tracker = new MainsTracker(44_100);
-    tracker.push(hum, 0, hum.length);
-    expect(joinMains([tracker.finish()], 44_100).map((line) => line.frequencyHz)).toEqual([60, 120]);
+    expect(mainsLinesOf(hum, 44_100).map((line) => line.frequencyHz)).toEqual([60, 120]);
   });
 
   it('are none in noise, and none in less than a second', () => {
     for (const frames of [100_000, 20_000, 5_000_000]) {
-      const tracker = new MainsTracker(48_000);
       const noise = whiteNoiseSignal(frames, 0.1, frames);
-      tracker.push(noise, 0, frames);
-      expect(joinMains([tracker.finish()], 48_000)).toEqual([]);
+      expect(mainsLinesOf(noise, 48_000)).toEqual([]);
     }
   });
 });

@@ -65,13 +65,12 @@ describe('the levels above', () => {
     const [, picture] = planPictures(planFrames(192_000, 128 * 5000));
     const { layout } = picture!;
     const seen: number[][] = Array.from({ length: layout.levels }, () => []);
-    const pyramid = new ColumnPyramid(picture!, layout.levels, (level, codes) =>
+    const pyramid = new ColumnPyramid(layout.bins, layout.levels, (level, codes) =>
       seen[level]!.push(codes[50]!),
     );
-    const power = new Float32Array(128);
-    for (let index = 0; index < layout.columns; index++) {
-      power.fill(index === 3333 ? 1e-2 : 1e-11);
-      pyramid.push(new Int32Array(power.buffer));
+    const codes = new Uint8Array(layout.bins);
+    for (let index = 0; index < columnsAtLevel(layout.columns, 1); index++) {
+      pyramid.push(codes.fill(index === Math.floor(3333 / 4) ? 200 : 20));
     }
     pyramid.finish();
     for (let level = 1; level < layout.levels; level++) {

@@ -62,7 +62,7 @@ describe('flagged spans', () => {
         { length: 128 },
         () => 1e-6 * (normal() ** 2 + normal() ** 2) * (loud(index) ? 10 : 1),
       );
-      tracker.push({ index, power, first: 27, end: 128 });
+      tracker.push({ index, power, offset: 27, first: 27, end: 128 });
     }
     return tracker.finish();
   }
