@@ -79,8 +79,12 @@ async function decodeFrame(
   const { channelData, samplesDecoded, errors } = await decoder.decodeFrames([data]);
   if (errors.length > 0 || samplesDecoded !== span?.frames) throw new BrokenFlacError();
   const scale = 2 ** (stream.bitsPerSample - 1) - 1;
-  const channels = channelData.map((samples) =>
-    Int32Array.from(samples, (sample) => Math.round(sample * scale)),
-  );
-  return { ...span, channels };
+  return { ...span, channels: channelData.map((samples) => toCodes(samples, scale)) };
+}
+
+function toCodes(samples: Float32Array, scale: number): Int32Array {
+  const codes = new Int32Array(samples.length);
+  // Adding and cutting off costs a third of Math.round; no code lies at a half.
+  for (let i = 0; i < codes.length; i++) codes[i] = Math.floor(samples[i]! * scale + 0.5);
+  return codes;
 }
