@@ -14,8 +14,8 @@ import {
   type Fingerprint,
   type FingerprintPart,
 } from './fingerprint.ts';
-import type { FrameSpectrum } from './frame-spectrum.ts';
-import { LowFrames } from './low-frames.ts';
+import { SILENCE_MEAN_SQUARE, sumOf } from './frame-spectrum.ts';
+import { LowFrames, type LowFrame } from './low-frames.ts';
 import { lowRateFactor, lowRateResponse } from './low-rate.ts';
 import { joinPcmHash, PcmHashTracker, type PcmHashPart } from './pcm-hash.ts';
 import type { Span } from './place-list.ts';
@@ -80,8 +80,10 @@ export class ChannelContentTracker {
   readonly #fingerprint: FingerprintTracker;
   readonly #lowSummer: BandSummer;
   readonly #lowSums: Float32Array;
-  readonly #low: BandCounter;
-  readonly #long: BandCounter;
+  readonly #lowLevels: BandLevels;
+  readonly #longLevels: BandLevels;
+  readonly #lowPlace: FingerprintPlace;
+  readonly #longPlace: FingerprintPlace;
   readonly #startSample: number;
   readonly #screensSpeech: boolean;
   readonly #longHop: number;
@@ -92,14 +94,14 @@ export class ChannelContentTracker {
     this.#screensSpeech = sampleRateHz >= LEAST_SPEECH_RATE_HZ;
     this.#bits = new EffectiveBitsTracker(sampleFormat);
     this.#fingerprint = new FingerprintTracker(sampleRateHz, segment);
-    this.#lowFrames = new LowFrames(sampleRateHz, segment.startSample, (spectrum, startSample) =>
-      this.#pushLow(spectrum, startSample),
-    );
+    this.#lowFrames = new LowFrames(sampleRateHz, segment.startSample, (frame) => this.#pushLow(frame));
     this.#speech = new SpeechFrameTracker(this.#lowFrames);
     this.#lowSummer = new BandSummer(lowBands, this.#lowFrames.rateHz / this.#lowFrames.size);
     this.#lowSums = new Float32Array(lowBands.length);
-    this.#low = new BandCounter(lowBands, this.#fingerprint);
-    this.#long = new BandCounter(longBands, this.#fingerprint);
+    this.#lowLevels = new BandLevels(lowBands);
+    this.#longLevels = new BandLevels(longBands);
+    this.#lowPlace = placeInFingerprint(lowBands);
+    this.#longPlace = placeInFingerprint(longBands);
     this.#longHop = longHop;
   }
 
@@ -111,7 +113,12 @@ export class ChannelContentTracker {
 
   /** @param meanSquares of the bands of long frame `index`, which is not silent. */
   pushLong(index: number, meanSquares: Float32Array): void {
-    this.#long.push((index + 0.5) * this.#longHop, meanSquares);
+    // Frames overlap by half: every other one holds all samples once.
+    if (index % 2 === 0) this.#longLevels.push(meanSquares);
+    const { from, to, firstBand } = this.#longPlace;
+    if (to > from) {
+      this.#fingerprint.push((index + 0.5) * this.#longHop, meanSquares.subarray(from, to), firstBand);
+    }
   }
 
   finish(): ChannelContentPart {
@@ -121,47 +128,37 @@ export class ChannelContentTracker {
       bits: this.#bits.finish(),
       hash: this.#hash.finish(),
       speech: this.#screensSpeech ? speech : null,
-      lowBands: this.#low.levels.part,
-      bands: this.#long.levels.part,
+      lowBands: this.#lowLevels.part,
+      bands: this.#longLevels.part,
       fingerprint: this.#fingerprint.finish(),
     };
   }
 
-  #pushLow(spectrum: FrameSpectrum, startSample: number): void {
-    if (this.#screensSpeech) this.#speech.push(spectrum);
-    if (spectrum.isSilent) return;
-    this.#lowSummer.sum(spectrum.power, this.#lowSums);
-    this.#low.push(startSample + this.#lowFrames.hopSamples, this.#lowSums);
+  #pushLow({ power, startSample }: LowFrame): void {
+    if (this.#screensSpeech) this.#speech.push(power);
+    const sums = this.#lowSums;
+    this.#lowSummer.sum(power, sums);
+    if (sumOf(sums, 0, sums.length) < SILENCE_MEAN_SQUARE) return;
+    this.#lowLevels.push(sums);
+    const { from, to, firstBand } = this.#lowPlace;
+    if (to <= from) return;
+    const middleSample = startSample + this.#lowFrames.hopSamples;
+    this.#fingerprint.pushShared(middleSample, sums.subarray(from, to), firstBand);
   }
 }
 
-/** The bands of frames of one kind, for their levels and for the fingerprint. */
-class BandCounter {
-  readonly levels: BandLevels;
-  readonly #fingerprint: FingerprintTracker;
-  /** Which of the bands the fingerprint takes, and as which of its own. */
-  readonly #from: number;
-  readonly #to: number;
-  readonly #firstOfFingerprint: number;
+/** Which of some bands the fingerprint takes, and as which of its own. */
+interface FingerprintPlace {
+  from: number;
+  to: number;
+  firstBand: number;
+}
 
-  constructor(bands: readonly ThirdOctave[], fingerprint: FingerprintTracker) {
-    const [first, last] = [fingerprintBands[0]!.index, fingerprintBands.at(-1)!.index];
-    this.levels = new BandLevels(bands);
-    this.#fingerprint = fingerprint;
-    this.#from = bands.filter(({ index }) => index < first).length;
-    this.#to = bands.filter(({ index }) => index <= last).length;
-    this.#firstOfFingerprint = (bands[this.#from]?.index ?? first) - first;
-  }
-
-  push(middleSample: number, meanSquares: Float32Array): void {
-    this.levels.push(meanSquares);
-    if (this.#to <= this.#from) return;
-    this.#fingerprint.push(
-      middleSample,
-      meanSquares.subarray(this.#from, this.#to),
-      this.#firstOfFingerprint,
-    );
-  }
+function placeInFingerprint(bands: readonly ThirdOctave[]): FingerprintPlace {
+  const [first, last] = [fingerprintBands[0]!.index, fingerprintBands.at(-1)!.index];
+  const from = bands.filter(({ index }) => index < first).length;
+  const to = Math.max(from, bands.filter(({ index }) => index <= last).length);
+  return { from, to, firstBand: (bands[from]?.index ?? first) - first };
 }
 
 type SmallParts = Pick<ChannelContentPart, 'bits' | 'hash' | 'speech' | 'fingerprint'>;

@@ -26,8 +26,8 @@ export interface SampleFormat {
 const FLOAT_BITS = 24;
 /** Codes are counted within 2^15 of the first mean on either side: the bits for them stay in the nearest cache. */
 const REACH_BITS = 15;
-const VISITED_STRIDE = 4;
-const MOST_VISITED = 1 << 20;
+const VISITED_STRIDE = 16;
+const MOST_VISITED = 1 << 18;
 const LEAST_VISITED = 1024;
 const LEAST_REPEATS = 64;
 /** Fewer distinct codes than this share of what evenly spread samples would give: some codes do not occur. */
@@ -44,7 +44,7 @@ const EVEN_DENSITY = { low: 0.7, high: 1.4 };
  * Looks at which codes the samples of a channel take, to tell files whose samples carry fewer bits than are stored.
  *
  * Zero bits: the bitwise or of all codes; a 16-bit recording stored in 24 bits has eight. Codes that do not occur: among
- * every fourth sample within 2^15 codes of the mean, N samples take D distinct codes of W. Were M codes in use and equally
+ * every sixteenth sample within 2^15 codes of the mean, N samples take D distinct codes of W. Were M codes in use and equally
  * likely, D = M (1 - exp(-N / M)); solved for M, M / W is the share in use, and scaling by g after recording leaves 1 / g.
  *
  * Cost: under 1 ns per sample; the or ends as soon as the lowest bit was seen. Samples re full scale, finite.

@@ -60,10 +60,15 @@ export class FingerprintTracker {
   }
 
   /**
-   * Adds what one frame tells of some bands, shared out over the two steps whose middles are nearest.
+   * Adds what one short frame tells of some bands to the step that its middle lies in.
    * @param firstBand place of the first of them among `fingerprintBands`.
    */
   push(middleSample: number, meanSquares: Float32Array, firstBand: number): void {
+    this.#add(Math.floor(middleSample / this.#samplesPerStep) - this.#firstStep, 1, meanSquares, firstBand);
+  }
+
+  /** The same of a frame that is long for a step: shared out over the two steps whose middles are nearest. */
+  pushShared(middleSample: number, meanSquares: Float32Array, firstBand: number): void {
     const place = middleSample / this.#samplesPerStep - 0.5;
     const step = Math.floor(place);
     const later = place - step;

@@ -3,9 +3,11 @@ import { LowRateSignal } from './low-rate.ts';
 
 const FRAME_S = 0.064;
 
-export interface LowFrameVisitor {
-  /** @param startSample first sample of the recording that reaches into the frame. */
-  (spectrum: FrameSpectrum, startSample: number): void;
+/** Lines of one frame, scaled as by `FrameSpectrum`; reused. */
+export interface LowFrame {
+  /** First sample of the recording that reaches into the frame. */
+  startSample: number;
+  readonly power: Float32Array;
 }
 
 /** Frames of about 64 ms, hop half, of a recording reduced to 8 to 16 kHz: what is too slow for the long frames. */
@@ -14,21 +16,23 @@ export class LowFrames {
   readonly size: number;
   readonly #signal: LowRateSignal;
   readonly #spectrum: FrameSpectrum;
-  readonly #frame: Float32Array;
+  readonly #samples: Float32Array;
   readonly #firstSample: number;
-  readonly #visit: LowFrameVisitor;
+  readonly #visit: (frame: LowFrame) => void;
+  readonly #frame: LowFrame;
   #filled = 0;
-  #taken = 0;
+  #visited = 0;
 
   /** @param firstSample place in the recording of the first sample that will be pushed. */
-  constructor(sampleRateHz: number, firstSample: number, visit: LowFrameVisitor) {
-    this.#signal = new LowRateSignal(sampleRateHz, (sample) => this.#take(sample));
+  constructor(sampleRateHz: number, firstSample: number, visit: (frame: LowFrame) => void) {
+    this.#signal = new LowRateSignal(sampleRateHz);
     this.rateHz = this.#signal.rateHz;
     this.size = 2 ** Math.max(5, Math.round(Math.log2(FRAME_S * this.rateHz)));
     this.#spectrum = new FrameSpectrum(this.size);
-    this.#frame = new Float32Array(this.size);
+    this.#samples = new Float32Array(this.size);
     this.#firstSample = firstSample;
     this.#visit = visit;
+    this.#frame = { startSample: firstSample, power: this.#spectrum.power };
   }
 
   /** Samples of the recording from one frame to the next. */
@@ -37,16 +41,22 @@ export class LowFrames {
   }
 
   push(samples: Float32Array, from: number, to: number): void {
-    this.#signal.push(samples, from, to);
+    const reduced = this.#signal.push(samples, from, to);
+    let taken = 0;
+    while (taken < reduced.length) {
+      const end = Math.min(reduced.length, taken + this.size - this.#filled);
+      this.#samples.set(reduced.subarray(taken, end), this.#filled);
+      this.#filled += end - taken;
+      taken = end;
+      if (this.#filled === this.size) this.#closeFrame();
+    }
   }
 
-  #take(sample: number): void {
-    this.#frame[this.#filled++] = sample;
-    this.#taken++;
-    if (this.#filled < this.size) return;
-    this.#spectrum.analyse(this.#frame, 0, this.size);
-    this.#visit(this.#spectrum, this.#firstSample + (this.#taken - this.size) * this.#signal.factor);
-    this.#frame.copyWithin(0, this.size / 2);
+  #closeFrame(): void {
+    this.#spectrum.analyseBins(this.#samples, 0, this.size, { first: 0, end: this.size / 2 });
+    this.#frame.startSample = this.#firstSample + this.#visited++ * this.hopSamples;
+    this.#visit(this.#frame);
+    this.#samples.copyWithin(0, this.size / 2);
     this.#filled = this.size / 2;
   }
 }

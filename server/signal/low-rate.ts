@@ -1,5 +1,5 @@
 /** Rate that a reduced signal has at least, where the recording's own is not lower. */
-export const LOW_RATE_HZ = 8000;
+const LOW_RATE_HZ = 8000;
 
 /** Input samples for one of the reduced signal, whose rate is from 8 kHz up to twice that. */
 export function lowRateFactor(sampleRateHz: number): number {
@@ -30,57 +30,86 @@ export function lowRateResponse(frequencyHz: number, sampleRateHz: number): numb
 export class LowRateSignal {
   readonly factor: number;
   readonly rateHz: number;
-  readonly #take: (sample: number) => void;
+  #reduced = new Float32Array(0);
   #place = 0;
   #sum = 0;
   #moment = 0;
-  /** The rising half of the triangle, over the block before. */
-  #rising = 0;
-  #hasRising = false;
+  /** The rising half of the triangle over the block before; none before the first. */
+  #rising: number | null = null;
 
-  /** @param take gets the samples of the reduced signal; the first one covers the first two blocks. */
-  constructor(sampleRateHz: number, take: (sample: number) => void) {
+  constructor(sampleRateHz: number) {
     this.factor = lowRateFactor(sampleRateHz);
     this.rateHz = sampleRateHz / this.factor;
-    this.#take = take;
   }
 
-  push(samples: Float32Array, from: number, to: number): void {
-    if (this.factor === 1) {
-      for (let i = from; i < to; i++) this.#take(samples[i]!);
-      return;
+  /** @returns the samples that are complete with these, reused; the first of all covers the first two blocks. */
+  push(samples: Float32Array, from: number, to: number): Float32Array {
+    const { factor } = this;
+    if (factor === 1) return samples.subarray(from, to);
+    const most = Math.ceil((to - from) / factor) + 1;
+    if (this.#reduced.length < most) this.#reduced = new Float32Array(most);
+    const first = Math.min(to, from + ((factor - this.#place) % factor));
+    this.#add(samples, from, first);
+    let count = this.#place === factor ? this.#closeBlock(0) : 0;
+    const blocks = Math.floor((to - first) / factor);
+    if (blocks > 0) count = this.#reduceBlocks(samples, first, blocks, count);
+    this.#add(samples, first + blocks * factor, to);
+    return this.#reduced.subarray(0, count);
+  }
+
+  /** Whole blocks, where nothing has to be kept from sample to sample. @returns how many reduced samples there are now. */
+  #reduceBlocks(samples: Float32Array, first: number, blocks: number, count: number): number {
+    const { factor } = this;
+    const scale = 1 / (factor * factor);
+    const reduced = this.#reduced;
+    let at = first;
+    let made = count;
+    let rising = this.#rising;
+    for (let block = 0; block < blocks; block++) {
+      // Two of each run side by side: one addition would have to wait for the one before.
+      let sum = 0;
+      let moment = 0;
+      let nextSum = 0;
+      let nextMoment = 0;
+      let weight = 1;
+      for (; weight < factor; weight += 2, at += 2) {
+        const x = samples[at]!;
+        const next = samples[at + 1]!;
+        sum += x;
+        moment += weight * x;
+        nextSum += next;
+        nextMoment += (weight + 1) * next;
+      }
+      if (weight === factor) {
+        const x = samples[at++]!;
+        sum += x;
+        moment += factor * x;
+      }
+      moment += nextMoment;
+      if (rising !== null) reduced[made++] = (rising + factor * (sum + nextSum) - moment) * scale;
+      rising = moment;
     }
-    let at = from;
-    while (at < to) {
-      const end = Math.min(to, at + this.factor - this.#place);
-      this.#add(samples, at, end);
-      at = end;
-      if (this.#place === this.factor) this.#closeBlock();
-    }
+    this.#rising = rising;
+    return made;
   }
 
   #add(samples: Float32Array, from: number, to: number): void {
-    let weight = this.#place + 1;
-    let sum = 0;
-    let moment = 0;
-    for (let i = from; i < to; i++, weight++) {
-      const x = samples[i]!;
-      sum += x;
-      moment += weight * x;
+    for (let i = from; i < to; i++) {
+      this.#sum += samples[i]!;
+      this.#moment += ++this.#place * samples[i]!;
     }
-    this.#sum += sum;
-    this.#moment += moment;
-    this.#place += to - from;
   }
 
-  #closeBlock(): void {
+  #closeBlock(count: number): number {
     const { factor } = this;
+    const rising = this.#rising;
     const falling = factor * this.#sum - this.#moment;
-    if (this.#hasRising) this.#take((this.#rising + falling) / (factor * factor));
     this.#rising = this.#moment;
-    this.#hasRising = true;
     this.#place = 0;
     this.#sum = 0;
     this.#moment = 0;
+    if (rising === null) return count;
+    this.#reduced[count] = (rising + falling) / (factor * factor);
+    return count + 1;
   }
 }

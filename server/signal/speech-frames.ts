@@ -1,5 +1,4 @@
 import { realFft, type RealFft } from './fft.ts';
-import type { FrameSpectrum } from './frame-spectrum.ts';
 
 /** Band of speech as a telephone carries it. */
 const LEVEL_BAND_HZ = { low: 300, high: 3400 };
@@ -21,6 +20,8 @@ const LONG_LAG_DISCOUNT = 0.1;
 const LOOKED_AT_HARMONICS = 8;
 const LEAST_HARMONICS = 4;
 const LEAST_SALIENCE = 0.2;
+/** Noise alone stands out by 1 dB: no pitch is looked for under this. */
+const LEAST_LEVEL_DB = 1.6;
 const LEVEL_STEPS_PER_DB = 5;
 const PITCH_STEPS_PER_OCTAVE = 100;
 
@@ -56,6 +57,8 @@ export class SpeechFrameTracker {
   readonly #fft: RealFft;
   readonly #rise: number;
   readonly #salience: Float32Array;
+  /** Lines that are looked at. */
+  readonly #lines: number;
   readonly #levels: number[] = [];
   readonly #pitches: number[] = [];
   #learning: Float32Array[] | null = [];
@@ -67,10 +70,12 @@ export class SpeechFrameTracker {
     this.#fft = realFft(size);
     this.#rise = 10 ** ((RISE_DB_PER_S * (size / 2 / rateHz)) / 10);
     this.#salience = new Float32Array(size / 2);
+    this.#lines = Math.min(size / 2, Math.floor((LEVEL_BAND_HZ.high * size) / rateHz) + 1);
     this.#quiet = new Float64Array(size / 2);
   }
 
-  push({ power }: FrameSpectrum): void {
+  /** @param power lines from 0 as `FrameSpectrum` scales them. */
+  push(power: Float32Array): void {
     if (!this.#learning) {
       this.#judge(power);
       return;
@@ -99,54 +104,65 @@ export class SpeechFrameTracker {
     this.#weigh(power);
     const binHz = this.#rateHz / this.#fft.size;
     const first = Math.ceil(LEVEL_BAND_HZ.low / binHz);
-    const end = Math.min(Math.floor(LEVEL_BAND_HZ.high / binHz) + 1, power.length);
+    const salience = this.#salience;
+    const end = this.#lines;
     let sum = 0;
-    for (let k = first; k < end; k++) sum += this.#salience[k]!;
+    for (let k = first; k < end; k++) sum += salience[k]!;
     const levelDb = end > first ? (10 * sum) / (end - first) : 0;
     this.#levels.push(Math.min(255, Math.round(levelDb * LEVEL_STEPS_PER_DB)));
-    this.#pitches.push(this.#findPitch(binHz));
+    this.#pitches.push(levelDb < LEAST_LEVEL_DB ? 0 : this.#findPitch(binHz));
   }
 
   #weigh(power: Float32Array): void {
     const quiet = this.#quiet;
-    for (let k = 1; k < power.length; k++) {
+    const salience = this.#salience;
+    const rise = this.#rise;
+    for (let k = 1; k < this.#lines; k++) {
       const value = power[k]!;
       const before = quiet[k]!;
-      const now = value < before ? before + FALL_SHARE * (value - before) : before * this.#rise;
-      quiet[k] = Math.max(now, SMALLEST_POWER);
-      const ratio = value / (STANDS_OUT * quiet[k]!);
-      this.#salience[k] = ratio > 1 ? Math.min(HIGHEST_DECADES, Math.log10(ratio)) : 0;
+      // Without a branch, which would be guessed wrong at every second line of noise.
+      const followed = Math.min(before * rise, before + FALL_SHARE * (value - before));
+      const now = Math.max(followed, SMALLEST_POWER);
+      quiet[k] = now;
+      const least = STANDS_OUT * now;
+      salience[k] = value > least ? Math.min(HIGHEST_DECADES, Math.log10(value / least)) : 0;
     }
   }
 
   #findPitch(binHz: number): number {
     const { input, size } = this.#fft;
+    const salience = this.#salience;
+    const end = Math.min(size / 2, Math.floor(HIGHEST_HARMONIC_HZ / binHz) + 1);
     input.fill(0);
-    for (let k = Math.ceil(PITCH_HZ.low / binHz); k * binHz <= HIGHEST_HARMONIC_HZ && k < size / 2; k++) {
-      input[k] = this.#salience[k]!;
-      input[size - k] = this.#salience[k]!;
+    for (let k = Math.ceil(PITCH_HZ.low / binHz); k < end; k++) {
+      input[k] = salience[k]!;
+      input[size - k] = salience[k]!;
     }
     this.#fft.transform();
-    const { output } = this.#fft;
-    const at = (lag: number) => output[2 * lag]!;
+    const pitchHz = this.#rateHz / this.#bestLag(this.#fft.output);
+    if (pitchHz === 0 || this.#harmonicsOf(pitchHz / binHz) < LEAST_HARMONICS) return 0;
+    const octaves = Math.log2(pitchHz / PITCH_HZ.low);
+    return Math.max(1, Math.min(255, 1 + Math.round(octaves * PITCH_STEPS_PER_OCTAVE)));
+  }
+
+  /** @param output of the transform: the value at lag n is the real part 2 n. @returns infinity where no lag stands out. */
+  #bestLag(output: Float32Array): number {
+    const longest = Math.min(this.#fft.size / 2 - 2, Math.ceil(this.#rateHz / PITCH_HZ.low));
+    const discount = LONG_LAG_DISCOUNT / longest;
     let best = 0;
     let bestLag = 0;
-    const longest = Math.min(size / 2 - 2, Math.ceil(this.#rateHz / PITCH_HZ.low));
     for (let lag = Math.max(2, Math.floor(this.#rateHz / PITCH_HZ.high)); lag <= longest; lag++) {
-      const value = at(lag);
-      if (value <= at(lag - 1) || value < at(lag + 1)) continue;
-      const score = value * (1 - (LONG_LAG_DISCOUNT * lag) / longest);
+      const value = output[2 * lag]!;
+      if (value <= output[2 * lag - 2]! || value < output[2 * lag + 2]!) continue;
+      const score = value * (1 - discount * lag);
       if (score <= best) continue;
       best = score;
       bestLag = lag;
     }
-    if (bestLag === 0) return 0;
-    const bend = at(bestLag - 1) - 2 * at(bestLag) + at(bestLag + 1);
-    const shift = bend < 0 ? (at(bestLag - 1) - at(bestLag + 1)) / (2 * bend) : 0;
-    const pitchHz = this.#rateHz / (bestLag + shift);
-    if (this.#harmonicsOf(pitchHz / binHz) < LEAST_HARMONICS) return 0;
-    const octaves = Math.log2(pitchHz / PITCH_HZ.low);
-    return Math.max(1, Math.min(255, 1 + Math.round(octaves * PITCH_STEPS_PER_OCTAVE)));
+    if (bestLag === 0) return Infinity;
+    const [before, at, after] = [output[2 * bestLag - 2]!, output[2 * bestLag]!, output[2 * bestLag + 2]!];
+    const bend = before - 2 * at + after;
+    return bestLag + (bend < 0 ? (before - after) / (2 * bend) : 0);
   }
 
   /** How many of the first multiples of a pitch stand out, and over the middle between them and the next. */

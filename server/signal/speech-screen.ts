@@ -17,7 +17,6 @@ const LEAST_WINDOWS = 3;
 /** A pitch that lasts this many frames, moving by no more than a tenth of an octave from one to the next. */
 const LEAST_RUN_FRAMES = 4;
 const MOST_GLIDE_OCTAVES = 0.1;
-const LEAST_LEVEL_DB = 1.6;
 
 /** What tells a voice from machines and knocks; each limit was set on the signals of the test and a wide margin. */
 const VOICED_SHARE = { least: 0.05, most: 0.95 };
@@ -76,12 +75,11 @@ function laidOut(parts: readonly SpeechPart[], hopSamples: number, leastFrames: 
   return { levels, pitches };
 }
 
-function voicedFrames({ levels, pitches }: SpeechFrames): Uint8Array {
-  const voiced = new Uint8Array(levels.length);
-  const isPitched = (i: number) => (pitches[i] ?? 0) > 0 && levelDbOf(levels[i]!) >= LEAST_LEVEL_DB;
+function voicedFrames({ pitches }: SpeechFrames): Uint8Array {
+  const voiced = new Uint8Array(pitches.length);
   let start = 0;
-  for (let i = 0; i <= levels.length; i++) {
-    const pitched = i < levels.length && isPitched(i);
+  for (let i = 0; i <= pitches.length; i++) {
+    const pitched = i < pitches.length && pitches[i]! > 0;
     const goesOn = pitched && i > start && octavesBetween(pitches[i - 1]!, pitches[i]!) <= MOST_GLIDE_OCTAVES;
     if (goesOn) continue;
     if (i - start >= LEAST_RUN_FRAMES) voiced.fill(1, start, i);

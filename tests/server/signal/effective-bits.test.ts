@@ -48,7 +48,7 @@ describe('effective bits', () => {
 
   it.each([1.5, 2.3, 4.7])('see that samples were scaled by %d after recording', (gain) => {
     const scaled = quantised(
-      quantised(whiteNoiseSignal(400_000, 0.05, 5), 16).map((x) => x * gain),
+      quantised(whiteNoiseSignal(400_000, 0.01, 5), 16).map((x) => x * gain),
       16,
     );
     const { codesPerUsed, bits } = effectiveBits(scaled, integer16);

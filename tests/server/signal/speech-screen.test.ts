@@ -10,7 +10,7 @@ import { clickScene } from './synthetic-clicks.ts';
 function screen(samples: Float32Array, sampleRateHz: number, segment = samples.length) {
   const parts: SpeechPart[] = [];
   for (let startSample = 0; startSample < samples.length; startSample += segment) {
-    const frames = new LowFrames(sampleRateHz, startSample, (spectrum) => tracker.push(spectrum));
+    const frames = new LowFrames(sampleRateHz, startSample, ({ power }) => tracker.push(power));
     const tracker = new SpeechFrameTracker(frames);
     frames.push(samples, startSample, Math.min(samples.length, startSample + segment));
     parts.push({ ...tracker.finish(), startSample, hopSamples: frames.hopSamples });
