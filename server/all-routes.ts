@@ -4,6 +4,7 @@ import { auditRoutes } from './features/audit/audit.routes.ts';
 import { healthRoutes } from './features/health/health.routes.ts';
 import { labsRoutes } from './features/labs/labs.routes.ts';
 import { peopleRoutes } from './features/people/people.routes.ts';
+import { candidatesRoutes } from './features/recordings/candidates.routes.ts';
 import { recordingViewsRoutes } from './features/recordings/recording-views.routes.ts';
 import { recordingsRoutes } from './features/recordings/recordings.routes.ts';
 import { runsRoutes } from './features/runs/runs.routes.ts';
@@ -33,6 +34,7 @@ export function allRoutes(deps: Deps): Route[] {
     ...uploadsRoutes(deps),
     ...recordingsRoutes(deps),
     ...recordingViewsRoutes(deps),
+    ...candidatesRoutes(deps),
     ...schemesRoutes(deps),
     ...passesRoutes(deps),
     ...eventsRoutes(deps),

@@ -2,7 +2,7 @@ import compression from 'compression';
 import type { RequestHandler } from 'express';
 
 const texts =
-  /^(text\/(?!event-stream)|application\/(json|problem\+json|ld\+json|javascript|manifest\+json)|image\/svg)/;
+  /^(text\/(?!event-stream)|application\/(json|problem\+json|ld\+json|x-ndjson|javascript|manifest\+json)|image\/svg)/;
 
 /** Text only: sound and archives do not shrink, ranges must stay ranges, and an event stream must not wait. */
 export function compressText(): RequestHandler {

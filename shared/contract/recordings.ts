@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { idSchema, instantSchema, revisionSchema, sha256Schema } from './ids.ts';
 import { storedLayoutSchema } from './layouts.ts';
 import { licenceSchema } from './licence.ts';
-import { audioFormatSchema, burstParametersSchema, measurementSummarySchema } from './measurement.ts';
+import { audioFormatSchema, measurementSummarySchema } from './measurement.ts';
 import { pageSchema, pageQuerySchema } from './page.ts';
 import { sensorKindSchema } from './sensors.ts';
 
@@ -108,24 +108,3 @@ export const listRecordingsQuerySchema = pageQuerySchema.extend({
 });
 export type ListRecordingsQuery = z.infer<typeof listRecordingsQuerySchema>;
 export const recordingsPageSchema = pageSchema(recordingListItemSchema);
-
-export const candidateSchema = burstParametersSchema.extend({
-  id: idSchema,
-  ordinal: z.number().int().min(0),
-  channel: z.number().int().min(0),
-  channels: z.array(z.number().int().min(0)),
-  onsetS: z.number(),
-});
-export type Candidate = z.infer<typeof candidateSchema>;
-
-export const candidateSortSchema = z.enum(['onset', 'strongest']);
-export const listCandidatesQuerySchema = pageQuerySchema.extend({
-  limit: z.coerce.number().int().min(1).max(2000).default(200),
-  channel: z.coerce.number().int().min(0).max(63).optional(),
-  startSample: z.coerce.number().int().min(0).optional(),
-  endSample: z.coerce.number().int().min(0).optional(),
-  hearingClass: z.enum(['below', 'across', 'above', 'unknown']).optional(),
-  sort: candidateSortSchema.default('onset'),
-});
-export type ListCandidatesQuery = z.infer<typeof listCandidatesQuerySchema>;
-export const candidatesPageSchema = pageSchema(candidateSchema);

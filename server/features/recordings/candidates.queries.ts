@@ -1,84 +1,153 @@
-import { and, asc, desc, eq, gt, lt, sql, type SQL } from 'drizzle-orm';
-import { countLimit } from '../../../shared/contract/page.ts';
-import type { ListCandidatesQuery } from '../../../shared/contract/recordings.ts';
+import { and, asc, desc, eq, gt, gte, inArray, lt, lte, sql, type SQL } from 'drizzle-orm';
+import type {
+  CandidateFilters,
+  CandidateSortKey,
+  HearingClass,
+} from '../../../shared/contract/candidates.ts';
 import type { Reader } from '../../db/client.ts';
-import type { RowPlace } from '../../db/row-place.ts';
 import { candidates, detectorRuns } from '../../db/schema/measurements.ts';
 
 export type CandidateRow = typeof candidates.$inferSelect;
-export type CandidateFilters = Omit<ListCandidatesQuery, 'cursor' | 'limit' | 'sort'>;
+export type DetectorRunRow = typeof detectorRuns.$inferSelect;
 
-export function selectNewestDetectorRunId(db: Reader, measurementId: string): string | undefined {
+/** Candidates of one run by their ordinals; `to` is exclusive. */
+export interface OrdinalRange {
+  detectorRunId: string;
+  from: number;
+  to: number;
+}
+
+export function selectNewestDetectorRun(db: Reader, measurementId: string): DetectorRunRow | undefined {
   return db
-    .select({ id: detectorRuns.id })
+    .select()
     .from(detectorRuns)
     .where(eq(detectorRuns.measurementId, measurementId))
     .orderBy(desc(detectorRuns.createdAtMs), desc(detectorRuns.id))
     .limit(1)
-    .get()?.id;
+    .get();
+}
+
+function within({ detectorRunId, from, to }: OrdinalRange): SQL | undefined {
+  return and(
+    eq(candidates.detectorRunId, detectorRunId),
+    gte(candidates.ordinal, from),
+    lt(candidates.ordinal, to),
+  );
 }
 
 /** A candidate belongs to a window when any part of it lies inside; both ends are exclusive. */
-function matching(detectorRunId: string, filters: CandidateFilters): SQL | undefined {
-  const { channel, startSample, endSample, hearingClass } = filters;
+function matching(filters: CandidateFilters): SQL | undefined {
+  const { channel, hearingClass, leastSnrDb, lowHz, highHz, startSample, endSample } = filters;
   return and(
-    eq(candidates.detectorRunId, detectorRunId),
     channel === undefined ? undefined : eq(candidates.channel, channel),
+    hearingClass === undefined ? undefined : eq(candidates.hearingClass, hearingClass),
+    leastSnrDb === undefined ? undefined : gte(candidates.snrDb, leastSnrDb),
+    lowHz === undefined ? undefined : gte(candidates.peakFrequencyHz, lowHz),
+    highHz === undefined ? undefined : lte(candidates.peakFrequencyHz, highHz),
     startSample === undefined ? undefined : gt(candidates.endSample, startSample),
     endSample === undefined ? undefined : lt(candidates.onsetSample, endSample),
-    hearingClass === undefined ? undefined : eq(candidates.hearingClass, hearingClass),
   );
 }
 
-/** Stands in for a level that is not known, below every one that is. */
-const unknownPeakDb = -1e9;
-const peakOrLowest = sql<number>`coalesce(${candidates.peakDb}, ${unknownPeakDb})`;
+const rankOfClass = sql`case ${candidates.hearingClass} when 'below' then 0 when 'across' then 1 when 'above' then 2 end`;
 
-const orders = {
-  onset: { by: asc(candidates.onsetSample), key: sql<number>`${candidates.onsetSample}`, past: sql`>` },
-  strongest: { by: desc(peakOrLowest), key: peakOrLowest, past: sql`<` },
-} as const;
+const sortColumns = {
+  onset: candidates.ordinal,
+  snrDb: candidates.snrDb,
+  peakDb: candidates.peakDb,
+  peakFrequencyHz: candidates.peakFrequencyHz,
+  durationUs: candidates.durationUs,
+  energyFs2S: candidates.energyFs2S,
+  ultrasonicShare: candidates.ultrasonicShare,
+  hearingClass: rankOfClass,
+} as const satisfies Record<CandidateSortKey, unknown>;
 
-interface CandidatesSlice {
-  detectorRunId: string;
-  filters: CandidateFilters;
-  sort: ListCandidatesQuery['sort'];
-  after: RowPlace | null;
-  limit: number;
+interface Ranking {
+  key: CandidateSortKey;
+  isDescending: boolean;
 }
 
-export function selectCandidates(db: Reader, slice: CandidatesSlice): CandidateRow[] {
-  const { detectorRunId, filters, sort, after, limit } = slice;
-  const { by, past, key } = orders[sort];
-  const rest = after
-    ? sql`(${key} ${past} ${after.key} or (${key} = ${after.key} and ${candidates.ordinal} > ${Number(after.id)}))`
-    : undefined;
-  return db
-    .select()
+/** In order, as columns: made into text by SQLite and parsed once, many rows are read several times quicker. */
+export function selectRanked(
+  db: Reader,
+  range: OrdinalRange,
+  filters: CandidateFilters,
+  { key, isDescending }: Ranking,
+): { ordinals: number[]; values: (number | null)[] } {
+  const value = sql<number | null>`${sortColumns[key]}`.as('value');
+  const ordered = db
+    .select({ ordinal: candidates.ordinal, value })
     .from(candidates)
-    .where(and(matching(detectorRunId, filters), rest))
-    .orderBy(by, asc(candidates.ordinal))
-    .limit(limit)
+    .where(and(within(range), matching(filters)))
+    .orderBy(
+      isDescending ? sql`${sortColumns[key]} desc nulls last` : sql`${sortColumns[key]} asc nulls last`,
+      asc(candidates.ordinal),
+    )
+    .as('ordered');
+  const columns = db
+    .select({
+      ordinals: sql<string>`json_group_array(${ordered.ordinal})`,
+      values: sql<string>`json_group_array(${ordered.value})`,
+    })
+    .from(ordered)
+    .get();
+  return {
+    ordinals: JSON.parse(columns?.ordinals ?? '[]') as number[],
+    values: JSON.parse(columns?.values ?? '[]') as (number | null)[],
+  };
+}
+
+interface StepGrid {
+  startSample: number;
+  samplesPerStep: number;
+  steps: number;
+}
+
+export interface StepCount {
+  hearingClass: HearingClass;
+  step: number;
+  count: number;
+}
+
+/** How many of each class have their onset in each of the steps; one that began before the first counts there. */
+export function countBySteps(
+  db: Reader,
+  range: OrdinalRange,
+  filters: CandidateFilters,
+  { startSample, samplesPerStep, steps }: StepGrid,
+): StepCount[] {
+  const wanted = sql`(${candidates.onsetSample} - ${startSample}) / ${samplesPerStep}`;
+  const step = sql<number>`cast(max(0, min(${steps - 1}, ${wanted})) as integer)`.as('step');
+  return db
+    .select({ hearingClass: candidates.hearingClass, step, count: sql<number>`count(*)` })
+    .from(candidates)
+    .where(and(within(range), matching(filters)))
+    .groupBy(candidates.hearingClass, sql`step`)
     .all();
 }
 
-export function placeOfCandidate(row: CandidateRow, sort: ListCandidatesQuery['sort']): RowPlace {
-  const key = sort === 'onset' ? row.onsetSample : (row.peakDb ?? unknownPeakDb);
-  return { key, id: String(row.ordinal) };
+export function selectCandidatesAt(
+  db: Reader,
+  detectorRunId: string,
+  ordinals: readonly number[],
+): CandidateRow[] {
+  return db
+    .select()
+    .from(candidates)
+    .where(and(eq(candidates.detectorRunId, detectorRunId), inArray(candidates.ordinal, [...ordinals])))
+    .all();
 }
 
-/** Counts one row further than is told, so that "more than" is known. */
-export function countCandidates(db: Reader, detectorRunId: string, filters: CandidateFilters): number {
-  const limited = db
-    .select({ one: sql`1`.as('one') })
+/** By onset. */
+export function selectCandidatesWithin(
+  db: Reader,
+  range: OrdinalRange,
+  filters: CandidateFilters,
+): CandidateRow[] {
+  return db
+    .select()
     .from(candidates)
-    .where(matching(detectorRunId, filters))
-    .limit(countLimit + 1)
-    .as('limited');
-  return (
-    db
-      .select({ count: sql<number>`count(*)` })
-      .from(limited)
-      .get()?.count ?? 0
-  );
+    .where(and(within(range), matching(filters)))
+    .orderBy(asc(candidates.ordinal))
+    .all();
 }

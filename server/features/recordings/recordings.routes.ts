@@ -2,8 +2,6 @@ import type { AudioContainer } from '../../../shared/audio/audio-format.ts';
 import { FILE_KINDS } from '../../../shared/audio/file-kind.ts';
 import { idParamsSchema } from '../../../shared/contract/ids.ts';
 import {
-  candidatesPageSchema,
-  listCandidatesQuerySchema,
   listRecordingsQuerySchema,
   recordingSchema,
   recordingsPageSchema,
@@ -14,7 +12,7 @@ import { withRevision } from '../../http/revision.ts';
 import { sendFile } from '../../http/send-file.ts';
 
 export function recordingsRoutes({ services, store }: Deps): Route[] {
-  const { recordings, candidates } = services;
+  const { recordings } = services;
   return [
     defineRoute({
       method: 'get',
@@ -58,16 +56,6 @@ export function recordingsRoutes({ services, store }: Deps): Route[] {
         const file = { path: store.pathOf(row.sha256), contentType, downloadName: row.fileName };
         return sendFile(res, { ...file, ...kept });
       },
-    }),
-    defineRoute({
-      method: 'get',
-      path: '/api/recordings/:id/candidates',
-      summary: 'What the detector proposes, with burst parameters; not for whoever works blind.',
-      access: 'signed-in',
-      params: idParamsSchema,
-      query: listCandidatesQuerySchema,
-      response: candidatesPageSchema,
-      handler: ({ actor, params, query }) => candidates.list(actor, params.id, query),
     }),
   ];
 }

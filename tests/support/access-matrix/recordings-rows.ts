@@ -17,6 +17,7 @@ async function failedId(app: TestApp): Promise<string> {
 }
 
 const sharedAndAssigned = signedIn(200, { administrator: 404, removedMember: 404 });
+const withheldFromBlind = { ...sharedAndAssigned, labeler: 404 };
 const ownLabOnly = signedIn(404, { contributor: 200, reviewer: 200 });
 
 /** The same route before and after sharing; a pass shows nothing of what is held. */
@@ -53,7 +54,10 @@ export const recordingsRows: MatrixRow[] = [
   },
   ...readingRows('GET /api/recordings/:id', ''),
   ...readingRows('GET /api/recordings/:id/audio', '/audio'),
-  ...readingRows('GET /api/recordings/:id/candidates', '/candidates', { ...sharedAndAssigned, labeler: 404 }),
+  ...readingRows('GET /api/recordings/:id/candidates', '/candidates', withheldFromBlind),
+  ...readingRows('GET /api/recordings/:id/candidates/overview', '/candidates/overview', withheldFromBlind),
+  ...readingRows('GET /api/recordings/:id/candidates.csv', '/candidates.csv', withheldFromBlind),
+  ...readingRows('GET /api/recordings/:id/candidates.jsonl', '/candidates.jsonl', withheldFromBlind),
   ...readingRows('GET /api/recordings/:id/peaks', '/peaks?points=10'),
   ...readingRows('GET /api/recordings/:id/spectrogram/layout', '/spectrogram/layout'),
   ...readingRows('GET /api/recordings/:id/spectrogram/:band/:level/:tile', '/spectrogram/ultrasonic/1/0'),

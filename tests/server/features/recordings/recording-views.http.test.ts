@@ -4,7 +4,6 @@ import { readWavHeader } from '../../../../shared/audio/wav-header.ts';
 import { bytesSource } from '../../../../shared/audio/byte-source.ts';
 import { decodeFrames } from '../../../../shared/audio/pcm-decode.ts';
 import { decodeTile } from '../../../../shared/audio/tile.ts';
-import { detectedCandidate, replaceCandidates } from '../../../support/server/seed-candidates.ts';
 import { seedMeasured, seedRecording, smallWav } from '../../../support/server/seed-recordings.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
 
@@ -169,62 +168,5 @@ describe('listening', () => {
   ])('%s is refused at %s', async (query, path) => {
     const { status, body } = await get(`/listen?${query}`);
     expect([status, body.fields[0].path]).toEqual([422, path]);
-  });
-});
-
-describe('candidates', () => {
-  test('page through in either order without losing or repeating one, those of equal strength included', async () => {
-    const found = Array.from({ length: 9 }, (_, n) =>
-      detectedCandidate({
-        onsetSample: 1000 * (n >> 1),
-        endSample: 1000 * (n >> 1) + 100,
-        peakDb: n % 3 === 0 ? null : -10 * (n % 2),
-      }),
-    );
-    replaceCandidates(app, id, found);
-    for (const sort of ['onset', 'strongest']) {
-      const ordinals: number[] = [];
-      const keys: (number | null)[] = [];
-      for (let cursor: string | null = ''; cursor !== null;) {
-        const { body } = await get(
-          `/candidates?limit=2&sort=${sort}${cursor === '' ? '' : `&cursor=${cursor}`}`,
-        );
-        expect(body.total).toEqual({ count: 9, capped: false });
-        ordinals.push(...body.items.map((item: { ordinal: number }) => item.ordinal));
-        keys.push(
-          ...body.items.map((item: { onsetSample: number; peakDb: number | null }) =>
-            sort === 'onset' ? item.onsetSample : item.peakDb,
-          ),
-        );
-        cursor = body.nextCursor;
-      }
-      expect(new Set(ordinals).size).toBe(9);
-      const ordered =
-        sort === 'onset'
-          ? [0, 0, 1000, 1000, 2000, 2000, 3000, 3000, 4000]
-          : [0, 0, 0, -10, -10, -10, null, null, null];
-      expect(keys.map((key) => (key === 0 ? 0 : key))).toEqual(ordered);
-    }
-  });
-
-  test('narrow by window, channel and hearing class; a window takes whatever reaches into it', async () => {
-    replaceCandidates(app, id, [
-      detectedCandidate({ onsetSample: 100, endSample: 200 }),
-      detectedCandidate({ onsetSample: 200, endSample: 300, hearingClass: 'below' }),
-      detectedCandidate({ onsetSample: 300, endSample: 400, channel: 1, channels: [1, 0] }),
-    ]);
-    const ordinals = async (query: string) => {
-      const { body } = await get(`/candidates?${query}`);
-      return body.items.map((item: { ordinal: number }) => item.ordinal);
-    };
-    expect(await ordinals('startSample=150&endSample=201')).toEqual([0, 1]);
-    expect(await ordinals('startSample=200&endSample=300')).toEqual([1]);
-    expect(await ordinals('hearingClass=below')).toEqual([1]);
-    expect(await ordinals('channel=1')).toEqual([2]);
-  });
-
-  test('tell their onset in seconds of the recording', async () => {
-    replaceCandidates(app, id, [detectedCandidate({ onsetSample: 9600 })]);
-    expect((await get('/candidates', 'otherContributor')).body.items[0].onsetS).toBe(0.1);
   });
 });

@@ -91,7 +91,7 @@ describe('what one recording tells', () => {
 describe('whoever works blind', () => {
   test('learns neither candidates, counts nor rates, until the pass is finished', async () => {
     const id = await seedMeasured(app, { sharing: 'shared' });
-    replaceCandidates(app, id, [detectedCandidate()]);
+    replaceCandidates(app.deps, id, [detectedCandidate()]);
     seedPass(app, id, { blind: true });
     const blind = get('labeler', id);
     expect(blind).toMatchObject({
@@ -113,7 +113,7 @@ describe('whoever works blind', () => {
 
   test('sees everything after finishing, and nothing once the pass is cancelled', async () => {
     const finished = await seedMeasured(app, { sharing: 'shared' });
-    replaceCandidates(app, finished, [detectedCandidate(), detectedCandidate()]);
+    replaceCandidates(app.deps, finished, [detectedCandidate(), detectedCandidate()]);
     seedPass(app, finished, { state: 'finished' });
     expect(get('labeler', finished)).toMatchObject({ blind: false, candidateCount: 2, may: { mark: false } });
     const cancelled = await seedMeasured(app, { sharing: 'shared' });
