@@ -11,10 +11,20 @@ function isMissing(value: Maybe): value is null | undefined {
   return value === null || value === undefined || !Number.isFinite(value);
 }
 
+const numberFormats = new Map<string, Intl.NumberFormat>();
+
+/** Making a format costs many times what using it does. */
+function numberFormat(options: Intl.NumberFormatOptions): Intl.NumberFormat {
+  const key = JSON.stringify(options);
+  const known = numberFormats.get(key) ?? new Intl.NumberFormat(LOCALE, options);
+  numberFormats.set(key, known);
+  return known;
+}
+
 /** Digits in groups of three by narrow spaces (SI brochure, 5.4.4), a real minus sign. */
 export function formatNumber(value: Maybe, options: Intl.NumberFormatOptions = {}): string {
   if (isMissing(value)) return NO_VALUE;
-  return new Intl.NumberFormat(LOCALE, options)
+  return numberFormat(options)
     .formatToParts(value)
     .map((part) => {
       if (part.type === 'group') return NARROW_SPACE;

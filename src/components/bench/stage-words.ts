@@ -1,4 +1,4 @@
-import type { Candidate } from '@shared/contract/recordings.ts';
+import type { Candidate } from '@shared/contract/candidates.ts';
 import type { EventClass } from '@shared/contract/schemes.ts';
 import type { BenchMark } from '@/composables/bench/mark.ts';
 import { classGlyph, timeWords } from '@/composables/bench/mark-words.ts';

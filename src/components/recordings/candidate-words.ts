@@ -1,9 +1,8 @@
 import type { Ultrasound } from '@shared/contract/measurement.ts';
-import type { Candidate, Recording } from '@shared/contract/recordings.ts';
+import type { Candidate, HearingClass } from '@shared/contract/candidates.ts';
+import type { Recording } from '@shared/contract/recordings.ts';
 import type { Fact } from '@/components/app/fact.ts';
-import { formatNumber } from '@/composables/useFormat.ts';
-
-export type HearingClass = Candidate['hearingClass'];
+import { formatCount, formatNumber } from '@/composables/useFormat.ts';
 
 export const hearingWords: Readonly<Record<HearingClass, string>> = {
   above: 'above',
@@ -20,7 +19,7 @@ export const hearingOptions = [
 ] as const;
 
 /** Two or fewer: the count of chance is an expectation, so it is rounded up. */
-function chanceBound(expected: number): string {
+export function chanceBound(expected: number): string {
   return expected <= 1 ? '1 or fewer' : `${formatNumber(Math.ceil(expected))} or fewer`;
 }
 
@@ -42,6 +41,13 @@ export function candidateFacts({ verdict, candidates }: Ultrasound): Fact[] {
       value: chanceBound(candidates.expectedByChance),
     },
   ];
+}
+
+/** "1 204 of 100 000 candidates: above the hearing line, at least 12 dB over noise." */
+export function listSentence(count: number, all: number | null, filterWords: readonly string[]): string {
+  const whole = formatCount(all ?? count, 'candidate');
+  if (filterWords.length === 0) return `${formatCount(count, 'candidate')}.`;
+  return `${formatNumber(count)} of ${whole}: ${filterWords.join(', ')}.`;
 }
 
 const leastMarginS = 0.002;

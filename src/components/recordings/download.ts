@@ -1,38 +1,70 @@
 import type { Recording } from '@shared/contract/recordings.ts';
 import { formatBytes } from '@/composables/useFormat.ts';
 
-/** A file to take along; its address is made by the page. */
-export interface Download {
+export interface DownloadLink {
   label: string;
-  detail: string;
+  /** Its address is made by the page. */
   href: string;
   fileName: string;
 }
 
-type Kind = 'audio' | 'frames.csv' | 'spectrum' | 'candidates';
+/** Something to take along: one file, or one for each channel. */
+export interface Download {
+  label: string;
+  detail: string;
+  links: DownloadLink[];
+}
+
+export type DownloadKind = 'audio' | 'frames.csv' | 'spectrum' | 'candidates.csv' | 'candidates.jsonl';
+export type AddressOf = (kind: DownloadKind, channel?: number) => string;
+
+type Facts = Pick<Recording, 'fileName' | 'sizeBytes' | 'processing' | 'blind' | 'may' | 'channels'>;
 
 /** What can be taken along of a recording; whoever works blind gets what was recorded, not what was found. */
-export function downloadsOf(
-  recording: Pick<Recording, 'fileName' | 'sizeBytes' | 'processing' | 'blind' | 'may'>,
-  addressOf: (kind: Kind) => string,
-): Download[] {
+export function downloadsOf(recording: Facts, addressOf: AddressOf): Download[] {
   const { fileName, sizeBytes, processing, blind, may } = recording;
   const isMeasured = processing === 'measured';
-  const item = (kind: Kind, label: string, detail: string, ending: string): Download => ({
-    ...{ label, detail },
-    href: addressOf(kind),
-    fileName: ending === '' ? fileName : `${fileName}.${ending}`,
+  const one = (label: string, detail: string, kind: DownloadKind, ending = `.${kind}`): Download => ({
+    label,
+    detail,
+    links: [{ label, href: addressOf(kind), fileName: `${fileName}${ending}` }],
   });
   return [
-    ...(may.downloadAudio ? [item('audio', 'Original file', `WAV, ${formatBytes(sizeBytes)}`, '')] : []),
+    ...(may.downloadAudio ? [one('Original file', `WAV, ${formatBytes(sizeBytes)}`, 'audio', '')] : []),
     ...(isMeasured
       ? [
-          item('frames.csv', 'Descriptors of every frame', 'CSV', 'frames.csv'),
-          item('spectrum', 'Spectrum while quiet and active', 'JSON', 'spectrum.json'),
+          ofChannels(recording, 'Descriptors of every frame', 'CSV', (channel) => ({
+            href: addressOf('frames.csv', channel),
+            ending: 'frames.csv',
+          })),
+          ofChannels(recording, 'Spectrum while quiet and active', 'JSON', (channel) => ({
+            href: addressOf('spectrum', channel),
+            ending: 'spectrum.json',
+          })),
         ]
       : []),
     ...(isMeasured && !blind
-      ? [item('candidates', 'Candidates, the first 2\u202F000', 'JSON', 'candidates.json')]
+      ? [
+          one('All candidates, as a table', 'CSV', 'candidates.csv'),
+          one('All candidates, as lines', 'JSON lines', 'candidates.jsonl'),
+        ]
       : []),
   ];
+}
+
+function ofChannels(
+  { fileName, channels }: Facts,
+  label: string,
+  detail: string,
+  fileOf: (channel: number) => { href: string; ending: string },
+): Download {
+  const links = Array.from({ length: channels }, (_value, channel) => {
+    const { href, ending } = fileOf(channel);
+    return {
+      label: channels === 1 ? label : `channel ${channel}`,
+      href,
+      fileName: `${fileName}.channel-${channel}.${ending}`,
+    };
+  });
+  return { label, detail, links };
 }

@@ -1,4 +1,4 @@
-import type { Candidate } from '@shared/contract/recordings.ts';
+import type { Candidate } from '@shared/contract/candidates.ts';
 import { clampSpan } from '@shared/domain/event-span.ts';
 import type { SampleSpan } from '@shared/domain/event-span.ts';
 import type { MarkFields } from '@/composables/bench/mark.ts';

@@ -1,5 +1,5 @@
 import { computed, shallowRef } from 'vue';
-import type { Candidate } from '@shared/contract/recordings.ts';
+import type { Candidate } from '@shared/contract/candidates.ts';
 import type { BenchData } from '@/composables/bench/load-bench.ts';
 import { lessSure } from '@/composables/bench/mark.ts';
 import type { MarkFields } from '@/composables/bench/mark.ts';

@@ -2,8 +2,8 @@ import { keepPreviousData, useQuery } from '@tanstack/vue-query';
 import { refDebounced } from '@vueuse/core';
 import { computed } from 'vue';
 import type { Ref } from 'vue';
-import type { Candidate } from '@shared/contract/recordings.ts';
-import { listCandidatePage } from '@/api/recordings.ts';
+import type { Candidate } from '@shared/contract/candidates.ts';
+import { listCandidatePage } from '@/api/candidates.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 
 export interface CandidatesOptions {

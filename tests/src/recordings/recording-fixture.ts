@@ -1,5 +1,6 @@
 import type { MeasurementSummary, Ultrasound } from '@shared/contract/measurement.ts';
-import type { Candidate, Recording } from '@shared/contract/recordings.ts';
+import type { Candidate } from '@shared/contract/candidates.ts';
+import type { Recording } from '@shared/contract/recordings.ts';
 
 const id = '019a0000-0000-7000-8000-000000000001';
 
@@ -134,6 +135,8 @@ export function candidate(part: Partial<Candidate> = {}): Candidate {
     hearingClass: 'above',
     snrDb: 31,
     clipped: false,
+    bandLowHz: 20_000,
+    bandHighHz: 400_000,
     ...part,
   };
 }
