@@ -9,6 +9,7 @@ import { packageLongFrames, packageShortFrames } from '../signal/package-rows.ts
 import { kernelBlockSummer, kernelCellSummer } from './kernel-cells.ts';
 import { kernelDecoder } from './kernel-decoder.ts';
 import { KernelLongFrames, KernelShortFrames } from './kernel-rows.ts';
+import { KernelSpectrumTables } from './kernel-spectra.ts';
 import { Kernel } from './kernel.ts';
 
 /**
@@ -31,6 +32,7 @@ export function kernelEngine(): FrameEngine {
     decoder: (layout, maximumBytes) => kernelDecoder(kernel, layout, maximumBytes),
     cellSummer: (maximumCells) => kernelCellSummer(kernel, maximumCells),
     blockSummer: (length, maximumBlocks) => kernelBlockSummer(kernel, length, maximumBlocks),
+    spectrumTables: (settings) => new KernelSpectrumTables(kernel, settings),
   };
 }
 

@@ -26,6 +26,8 @@ export interface KernelFunctions {
     scratch: number,
   ): void;
   blockSums(samples: number, blocks: number, length: number, sums: number): void;
+  accumulate(power: number, points: number, maximum: number, sums: number, counts: number): void;
+  pool(power: number, group: number, points: number, out: number): void;
   decodeInteger(bytes: number, stride: number, width: number, count: number, samples: number): void;
   decodeFloat(bytes: number, stride: number, width: number, count: number, samples: number): number;
 }

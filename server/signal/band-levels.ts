@@ -1,13 +1,15 @@
 import { rmsToDb } from '../../shared/audio/units.ts';
 import type { BandLevel } from '../../shared/contract/measurement.ts';
-import { PowerQuantiles, type PowerQuantilesPart } from './power-quantiles.ts';
+import { powerQuantile } from './power-quantile.ts';
+import { openPlainTables, type SpectrumTables } from './spectrum-tables.ts';
 import type { ThirdOctave } from './third-octaves.ts';
 
 /** What the frames of one segment add to the levels of its bands; plain data. */
 export interface BandLevelsPart {
   sums: Float64Array;
-  maxima: Float32Array;
-  quantiles: PowerQuantilesPart;
+  maximum: Float32Array;
+  counts: Uint32Array;
+  frames: number;
 }
 
 /** The floor is what nine frames of ten exceed. */
@@ -22,39 +24,32 @@ const FLOOR_SHARE = 0.1;
  */
 export class BandLevels {
   readonly #bands: readonly ThirdOctave[];
-  readonly #sums: Float64Array;
-  readonly #maxima: Float32Array;
-  readonly #quantiles: PowerQuantiles;
+  readonly #tables: SpectrumTables;
   #frames = 0;
 
   constructor(bands: readonly ThirdOctave[]) {
     this.#bands = bands;
-    this.#sums = new Float64Array(bands.length);
-    this.#maxima = new Float32Array(bands.length);
-    this.#quantiles = new PowerQuantiles(bands.length);
+    this.#tables = openPlainTables({ points: bands.length, group: 1, classes: 1 });
   }
 
   /** @param meanSquares one per band, of a frame that is not silent. */
   push(meanSquares: Float32Array): void {
-    for (let band = 0; band < this.#sums.length; band++) {
-      const value = meanSquares[band]!;
-      this.#sums[band]! += value;
-      if (value > this.#maxima[band]!) this.#maxima[band] = value;
-    }
-    this.#quantiles.push(meanSquares);
+    this.#tables.push(meanSquares, 0, true);
     this.#frames++;
   }
 
   get part(): BandLevelsPart {
-    return { sums: this.#sums, maxima: this.#maxima, quantiles: this.#quantiles.part };
+    const { sums, maximum, counts } = this.#tables;
+    return { sums, maximum, counts, frames: this.#frames };
   }
 
   /** Takes in the frames that another one of the same bands was given. */
-  absorb({ sums, maxima, quantiles }: BandLevelsPart): void {
-    sums.forEach((sum, band) => (this.#sums[band]! += sum));
-    maxima.forEach((value, band) => (this.#maxima[band] = Math.max(this.#maxima[band]!, value)));
-    this.#quantiles.absorb(quantiles);
-    this.#frames += quantiles.frames;
+  absorb({ sums, maximum, counts, frames }: BandLevelsPart): void {
+    const tables = this.#tables;
+    sums.forEach((sum, band) => (tables.sums[band]! += sum));
+    maximum.forEach((value, band) => (tables.maximum[band] = Math.max(tables.maximum[band]!, value)));
+    counts.forEach((count, cell) => (tables.counts[cell]! += count));
+    this.#frames += frames;
   }
 
   /**
@@ -63,8 +58,9 @@ export class BandLevels {
    */
   finish(gain: (band: ThirdOctave) => number = () => 1): BandLevel[] {
     if (this.#frames === 0) return [];
-    const floors = this.#quantiles.quantile(FLOOR_SHARE);
-    const medians = this.#quantiles.quantile(0.5);
+    const { sums, maximum, counts } = this.#tables;
+    const floors = powerQuantile(counts, this.#frames, FLOOR_SHARE);
+    const medians = powerQuantile(counts, this.#frames, 0.5);
     return this.#bands.map((band, index) => {
       const { lowHz, middleHz, highHz } = band;
       const level = (meanSquare: number) => rmsToDb(Math.sqrt(meanSquare * gain(band)));
@@ -72,8 +68,8 @@ export class BandLevels {
         ...{ lowHz, middleHz, highHz },
         floorDb: level(floors[index]!),
         medianDb: level(medians[index]!),
-        meanDb: level(this.#sums[index]! / this.#frames),
-        maximumDb: level(this.#maxima[index]!),
+        meanDb: level(sums[index]! / this.#frames),
+        maximumDb: level(maximum[index]!),
       };
     });
   }

@@ -147,6 +147,7 @@ export class ChannelPass {
     return new LongFrames({
       cursor: new FrameCursor(plan.long, plan.frames, segment, LONG_FRAMES_AT_ONCE),
       rows: arithmetic.long,
+      openTables: arithmetic.openTables,
       bands: rowBands(plan).length,
       sampleRateHz: plan.sampleRateHz,
       size: plan.long.size,

@@ -3,6 +3,7 @@ import type { SampleLayout } from '../../shared/audio/audio-format.ts';
 import type { SampleWindow } from './frame-cursor.ts';
 import type { FrameGrid } from './frame-plan.ts';
 import { CEPSTRAL_COEFFICIENTS } from './mel-bank.ts';
+import type { OpenSpectrumTables } from './spectrum-tables.ts';
 import type { ThirdOctave } from './third-octaves.ts';
 
 /** Columns of a row of features; the cepstral coefficients and the third octaves take as many as there are. */
@@ -143,6 +144,8 @@ export interface FrameEngine {
   cellSummer(maximumCells: number): CellSummer;
   /** @param length samples of a block. @param maximumBlocks most blocks of one call. */
   blockSummer(length: number, maximumBlocks: number): BlockSummer;
+  /** For the long-term spectra of one channel. */
+  spectrumTables: OpenSpectrumTables;
 }
 
 export type FrameDecoder = (bytes: Uint8Array, out: Float32Array[]) => DecodedFrames;

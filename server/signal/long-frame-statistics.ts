@@ -2,6 +2,7 @@ import type { ChannelDescriptors } from '../../shared/contract/measurement.ts';
 import { BinnedMedian, type BinnedMedianPart } from './binned-median.ts';
 import { bandBins } from './frame-plan.ts';
 import type { FrameRow } from './frame-row.ts';
+import type { OpenSpectrumTables } from './spectrum-tables.ts';
 import { LongTermSpectrum, type LongTermPart, type LongTermSpectra } from './long-term-spectrum.ts';
 
 export interface LongFrameStatisticsSettings {
@@ -31,11 +32,14 @@ export class LongFrameStatistics {
   readonly #medians: Record<DescriptorName, BinnedMedian>;
   readonly #seesUltrasound: boolean;
 
-  constructor({ sampleRateHz, size, spectrumPoints }: LongFrameStatisticsSettings) {
+  constructor(
+    { sampleRateHz, size, spectrumPoints }: LongFrameStatisticsSettings,
+    openTables?: OpenSpectrumTables,
+  ) {
     const nyquistHz = sampleRateHz / 2;
     const ultrasonic = bandBins('ultrasonic', size, sampleRateHz);
     this.#seesUltrasound = ultrasonic.end > ultrasonic.first;
-    this.longTerm = new LongTermSpectrum({ size, sampleRateHz, maximumPoints: spectrumPoints });
+    this.longTerm = new LongTermSpectrum({ size, sampleRateHz, maximumPoints: spectrumPoints }, openTables);
     this.#medians = {
       centroidHz: new BinnedMedian(0, nyquistHz),
       spreadHz: new BinnedMedian(0, nyquistHz),

@@ -10,10 +10,12 @@ import {
   type LongFrameStatisticsSettings,
 } from './long-frame-statistics.ts';
 import { CEPSTRAL_COEFFICIENTS } from './mel-bank.ts';
+import type { OpenSpectrumTables } from './spectrum-tables.ts';
 
 export interface LongFramesSettings extends LongFrameStatisticsSettings {
   cursor: FrameCursor;
   rows: LongFrameRows;
+  openTables: OpenSpectrumTables;
   bands: number;
   /** Whether meyda's own extractors give the descriptors, instead of the engine's, which are equal. */
   byMeyda: boolean;
@@ -35,7 +37,7 @@ export class LongFrames {
 
   constructor(settings: LongFramesSettings) {
     this.#settings = settings;
-    this.#statistics = new LongFrameStatistics(settings);
+    this.#statistics = new LongFrameStatistics(settings, settings.openTables);
     this.#row = new Float32Array(BAND_COLUMN + settings.bands);
   }
 

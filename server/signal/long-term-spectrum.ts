@@ -1,6 +1,7 @@
-import { EnergyClasses, type EnergyClassesPart } from './energy-classes.ts';
+import { ENERGY_CLASSES, EnergyClasses, energyClass } from './energy-classes.ts';
 import { sumOf } from './frame-spectrum.ts';
-import { PowerQuantiles, type PowerQuantilesPart } from './power-quantiles.ts';
+import { powerQuantile } from './power-quantile.ts';
+import { openPlainTables, type OpenSpectrumTables, type SpectrumTables } from './spectrum-tables.ts';
 
 /** Densities of one channel on one axis; dB re full scale squared per hertz, so that their integral is the mean square. */
 export interface LongTermSpectra {
@@ -20,11 +21,13 @@ export interface LongTermSettings {
   maximumPoints: number;
 }
 
-/** What one segment adds to the spectra of a channel. */
+/** What one segment adds to the spectra of a channel; classes without a frame are left out. */
 export interface LongTermPart {
   maximum: Float32Array;
-  classes: EnergyClassesPart;
-  quantiles: PowerQuantilesPart;
+  counts: Uint32Array;
+  countedFrames: number;
+  classFrames: Uint32Array;
+  classSums: { index: number; sums: Float64Array }[];
 }
 
 /** What a density without any power is shown as. */
@@ -51,77 +54,79 @@ const HANN_ENBW_BINS = 1.5;
 export class LongTermSpectrum {
   readonly #settings: LongTermSettings;
   readonly #binsPerPoint: number;
-  readonly #points: Float32Array;
-  readonly #maximum: Float32Array;
-  readonly #classes: EnergyClasses;
-  readonly #quantiles: PowerQuantiles;
+  readonly #tables: SpectrumTables;
+  readonly #classFrames = new Uint32Array(ENERGY_CLASSES);
   readonly #firstActivityBin: number;
   #frames = 0;
+  #countedFrames = 0;
 
-  constructor(settings: LongTermSettings) {
+  /** @param openTables where the spectra are gathered. */
+  constructor(settings: LongTermSettings, openTables: OpenSpectrumTables = openPlainTables) {
     const bins = settings.size / 2;
     this.#settings = settings;
-    this.#binsPerPoint = Math.max(1, 2 ** Math.ceil(Math.log2(bins / settings.maximumPoints)));
-    const points = bins / this.#binsPerPoint;
-    this.#points = new Float32Array(points);
-    this.#maximum = new Float32Array(points);
-    this.#classes = new EnergyClasses(points);
-    this.#quantiles = new PowerQuantiles(points);
+    const group = Math.max(1, 2 ** Math.ceil(Math.log2(bins / settings.maximumPoints)));
+    this.#binsPerPoint = group;
+    this.#tables = openTables({ points: bins / group, group, classes: ENERGY_CLASSES });
     const lowBin = Math.ceil((ACTIVITY_LOW_HZ * settings.size) / settings.sampleRateHz);
     this.#firstActivityBin = lowBin < bins / 2 ? Math.max(1, lowBin) : 1;
   }
 
   /** @param power bins 0 to N/2 - 1 of a frame that is not silent. Bin 0 is not used: the mean was removed. */
   push(power: Float32Array): void {
-    const points = this.#pool(power);
-    const maximum = this.#maximum;
-    for (let p = 0; p < points.length; p++) if (points[p]! > maximum[p]!) maximum[p] = points[p]!;
+    const classIndex = energyClass(sumOf(power, this.#firstActivityBin, power.length));
     // Frames overlap by half: every other one holds all samples once.
-    if (this.#frames++ % 2 === 0) this.#quantiles.push(points);
-    this.#classes.push(sumOf(power, this.#firstActivityBin, power.length), points);
+    const isCounted = this.#frames++ % 2 === 0;
+    this.#tables.push(power, classIndex, isCounted);
+    this.#classFrames[classIndex]!++;
+    if (isCounted) this.#countedFrames++;
   }
 
   get part(): LongTermPart {
-    return { maximum: this.#maximum, classes: this.#classes.part, quantiles: this.#quantiles.part };
+    const { maximum, counts, sums, points } = this.#tables;
+    const classSums: LongTermPart['classSums'] = [];
+    for (const [index, frames] of this.#classFrames.entries()) {
+      if (frames > 0) classSums.push({ index, sums: sums.slice(index * points, (index + 1) * points) });
+    }
+    return {
+      maximum: maximum.slice(),
+      counts: counts.slice(),
+      countedFrames: this.#countedFrames,
+      classFrames: this.#classFrames,
+      classSums,
+    };
   }
 
   /** Takes in the frames that another one of the same settings was given. */
-  absorb({ maximum, classes, quantiles }: LongTermPart): void {
-    maximum.forEach((value, p) => (this.#maximum[p] = Math.max(this.#maximum[p]!, value)));
-    this.#classes.absorb(classes);
-    this.#quantiles.absorb(quantiles);
+  absorb(part: LongTermPart): void {
+    const { maximum, counts, sums, points } = this.#tables;
+    part.maximum.forEach((value, p) => (maximum[p] = Math.max(maximum[p]!, value)));
+    for (let cell = 0; cell < counts.length; cell++) counts[cell]! += part.counts[cell]!;
+    for (const { index, sums: added } of part.classSums) {
+      added.forEach((sum, p) => (sums[index * points + p]! += sum));
+    }
+    part.classFrames.forEach((frames, index) => (this.#classFrames[index]! += frames));
+    this.#countedFrames += part.countedFrames;
   }
 
   finish(): LongTermSpectra {
-    const { quiet, active } = this.#classes.split(QUIET_SHARE, ACTIVE_OVER_QUIET_DB);
+    const { maximum, counts, sums, points } = this.#tables;
+    const classes = new EnergyClasses(points, sums, this.#classFrames);
+    const { quiet, active } = classes.split(QUIET_SHARE, ACTIVE_OVER_QUIET_DB);
     const frequenciesHz: number[] = [];
-    for (let p = this.#firstPoint; p < this.#points.length; p++) frequenciesHz.push(this.#middleHz(p));
+    for (let p = this.#firstPoint; p < points; p++) frequenciesHz.push(this.#middleHz(p));
     return {
       frequenciesHz,
       quietDbPerHz: this.#toDensities(quiet),
       activeDbPerHz: active && this.#toDensities(active),
-      medianDbPerHz: this.#toDensities(this.#quantiles.quantile(0.5)),
-      meanDbPerHz: this.#toDensities(this.#classes.mean()),
-      maximumDbPerHz: this.#toDensities(this.#maximum),
+      medianDbPerHz: this.#toDensities(powerQuantile(counts, this.#countedFrames, 0.5)),
+      meanDbPerHz: this.#toDensities(classes.mean()),
+      maximumDbPerHz: this.#toDensities(maximum),
     };
   }
 
   /** Without averaging, the first point would be the mean that was removed. */
   get #firstPoint(): number {
     return this.#binsPerPoint === 1 ? 1 : 0;
-  }
-
-  #pool(power: Float32Array): Float32Array {
-    const group = this.#binsPerPoint;
-    if (group === 1) return power;
-    for (let p = 0; p < this.#points.length; p++) {
-      const first = Math.max(1, p * group);
-      const end = (p + 1) * group;
-      let sum = 0;
-      for (let k = first; k < end; k++) sum += power[k]!;
-      this.#points[p] = sum / (end - first);
-    }
-    return this.#points;
   }
 
   #middleHz(point: number): number {

@@ -3,6 +3,7 @@ import type { BlockSummer, CellSummer, CellTable, FrameEngine } from './frame-en
 import { sumOf } from './frame-spectrum.ts';
 import { packageLongFrames, packageShortFrames } from './package-rows.ts';
 import { forEachCell } from './sample-cells.ts';
+import { openPlainTables } from './spectrum-tables.ts';
 
 /**
  * The engine on the SIMD transform of the package pffft-wasm and plain TypeScript: the fallback of the kernel, and what it is
@@ -19,6 +20,7 @@ export function packageEngine(): FrameEngine {
     shortFrames: packageShortFrames,
     decoder: (layout) => (bytes, out) => decodeFrames(bytes, layout, out),
     cellSummer,
+    spectrumTables: openPlainTables,
     blockSummer,
   };
 }

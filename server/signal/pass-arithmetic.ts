@@ -11,6 +11,7 @@ import { rowBands } from './frame-row.ts';
 import { samplesPerMean } from './mains.ts';
 import { packageShortFrames } from './package-rows.ts';
 import { CELL_SAMPLES } from './sample-cells.ts';
+import type { OpenSpectrumTables } from './spectrum-tables.ts';
 import type { Picture } from './spectrogram-columns.ts';
 
 /** Frames computed at once, multiples of four. */
@@ -26,6 +27,7 @@ export interface PassArithmetic {
   audible: PowerRows | undefined;
   sumCells: CellSummer;
   sumMeans: BlockSummer;
+  openTables: OpenSpectrumTables;
 }
 
 /** @param blockFrames most samples of a channel in one push. */
@@ -64,5 +66,6 @@ export function openArithmetic(
         : undefined,
     sumCells: engine.cellSummer(Math.ceil(blockFrames / CELL_SAMPLES) + 1),
     sumMeans: engine.blockSummer(means, Math.ceil(blockFrames / means)),
+    openTables: (settings) => engine.spectrumTables(settings),
   };
 }

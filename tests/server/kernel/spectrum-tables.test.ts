@@ -1,0 +1,42 @@
+import { describe, expect, it } from 'vitest';
+import { kernelEngine } from '../../../server/kernel/kernel-engine.ts';
+import { openPlainTables } from '../../../server/signal/spectrum-tables.ts';
+import { whiteNoiseSignal } from '../../support/wav/signals.ts';
+
+/** Powers over 20 decades, zero among them, with a large first bin that averaging leaves out. */
+function spectrumOf(bins: number, seed: number): Float32Array {
+  const noise = whiteNoiseSignal(bins, 3, seed);
+  const powers = noise.map((value, k) => (k % 17 === 3 ? 0 : 10 ** (value * 3 - 8)));
+  powers[0] = 1e6;
+  return powers;
+}
+
+describe('the tables of long-term spectra', () => {
+  it.each([
+    ['one bin per point', 256, 1],
+    ['two bins per point', 512, 2],
+    ['eight bins per point', 2048, 8],
+  ])('are the same in the kernel as in plain memory, with %s', (_, bins, group) => {
+    const settings = { points: bins / group, group, classes: 3 };
+    const kernel = kernelEngine().spectrumTables(settings);
+    const plain = openPlainTables(settings);
+    for (let frame = 0; frame < 50; frame++) {
+      const power = spectrumOf(bins, frame + 1);
+      kernel.push(power, frame % 3, frame % 2 === 0);
+      plain.push(power, frame % 3, frame % 2 === 0);
+    }
+    for (const [p, value] of plain.maximum.entries())
+      expect(Math.abs(kernel.maximum[p]! - value)).toBeLessThanOrEqual(1e-6 * value);
+    for (const [s, value] of plain.sums.entries()) {
+      expect(Math.abs(kernel.sums[s]! - value)).toBeLessThanOrEqual(1e-6 * Math.abs(value));
+    }
+    const moved = plain.counts.reduce((sum, count, cell) => sum + Math.abs(count - kernel.counts[cell]!), 0);
+    // Means are rounded in another order, so that a value at the edge of a cell may fall beside it.
+    expect(moved).toBeLessThanOrEqual(group === 1 ? 0 : 20);
+    expect(kernel.counts.reduce((sum, count) => sum + count, 0)).toBe(25 * settings.points);
+  });
+
+  it('refuse a number of points that four lanes do not divide', () => {
+    expect(() => kernelEngine().spectrumTables({ points: 6, group: 1, classes: 1 })).toThrow(RangeError);
+  });
+});
