@@ -11,6 +11,8 @@ export interface FloorSpectrum {
 
 /** A fall of the floor by this much within a twelfth of an octave is a filter or a codec, not a sensor. */
 const LEAST_DROP_DB = 12;
+/** The edge lies where the floor has fallen by this much: half-way down to digital silence would be far out on its skirt. */
+const EDGE_FALL_DB = 10;
 /** Over the top of the transition the floor must stay down, up to Nyquist. */
 const STAYS_DOWN_DB = 9;
 const LOWEST_EDGE_HZ = 2000;
@@ -64,17 +66,17 @@ function findEdgeHz(floor: FloorSpectrum): number | undefined {
   return best && refineEdge(floor, best.hz);
 }
 
-/** Where, around a coarse edge, the floor passes half-way (in dB) between the levels on both sides. */
+/** Where, around a coarse edge, the floor leaves the level below it: by 10 dB, or by half the fall where that is less. */
 function refineEdge(floor: FloorSpectrum, coarseHz: number): number {
   const wide = TRANSITION * TRANSITION;
   const belowDb = medianBetween(floor, coarseHz / NEIGHBOURHOOD, coarseHz / wide);
   const aboveDb = medianBetween(floor, coarseHz * wide, coarseHz * NEIGHBOURHOOD);
   if (belowDb === undefined || aboveDb === undefined) return coarseHz;
-  const middleDb = (belowDb + aboveDb) / 2;
+  const edgeDb = belowDb - Math.min(EDGE_FALL_DB, (belowDb - aboveDb) / 2);
   const { frequenciesHz, floorDbPerHz } = floor;
   for (let i = frequenciesHz.length - 1; i > 0; i--) {
     if (frequenciesHz[i]! > coarseHz * wide) continue;
-    if (floorDbPerHz[i]! >= middleDb) return frequenciesHz[i]!;
+    if (floorDbPerHz[i]! >= edgeDb) return frequenciesHz[i]!;
   }
   return coarseHz;
 }
