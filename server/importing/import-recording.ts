@@ -1,9 +1,11 @@
 import { rm } from 'node:fs/promises';
 import type { AudioFormat } from '../../shared/audio/audio-format.ts';
-import type { RawLayout, StoredLayout } from '../../shared/audio/declared-layout.ts';
+import { readCsvFile } from '../../shared/audio/csv-file.ts';
+import type { RawLayout, StoredCsvLayout, StoredLayout } from '../../shared/audio/declared-layout.ts';
 import { readFlacHeader } from '../../shared/audio/flac-header.ts';
 import { rawFileFacts } from '../../shared/audio/raw-file.ts';
 import { withFileSource } from '../store/file-source.ts';
+import { importCsv } from './import-csv.ts';
 import { importFlac } from './import-flac.ts';
 import type { ImportControls } from './import-controls.ts';
 import { importRaw } from './import-raw.ts';
@@ -29,8 +31,9 @@ export interface Imported {
  */
 export async function importRecording(input: ImportInput, controls: ImportControls = {}): Promise<Imported> {
   try {
-    if (input.layout?.kind === 'raw') return await importRawFile(input, input.layout, controls);
-    return await importFlacFile(input, controls);
+    if (input.layout === null) return await importFlacFile(input, controls);
+    if (input.layout.kind === 'raw') return await importRawFile(input, input.layout, controls);
+    return await importCsvFile(input, input.layout, controls);
   } catch (error) {
     await rm(input.targetPath, { force: true });
     throw error;
@@ -56,6 +59,20 @@ async function importRawFile(
   return writing(input.targetPath, format, async (writer) => {
     await importRaw(input.filePath, layout, format, writer, controls);
     return { format };
+  });
+}
+
+async function importCsvFile(
+  input: ImportInput,
+  layout: StoredCsvLayout,
+  controls: ImportControls,
+): Promise<Imported> {
+  const file = await withFileSource(input.filePath, (source) => readCsvFile(source, layout));
+  return writing(input.targetPath, file.format, async (writer) => {
+    const warnings = await importCsv(input.filePath, layout, file, writer, controls);
+    return {
+      format: { ...file.format, frames: writer.frames, warnings: [...file.format.warnings, ...warnings] },
+    };
   });
 }
 

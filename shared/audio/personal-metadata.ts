@@ -108,8 +108,16 @@ function fieldRule({ chunk, key, value }: MetadataField): Rule | undefined {
   if (chunk === 'bext') return BEXT_RULES[key];
   if (chunk === 'iXML' || chunk === 'guan' || chunk === 'Vorbis')
     return KEY_RULES.find(([pattern]) => pattern.test(key))?.[1];
+  if (chunk === 'CSV') return tableLineRule(value);
   const isCueText = chunk === 'adtl' && !PLAIN_MARK.test(value);
   return isCueText ? { kind: 'free-text', what: 'the text of a mark' } : undefined;
+}
+
+/** A line above the numbers: its first words say what it is about; a line of words alone could be about anything. */
+function tableLineRule(line: string): Rule | undefined {
+  const known = KEY_RULES.find(([pattern]) => pattern.test(line))?.[1];
+  if (known) return known;
+  return /\p{L}{2,}\s+\p{L}{2,}/u.test(line) ? { kind: 'free-text', what: 'a line of words' } : undefined;
 }
 
 function sentenceFor({ chunk, key, value }: MetadataField, { kind, what }: Rule): string {

@@ -1,6 +1,7 @@
 import type { AudioFormat } from './audio-format.ts';
 import type { ByteSource } from './byte-source.ts';
-import type { DeclaredLayout, RawLayout } from './declared-layout.ts';
+import { readCsvFile } from './csv-file.ts';
+import type { DeclaredLayout } from './declared-layout.ts';
 import { isFlac, readFlacHeader } from './flac-header.ts';
 import type { MetadataField } from './metadata-field.ts';
 import { rawFileFacts } from './raw-file.ts';
@@ -19,8 +20,11 @@ export async function readRecordingFile(
   source: ByteSource,
   layout: DeclaredLayout | null = null,
 ): Promise<RecordingFile> {
-  if (layout?.kind === 'raw') return readRawFile(source, layout);
-  return readSelfTelling(source);
+  if (layout === null) return readSelfTelling(source);
+  await refuseSelfTelling(source);
+  if (layout.kind === 'raw') return rawFileFacts(source.sizeBytes, layout);
+  const { format, metadata } = await readCsvFile(source, layout);
+  return { format, metadata };
 }
 
 async function readSelfTelling(source: ByteSource): Promise<RecordingFile> {
@@ -32,9 +36,10 @@ async function readSelfTelling(source: ByteSource): Promise<RecordingFile> {
   return { format, metadata: readWavMetadata(metadata) };
 }
 
-async function readRawFile(source: ByteSource, layout: RawLayout): Promise<RecordingFile> {
+/** A layout over a file that needs none would turn its header into sound. */
+async function refuseSelfTelling(source: ByteSource): Promise<void> {
   const told = await readSelfTelling(source).catch(() => undefined);
-  if (told === undefined) return rawFileFacts(source.sizeBytes, layout);
+  if (told === undefined) return;
   const name = told.format.container === 'FLAC' ? 'FLAC' : 'WAV';
   throw new RefusedFileError(
     'layout',

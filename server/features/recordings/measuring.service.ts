@@ -106,7 +106,8 @@ export function createMeasuringService(parts: Parts) {
       throw error instanceof RefusedFileError ? new HopelessJobError(error.message) : error;
     });
     const { frames, warnings } = audio.header.format;
-    if (frames !== recording.format.frames) {
+    const isNews = frames !== recording.format.frames || warnings.length !== recording.format.warnings.length;
+    if (isNews) {
       write(db, (tx) => {
         task.assertHeld(tx);
         updateRecording(tx, recording.id, { format: { ...recording.format, frames, warnings } });

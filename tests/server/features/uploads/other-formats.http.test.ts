@@ -1,10 +1,11 @@
-import { existsSync, rmSync } from 'node:fs';
+import { existsSync, readFileSync, rmSync } from 'node:fs';
 import path from 'node:path';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import type { DeclaredLayout } from '../../../../shared/contract/layouts.ts';
 import type { Recording } from '../../../../shared/contract/recordings.ts';
 import { encodeFrames } from '../../../../server/setup/demo-audio/encode-frames.ts';
 import { seedRun, seedSetup } from '../../../support/server/seed-recordings.ts';
+import { asciiBytes } from '../../../../shared/audio/wav-envelope.ts';
 import { nothingStored, storedState } from '../../../support/server/stored-state.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
 import { complete, sendWhole } from '../../../support/server/tus.ts';
@@ -100,6 +101,58 @@ describe('a FLAC file', () => {
     expect(recording.format.warnings).toEqual([
       'The file is cut short: 380 frames of audio are missing (17 % of what its header says). The 1,920 that are there were taken.',
     ]);
+  });
+});
+
+describe('a table of numbers', () => {
+  const trace = new Uint8Array(readFileSync('fixtures/ae-sensor/AE_frontcenter_S100V.csv'));
+  const layout: DeclaredLayout = {
+    kind: 'CSV',
+    timeColumn: 0,
+    timeUnit: 's',
+    sampleRateHz: null,
+    valueColumns: [1],
+    unit: 'V',
+  };
+
+  test('in volts is measured as parts of the full scale of its set-up, which stays with it', async () => {
+    const recording = await brought(trace, { fileName: 'trace.csv', layout });
+    expect(recording).toMatchObject({ processing: 'measured', sampleRateHz: 10_000_000, frames: 15_360 });
+    expect(recording.layout).toEqual({ ...layout, fullScaleV: 2 });
+    expect(recording.format).toMatchObject({ container: 'CSV', encoding: 'float', bitsPerSample: 64 });
+    expect(recording.format.warnings).toEqual(['The largest value is 4.258 V, above the full scale of 2 V.']);
+    const { body } = await peaksOf(recording.id, 0, 2);
+    // The first two values of the file, over 2 V.
+    expect(body.maximum).toEqual([
+      expect.closeTo(-0.00114944458007812 / 2, 8),
+      expect.closeTo(-0.00119354248046875 / 2, 8),
+    ]);
+    expect((await audioOf(recording.id)).headers['content-type']).toContain('text/csv');
+  });
+
+  test('with words among its numbers fails, and says in which line', async () => {
+    const rows = Array.from({ length: 5000 }, (_, n) => (n === 4000 ? 'overflow' : String(n % 7)));
+    const told = { ...layout, timeColumn: null, sampleRateHz: 1000, valueColumns: [0], unit: 'full-scale' };
+    const recording = await brought(asciiBytes(rows.join('\n')), { fileName: 'words.csv', layout: told });
+    expect(recording.failure).toBe(
+      'Line 4,001 of the table does not hold a number in each of the declared columns.',
+    );
+  });
+
+  test.each([
+    ['with decimal commas', 't;U\n0,0;0,1\n0,1;0,2\n', {}, /decimal commas/],
+    ['without the declared column', '0,1\n1,2\n', { valueColumns: [3] }, /No line of this table/],
+    ['whose times stand still', '0,1\n0,2\n0,3\n', {}, /give no sample rate/],
+  ])('%s is refused with a sentence', async (_, text, changes, sentence) => {
+    const id = await sendWhole(app, asciiBytes(text), { layout: { ...layout, ...changes } });
+    const answer = await complete(app, id);
+    expect([answer.status, answer.body.code]).toEqual([422, 'file-refused']);
+    expect(answer.body.detail).toMatch(sentence);
+  });
+
+  test('without a layout is refused as a text file', async () => {
+    const answer = await complete(app, await sendWhole(app, trace));
+    expect(answer.body.detail).toContain('declared what its columns hold');
   });
 });
 
