@@ -18,6 +18,9 @@ export interface WorkerPool<Input, Output> {
   close(): Promise<void>;
 }
 
+/** Young objects of a thread beyond this are collected; large arrays of numbers lie elsewhere. */
+const YOUNG_MEGABYTES = 2;
+
 /** Threads for computing. The source runs as `.ts`, the compiled server as `.js`, and this file tells which. */
 export function createWorkerPool<Input, Output>({ module, workers }: PoolOptions): WorkerPool<Input, Output> {
   const isSource = import.meta.url.endsWith('.ts');
@@ -26,6 +29,7 @@ export function createWorkerPool<Input, Output>({ module, workers }: PoolOptions
     minThreads: 0,
     maxThreads: workers,
     idleTimeout: 30_000,
+    resourceLimits: { maxYoungGenerationSizeMb: YOUNG_MEGABYTES },
     ...(isSource ? { execArgv: ['--import', new URL('./source-loader.mjs', import.meta.url).href] } : {}),
   });
   return {

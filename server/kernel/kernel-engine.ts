@@ -12,6 +12,9 @@ import { KernelLongFrames, KernelShortFrames } from './kernel-rows.ts';
 import { KernelSpectrumTables } from './kernel-spectra.ts';
 import { Kernel } from './kernel.ts';
 
+/** Memory of a module is given back late: kernels that were closed are used again. */
+const idle: Kernel[] = [];
+
 /**
  * The engine on the SIMD kernel, with a memory of its own that grows only while something is set up. Samples and bytes that
  * lie in this memory (`samples`, `bytes`) are read where they are, others are copied in.
@@ -22,7 +25,7 @@ import { Kernel } from './kernel.ts';
  * @throws Error where the kernel has not been built.
  */
 export function kernelEngine(): FrameEngine {
-  const kernel = new Kernel();
+  const kernel = idle.pop() ?? new Kernel();
   return {
     name: 'kernel',
     samples: (length) => kernel.array(Float32Array, length),
@@ -33,6 +36,10 @@ export function kernelEngine(): FrameEngine {
     cellSummer: (maximumCells) => kernelCellSummer(kernel, maximumCells),
     blockSummer: (length, maximumBlocks) => kernelBlockSummer(kernel, length, maximumBlocks),
     spectrumTables: (settings) => new KernelSpectrumTables(kernel, settings),
+    close: () => {
+      kernel.clear();
+      idle.push(kernel);
+    },
   };
 }
 

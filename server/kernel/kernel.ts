@@ -101,6 +101,12 @@ export class Kernel {
     return this.#memory.buffer;
   }
 
+  /** Forgets every array, so that their memory can be handed out anew. */
+  clear(): void {
+    new Uint8Array(this.buffer, FIRST_FREE).fill(0);
+    this.#next = FIRST_FREE + GAP_BYTES;
+  }
+
   /** Zeroed memory for `length` elements, beginning at a multiple of 64 bytes. */
   array<T extends { readonly buffer: ArrayBufferLike }>(type: ArrayType<T>, length: number): KernelArray<T> {
     const address = this.#next;

@@ -33,14 +33,32 @@ export async function measureSegment(
   controls: MeasureControls = {},
   tools: MeasureTools = usualTools,
 ): Promise<void> {
+  const engine = tools.openEngine();
+  try {
+    await measureWith(engine, { input, segmentIndex, controls, openDetection: tools.openDetection });
+  } finally {
+    engine.close();
+  }
+}
+
+interface SegmentTask {
+  input: MeasureInput;
+  segmentIndex: number;
+  controls: MeasureControls;
+  openDetection: OpenDetection;
+}
+
+async function measureWith(
+  engine: FrameEngine,
+  { input, segmentIndex, controls, openDetection }: SegmentTask,
+): Promise<void> {
   const plan = describeMeasurement(input);
   const segment = plan.segments[segmentIndex]!;
   const parts = new SegmentParts(input.viewsDir);
-  const engine = tools.openEngine();
   const reader = await BlockReader.open(input.filePath, input.header, engine);
   const views = new ViewWriter(input.viewsDir, plan.layout, segment);
   const reach = reachOf(plan, segment);
-  const detection = tools.openDetection({
+  const detection = openDetection({
     format: plan.format,
     plan: plan.layout.plan,
     context: input.context,

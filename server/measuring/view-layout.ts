@@ -1,7 +1,5 @@
 import { join } from 'node:path';
-import { z } from 'zod';
 import type { AudioFormat } from '../../shared/contract/measurement.ts';
-import { audioFormatSchema } from '../../shared/contract/measurement.ts';
 import type { PictureBand, TileLayout } from '../../shared/contract/views.ts';
 import { frameColumns, rowBands } from '../signal/frame-row.ts';
 import { framesIn, frameStart, planFrames, type FramePlan } from '../signal/frame-plan.ts';
@@ -26,23 +24,6 @@ export const VIEW_FILES = {
   audible: 'audible.u8',
   ultrasonic: 'ultrasonic.u8',
 } as const;
-
-export const viewManifestSchema = z.object({
-  version: z.literal(2),
-  /** With the true sample rate, after a declared time expansion. */
-  format: audioFormatSchema,
-  frameColumns: z.array(z.string()),
-  descriptors: z.enum(['meyda', 'engine']),
-});
-export type ViewManifest = z.infer<typeof viewManifestSchema>;
-
-export function makeManifest(
-  format: AudioFormat,
-  frameColumns: string[],
-  descriptors: ViewManifest['descriptors'],
-): ViewManifest {
-  return { version: 2, format, frameColumns, descriptors };
-}
 
 export function viewPath(viewsDir: string, file: keyof typeof VIEW_FILES): string {
   return join(viewsDir, VIEW_FILES[file]);

@@ -12,13 +12,8 @@ import {
 import type { AudioPlace } from './block-reader.ts';
 import { computedColumns } from './computed-columns.ts';
 import { peaksFromPyramid, peaksFromSamples, samplesPerPointFor } from './peaks-reader.ts';
-import {
-  FIRST_STORED_LEVELS,
-  ViewLayout,
-  viewManifestSchema,
-  viewPath,
-  type FileRegion,
-} from './view-layout.ts';
+import { FIRST_STORED_LEVELS, ViewLayout, viewPath, type FileRegion } from './view-layout.ts';
+import { readManifest } from './view-manifest.ts';
 
 /** Views are asked for that a recording does not have: a channel, a band, a level or a tile beyond its last. */
 export class NoSuchViewError extends RangeError {}
@@ -193,6 +188,5 @@ function requireChannel(layout: ViewLayout, channel: number): void {
 }
 
 async function layoutOf(viewsDir: string): Promise<ViewLayout> {
-  const text = await readFile(viewPath(viewsDir, 'manifest'), 'utf8');
-  return new ViewLayout(viewManifestSchema.parse(JSON.parse(text)).format);
+  return new ViewLayout((await readManifest(viewsDir)).format);
 }

@@ -146,6 +146,8 @@ export interface FrameEngine {
   blockSummer(length: number, maximumBlocks: number): BlockSummer;
   /** For the long-term spectra of one channel. */
   spectrumTables: OpenSpectrumTables;
+  /** Its memory may be used again: nothing that it made is to be touched afterwards. */
+  close(): void;
 }
 
 export type FrameDecoder = (bytes: Uint8Array, out: Float32Array[]) => DecodedFrames;

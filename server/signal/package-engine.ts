@@ -21,6 +21,7 @@ export function packageEngine(): FrameEngine {
     decoder: (layout) => (bytes, out) => decodeFrames(bytes, layout, out),
     cellSummer,
     spectrumTables: openPlainTables,
+    close: () => undefined,
     blockSummer,
   };
 }

@@ -36,6 +36,18 @@ describe('the tables of long-term spectra', () => {
     expect(kernel.counts.reduce((sum, count) => sum + count, 0)).toBe(25 * settings.points);
   });
 
+  it('are empty in memory that a closed engine left behind', () => {
+    const settings = { points: 256, group: 1, classes: 1 };
+    const first = kernelEngine();
+    first.spectrumTables(settings).push(spectrumOf(256, 1), 0, true);
+    first.close();
+    const again = kernelEngine();
+    const tables = again.spectrumTables(settings);
+    expect(tables.maximum.every((value) => value === 0)).toBe(true);
+    expect(tables.counts.every((count) => count === 0)).toBe(true);
+    again.close();
+  });
+
   it('refuse a number of points that four lanes do not divide', () => {
     expect(() => kernelEngine().spectrumTables({ points: 6, group: 1, classes: 1 })).toThrow(RangeError);
   });
