@@ -5,6 +5,7 @@ import { formatBytes, formatDuration, formatShare } from '@/composables/useForma
 
 export const stageWords: Readonly<Record<UploadStage, string>> = {
   reading: 'header is being read',
+  undeclared: 'needs its layout',
   refused: 'cannot be brought in',
   ready: 'ready to be sent',
   waiting: 'waits for its turn',
@@ -19,7 +20,13 @@ export const stageWords: Readonly<Record<UploadStage, string>> = {
   missing: 'waits for its file',
 };
 
-const attentionStages: ReadonlySet<UploadStage> = new Set(['refused', 'lost', 'failed', 'missing']);
+const attentionStages: ReadonlySet<UploadStage> = new Set([
+  'undeclared',
+  'refused',
+  'lost',
+  'failed',
+  'missing',
+]);
 const activeStages: ReadonlySet<UploadStage> = new Set(['sending', 'checking', 'measuring']);
 
 export function toneOfStage(stage: UploadStage): 'plain' | 'melt' | 'glow' {

@@ -14,14 +14,22 @@ export interface FileReading {
   findings: PersonalFinding[];
 }
 
-/** `canDeclare`: what the file could be once it is declared how its samples lie. */
-export type ReadOutcome =
-  { reading: FileReading } | { refusal: string; canDeclare: DeclaredLayout['kind'] | null };
+/** What a file could be once it is declared how its samples lie, and of a text how it begins. */
+export interface Undeclared {
+  kind: DeclaredLayout['kind'];
+  firstLines: string[];
+}
+
+export type ReadOutcome = { reading: FileReading } | { refusal: string; undeclared: Undeclared | null };
 
 const declarableKinds: Readonly<Partial<Record<FileRefusal, DeclaredLayout['kind']>>> = {
   text: 'CSV',
   unknown: 'raw',
 };
+
+const shownBytes = 4096;
+const shownLines = 6;
+const shownCharacters = 160;
 
 /** Reads the header of a chosen file; a file that cannot be brought in gives the sentence that says why. */
 export async function readRecordingFile(
@@ -33,8 +41,22 @@ export async function readRecordingFile(
     return { reading: { format, findings: personalMetadata(metadata) } };
   } catch (error) {
     if (error instanceof RefusedFileError)
-      return { refusal: error.message, canDeclare: declarableKinds[error.code] ?? null };
+      return { refusal: error.message, undeclared: await undeclaredOf(file, error.code) };
     const refusal = 'The browser could not read this file. It may have been moved or changed.';
-    return { refusal, canDeclare: null };
+    return { refusal, undeclared: null };
   }
+}
+
+async function undeclaredOf(file: Blob, code: FileRefusal): Promise<Undeclared | null> {
+  const kind = declarableKinds[code];
+  if (kind === undefined) return null;
+  return { kind, firstLines: kind === 'CSV' ? await firstLinesOf(file) : [] };
+}
+
+async function firstLinesOf(file: Blob): Promise<string[]> {
+  const head = await file.slice(0, shownBytes).text();
+  return head
+    .split(/\r?\n/)
+    .slice(0, shownLines)
+    .map((line) => line.slice(0, shownCharacters));
 }

@@ -1,14 +1,15 @@
 import type { DeclaredLayout } from '@shared/contract/layouts.ts';
 import type { Declaration } from '@shared/contract/uploads.ts';
-import type { FileReading } from '@/composables/uploads/read-recording-file.ts';
+import type { FileReading, Undeclared } from '@/composables/uploads/read-recording-file.ts';
 
 /**
- * `reading` its header; `refused` for what it is; `ready` to be sent; `waiting` in line; `sending`; `paused` by the
+ * `reading` its header; `undeclared`, since it does not say how its samples lie; `refused` for what it is; `ready` to be sent; `waiting` in line; `sending`; `paused` by the
  * person; `lost` the connection; `checking` on the server; `measuring`; `measured`; `failed`; `cancelled`; `missing`
  * its file, which was chosen before a reload and has to be chosen again.
  */
 export type UploadStage =
   | 'reading'
+  | 'undeclared'
   | 'refused'
   | 'ready'
   | 'waiting'
@@ -35,6 +36,8 @@ export interface UploadItem {
   target: UploadTarget | null;
   /** Of a file that does not say itself how its samples lie. */
   layout: DeclaredLayout | null;
+  /** What it could be, as long as its layout is not declared. */
+  undeclared: Undeclared | null;
   runTitle: string;
   uploadId: string | null;
   sentBytes: number;
@@ -56,6 +59,7 @@ export function newUploadItem(key: string, facts: Pick<UploadItem, 'fileName' | 
     reading: null,
     target: null,
     layout: null,
+    undeclared: null,
     runTitle: '',
     uploadId: null,
     sentBytes: 0,

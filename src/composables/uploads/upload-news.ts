@@ -3,6 +3,7 @@ import type { UploadItem, UploadStage } from '@/composables/uploads/upload-item.
 type Told = Pick<UploadItem, 'key' | 'fileName' | 'sizeBytes' | 'sentBytes' | 'stage' | 'message'>;
 
 const stageNews: Partial<Record<UploadStage, string>> = {
+  undeclared: 'needs its layout declared',
   refused: 'refused',
   sending: 'is being sent',
   paused: 'paused',

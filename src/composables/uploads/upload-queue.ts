@@ -1,6 +1,7 @@
 import { reactive } from 'vue';
 import type { Activity } from '@shared/contract/activity.ts';
 import type { Recording } from '@shared/contract/recordings.ts';
+import type { DeclaredLayout } from '@shared/contract/layouts.ts';
 import type { CreateUpload, Upload } from '@shared/contract/uploads.ts';
 import type { ByteTransfer, ByteTransferOptions } from '@/api/upload-bytes.ts';
 import type { Hashing } from '@/composables/uploads/hash-file.ts';
@@ -12,7 +13,7 @@ import type { UploadItem, UploadTarget } from '@/composables/uploads/upload-item
 
 /** What the queue needs of the browser and the server. */
 export interface UploadGateway {
-  read: (file: File) => Promise<ReadOutcome>;
+  read: (file: File, layout?: DeclaredLayout) => Promise<ReadOutcome>;
   hash: (file: File) => Hashing;
   create: (input: CreateUpload) => Promise<string>;
   transfer: (options: ByteTransferOptions) => ByteTransfer;
@@ -61,8 +62,20 @@ export function createUploadQueue(gateway: UploadGateway) {
     works.set(item.key, { file });
     const outcome = await gateway.read(file);
     if (item.stage !== 'reading') return;
-    if ('refusal' in outcome) Object.assign(item, { stage: 'refused', message: outcome.refusal });
-    else Object.assign(item, { stage: 'ready', reading: outcome.reading });
+    if ('reading' in outcome) return void Object.assign(item, { stage: 'ready', reading: outcome.reading });
+    const { refusal: message, undeclared } = outcome;
+    Object.assign(item, { stage: undeclared ? 'undeclared' : 'refused', message, undeclared });
+  }
+
+  /** Reads a file by the layout that was declared of it; where the two do not fit, it stays undeclared and says why. */
+  async function declare(key: string, layout: DeclaredLayout): Promise<void> {
+    const item = find(key);
+    const work = works.get(key);
+    if (item?.stage !== 'undeclared' || !work) return;
+    const outcome = await gateway.read(work.file, layout);
+    if (item.stage !== 'undeclared') return;
+    if ('refusal' in outcome) item.message = outcome.refusal;
+    else Object.assign(item, { stage: 'ready', reading: outcome.reading, layout, message: '' });
   }
 
   async function goOnWith(item: UploadItem, file: File): Promise<void> {
@@ -216,7 +229,7 @@ export function createUploadQueue(gateway: UploadGateway) {
     for (const work of works.values()) work.hashing?.stop();
   }
 
-  return { items, choose, adopt, send, pause, resume, resumeLost, cancel, remove, hear, stop };
+  return { items, choose, declare, adopt, send, pause, resume, resumeLost, cancel, remove, hear, stop };
 }
 
 export type UploadQueue = ReturnType<typeof createUploadQueue>;

@@ -21,9 +21,11 @@ describe('reading a chosen file', () => {
 
   it('tells what a file could be whose samples nobody has described yet', async () => {
     const samples = new Blob([new Uint8Array(Float32Array.of(0.1, 0.2, 0.3, 0.4).buffer)]);
-    expect(await readRecordingFile(samples)).toMatchObject({ canDeclare: 'raw' });
-    expect(await readRecordingFile(new Blob(['0,1\n1,2\n']))).toMatchObject({ canDeclare: 'CSV' });
-    expect(await readRecordingFile(new Blob(['%PDF-1.7']))).toMatchObject({ canDeclare: null });
+    expect(await readRecordingFile(samples)).toMatchObject({ undeclared: { kind: 'raw', firstLines: [] } });
+    expect(await readRecordingFile(new Blob(['0,1\n1,2\n']))).toMatchObject({
+      undeclared: { kind: 'CSV', firstLines: ['0,1', '1,2', ''] },
+    });
+    expect(await readRecordingFile(new Blob(['%PDF-1.7']))).toMatchObject({ undeclared: null });
     const layout = {
       kind: 'raw',
       encoding: 'float',
@@ -51,7 +53,7 @@ describe('reading a chosen file', () => {
     };
     expect(await readRecordingFile(broken)).toEqual({
       refusal: 'The browser could not read this file. It may have been moved or changed.',
-      canDeclare: null,
+      undeclared: null,
     });
   });
 });

@@ -1,9 +1,12 @@
 import { flushPromises } from '@vue/test-utils';
 import { beforeEach, describe, expect, it } from 'vitest';
-import type { Upload } from '@shared/contract/uploads.ts';
+import type { RawLayout } from '@shared/audio/declared-layout.ts';
+import type { DeclaredLayout } from '@shared/contract/layouts.ts';
+import type { CreateUpload, Upload } from '@shared/contract/uploads.ts';
 import type { ByteTransferOptions } from '@/api/upload-bytes.ts';
 import { clientProblem, ProblemError } from '@/api/problem-error.ts';
 import { createUploadQueue } from '@/composables/uploads/upload-queue.ts';
+import type { ReadOutcome } from '@/composables/uploads/read-recording-file.ts';
 import type { UploadGateway } from '@/composables/uploads/upload-queue.ts';
 import { format } from '../recordings/recording-fixture.ts';
 
@@ -26,20 +29,38 @@ function refusal(status: number, detail: string): ProblemError {
   return new ProblemError({ type: '', title: '', status, detail, code, requestId: '', fields: [] });
 }
 
+const layout: RawLayout = {
+  kind: 'raw',
+  encoding: 'signed',
+  bitsPerSample: 16,
+  byteOrder: 'little',
+  channels: 1,
+  sampleRateHz: 500_000,
+  headerBytes: 0,
+};
+
+function outcomeOf(name: string, declared: DeclaredLayout | undefined): ReadOutcome {
+  if (name.endsWith('.mp3')) return { refusal: 'This is an MP3 file.', undeclared: null };
+  if (declared?.kind === 'raw' && declared.channels === 3)
+    return { refusal: 'It does not fit.', undeclared: null };
+  return name.endsWith('.raw') && declared === undefined
+    ? { refusal: 'Nothing says what it is.', undeclared: { kind: 'raw', firstLines: [] } }
+    : { reading: { format, findings: [] } };
+}
+
 /** A server and a browser of the test's own, which do what they are told when they are told. */
 function makeGateway() {
   const transfers: (ByteTransferOptions & { starts: number; pauses: number })[] = [];
   const completed: { uploadId: string; sha256: string | undefined }[] = [];
   const cancelled: string[] = [];
+  const created: CreateUpload[] = [];
   const gateway: UploadGateway = {
-    read: (file) =>
-      Promise.resolve(
-        file.name.endsWith('.mp3')
-          ? { refusal: 'This is an MP3 file.', canDeclare: null }
-          : { reading: { format, findings: [] } },
-      ),
+    read: (file, layout) => Promise.resolve(outcomeOf(file.name, layout)),
     hash: () => ({ sha256: Promise.resolve('a'.repeat(64)), stop: () => undefined }),
-    create: ({ fileName }) => Promise.resolve(`upload-${fileName}`),
+    create: (input) => {
+      created.push(input);
+      return Promise.resolve(`upload-${input.fileName}`);
+    },
     transfer: (options) => {
       const transfer = { ...options, starts: 0, pauses: 0 };
       transfers.push(transfer);
@@ -55,7 +76,7 @@ function makeGateway() {
     cancel: (uploadId) => Promise.resolve(void cancelled.push(uploadId)),
     nowMs: () => 0,
   };
-  return { gateway, transfers, completed, cancelled };
+  return { gateway, transfers, completed, cancelled, created };
 }
 
 function openUpload(part: Partial<Upload> = {}): Upload {
@@ -104,6 +125,22 @@ describe('the queue of uploads', () => {
   it('never sends a refused file', async () => {
     await sendFiles('a.wav', 'b.mp3');
     expect(test.transfers.map(({ uploadId }) => uploadId)).toEqual(['upload-a.wav']);
+  });
+
+  it('asks how the samples of a file lie that does not say it, and sends what was declared', async () => {
+    await queue.choose([wav('a.raw'), wav('b.wav')]);
+    expect(stages()).toEqual(['undeclared', 'ready']);
+    const key = queue.items[0]?.key ?? '';
+    await queue.declare(key, { ...layout, channels: 3 });
+    expect([stages()[0], queue.items[0]?.message]).toEqual(['undeclared', 'It does not fit.']);
+    await queue.declare(key, layout);
+    expect([stages()[0], queue.items[0]?.message]).toEqual(['ready', '']);
+    queue.send(target, 'Film 07');
+    await flushPromises();
+    expect(test.created.map(({ fileName, layout: declared }) => [fileName, declared])).toEqual([
+      ['a.raw', layout],
+      ['b.wav', null],
+    ]);
   });
 
   it('passes over a file that is in the list already', async () => {
