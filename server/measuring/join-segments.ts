@@ -2,14 +2,19 @@ import { writeFileSync } from 'node:fs';
 import type { Bandwidth, MeasurementSummary, Spectrum } from '../../shared/contract/measurement.ts';
 import { findBandwidth } from '../signal/bandwidth.ts';
 import { ChannelJoin, type ChannelResult } from '../signal/channel-join.ts';
+import { joinLikeness, type AlikeChannels, type LikenessPart } from '../signal/channel-likeness.ts';
 import { joinChannelPairs, type ChannelPair } from '../signal/channel-pairs.ts';
 import { joinCourses } from '../signal/course.ts';
+import type { Fingerprint } from '../signal/fingerprint.ts';
+import { rowBands } from '../signal/frame-row.ts';
 import { stepSize } from '../signal/levels.ts';
 import { qualityFindings } from '../signal/quality.ts';
+import { contentFindings } from '../signal/quality-content.ts';
 import { joinDetection, type SegmentFindings } from './detection-join.ts';
 import { describeMeasurement, type MeasureInput, type MeasurePlan } from './measure-plan.ts';
 import { SegmentParts } from './segment-parts.ts';
-import { makeManifest, viewPath } from './view-layout.ts';
+import { viewPath } from './view-layout.ts';
+import { makeManifest } from './view-manifest.ts';
 import { joinViews } from './view-join.ts';
 
 export interface MeasureResult {
@@ -17,6 +22,8 @@ export interface MeasureResult {
   /** One `DetectedCandidate` as JSON per line, by rising onset. */
   candidatesPath: string;
   candidateCount: number;
+  /** One per channel. */
+  fingerprints: Fingerprint[];
 }
 
 /** Makes the measurement of the recording of its finished segments, completes the views and removes what is left over. */
@@ -24,7 +31,7 @@ export async function joinSegments(input: MeasureInput): Promise<MeasureResult> 
   const plan = describeMeasurement(input);
   const parts = new SegmentParts(input.viewsDir);
   const candidatesPath = viewPath(input.viewsDir, 'candidates');
-  const { results, pairs, findings } = readParts(plan, parts);
+  const { results, pairs, alike, findings } = readParts(plan, parts);
   const { format, course, layout } = plan;
   const bandwidth = widestBandwidth(format.sampleRateHz, results);
   const { context } = input;
@@ -38,15 +45,29 @@ export async function joinSegments(input: MeasureInput): Promise<MeasureResult> 
     format,
     levels: results.map((result) => result.facts.levels),
     descriptors: results.map((result, channel) => ({ channel, ...result.descriptors })),
-    quality: qualityFindings({
-      sampleRateHz: format.sampleRateHz,
-      frames: format.frames,
-      stepSize: stepSize(format),
-      channels: results.map((result) => result.facts),
-      pairs,
-      headerWarnings: input.header.format.warnings,
-    }),
+    quality: [
+      ...qualityFindings({
+        sampleRateHz: format.sampleRateHz,
+        frames: format.frames,
+        stepSize: stepSize(format),
+        channels: results.map((result) => result.facts),
+        pairs,
+        headerWarnings: input.header.format.warnings,
+      }),
+      ...contentFindings({
+        format,
+        sensorHighHz: context.sensorHighHz,
+        contents: results.map((result) => result.content),
+        alike: alike.filter((pair) => !pairs.some((same) => isSamePair(same, pair))),
+        bandwidth,
+      }),
+    ],
     bandwidth,
+    contents: results.map(({ content }, channel) => ({
+      channel,
+      effectiveBits: content.bits.bits,
+      pcmSha256: content.pcmSha256,
+    })),
     ultrasonic: found.ultrasonic,
     course: joinCourses(
       course,
@@ -62,12 +83,14 @@ export async function joinSegments(input: MeasureInput): Promise<MeasureResult> 
     JSON.stringify(makeManifest(format, layout.frameColumns, plan.descriptors)),
   );
   await parts.remove();
-  return { summary, candidatesPath, candidateCount: found.candidateCount };
+  const fingerprints = results.map((result) => result.content.fingerprint);
+  return { summary, candidatesPath, candidateCount: found.candidateCount, fingerprints };
 }
 
 interface JoinedParts {
   results: ChannelResult[];
   pairs: ChannelPair[];
+  alike: AlikeChannels[];
   findings: SegmentFindings[];
 }
 
@@ -77,24 +100,37 @@ function readParts(
   parts: SegmentParts,
 ): JoinedParts {
   const { sampleRateHz } = format;
-  const { size } = layout.plan.long;
+  const { size, hop: longHop } = layout.plan.long;
+  const content = { sampleRateHz, sampleFormat: format, longBands: rowBands(layout.plan), longHop };
   const joins = Array.from(
     { length: format.channels },
-    (_, channel) => new ChannelJoin({ channel, course, sampleRateHz, size, spectrumPoints }),
+    (_, channel) => new ChannelJoin({ channel, course, content, sampleRateHz, size, spectrumPoints }),
   );
   const pairs: ChannelPair[][] = [];
+  const likeness: LikenessPart[] = [];
   const findings = segments.map((segment) => {
     const part = parts.read(segment.index);
     for (const [channel, join] of joins.entries()) join.add(part.channels[channel]!);
     pairs.push(part.pairs);
+    likeness.push(part.likeness);
     return { segment, part: part.detection, candidatesPath: parts.candidatesPath(segment.index) };
   });
-  return { results: joins.map((join) => join.finish()), pairs: joinChannelPairs(pairs), findings };
+  return {
+    results: joins.map((join) => join.finish()),
+    pairs: joinChannelPairs(pairs),
+    alike: joinLikeness(likeness),
+    findings,
+  };
 }
 
-/** A recording can show what its best channel can. */
+function isSamePair(a: { channel: number; other: number }, b: { channel: number; other: number }): boolean {
+  return a.channel === b.channel && a.other === b.other;
+}
+
+/** A recording can show what its best channel can; one without any signal shows no floor. */
 function widestBandwidth(sampleRateHz: number, results: ChannelResult[]): Bandwidth {
-  const each = results.map(({ spectra }) =>
+  const sounding = results.filter(({ facts }) => facts.levels.rmsDb !== null);
+  const each = (sounding.length > 0 ? sounding : results).map(({ spectra }) =>
     findBandwidth({
       sampleRateHz,
       frequenciesHz: spectra.frequenciesHz,
@@ -104,6 +140,6 @@ function widestBandwidth(sampleRateHz: number, results: ChannelResult[]): Bandwi
   return each.reduce((widest, one) => (one.effectiveHz > widest.effectiveHz ? one : widest));
 }
 
-function toSpectrum({ spectra }: ChannelResult, channel: number): Spectrum {
-  return { channel, ...spectra };
+function toSpectrum({ spectra, content }: ChannelResult, channel: number): Spectrum {
+  return { channel, ...spectra, bands: content.bands };
 }

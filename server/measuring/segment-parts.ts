@@ -3,6 +3,7 @@ import { access, mkdir, open, readFile, rename, rm, writeFile } from 'node:fs/pr
 import { join } from 'node:path';
 import { deserialize, serialize } from 'node:v8';
 import { deflateSync, inflateSync } from 'node:zlib';
+import type { LikenessPart } from '../signal/channel-likeness.ts';
 import type { ChannelPair } from '../signal/channel-pairs.ts';
 import type { ChannelPart } from '../signal/channel-pass.ts';
 import type { DetectionPart } from './segment-detection.ts';
@@ -11,6 +12,7 @@ import type { DetectionPart } from './segment-detection.ts';
 export interface SegmentPart {
   channels: ChannelPart[];
   pairs: ChannelPair[];
+  likeness: LikenessPart;
   detection: DetectionPart;
 }
 

@@ -1,3 +1,4 @@
+import { ChannelLikeness } from '../signal/channel-likeness.ts';
 import { ChannelPairs } from '../signal/channel-pairs.ts';
 import { ChannelPass } from '../signal/channel-pass.ts';
 import type { FrameEngine } from '../signal/frame-engine.ts';
@@ -32,6 +33,7 @@ export class SegmentPass {
   readonly #channels: ChannelPass[];
   readonly #windows: SampleWindows;
   readonly #pairs: ChannelPairs;
+  readonly #likeness: ChannelLikeness;
   readonly #nonFinite: number[];
 
   constructor(parts: SegmentPassParts) {
@@ -49,6 +51,7 @@ export class SegmentPass {
       blockFrames,
     });
     this.#pairs = new ChannelPairs(channels);
+    this.#likeness = new ChannelLikeness(channels);
     this.#nonFinite = new Array<number>(channels).fill(0);
   }
 
@@ -71,6 +74,7 @@ export class SegmentPass {
     return {
       channels: this.#channels.map((pass, channel) => pass.finish(this.#nonFinite[channel]!)),
       pairs: this.#pairs.finish(),
+      likeness: this.#likeness.finish(),
       detection: this.#parts.detection.finish(),
     };
   }
@@ -80,11 +84,9 @@ export class SegmentPass {
     const to = channels[0]!.endSample - channels[0]!.startSample;
     if (isOwn) {
       for (const [channel, found] of nonFinite.entries()) this.#nonFinite[channel]! += found;
-      this.#pairs.push(
-        channels.map((window) => window.samples),
-        from,
-        to,
-      );
+      const samples = channels.map((window) => window.samples);
+      this.#pairs.push(samples, from, to);
+      this.#likeness.push(samples, { from, to, startSample: channels[0]!.startSample + from });
     }
     for (const [channel, window] of channels.entries()) {
       this.#channels[channel]!.push(window, from);
@@ -109,6 +111,7 @@ export class SegmentPass {
       arithmetic,
       descriptorsByMeyda: descriptors === 'meyda',
       spectrumPoints,
+      sampleFormat: format,
       stepSize: stepSize(format),
       fullScale: fullScaleThreshold(format.encoding, format.bitsPerSample),
       views: views.channel(channel),

@@ -111,12 +111,20 @@ function firstIndexFrom(frequenciesHz: readonly number[], hz: number, from: numb
   return Math.min(Math.max(index, from), frequenciesHz.length - 1);
 }
 
-function edgeSentence(edgeHz: number, sampleRateHz: number): string {
-  const found = `The noise floor ends at ${frequencyText(edgeHz)}, below the ${frequencyText(sampleRateHz / 2)} that the sample rate allows.`;
+/** What may have made an edge: lossy compression, conversion from an older sample rate, or a filter. */
+export function causesOfEdge(
+  edgeHz: number,
+  sampleRateHz: number,
+): { mayBeLossy: boolean; olderHz: number | undefined } {
   const olderHz = OLDER_RATES_HZ.find(
     (rateHz) => rateHz < sampleRateHz && edgeHz > 0.43 * rateHz && edgeHz <= 0.505 * rateHz,
   );
-  const mayBeLossy = edgeHz >= LOSSY_HZ.low && edgeHz <= LOSSY_HZ.high;
+  return { mayBeLossy: edgeHz >= LOSSY_HZ.low && edgeHz <= LOSSY_HZ.high, olderHz };
+}
+
+function edgeSentence(edgeHz: number, sampleRateHz: number): string {
+  const found = `The noise floor ends at ${frequencyText(edgeHz)}, below the ${frequencyText(sampleRateHz / 2)} that the sample rate allows.`;
+  const { mayBeLossy, olderHz } = causesOfEdge(edgeHz, sampleRateHz);
   if (mayBeLossy) {
     return `${found} Such an edge near 16 to 20 kHz is what lossy compression leaves${olderHz ? `, or conversion from ${frequencyText(olderHz)}` : ''}. Whatever sounded higher is gone.`;
   }

@@ -74,7 +74,7 @@ function lowBandsBelow(longBands: readonly ThirdOctave[], sampleRateHz: number):
  */
 export class ChannelContentTracker {
   readonly #bits: EffectiveBitsTracker;
-  readonly #hash = new PcmHashTracker();
+  readonly #hash: PcmHashTracker;
   readonly #lowFrames: LowFrames;
   readonly #speech: SpeechFrameTracker;
   readonly #fingerprint: FingerprintTracker;
@@ -93,6 +93,7 @@ export class ChannelContentTracker {
     this.#startSample = segment.startSample;
     this.#screensSpeech = sampleRateHz >= LEAST_SPEECH_RATE_HZ;
     this.#bits = new EffectiveBitsTracker(sampleFormat);
+    this.#hash = new PcmHashTracker(sampleFormat.encoding);
     this.#fingerprint = new FingerprintTracker(sampleRateHz, segment);
     this.#lowFrames = new LowFrames(sampleRateHz, segment.startSample, (frame) => this.#pushLow(frame));
     this.#speech = new SpeechFrameTracker(this.#lowFrames);

@@ -1,3 +1,4 @@
+import { ChannelContentJoin, type ChannelContent, type ChannelContentSettings } from './channel-content.ts';
 import type { ChannelPart } from './channel-pass.ts';
 import { joinChannelCourse, type ChannelCourse, type CoursePlan } from './course.ts';
 import { joinDropouts } from './dropouts.ts';
@@ -13,29 +14,34 @@ import type { ChannelFacts } from './quality.ts';
 export interface ChannelResult extends LongFrameResult {
   facts: ChannelFacts;
   course: ChannelCourse;
+  content: ChannelContent;
 }
 
 export interface ChannelJoinSettings extends LongFrameStatisticsSettings {
   channel: number;
   course: CoursePlan;
+  content: Omit<ChannelContentSettings, 'segment'>;
 }
 
-type SmallParts = Omit<ChannelPart, 'longFrames'>;
+type SmallParts = Omit<ChannelPart, 'longFrames' | 'content'>;
 
 /** Joins the segments of a channel, one after the other; the large tables are added up as they come. */
 export class ChannelJoin {
   readonly #settings: ChannelJoinSettings;
   readonly #statistics: LongFrameStatistics;
+  readonly #content: ChannelContentJoin;
   readonly #parts: SmallParts[] = [];
 
   constructor(settings: ChannelJoinSettings) {
     this.#settings = settings;
     this.#statistics = new LongFrameStatistics(settings);
+    this.#content = new ChannelContentJoin(settings.content);
   }
 
   /** Parts in order of their segments. */
-  add({ longFrames, ...small }: ChannelPart): void {
+  add({ longFrames, content, ...small }: ChannelPart): void {
     this.#statistics.absorb(longFrames);
+    this.#content.add(content);
     this.#parts.push(small);
   }
 
@@ -50,6 +56,7 @@ export class ChannelJoin {
     );
     return {
       ...this.#statistics.finish(),
+      content: this.#content.finish(),
       facts: {
         levels,
         clipped,

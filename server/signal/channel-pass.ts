@@ -1,6 +1,8 @@
 import type { PictureBand } from '../../shared/contract/views.ts';
+import { ChannelContentTracker, type ChannelContentPart } from './channel-content.ts';
 import { CourseTracker, type CoursePart, type CoursePlan } from './course.ts';
 import { DropoutTracker, type DropoutPart } from './dropouts.ts';
+import type { SampleFormat } from './effective-bits.ts';
 import { FrameCursor, FRAMES_TOGETHER, type SampleWindow } from './frame-cursor.ts';
 import type { PowerRows } from './frame-engine.ts';
 import type { FramePlan } from './frame-plan.ts';
@@ -36,6 +38,8 @@ export interface ChannelPassSettings {
   arithmetic: PassArithmetic;
   descriptorsByMeyda: boolean;
   spectrumPoints: number;
+  /** Of the samples as they are stored. */
+  sampleFormat: SampleFormat;
   /** Height of the last bit re full scale, and the magnitude that counts as full scale. */
   stepSize: number;
   fullScale: number;
@@ -51,6 +55,7 @@ export interface ChannelPart {
   mains: MainsPart;
   course: CoursePart;
   longFrames: LongFramePart;
+  content: ChannelContentPart;
 }
 
 /**
@@ -65,6 +70,7 @@ export class ChannelPass {
   readonly #mains: MainsTracker;
   readonly #course: CourseTracker;
   readonly #pyramid: PeakPyramid;
+  readonly #content: ChannelContentTracker;
   readonly #longFrames: LongFrames;
   readonly #shortFrames: ShortFrames | undefined;
   readonly #audible: AudibleFrames | undefined;
@@ -80,6 +86,13 @@ export class ChannelPass {
     this.#mains = new MainsTracker(sampleRateHz, arithmetic.sumMeans);
     this.#course = new CourseTracker(settings.course, segment);
     this.#pyramid = new PeakPyramid(settings.peakLevels, (level, low, high) => views.peak(level, low, high));
+    this.#content = new ChannelContentTracker({
+      sampleRateHz,
+      sampleFormat: settings.sampleFormat,
+      longBands: rowBands(plan),
+      longHop: plan.long.hop,
+      segment,
+    });
     this.#audible = openAudible(settings);
     this.#longFrames = this.#openLongFrames();
     this.#shortFrames = arithmetic.short && new ShortFrames(settings, arithmetic.short, this.#course);
@@ -111,6 +124,7 @@ export class ChannelPass {
       mains: this.#mains.finish(),
       course: this.#course.finish(),
       longFrames: this.#longFrames.finish(),
+      content: this.#content.finish(),
     };
   }
 
@@ -119,6 +133,7 @@ export class ChannelPass {
     this.#pushCells(window, from, to);
     this.#dropouts.push(window, from, to);
     this.#mains.push(window.samples, from, to);
+    this.#content.pushSamples(window.samples, from, to);
     if (window.startSample + to === this.#settings.segment.endSample) {
       this.#dropoutPart = this.#dropouts.finish(window, to);
     }
@@ -154,6 +169,7 @@ export class ChannelPass {
       spectrumPoints,
       byMeyda: descriptorsByMeyda,
       onRow: (row) => views.frameRow(row),
+      onBands: (index, meanSquares) => this.#content.pushLong(index, meanSquares),
       onRows: (count) => sharing?.columns.push(sharing.rows, count),
     });
   }

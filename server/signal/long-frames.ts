@@ -20,6 +20,8 @@ export interface LongFramesSettings extends LongFrameStatisticsSettings {
   /** Whether meyda's own extractors give the descriptors, instead of the engine's, which are equal. */
   byMeyda: boolean;
   onRow: (row: FrameRow) => void;
+  /** Mean squares of the bands of a frame that is not silent; reused. */
+  onBands: (frameIndex: number, meanSquares: Float32Array) => void;
   /** Called when the rows of some frames have been renewed. */
   onRows: (count: number) => void;
 }
@@ -42,14 +44,15 @@ export class LongFrames {
   }
 
   advance(window: SampleWindow): void {
-    const { cursor, rows, onRow, onRows } = this.#settings;
+    const { cursor, rows, onRow, onRows, onBands } = this.#settings;
     for (let run = cursor.take(window); run !== undefined; run = cursor.take(window)) {
       rows.analyse(window, run.first, run.end);
       const count = run.end - run.first;
       onRows(count);
       for (let index = 0; index < count; index++) {
-        this.#describe(index, cursor.samplesOf(run.first + index));
+        const isSilent = !this.#describe(index, cursor.samplesOf(run.first + index));
         onRow(this.#row);
+        if (!isSilent) onBands(run.first + index, this.#bandsOf(index));
       }
     }
   }
@@ -58,7 +61,8 @@ export class LongFrames {
     return this.#statistics.part;
   }
 
-  #describe(index: number, samples: number): void {
+  /** @returns false for a silent frame. */
+  #describe(index: number, samples: number): boolean {
     const { rows, sampleRateHz, byMeyda } = this.#settings;
     const row = this.#row;
     const features = rows.features;
@@ -67,7 +71,7 @@ export class LongFrames {
     const meanSquare = features[at + FEATURE.meanSquare]!;
     row.fill(Number.NaN);
     if (peak > 0) row[1] = 20 * Math.log10(peak);
-    if (meanSquare < SILENCE_MEAN_SQUARE) return;
+    if (meanSquare < SILENCE_MEAN_SQUARE) return false;
     const rms = Math.sqrt(meanSquare);
     row[0] = 20 * Math.log10(rms * Math.SQRT2);
     row[2] = 20 * Math.log10(peak / rms);
@@ -77,6 +81,13 @@ export class LongFrames {
     this.#copyShape(features, at);
     this.#statistics.longTerm.push(power);
     this.#statistics.pushRow(row);
+    return true;
+  }
+
+  #bandsOf(index: number): Float32Array {
+    const { rows, bands } = this.#settings;
+    const first = index * rows.featureStride + FEATURE.thirdOctaves;
+    return rows.features.subarray(first, first + bands);
   }
 
   #copyShape(features: Float32Array, at: number): void {

@@ -3,6 +3,7 @@ import { durationText, frequencyText } from '../../shared/audio/unit-text.ts';
 import type { ChannelPair } from './channel-pairs.ts';
 import type { MainsLine } from './mains.ts';
 import type { PlaceList } from './place-list.ts';
+import { counted, finding, MAXIMUM_PLACES } from './quality-finding.ts';
 
 /** What one pass found out about a channel's samples. */
 export interface ChannelFacts {
@@ -22,7 +23,6 @@ export interface QualityFacts {
   headerWarnings: readonly string[];
 }
 
-const MAXIMUM_PLACES = 50;
 const DC_NOTE_FRACTION = 0.001;
 const DC_CAUTION_FRACTION = 0.02;
 const SERIOUS_CLIPPED_SHARE = 1e-4;
@@ -121,16 +121,6 @@ function mainsFindings(facts: QualityFacts): QualityFinding[] {
   });
 }
 
-function finding(
-  code: QualityFinding['code'],
-  weight: QualityFinding['weight'],
-  sentence: string,
-  count: number,
-  places: Place[] = [],
-): QualityFinding {
-  return { code, weight, sentence, count, places };
-}
-
 function total(facts: QualityFacts, of: (channel: ChannelFacts) => number): number {
   return facts.channels.reduce((sum, channel) => sum + of(channel), 0);
 }
@@ -139,8 +129,4 @@ function placesOf(facts: QualityFacts, of: (channel: ChannelFacts) => PlaceList)
   return facts.channels
     .flatMap((facts) => of(facts).spans.map((span) => ({ channel: facts.levels.channel, ...span })))
     .slice(0, MAXIMUM_PLACES);
-}
-
-function counted(count: number, one: string, many: string): string {
-  return `${count.toLocaleString('en')} ${count === 1 ? one : many}`;
 }

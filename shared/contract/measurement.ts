@@ -111,6 +111,16 @@ export const courseSchema = z.object({
 });
 export type Course = z.infer<typeof courseSchema>;
 
+/** What a channel holds, whoever stored it how. */
+export const channelContentSchema = z.object({
+  channel: z.number().int().min(0),
+  /** Bits per sample that carry something; `null` where the samples do not tell. */
+  effectiveBits: z.number().nullable(),
+  /** Hash of the samples as float32 re full scale, by the definition `pcm-1`: the same under every header. */
+  pcmSha256: z.string(),
+});
+export type ChannelContent = z.infer<typeof channelContentSchema>;
+
 export const measurementSummarySchema = z.object({
   version: z.literal(1),
   format: audioFormatSchema,
@@ -118,6 +128,7 @@ export const measurementSummarySchema = z.object({
   descriptors: z.array(channelDescriptorsSchema),
   quality: z.array(qualityFindingSchema),
   bandwidth: bandwidthSchema,
+  contents: z.array(channelContentSchema).default([]),
   ultrasonic: ultrasoundSchema,
   course: courseSchema,
   detector: z.object({
@@ -145,16 +156,18 @@ export type BandLevel = z.infer<typeof bandLevelSchema>;
 /**
  * Power densities on one axis, dB re full scale squared per hertz: the integral over frequency is the mean square, which is 0.5
  * for a full-scale sine. Quiet and active are means over the frames with least and most energy; median, mean and maximum are over
- * all frames.
+ * all frames. The bands come by rising frequency, as far as the frames tell them apart. Views made before these were measured
+ * have none of the last.
  */
 export const spectrumSchema = z.object({
   channel: z.number().int().min(0),
   frequenciesHz: z.array(z.number()),
   quietDbPerHz: z.array(z.number()),
   activeDbPerHz: z.array(z.number()).nullable(),
-  medianDbPerHz: z.array(z.number()),
-  meanDbPerHz: z.array(z.number()),
   maximumDbPerHz: z.array(z.number()),
+  medianDbPerHz: z.array(z.number()).default([]),
+  meanDbPerHz: z.array(z.number()).default([]),
+  bands: z.array(bandLevelSchema).default([]),
 });
 export type Spectrum = z.infer<typeof spectrumSchema>;
 

@@ -32,13 +32,34 @@ export type Sharing = z.infer<typeof sharingSchema>;
 /** Why a recording is held: what somebody declared, or what the screen found. */
 export const guardFindingSchema = z.object({
   id: idSchema,
-  kind: z.enum(['declared-sensitivity', 'personal-metadata', 'voice-marked']),
+  kind: z.enum([
+    'declared-sensitivity',
+    'personal-metadata',
+    'voice-marked',
+    'speech',
+    'duplicate',
+    'near-duplicate',
+  ]),
   sentence: z.string(),
   /** For metadata: which chunk and field; for a mark: where it lies. */
   place: z.string().nullable(),
   foundAt: instantSchema,
 });
 export type GuardFinding = z.infer<typeof guardFindingSchema>;
+
+/** Another recording with the same sound that the asking person may see. */
+export const likenessSchema = z.object({
+  /** The very bytes; the very samples of a channel in another file; or a copy by its fingerprint. */
+  kind: z.enum(['same-file', 'same-samples', 'similar']),
+  recordingId: idSchema,
+  fileName: z.string(),
+  labName: z.string(),
+  channel: z.number().int().min(0),
+  otherChannel: z.number().int().min(0),
+  /** Time in the other recording of the first sample of this one. */
+  offsetS: z.number(),
+});
+export type Likeness = z.infer<typeof likenessSchema>;
 
 export const recordingListItemSchema = z.object({
   id: idSchema,
@@ -86,8 +107,9 @@ export const recordingSchema = recordingListItemSchema.extend({
   /** `null` until measured; without ultrasonic counts and course where the person works blind. */
   measurement: measurementSummarySchema.nullable(),
   failure: z.string().nullable(),
-  /** Told to the owning lab only; empty for everybody else. */
+  /** Told to the owning lab only; empty for everybody else. Of copies that others may not see, reviewers alone are told. */
   findings: z.array(guardFindingSchema),
+  likenesses: z.array(likenessSchema),
   eventCount: z.number().int().nullable(),
   /** True while an open blind pass of this person forbids candidates, counts and rates. */
   blind: z.boolean(),

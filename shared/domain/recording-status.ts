@@ -3,7 +3,8 @@ export type SharingState = 'pending' | 'held' | 'lab' | 'embargoed' | 'shared' |
 export type ReviewDecision = 'clear' | 'restrict' | 'refuse';
 
 interface Finding {
-  kind: 'declared-sensitivity' | 'personal-metadata' | 'voice-marked';
+  kind:
+    'declared-sensitivity' | 'personal-metadata' | 'voice-marked' | 'speech' | 'duplicate' | 'near-duplicate';
 }
 
 /** After measuring and screening: a finding holds the recording, nothing found shares it. */
@@ -24,6 +25,11 @@ export function sharingAfterDecision(decision: ReviewDecision): SharingState {
 export function decisionsFor(findings: readonly Finding[]): ReviewDecision[] {
   const hasPersonalMetadata = findings.some((finding) => finding.kind === 'personal-metadata');
   return hasPersonalMetadata ? ['restrict', 'refuse'] : ['clear', 'restrict', 'refuse'];
+}
+
+/** Tells of recordings that not everybody who sees this one may see. */
+export function isForReviewersAlone({ kind }: Finding): boolean {
+  return kind === 'duplicate' || kind === 'near-duplicate';
 }
 
 /** Only a held recording waits for a decision. */

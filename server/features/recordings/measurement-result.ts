@@ -5,6 +5,7 @@ import type { Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
 import type { MeasureResult } from '../../measuring/join-segments.ts';
+import type { LikenessService } from './likeness.service.ts';
 import {
   insertCandidates,
   insertDetectorRun,
@@ -12,7 +13,7 @@ import {
   type NewCandidate,
 } from './measurement.queries.ts';
 
-type Parts = Pick<Ground, 'db' | 'clock' | 'ids'>;
+type Parts = Pick<Ground, 'db' | 'clock' | 'ids'> & { likeness: LikenessService };
 
 export interface Outcome {
   recordingId: string;
@@ -33,6 +34,7 @@ export async function storeResult(parts: Parts, outcome: Outcome): Promise<void>
   write(db, (tx) => {
     outcome.assertHeld(tx);
     insertSummary(tx, parts, outcome, detectorRunId);
+    parts.likeness.remember(tx, outcome.recordingId, outcome.result);
   });
   let batch: NewCandidate[] = [];
   let ordinal = 0;

@@ -12,8 +12,11 @@ import { nonFiniteRefusal } from '../../signal/non-finite.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import { storeResult } from './measurement-result.ts';
 import { deleteUnfinishedMeasurements } from './measurement.queries.ts';
+import { deleteSounds, type LikenessRow } from './likeness.queries.ts';
+import { createLikenessService } from './likeness.service.ts';
 import { announceRecording } from './recording-activity.ts';
 import {
+  insertFindings,
   requireRecording,
   selectFindings,
   selectUnscopedRecording,
@@ -22,6 +25,7 @@ import {
   type RecordingRow,
   type RecordingView,
 } from './recordings.queries.ts';
+import type { NewFinding } from './recordings.service.ts';
 import type { StoredAudio, StoredAudioReader } from './stored-audio.ts';
 import type { ViewFolders } from './view-folders.ts';
 
@@ -40,6 +44,12 @@ export interface MeasuringTask {
   assertHeld: (tx: Tx) => void;
 }
 
+/** What the measurement found that decides who may see the recording. */
+interface Found {
+  likenesses: LikenessRow[];
+  screened: NewFinding[];
+}
+
 export type MeasuringService = ReturnType<typeof createMeasuringService>;
 
 const announcedEveryMs = 500;
@@ -48,6 +58,7 @@ const mostUnpackedShare = 0.1;
 
 export function createMeasuringService(parts: Parts) {
   const { db, clock, ids, activity, audit, viewFolders, readStoredAudio, measureFile } = parts;
+  const likeness = createLikenessService({ db, clock });
 
   /**
    * Idempotent: what is measured stays as it is. The segments that an interrupted try finished are used again; what it
@@ -59,21 +70,23 @@ export function createMeasuringService(parts: Parts) {
     write(db, (tx) => {
       task.assertHeld(tx);
       deleteUnfinishedMeasurements(tx, recordingId);
+      deleteSounds(tx, recordingId);
       updateRecording(tx, recordingId, { processing: 'measuring', progress: 0, failure: null });
     });
     announceRecording(activity, { ...view.recording, processing: 'measuring', progress: 0 });
     const measurementId = ids.next();
+    let found: Found;
     try {
-      await compute(view, measurementId, task);
+      found = await compute(view, measurementId, task);
     } catch (error) {
       // A stop or a kill leaves whole segments, a fault may have left anything.
       if (!task.signal.aborted) await viewFolders.discardUnfinished(recordingId);
       throw error;
     }
-    finish(recordingId, task);
+    finish(view.recording, found, task);
   }
 
-  async function compute(view: RecordingView, measurementId: string, task: MeasuringTask): Promise<void> {
+  async function compute(view: RecordingView, measurementId: string, task: MeasuringTask): Promise<Found> {
     const { recording } = view;
     const viewsDir = await viewFolders.openUnfinished(recording.id);
     const report = throttled(recording, task);
@@ -87,13 +100,18 @@ export function createMeasuringService(parts: Parts) {
     const onProgress = (fraction: number) => report(unpackedShare + (1 - unpackedShare) * fraction);
     const result = await measureFile(input, { signal: task.signal, onProgress });
     requireFinite(result);
-    await storeResult(parts, {
-      recordingId: recording.id,
-      measurementId,
-      result,
-      assertHeld: task.assertHeld,
-    });
+    await storeResult(
+      { ...parts, likeness },
+      {
+        recordingId: recording.id,
+        measurementId,
+        result,
+        assertHeld: task.assertHeld,
+      },
+    );
+    const likenesses = await likeness.search(recording.id, result);
     await viewFolders.publish(recording.id, measurementId);
+    return { likenesses, screened: screenedFindings(result) };
   }
 
   /** Where the samples lie; for what is no WAV file a copy is made that is. What it really held has the last word. */
@@ -117,10 +135,16 @@ export function createMeasuringService(parts: Parts) {
   }
 
   /** What has been computed becomes visible in one step. */
-  function finish(recordingId: string, task: MeasuringTask): void {
+  function finish(recording: RecordingRow, { likenesses, screened }: Found, task: MeasuringTask): void {
+    const { id: recordingId } = recording;
     const now = clock.nowMs();
     const measured = write(db, (tx) => {
       task.assertHeld(tx);
+      const findings = [...screened, ...likeness.record(tx, recording, likenesses)];
+      insertFindings(
+        tx,
+        findings.map((finding) => ({ ...finding, id: ids.next(), recordingId, foundAtMs: now })),
+      );
       const sharing = sharingAfterScreen(selectFindings(tx, recordingId));
       const heldAtMs = sharing === 'held' ? now : null;
       updateRecording(tx, recordingId, {
@@ -177,6 +201,16 @@ function requireFinite({ summary }: MeasureResult): void {
   const counts = summary.levels.map(({ nonFiniteSamples }) => nonFiniteSamples);
   const refusal = nonFiniteRefusal(counts, summary.format.frames);
   if (refusal !== undefined) throw new HopelessJobError(refusal);
+}
+
+/** What may be a voice is listened to by a reviewer before anybody else. */
+function screenedFindings({ summary }: MeasureResult): NewFinding[] {
+  return summary.quality
+    .filter(({ code }) => code === 'speech')
+    .map(({ sentence, places: [first] }) => ({
+      ...{ kind: 'speech', sentence },
+      place: first ? `samples ${first.startSample} to ${first.endSample}` : null,
+    }));
 }
 
 /** Messages of the system name its codes and paths; people get a sentence. */

@@ -1,5 +1,10 @@
 import type { MeasurementSummary } from '../../../shared/contract/measurement.ts';
-import type { GuardFinding, Recording, RecordingListItem } from '../../../shared/contract/recordings.ts';
+import type {
+  GuardFinding,
+  Likeness,
+  Recording,
+  RecordingListItem,
+} from '../../../shared/contract/recordings.ts';
 import { toInstant } from '../../services/clock.ts';
 import type { FindingRow, RecordingListView, RecordingRow, RecordingView } from './recordings.queries.ts';
 
@@ -27,6 +32,7 @@ export interface Standing {
   may: Recording['may'];
   /** Told to the owning lab only. */
   findings: FindingRow[];
+  likenesses: Likeness[];
   eventCount: number | null;
   measurement: MeasurementSummary | null;
 }
@@ -46,7 +52,7 @@ export function toRecording(view: RecordingView, standing: Standing): Recording 
     failure,
     revision,
   } = recording;
-  const { blind, may, findings, eventCount, measurement } = standing;
+  const { blind, may, findings, likenesses, eventCount, measurement } = standing;
   return {
     ...toListItem(view, blind),
     ...{ setupId, sha256, licence, sensitivity, note, runOffsetNs, timeExpansion, format, layout },
@@ -61,6 +67,7 @@ export function toRecording(view: RecordingView, standing: Standing): Recording 
     uploadedByName: view.uploadedByName,
     measurement: measurement && blind ? withoutDetections(measurement) : measurement,
     findings: findings.map(toFinding),
+    likenesses,
     eventCount: blind ? null : eventCount,
     blind,
     may,

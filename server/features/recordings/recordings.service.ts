@@ -4,6 +4,7 @@ import type {
   Recording,
   RecordingListItem,
 } from '../../../shared/contract/recordings.ts';
+import { isForReviewersAlone } from '../../../shared/domain/recording-status.ts';
 import { abilityFor, may } from '../../../shared/policy/ability.ts';
 import { labsOf, type Actor } from '../../../shared/policy/actor.ts';
 import { authorize } from '../../authorize/authorize.ts';
@@ -15,6 +16,7 @@ import type { Ground } from '../../ground.ts';
 import { conflict, notFound } from '../../http/problem.ts';
 import { pageOf, readRowCursor } from '../../http/row-cursor.ts';
 import type { AuditService } from '../audit/audit.service.ts';
+import { selectLikenesses } from './likeness.queries.ts';
 import { announceRecording } from './recording-activity.ts';
 import { toListItem, toRecording, type Standing } from './recordings.map.ts';
 import {
@@ -150,7 +152,10 @@ function standingOf(db: Reader, actor: Actor, view: RecordingView): Standing {
   const canDecide = may(ability, 'decide', 'Recording', recording) && recording.uploadedById !== actor.id;
   return {
     blind: selectBlindIds(db, actor, [view]).has(recording.id),
-    findings: isOwnLab ? selectFindings(db, recording.id) : [],
+    findings: (isOwnLab ? selectFindings(db, recording.id) : []).filter(
+      (finding) => canDecide || !isForReviewersAlone(finding),
+    ),
+    likenesses: selectLikenesses(db, recording.id, visibleRecordings(actor)),
     eventCount: countEvents(db, recording.id),
     measurement: isMeasured ? (selectNewestMeasurement(db, recording.id)?.summary ?? null) : null,
     may: {

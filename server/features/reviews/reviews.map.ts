@@ -1,5 +1,5 @@
 import type { HeldRecording, Review } from '../../../shared/contract/reviews.ts';
-import { decisionsFor } from '../../../shared/domain/recording-status.ts';
+import { decisionsFor, isForReviewersAlone } from '../../../shared/domain/recording-status.ts';
 import { toInstant } from '../../services/clock.ts';
 import type { FindingRow, HeldView, selectReviews } from './reviews.queries.ts';
 
@@ -24,10 +24,12 @@ export function toHeldRecording(
     uploadedByName,
     uploadedByMe,
     heldAt: toInstant(recording.heldAtMs ?? recording.updatedAtMs),
-    findings: findings.map(({ id, kind, sentence, place, foundAtMs }) => ({
-      ...{ id, kind, sentence, place },
-      foundAt: toInstant(foundAtMs),
-    })),
+    findings: findings
+      .filter((finding) => !uploadedByMe || !isForReviewersAlone(finding))
+      .map(({ id, kind, sentence, place, foundAtMs }) => ({
+        ...{ id, kind, sentence, place },
+        foundAt: toInstant(foundAtMs),
+      })),
     decisions,
     limits: limitsOf(uploadedByMe, decisions.includes('clear')),
   };

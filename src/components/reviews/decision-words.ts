@@ -73,12 +73,15 @@ export function findingsInShort(findings: readonly GuardFinding[]): string {
     ofKind('personal-metadata'),
     ofKind('voice-marked'),
   ];
+  const copies = [...ofKind('duplicate'), ...ofKind('near-duplicate')];
   const parts = [
     declared.length > 0 ? declaredInShort(declared) : '',
     metadata.length > 0
       ? `${formatCount(metadata.length, 'field')} in the file could name a person or a place`
       : '',
     voices.length > 0 ? formatCount(voices.length, 'marked voice') : '',
+    ofKind('speech').length > 0 ? 'there may be speech' : '',
+    copies.length > 0 ? 'the same sound is stored elsewhere' : '',
   ].filter(Boolean);
   if (parts.length === 0) return 'no finding is left';
   const line = parts.join('; ');

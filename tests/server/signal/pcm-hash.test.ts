@@ -6,7 +6,7 @@ import { whiteNoiseSignal } from '../../support/wav/signals.ts';
 function hashOf(samples: Float32Array, blockSamples: number, segmentSamples = samples.length): string {
   const parts = [];
   for (let start = 0; start < samples.length; start += segmentSamples) {
-    const tracker = new PcmHashTracker();
+    const tracker = new PcmHashTracker('integer');
     const end = Math.min(samples.length, start + segmentSamples);
     for (let at = start; at < end; at += blockSamples)
       tracker.push(samples, at, Math.min(end, at + blockSamples));
@@ -40,9 +40,19 @@ describe('the hash of samples', () => {
   it('reads a window from where the samples begin', () => {
     const padded = new Float32Array(samples.length + 100);
     padded.set(samples, 100);
-    const tracker = new PcmHashTracker();
+    const tracker = new PcmHashTracker('integer');
     tracker.push(padded.subarray(50), 50, 50 + samples.length);
     expect(joinPcmHash([tracker.finish()])).toBe(whole);
+  });
+
+  it('of floats has no sign of zero', () => {
+    const hashed = (values: number[]) => {
+      const tracker = new PcmHashTracker('float');
+      tracker.push(Float32Array.from(values), 0, values.length);
+      return joinPcmHash([tracker.finish()]);
+    };
+    expect(hashed([0, -0, 0.5, -0.5])).toBe(hashed([-0, 0, 0.5, -0.5]));
+    expect(hashed([...samples])).toBe(whole);
   });
 
   it('is another one when a single sample differs, or the end is cut', () => {

@@ -48,6 +48,7 @@ export function measurement(ultrasonic = ultrasound(), rmsDb: number | null = -5
     descriptors: [],
     quality: [],
     bandwidth: { effectiveHz: 412_000, edge: 'none', reason: 'The noise floor shows no edge.' },
+    contents: [{ channel: 0, effectiveBits: 16, pcmSha256: 'b'.repeat(64) }],
     ultrasonic,
     course: {
       samplesPerStep: 1_000_000,
@@ -100,6 +101,7 @@ export function recording(part: Partial<Recording> = {}): Recording {
     measurement: measurement(),
     failure: null,
     findings: [],
+    likenesses: [],
     eventCount: 0,
     blind: false,
     may: { downloadAudio: true, decide: false, assign: false, mark: false },
