@@ -1,5 +1,5 @@
 import type { MessagePort } from 'node:worker_threads';
-import type { MeasureResult } from './join-segments.ts';
+import { joinSegments, type MeasureResult } from './join-segments.ts';
 import type { MeasureInput } from './measure-plan.ts';
 import { measureSegment } from './measure-segment.ts';
 
@@ -16,11 +16,7 @@ const LEAST_INTERVAL_MS = 100;
 
 /** Does one step of a measurement in a thread of its own, so that the server goes on answering. */
 export default async function measureTask(task: MeasureTask): Promise<MeasureResult | null> {
-  if (task.segmentIndex === null) {
-    // The join checks candidates by their schema, whose library would double the memory of every thread that measures.
-    const { joinSegments } = await import('./join-segments.ts');
-    return joinSegments(task.input);
-  }
+  if (task.segmentIndex === null) return joinSegments(task.input);
   const { port } = task;
   let lastAtMs = 0;
   const onProgress = (fraction: number) => {

@@ -1,6 +1,6 @@
 import { readFile } from 'node:fs/promises';
 import { z } from 'zod';
-import { audioFormatSchema, type AudioFormat } from '../../shared/contract/measurement.ts';
+import { audioFormatSchema } from '../../shared/contract/measurement.ts';
 import { viewPath } from './view-layout.ts';
 
 export const viewManifestSchema = z.object({
@@ -11,14 +11,6 @@ export const viewManifestSchema = z.object({
   descriptors: z.enum(['meyda', 'engine']),
 });
 export type ViewManifest = z.infer<typeof viewManifestSchema>;
-
-export function makeManifest(
-  format: AudioFormat,
-  frameColumns: string[],
-  descriptors: ViewManifest['descriptors'],
-): ViewManifest {
-  return { version: 2, format, frameColumns, descriptors };
-}
 
 export async function readManifest(viewsDir: string): Promise<ViewManifest> {
   return viewManifestSchema.parse(JSON.parse(await readFile(viewPath(viewsDir, 'manifest'), 'utf8')));
