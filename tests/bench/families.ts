@@ -1,0 +1,35 @@
+import type { RowFamily } from './kit/bench.ts';
+import { accuracy } from './rows/accuracy.ts';
+import { archive } from './rows/archive.ts';
+import { bandwidth } from './rows/bandwidth.ts';
+import { colours } from './rows/colours.ts';
+import { database } from './rows/database.ts';
+import { decode } from './rows/decode.ts';
+import { detector } from './rows/detector.ts';
+import { features } from './rows/features.ts';
+import { growth } from './rows/growth.ts';
+import { memory } from './rows/memory.ts';
+import { meyda } from './rows/meyda.ts';
+import { server } from './rows/server.ts';
+import { shapes } from './rows/shapes.ts';
+import { sparse } from './rows/sparse.ts';
+import { views } from './rows/views.ts';
+
+/** All rows, in the order of the table. */
+export const families: readonly RowFamily[] = [
+  features,
+  memory,
+  growth,
+  meyda,
+  accuracy,
+  views,
+  colours,
+  archive,
+  database,
+  decode,
+  shapes,
+  sparse,
+  server,
+  detector,
+  bandwidth,
+];

@@ -1,0 +1,24 @@
+import { kernelEngine } from '../../../server/kernel/kernel-engine.ts';
+import { LineWriter } from '../../../server/measuring/line-writer.ts';
+import type { MeasureTools } from '../../../server/measuring/measure-segment.ts';
+import type { OpenDetection } from '../../../server/measuring/segment-detection.ts';
+import { packageEngine } from '../../../server/signal/package-engine.ts';
+
+/** Finds nothing, so that the rest of a measurement can be compared with a peer that looks for nothing. */
+const openNoDetection: OpenDetection = ({ candidatesPath }) => {
+  const lines = new LineWriter(candidatesPath);
+  return {
+    shortFrameSink: () => undefined,
+    push: () => undefined,
+    settle: () => undefined,
+    finish: () => {
+      lines.close();
+      return { headOnsets: [], tailOnsets: [], spans: [] };
+    },
+    close: () => lines.close(),
+  };
+};
+
+export function toolsWith(engine: string): MeasureTools {
+  return { openEngine: engine === 'package' ? packageEngine : kernelEngine, openDetection: openNoDetection };
+}
