@@ -51,7 +51,7 @@ export async function joinDetection(input: DetectionJoinInput): Promise<Detectio
   const { sensorLowHz, sensorHighHz } = context;
   const floorEdgeHz = bandwidth.edge === 'none' ? null : bandwidth.effectiveHz;
   const band = observableBand({ sampleRateHz, sensorLowHz, sensorHighHz, floorEdgeHz });
-  const tally = new CandidateTally();
+  const tally = new CandidateTally(sensorLowHz);
   const candidatesPerStep = new Uint32Array(course.steps);
   const lines = new LineWriter(input.candidatesPath);
   try {
@@ -66,10 +66,15 @@ export async function joinDetection(input: DetectionJoinInput): Promise<Detectio
   }
   const ultrasonic = judgeUltrasound({
     sampleRateHz,
+    sensorLowHz,
     band,
     tally,
     expectedByChance: channels * expectedByChance(frames / sampleRateHz),
-    energyShare: ultrasonicEnergyShare(results.map((result) => result.course)),
+    energyShare: ultrasonicEnergyShare(
+      results.map((result) => result.spectra),
+      sensorLowHz,
+      band.observable ? band.highHz : 0,
+    ),
     tracked: results.map((_, channel) => joinSpans(spansOf(input.findings, channel), input.shortHop)),
   });
   const detector = { version: detectorVersion, settings: { ...defaultDetectorSettings } };

@@ -2,6 +2,7 @@ import { amplitudeToDb, amplitudeToVolts, dbAe, rmsToDb } from '../../shared/aud
 import type { BurstParameters } from '../../shared/contract/measurement.ts';
 import { burstSpectrum, centroidHz, energyAboutHearingLine, peakFrequencyHz } from './burst-spectrum.ts';
 import { HEARING_LINE_HZ } from './hearing-line.ts';
+import { seesBelowHearingLine } from './ultrasound-band.ts';
 
 /** The noise a burst stands in: samples without it, or only their rms re full scale. */
 export type BurstNoise = { readonly samples: Float32Array } | { readonly rmsFs: number };
@@ -42,7 +43,8 @@ export interface SpanOptions extends BurstContext {
 export const LEAST_ULTRASONIC_HIGH_HZ = HEARING_LINE_HZ * 2 ** (1 / 3);
 export const BELOW_SHARE = 0.1;
 export const ABOVE_SHARE = 0.9;
-const LOWEST_JUDGED_HZ = 1000;
+/** Shares are judged from here up, whatever the sensor sees. */
+export const LOWEST_JUDGED_HZ = 1000;
 const CLIPPED_FROM_FS = 1 - 2 ** -15;
 const QUIET_GAP_S = 0.0005;
 
@@ -163,7 +165,7 @@ function ultrasonicShare(
   lowHz: number,
   highHz: number,
 ): number | null {
-  if (highHz < LEAST_ULTRASONIC_HIGH_HZ) return null;
+  if (highHz < LEAST_ULTRASONIC_HIGH_HZ || !seesBelowHearingLine(lowHz)) return null;
   const energy = energyAboutHearingLine(spectrum, lowHz, highHz);
   return energy && energy.above / (energy.below + energy.above);
 }

@@ -35,6 +35,14 @@ export function observableBand(limits: BandLimits): ObservableBand {
   return { observable: false, reason };
 }
 
+/**
+ * Whether enough is seen below the hearing line to say where a burst lies to it: a third of an octave, as above it.
+ * @param lowHz where the sensor's band begins; `null` where nobody stated it.
+ */
+export function seesBelowHearingLine(lowHz: number | null): boolean {
+  return (lowHz ?? 0) <= (HEARING_LINE_HZ / LEAST_RATIO) * (1 + 1e-9);
+}
+
 function upperLimit({ sampleRateHz, sensorHighHz, floorEdgeHz }: BandLimits): { hz: number; cause: string } {
   const byRate = USABLE_SHARE_OF_RATE * sampleRateHz;
   const limits = [

@@ -1,6 +1,9 @@
 import { durationText, frequencyText, levelText } from '../../shared/audio/unit-text.ts';
 import type { DetectedCandidate, FlaggedSpan, Ultrasound } from '../../shared/contract/measurement.ts';
-import type { ObservableBand } from './ultrasound-band.ts';
+import { LOWEST_JUDGED_HZ } from './bursts.ts';
+import { HEARING_LINE_HZ } from './hearing-line.ts';
+import { DENSITY_FLOOR_DB } from './long-term-spectrum.ts';
+import { seesBelowHearingLine, type ObservableBand } from './ultrasound-band.ts';
 
 const MOST_SPANS = 1000;
 const UNLIKELY = 0.05;
@@ -10,8 +13,15 @@ export class CandidateTally {
   readonly counts = { total: 0, below: 0, across: 0, above: 0, unknown: 0 };
   #energy = 0;
   #energyAbove = 0;
+  readonly #seesBelow: boolean;
+  #ultrasonic = 0;
   #first: DetectedCandidate | null = null;
   #strongest: DetectedCandidate | null = null;
+
+  /** @param sensorLowHz where the sensor's band begins; `null` where nobody stated it. */
+  constructor(sensorLowHz: number | null) {
+    this.#seesBelow = seesBelowHearingLine(sensorLowHz);
+  }
 
   add(candidate: DetectedCandidate): void {
     this.counts.total += 1;
@@ -20,11 +30,17 @@ export class CandidateTally {
       this.#energy += candidate.energyFs2S;
       this.#energyAbove += candidate.energyFs2S * candidate.ultrasonicShare;
     }
-    if (candidate.hearingClass !== 'across' && candidate.hearingClass !== 'above') return;
+    if (!this.#hasUltrasound(candidate)) return;
+    this.#ultrasonic += 1;
     if (!this.#first || candidate.onsetSample < this.#first.onsetSample) this.#first = candidate;
     if (!this.#strongest || (candidate.peakDb ?? -Infinity) > (this.#strongest.peakDb ?? -Infinity)) {
       this.#strongest = candidate;
     }
+  }
+
+  /** How many have energy above 20 kHz. */
+  get ultrasonic(): number {
+    return this.#ultrasonic;
   }
 
   /** Of those with energy above 20 kHz. */
@@ -40,23 +56,41 @@ export class CandidateTally {
   get energyShare(): number | null {
     return this.#energy > 0 ? this.#energyAbove / this.#energy : null;
   }
+
+  /** By its class; or, where the sensor sees nothing below the hearing line, by the band in which it stood out. */
+  #hasUltrasound({ hearingClass, bandHighHz }: DetectedCandidate): boolean {
+    if (!this.#seesBelow) return bandHighHz > HEARING_LINE_HZ;
+    return hearingClass === 'across' || hearingClass === 'above';
+  }
 }
 
 /**
- * Share of a recording's energy (mean removed) that lies above 20 kHz, from mean squares of equal steps, all channels added;
- * `null` in silence.
+ * Share of the energy in the band that sensor and rate can see that lies above 20 kHz, by the mean spectra of all channels:
+ * what is slower than a long frame is left out. `null` in silence, and where the band begins too near to 20 kHz to tell.
  */
 export function ultrasonicEnergyShare(
-  courses: readonly { levelMeanSquares: Float64Array; ultrasonicMeanSquares: Float64Array }[],
+  spectra: readonly { frequenciesHz: readonly number[]; meanDbPerHz: readonly number[] }[],
+  sensorLowHz: number | null,
+  highHz: number,
 ): number | null {
-  const sum = (values: Float64Array) => values.reduce((total, value) => total + value, 0);
-  const whole = courses.reduce((total, course) => total + sum(course.levelMeanSquares), 0);
-  const above = courses.reduce((total, course) => total + sum(course.ultrasonicMeanSquares), 0);
-  return whole > 0 ? Math.min(1, above / whole) : null;
+  if (!seesBelowHearingLine(sensorLowHz)) return null;
+  let below = 0;
+  let above = 0;
+  for (const { frequenciesHz, meanDbPerHz } of spectra) {
+    for (const [point, hz] of frequenciesHz.entries()) {
+      if (hz < (sensorLowHz ?? 0) || hz > highHz || meanDbPerHz[point]! <= DENSITY_FLOOR_DB) continue;
+      const power = 10 ** (meanDbPerHz[point]! / 10);
+      if (hz < HEARING_LINE_HZ) below += power;
+      else above += power;
+    }
+  }
+  return below + above > 0 ? above / (below + above) : null;
 }
 
 export interface UltrasoundFacts {
   readonly sampleRateHz: number;
+  /** Where the sensor's band begins; `null` where nobody stated it. */
+  readonly sensorLowHz: number | null;
   readonly band: ObservableBand;
   readonly tally: CandidateTally;
   /** What steady noise alone may give. */
@@ -91,10 +125,10 @@ export function judgeUltrasound(facts: UltrasoundFacts): Ultrasound {
   }
   const spanCount = facts.tracked.reduce((sum, { spanCount: count }) => sum + count, 0);
   const spans = strongestSpans(facts.tracked.flatMap((channel) => channel.spans));
-  const found = spanCount > 0 || chanceOfAtLeast(across + above, expectedByChance) < UNLIKELY;
+  const found = spanCount > 0 || chanceOfAtLeast(tally.ultrasonic, expectedByChance) < UNLIKELY;
   return {
     verdict: found ? 'found' : 'not-found',
-    reason: found ? foundSentence(facts, spans, spanCount) : notFoundSentence(facts, across + above),
+    reason: `${found ? foundSentence(facts, spans, spanCount) : notFoundSentence(facts)}${sensorSentence(facts)}`,
     bandLowHz: band.lowHz,
     bandHighHz: band.highHz,
     energyShare: facts.energyShare,
@@ -116,7 +150,7 @@ function foundSentence(
   spanCount: number,
 ): string {
   const time = (sample: number) => durationText(sample / sampleRateHz);
-  const count = tally.counts.across + tally.counts.above;
+  const count = tally.ultrasonic;
   const parts = [`Energy above 20 kHz as this sensor sees it, in the band from ${bandText(band)}.`];
   const { first, strongest } = tally;
   if (count > 0 && first && strongest) {
@@ -141,10 +175,22 @@ function foundSentence(
   return parts.join(' ');
 }
 
-function notFoundSentence({ band, expectedByChance }: UltrasoundFacts, count: number): string {
+function notFoundSentence({ band, tally, expectedByChance }: UltrasoundFacts): string {
+  const count = tally.ultrasonic;
   const looked = `Looked for in the band from ${bandText(band)}, as this sensor sees it, and not found: no span stands 6 dB over the quiet floor`;
   if (count === 0) return `${looked}, and no candidate has energy there.`;
   return `${looked}, and ${counted(count, 'candidate')} with energy there ${count === 1 ? 'is' : 'are'} no more than noise alone would give (${chanceText(expectedByChance)}).`;
+}
+
+/** What the beginning of the sensor's band means for shares and classes; empty where it is below all that is judged. */
+function sensorSentence({ sensorLowHz, tally }: UltrasoundFacts): string {
+  if (sensorLowHz === null || tally.counts.total === 0) return '';
+  const begins = frequencyText(sensorLowHz);
+  if (!seesBelowHearingLine(sensorLowHz)) {
+    return ` The band of this sensor begins at ${begins}: what a burst has below 20 kHz is not seen, so that no candidate can be placed below, across or above the hearing line.`;
+  }
+  if (sensorLowHz <= LOWEST_JUDGED_HZ) return '';
+  return ` Shares and classes are of what lies above ${begins}, where the band of this sensor begins.`;
 }
 
 function bandText(band: ObservableBand): string {

@@ -86,7 +86,7 @@ export const ultrasoundSchema = z.object({
   reason: z.string(),
   bandLowHz: z.number().nullable(),
   bandHighHz: z.number().nullable(),
-  /** Share of the signal's whole energy (mean removed) that lies above 20 kHz, as this sensor and rate see it. */
+  /** Share of the energy in the band that sensor and rate can see that lies above 20 kHz; `null` where it begins there. */
   energyShare: z.number().nullable(),
   /** The same for the bursts alone, noise subtracted; `null` without bursts. */
   burstEnergyShare: z.number().nullable(),

@@ -110,7 +110,7 @@ export const measuredColumns: RecordingColumn[] = [
     name: 'ultrasonic_energy_share',
     type: 'number',
     description:
-      'Share of the energy of the whole recording that lies above 20 kHz, as this sensor and rate see it, from 0 to 1.',
+      'Share of the energy in the band that sensor and rate can see that lies above 20 kHz, over the whole recording, from 0 to 1.',
     value: (row) => row.measured.ultrasonicEnergyShare,
   },
   {

@@ -24,7 +24,9 @@ function chanceWords(expected: number): string {
   return `about ${formatNumber(expected, { maximumSignificantDigits: 2 })}`;
 }
 
-function whereTheyLie({ total, above, across }: Ultrasound['candidates']): string {
+function whereTheyLie({ total, above, across, below }: Ultrasound['candidates']): string {
+  // As with a sensor whose band begins at the line or above it.
+  if (above + across + below === 0) return 'where they lie to the hearing line cannot be told';
   if (above + across === 0) return total === 1 ? 'not above the hearing line' : 'none above the hearing line';
   if (above === total) return total === 1 ? 'above the hearing line' : 'all above the hearing line';
   if (above >= nearlyAll * total) return 'nearly all above the hearing line';

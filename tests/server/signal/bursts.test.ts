@@ -159,6 +159,12 @@ describe('spans and classes', () => {
     expect([burst.ultrasonicShare, burst.hearingClass]).toEqual([null, 'unknown']);
   });
 
+  it('nor of bursts of a sensor that sees nothing below the hearing line', () => {
+    const seenFrom = (observableLowHz: number) =>
+      measureBurst(decayingSine(), { ...context, observableLowHz }).hearingClass;
+    expect([0, 15_800, 16_000, 50_000].map(seenFrom)).toEqual(['above', 'above', 'unknown', 'unknown']);
+  });
+
   it('the classes part at a tenth and at nine tenths', () => {
     expect([0, 0.099, 0.1, 0.9, 0.901].map(hearingClassOf)).toEqual([
       'below',

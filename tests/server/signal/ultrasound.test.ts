@@ -104,6 +104,7 @@ describe('verdict', () => {
   const band = { observable: true, lowHz: 20_000, highHz: 86_400 } as const;
   const quiet = {
     sampleRateHz: 192_000,
+    sensorLowHz: null,
     band,
     energyShare: 0.001,
     expectedByChance: 0.02,
@@ -111,7 +112,7 @@ describe('verdict', () => {
   };
 
   function tallyOf(...classes: ('below' | 'across' | 'above')[]): CandidateTally {
-    const tally = new CandidateTally();
+    const tally = new CandidateTally(null);
     classes.forEach((hearingClass, at) => {
       const ultrasonicShare = { below: 0.02, across: 0.5, above: 0.98 }[hearingClass];
       tally.add(
@@ -172,12 +173,68 @@ describe('verdict', () => {
     expect(judged.candidates).toMatchObject({ total: 1, above: 0 });
   });
 
-  it('has the share of all channels together, none in silence', () => {
-    const course = (level: number, above: number) => ({
-      levelMeanSquares: new Float64Array([level]),
-      ultrasonicMeanSquares: new Float64Array([above]),
+  describe('of a sensor whose band begins above the hearing line', () => {
+    const sensorLowHz = 50_000;
+    const contact = { ...quiet, sensorLowHz, band: { ...band, lowHz: sensorLowHz }, energyShare: null };
+
+    function tallyOfBursts(count: number): CandidateTally {
+      const tally = new CandidateTally(sensorLowHz);
+      for (let n = 0; n < count; n++)
+        tally.add(candidateAt(192_000 * (n + 1), 0, { bandLowHz: 60_000, bandHighHz: 80_000 }));
+      return tally;
+    }
+
+    it('rests on candidates that have no class, and says why they have none', () => {
+      const judged = judgeUltrasound({ ...contact, tally: tallyOfBursts(3) });
+      expect(judged).toMatchObject({ verdict: 'found', burstEnergyShare: null });
+      expect(judged.candidates).toMatchObject({ total: 3, below: 0, across: 0, above: 0 });
+      expect(judged.reason).toContain('3 candidates, the first at 1 s');
+      expect(judged.reason).toMatch(/begins at 50 kHz: .* no candidate can be placed below, across or above/);
     });
-    expect(ultrasonicEnergyShare([course(3, 1), course(1, 0)])).toBeCloseTo(0.25, 12);
-    expect(ultrasonicEnergyShare([course(0, 0)])).toBeNull();
+
+    it('is not found without any', () => {
+      const judged = judgeUltrasound({ ...contact, tally: tallyOfBursts(0) });
+      expect(judged.verdict).toBe('not-found');
+      expect(judged.reason).toContain('50 kHz to 86.4 kHz');
+    });
+  });
+
+  it('says from where on a sensor sees, where its shares are of that', () => {
+    const judged = judgeUltrasound({ ...quiet, sensorLowHz: 8000, tally: tallyOf('above') });
+    expect(judged.reason).toContain('Shares and classes are of what lies above 8 kHz');
+    for (const sensorLowHz of [null, 500]) {
+      expect(judgeUltrasound({ ...quiet, sensorLowHz, tally: tallyOf('above') }).reason).not.toContain(
+        'Shares',
+      );
+    }
+  });
+
+  it('never speaks of what can be heard', () => {
+    for (const tally of [tallyOf(), tallyOf('above', 'above'), tallyOf('below')]) {
+      for (const sensorLowHz of [null, 8000, 50_000]) {
+        expect(judgeUltrasound({ ...quiet, sensorLowHz, tally }).reason).not.toMatch(/audible/i);
+      }
+    }
+  });
+});
+
+describe('the share of energy above 20 kHz', () => {
+  const spectrum = (belowDb: number, aboveDb: number) => ({
+    frequenciesHz: [500, 5000, 15_000, 30_000, 60_000, 90_000],
+    meanDbPerHz: [belowDb, belowDb, belowDb, aboveDb, aboveDb, aboveDb],
+  });
+
+  it('is that of all channels together, in the band that sensor and rate see', () => {
+    const channels = [spectrum(-100, -100), spectrum(-100, -100)];
+    expect(ultrasonicEnergyShare(channels, null, 86_400)).toBeCloseTo(2 / 5, 9);
+    expect(ultrasonicEnergyShare(channels, 10_000, 86_400)).toBeCloseTo(2 / 3, 9);
+    expect(ultrasonicEnergyShare(channels, 10_000, 50_000)).toBeCloseTo(1 / 2, 9);
+    expect(ultrasonicEnergyShare([spectrum(-100, -110)], null, 86_400)).toBeCloseTo(0.2 / 3.2, 9);
+  });
+
+  it('is none in silence, and none where the sensor begins too near to the hearing line', () => {
+    expect(ultrasonicEnergyShare([spectrum(-200, -200)], null, 86_400)).toBeNull();
+    expect(ultrasonicEnergyShare([spectrum(-100, -100)], 15_800, 86_400)).toBeCloseTo(1, 9);
+    expect(ultrasonicEnergyShare([spectrum(-100, -100)], 16_000, 86_400)).toBeNull();
   });
 });

@@ -30,6 +30,10 @@ describe('the headline of a recording', () => {
       '15 candidates, 1 of them above or across the hearing line',
     ],
     [{ total: 9, below: 9, across: 0, above: 0 }, '9 candidates, none above the hearing line'],
+    [
+      { total: 9, below: 0, across: 0, above: 0 },
+      '9 candidates, where they lie to the hearing line cannot be told',
+    ],
   ])('says where %o lie', (counts, title) => {
     expect(ofUltrasound({ candidates: { ...counts, expectedByChance: 0 } }).title).toBe(title);
   });

@@ -13,6 +13,7 @@ const spectrum = {
   medianDbPerHz: [-82, -88, -98, -96, -112],
   meanDbPerHz: [-75, -80, -90, -70, -108],
   maximumDbPerHz: [-50, -60, -70, -50, -100],
+  bands: [],
 };
 
 describe('the plot of a spectrum', () => {
