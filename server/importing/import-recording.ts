@@ -1,10 +1,12 @@
 import { rm } from 'node:fs/promises';
 import type { AudioFormat } from '../../shared/audio/audio-format.ts';
+import { isZip, readCaptureSet } from '../../shared/audio/capture-set.ts';
 import { readCsvFile } from '../../shared/audio/csv-file.ts';
 import type { RawLayout, StoredCsvLayout, StoredLayout } from '../../shared/audio/declared-layout.ts';
 import { readFlacHeader } from '../../shared/audio/flac-header.ts';
 import { rawFileFacts } from '../../shared/audio/raw-file.ts';
 import { withFileSource } from '../store/file-source.ts';
+import { copySamples } from './copy-samples.ts';
 import { importCsv } from './import-csv.ts';
 import { importFlac } from './import-flac.ts';
 import type { ImportControls } from './import-controls.ts';
@@ -31,13 +33,30 @@ export interface Imported {
  */
 export async function importRecording(input: ImportInput, controls: ImportControls = {}): Promise<Imported> {
   try {
-    if (input.layout === null) return await importFlacFile(input, controls);
+    if (input.layout === null) return await importSelfTelling(input, controls);
     if (input.layout.kind === 'raw') return await importRawFile(input, input.layout, controls);
     return await importCsvFile(input, input.layout, controls);
   } catch (error) {
     await rm(input.targetPath, { force: true });
     throw error;
   }
+}
+
+async function importSelfTelling(input: ImportInput, controls: ImportControls): Promise<Imported> {
+  const isArchive = await withFileSource(input.filePath, async (source) => isZip(await source.read(0, 4)));
+  return isArchive ? importCaptureSet(input, controls) : importFlacFile(input, controls);
+}
+
+/** The segments one after the other, byte by byte. */
+async function importCaptureSet(input: ImportInput, controls: ImportControls): Promise<Imported> {
+  return withFileSource(input.filePath, async (source) => {
+    const { format } = await readCaptureSet(source);
+    const writer = new WavFileWriter(input.targetPath, format);
+    return finishing(writer, async () => {
+      await readCaptureSet(source, (part) => copySamples(part, format, writer, controls));
+      return { format };
+    });
+  });
 }
 
 async function importFlacFile(input: ImportInput, controls: ImportControls): Promise<Imported> {
@@ -82,8 +101,12 @@ async function writing(
   write: (writer: WavFileWriter) => Promise<Imported>,
 ): Promise<Imported> {
   const writer = new WavFileWriter(targetPath, format);
+  return finishing(writer, () => write(writer));
+}
+
+async function finishing(writer: WavFileWriter, write: () => Promise<Imported>): Promise<Imported> {
   try {
-    const imported = await write(writer);
+    const imported = await write();
     writer.finish();
     return imported;
   } finally {

@@ -1,5 +1,6 @@
 import type { AudioFormat } from './audio-format.ts';
 import type { ByteSource } from './byte-source.ts';
+import { isZip, readCaptureSet, type CaptureSet } from './capture-set.ts';
 import { readCsvFile } from './csv-file.ts';
 import type { DeclaredLayout } from './declared-layout.ts';
 import { isFlac, readFlacHeader } from './flac-header.ts';
@@ -10,7 +11,12 @@ import { readWavHeader } from './wav-header.ts';
 import { readWavMetadata } from './wav-metadata.ts';
 
 /** What can be told of a file that is brought in before its samples are looked at. */
-export type RecordingFile = { format: AudioFormat; metadata: MetadataField[] };
+export type RecordingFile = {
+  format: AudioFormat;
+  metadata: MetadataField[];
+  /** Of a capture set. */
+  captures?: Pick<CaptureSet, 'segments' | 'liveTimeNs'>;
+};
 
 /**
  * Reads what a file says of itself, or what was declared of one that says nothing. Its name has no say. Throws RefusedFileError,
@@ -28,7 +34,12 @@ export async function readRecordingFile(
 }
 
 async function readSelfTelling(source: ByteSource): Promise<RecordingFile> {
-  if (isFlac(await source.read(0, 4))) {
+  const head = await source.read(0, 4);
+  if (isZip(head)) {
+    const { format, metadata, ...captures } = await readCaptureSet(source);
+    return { format, metadata, captures };
+  }
+  if (isFlac(head)) {
     const { format, metadata } = await readFlacHeader(source);
     return { format, metadata };
   }
@@ -40,9 +51,10 @@ async function readSelfTelling(source: ByteSource): Promise<RecordingFile> {
 async function refuseSelfTelling(source: ByteSource): Promise<void> {
   const told = await readSelfTelling(source).catch(() => undefined);
   if (told === undefined) return;
-  const name = told.format.container === 'FLAC' ? 'FLAC' : 'WAV';
+  const { container } = told.format;
+  const name = container === 'FLAC' ? 'FLAC file' : container === 'capture-set' ? 'capture set' : 'WAV file';
   throw new RefusedFileError(
     'layout',
-    `This is a ${name} file, which says itself how its samples lie. Bring it in without a declared layout.`,
+    `This is a ${name}, which says itself how its samples lie. Bring it in without a declared layout.`,
   );
 }

@@ -15,6 +15,7 @@ export type FileRefusal =
   | 'too-many-chunks'
   | 'damaged'
   | 'layout'
+  | 'capture-set'
   /** Could be brought in with a declared layout: a table of numbers, or raw samples. */
   | 'text'
   | 'unknown';

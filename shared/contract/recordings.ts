@@ -102,6 +102,8 @@ export const recordingSchema = recordingListItemSchema.extend({
   timeExpansion: z.number(),
   uploadedByName: z.string().nullable(),
   format: audioFormatSchema,
+  /** Of a capture set: its segments, and how long a trigger would have been answered. */
+  captures: z.object({ segments: z.number().int(), liveTimeNs: z.number().int().nullable() }).nullable(),
   /** As it was declared, where the file itself does not say how its samples lie. */
   layout: storedLayoutSchema.nullable(),
   /** `null` until measured; without ultrasonic counts and course where the person works blind. */
@@ -118,6 +120,17 @@ export const recordingSchema = recordingListItemSchema.extend({
   revision: revisionSchema,
 });
 export type Recording = z.infer<typeof recordingSchema>;
+
+/** A triggered segment: where it lies in the recording, and when its first sample was taken on the clock of the run. */
+export const captureSegmentSchema = z.object({
+  startSample: z.number().int(),
+  frames: z.number().int(),
+  /** `null` where the place of the recording on the run's clock is not told. */
+  runTimeNs: z.number().int().nullable(),
+  preTriggerFrames: z.number().int().nullable(),
+});
+export type CaptureSegment = z.infer<typeof captureSegmentSchema>;
+export const captureSegmentsSchema = z.object({ items: z.array(captureSegmentSchema) });
 
 export const listRecordingsQuerySchema = pageQuerySchema.extend({
   q: z.string().trim().max(100).optional(),

@@ -2,17 +2,12 @@ import { createHash } from 'node:crypto';
 import type { Page } from 'playwright-core';
 import { describe, expect } from 'vitest';
 import { checkAxe } from '../support/browser/axe.ts';
+import { choose, openForm, type ChosenFile } from '../support/browser/bring-in-form.ts';
 import { signIn } from '../support/browser/sign-in.ts';
 import { takeScreenshot } from '../support/browser/screenshot.ts';
 import { test } from '../support/browser/test.ts';
 import { whiteNoiseSignal } from '../support/wav/signals.ts';
 import { writeWav } from '../support/wav/write-wav.ts';
-
-interface ChosenFile {
-  name: string;
-  mimeType: string;
-  buffer: Buffer;
-}
 
 const sampleRateHz = 96_000;
 
@@ -29,17 +24,6 @@ function namedFile(name: string): ChosenFile {
   const channels = [whiteNoiseSignal(sampleRateHz, 0.01, 5)];
   const bytes = writeWav({ sampleRateHz, channels, extraChunks: [{ id: 'bext', body: bext }] });
   return { name, mimeType: 'audio/wav', buffer: Buffer.from(bytes) };
-}
-
-async function openForm(page: Page): Promise<void> {
-  await page.goto('/bring-in');
-  await page.getByLabel('Run', { exact: true }).selectOption({ index: 1 });
-  await page.getByLabel('Set-up', { exact: true }).selectOption({ index: 1 });
-  await page.getByLabel('Licence', { exact: true }).selectOption('CC-BY-4.0');
-}
-
-async function choose(page: Page, ...files: ChosenFile[]): Promise<void> {
-  await page.locator('input[type=file]').setInputFiles(files);
 }
 
 /** So slow that a test can look at an upload under way. */

@@ -1,11 +1,13 @@
 import type { MeasurementSummary } from '../../../shared/contract/measurement.ts';
 import type {
+  CaptureSegment,
   GuardFinding,
   Likeness,
   Recording,
   RecordingListItem,
 } from '../../../shared/contract/recordings.ts';
 import { toInstant } from '../../services/clock.ts';
+import type { SegmentRow } from './segments.queries.ts';
 import type { FindingRow, RecordingListView, RecordingRow, RecordingView } from './recordings.queries.ts';
 
 export function toListItem(view: RecordingListView, blind: boolean): RecordingListItem {
@@ -34,6 +36,8 @@ export interface Standing {
   findings: FindingRow[];
   likenesses: Likeness[];
   eventCount: number | null;
+  /** Above 0 for a capture set. */
+  segmentCount: number;
   measurement: MeasurementSummary | null;
 }
 
@@ -52,7 +56,7 @@ export function toRecording(view: RecordingView, standing: Standing): Recording 
     failure,
     revision,
   } = recording;
-  const { blind, may, findings, likenesses, eventCount, measurement } = standing;
+  const { blind, may, findings, likenesses, eventCount, segmentCount, measurement } = standing;
   return {
     ...toListItem(view, blind),
     ...{ setupId, sha256, licence, sensitivity, note, runOffsetNs, timeExpansion, format, layout },
@@ -69,9 +73,14 @@ export function toRecording(view: RecordingView, standing: Standing): Recording 
     findings: findings.map(toFinding),
     likenesses,
     eventCount: blind ? null : eventCount,
+    captures: segmentCount > 0 ? { segments: segmentCount, liveTimeNs: recording.liveTimeNs } : null,
     blind,
     may,
   };
+}
+
+export function toSegment({ startSample, frames, runTimeNs, preTriggerFrames }: SegmentRow): CaptureSegment {
+  return { startSample, frames, runTimeNs, preTriggerFrames };
 }
 
 function toFinding({ id, kind, sentence, place, foundAtMs }: FindingRow): GuardFinding {

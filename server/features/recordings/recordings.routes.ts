@@ -2,6 +2,7 @@ import type { AudioContainer } from '../../../shared/audio/audio-format.ts';
 import { FILE_KINDS } from '../../../shared/audio/file-kind.ts';
 import { idParamsSchema } from '../../../shared/contract/ids.ts';
 import {
+  captureSegmentsSchema,
   listRecordingsQuerySchema,
   recordingSchema,
   recordingsPageSchema,
@@ -31,6 +32,15 @@ export function recordingsRoutes({ services, store }: Deps): Route[] {
       params: idParamsSchema,
       response: recordingSchema,
       handler: ({ actor, params, res }) => withRevision(res, recordings.get(actor, params.id)),
+    }),
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings/:id/segments',
+      summary: 'Of a capture set: where its triggered segments lie, and when they were taken.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      response: captureSegmentsSchema,
+      handler: ({ actor, params }) => recordings.listSegments(actor, params.id),
     }),
     defineRoute({
       method: 'post',

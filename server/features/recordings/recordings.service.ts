@@ -1,5 +1,6 @@
 import { toTotal, type Page } from '../../../shared/contract/page.ts';
 import type {
+  CaptureSegment,
   ListRecordingsQuery,
   Recording,
   RecordingListItem,
@@ -18,7 +19,7 @@ import { pageOf, readRowCursor } from '../../http/row-cursor.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import { selectLikenesses } from './likeness.queries.ts';
 import { announceRecording } from './recording-activity.ts';
-import { toListItem, toRecording, type Standing } from './recordings.map.ts';
+import { toListItem, toRecording, toSegment, type Standing } from './recordings.map.ts';
 import {
   countEvents,
   countRecordings,
@@ -36,6 +37,7 @@ import {
   type RecordingRow,
   type RecordingView,
 } from './recordings.queries.ts';
+import { countSegments, insertSegments, selectSegments, type SegmentRow } from './segments.queries.ts';
 
 type Parts = Pick<Ground, 'db' | 'clock' | 'ids' | 'jobs' | 'activity'> & { audit: AuditService };
 
@@ -46,8 +48,15 @@ export type NewRecording = Pick<
   RecordingRow,
   | ('id' | 'runId' | 'labId' | 'setupId' | 'uploadedById' | 'fileName' | 'sizeBytes' | 'sha256' | 'format')
   | ('licence' | 'sensitivity' | 'note' | 'runOffsetNs' | 'timeExpansion' | 'layout')
+  | 'liveTimeNs'
 >;
+export type NewSegment = Omit<SegmentRow, 'id' | 'recordingId'>;
 export type NewFinding = Pick<FindingRow, 'kind' | 'sentence' | 'place'>;
+
+export interface NewParts {
+  findings: readonly NewFinding[];
+  segments: readonly NewSegment[];
+}
 
 export interface RecordingAccess {
   row: RecordingRow;
@@ -79,8 +88,14 @@ export function createRecordingsService({ db, clock, ids, jobs, activity, audit 
     return { row, blind: selectBlindIds(db, actor, [{ recording: row }]).has(id) };
   }
 
-  /** Writes a new recording, its findings and the job that measures it, in the transaction of whoever brings it in. */
-  function add(tx: Tx, recording: NewRecording, findings: readonly NewFinding[]): void {
+  /** Where the segments of a capture set lie and when they were taken; none of any other recording. */
+  function listSegments(actor: Actor, id: string): { items: CaptureSegment[] } {
+    const { row } = requireVisible(actor, id);
+    return { items: selectSegments(db, row.id).map(toSegment) };
+  }
+
+  /** Writes a new recording, its parts and the job that measures it, in the transaction of whoever brings it in. */
+  function add(tx: Tx, recording: NewRecording, parts: NewParts): void {
     const now = clock.nowMs();
     insertRecording(tx, {
       ...recording,
@@ -89,10 +104,14 @@ export function createRecordingsService({ db, clock, ids, jobs, activity, audit 
       createdAtMs: now,
       updatedAtMs: now,
     });
-    const owned = { recordingId: recording.id, foundAtMs: now };
+    const recordingId = recording.id;
     insertFindings(
       tx,
-      findings.map((finding) => ({ ...finding, ...owned, id: ids.next() })),
+      parts.findings.map((finding) => ({ ...finding, recordingId, foundAtMs: now, id: ids.next() })),
+    );
+    insertSegments(
+      tx,
+      parts.segments.map((segment) => ({ ...segment, recordingId, id: ids.next() })),
     );
     jobs.enqueue(tx, { kind: 'measure', payload: { recordingId: recording.id } });
     const { sha256, sizeBytes, runId } = recording;
@@ -124,7 +143,7 @@ export function createRecordingsService({ db, clock, ids, jobs, activity, audit 
     return get(actor, id);
   }
 
-  return { list, get, requireVisible, add, measureAgain };
+  return { list, get, requireVisible, listSegments, add, measureAgain };
 }
 
 function placeOf({ recording }: RecordingListView): RowPlace {
@@ -157,6 +176,7 @@ function standingOf(db: Reader, actor: Actor, view: RecordingView): Standing {
     ),
     likenesses: selectLikenesses(db, recording.id, visibleRecordings(actor)),
     eventCount: countEvents(db, recording.id),
+    segmentCount: countSegments(db, recording.id),
     measurement: isMeasured ? (selectNewestMeasurement(db, recording.id)?.summary ?? null) : null,
     may: {
       // Whoever marks has to hear: a pass that shows the recording lets its bytes be played too.

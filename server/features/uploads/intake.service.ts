@@ -12,7 +12,7 @@ import { ProblemError } from '../../http/problem.ts';
 import { trueFormat } from '../../measuring/measure-context.ts';
 import { withFileSource } from '../../store/file-source.ts';
 import { announceRecording } from '../recordings/recording-activity.ts';
-import type { NewFinding, RecordingsService } from '../recordings/recordings.service.ts';
+import type { NewFinding, NewSegment, RecordingsService } from '../recordings/recordings.service.ts';
 import type { SensorsService } from '../sensors/sensors.service.ts';
 import { hashFile } from './hash-file.ts';
 
@@ -75,11 +75,11 @@ export function createIntakeService({ db, ids, store, activity, recordings, sens
         runOffsetNs,
         timeExpansion,
         layout,
+        liveTimeNs: file.captures?.liveTimeNs ?? null,
       };
-      recordings.add(tx, { ...facts, ...declared }, [
-        ...declaredFindings(declared.sensitivity),
-        ...foundIn(file),
-      ]);
+      const findings = [...declaredFindings(declared.sensitivity), ...foundIn(file)];
+      const parts = { findings, segments: segmentsOf(file, runOffsetNs) };
+      recordings.add(tx, { ...facts, ...declared }, parts);
       alongside(tx, id);
     });
     announceRecording(activity, {
@@ -159,6 +159,16 @@ function declaredFindings(sensitivity: Declaration['sensitivity']): NewFinding[]
     kind: 'declared-sensitivity',
     sentence: declaredSentences[kind],
     place: kind,
+  }));
+}
+
+/** The zero of a capture set stands where the recording is declared to begin on the clock of the run. */
+function segmentsOf({ captures }: RecordingFile, runOffsetNs: number | null): NewSegment[] {
+  return (captures?.segments ?? []).map(({ startFrame, frames, startNs, preTriggerFrames }) => ({
+    startSample: startFrame,
+    frames,
+    runTimeNs: runOffsetNs === null ? null : runOffsetNs + startNs,
+    preTriggerFrames,
   }));
 }
 

@@ -4,6 +4,7 @@ import { formatOfFile, lengthAndSize } from '@/components/recordings/format-word
 import { sensorKindWords } from '@/components/recordings/recording-words.ts';
 import { formatBand, formatChain } from '@/components/sensors/sensor-words.ts';
 import {
+  formatCount,
   formatDateTime,
   formatFrequency,
   formatHash,
@@ -20,6 +21,7 @@ export function fileFacts(recording: Recording): Fact[] {
     { key: 'format', term: 'Format', value: formatOfFile(format) },
     { key: 'rate', term: 'Sample rate', value: formatSampleRate(recording.sampleRateHz) },
     { key: 'length', term: 'Length', value: lengthAndSize(recording.durationS, recording.sizeBytes) },
+    ...capturesOf(recording),
     ...(timeExpansion === 1
       ? []
       : [{ key: 'expansion', term: 'Time expansion taken out', value: formatNumber(timeExpansion) }]),
@@ -42,6 +44,13 @@ export function fileFacts(recording: Recording): Fact[] {
       : [{ key: 'offset', term: 'Start on the run clock', value: formatSeconds(runOffsetNs / 1e9, 3) }]),
     { key: 'sha256', term: 'sha256', value: formatHash(recording.sha256), title: recording.sha256 },
   ];
+}
+
+function capturesOf({ captures }: Recording): Fact[] {
+  if (captures === null) return [];
+  const { segments, liveTimeNs } = captures;
+  const live = liveTimeNs === null ? '' : `, a trigger was waited for ${formatSeconds(liveTimeNs / 1e9, 3)}`;
+  return [{ key: 'captures', term: 'Captures', value: `${formatCount(segments, 'segment')}${live}` }];
 }
 
 function sensorOf({ sensorName, sensorKind }: Recording): string {

@@ -96,6 +96,7 @@ export function recording(part: Partial<Recording> = {}): Recording {
     runOffsetNs: 0,
     timeExpansion: 1,
     layout: null,
+    captures: null,
     uploadedByName: 'Tomasz Brandvold',
     format,
     measurement: measurement(),

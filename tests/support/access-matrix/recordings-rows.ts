@@ -54,6 +54,7 @@ export const recordingsRows: MatrixRow[] = [
   },
   ...readingRows('GET /api/recordings/:id', ''),
   ...readingRows('GET /api/recordings/:id/audio', '/audio'),
+  ...readingRows('GET /api/recordings/:id/segments', '/segments'),
   ...readingRows('GET /api/recordings/:id/candidates', '/candidates', withheldFromBlind),
   ...readingRows('GET /api/recordings/:id/candidates/overview', '/candidates/overview', withheldFromBlind),
   ...readingRows('GET /api/recordings/:id/candidates.csv', '/candidates.csv', withheldFromBlind),

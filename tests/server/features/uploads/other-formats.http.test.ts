@@ -156,6 +156,41 @@ describe('a table of numbers', () => {
   });
 });
 
+describe('a capture set', () => {
+  test('is measured, and its segments have their place on the clock of the run', async () => {
+    const bytes = fixtureBytes('captures.zip');
+    const recording = await brought(bytes, { fileName: 'set.zip', runOffsetNs: 60_000_000_000 });
+    expect(recording).toMatchObject({
+      processing: 'measured',
+      frames: 480,
+      channels: 3,
+      sampleRateHz: 500_000,
+    });
+    expect(recording.captures).toEqual({ segments: 2, liveTimeNs: null });
+    const { body } = await app.as('contributor').get(`/api/recordings/${recording.id}/segments`);
+    expect(body.items).toEqual([
+      { startSample: 0, frames: 240, runTimeNs: 60_000_000_000, preTriggerFrames: null },
+      { startSample: 240, frames: 240, runTimeNs: 60_005_000_000, preTriggerFrames: null },
+    ]);
+    const { samples } = formatFixture('sox-s24-3ch.wav');
+    const peaks = await peaksOf(recording.id, 240, 480);
+    expect(peaks.body.maximum).toEqual([...samples[0]!].map((sample) => expect.closeTo(sample, 6)));
+    expect((await audioOf(recording.id)).headers['content-type']).toContain('application/zip');
+  });
+
+  test('without a place on the clock of the run has segments without one', async () => {
+    const recording = await brought(fixtureBytes('captures.zip'), { fileName: 'again.zip' });
+    const { body } = await app.as('contributor').get(`/api/recordings/${recording.id}/segments`);
+    expect(body.items.map(({ runTimeNs }: { runTimeNs: number | null }) => runTimeNs)).toEqual([null, null]);
+  });
+
+  test('that is an archive of something else is refused with a sentence', async () => {
+    const answer = await complete(app, await sendWhole(app, fixtureBytes('renamed-zip.wav')));
+    expect([answer.status, answer.body.code]).toEqual([422, 'file-refused']);
+    expect(answer.body.detail).toContain('captures.json');
+  });
+});
+
 describe('raw samples with a declared layout', () => {
   test('are measured, and the layout stays with them', async () => {
     const { bytes, samples } = bigEndianBurst();

@@ -1,0 +1,79 @@
+import type { Page } from 'playwright-core';
+import { describe, expect } from 'vitest';
+import { encodeFrames } from '../../server/setup/demo-audio/encode-frames.ts';
+import { checkAxe } from '../support/browser/axe.ts';
+import { choose, openForm } from '../support/browser/bring-in-form.ts';
+import { takeScreenshot } from '../support/browser/screenshot.ts';
+import { signIn } from '../support/browser/sign-in.ts';
+import { test } from '../support/browser/test.ts';
+import { fixtureBytes } from '../support/wav/format-fixtures.ts';
+import { whiteNoiseSignal } from '../support/wav/signals.ts';
+
+const fileItem = (page: Page, name: string) => page.getByRole('listitem').filter({ hasText: name });
+
+async function bringInAndOpen(page: Page, name: string): Promise<void> {
+  await page.getByRole('button', { name: /^Bring in 1/ }).click();
+  const item = fileItem(page, name);
+  await item.getByText('measured', { exact: true }).waitFor({ timeout: 60_000 });
+  await item.getByRole('link', { name: 'Open the recording' }).click();
+  await page.getByRole('heading', { name: 'What this file is' }).waitFor();
+  await page.waitForLoadState('networkidle');
+}
+
+describe('bringing in what is no WAV file', () => {
+  test('FLAC: its header is told before a byte is sent, and it is measured', async ({ page }) => {
+    await signIn(page, 'contributor');
+    await openForm(page);
+    const buffer = Buffer.from(fixtureBytes('ff-blocks.flac'));
+    await choose(page, { name: 'blocks.flac', mimeType: 'audio/flac', buffer });
+    await fileItem(page, 'blocks.flac').getByText('FLAC, 16-bit integer, 1 channel').waitFor();
+    await bringInAndOpen(page, 'blocks.flac');
+    expect(await page.getByText('FLAC, 16-bit integer').count()).toBeGreaterThan(0);
+    await takeScreenshot(page, 'recording-of-flac');
+    await checkAxe(page);
+  });
+
+  test('raw samples: the layout is asked for in words, held against the size, and measured', async ({
+    page,
+  }) => {
+    await signIn(page, 'contributor');
+    await openForm(page);
+    const samples = [0, 1].map((n) => whiteNoiseSignal(50_000, 0.1, n));
+    const data = encodeFrames(samples, { encoding: 'integer', bitsPerSample: 16, channels: 2 });
+    const buffer = Buffer.from(data).swap16();
+    await choose(page, { name: 'burst.dat', mimeType: 'application/octet-stream', buffer });
+    const item = fileItem(page, 'burst.dat');
+    await item.getByText('needs its layout').waitFor();
+    await item.getByLabel('Byte order').selectOption('big');
+    await item.getByLabel('Channels', { exact: true }).fill('3');
+    await item.getByLabel('Sample rate').fill('500000');
+    await checkAxe(page);
+    await takeScreenshot(page, 'bring-in-layout');
+    await item.getByRole('button', { name: 'Use this layout' }).click();
+    await item.getByText('They are no whole number of frames of 6 bytes').waitFor();
+    expect(await page.getByRole('button', { name: /^Bring in \d/ }).count()).toBe(0);
+    await item.getByLabel('Channels', { exact: true }).fill('2');
+    await item.getByRole('button', { name: 'Use this layout' }).click();
+    await item.getByText('Raw samples, 16-bit integer, 2 channels').waitFor();
+    await bringInAndOpen(page, 'burst.dat');
+    await takeScreenshot(page, 'recording-of-raw-samples');
+    await checkAxe(page);
+  });
+
+  test('a table of numbers: it shows how it begins', async ({ page }) => {
+    await signIn(page, 'contributor');
+    await openForm(page);
+    const rows = Array.from({ length: 2000 }, (_, n) => `${n * 2},${Math.sin(n).toFixed(4)}`);
+    const buffer = Buffer.from(['t/us,U/mV', ...rows].join('\n'));
+    await choose(page, { name: 'capture.csv', mimeType: 'text/csv', buffer });
+    const item = fileItem(page, 'capture.csv');
+    await item.getByText('t/us,U/mV').waitFor();
+    await item.getByLabel('Unit of the times').selectOption('us');
+    await item.getByLabel('Unit of the samples').selectOption('full-scale');
+    await checkAxe(page);
+    await takeScreenshot(page, 'bring-in-table');
+    await item.getByRole('button', { name: 'Use this layout' }).click();
+    await item.getByText('500 kHz').waitFor();
+    await bringInAndOpen(page, 'capture.csv');
+  });
+});
