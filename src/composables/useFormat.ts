@@ -24,13 +24,8 @@ function numberFormat(options: Intl.NumberFormatOptions): Intl.NumberFormat {
 /** Digits in groups of three by narrow spaces (SI brochure, 5.4.4), a real minus sign. */
 export function formatNumber(value: Maybe, options: Intl.NumberFormatOptions = {}): string {
   if (isMissing(value)) return NO_VALUE;
-  return numberFormat(options)
-    .formatToParts(value)
-    .map((part) => {
-      if (part.type === 'group') return NARROW_SPACE;
-      return part.type === 'minusSign' ? MINUS : part.value;
-    })
-    .join('');
+  const text = numberFormat(options).format(value).replaceAll(',', NARROW_SPACE);
+  return text.startsWith('-') ? `${MINUS}${text.slice(1)}` : text;
 }
 
 /** A number with its unit, held together by a no-break space. */

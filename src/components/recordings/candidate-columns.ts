@@ -1,4 +1,5 @@
 import type { Candidate, CandidateSort, CandidateSortKey } from '@shared/contract/candidates.ts';
+import { timeDecimals } from '@/composables/bench/time-axis.ts';
 import { hearingWords } from '@/components/recordings/candidate-words.ts';
 import {
   formatDecibels,
@@ -14,13 +15,15 @@ export interface CandidateColumn {
   label: string;
   /** Column of the list by which it can be ordered. */
   sortKey: CandidateSortKey | null;
-  /** Least width of the column; what is left over is shared out. */
+  /** Least width of the column; what is left over is shared out alike. */
   widthPx: number;
   isFigure: boolean;
   text: (candidate: Candidate) => string;
   title?: (candidate: Candidate) => string | undefined;
 }
 
+/** On both sides of a row. */
+const rowPaddingPx = 10;
 const clippedTitle = 'It touches full scale: peak and energy are lower bounds.';
 const lowerBound = '\u2265\u202F';
 
@@ -36,7 +39,7 @@ const channelColumn: CandidateColumn = {
   key: 'channel',
   label: 'Channel',
   sortKey: null,
-  widthPx: 64,
+  widthPx: 58,
   isFigure: true,
   text: ({ channel }) => formatNumber(channel),
 };
@@ -48,7 +51,7 @@ export function candidateColumns(channels: number): CandidateColumn[] {
       key: 'hearing',
       label: 'Hearing line',
       sortKey: 'hearingClass',
-      widthPx: 72,
+      widthPx: 64,
       isFigure: false,
       text: ({ hearingClass }) => hearingWords[hearingClass],
     },
@@ -57,7 +60,7 @@ export function candidateColumns(channels: number): CandidateColumn[] {
       key: 'peak',
       label: 'Peak re full scale',
       sortKey: 'peakDb',
-      widthPx: 92,
+      widthPx: 82,
       isFigure: true,
       text: (candidate) => bounded(candidate, formatDecibels(candidate.peakDb)),
       title: ({ clipped }) => (clipped ? clippedTitle : undefined),
@@ -66,7 +69,7 @@ export function candidateColumns(channels: number): CandidateColumn[] {
       key: 'snr',
       label: 'Over noise',
       sortKey: 'snrDb',
-      widthPx: 76,
+      widthPx: 74,
       isFigure: true,
       text: ({ snrDb }) => formatDecibels(snrDb),
     },
@@ -74,7 +77,7 @@ export function candidateColumns(channels: number): CandidateColumn[] {
       key: 'duration',
       label: 'Duration',
       sortKey: 'durationUs',
-      widthPx: 78,
+      widthPx: 72,
       isFigure: true,
       text: ({ durationUs }) => formatDuration(durationUs / 1e6),
     },
@@ -82,7 +85,7 @@ export function candidateColumns(channels: number): CandidateColumn[] {
       key: 'frequency',
       label: 'Peak frequency',
       sortKey: 'peakFrequencyHz',
-      widthPx: 84,
+      widthPx: 78,
       isFigure: true,
       text: ({ peakFrequencyHz }) => formatFrequency(peakFrequencyHz),
     },
@@ -90,7 +93,7 @@ export function candidateColumns(channels: number): CandidateColumn[] {
       key: 'energy',
       label: 'Energy re 1\u00A0FS\u00B2\u00A0s',
       sortKey: 'energyFs2S',
-      widthPx: 96,
+      widthPx: 84,
       isFigure: true,
       text: (candidate) => bounded(candidate, formatDecibels(energyDb(candidate))),
       title: ({ energyFs2S, clipped }) =>
@@ -100,17 +103,33 @@ export function candidateColumns(channels: number): CandidateColumn[] {
       key: 'share',
       label: 'Energy above 20\u00A0kHz',
       sortKey: 'ultrasonicShare',
-      widthPx: 92,
+      widthPx: 68,
       isFigure: true,
       text: ({ ultrasonicShare }) => formatShare(ultrasonicShare),
     },
   ];
 }
 
-export const onsetWidthPx = 116;
+const onsetWidthPx = 114;
 
-export function onsetText({ onsetS }: Candidate): string {
-  return formatSeconds(onsetS);
+/** With so many digits that two neighbouring samples differ. */
+export function onsetText({ onsetS }: Candidate, sampleRateHz: number): string {
+  return formatSeconds(onsetS, timeDecimals(sampleRateHz));
+}
+
+interface GridWidths {
+  /** For `grid-template-columns`. */
+  columns: string;
+  leastPx: number;
+}
+
+/** Headings and rows share their widths without being one table. */
+export function gridWidths(columns: readonly CandidateColumn[]): GridWidths {
+  const widthsPx = [onsetWidthPx, ...columns.map(({ widthPx }) => widthPx)];
+  return {
+    columns: widthsPx.map((widthPx) => `minmax(0, ${widthPx}fr)`).join(' '),
+    leastPx: widthsPx.reduce((sum, widthPx) => sum + widthPx, 2 * rowPaddingPx),
+  };
 }
 
 /** What comes first where people press a heading: the strongest, the longest, the highest; in time and class the first. */

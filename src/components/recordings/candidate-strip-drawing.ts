@@ -7,9 +7,6 @@ export interface StripScene {
   heightPx: number;
   overview: CandidateOverview;
   classes: readonly HearingClass[];
-  /** Part of the time in which the rows in sight lie. */
-  shown: { startSample: number; endSample: number } | null;
-  step: number;
   colours: Palette;
 }
 
@@ -28,23 +25,15 @@ const leastWidthPx = 1;
 const leastHeightPx = 2;
 const roomAbovePx = 4;
 
-/** Candidates per step as columns, parted by class from the ground up; what the table shows is framed. */
-export function drawCandidateStrip(context: CanvasRenderingContext2D, scene: StripScene): void {
-  drawColumns(context, scene);
-  drawShown(context, scene);
-  drawPlace(context, scene);
-}
-
-function stepWidth({ overview, widthPx }: StripScene): number {
-  return (widthPx * overview.samplesPerStep) / (overview.endSample - overview.startSample);
-}
-
-function drawColumns(context: CanvasRenderingContext2D, scene: StripScene): void {
-  const { overview, classes, heightPx, widthPx, colours } = scene;
+/** Candidates per step as columns, parted by class from the ground up. */
+export function drawCandidateStrip(
+  context: CanvasRenderingContext2D,
+  { overview, classes, heightPx, widthPx, colours }: StripScene,
+): void {
   const totals = countsOf(overview, classes);
   const most = Math.max(1, ...totals);
   const room = heightPx - roomAbovePx;
-  const width = stepWidth(scene);
+  const width = (widthPx * overview.samplesPerStep) / (overview.endSample - overview.startSample);
   for (const [step, total] of totals.entries()) {
     if (total === 0) continue;
     const columnPx = Math.max(leastHeightPx, (total / most) * room);
@@ -58,33 +47,4 @@ function drawColumns(context: CanvasRenderingContext2D, scene: StripScene): void
       bottom -= part;
     }
   }
-}
-
-function toX(sample: number, { overview, widthPx }: StripScene): number {
-  const { startSample, endSample } = overview;
-  const share = (sample - startSample) / (endSample - startSample);
-  return Math.max(0, Math.min(1, share)) * widthPx;
-}
-
-const leastFramePx = 3;
-
-function drawShown(context: CanvasRenderingContext2D, scene: StripScene): void {
-  const { shown, heightPx, widthPx, colours } = scene;
-  if (!shown) return;
-  const left = Math.min(widthPx - leastFramePx, toX(shown.startSample, scene));
-  const width = Math.max(leastFramePx, toX(shown.endSample, scene) - left);
-  context.strokeStyle = colours.ink;
-  context.lineWidth = 1.5;
-  context.strokeRect(left + 0.75, 0.75, Math.max(1, width - 1.5), heightPx - 1.5);
-}
-
-/** A notch where the keys stand. */
-function drawPlace(context: CanvasRenderingContext2D, scene: StripScene): void {
-  const x = (scene.step + 0.5) * stepWidth(scene);
-  context.fillStyle = scene.colours.ink;
-  context.beginPath();
-  context.moveTo(x - 4, 0);
-  context.lineTo(x + 4, 0);
-  context.lineTo(x, 6);
-  context.fill();
 }

@@ -12,7 +12,7 @@ export const hearingWords: Readonly<Record<HearingClass, string>> = {
 };
 
 export const hearingOptions = [
-  { value: 'above', label: 'above the hearing line' },
+  { value: 'above', label: 'above it' },
   { value: 'across', label: 'across it' },
   { value: 'below', label: 'below it' },
   { value: 'unknown', label: 'unknown' },

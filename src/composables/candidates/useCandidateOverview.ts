@@ -14,6 +14,7 @@ export function useCandidateOverview(recordingId: Ref<string>, filters: Ref<Cand
     queryKey: computed(() => ['candidate-overview', recordingId.value, query.value]),
     queryFn: ({ signal }) => getCandidateOverview(recordingId.value, query.value, signal),
     placeholderData: keepPreviousData,
+    shallow: true,
     staleTime: Infinity,
   });
 }

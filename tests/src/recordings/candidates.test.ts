@@ -1,34 +1,15 @@
 import { mount } from '@vue/test-utils';
-import { describe, expect, it } from 'vitest';
-import { ref } from 'vue';
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
+import { nextTick } from 'vue';
 import { createMemoryHistory, createRouter } from 'vue-router';
+import type { Candidate } from '@shared/contract/candidates.ts';
 import CandidateTable from '@/components/recordings/CandidateTable.vue';
-import { benchPlace, candidateFacts } from '@/components/recordings/candidate-words.ts';
-import { useRowWindow } from '@/components/recordings/useRowWindow.ts';
+import { ariaSortOf, sortAfterPress } from '@/components/recordings/candidate-columns.ts';
+import { benchPlace, candidateFacts, listSentence } from '@/components/recordings/candidate-words.ts';
 import { routes } from '@/router/routes.ts';
 import { candidate, recording, ultrasound } from './recording-fixture.ts';
 
 const router = createRouter({ history: createMemoryHistory(), routes });
-
-function mountTable(count: number) {
-  const candidates = Array.from({ length: count }, (_value, index) =>
-    candidate({ id: `candidate-${index}`, onsetS: index }),
-  );
-  return mount(CandidateTable, {
-    props: {
-      recording: recording(),
-      candidates,
-      total: { count: 1000, capped: false },
-      hasMore: true,
-      isLoading: false,
-      isLoadingMore: false,
-      error: null,
-      sort: 'onset',
-      hearing: '',
-    },
-    global: { plugins: [router] },
-  });
-}
 
 describe('the counts of candidates', () => {
   it('are told by their place to the hearing line, with the count of chance', () => {
@@ -51,6 +32,13 @@ describe('the counts of candidates', () => {
     const facts = candidateFacts(ultrasound({ verdict: 'not-observable' }));
     expect(facts.map(({ key }) => key)).toEqual(['total']);
   });
+
+  it('of a list say how many of all there are, and which', () => {
+    expect(listSentence(214, 214, [])).toBe('214\u00A0candidates.');
+    expect(listSentence(3, 214, ['channel 1', 'at least 12\u00A0dB over noise'])).toBe(
+      '3 of 214\u00A0candidates: channel 1, at least 12\u00A0dB over noise.',
+    );
+  });
 });
 
 describe('the way from a candidate to the bench', () => {
@@ -66,52 +54,106 @@ describe('the way from a candidate to the bench', () => {
   });
 });
 
-describe('the table of candidates', () => {
-  it('links each row to its place on the bench', () => {
-    const href = mountTable(1).find('tbody a').attributes('href');
-    expect(href).toMatch(/^\/bench\/.+\?from=12030500&to=12039500$/);
+describe('the order that a heading leads to', () => {
+  it('is the strongest first, in time and class the first, and turned round by a second press', () => {
+    expect(sortAfterPress('onset', 'snrDb')).toBe('-snrDb');
+    expect(sortAfterPress('-snrDb', 'snrDb')).toBe('snrDb');
+    expect(sortAfterPress('snrDb', 'snrDb')).toBe('-snrDb');
+    expect(sortAfterPress('-snrDb', 'onset')).toBe('onset');
+    expect(sortAfterPress('onset', 'hearingClass')).toBe('hearingClass');
   });
 
-  it('marks a clipped peak as a lower bound', async () => {
-    const table = mountTable(1);
-    await table.setProps({ candidates: [candidate({ clipped: true })] });
-    expect(table.find('tbody').text()).toContain('≥');
+  it('is told to screen readers', () => {
+    expect(ariaSortOf('-snrDb', 'snrDb')).toBe('descending');
+    expect(ariaSortOf('onset', 'onset')).toBe('ascending');
+    expect(ariaSortOf('-onset', 'snrDb')).toBe('none');
   });
 });
 
-describe('the rows of candidates in the page', () => {
-  function windowOver(count: number) {
-    const rows = ref(Array.from({ length: count }, (_value, index) => index));
-    return { rows, window: useRowWindow(() => rows.value) };
+describe('the table of candidates', () => {
+  const framePx = 560;
+  const count = 100_000;
+
+  // The test document lays nothing out: the frame has the height that it has in a browser.
+  beforeEach(() => {
+    vi.spyOn(HTMLElement.prototype, 'offsetHeight', 'get').mockReturnValue(framePx);
+    vi.spyOn(HTMLElement.prototype, 'clientHeight', 'get').mockReturnValue(framePx);
+  });
+  afterEach(() => vi.restoreAllMocks());
+
+  function candidateAt(rank: number): Candidate | undefined {
+    return candidate({ id: `candidate-${rank}`, onsetS: rank, clipped: rank === 1 });
   }
-  const counting = (length: number) => Array.from({ length }, (_value, index) => index);
 
-  it('are at most 300, those loaded last', () => {
-    const { rows, window } = windowOver(100);
-    expect(window.shown.value).toHaveLength(100);
-    rows.value = counting(450);
-    expect(window.shown.value).toHaveLength(300);
-    expect(window.shown.value[0]).toBe(150);
-    expect(window.hasLater.value).toBe(false);
+  async function mountTable(part: { rowAt?: (rank: number) => Candidate | undefined } = {}) {
+    const table = mount(CandidateTable, {
+      props: {
+        recording: recording(),
+        count,
+        rowAt: candidateAt,
+        isBusy: false,
+        sort: 'onset',
+        rank: 0,
+        'onUpdate:rank': (rank: number) => table.setProps({ rank }),
+        ...part,
+      },
+      global: { plugins: [router] },
+      attachTo: document.body,
+    });
+    await nextTick();
+    await nextTick();
+    return table;
+  }
+
+  it('holds few of its many rows, and tells how many there are and which these are', async () => {
+    const table = await mountTable();
+    const grid = table.get('[role="grid"]');
+    expect(grid.attributes('aria-rowcount')).toBe(String(count + 1));
+    const rows = table.findAll('[data-rank]');
+    expect(rows.length).toBeGreaterThan(10);
+    expect(rows.length).toBeLessThan(50);
+    expect(rows[0]?.attributes('aria-rowindex')).toBe('2');
+    table.unmount();
   });
 
-  it('go back by steps and forth again', () => {
-    const { rows, window } = windowOver(100);
-    rows.value = counting(450);
-    window.showBefore();
-    expect(window.shown.value[0]).toBe(50);
-    expect(window.hasLater.value).toBe(true);
-    window.showLater();
-    expect(window.shown.value[0]).toBe(150);
-    window.showBefore();
-    window.showBefore();
-    expect(window.first.value).toBe(0);
+  it('links each row to its place on the bench, and marks a clipped peak as a lower bound', async () => {
+    const table = await mountTable();
+    const rows = table.findAll('[data-rank]');
+    expect(rows[0]?.get('a').attributes('href')).toMatch(/^\/bench\/.+\?from=12030500&to=12039500$/);
+    expect(rows[0]?.text()).not.toContain('≥');
+    expect(rows[1]?.text()).toContain('≥');
+    table.unmount();
   });
 
-  it('start at the beginning when the list starts again', () => {
-    const { rows, window } = windowOver(100);
-    rows.value = counting(450);
-    rows.value = counting(100);
-    expect(window.first.value).toBe(0);
+  it('has one row for the keyboard, which Enter opens and keys move', async () => {
+    const table = await mountTable();
+    const inHand = () => table.findAll('[data-rank][tabindex="0"]').map((row) => row.attributes('data-rank'));
+    expect(inHand()).toEqual(['0']);
+    await table.get('[data-rank="0"]').trigger('keydown', { key: 'End' });
+    await nextTick();
+    expect(inHand()).toEqual([String(count - 1)]);
+    expect(document.activeElement?.getAttribute('data-rank')).toBe(String(count - 1));
+    await table.get(`[data-rank="${count - 1}"]`).trigger('keydown', { key: 'Enter' });
+    expect(table.emitted('open')?.[0]).toMatchObject([{ id: `candidate-${count - 1}` }]);
+    table.unmount();
+  });
+
+  it('keeps the place of rows that are on their way, and opens none of them', async () => {
+    const table = await mountTable({ rowAt: () => undefined });
+    const first = table.get('[data-rank="0"]');
+    expect(first.attributes('aria-busy')).toBe('true');
+    expect(first.text()).toBe('Row 1 is being loaded');
+    await first.trigger('keydown', { key: 'Enter' });
+    expect(table.emitted('open')).toBeUndefined();
+    table.unmount();
+  });
+
+  it('asks for another order by its headings', async () => {
+    const table = await mountTable();
+    const heading = table.findAll('[role="columnheader"]').find((one) => one.text().startsWith('Over noise'));
+    expect(heading?.attributes('aria-sort')).toBe('none');
+    await heading?.get('button').trigger('click');
+    expect(table.emitted('update:sort')).toEqual([['-snrDb']]);
+    table.unmount();
   });
 });

@@ -2,6 +2,7 @@ import { mount } from '@vue/test-utils';
 import { describe, expect, it } from 'vitest';
 import { sharingSchema } from '@shared/contract/recordings.ts';
 import QualityList from '@/components/recordings/QualityList.vue';
+import type { Recording } from '@shared/contract/recordings.ts';
 import { downloadsOf } from '@/components/recordings/download.ts';
 import { fileFacts, provenanceFacts } from '@/components/recordings/file-facts.ts';
 import { formatOfFile, rateAndLength } from '@/components/recordings/format-words.ts';
@@ -62,20 +63,33 @@ describe('a recording in words', () => {
 });
 
 describe('the downloads', () => {
-  const addressOf = (kind: string) => `/address/${kind}`;
+  const addressOf = (kind: string, channel?: number) =>
+    channel === undefined ? `/address/${kind}` : `/address/${kind}/${channel}`;
+  const linksOf = (part: Partial<Recording>) =>
+    downloadsOf(recording(part), addressOf).flatMap(({ links }) => links);
 
   it('hold what was recorded and what was measured', () => {
-    expect(downloadsOf(recording(), addressOf).map(({ href }) => href)).toEqual([
+    expect(linksOf({}).map(({ href }) => href)).toEqual([
       '/address/audio',
-      '/address/frames.csv',
-      '/address/spectrum',
-      '/address/candidates',
+      '/address/frames.csv/0',
+      '/address/spectrum/0',
+      '/address/candidates.csv',
+      '/address/candidates.jsonl',
     ]);
   });
 
+  it('hold descriptors and spectra of every channel, under names that tell them apart', () => {
+    const files = linksOf({ channels: 3 }).filter(({ href }) => href.includes('frames'));
+    expect(files.map(({ label }) => label)).toEqual(['channel 0', 'channel 1', 'channel 2']);
+    expect(files[2]).toMatchObject({
+      href: '/address/frames.csv/2',
+      fileName: 'film-07.wav.channel-2.frames.csv',
+    });
+  });
+
   it('hold no candidates for whoever works blind', () => {
-    const hrefs = downloadsOf(recording({ blind: true }), addressOf).map(({ href }) => href);
-    expect(hrefs).not.toContain('/address/candidates');
+    const hrefs = linksOf({ blind: true }).map(({ href }) => href);
+    expect(hrefs.filter((href) => href.includes('candidates'))).toEqual([]);
   });
 
   it('hold only the original until it is measured', () => {

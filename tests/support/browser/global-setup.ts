@@ -25,7 +25,7 @@ export default async function setUp(project: TestProject): Promise<() => Promise
   try {
     await seedDemo(settings);
     const stop = await startServer(origin, settings);
-    project.provide('demoServer', { origin, password });
+    project.provide('demoServer', { origin, password, dataDir });
     return async () => {
       await stop();
       await removeData();
@@ -38,6 +38,6 @@ export default async function setUp(project: TestProject): Promise<() => Promise
 
 declare module 'vitest' {
   interface ProvidedContext {
-    demoServer: { origin: string; password: string };
+    demoServer: { origin: string; password: string; dataDir: string };
   }
 }
