@@ -1,50 +1,94 @@
 import type uPlot from 'uplot';
 import type { Spectrum } from '@shared/contract/measurement.ts';
-import { frequencyAxis, labelFont, roundRange, valueAxis } from '@/components/recordings/plot-axes.ts';
+import { frequencyAxis, roundRange, valueAxis } from '@/components/recordings/plot-axes.ts';
+import { drawGrounds, drawLabel, drawLines } from '@/components/recordings/spectrum-marks.ts';
+import type { SpectrumLimits } from '@/components/recordings/spectrum-marks.ts';
 import type { PlotSize } from '@/components/recordings/usePlot.ts';
 import { formatFrequency } from '@/composables/useFormat.ts';
 import type { Palette } from '@/theme/palette.ts';
 
-export const hearingLineHz = 20_000;
+/** Curves in the order of the plot's series, after the frequencies. */
+export const spectrumCurves = ['quiet', 'active', 'median', 'mean', 'maximum'] as const;
+export type SpectrumCurve = (typeof spectrumCurves)[number];
+
 const levelStepDb = 20;
 /** Over the highest peak, for the name of its curve. */
 const labelRoomDb = 6;
 /** Below this the deep end of a spectrum says nothing of what anybody looks for. */
 const deepestDb = -200;
 
-export interface SensorBand {
-  lowHz: number | null;
-  highHz: number | null;
-}
-
-/** Frequencies that a logarithmic axis can show, with their levels. */
-export function spectrumData(spectrum: Spectrum): uPlot.AlignedData {
-  const first = spectrum.frequenciesHz.findIndex((hz) => hz > 0);
-  const floored = (levels: readonly number[]) => levels.slice(first).map((db) => Math.max(deepestDb, db));
-  const active = spectrum.activeDbPerHz;
-  return [
-    spectrum.frequenciesHz.slice(first),
-    floored(spectrum.quietDbPerHz),
-    active ? floored(active) : spectrum.frequenciesHz.slice(first).map(() => null),
-  ];
-}
-
-function extentOf(data: uPlot.AlignedData): { hz: [number, number]; db: [number, number] } {
-  const [hz, ...levels] = data;
-  const all = levels.flatMap((row) => [...row]).filter((value) => typeof value === 'number');
+export function levelsOf(spectrum: Spectrum): Record<SpectrumCurve, readonly number[] | null> {
   return {
-    hz: [hz[0] ?? 1, hz[hz.length - 1] ?? 10],
-    db: roundRange(Math.min(...all), Math.max(...all) + labelRoomDb, levelStepDb),
+    quiet: spectrum.quietDbPerHz,
+    active: spectrum.activeDbPerHz,
+    median: spectrum.medianDbPerHz,
+    mean: spectrum.meanDbPerHz,
+    maximum: spectrum.maximumDbPerHz,
   };
 }
 
-/** Options of the plot: quiet and active power density over frequency, with the sensor's band and the hearing line. */
-export function spectrumOptions(
+/** Curves that this spectrum has: without active time there is none of it, and old views have no median and mean. */
+export function curvesOf(spectrum: Spectrum): SpectrumCurve[] {
+  const levels = levelsOf(spectrum);
+  return spectrumCurves.filter((curve) => (levels[curve]?.length ?? 0) > 0);
+}
+
+/** Frequencies that a logarithmic axis can show, with the levels of each curve. */
+export function spectrumData(spectrum: Spectrum): uPlot.AlignedData {
+  const first = spectrum.frequenciesHz.findIndex((hz) => hz > 0);
+  const frequencies = spectrum.frequenciesHz.slice(first);
+  const levels = levelsOf(spectrum);
+  const rows = spectrumCurves.map((curve) => {
+    const values = levels[curve];
+    if (!values || values.length === 0) return frequencies.map(() => null);
+    return values.slice(first).map((db) => Math.max(deepestDb, db));
+  });
+  return [frequencies, ...rows];
+}
+
+function extentOf(
   data: uPlot.AlignedData,
-  band: SensorBand,
-  onPoint: (index: number | null) => void,
-) {
-  const { hz, db } = extentOf(data);
+  shown: readonly SpectrumCurve[],
+): { hz: [number, number]; db: [number, number] } {
+  const [hz, ...rows] = data;
+  const visible = rows.filter((_row, index) => shown.includes(spectrumCurves[index]!));
+  const all = visible.flatMap((row) => [...row]).filter((value) => typeof value === 'number');
+  const [low, high] = all.length > 0 ? [Math.min(...all), Math.max(...all)] : [-120, -40];
+  return {
+    hz: [hz[0] ?? 1, hz[hz.length - 1] ?? 10],
+    db: roundRange(low, high + labelRoomDb, levelStepDb),
+  };
+}
+
+export interface SpectrumLook {
+  limits: SpectrumLimits;
+  shown: readonly SpectrumCurve[];
+  onPoint: (index: number | null) => void;
+}
+
+function strokeOf(curve: SpectrumCurve, palette: Palette): string {
+  const strokes = {
+    quiet: palette.inkQuiet,
+    active: palette.fracture,
+    median: palette.ink,
+    mean: palette.melt,
+    maximum: palette.edge,
+  };
+  return strokes[curve];
+}
+
+/** Told apart by their dashes as well as by their colours. */
+const dashes: Readonly<Record<SpectrumCurve, number[]>> = {
+  quiet: [],
+  active: [],
+  median: [6, 3],
+  mean: [2, 3],
+  maximum: [10, 3, 2, 3],
+};
+
+/** Options of the plot: power densities over frequency, with what limits the view and the hearing line. */
+export function spectrumOptions(data: uPlot.AlignedData, { limits, shown, onPoint }: SpectrumLook) {
+  const { hz, db } = extentOf(data, shown);
   return (palette: Palette, size: PlotSize): uPlot.Options => ({
     ...size,
     padding: [22, 36, 0, 0],
@@ -57,64 +101,20 @@ export function spectrumOptions(
     axes: [frequencyAxis(palette, ...hz), valueAxis(palette, 'dB re full scale² per Hz')],
     series: [
       {},
-      { stroke: palette.inkQuiet, width: 1.2, points: { show: false } },
-      { stroke: palette.fracture, width: 1.4, points: { show: false } },
+      ...spectrumCurves.map((curve) => ({
+        show: shown.includes(curve),
+        stroke: strokeOf(curve, palette),
+        width: curve === 'active' ? 1.4 : 1.2,
+        dash: dashes[curve],
+        points: { show: false },
+      })),
     ],
     hooks: {
-      drawClear: [(plot) => drawBand(plot, palette, band)],
-      draw: [(plot) => drawHearingLine(plot, palette), (plot) => drawNames(plot, palette)],
+      drawClear: [(plot) => drawGrounds(plot, palette, limits)],
+      draw: [(plot) => drawLines(plot, palette, limits), (plot) => drawNames(plot, palette, shown)],
       setCursor: [(plot) => onPoint(plot.cursor.idx ?? null)],
     },
   });
-}
-
-function drawBand(plot: uPlot, palette: Palette, { lowHz, highHz }: SensorBand): void {
-  if (lowHz === null && highHz === null) return;
-  const { left, width, top, height } = plot.bbox;
-  const place = (hz: number) => Math.min(left + width, Math.max(left, plot.valToPos(hz, 'x', true)));
-  const from = lowHz === null || lowHz <= 0 ? left : place(lowHz);
-  const to = highHz === null ? left + width : place(highHz);
-  plot.ctx.fillStyle = palette.tint;
-  plot.ctx.fillRect(from, top, to - from, height);
-}
-
-function scaledFont(): string {
-  return labelFont.replace(/(\d+)px/, (_whole, px: string) => `${Number(px) * devicePixelRatio}px`);
-}
-
-interface Label {
-  text: string;
-  x: number;
-  y: number;
-  colour: string;
-  align: CanvasTextAlign;
-}
-
-/** Text over curves, with the ground around it so that it can be read. */
-function drawLabel(plot: uPlot, palette: Palette, { text, x, y, colour, align }: Label): void {
-  const { ctx } = plot;
-  ctx.font = scaledFont();
-  ctx.textAlign = align;
-  ctx.textBaseline = 'middle';
-  ctx.lineJoin = 'round';
-  ctx.lineWidth = 4 * devicePixelRatio;
-  ctx.strokeStyle = palette.paper;
-  ctx.strokeText(text, x, y);
-  ctx.fillStyle = colour;
-  ctx.fillText(text, x, y);
-}
-
-function drawHearingLine(plot: uPlot, palette: Palette): void {
-  const { left, width, top, height } = plot.bbox;
-  const x = plot.valToPos(hearingLineHz, 'x', true);
-  if (x < left || x > left + width) return;
-  const { ctx } = plot;
-  ctx.save();
-  ctx.fillStyle = palette.glowFill;
-  ctx.fillRect(x - devicePixelRatio, top, 2 * devicePixelRatio, height);
-  const y = top - 10 * devicePixelRatio;
-  drawLabel(plot, palette, { text: 'hearing line', x, y, colour: palette.glow, align: 'center' });
-  ctx.restore();
 }
 
 /** Index at which the active curve stands highest over the quiet one; null without an active one. */
@@ -129,23 +129,33 @@ export function widestGap(data: uPlot.AlignedData): number | null {
   return best?.index ?? null;
 }
 
-function drawNames(plot: uPlot, palette: Palette): void {
-  const [hz, quiet = [], active = []] = plot.data;
+/** Share of the axis at which the name of a curve stands, and on which side of it. */
+const namePlaces: Readonly<Record<SpectrumCurve, { share: number; side: 1 | -1 }>> = {
+  quiet: { share: 0.3, side: 1 },
+  active: { share: 0.5, side: -1 },
+  median: { share: 0.12, side: 1 },
+  mean: { share: 0.2, side: -1 },
+  maximum: { share: 0.4, side: -1 },
+};
+
+function drawNames(plot: uPlot, palette: Palette, shown: readonly SpectrumCurve[]): void {
+  const [hz, ...rows] = plot.data;
   const last = hz.length - 1;
-  const gapIndex = widestGap(plot.data);
-  const quietIndex = Math.round(last * 0.3);
   const offset = 14 * devicePixelRatio;
-  const nameAt = (text: string, index: number, level: unknown, colour: string, shift: number) => {
-    if (typeof level !== 'number') return;
+  plot.ctx.save();
+  for (const curve of shown) {
+    const { share, side } = namePlaces[curve];
+    // Where the active curve stands clear of the quiet one, its name has room.
+    const index = (curve === 'active' ? widestGap(plot.data) : null) ?? Math.round(last * share);
+    const level = rows[spectrumCurves.indexOf(curve)]?.[index];
+    if (typeof level !== 'number') continue;
     const x = plot.valToPos(hz[index] ?? 1, 'x', true);
-    const y = Math.max(plot.bbox.top + offset, plot.valToPos(level, 'y', true) + shift);
+    const y = Math.max(plot.bbox.top + offset, plot.valToPos(level, 'y', true) + side * offset);
     const edge = 40 * devicePixelRatio;
     const kept = Math.min(plot.bbox.left + plot.bbox.width - edge, Math.max(plot.bbox.left + edge, x));
-    drawLabel(plot, palette, { text, x: kept, y, colour, align: 'center' });
-  };
-  plot.ctx.save();
-  nameAt('quiet', quietIndex, quiet[quietIndex], palette.inkQuiet, offset);
-  if (gapIndex !== null) nameAt('active', gapIndex, active[gapIndex], palette.fracture, -offset);
+    const colour = curve === 'maximum' ? palette.inkQuiet : strokeOf(curve, palette);
+    drawLabel(plot, palette, { text: curve, x: kept, y, colour, align: 'center' });
+  }
   plot.ctx.restore();
 }
 

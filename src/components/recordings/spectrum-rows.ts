@@ -1,9 +1,10 @@
 import type { Spectrum } from '@shared/contract/measurement.ts';
+import { levelsOf, spectrumCurves } from '@/components/recordings/spectrum-plot.ts';
+import type { SpectrumCurve } from '@/components/recordings/spectrum-plot.ts';
 
 export interface SpectrumRow {
   hz: number;
-  quietDb: number;
-  activeDb: number | null;
+  levelsDb: Partial<Record<SpectrumCurve, number | null>>;
 }
 
 const steps = [1, 2, 5];
@@ -23,12 +24,14 @@ function nearestIndex(frequenciesHz: readonly number[], hz: number): number {
   return best;
 }
 
-/** The spectrum at round frequencies (1, 2, 5 in each decade): the plot in figures. */
-export function spectrumRows({ frequenciesHz, quietDbPerHz, activeDbPerHz }: Spectrum): SpectrumRow[] {
+/** The spectrum at round frequencies (1, 2, 5 in each decade): the plot in figures, `null` where a curve is missing. */
+export function spectrumRows(spectrum: Spectrum): SpectrumRow[] {
+  const { frequenciesHz } = spectrum;
   const lowHz = frequenciesHz.find((hz) => hz > 0) ?? 1;
   const highHz = frequenciesHz.at(-1) ?? 0;
   return roundFrequencies(lowHz, highHz).map((hz) => {
     const index = nearestIndex(frequenciesHz, hz);
-    return { hz, quietDb: quietDbPerHz[index] ?? 0, activeDb: activeDbPerHz?.[index] ?? null };
+    const levelOf = (curve: SpectrumCurve) => levelsOf(spectrum)[curve]?.[index] ?? null;
+    return { hz, levelsDb: Object.fromEntries(spectrumCurves.map((curve) => [curve, levelOf(curve)])) };
   });
 }

@@ -1,7 +1,13 @@
 import { describe, expect, it } from 'vitest';
 import { courseSeries, rangeOf } from '@/components/recordings/course-plot.ts';
 import { frequencyTicks, roundRange } from '@/components/recordings/plot-axes.ts';
-import { spectrumData, spectrumSentence, widestGap } from '@/components/recordings/spectrum-plot.ts';
+import {
+  curvesOf,
+  spectrumData,
+  spectrumSentence,
+  widestGap,
+} from '@/components/recordings/spectrum-plot.ts';
+import { bandData, bandSentence, nameOfBand } from '@/components/recordings/band-plot.ts';
 import { spectrumRows } from '@/components/recordings/spectrum-rows.ts';
 import { measurement } from './recording-fixture.ts';
 
@@ -30,12 +36,25 @@ describe('the plot of a spectrum', () => {
     expect(spectrumSentence({ ...spectrum, activeDbPerHz: null })).toContain('there is no active time');
   });
 
+  it('has the curves that were measured: no active one without active time, no median in old views', () => {
+    expect(curvesOf(spectrum)).toEqual(['quiet', 'active', 'median', 'mean', 'maximum']);
+    expect(curvesOf({ ...spectrum, activeDbPerHz: null, medianDbPerHz: [], meanDbPerHz: [] })).toEqual([
+      'quiet',
+      'maximum',
+    ]);
+    const [, , active] = spectrumData({ ...spectrum, activeDbPerHz: null });
+    expect(active).toEqual([null, null, null, null]);
+  });
+
   it('is told in figures at round frequencies', () => {
     const rows = spectrumRows(spectrum);
     expect(rows.map(({ hz }) => hz)).toEqual([
       100, 200, 500, 1000, 2000, 5000, 10_000, 20_000, 50_000, 100_000,
     ]);
-    expect(rows.find(({ hz }) => hz === 20_000)).toEqual({ hz: 20_000, quietDb: -90, activeDb: -60 });
+    expect(rows.find(({ hz }) => hz === 20_000)).toEqual({
+      hz: 20_000,
+      levelsDb: { quiet: -90, active: -60, median: -96, mean: -70, maximum: -50 },
+    });
   });
 
   it('has ticks at the decades and at the end, never two that run into each other', () => {
@@ -76,5 +95,44 @@ describe('the course through a recording', () => {
     );
     expect(candidates && rangeOf(candidates)).toEqual([0, 12]);
     expect(level && rangeOf(level)).toEqual([-100, -30]);
+  });
+});
+
+describe('the plot of bands', () => {
+  const band = (middleHz: number, floorDb: number | null) => ({
+    ...{ middleHz, lowHz: middleHz * 0.89, highHz: middleHz * 1.12 },
+    ...{ floorDb, medianDb: -70, meanDb: -60, maximumDb: -40 },
+  });
+  const bands = [band(1000, -90), band(1258.925, -95), band(1584.893, null)];
+
+  it('has the levels of each band at its middle, and none where it carries nothing', () => {
+    expect(bandData(bands)).toEqual([
+      [1000, 1258.925, 1584.893],
+      [-90, -95, null],
+      [-70, -70, -70],
+      [-60, -60, -60],
+      [-40, -40, -40],
+    ]);
+  });
+
+  it.each([
+    [25.119, '25 Hz'],
+    [794.328, '800 Hz'],
+    [3162.278, '3.15 kHz'],
+    [19_952.6, '20 kHz'],
+    [125_892.5, '125 kHz'],
+  ])('calls the band about %d Hz by its nominal name', (middleHz, name) => {
+    expect(nameOfBand({ middleHz }).replace(/\u00A0/g, ' ')).toBe(name);
+  });
+
+  it('is told in a sentence with the loudest floor', () => {
+    expect(
+      bandSentence(bands)
+        .replace(/\u00A0/g, ' ')
+        .replace('\u2212', '-'),
+    ).toBe(
+      'Noise floor by third octaves from 1 kHz to 1.6 kHz; highest at 1 kHz with -90.0 dB re full scale.',
+    );
+    expect(bandSentence([])).toBe('Noise floor by third octaves: nothing to show.');
   });
 });
