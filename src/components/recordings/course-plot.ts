@@ -1,5 +1,6 @@
 import type uPlot from 'uplot';
 import type { Course } from '@shared/contract/measurement.ts';
+import type { TimeMark } from '@/components/recordings/finding-places.ts';
 import { figureFont, roundRange } from '@/components/recordings/plot-axes.ts';
 import type { PlotSize } from '@/components/recordings/usePlot.ts';
 import { multiplesWithin, niceStep } from '@/composables/axis-ticks.ts';
@@ -90,10 +91,25 @@ interface CourseLook {
   durationS: number;
   /** The axis of time is drawn under the last plot only. */
   hasTimeAxis: boolean;
+  /** Places of findings, drawn along the top. */
+  marks: readonly TimeMark[];
   onPoint: (index: number | null) => void;
 }
 
-export function courseOptions({ series, durationS, hasTimeAxis, onPoint }: CourseLook) {
+const markHeight = 5;
+const leastMarkWidth = 3;
+
+function drawMarks(plot: uPlot, palette: Palette, marks: readonly TimeMark[]): void {
+  const { top } = plot.bbox;
+  plot.ctx.fillStyle = palette.glowFill;
+  for (const { fromS, toS } of marks) {
+    const [from, to] = [plot.valToPos(fromS, 'x', true), plot.valToPos(toS, 'x', true)];
+    const width = Math.max(leastMarkWidth * devicePixelRatio, to - from);
+    plot.ctx.fillRect(from, top, width, markHeight * devicePixelRatio);
+  }
+}
+
+export function courseOptions({ series, durationS, hasTimeAxis, marks, onPoint }: CourseLook) {
   const [low, high] = rangeOf(series);
   return (palette: Palette, size: PlotSize): uPlot.Options => ({
     ...size,
@@ -133,6 +149,9 @@ export function courseOptions({ series, durationS, hasTimeAxis, onPoint }: Cours
         points: { show: false },
       },
     ],
-    hooks: { setCursor: [(plot) => onPoint(plot.cursor.idx ?? null)] },
+    hooks: {
+      draw: [(plot) => drawMarks(plot, palette, marks)],
+      setCursor: [(plot) => onPoint(plot.cursor.idx ?? null)],
+    },
   });
 }

@@ -1,9 +1,13 @@
-import { mount } from '@vue/test-utils';
+import { mount, RouterLinkStub } from '@vue/test-utils';
 import { describe, expect, it } from 'vitest';
+import type { QualityFinding } from '@shared/contract/measurement.ts';
 import { sharingSchema } from '@shared/contract/recordings.ts';
+import type { Likeness } from '@shared/contract/recordings.ts';
 import QualityList from '@/components/recordings/QualityList.vue';
 import type { Recording } from '@shared/contract/recordings.ts';
 import { downloadsOf } from '@/components/recordings/download.ts';
+import { placeLinks, timeMarks } from '@/components/recordings/finding-places.ts';
+import { likenessWords } from '@/components/recordings/likeness-words.ts';
 import { fileFacts, provenanceFacts } from '@/components/recordings/file-facts.ts';
 import { formatOfFile, rateAndLength } from '@/components/recordings/format-words.ts';
 import {
@@ -102,21 +106,87 @@ describe('the list of quality findings', () => {
     const place = { channel: 0, startSample: 65_000_000, endSample: 65_000_010 };
     const wrapper = mount(QualityList, {
       props: {
-        sampleRateHz: 1_000_000,
+        recording: recording(),
         findings: [
           { code: 'mains', weight: 'note', sentence: 'Mains lines.', count: 1, places: [] },
           { code: 'dropout', weight: 'serious', sentence: 'Samples were lost.', count: 1, places: [place] },
         ],
       },
+      global: { stubs: { RouterLink: RouterLinkStub } },
     });
-    const [first, second] = wrapper.findAll('li').map((item) => item.text());
+    expect(wrapper.getComponent(RouterLinkStub).props('to')).toEqual({
+      path: `/bench/${recording().id}`,
+      query: { from: '64950000', to: '65050010' },
+    });
+    const [first, second] = wrapper.findAll('.list > li').map((item) => item.text());
     expect(first).toContain('Serious: Samples were lost.');
     expect(first).toContain('at 1:05');
     expect(second).toContain('Note: Mains lines.');
   });
 
   it('says so where nothing stands out', () => {
-    const wrapper = mount(QualityList, { props: { sampleRateHz: 1, findings: [] } });
+    const wrapper = mount(QualityList, { props: { recording: recording(), findings: [] } });
     expect(wrapper.text()).toBe('Nothing stands out.');
+  });
+});
+
+describe('the places of findings', () => {
+  const facts = recording({ channels: 2, frames: 10_000, sampleRateHz: 1000 });
+  const finding = (code: QualityFinding['code'], weight: QualityFinding['weight'], places: number[][]) => ({
+    ...{ code, weight, sentence: 'Said in full.', count: places.length },
+    places: places.map(([channel = 0, startSample = 0, endSample = 0]) => ({
+      channel,
+      startSample,
+      endSample,
+    })),
+  });
+
+  it('lead to the bench with room about them, each under a name of its own', () => {
+    const links = placeLinks(
+      finding('speech', 'caution', [
+        [1, 2000, 4000],
+        [0, 9990, 9995],
+        [0, 9991, 9999],
+      ]),
+      facts,
+    );
+    expect(links.map(({ to }) => to.query)).toEqual([
+      { from: '0', to: '6000' },
+      { from: '9940', to: '10000' },
+      { from: '9941', to: '10000' },
+    ]);
+    expect(links[0]!.name).toContain('channel 1');
+    expect(new Set(links.map(({ name }) => name)).size).toBe(3);
+  });
+
+  it('are none for the whole recording, and marks on the axis of time for more than notes', () => {
+    const whole = finding('channel-silent', 'caution', [[0, 0, 10_000]]);
+    const noted = finding('mains', 'note', [[0, 100, 200]]);
+    expect(placeLinks(whole, facts)).toEqual([]);
+    expect(timeMarks([whole, noted, finding('dropout', 'serious', [[0, 500, 1500]])], facts)).toEqual([
+      { fromS: 0.5, toS: 1.5 },
+    ]);
+  });
+});
+
+describe('a likeness in words', () => {
+  const likeness = (part: Partial<Likeness>): Likeness => ({
+    ...{ kind: 'similar', recordingId: recording().id, fileName: 'copy.wav', labName: 'Northlight' },
+    ...{ channel: 0, otherChannel: 0, offsetS: 0, ...part },
+  });
+
+  it.each<[Partial<Likeness>, number, string]>([
+    [{ kind: 'same-file' }, 1, 'The very same file.'],
+    [{ kind: 'same-samples' }, 1, 'The same samples in another file.'],
+    [
+      { kind: 'same-samples', otherChannel: 1 },
+      1,
+      'The same samples in another file (channel 0, there channel 1).',
+    ],
+    [{ offsetS: 0.1 }, 1, 'Sounds like a copy, or like a part of one.'],
+    [{ offsetS: 5 }, 1, 'Sounds like a copy, or like a part of one; it begins 5 s into the other.'],
+    [{ offsetS: -61 }, 1, 'Sounds like a copy, or like a part of one; the other begins 61 s into it.'],
+  ])('says of %o what it is', (part, channels, words) => {
+    expect(plain(likenessWords(likeness(part), channels))).toBe(words);
   });
 });
