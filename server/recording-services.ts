@@ -1,6 +1,10 @@
 import type { AuditService } from './features/audit/audit.service.ts';
 import { createCandidatesService, type CandidatesService } from './features/recordings/candidates.service.ts';
 import { createListeningService, type ListeningService } from './features/recordings/listening.service.ts';
+import {
+  createMeasuringRequestsService,
+  type MeasuringRequestsService,
+} from './features/recordings/measuring-requests.service.ts';
 import { createMeasuringService, type MeasuringService } from './features/recordings/measuring.service.ts';
 import {
   createRecordingViewsService,
@@ -41,6 +45,7 @@ export interface RecordingServices {
   candidates: CandidatesService;
   listening: ListeningService;
   measuring: MeasuringService;
+  measuringRequests: MeasuringRequestsService;
   /** Header and path of stored audio, for whoever measures on it. */
   readStoredAudio: StoredAudioReader;
   intake: IntakeService;
@@ -67,6 +72,7 @@ export function createRecordingServices(ground: Ground, audit: AuditService): Re
   const listening = createListeningService({ recordingViews, readStoredAudio });
   const measureFile = createMeasureFile(ground);
   const measuring = createMeasuringService({ ...ground, audit, viewFolders, readStoredAudio, measureFile });
+  const measuringRequests = createMeasuringRequestsService({ ...ground, audit, recordings });
   const intake = createIntakeService({ ...ground, recordings, sensors });
   const uploadFolder = createUploadFolder({ folder: config.paths.uploads });
   const completion = createCompletionService({ ...ground, audit, recordings, intake, folder: uploadFolder });
@@ -74,7 +80,15 @@ export function createRecordingServices(ground: Ground, audit: AuditService): Re
   const single = { ...ground, runs, sensors, recordings, intake, folder: uploadFolder };
   const singleRequest = createSingleRequestService(single);
   const uploadSweep = createUploadSweepService({ ...ground, completion, folder: uploadFolder });
-  const ofRecordings = { recordings, recordingViews, candidates, listening, measuring, readStoredAudio };
+  const ofRecordings = {
+    recordings,
+    recordingViews,
+    candidates,
+    listening,
+    measuring,
+    measuringRequests,
+    readStoredAudio,
+  };
   const ofUploads = { intake, uploadFolder, completion, uploads, singleRequest, uploadSweep };
   return { runs, sensors, ...ofRecordings, ...ofUploads };
 }

@@ -44,6 +44,8 @@ export interface JobQueue {
   /** Parks what took the process down five times, and tells which. */
   parkExhausted(): ParkedJob[];
   retry(jobId: string): boolean;
+  /** Takes jobs out of the queue in the transaction of its cause; one that runs is told to end at its next sign of life. */
+  cancel(tx: Reader, request: JobRequest): boolean;
   holds(tx: Reader, job: ClaimedJob): boolean;
   counts(): { queued: number; running: number; parked: number };
   onEnqueued(wake: () => void): void;
@@ -105,10 +107,21 @@ export function createJobQueue({ db, nowMs, nextId }: QueueParts): JobQueue {
     },
     parkExhausted: () => parkExhausted(db, nowMs()),
     retry: (jobId) => retryParked(db, jobId, nowMs(), wakers),
+    cancel: cancelWaiting,
     holds: (tx, job) => tx.select({ id: jobs.id }).from(jobs).where(isHeldBy(job)).get() !== undefined,
     counts: () => countByState(db),
     onEnqueued: (wake) => wakers.add(wake),
   };
+}
+
+/** A running job finds at its next sign of life that it is nobody's any more. */
+function cancelWaiting(tx: Reader, { kind, payload }: JobRequest): boolean {
+  const sameWork = and(
+    eq(jobs.kind, kind),
+    eq(jobs.payload, payload),
+    inArray(jobs.state, ['queued', 'running']),
+  );
+  return tx.delete(jobs).where(sameWork).run().changes > 0;
 }
 
 function isHeldBy(job: ClaimedJob) {

@@ -14,7 +14,7 @@ import { joinDetection, type SegmentFindings } from './detection-join.ts';
 import { describeMeasurement, type MeasureInput, type MeasurePlan } from './measure-plan.ts';
 import { SegmentParts } from './segment-parts.ts';
 import { viewPath } from './view-layout.ts';
-import { makeManifest } from './view-manifest.ts';
+import type { ViewManifest } from './view-manifest.ts';
 import { joinViews } from './view-join.ts';
 
 export interface MeasureResult {
@@ -78,10 +78,13 @@ export async function joinSegments(input: MeasureInput): Promise<MeasureResult> 
   };
   joinViews(input.viewsDir, layout);
   writeFileSync(viewPath(input.viewsDir, 'spectra'), JSON.stringify(results.map(toSpectrum)));
-  writeFileSync(
-    viewPath(input.viewsDir, 'manifest'),
-    JSON.stringify(makeManifest(format, layout.frameColumns, plan.descriptors)),
-  );
+  const manifest: ViewManifest = {
+    version: 2,
+    format,
+    frameColumns: layout.frameColumns,
+    descriptors: plan.descriptors,
+  };
+  writeFileSync(viewPath(input.viewsDir, 'manifest'), JSON.stringify(manifest));
   await parts.remove();
   const fingerprints = results.map((result) => result.content.fingerprint);
   return { summary, candidatesPath, candidateCount: found.candidateCount, fingerprints };

@@ -22,6 +22,10 @@ export async function getSpectrum(id: string, channel: number, signal?: AbortSig
 }
 
 /** Another try for a measurement that failed. */
+export async function stopMeasuring(id: string): Promise<Recording> {
+  return apiSend('DELETE', `/api/recordings/${id}/measure`, recordingSchema);
+}
+
 export async function measureAgain(id: string): Promise<Recording> {
   return apiSend('POST', `/api/recordings/${id}/measure`, recordingSchema);
 }

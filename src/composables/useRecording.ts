@@ -2,16 +2,19 @@ import { useQuery, useQueryClient } from '@tanstack/vue-query';
 import { computed, watch } from 'vue';
 import type { Ref } from 'vue';
 import type { Recording } from '@shared/contract/recordings.ts';
-import { getRecording, measureAgain } from '@/api/recordings.ts';
+import { getRecording, measureAgain, stopMeasuring } from '@/api/recordings.ts';
 import { useActivity } from '@/composables/useActivity.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
+import { isMeasuredAgain } from '@/composables/measured-again.ts';
 import { useSubmit } from '@/composables/useSubmit.ts';
 
 /** Progress that is told while nobody hears, as after a lost stream, is asked for at this pace. */
 const pollMs = 5000;
 
 function isUnderway(recording: Recording | undefined): boolean {
-  return recording?.processing === 'queued' || recording?.processing === 'measuring';
+  if (recording === undefined) return false;
+  const { processing, progress } = recording;
+  return processing === 'queued' || processing === 'measuring' || isMeasuredAgain({ processing, progress });
 }
 
 /** One recording, live: while it is measured its progress follows the server, then the measurements come by themselves. */
@@ -28,13 +31,18 @@ export function useRecording(id: Ref<string>) {
     queries.setQueryData(key.value, await measureAgain(id.value));
   });
 
+  const stopping = useSubmit(async () => {
+    queries.setQueryData(key.value, await stopMeasuring(id.value));
+  });
+
   useActivity((activity) => {
     if (activity.topic === 'pass') return void queries.invalidateQueries({ queryKey: ['passes', id.value] });
     if (activity.topic !== 'recording' || activity.id !== id.value) return;
     const { processing, progress, sharing } = activity;
     const before = query.data.value;
     if (!before) return;
-    if (before.processing === processing && before.sharing === sharing)
+    const isFinished = processing === 'measured' && progress === 1;
+    if (before.processing === processing && before.sharing === sharing && !isFinished)
       queries.setQueryData(key.value, { ...before, progress });
     else void query.refetch();
   });
@@ -46,5 +54,5 @@ export function useRecording(id: Ref<string>) {
     },
   );
 
-  return { recording: query.data, error: query.error, refetch: query.refetch, retrying };
+  return { recording: query.data, error: query.error, refetch: query.refetch, retrying, stopping };
 }

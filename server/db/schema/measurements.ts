@@ -13,6 +13,8 @@ export const measurements = sqliteTable(
     version: integer().notNull(),
     summary: text({ mode: 'json' }).$type<MeasurementSummary>().notNull(),
     createdAtMs: instantMs().notNull(),
+    /** Empty while it is written; only what is finished is shown. */
+    finishedAtMs: instantMs(),
   },
   (table) => [index('measurements_recording_idx').on(table.recordingId, table.createdAtMs)],
 );

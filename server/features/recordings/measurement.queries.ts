@@ -1,8 +1,7 @@
-import { and, eq, inArray, ne } from 'drizzle-orm';
+import { and, eq, inArray, isNull } from 'drizzle-orm';
 import type { DetectedCandidate } from '../../../shared/contract/measurement.ts';
 import type { Db, Reader } from '../../db/client.ts';
 import { candidates, detectorRuns, measurements } from '../../db/schema/measurements.ts';
-import { recordings } from '../../db/schema/recordings.ts';
 
 export function insertMeasurement(db: Reader, row: typeof measurements.$inferInsert): void {
   db.insert(measurements).values(row).run();
@@ -50,17 +49,22 @@ export function insertCandidates(db: Db, detectorRunId: string, rows: readonly N
   }
 }
 
-/** Removes what an interrupted try left; what belongs to a measured recording stays for good. */
+/** Makes a measurement the one that is shown; those before stay, as marks may have come from their candidates. */
+export function finishMeasurement(db: Reader, measurementId: string, finishedAtMs: number): void {
+  db.update(measurements).set({ finishedAtMs }).where(eq(measurements.id, measurementId)).run();
+}
+
+/** Removes what an interrupted try left. */
 export function deleteUnfinishedMeasurements(db: Reader, recordingId: string): void {
-  const unmeasured = db
-    .select({ id: recordings.id })
-    .from(recordings)
-    .where(and(eq(recordings.id, recordingId), ne(recordings.processing, 'measured')));
+  const unfinished = db
+    .select({ id: measurements.id })
+    .from(measurements)
+    .where(and(eq(measurements.recordingId, recordingId), isNull(measurements.finishedAtMs)));
   const left = db
     .select({ id: detectorRuns.id })
     .from(detectorRuns)
-    .where(inArray(detectorRuns.recordingId, unmeasured));
+    .where(inArray(detectorRuns.measurementId, unfinished));
   db.delete(candidates).where(inArray(candidates.detectorRunId, left)).run();
-  db.delete(detectorRuns).where(inArray(detectorRuns.recordingId, unmeasured)).run();
-  db.delete(measurements).where(inArray(measurements.recordingId, unmeasured)).run();
+  db.delete(detectorRuns).where(inArray(detectorRuns.measurementId, unfinished)).run();
+  db.delete(measurements).where(inArray(measurements.id, unfinished)).run();
 }

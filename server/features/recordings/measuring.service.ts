@@ -11,7 +11,7 @@ import type { MeasureInput } from '../../measuring/measure-plan.ts';
 import { nonFiniteRefusal } from '../../signal/non-finite.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import { storeResult } from './measurement-result.ts';
-import { deleteUnfinishedMeasurements } from './measurement.queries.ts';
+import { deleteUnfinishedMeasurements, finishMeasurement } from './measurement.queries.ts';
 import { deleteSounds, type LikenessRow } from './likeness.queries.ts';
 import { createLikenessService } from './likeness.service.ts';
 import { announceRecording } from './recording-activity.ts';
@@ -40,12 +40,15 @@ type Parts = Pick<Ground, 'db' | 'clock' | 'ids' | 'activity'> & {
 export interface MeasuringTask {
   signal: AbortSignal;
   onProgress: (fraction: number) => void;
+  /** Measures what is measured once more; until that is finished, what there is stays. */
+  again: boolean;
   /** Throws where the work belongs to a later claim. */
   assertHeld: (tx: Tx) => void;
 }
 
 /** What the measurement found that decides who may see the recording. */
 interface Found {
+  measurementId: string;
   likenesses: LikenessRow[];
   screened: NewFinding[];
 }
@@ -61,32 +64,41 @@ export function createMeasuringService(parts: Parts) {
   const likeness = createLikenessService({ db, clock });
 
   /**
-   * Idempotent: what is measured stays as it is. The segments that an interrupted try finished are used again; what it
-   * left of rows is removed first.
+   * Idempotent: what is measured stays as it is, unless it is to be measured again. The segments that an interrupted try
+   * finished are used again; what it left of rows is removed first.
    */
   async function measure(recordingId: string, task: MeasuringTask): Promise<void> {
     const view = selectUnscopedRecording(db, recordingId);
-    if (view === undefined || view.recording.processing === 'measured') return;
+    if (view === undefined) return;
+    const wasMeasured = view.recording.processing === 'measured';
+    if (wasMeasured && !task.again) return;
+    const processing = wasMeasured ? 'measured' : 'measuring';
     write(db, (tx) => {
       task.assertHeld(tx);
       deleteUnfinishedMeasurements(tx, recordingId);
       deleteSounds(tx, recordingId);
-      updateRecording(tx, recordingId, { processing: 'measuring', progress: 0, failure: null });
+      updateRecording(tx, recordingId, { processing, progress: 0, failure: null });
     });
-    announceRecording(activity, { ...view.recording, processing: 'measuring', progress: 0 });
+    const recording = { ...view.recording, processing, progress: 0 } as const;
+    announceRecording(activity, recording);
     const measurementId = ids.next();
-    let found: Found;
+    let found: Omit<Found, 'measurementId'>;
     try {
-      found = await compute(view, measurementId, task);
+      found = await compute({ ...view, recording }, measurementId, task);
     } catch (error) {
       // A stop or a kill leaves whole segments, a fault may have left anything.
       if (!task.signal.aborted) await viewFolders.discardUnfinished(recordingId);
       throw error;
     }
-    finish(view.recording, found, task);
+    finish(recording, { ...found, measurementId }, task);
+    await viewFolders.keepOnly(recordingId, measurementId);
   }
 
-  async function compute(view: RecordingView, measurementId: string, task: MeasuringTask): Promise<Found> {
+  async function compute(
+    view: RecordingView,
+    measurementId: string,
+    task: MeasuringTask,
+  ): Promise<Omit<Found, 'measurementId'>> {
     const { recording } = view;
     const viewsDir = await viewFolders.openUnfinished(recording.id);
     const report = throttled(recording, task);
@@ -135,25 +147,27 @@ export function createMeasuringService(parts: Parts) {
   }
 
   /** What has been computed becomes visible in one step. */
-  function finish(recording: RecordingRow, { likenesses, screened }: Found, task: MeasuringTask): void {
+  function finish(
+    recording: RecordingRow,
+    { measurementId, likenesses, screened }: Found,
+    task: MeasuringTask,
+  ): void {
     const { id: recordingId } = recording;
     const now = clock.nowMs();
     const measured = write(db, (tx) => {
       task.assertHeld(tx);
-      const findings = [...screened, ...likeness.record(tx, recording, likenesses)];
+      finishMeasurement(tx, measurementId, now);
+      const before = selectFindings(tx, recordingId);
+      const all = [...screened, ...likeness.record(tx, recording, likenesses)];
+      const findings = all.filter((finding) => !before.some((known) => isSameFinding(known, finding)));
       insertFindings(
         tx,
         findings.map((finding) => ({ ...finding, id: ids.next(), recordingId, foundAtMs: now })),
       );
-      const sharing = sharingAfterScreen(selectFindings(tx, recordingId));
-      const heldAtMs = sharing === 'held' ? now : null;
-      updateRecording(tx, recordingId, {
-        processing: 'measured',
-        progress: 1,
-        sharing,
-        heldAtMs,
-        updatedAtMs: now,
-      });
+      const sharing = sharingOf(recording, [...before, ...findings], findings);
+      const heldAtMs = sharing === 'held' ? (recording.heldAtMs ?? now) : null;
+      const state = { processing: 'measured', progress: 1, sharing, heldAtMs, updatedAtMs: now } as const;
+      updateRecording(tx, recordingId, state);
       const row = requireRecording(tx, recordingId);
       const subject = { subjectType: 'Recording', subjectId: recordingId, labId: row.labId };
       audit.record(tx, { personId: null, action: 'recording.measured', ...subject, detail: { sharing } });
@@ -162,16 +176,18 @@ export function createMeasuringService(parts: Parts) {
     announceRecording(activity, measured);
   }
 
-  /** After the last try: the reason is shown to the lab, and a button offers another. */
+  /**
+   * After the last try: the reason is shown to the lab, and a button offers another. What was measured before stays.
+   */
   function giveUp(recordingId: string, reason: string): void {
     const failed = write(db, (tx) => {
       const failure = toFailure(reason);
-      updateRecording(tx, recordingId, {
-        processing: 'failed',
-        failure,
-        progress: 0,
-        updatedAtMs: clock.nowMs(),
-      });
+      const { processing: now } = requireRecording(tx, recordingId);
+      const state =
+        now === 'measured'
+          ? ({ processing: 'measured', progress: 1 } as const)
+          : ({ processing: 'failed', progress: 0 } as const);
+      updateRecording(tx, recordingId, { ...state, failure, updatedAtMs: clock.nowMs() });
       return requireRecording(tx, recordingId);
     });
     announceRecording(activity, failed);
@@ -183,12 +199,28 @@ export function createMeasuringService(parts: Parts) {
       if (clock.nowMs() - lastAtMs < announcedEveryMs) return;
       lastAtMs = clock.nowMs();
       task.onProgress(fraction);
+      // Whoever stopped it has said so already.
+      if (task.signal.aborted) return;
       updateProgress(db, recording.id, fraction);
-      announceRecording(activity, { ...recording, processing: 'measuring', progress: fraction });
+      announceRecording(activity, { ...recording, progress: fraction });
     };
   }
 
   return { measure, giveUp };
+}
+
+/** A measurement made again changes nothing about sharing, unless it found something that nobody has decided on. */
+function sharingOf(
+  recording: RecordingRow,
+  all: readonly Pick<NewFinding, 'kind'>[],
+  news: readonly NewFinding[],
+): RecordingRow['sharing'] {
+  if (recording.processing !== 'measured') return sharingAfterScreen(all);
+  return sharingAfterScreen(news) === 'held' ? 'held' : recording.sharing;
+}
+
+function isSameFinding(known: Pick<NewFinding, 'kind' | 'sentence'>, found: NewFinding): boolean {
+  return known.kind === found.kind && known.sentence === found.sentence;
 }
 
 export function contextOf({ sensor, setup, recording }: RecordingView): MeasureContext {

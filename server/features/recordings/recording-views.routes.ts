@@ -88,14 +88,14 @@ function framesRoute({ services }: Deps): Route {
     query: channelQuerySchema,
     handler: async ({ actor, params, query, res }) => {
       const access = recordingViews.requireMeasured(actor, params.id);
-      const rows = recordingViews.frames(access, query.channel);
+      const table = await recordingViews.frames(access, query.channel);
       res.setHeader('Content-Type', 'text/csv; charset=utf-8');
       res.setHeader('Cache-Control', cacheControl);
       res.setHeader(
         'Content-Disposition',
         toDisposition(`${access.row.fileName}.channel-${query.channel}.frames.csv`),
       );
-      await pipeline(framesCsv(rows), res);
+      await pipeline(framesCsv(table), res);
     },
   });
 }

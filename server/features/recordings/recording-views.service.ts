@@ -6,7 +6,8 @@ import { conflict, notFound } from '../../http/problem.ts';
 import { tileLayout } from '../../measuring/view-layout.ts';
 import {
   NoSuchViewError,
-  frameRows,
+  readFrameTable,
+  type FrameTable,
   readPeaks,
   readSpectrum,
   readTile,
@@ -73,10 +74,10 @@ export function createRecordingViewsService({ db, recordings, viewFolders, readS
     return knownView(() => readSpectrum(viewFolders.ofMeasurement(row.id, measurementId), channel));
   }
 
-  /** Every long frame of one channel, a row at a time. */
-  function frames(access: MeasuredAccess, channel: number): AsyncGenerator<(number | null)[]> {
+  /** Every long frame of one channel. */
+  function frames(access: MeasuredAccess, channel: number): Promise<FrameTable> {
     requireChannel(access.row, channel);
-    return frameRows(viewFolders.ofMeasurement(access.row.id, access.measurementId), channel);
+    return readFrameTable(viewFolders.ofMeasurement(access.row.id, access.measurementId), channel);
   }
 
   return { requireMeasured, peaks, layout, tile, spectrum, frames };

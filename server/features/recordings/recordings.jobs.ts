@@ -8,10 +8,10 @@ export function recordingsJobs({ services }: Deps): JobHandler[] {
   return [
     defineJob({
       kind: 'measure',
-      payload: z.object({ recordingId: idSchema }),
+      payload: z.object({ recordingId: idSchema, again: z.boolean().default(false) }),
       lane: 'compute',
-      run: ({ recordingId }, { signal, progress, assertHeld }) =>
-        measuring.measure(recordingId, { signal, assertHeld, onProgress: progress }),
+      run: ({ recordingId, again }, { signal, progress, assertHeld }) =>
+        measuring.measure(recordingId, { again, signal, assertHeld, onProgress: progress }),
       onParked: ({ recordingId }, reason) => measuring.giveUp(recordingId, reason),
     }),
   ];

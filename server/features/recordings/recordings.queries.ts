@@ -1,4 +1,4 @@
-import { and, desc, eq, inArray, isNull, lt, or, sql, type SQL } from 'drizzle-orm';
+import { and, desc, eq, inArray, isNotNull, isNull, lt, or, sql, type SQL } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/sqlite-core';
 import { countLimit } from '../../../shared/contract/page.ts';
 import type { ListRecordingsQuery, RecordingListItem } from '../../../shared/contract/recordings.ts';
@@ -164,8 +164,8 @@ export function selectNewestMeasurement(db: Reader, recordingId: string): Measur
   return db
     .select()
     .from(measurements)
-    .where(eq(measurements.recordingId, recordingId))
-    .orderBy(desc(measurements.createdAtMs), desc(measurements.id))
+    .where(and(eq(measurements.recordingId, recordingId), isNotNull(measurements.finishedAtMs)))
+    .orderBy(desc(measurements.finishedAtMs), desc(measurements.id))
     .limit(1)
     .get();
 }
@@ -175,8 +175,8 @@ export function selectNewestMeasurementId(db: Reader, recordingId: string): stri
   return db
     .select({ id: measurements.id })
     .from(measurements)
-    .where(eq(measurements.recordingId, recordingId))
-    .orderBy(desc(measurements.createdAtMs), desc(measurements.id))
+    .where(and(eq(measurements.recordingId, recordingId), isNotNull(measurements.finishedAtMs)))
+    .orderBy(desc(measurements.finishedAtMs), desc(measurements.id))
     .limit(1)
     .get()?.id;
 }

@@ -13,7 +13,7 @@ import { withRevision } from '../../http/revision.ts';
 import { sendFile } from '../../http/send-file.ts';
 
 export function recordingsRoutes({ services, store }: Deps): Route[] {
-  const { recordings } = services;
+  const { recordings, measuringRequests } = services;
   return [
     defineRoute({
       method: 'get',
@@ -45,12 +45,22 @@ export function recordingsRoutes({ services, store }: Deps): Route[] {
     defineRoute({
       method: 'post',
       path: '/api/recordings/:id/measure',
-      summary: 'Tries a measurement again that failed.',
+      summary: 'Measures a recording again, after a failure, a stop, or with a newer detector; marks stay.',
       access: 'signed-in',
       status: 202,
       params: idParamsSchema,
       response: recordingSchema,
-      handler: ({ actor, params }) => recordings.measureAgain(actor, params.id),
+      handler: ({ actor, params }) => measuringRequests.measureAgain(actor, params.id),
+    }),
+    defineRoute({
+      method: 'delete',
+      path: '/api/recordings/:id/measure',
+      summary: 'Stops a measurement that waits or runs; what is finished of it is kept.',
+      access: 'signed-in',
+      status: 200,
+      params: idParamsSchema,
+      response: recordingSchema,
+      handler: ({ actor, params }) => measuringRequests.stop(actor, params.id),
     }),
     defineRoute({
       method: 'get',

@@ -8,17 +8,14 @@ import type {
 import { isForReviewersAlone } from '../../../shared/domain/recording-status.ts';
 import { abilityFor, may } from '../../../shared/policy/ability.ts';
 import { labsOf, type Actor } from '../../../shared/policy/actor.ts';
-import { authorize } from '../../authorize/authorize.ts';
 import { visibleRecordings } from '../../authorize/visible-recordings.ts';
 import type { Reader, Tx } from '../../db/client.ts';
 import type { RowPlace } from '../../db/row-place.ts';
-import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
-import { conflict, notFound } from '../../http/problem.ts';
+import { notFound } from '../../http/problem.ts';
 import { pageOf, readRowCursor } from '../../http/row-cursor.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import { selectLikenesses } from './likeness.queries.ts';
-import { announceRecording } from './recording-activity.ts';
 import { toListItem, toRecording, toSegment, type Standing } from './recordings.map.ts';
 import {
   countEvents,
@@ -31,7 +28,6 @@ import {
   selectRecording,
   selectRecordingRow,
   selectRecordings,
-  updateRecording,
   type FindingRow,
   type RecordingListView,
   type RecordingRow,
@@ -39,7 +35,7 @@ import {
 } from './recordings.queries.ts';
 import { countSegments, insertSegments, selectSegments, type SegmentRow } from './segments.queries.ts';
 
-type Parts = Pick<Ground, 'db' | 'clock' | 'ids' | 'jobs' | 'activity'> & { audit: AuditService };
+type Parts = Pick<Ground, 'db' | 'clock' | 'ids' | 'jobs'> & { audit: AuditService };
 
 export type RecordingsService = ReturnType<typeof createRecordingsService>;
 
@@ -64,7 +60,7 @@ export interface RecordingAccess {
   blind: boolean;
 }
 
-export function createRecordingsService({ db, clock, ids, jobs, activity, audit }: Parts) {
+export function createRecordingsService({ db, clock, ids, jobs, audit }: Parts) {
   function list(actor: Actor, query: ListRecordingsQuery): Page<RecordingListItem> {
     const { cursor, limit, ...filters } = query;
     const visible = visibleRecordings(actor);
@@ -121,29 +117,7 @@ export function createRecordingsService({ db, clock, ids, jobs, activity, audit 
     );
   }
 
-  /** Gives a recording whose measurement failed another try. */
-  function measureAgain(actor: Actor, id: string): Recording {
-    const row = write(db, (tx) => {
-      const found = selectRecordingRow(tx, id, visibleRecordings(actor));
-      if (found === undefined) throw notFound('This recording');
-      const detail = 'Only the contributors of its lab may have a recording measured again.';
-      authorize(actor, { action: 'update', name: 'Recording', row: found, detail });
-      if (found.processing !== 'failed') throw conflict('Only a measurement that failed can be tried again.');
-      updateRecording(tx, id, {
-        processing: 'queued',
-        progress: 0,
-        failure: null,
-        updatedAtMs: clock.nowMs(),
-      });
-      jobs.enqueue(tx, { kind: 'measure', payload: { recordingId: id } });
-      audit.record(tx, entry(actor.id, 'recording.measuring-retried', found));
-      return found;
-    });
-    announceRecording(activity, { ...row, processing: 'queued', progress: 0 });
-    return get(actor, id);
-  }
-
-  return { list, get, requireVisible, listSegments, add, measureAgain };
+  return { list, get, requireVisible, listSegments, add };
 }
 
 function placeOf({ recording }: RecordingListView): RowPlace {

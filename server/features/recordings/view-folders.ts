@@ -15,14 +15,10 @@ export function createViewFolders(root: string) {
 
   const ofUnfinished = (recordingId: string) => path.join(root, recordingId, 'unfinished');
 
-  /** The folder to write into, with what an earlier try left there, after every measurement before was removed. */
+  /** The folder to write into, with what an earlier try left there. */
   async function openUnfinished(recordingId: string): Promise<string> {
     const unfinished = ofUnfinished(recordingId);
     await mkdir(unfinished, { recursive: true });
-    for (const name of await readdir(path.dirname(unfinished))) {
-      if (name === path.basename(unfinished)) continue;
-      await rm(path.join(path.dirname(unfinished), name), { recursive: true, force: true });
-    }
     return unfinished;
   }
 
@@ -31,9 +27,17 @@ export function createViewFolders(root: string) {
     await syncFolder(ofRecording(recordingId));
   }
 
+  /** Removes the views of every measurement but one. */
+  async function keepOnly(recordingId: string, measurementId: string): Promise<void> {
+    const folder = ofRecording(recordingId);
+    for (const name of await readdir(folder)) {
+      if (name !== measurementId) await rm(path.join(folder, name), { recursive: true, force: true });
+    }
+  }
+
   async function discardUnfinished(recordingId: string): Promise<void> {
     await rm(ofUnfinished(recordingId), { recursive: true, force: true });
   }
 
-  return { ofMeasurement, openUnfinished, publish, discardUnfinished };
+  return { ofMeasurement, openUnfinished, publish, keepOnly, discardUnfinished };
 }

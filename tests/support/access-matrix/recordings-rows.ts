@@ -16,6 +16,12 @@ async function failedId(app: TestApp): Promise<string> {
   return id;
 }
 
+async function queuedId(app: TestApp): Promise<string> {
+  const id = await seedRecording(app);
+  updateRecording(app.deps.db, id, { processing: 'queued', progress: 0 });
+  return id;
+}
+
 const sharedAndAssigned = signedIn(200, { administrator: 404, removedMember: 404 });
 const withheldFromBlind = { ...sharedAndAssigned, labeler: 404 };
 const ownLabOnly = signedIn(404, { contributor: 200, reviewer: 200 });
@@ -70,5 +76,11 @@ export const recordingsRows: MatrixRow[] = [
     state: 'after a measurement that failed',
     prepare: async (app) => ({ path: `/api/recordings/${await failedId(app)}/measure` }),
     expected: signedIn(404, { contributor: 202, reviewer: 403 }),
+  },
+  {
+    route: 'DELETE /api/recordings/:id/measure',
+    state: 'while it waits to be measured',
+    prepare: async (app) => ({ path: `/api/recordings/${await queuedId(app)}/measure` }),
+    expected: signedIn(404, { contributor: 200, reviewer: 403 }),
   },
 ];

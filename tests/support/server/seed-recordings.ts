@@ -110,7 +110,7 @@ export async function seedMeasured(app: TestApp, seed: SeedRecording = {}): Prom
   return id;
 }
 
-export function measureHere(app: TestApp, recordingId: string): Promise<void> {
+export function measureHere(app: TestApp, recordingId: string, again = false): Promise<void> {
   const { deps } = app;
   const viewFolders = createViewFolders(deps.config.paths.views);
   const { audit, readStoredAudio } = deps.services;
@@ -122,6 +122,7 @@ export function measureHere(app: TestApp, recordingId: string): Promise<void> {
     measureFile: (input, controls) => measureFile(input, controls),
   });
   const task = {
+    again,
     signal: new AbortController().signal,
     onProgress: () => undefined,
     assertHeld: () => undefined,

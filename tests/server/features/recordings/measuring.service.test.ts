@@ -24,11 +24,16 @@ const viewNames = (id: string) => {
   const folder = path.join(app.deps.config.paths.views, id);
   return existsSync(folder) ? readdirSync(folder) : [];
 };
-const measureWith = (id: string, measure: MeasureFile, assertHeld = () => undefined as void) => {
+const measureWith = (
+  id: string,
+  measure: MeasureFile,
+  assertHeld = () => undefined as void,
+  { signal = new AbortController().signal, again = false } = {},
+) => {
   const viewFolders = createViewFolders(app.deps.config.paths.views);
   const { audit, readStoredAudio } = app.deps.services;
   const parts = { ...app.deps, audit, readStoredAudio, viewFolders, measureFile: measure };
-  const task = { signal: new AbortController().signal, onProgress: () => undefined, assertHeld };
+  const task = { again, signal, onProgress: () => undefined, assertHeld };
   return createMeasuringService(parts).measure(id, task);
 };
 
@@ -154,7 +159,7 @@ describe('measuring', () => {
     }
     expect(await app.runJobs()).toBe(0);
     expect(rowOf(id)?.processing).toBe('failed');
-    app.deps.services.recordings.measureAgain(app.actor('contributor'), id);
+    app.deps.services.measuringRequests.measureAgain(app.actor('contributor'), id);
     expect(await app.runJobs()).toBe(1);
   });
 });

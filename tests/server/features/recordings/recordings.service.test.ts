@@ -135,19 +135,3 @@ describe('whoever works blind', () => {
     expect(() => get('labeler', id)).toThrow('not-found');
   });
 });
-
-describe('measuring again', () => {
-  test('is for what failed, and for the contributors of its lab', async () => {
-    const { recordings } = app.deps.services;
-    const id = await seedRecording(app);
-    expect(() => recordings.measureAgain(app.actor('contributor'), id)).toThrow(
-      'Only a measurement that failed',
-    );
-    updateRecording(app.deps.db, id, { processing: 'failed', failure: 'The disk was full.' });
-    expect(() => recordings.measureAgain(app.actor('reviewer'), id)).toThrow('forbidden');
-    expect(recordings.measureAgain(app.actor('contributor'), id)).toMatchObject({
-      processing: 'queued',
-      failure: null,
-    });
-  });
-});
