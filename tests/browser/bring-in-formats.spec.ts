@@ -73,7 +73,7 @@ describe('bringing in what is no WAV file', () => {
     await checkAxe(page);
     await takeScreenshot(page, 'bring-in-table');
     await item.getByRole('button', { name: 'Use this layout' }).click();
-    await item.getByText('500 kHz').waitFor();
+    await item.getByText('CSV, 64-bit float, 1 channel').waitFor();
     await bringInAndOpen(page, 'capture.csv');
   });
 });

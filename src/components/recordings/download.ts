@@ -1,4 +1,5 @@
 import type { Recording } from '@shared/contract/recordings.ts';
+import { nameOfContainer } from '@/components/recordings/format-words.ts';
 import { formatBytes } from '@/composables/useFormat.ts';
 
 export interface DownloadLink {
@@ -18,11 +19,14 @@ export interface Download {
 export type DownloadKind = 'audio' | 'frames.csv' | 'spectrum' | 'candidates.csv' | 'candidates.jsonl';
 export type AddressOf = (kind: DownloadKind, channel?: number) => string;
 
-type Facts = Pick<Recording, 'fileName' | 'sizeBytes' | 'processing' | 'blind' | 'may' | 'channels'>;
+type Facts = Pick<
+  Recording,
+  'fileName' | 'format' | 'sizeBytes' | 'processing' | 'blind' | 'may' | 'channels'
+>;
 
 /** What can be taken along of a recording; whoever works blind gets what was recorded, not what was found. */
 export function downloadsOf(recording: Facts, addressOf: AddressOf): Download[] {
-  const { fileName, sizeBytes, processing, blind, may } = recording;
+  const { fileName, format, sizeBytes, processing, blind, may } = recording;
   const isMeasured = processing === 'measured';
   const one = (label: string, detail: string, kind: DownloadKind, ending = `.${kind}`): Download => ({
     label,
@@ -30,7 +34,9 @@ export function downloadsOf(recording: Facts, addressOf: AddressOf): Download[] 
     links: [{ label, href: addressOf(kind), fileName: `${fileName}${ending}` }],
   });
   return [
-    ...(may.downloadAudio ? [one('Original file', `WAV, ${formatBytes(sizeBytes)}`, 'audio', '')] : []),
+    ...(may.downloadAudio
+      ? [one('Original file', `${nameOfContainer(format.container)}, ${formatBytes(sizeBytes)}`, 'audio', '')]
+      : []),
     ...(isMeasured
       ? [
           ofChannels(recording, 'Descriptors of every frame', 'CSV', (channel) => ({

@@ -13,6 +13,10 @@ const containerNames: Readonly<Record<AudioFormat['container'], string>> = {
   'capture-set': 'Capture set',
 };
 
+export function nameOfContainer(container: AudioFormat['container']): string {
+  return containerNames[container];
+}
+
 /** WAV, 16-bit integer, 1 channel. */
 export function formatOfFile({ container, encoding, bitsPerSample, channels }: Samples): string {
   return `${containerNames[container]}, ${bitsPerSample}-bit ${encoding}, ${formatCount(channels, 'channel')}`;

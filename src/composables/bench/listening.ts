@@ -1,3 +1,4 @@
+import type { AudioContainer } from '@shared/audio/audio-format.ts';
 import { longestListenS } from '@shared/contract/views.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 import { HEARING_LINE_HZ } from '@/composables/bench/hearing-line.ts';
@@ -16,6 +17,11 @@ export const FIRST_LEVEL_DB = -18;
 const HIGHEST_PLAIN_RATE_HZ = 192_000;
 /** What the server reads for one rendition at most. */
 const MOST_INPUT_SAMPLES = 24_000_000;
+
+/** Of the files as they came in, browsers play these; not all of their forms. */
+export function isPlayedByBrowsers(container: AudioContainer): boolean {
+  return container === 'RIFF' || container === 'FLAC';
+}
 
 export interface PlayPlan {
   source: 'original' | 'rendition';

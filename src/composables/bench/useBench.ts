@@ -41,7 +41,8 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     scheme,
     events,
   });
-  const listening = useListening({ recordingId: recording.id, sampleRateHz, channel });
+  const { container } = recording.format;
+  const listening = useListening({ recordingId: recording.id, sampleRateHz, container, channel });
 
   /** While sound runs and no pointer is over the picture, marks are set where it is heard. */
   const markSample = computed(() => {

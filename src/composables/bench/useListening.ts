@@ -1,20 +1,28 @@
 import { onScopeDispose, ref, shallowRef, watch } from 'vue';
 import type { Ref } from 'vue';
+import type { AudioContainer } from '@shared/audio/audio-format.ts';
 import { audioAddress, listenAddress } from '@/api/views.ts';
-import { FIRST_LEVEL_DB, gainOf, planPlay, sampleHeard } from '@/composables/bench/listening.ts';
+import {
+  FIRST_LEVEL_DB,
+  gainOf,
+  isPlayedByBrowsers,
+  planPlay,
+  sampleHeard,
+} from '@/composables/bench/listening.ts';
 import type { PlayPlan, SlowFactor } from '@/composables/bench/listening.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 
 export interface ListeningOptions {
   recordingId: string;
   sampleRateHz: number;
+  container: AudioContainer;
   channel: Ref<number>;
 }
 
 const FADE_MS = 60;
 
 /** Plays a span through the browser's own player: the file itself, or a slowed rendition made by the server. */
-export function useListening({ recordingId, sampleRateHz, channel }: ListeningOptions) {
+export function useListening({ recordingId, sampleRateHz, container, channel }: ListeningOptions) {
   const audio = new Audio();
   audio.preload = 'none';
   const slow = ref<SlowFactor>(1);
@@ -24,7 +32,7 @@ export function useListening({ recordingId, sampleRateHz, channel }: ListeningOp
   const playheadSample = shallowRef<number | null>(null);
   const problem = ref('');
   let plan: PlayPlan | null = null;
-  let isOriginalPlayable = true;
+  let isOriginalPlayable = isPlayedByBrowsers(container);
   let startedAtMs = 0;
   let frame = 0;
 

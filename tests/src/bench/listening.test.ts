@@ -1,11 +1,23 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { longestListenS } from '@shared/contract/views.ts';
-import { gainOf, heardWords, planPlay, sampleHeard, SLOW_FACTORS } from '@/composables/bench/listening.ts';
+import {
+  gainOf,
+  heardWords,
+  isPlayedByBrowsers,
+  planPlay,
+  sampleHeard,
+  SLOW_FACTORS,
+} from '@/composables/bench/listening.ts';
 
 const playable = { sampleRateHz: 192_000, isOriginalPlayable: true };
 
 describe('listening', () => {
+  it('never gives a browser a file that is no sound to it', () => {
+    const containers = ['RIFF', 'RF64', 'BW64', 'FLAC', 'raw', 'CSV', 'capture-set'] as const;
+    expect(containers.filter(isPlayedByBrowsers)).toEqual(['RIFF', 'FLAC']);
+  });
+
   it('plays the file itself where the browser can, and a rendition above that rate or slowed', () => {
     const span = { startSample: 1000, endSample: 200_000 };
     expect(planPlay(span, 1, playable).source).toBe('original');

@@ -82,6 +82,13 @@ describe('the downloads', () => {
     ]);
   });
 
+  it('name the file as what it came in as', () => {
+    const [wav] = downloadsOf(recording(), addressOf);
+    expect(wav?.detail).toMatch(/^WAV, /);
+    const flac = { ...format, container: 'FLAC' as const };
+    expect(downloadsOf(recording({ format: flac }), addressOf)[0]?.detail).toMatch(/^FLAC, /);
+  });
+
   it('hold descriptors and spectra of every channel, under names that tell them apart', () => {
     const files = linksOf({ channels: 3 }).filter(({ href }) => href.includes('frames'));
     expect(files.map(({ label }) => label)).toEqual(['channel 0', 'channel 1', 'channel 2']);
