@@ -2,7 +2,7 @@ import { meydaColumns } from './descriptors.ts';
 import type { FrameCursor } from './frame-cursor.ts';
 import { type SampleWindow } from './frame-cursor.ts';
 import { FEATURE, type LongFrameRows } from './frame-engine.ts';
-import { SILENCE_MEAN_SQUARE } from './frame-spectrum.ts';
+import { SILENCE_MEAN_SQUARE, sumOf } from './frame-spectrum.ts';
 import { BAND_COLUMN, CEPSTRAL_COLUMN, type FrameRow } from './frame-row.ts';
 import {
   LongFrameStatistics,
@@ -25,6 +25,9 @@ export interface LongFramesSettings extends LongFrameStatisticsSettings {
   /** Called when the rows of some frames have been renewed. */
   onRows: (count: number) => void;
 }
+
+/** Summed power of the lines of a Hann spectrum over their mean square, see `meanSquareOfBins`. */
+const LINES_PER_MEAN_SQUARE = 3;
 
 /**
  * Measures the long frames of a segment of one channel: one row of descriptors each, and what they add to the statistics.
@@ -79,9 +82,17 @@ export class LongFrames {
     const power = rows.power.subarray(index * rows.powerStride, index * rows.powerStride + rows.bins);
     if (byMeyda) meydaColumns(power, sampleRateHz, features, at);
     this.#copyShape(features, at);
-    this.#statistics.longTerm.push(power);
+    this.#statistics.longTerm.push(power, this.#energyOf(features, at));
     this.#statistics.pushRow(row);
     return true;
+  }
+
+  /** Summed power of the third octaves, which begin at 1 kHz: what decides whether a frame is quiet. */
+  #energyOf(features: Float32Array, at: number): number | undefined {
+    const { bands } = this.#settings;
+    if (bands === 0) return undefined;
+    const first = at + FEATURE.thirdOctaves;
+    return LINES_PER_MEAN_SQUARE * sumOf(features, first, first + bands);
   }
 
   #bandsOf(index: number): Float32Array {

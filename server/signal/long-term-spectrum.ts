@@ -71,9 +71,12 @@ export class LongTermSpectrum {
     this.#firstActivityBin = lowBin < bins / 2 ? Math.max(1, lowBin) : 1;
   }
 
-  /** @param power bins 0 to N/2 - 1 of a frame that is not silent. Bin 0 is not used: the mean was removed. */
-  push(power: Float32Array): void {
-    const classIndex = energyClass(sumOf(power, this.#firstActivityBin, power.length));
+  /**
+   * @param power bins 0 to N/2 - 1 of a frame that is not silent. Bin 0 is not used: the mean was removed.
+   * @param energy summed power from 1 kHz up, where that is known.
+   */
+  push(power: Float32Array, energy = sumOf(power, this.#firstActivityBin, power.length)): void {
+    const classIndex = energyClass(energy);
     // Frames overlap by half: every other one holds all samples once.
     const isCounted = this.#frames++ % 2 === 0;
     this.#tables.push(power, classIndex, isCounted);

@@ -23,12 +23,9 @@ export class PictureColumns {
   /** @param count rows of the next columns of level 0; a multiple of four, save the last ones of a segment. */
   push(rows: PowerRows, count: number): void {
     if (!this.#pyramid) return;
-    const { firstBin, endBin, layout } = this.#picture;
+    const { firstBin, endBin } = this.#picture;
     const range = { first: firstBin, end: endBin };
-    const codes = rows.encode({ firstRow: 0, endRow: count }, range, COLUMN_FACTOR);
-    for (let at = 0; at < codes.length; at += layout.bins) {
-      this.#pyramid.push(codes.subarray(at, at + layout.bins));
-    }
+    this.#pyramid.push(rows.encode({ firstRow: 0, endRow: count }, range, COLUMN_FACTOR));
   }
 
   finish(): void {

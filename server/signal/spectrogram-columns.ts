@@ -98,16 +98,18 @@ export function encodeColumn(
   for (let b = 0; b < bins; b++) codes[at + b] = codeOfPower[rowBits[b]! >>> 15]!;
 }
 
-/** Takes the finished columns of a level in order; `codes` is reused. */
+/** Takes the finished columns of a level in order, one or more at a time; `codes` is reused. */
 export type ColumnSink = (level: number, codes: Uint8Array) => void;
 
 /** Levels 1 and up of a picture: each column is the maximum of four of the level below, so that no click vanishes. */
 export class ColumnPyramid {
+  readonly #bins: number;
   readonly #sink: ColumnSink;
   readonly #open: { codes: Uint8Array; parts: number }[];
 
   /** @param levels how many, level 0 counted; each column of the highest lies in the segment. */
   constructor(bins: number, levels: number, sink: ColumnSink) {
+    this.#bins = bins;
     this.#sink = sink;
     this.#open = Array.from({ length: Math.max(0, levels - 2) }, () => ({
       codes: new Uint8Array(bins),
@@ -115,10 +117,10 @@ export class ColumnPyramid {
     }));
   }
 
-  /** @param codes the next column of level 1. */
+  /** @param codes the next columns of level 1. */
   push(codes: Uint8Array): void {
     this.#sink(1, codes);
-    this.#merge(2, codes);
+    for (let at = 0; at < codes.length; at += this.#bins) this.#merge(2, codes, at);
   }
 
   finish(): void {
@@ -127,11 +129,14 @@ export class ColumnPyramid {
     }
   }
 
-  #merge(level: number, codes: Uint8Array): void {
+  #merge(level: number, codes: Uint8Array, at: number): void {
     const open = this.#open[level - 2];
     if (!open) return;
     const kept = open.codes;
-    for (let b = 0; b < kept.length; b++) if (codes[b]! > kept[b]!) kept[b] = codes[b]!;
+    for (let b = 0; b < kept.length; b++) {
+      const code = codes[at + b]!;
+      if (code > kept[b]!) kept[b] = code;
+    }
     open.parts++;
     if (open.parts === COLUMN_FACTOR) this.#emit(level);
   }
@@ -139,7 +144,7 @@ export class ColumnPyramid {
   #emit(level: number): void {
     const open = this.#open[level - 2]!;
     this.#sink(level, open.codes);
-    this.#merge(level + 1, open.codes);
+    this.#merge(level + 1, open.codes, 0);
     open.codes.fill(0);
     open.parts = 0;
   }
