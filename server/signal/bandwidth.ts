@@ -20,6 +20,7 @@ const LOWEST_EDGE_HZ = 2000;
 const HIGHEST_EDGE_OF_RATE = 0.45;
 /** Below this there is no noise to judge by: digital silence, or the rounding of the transform. */
 const LEAST_FLOOR_DB = -185;
+const EDGE_RESOLUTION_HZ = 100;
 const TRANSITION = 2 ** (1 / 24);
 const NEIGHBOURHOOD = 2 ** (1 / 4);
 const LOSSY_HZ = { low: 15_000, high: 20_600 };
@@ -122,8 +123,13 @@ export function causesOfEdge(
   return { mayBeLossy: edgeHz >= LOSSY_HZ.low && edgeHz <= LOSSY_HZ.high, olderHz };
 }
 
+/** The lines of a long frame lie about 100 Hz apart: no more digits than that. */
+export function edgeText(edgeHz: number): string {
+  return frequencyText(Math.round(edgeHz / EDGE_RESOLUTION_HZ) * EDGE_RESOLUTION_HZ);
+}
+
 function edgeSentence(edgeHz: number, sampleRateHz: number): string {
-  const found = `The noise floor ends at ${frequencyText(edgeHz)}, below the ${frequencyText(sampleRateHz / 2)} that the sample rate allows.`;
+  const found = `The noise floor ends at ${edgeText(edgeHz)}, below the ${frequencyText(sampleRateHz / 2)} that the sample rate allows.`;
   const { mayBeLossy, olderHz } = causesOfEdge(edgeHz, sampleRateHz);
   if (mayBeLossy) {
     return `${found} Such an edge near 16 to 20 kHz is what lossy compression leaves${olderHz ? `, or conversion from ${frequencyText(olderHz)}` : ''}. Whatever sounded higher is gone.`;

@@ -1,6 +1,6 @@
 import { durationText, frequencyText } from '../../shared/audio/unit-text.ts';
 import type { AudioFormat, Bandwidth, Place, QualityFinding } from '../../shared/contract/measurement.ts';
-import { causesOfEdge } from './bandwidth.ts';
+import { causesOfEdge, edgeText } from './bandwidth.ts';
 import type { ChannelContent } from './channel-content.ts';
 import type { AlikeChannels } from './channel-likeness.ts';
 import { counted, finding, MAXIMUM_PLACES } from './quality-finding.ts';
@@ -60,7 +60,7 @@ function bandFindings({ bandwidth, format, sensorHighHz }: ContentFacts): Qualit
   if (bandwidth.edge === 'none') return [];
   const { effectiveHz, reason } = bandwidth;
   if (sensorHighHz !== null && isNear(effectiveHz, sensorHighHz)) {
-    const sentence = `The noise floor ends at ${frequencyText(effectiveHz)}, about where the stated band of the sensor does (${frequencyText(sensorHighHz)}).`;
+    const sentence = `The noise floor ends at ${edgeText(effectiveHz)}, about where the stated band of the sensor does (${frequencyText(sensorHighHz)}).`;
     return [finding('band-limited', 'note', sentence, 1)];
   }
   const { mayBeLossy, olderHz } = causesOfEdge(effectiveHz, format.sampleRateHz);

@@ -1,4 +1,5 @@
 import { frequencyText } from '../../shared/audio/unit-text.ts';
+import { edgeText } from './bandwidth.ts';
 import { HEARING_LINE_HZ } from './hearing-line.ts';
 
 /** What limits the view of a recording above 20 kHz. */
@@ -55,7 +56,7 @@ function upperLimit({ sampleRateHz, sensorHighHz, floorEdgeHz }: BandLimits): { 
     limits.push({ hz: sensorHighHz, cause: `the sensor's band ends at ${frequencyText(sensorHighHz)}` });
   }
   if (floorEdgeHz !== null) {
-    const edge = frequencyText(Math.round(floorEdgeHz));
+    const edge = edgeText(floorEdgeHz);
     limits.push({
       hz: floorEdgeHz,
       cause: `the noise floor itself ends at ${edge}, as behind a filter or a codec`,

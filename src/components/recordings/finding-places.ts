@@ -1,6 +1,6 @@
 import type { Place, QualityFinding } from '@shared/contract/measurement.ts';
 import type { Recording } from '@shared/contract/recordings.ts';
-import { formatClock } from '@/composables/useFormat.ts';
+import { formatClock, formatSeconds } from '@/composables/useFormat.ts';
 
 type Facts = Pick<Recording, 'id' | 'frames' | 'sampleRateHz' | 'channels'>;
 
@@ -12,6 +12,13 @@ interface PlaceLink {
 /** Some time around a place, so that it is seen in what it cuts into. */
 const leastMarginS = 0.05;
 const marginInDurations = 1;
+
+const minuteS = 60;
+const decimals = 2;
+
+function timeText(seconds: number): string {
+  return seconds < minuteS ? formatSeconds(seconds, decimals) : formatClock(seconds);
+}
 
 /** A finding about the whole recording has no place of its own. */
 function placesWithin(finding: QualityFinding, { frames }: Pick<Facts, 'frames'>): Place[] {
@@ -28,7 +35,7 @@ export function placeLinks(finding: QualityFinding, recording: Facts): PlaceLink
     );
     const from = Math.max(0, startSample - margin);
     const to = Math.min(frames, endSample + margin);
-    const at = `at ${formatClock(startSample / sampleRateHz)}${channels > 1 ? `, channel ${channel}` : ''}`;
+    const at = `at ${timeText(startSample / sampleRateHz)}${channels > 1 ? `, channel ${channel}` : ''}`;
     const seen = (names.get(at) ?? 0) + 1;
     names.set(at, seen);
     const name = seen > 1 ? `${at} (${seen})` : at;

@@ -94,6 +94,14 @@ describe('the effective bandwidth of files of real codecs and converters', () =>
     expect(found.edge).toBe(isTold ? 'brick-wall' : 'none');
   });
 
+  it('is told to 100 Hz, which is as fine as the frames are', () => {
+    const stepHz = 93.75;
+    const frequenciesHz = Array.from({ length: 255 }, (_, k) => (k + 1) * stepHz);
+    const floorDbPerHz = frequenciesHz.map((hz) => (hz < 16_100 ? -100 : -160));
+    const { reason } = findBandwidth({ sampleRateHz: 48_000, frequenciesHz, floorDbPerHz });
+    expect(reason).toContain('ends at 16 kHz');
+  });
+
   it('is known of codecs of every kind, of converters and of files that nothing was done to', () => {
     for (const words of ['mp3', 'aac', 'opus', 'vorbis', 'Hz to 192000 Hz', 'quiet', 'nothing done']) {
       expect(codecs.some(({ name }) => name.includes(words))).toBe(true);
