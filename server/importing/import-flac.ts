@@ -20,8 +20,8 @@ export async function importFlac(
   writer: WavFileWriter,
   { onProgress, signal }: ImportControls,
 ): Promise<string[]> {
-  const { bitsPerSample, channels, frames } = header.format;
-  const stream = { bitsPerSample, channels, maxBlockFrames: header.maxBlockFrames };
+  const { sampleRateHz, bitsPerSample, channels, frames } = header.format;
+  const stream = { sampleRateHz, bitsPerSample, channels, maxBlockFrames: header.maxBlockFrames };
   const { size } = await stat(filePath);
   const md5 = createHash('md5');
   try {

@@ -1,15 +1,34 @@
 /** What the frame headers of one FLAC file have in common, as its first block tells it. */
-export type FlacStream = { bitsPerSample: number; channels: number; maxBlockFrames: number };
+export type FlacStream = {
+  sampleRateHz: number;
+  bitsPerSample: number;
+  channels: number;
+  maxBlockFrames: number;
+};
 
 /** The samples that one FLAC frame holds, counted in frames of all channels. */
 export type FlacSpan = { startFrame: number; frames: number };
 
 const LONGEST_HEADER_BYTES = 16;
 const BITS_BY_CODE = [undefined, 8, 12, undefined, 16, 20, 24, 32];
+const HERTZ_BY_CODE = [
+  undefined,
+  88_200,
+  176_400,
+  192_000,
+  8000,
+  16_000,
+  22_050,
+  24_000,
+  32_000,
+  44_100,
+  48_000,
+  96_000,
+];
 
 /**
  * The frame header (RFC 9639, 9.1) that begins at `at`; `undefined` where none does: no sync code, a wrong checksum, or another
- * width, number of channels or length than the file's. Chance passes all of these about once in a thousand million places.
+ * rate, width, number of channels or length than the file's. Chance passes all of these about once in a thousand million places.
  */
 export function flacFrameAt(bytes: Uint8Array, at: number, stream: FlacStream): FlacSpan | undefined {
   const head = bytes.subarray(at, at + LONGEST_HEADER_BYTES);
@@ -18,7 +37,9 @@ export function flacFrameAt(bytes: Uint8Array, at: number, stream: FlacStream): 
   const number = codedNumber(head);
   const frames = number && blockFrames(head, number.end);
   if (!frames || frames.count > stream.maxBlockFrames) return undefined;
-  const end = frames.end + rateBytes(head[2]! & 0x0f);
+  const rate = frameRate(head, frames.end, stream.sampleRateHz);
+  if (rate.rateHz !== stream.sampleRateHz) return undefined;
+  const { end } = rate;
   if (end >= head.length || crc8(head.subarray(0, end)) !== head[end]) return undefined;
   const isVariable = (head[1]! & 1) === 1;
   const startFrame = isVariable ? number.value : number.value * stream.maxBlockFrames;
@@ -70,9 +91,14 @@ function blockFrames(head: Uint8Array, at: number): { count: number; end: number
   return { count: count + 1, end: at + bytes };
 }
 
-function rateBytes(code: number): number {
-  if (code === 12) return 1;
-  return code === 13 || code === 14 ? 2 : 0;
+/** Code 0 leaves the rate to the start of the file; 12 to 14 put it behind the header in kHz, Hz or tens of Hz. */
+function frameRate(head: Uint8Array, at: number, streamHz: number): { rateHz: number; end: number } {
+  const code = head[2]! & 0x0f;
+  if (code === 0) return { rateHz: streamHz, end: at };
+  if (code < 12) return { rateHz: HERTZ_BY_CODE[code]!, end: at };
+  if (code === 12) return { rateHz: (head[at] ?? 0) * 1000, end: at + 1 };
+  const number = (head[at] ?? 0) * 256 + (head[at + 1] ?? 0);
+  return { rateHz: code === 13 ? number : number * 10, end: at + 2 };
 }
 
 /** Polynomial x^8 + x^2 + x + 1, from zero. */

@@ -173,7 +173,10 @@ async function countFrames(
   const tail = from < source.sizeBytes ? await source.read(from, source.sizeBytes - from) : new Uint8Array(0);
   const last = lastFlacFrame(tail, info);
   if (!last)
-    throw new RefusedFileError('no-frames', 'The FLAC file holds not a single whole frame of audio.');
+    throw new RefusedFileError(
+      'no-frames',
+      'The FLAC file holds not a single whole frame of audio as its header describes it.',
+    );
   const present = last.startFrame + last.frames;
   const { totalFrames } = info;
   if (totalFrames === 0) return { frames: present, warnings: [] };

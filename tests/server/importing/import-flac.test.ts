@@ -76,3 +76,30 @@ function frameOffsets(bytes: Uint8Array): number[] {
   }
   return offsets;
 }
+
+describe('a FLAC file with one byte changed, anywhere', () => {
+  it('gives the same samples, those before a last block that is broken, or is refused', async () => {
+    const sound = manyBlocks();
+    const { samples } = await bring(sound, { layout: null });
+    let refused = 0;
+    // Each place of the stream info, then every 97th up to the end.
+    const places = Array.from({ length: sound.length }, (_, at) => at).filter(
+      (at) => at < 42 || at % 97 === 0,
+    );
+    for (const at of places) {
+      const bytes = sound.slice();
+      bytes[at]! ^= 0x24;
+      const outcome = await bring(bytes, { layout: null }).catch((error: Error) => error);
+      if (outcome instanceof Error) {
+        expect([at, outcome.name]).toEqual([at, 'RefusedFileError']);
+        refused++;
+      } else {
+        const { frames, sampleRateHz, warnings } = outcome.format;
+        const isCut = frames === 4 * 480 && warnings.length === 1;
+        const expected = isCut ? samples.map((channel) => channel.subarray(0, frames)) : samples;
+        expect([at, sampleRateHz, outcome.samples]).toEqual([at, 96_000, expected]);
+      }
+    }
+    expect(refused).toBeGreaterThan(places.length / 4);
+  }, 60_000);
+});

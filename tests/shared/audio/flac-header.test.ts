@@ -103,7 +103,7 @@ describe('FLAC files that are refused', () => {
 describe('the header of a frame', () => {
   /** RFC 9639, appendix D.1: a stereo frame of one sample in 16 bits, at byte 42 of the example. */
   const example = [0xff, 0xf8, 0x69, 0x18, 0x00, 0x00, 0xbf];
-  const stream = { bitsPerSample: 16, channels: 2, maxBlockFrames: 4096 };
+  const stream = { sampleRateHz: 44_100, bitsPerSample: 16, channels: 2, maxBlockFrames: 4096 };
 
   it('of the example of RFC 9639 is read', () => {
     const bytes = Uint8Array.from([...asciiBytes('some'), ...example, 0x03, 0x58]);
