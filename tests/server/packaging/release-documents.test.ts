@@ -148,6 +148,36 @@ describe('the tables', () => {
     );
   });
 
+  it('call a file what it came in as, and tell the layout that a file cannot tell itself', () => {
+    const layout = {
+      kind: 'raw',
+      encoding: 'signed',
+      bitsPerSample: 16,
+      byteOrder: 'big',
+      channels: 1,
+      sampleRateHz: 48_000,
+      headerBytes: 0,
+    } as const;
+    const files = documents((snapshot) => {
+      const [first, second] = snapshot.recordings;
+      first!.format.container = 'FLAC';
+      first!.fileName = `${first!.id}.flac`;
+      second!.format.container = 'raw';
+      Object.assign(second!, { fileName: `${second!.id}.raw`, layout });
+    });
+    const recordings = readTables(files).find((table) => table.name === 'recordings')!;
+    const cells = (column: string) => recordings.rows.map((row) => row[recordings.header.indexOf(column)]);
+    expect(cells('file_name').map((name) => name?.split('.').at(-1))).toEqual(['flac', 'raw', 'wav']);
+    expect(cells('declared_layout')).toEqual(['', JSON.stringify(layout), '']);
+    expect(tableFaults(recordings)).toEqual([]);
+    const audio = packageOf(files).resources.filter(({ name }) => name.startsWith('audio-'));
+    expect(audio.map((resource) => (resource as unknown as { mediatype: string }).mediatype)).toEqual([
+      'audio/flac',
+      'application/octet-stream',
+      'audio/vnd.wave',
+    ]);
+  });
+
   it('order events by file, start sample as a number, and id', () => {
     const files = documents((snapshot) => {
       const [first, second] = snapshot.events;
