@@ -16,6 +16,7 @@ export type FileRefusal =
   | 'damaged'
   | 'layout'
   | 'capture-set'
+  | 'non-finite'
   /** Could be brought in with a declared layout: a table of numbers, or raw samples. */
   | 'text'
   | 'unknown';

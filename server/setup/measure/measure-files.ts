@@ -2,7 +2,6 @@ import { mkdtemp, rm } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { basename, join } from 'node:path';
 import type { Writable } from 'node:stream';
-import { readWavHeader } from '../../../shared/audio/wav-header.ts';
 import { RefusedFileError } from '../../../shared/audio/refused-file-error.ts';
 import { createWorkerPool } from '../../jobs/worker-pool.ts';
 import type { MeasureResult } from '../../measuring/join-segments.ts';
@@ -12,8 +11,9 @@ import { measureInWorkers, measureWorkerModule } from '../../measuring/measure-i
 import type { MeasureInput } from '../../measuring/measure-plan.ts';
 import type { MeasureTask } from '../../measuring/measure.worker.ts';
 import { planSegments } from '../../measuring/segment-plan.ts';
-import { withFileSource } from '../../store/file-source.ts';
+import { nonFiniteRefusal } from '../../signal/non-finite.ts';
 import { writeJsonRefusal, writeJsonReport, writerTo } from './json-report.ts';
+import { openAudio } from './open-audio.ts';
 import { readOptions, USAGE, UsageError, type MeasureOptions } from './options.ts';
 import { progressLine } from './progress-line.ts';
 import { textReport } from './text-report.ts';
@@ -69,22 +69,24 @@ class Measuring {
   }
 
   async #measure({ name, path }: MeasureOptions['files'][number]): Promise<void> {
-    const header = await withFileSource(path, readWavHeader);
+    const { filePath, header, close } = await openAudio(path);
     const kept = this.#options.viewsDir;
     const folder = kept ?? (await mkdtemp(join(tmpdir(), 'recalesce-measure-')));
     const viewsDir = join(folder, basename(path));
     const progress = progressLine(this.#command.errors, name);
     try {
-      const input = { filePath: path, header, context: this.#options.context, viewsDir };
+      const input = { filePath, header, context: this.#options.context, viewsDir };
       const { signal } = this.#command;
       const result = await this.#runSteps(input, {
         onProgress: progress.show,
         ...(signal ? { signal } : {}),
       });
       progress.clear();
+      requireFinite(result);
       await this.#report(name, viewsDir, result);
     } finally {
       progress.clear();
+      await close();
       if (kept === null) await rm(folder, { recursive: true, force: true });
     }
   }
@@ -109,6 +111,12 @@ class Measuring {
     if (this.#options.isJson) await writeJsonReport(write, name, viewsDir, result);
     else await write(`${await textReport(name, result)}\n`);
   }
+}
+
+function requireFinite({ summary }: MeasureResult): void {
+  const counts = summary.levels.map(({ nonFiniteSamples }) => nonFiniteSamples);
+  const refusal = nonFiniteRefusal(counts, summary.format.frames);
+  if (refusal !== undefined) throw new RefusedFileError('non-finite', refusal);
 }
 
 const SYSTEM_SENTENCES: Record<string, string> = {

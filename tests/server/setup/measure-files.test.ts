@@ -7,6 +7,7 @@ import { describe, expect, it, onTestFinished } from 'vitest';
 import { detectedCandidateSchema, measurementSummarySchema } from '../../../shared/contract/measurement.ts';
 import { measureFiles } from '../../../server/setup/measure/measure-files.ts';
 import { readOptions, UsageError } from '../../../server/setup/measure/options.ts';
+import { fixtureBytes } from '../../support/wav/format-fixtures.ts';
 import { dampedSines, mix, whiteNoiseSignal } from '../../support/wav/signals.ts';
 import { writeWav } from '../../support/wav/write-wav.ts';
 
@@ -75,6 +76,31 @@ describe('the measure command', () => {
       .map((line) => JSON.parse(line) as { file: string; refused?: string });
     expect(lines.map((line) => line.file)).toEqual(['notes.wav', 'none.wav', 'click.wav']);
     expect(lines.map((line) => line.refused !== undefined)).toEqual([true, true, false]);
+  });
+
+  it('measures FLAC and capture sets as it measures WAV', async () => {
+    const folder = await folderWith({
+      'blocks.flac': fixtureBytes('ff-blocks.flac'),
+      'set.zip': fixtureBytes('captures.zip'),
+    });
+    const { exitCode, out } = await run(folder, '--json', 'blocks.flac', 'set.zip');
+    expect(exitCode).toBe(0);
+    const formats = out
+      .trim()
+      .split('\n')
+      .map((line) => measurementSummarySchema.parse(JSON.parse(line)).format);
+    expect(formats).toMatchObject([
+      { container: 'FLAC', frames: 2300, sampleRateHz: 96_000 },
+      { container: 'capture-set', frames: 480, sampleRateHz: 500_000, channels: 3 },
+    ]);
+  });
+
+  it('refuses a recording with more than a trace of samples that are no numbers', async () => {
+    const channels = [Float32Array.from({ length: 5000 }, (_, n) => (n < 6 ? NaN : Math.sin(n)))];
+    const bytes = writeWav({ sampleRateHz: RATE_HZ, channels, encoding: 'float', bitsPerSample: 32 });
+    const { exitCode, err } = await run(await folderWith({ 'nan.wav': bytes }), 'nan.wav');
+    expect(exitCode).toBe(2);
+    expect(err).toContain('6 of 5,000 samples are not a number or infinite');
   });
 
   it('says what is wrong with its command line, and explains itself', async () => {
