@@ -9,6 +9,8 @@ import { alternate, medianOf, ratiosOf, spreadOf } from '../bench/kit/ratios.ts'
 import { makeRecording } from '../bench/kit/recordings.ts';
 import { Scene } from '../bench/kit/scene.ts';
 import { tableLines } from '../bench/kit/table.ts';
+import { bandwidthRow } from '../bench/rows/bandwidth.ts';
+import { detectorRow } from '../bench/rows/detector.ts';
 
 describe('figures of several runs', () => {
   it('are told by their median, which of an even number lies between the middle two', () => {
@@ -52,6 +54,51 @@ describe('the table of the bench', () => {
     expect(title).toMatch(/^what +ours +peer +ratio +must +reachable$/);
     expect(rows.map((row) => row.split(/\s{2,}/).at(-1))).toEqual(['holds', 'MISSED', '4 m']);
     expect(rows[0]!.indexOf('7 %')).toBe(rows[1]!.indexOf('3 s'));
+  });
+});
+
+describe('what the benchmarks of the detector print', () => {
+  const figures = (recall: string, precision: string, onsetUs: string) =>
+    `n 104  recall ${recall}  precision ${precision}  onset ${onsetUs} us   9.2 Msamples per CPU second`;
+
+  it('is held against what is asked for at that distance from the noise', () => {
+    const strong = '192 kHz, 25-76.8 kHz, 15-60 cycles, 15-15 dB ';
+    const row = detectorRow(strong + figures('0.990', '1.000', '34.0'));
+    expect(row).toMatchObject({
+      what: strong.trim(),
+      must: 'recall 0.98, precision 0.98, 50 us',
+      holds: true,
+    });
+    expect(detectorRow(strong + figures('0.970', '1.000', '34.0')).holds).toBe(false);
+    expect(detectorRow(strong + figures('0.990', '1.000', '51.0')).holds).toBe(false);
+    const weak = '192 kHz, 4-16 kHz, 60-200 cycles, 5-5 dB     ';
+    expect(detectorRow(weak + figures('0.662', '0.832', '145.8')).holds).toBe(false);
+    expect(detectorRow(weak + figures('0.662', '0.932', '145.8')).holds).toBe(true);
+  });
+
+  it('is held against finer onsets at half a megahertz', () => {
+    const line = `500 kHz, 4-16 kHz, 15-60 cycles, 15-40 dB    ${figures('1.000', '1.000', '34.0')}`;
+    expect(detectorRow(line)).toMatchObject({ must: 'recall 0.98, precision 0.98, 20 us', holds: false });
+  });
+
+  it('is held against recall alone where two clicks overlap, and against chance in noise alone', () => {
+    const pair = `48 kHz, 4-16 kHz, two clicks 1-3 ms apart    ${figures('0.921', '0.500', '400')}`;
+    expect(detectorRow(pair)).toMatchObject({ must: 'recall 0.9', holds: true });
+    const alone =
+      '48 kHz, hum and noise alone                  3 candidates in 600 s   16.2 Msamples per CPU second';
+    expect(detectorRow(alone)).toMatchObject({ what: '48 kHz, hum and noise alone', holds: false });
+    expect(detectorRow(alone.replace('3 candidates', '2 candidates')).holds).toBe(true);
+  });
+
+  it('says how far the bandwidth of a file is from where it ends', () => {
+    const line =
+      'aac 128 kbit/s                     found none        22050 Hz, expected  21735 Hz, error    315 Hz';
+    expect(bandwidthRow(line)).toMatchObject({
+      what: 'effective bandwidth: aac 128 kbit/s',
+      ours: 'found none 22050 Hz, expected 21735 Hz, error 315 Hz',
+      holds: true,
+    });
+    expect(bandwidthRow(line.replace(' 315', '-1315')).holds).toBe(false);
   });
 });
 

@@ -10,11 +10,11 @@ export const bandwidth: RowFamily = {
     const lines = await linesOf(bench, 'bandwidth-accuracy.ts');
     const missing = lines.find((line) => line.startsWith('Nothing was measured'));
     if (missing !== undefined) throw new MissingHereError(missing);
-    return lines.map(toRow);
+    return lines.map(bandwidthRow);
   },
 };
 
-function toRow(line: string): BenchRow {
+export function bandwidthRow(line: string): BenchRow {
   const [what = line, ...found] = line.trim().split(/\s+(?=found )/);
   const errorHz = Math.abs(numberAfter(line, /error\s+(-?[\d.]+) Hz/));
   return {

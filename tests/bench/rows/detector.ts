@@ -14,11 +14,11 @@ export const detector: RowFamily = {
   name: 'detector',
   about: 'how well clicks of known onset are found',
   async run(bench) {
-    return (await linesOf(bench, 'detector-accuracy.ts')).map(toRow);
+    return (await linesOf(bench, 'detector-accuracy.ts')).map(detectorRow);
   },
 };
 
-function toRow(line: string): BenchRow {
+export function detectorRow(line: string): BenchRow {
   const found = {
     recall: numberAfter(line, /recall ([\d.]+)/),
     precision: numberAfter(line, /precision ([\d.]+)/),
