@@ -93,6 +93,7 @@ function goRows(bench: Bench, page: PageActions): Row[] {
     else page.say(direction > 0 ? 'No mark after this' : 'No mark before this');
   };
   const nextCandidate = (direction: 1 | -1) => () => {
+    if (candidates.density.value) return page.say('Too many candidates in view: zoom in');
     const at = selectedCandidate.value?.onsetSample ?? markSample.value;
     const next = neighbour(candidates.candidates.value, (one) => one.onsetSample, at, direction);
     if (next) bench.selectCandidate(next);
