@@ -1,11 +1,10 @@
 import type { Locator, Page } from 'playwright-core';
-import { describe, expect, inject } from 'vitest';
+import { describe, expect } from 'vitest';
 import { checkAxe } from '../support/browser/axe.ts';
+import { bringIn } from '../support/browser/bring-in.ts';
 import { signIn } from '../support/browser/sign-in.ts';
 import { takeScreenshot } from '../support/browser/screenshot.ts';
 import { test } from '../support/browser/test.ts';
-import { whiteNoiseSignal } from '../support/wav/signals.ts';
-import { writeWav } from '../support/wav/write-wav.ts';
 
 async function openRecording(page: Page, fileName: string): Promise<void> {
   const answer = await page.request.get('/api/recordings?limit=200');
@@ -16,33 +15,8 @@ async function openRecording(page: Page, fileName: string): Promise<void> {
   await page.getByRole('heading', { name: 'What this file is' }).waitFor();
 }
 
-async function getJson<Body>(page: Page, address: string): Promise<Body> {
-  return (await (await page.request.get(address)).json()) as Body;
-}
-
-/** Sends a file long enough to be looked at while it is measured; resolves to the id of its recording. */
-async function bringIn(page: Page, fileName: string): Promise<string> {
-  type Items = { items: { id: string; labId: string; editable?: boolean }[] };
-  const run = (await getJson<Items>(page, '/api/runs')).items.find(({ editable }) => editable);
-  const setup = (await getJson<Items>(page, `/api/setups?labId=${run?.labId}`)).items[0];
-  const sampleRateHz = 192_000;
-  const channels = [whiteNoiseSignal(30 * sampleRateHz, 0.01, 11)];
-  const buffer = Buffer.from(writeWav({ sampleRateHz, channels }));
-  const { origin } = inject('demoServer');
-  const answer = await page.request.post(`/api/runs/${run?.id}/recordings`, {
-    headers: { Origin: origin, 'Sec-Fetch-Site': 'same-origin' },
-    multipart: {
-      setupId: setup?.id ?? '',
-      licence: 'CC-BY-4.0',
-      file: { name: fileName, mimeType: 'audio/wav', buffer },
-    },
-  });
-  expect(answer.status(), await answer.text()).toBe(201);
-  return ((await answer.json()) as { recording: { id: string } }).recording.id;
-}
-
 function candidateRows(page: Page): Locator {
-  return page.getByRole('group', { name: 'Candidates' }).locator('tbody tr');
+  return page.getByRole('grid', { name: 'Candidates' }).locator('[data-rank]');
 }
 
 /** Colours in the canvas of a plot: one that drew nothing has a single one. */
@@ -68,6 +42,7 @@ describe('the page of a recording', () => {
       await page.getByRole('heading', { level: 1, name: /candidates, .*hearing line/ }).waitFor();
       await page.getByText('as this sensor sees it').first().waitFor();
       expect(await coloursDrawn(page, /^Power density over frequency/)).toBeGreaterThan(5);
+      expect(await coloursDrawn(page, /^Noise floor by third octaves/)).toBeGreaterThan(5);
       expect(await coloursDrawn(page, /^Level through the recording/)).toBeGreaterThan(2);
       expect(await coloursDrawn(page, /^Candidates per step/)).toBeGreaterThan(2);
       await candidateRows(page).first().waitFor();
@@ -84,6 +59,33 @@ describe('the page of a recording', () => {
     await checkAxe(page);
   });
 
+  test('draws median, mean and maximum of the spectrum when asked, by keyboard too', async ({ page }) => {
+    await signIn(page, 'contributor');
+    await openRecording(page, 'coldstage_run-17.wav');
+    const before = await coloursDrawn(page, /^Power density over frequency/);
+    const median = page.getByRole('checkbox', { name: 'median' });
+    await median.focus();
+    await page.keyboard.press('Space');
+    await page.getByRole('checkbox', { name: 'mean' }).check();
+    await page.getByRole('checkbox', { name: 'maximum' }).check();
+    await expect.poll(() => coloursDrawn(page, /^Power density over frequency/)).not.toBe(before);
+    expect(await median.isChecked()).toBe(true);
+    await page.getByText('The bands as a table').click();
+    await page.getByRole('rowheader', { name: /^1\.6.kHz$/ }).waitFor();
+    await checkAxe(page);
+    await takeScreenshot(page, 'recording-curves');
+  });
+
+  test('leads from the place of a finding to the bench', async ({ page }) => {
+    await signIn(page, 'contributor');
+    await openRecording(page, 'coldstage_run-19_gain-too-high.wav');
+    const links = page.getByRole('list', { name: 'Places on the bench' }).getByRole('link');
+    expect(await links.first().getAttribute('href')).toMatch(/^\/bench\/[0-9a-f-]{36}\?from=\d+&to=\d+$/);
+    await page.getByText('places of cautions and faults').waitFor();
+    await checkAxe(page);
+    await takeScreenshot(page, 'recording-findings');
+  });
+
   test('filters and orders candidates in the address, and leads to their place on the bench', async ({
     page,
   }) => {
@@ -93,8 +95,13 @@ describe('the page of a recording', () => {
     await page.getByLabel('Hearing line').selectOption({ label: 'below it' });
     await page.waitForURL(/hearing=below/);
     await rows.filter({ hasText: 'above' }).first().waitFor({ state: 'detached' });
-    await page.getByLabel('Order').selectOption({ label: 'strongest first' });
-    await page.waitForURL(/order=strongest/);
+    await page.getByRole('button', { name: 'Over noise' }).click();
+    await page.waitForURL(/order=-snrDb/);
+    await page
+      .getByRole('columnheader', { name: 'Over noise' })
+      .and(page.locator('[aria-sort="descending"]'))
+      .waitFor();
+    await rows.first().getByRole('link').waitFor();
     const href = await rows.first().getByRole('link').getAttribute('href');
     expect(href).toMatch(/^\/bench\/[0-9a-f-]{36}\?from=\d+&to=\d+$/);
   });

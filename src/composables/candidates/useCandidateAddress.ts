@@ -27,10 +27,10 @@ export function useCandidateAddress() {
     () => Object.fromEntries(addressNames.map((name) => [name, read(name)])) as CandidateAddress,
   );
 
-  function change(part: Part): void {
+  async function change(part: Part): Promise<void> {
     underway.value = { ...underway.value, ...part };
     const kept = Object.entries({ ...route.query, ...underway.value }).filter(([, value]) => value !== '');
-    void router.replace({ query: Object.fromEntries(kept), hash: route.hash });
+    await router.replace({ query: Object.fromEntries(kept), hash: route.hash });
   }
 
   return { address, change };

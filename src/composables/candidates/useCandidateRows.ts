@@ -75,6 +75,13 @@ export function useCandidateRows({ recordingId, filters, sort }: CandidateRowsOp
     void settle();
   }
 
+  /** After another measurement the list is another one. */
+  function renew(): void {
+    const queryKey = ['candidates', recordingId.value];
+    queries.removeQueries({ queryKey, type: 'inactive' });
+    void queries.invalidateQueries({ queryKey });
+  }
+
   watch(list, () => (settled.value = range.value = { first: 0, last: 0 }), { flush: 'sync' });
   watch(
     loaded,
@@ -90,6 +97,7 @@ export function useCandidateRows({ recordingId, filters, sort }: CandidateRowsOp
     error: computed<unknown>(() => results.value.find(({ error }) => error)?.error ?? null),
     isLoading: computed(() => results.value.some(({ isFetching }) => isFetching)),
     show,
+    renew,
     retry: () => results.value.forEach((result) => void (result.error && result.refetch())),
   };
 }

@@ -134,7 +134,7 @@ describe('the table of candidates', () => {
     expect(inHand()).toEqual([String(count - 1)]);
     expect(document.activeElement?.getAttribute('data-rank')).toBe(String(count - 1));
     await table.get(`[data-rank="${count - 1}"]`).trigger('keydown', { key: 'Enter' });
-    expect(table.emitted('open')?.[0]).toMatchObject([{ id: `candidate-${count - 1}` }]);
+    expect(table.emitted('open')?.[0]).toMatchObject([{ id: `candidate-${count - 1}` }, count - 1]);
     table.unmount();
   });
 

@@ -1,0 +1,29 @@
+import type { Page } from 'playwright-core';
+import { expect, inject } from 'vitest';
+import { whiteNoiseSignal } from '../wav/signals.ts';
+import { writeWav } from '../wav/write-wav.ts';
+
+async function getJson<Body>(page: Page, address: string): Promise<Body> {
+  return (await (await page.request.get(address)).json()) as Body;
+}
+
+/** Sends a file long enough to be looked at while it is measured; resolves to the id of its recording. */
+export async function bringIn(page: Page, fileName: string): Promise<string> {
+  type Items = { items: { id: string; labId: string; editable?: boolean }[] };
+  const run = (await getJson<Items>(page, '/api/runs')).items.find(({ editable }) => editable);
+  const setup = (await getJson<Items>(page, `/api/setups?labId=${run?.labId}`)).items[0];
+  const sampleRateHz = 192_000;
+  const channels = [whiteNoiseSignal(30 * sampleRateHz, 0.01, 11)];
+  const buffer = Buffer.from(writeWav({ sampleRateHz, channels }));
+  const { origin } = inject('demoServer');
+  const answer = await page.request.post(`/api/runs/${run?.id}/recordings`, {
+    headers: { Origin: origin, 'Sec-Fetch-Site': 'same-origin' },
+    multipart: {
+      setupId: setup?.id ?? '',
+      licence: 'CC-BY-4.0',
+      file: { name: fileName, mimeType: 'audio/wav', buffer },
+    },
+  });
+  expect(answer.status(), await answer.text()).toBe(201);
+  return ((await answer.json()) as { recording: { id: string } }).recording.id;
+}
