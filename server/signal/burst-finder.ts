@@ -1,70 +1,67 @@
 import { OctaveTree } from './band-energy.ts';
+import { sineRateHz } from './chance-rate.ts';
+import { detectorBlockSamples, learningSamples, watchedOctaves } from './detector-plan.ts';
 import type { DetectorSettings } from './detector-settings.ts';
-import { type ActiveRegion, OctaveTrigger } from './octave-trigger.ts';
+import { type NoiseLevels, OctaveWatch } from './octave-watch.ts';
 import { type ChosenOnset, chooseOnsets } from './onset-choice.ts';
-import { findOnsets, type OnsetFound, searchLeadSamples } from './onset-search.ts';
+import { OnsetGroups } from './onset-groups.ts';
+import type { OnsetFound } from './onset-search.ts';
 import { SampleRing } from './sample-ring.ts';
+import { SureRate } from './sure-rate.ts';
 
-const LEAST_BLOCK_SAMPLES = 8192;
-const MOST_LEARNING_SAMPLES = 4_000_000;
+/** Sums that overlap fire together: so many of them are one candidate. */
+const OVERLAP = 4;
+const MOST_HELD_SAMPLES = 4 * 2 ** 20;
 const NEIGHBOUR_GAP_S = 0.005;
 const LONGEST_GROUP_S = 0.3;
-const AFTER_S = 0.01;
 const LEAD_S = 0.05;
-const ECHO_SHARE = 0.2;
-const LEAD_IN_CELLS = 24;
-
-/** A burst whose onset is decided, with the octave regions behind it. */
-export type FoundBurst = ChosenOnset;
+const LEAD_IN_CELLS = 12;
+/** Blocks of padding after the end that let filters and windows run out. */
+const MOST_TRAILING_BLOCKS = 64;
 
 /**
  * Finds the onsets of bursts in a stream of samples, with memory that does not depend on its length.
  *
- * Samples are taken in blocks of its own, so what is found does not depend on how the stream is cut.
+ * Samples are taken in blocks of its own, so what is found does not depend on how the stream is cut. The first samples are read
+ * twice: once to learn the noise.
  */
 export class BurstFinder {
   readonly ring: SampleRing;
   readonly #sampleRateHz: number;
   readonly #settings: DetectorSettings;
+  readonly #onBursts: (bursts: ChosenOnset[], nextSample: number) => void;
+  readonly #octaves: number;
+  readonly #groups: OnsetGroups;
+  readonly #sure: SureRate;
   readonly #tree: OctaveTree;
-  readonly #triggers: readonly OctaveTrigger[];
+  readonly #watches: readonly OctaveWatch[];
+  readonly #noise: NoiseLevels = { version: 0, levelAt: (frequencyHz) => this.#levelAt(frequencyHz) };
   readonly #block: Float32Array;
-  readonly #learningSamples: number;
-  readonly #onBursts: (bursts: FoundBurst[], nextSample: number) => void;
-  readonly #leadInBlocks: number;
   #head: Float32Array | null;
   #headCount = 0;
   #settledSample = 0;
   #inBlock = 0;
-  #processed = 0;
-  #regions: ActiveRegion[] = [];
+  #expectedByChance = 0;
 
   constructor(
     sampleRateHz: number,
     settings: DetectorSettings,
-    onBursts: (bursts: FoundBurst[], nextSample: number) => void,
+    onBursts: (bursts: ChosenOnset[], nextSample: number) => void,
   ) {
     this.#sampleRateHz = sampleRateHz;
     this.#settings = settings;
     this.#onBursts = onBursts;
-    const lowestHz = Math.min(settings.lowestHz, sampleRateHz / 16);
-    const octaves = Math.max(1, Math.round(Math.log2(sampleRateHz / 2 / lowestHz)));
-    this.#tree = new OctaveTree(sampleRateHz, octaves, LEAST_BLOCK_SAMPLES);
-    const highestHz = settings.highestShareOfRate * sampleRateHz;
-    this.#triggers = this.#tree.octaves.map(
-      (band) => new OctaveTrigger({ band, sampleRateHz, highestHz, settings }),
-    );
-    const testsPerSecond = this.#triggers.reduce((sum, trigger) => sum + trigger.testsPerSecond, 0);
-    for (const trigger of this.#triggers) trigger.setChance(settings.chanceRateHz / testsPerSecond);
-    this.#block = new Float32Array(this.#tree.blockSamples);
-    const lowest = this.#tree.octaves[octaves - 1];
-    this.#leadInBlocks = Math.ceil((LEAD_IN_CELLS * (lowest?.samplesPerCell ?? 1)) / this.#block.length);
-    this.#head = new Float32Array(this.#leadInBlocks * this.#block.length);
-    this.#learningSamples = Math.min(MOST_LEARNING_SAMPLES, settings.learningS * sampleRateHz);
-    const heldS = settings.longestBurstS + LONGEST_GROUP_S + LEAD_S + 2 * settings.longestWindowS;
-    this.ring = new SampleRing(
-      Math.ceil(this.#learningSamples + heldS * sampleRateHz + 4 * this.#block.length),
-    );
+    this.#octaves = watchedOctaves(sampleRateHz, settings);
+    this.#groups = new OnsetGroups(NEIGHBOUR_GAP_S * sampleRateHz, LONGEST_GROUP_S * sampleRateHz);
+    this.#sure = new SureRate(settings.sureMemoryS, settings.sureRateHz, sampleRateHz);
+    const burstS = settings.longestBurstS + 2 * LEAD_S;
+    this.#tree = this.#openTree(burstS);
+    this.#watches = this.#openWatches();
+    const { blockSamples } = this.#tree;
+    this.#block = new Float32Array(blockSamples);
+    this.#head = new Float32Array(learningSamples(sampleRateHz, settings));
+    const heldSamples = Math.ceil((burstS + LONGEST_GROUP_S) * sampleRateHz);
+    this.ring = new SampleRing(Math.min(MOST_HELD_SAMPLES, heldSamples) + 4 * blockSamples);
   }
 
   push(samples: Float32Array): void {
@@ -80,15 +77,87 @@ export class BurstFinder {
     this.#take(samples.subarray(count));
   }
 
-  /** Lets the filters settle on what leads smoothly into the first samples, so that these are not taken for a click. */
+  finish(): void {
+    if (this.#head) this.#begin();
+    if (this.#inBlock > 0) {
+      mirrorEnd(this.#block, this.#inBlock);
+      this.#processBlock(this.#inBlock);
+    }
+    let waiting = false;
+    for (const watch of this.#watches) waiting = watch.finish() || waiting;
+    const trailing = this.ring.read(this.ring.end - this.#block.length, this.ring.end).samples;
+    for (let block = 0; waiting && block < MOST_TRAILING_BLOCKS; block++) {
+      this.#block.set(block % 2 === 0 ? trailing.toReversed() : trailing);
+      this.#tree.process(this.#block);
+      for (const watch of this.#watches) this.#groups.add(watch.search(this.#noise, this.#mostByChanceHz()));
+      waiting = this.#watches.some((watch) => watch.isWaiting);
+    }
+    this.#settle(Infinity);
+  }
+
+  /** Onsets before this sample have all been handed on. */
+  get settledSample(): number {
+    return this.#settledSample;
+  }
+
+  /** Bursts that noise alone may have given so far, an upper bound. */
+  get expectedByChance(): number {
+    return this.#expectedByChance;
+  }
+
+  #openTree(heldS: number): OctaveTree {
+    return new OctaveTree({
+      sampleRateHz: this.#sampleRateHz,
+      octaves: this.#octaves,
+      blockSamples: detectorBlockSamples(this.#sampleRateHz, this.#settings),
+      heldSamples: Math.min(MOST_HELD_SAMPLES / 4, heldS * this.#sampleRateHz),
+    });
+  }
+
+  #openWatches(): OctaveWatch[] {
+    const settings = this.#settings;
+    const sampleRateHz = this.#sampleRateHz;
+    const watches = this.#tree.octaves.map(
+      (_, octave) =>
+        new OctaveWatch({
+          tree: this.#tree,
+          octave,
+          sampleRateHz,
+          settings,
+        }),
+    );
+    for (const { trigger } of watches)
+      trigger.setChance((OVERLAP * settings.chanceRateHz) / 2 / watches.length / trigger.testsPerSecond);
+    return watches;
+  }
+
+  /** Learns the noise of the first samples, then lets the filters settle on what leads smoothly into them. */
   #begin(): void {
     const head = (this.#head ?? new Float32Array(0)).subarray(0, this.#headCount);
     this.#head = null;
-    const leadIn = mirroredStart(head, this.#block.length * this.#leadInBlocks);
-    for (let at = 0; at < leadIn.length; at += this.#block.length) {
-      this.#tree.process(leadIn.subarray(at, at + this.#block.length));
+    const tree = this.#openTree(0);
+    const block = new Float32Array(tree.blockSamples);
+    for (let at = 0; at < head.length; at += block.length) {
+      const held = Math.min(block.length, head.length - at);
+      block.set(head.subarray(at, at + held));
+      if (held < block.length) mirrorEnd(block, held);
+      tree.process(block);
+      this.#watches.forEach((watch, k) => watch.learn(tree.octaves[k]?.energies, head.length));
     }
+    for (const watch of this.#watches) watch.trigger.floor.endLearning();
+    const lowest = this.#tree.octaves[this.#octaves - 1];
+    const blocks = Math.ceil((LEAD_IN_CELLS * (lowest?.samplesPerCell ?? 1)) / block.length);
+    const leadIn = mirroredStart(head, block.length * blocks);
+    for (let at = 0; at < leadIn.length; at += block.length) {
+      this.#tree.process(leadIn.subarray(at, at + block.length));
+    }
+    this.#tree.countFromHere();
     this.#take(head);
+  }
+
+  #levelAt(frequencyHz: number): number {
+    const octave = Math.floor(Math.log2(this.#sampleRateHz / 2 / frequencyHz));
+    return this.#watches[Math.max(0, octave)]?.trigger.levelAt(frequencyHz) ?? 0;
   }
 
   #take(samples: Float32Array): void {
@@ -101,76 +170,67 @@ export class BurstFinder {
     }
   }
 
-  finish(): void {
-    if (this.#head) this.#begin();
-    if (this.#inBlock > 0) {
-      mirrorEnd(this.#block, this.#inBlock);
-      this.#processBlock(this.#inBlock);
-    }
-    for (const trigger of this.#triggers) {
-      trigger.finish();
-      this.#regions.push(...trigger.takeRegions());
-    }
-    this.#settle(Infinity);
-  }
-
   /** @param held samples of the block that were recorded; the rest is padding. */
   #processBlock(held: number): void {
     this.ring.push(this.#block.subarray(0, held));
     this.#inBlock = 0;
     this.#tree.process(this.#block);
-    this.#processed += this.#block.length;
-    const learned = this.#processed >= this.#learningSamples;
+    for (const watch of this.#watches) {
+      watch.process(held);
+      if (watch.trigger.floor.takeChange()) this.#noise.version += 1;
+    }
     let decided = Infinity;
-    for (const trigger of this.#triggers) {
-      trigger.process(learned, held);
-      this.#regions.push(...trigger.takeRegions());
-      decided = Math.min(
-        decided,
-        trigger.openSinceSample() ?? trigger.decidedSamples(),
-        trigger.decidedSamples(),
-      );
+    const mostByChanceHz = this.#mostByChanceHz();
+    for (const watch of this.#watches) {
+      this.#groups.add(watch.search(this.#noise, mostByChanceHz));
+      decided = Math.min(decided, watch.decidedSample());
     }
     this.#settle(decided);
   }
 
-  /** Onsets before this sample have all been handed on. */
-  get settledSample(): number {
-    return this.#settledSample;
+  /** Rate in one octave above which noise gives nothing that could be believed or counted; what was before now may have grown. */
+  #mostByChanceHz(): number {
+    const { chanceShare, sureRateHz } = this.#settings;
+    return Math.max(sureRateHz, 2 * chanceShare * this.#sure.before(this.#settledSample)) / this.#octaves;
   }
 
-  /** Hands on the groups of overlapping regions that nothing still to come can join. */
-  #settle(decidedSamples: number): void {
-    const gap = NEIGHBOUR_GAP_S * this.#sampleRateHz;
-    const longest = LONGEST_GROUP_S * this.#sampleRateHz;
-    this.#regions.sort((a, b) => a.startSample - b.startSample || a.lowHz - b.lowHz);
-    const lead = LEAD_S * this.#sampleRateHz;
-    this.#settledSample = Math.min(decidedSamples, this.#regions[0]?.startSample ?? Infinity) - lead;
-    while (this.#regions.length > 0) {
-      const { count, endSample } = groupLength(this.#regions, gap);
-      const startSample = this.#regions[0]?.startSample ?? 0;
-      const overdue = this.#processed - startSample > longest + this.#learningSamples;
-      if (endSample + gap + AFTER_S * this.#sampleRateHz > decidedSamples && !overdue) return;
-      this.#finishGroup(this.#regions.splice(0, count), decidedSamples);
-      this.#settledSample = Math.min(decidedSamples, this.#regions[0]?.startSample ?? Infinity) - lead;
-    }
+  #settle(decidedSample: number): void {
+    const decided = Math.min(decidedSample, this.ring.end);
+    const groups = this.#groups.take(decidedSample);
+    groups.forEach((group, k) => {
+      const next = Math.min(decided, groups[k + 1]?.[0]?.startSample ?? this.#groups.earliestSample);
+      this.#finishGroup(group, next);
+    });
+    const settled = Math.min(decided, this.#groups.earliestSample) - LEAD_S * this.#sampleRateHz;
+    this.#countChance(settled);
+    this.#settledSample = Math.max(this.#settledSample, settled);
   }
 
-  #search(region: ActiveRegion): OnsetFound[] {
-    const lead = searchLeadSamples(region, this.#sampleRateHz);
-    const held = this.ring.read(region.startSample - lead, region.endSample + Math.ceil(lead / 2));
-    return findOnsets({ ...held, region, sampleRateHz: this.#sampleRateHz, settings: this.#settings });
+  #countChance(settledSample: number): void {
+    const { chanceRateHz, chanceShare } = this.#settings;
+    const seconds = Math.max(0, settledSample - this.#settledSample) / this.#sampleRateHz;
+    const weakHz = Math.max(chanceRateHz / 2, chanceShare * this.#sure.before(this.#settledSample));
+    this.#expectedByChance += seconds * (chanceRateHz / 2 + weakHz);
   }
 
-  #finishGroup(regions: readonly ActiveRegion[], decidedSamples: number): void {
-    const found: OnsetFound[] = [];
-    for (const region of [...regions].sort((x, y) => y.evidence - x.evidence)) {
-      const echo = found.find((onset) => isEchoOf(region, onset));
-      found.push(...(echo ? [inBandOf(region, echo)] : this.#search(region)));
-    }
+  #finishGroup(group: readonly OnsetFound[], nextSample: number): void {
     const separation = this.#settings.shortestSeparationS * this.#sampleRateHz;
-    const next = Math.min(decidedSamples, this.#regions[0]?.startSample ?? Infinity, this.ring.end);
-    this.#onBursts(chooseOnsets(found, separation, this.#sampleRateHz), next);
+    const chosen = chooseOnsets(group, separation, this.#sampleRateHz);
+    this.#onBursts(
+      chosen.filter((onset) => this.#isBelieved(onset)),
+      nextSample,
+    );
+  }
+
+  /** What noise gives too often counts only where surer bursts are frequent. */
+  #isBelieved({ sample, sine, onSineAlone }: ChosenOnset): boolean {
+    if (!sine || !onSineAlone) return true;
+    const { chanceRateHz, chanceShare, sureRateHz } = this.#settings;
+    const widthHz = this.#tree.octaves[sine.octave]?.lowHz ?? 0;
+    const byChanceHz = this.#octaves * sineRateHz(sine.statistic, widthHz);
+    const about = this.#sure.before(sample);
+    if (byChanceHz <= sureRateHz) this.#sure.add(sample);
+    return byChanceHz <= Math.max(chanceRateHz / 2, chanceShare * about);
   }
 }
 
@@ -193,26 +253,4 @@ function mirrorEnd(block: Float32Array, held: number): void {
     const at = back < held ? held - 1 - back : back - held + 1;
     block[n] = back < held ? 2 * centre - (block[at] ?? 0) : (block[at] ?? 0);
   }
-}
-
-/** Whether a region is what another octave hears of a far stronger burst, whose onset lies in its best window. */
-function isEchoOf(region: ActiveRegion, onset: OnsetFound): boolean {
-  const inside = onset.sample >= region.bestStartSample && onset.sample < region.bestEndSample;
-  return inside && region.evidence < ECHO_SHARE * onset.evidence;
-}
-
-function inBandOf(region: ActiveRegion, onset: OnsetFound): OnsetFound {
-  const { evidence, lowHz, highHz, endSample } = region;
-  return { ...onset, evidence, lowHz, highHz, regionEndSample: endSample };
-}
-
-function groupLength(regions: readonly ActiveRegion[], gap: number): { count: number; endSample: number } {
-  let endSample = regions[0]?.endSample ?? 0;
-  let count = 1;
-  for (; count < regions.length; count++) {
-    const region = regions[count];
-    if (!region || region.startSample > endSample + gap) break;
-    endSample = Math.max(endSample, region.endSample);
-  }
-  return { count, endSample };
 }

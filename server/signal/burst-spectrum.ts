@@ -41,7 +41,8 @@ export function burstSpectrum(
     noiseSamples && noiseSamples.length >= 16
       ? meanNoise(noiseSamples, length, size)
       : new Float64Array(size / 2 + 1);
-  const power = whole.map((value, bin) => Math.max(0, value - (noise[bin] ?? 0)));
+  const power = new Float64Array(whole.length);
+  for (let bin = 0; bin < power.length; bin++) power[bin] = Math.max(0, whole[bin]! - noise[bin]!);
   return { binHz: sampleRateHz / size, power, noise, valuesPerHz: (2 * length) / sampleRateHz };
 }
 
@@ -66,11 +67,13 @@ export function peakFrequencyHz(spectrum: BurstSpectrum, lowHz: number, highHz: 
  */
 export function centroidHz(spectrum: BurstSpectrum, lowHz: number, highHz: number): number | null {
   const { power, binHz } = spectrum;
-  const ampSpectrum = Float32Array.from(power, (value, bin) =>
-    bin * binHz < lowHz || bin * binHz > highHz ? 0 : Math.sqrt(value),
-  );
+  const first = Math.max(0, Math.ceil(lowHz / binHz));
+  const end = Math.min(power.length, Math.floor(highHz / binHz) + 1);
+  if (end <= first) return null;
+  const ampSpectrum = new Float32Array(end - first);
+  for (let bin = first; bin < end; bin++) ampSpectrum[bin - first] = Math.sqrt(power[bin]!);
   const bins = Meyda.featureExtractors.spectralCentroid({ ampSpectrum });
-  return Number.isFinite(bins) ? bins * binHz : null;
+  return Number.isFinite(bins) ? (first + bins) * binHz : null;
 }
 
 /**
@@ -87,22 +90,25 @@ export function energyAboutHearingLine(
   highHz: number,
 ): { below: number; above: number } | null {
   const { power, noise, binHz, valuesPerHz } = spectrum;
-  const excess = new Map<number, { burst: number; noise: number; lines: number }>();
-  for (let bin = Math.max(1, Math.ceil(lowHz / binHz)); bin < power.length && bin * binHz <= highHz; bin++) {
-    const half = Math.floor(2 * Math.log2((bin * binHz) / HEARING_LINE_HZ) + 1e-9);
-    const band = excess.get(half) ?? { burst: 0, noise: 0, lines: 0 };
-    band.burst += power[bin] ?? 0;
-    band.noise += noise[bin] ?? 0;
-    band.lines += 1;
-    excess.set(half, band);
-  }
+  const end = Math.min(power.length, Math.floor(highHz / binHz) + 1);
   let below = 0;
   let above = 0;
-  for (const [half, band] of excess) {
-    const values = Math.max(1, band.lines * binHz * valuesPerHz);
-    if (!(band.burst > 3 * Math.sqrt(2 / values) * band.noise)) continue;
-    if (half >= 0) above += band.burst;
-    else below += band.burst;
+  for (let bin = Math.max(1, Math.ceil(lowHz / binHz)); bin < end;) {
+    const half = Math.floor(2 * Math.log2((bin * binHz) / HEARING_LINE_HZ) + 1e-9);
+    const next = Math.min(
+      end,
+      Math.max(bin + 1, Math.ceil((HEARING_LINE_HZ * 2 ** ((half + 1) / 2)) / binHz - 1e-9)),
+    );
+    let burst = 0;
+    let noiseSum = 0;
+    const values = Math.max(1, (next - bin) * binHz * valuesPerHz);
+    for (; bin < next; bin++) {
+      burst += power[bin]!;
+      noiseSum += noise[bin]!;
+    }
+    if (!(burst > 3 * Math.sqrt(2 / values) * noiseSum)) continue;
+    if (half >= 0) above += burst;
+    else below += burst;
   }
   return below + above > 0 ? { below, above } : null;
 }
@@ -111,22 +117,27 @@ export function energyAboutHearingLine(
 function linePower(samples: Float32Array, size: number): Float64Array {
   const fft = realFft(size);
   const input = fft.input;
-  let mean = 0;
-  for (const value of samples) mean += value / samples.length;
-  const taper = Math.max(1, Math.floor(TAPER_SHARE * samples.length));
-  input.fill(0);
-  for (let n = 0; n < samples.length; n++) {
-    const edge = Math.min(n + 1, samples.length - n);
-    const weight = edge >= taper ? 1 : 0.5 - 0.5 * Math.cos((Math.PI * edge) / taper);
-    input[n] = weight * ((samples[n] ?? 0) - mean);
+  const count = samples.length;
+  let sum = 0;
+  for (let n = 0; n < count; n++) sum += samples[n]!;
+  const mean = sum / count;
+  for (let n = 0; n < count; n++) input[n] = samples[n]! - mean;
+  input.fill(0, count);
+  const taper = Math.max(1, Math.floor(TAPER_SHARE * count));
+  for (let edge = 1; edge < taper; edge++) {
+    const weight = 0.5 - 0.5 * Math.cos((Math.PI * edge) / taper);
+    input[edge - 1] = weight * input[edge - 1]!;
+    input[count - edge] = weight * input[count - edge]!;
   }
   fft.transform();
   const output = fft.output;
   const power = new Float64Array(size / 2 + 1);
-  power[0] = (output[0] ?? 0) ** 2 / size;
-  power[size / 2] = (output[1] ?? 0) ** 2 / size;
+  power[0] = output[0]! ** 2 / size;
+  power[size / 2] = output[1]! ** 2 / size;
   for (let bin = 1; bin < size / 2; bin++) {
-    power[bin] = (2 * ((output[2 * bin] ?? 0) ** 2 + (output[2 * bin + 1] ?? 0) ** 2)) / size;
+    const re = output[2 * bin]!;
+    const im = output[2 * bin + 1]!;
+    power[bin] = (2 * (re * re + im * im)) / size;
   }
   return power;
 }
@@ -139,9 +150,8 @@ function meanNoise(noise: Float32Array, length: number, size: number): Float64Ar
   for (let k = 0; k < pieces; k++) {
     const end = noise.length - k * piece;
     const power = linePower(noise.subarray(end - piece, end), size);
-    for (let bin = 0; bin < mean.length; bin++) {
-      mean[bin] = (mean[bin] ?? 0) + ((power[bin] ?? 0) * length) / piece / pieces;
-    }
+    const scale = length / piece / pieces;
+    for (let bin = 0; bin < mean.length; bin++) mean[bin] = mean[bin]! + scale * power[bin]!;
   }
   return mean;
 }

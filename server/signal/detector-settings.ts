@@ -1,5 +1,5 @@
 /** Changed whenever the same samples could give other candidates. */
-export const detectorVersion = 'band-split-1';
+export const detectorVersion = 'band-split-2';
 
 /** All that decides what the detector finds; stored with its results. */
 export interface DetectorSettings {
@@ -9,6 +9,12 @@ export interface DetectorSettings {
   readonly highestShareOfRate: number;
   /** Candidates per second that steady noise alone may give, over all bands. */
   readonly chanceRateHz: number;
+  /** Share of the bursts about that may be chance where weaker ones are believed. */
+  readonly chanceShare: number;
+  /** Time before a place over which bursts are counted for that. */
+  readonly sureMemoryS: number;
+  /** A burst counts there where noise gives such more rarely than this, in candidates per second. */
+  readonly sureRateHz: number;
   /** Longest time over which energy is summed. */
   readonly longestWindowS: number;
   /** Quiet time that ends a burst. */
@@ -31,6 +37,9 @@ export const defaultDetectorSettings: DetectorSettings = {
   lowestHz: 1000,
   highestShareOfRate: 0.45,
   chanceRateHz: 1 / 600,
+  chanceShare: 0.05,
+  sureMemoryS: 3,
+  sureRateHz: 0.1,
   longestWindowS: 0.02,
   quietGapS: 0.0005,
   longestBurstS: 0.1,

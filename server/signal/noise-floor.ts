@@ -1,6 +1,9 @@
 /** 1 / (inverse normal distribution at 0.75): turns a median absolute deviation into a standard deviation. */
 export const MAD_TO_SIGMA = 1.482602218505602;
 
+/** The normal distribution's lower quartile. */
+const LOWER_QUARTILE = -0.674489750196082;
+
 /**
  * Median of a set, the mean of the middle two for an even number; NaN for none.
  * Cost: a sort of a copy.
@@ -43,8 +46,8 @@ export function sigmaFromEnvelope(envelope: Float32Array | Float64Array): number
  */
 export class RunningFloor {
   readonly #means: Float64Array;
-  readonly #sorted: Float64Array;
-  readonly #correction: number;
+  readonly #scratch: Float64Array;
+  readonly #valuesPerBlock: number;
   #held = 0;
   #next = 0;
 
@@ -54,8 +57,8 @@ export class RunningFloor {
    */
   constructor(blocks: number, valuesPerBlock: number) {
     this.#means = new Float64Array(blocks);
-    this.#sorted = new Float64Array(blocks);
-    this.#correction = (1 - 2 / (9 * valuesPerBlock)) ** 3;
+    this.#scratch = new Float64Array(blocks);
+    this.#valuesPerBlock = valuesPerBlock;
   }
 
   get blocks(): number {
@@ -68,13 +71,71 @@ export class RunningFloor {
     this.#held = Math.min(this.#held + 1, this.#means.length);
   }
 
-  /** The mean noise power (0 before the first block), and the block mean at 84 % over the one at 50 %. Cost: a sort. */
-  read(): { level: number; upperSpread: number } {
-    const sorted = this.#sorted.subarray(0, this.#held);
-    sorted.set(this.#means.subarray(0, this.#held));
-    sorted.sort();
-    const middle = sorted[Math.floor(0.5 * (this.#held - 1) + 0.5)] ?? 0;
-    const upper = sorted[Math.floor(0.84 * (this.#held - 1) + 0.5)] ?? 0;
-    return { level: middle / this.#correction, upperSpread: middle > 0 ? upper / middle : 1 };
+  /** Makes every block mean that of a noise power, as if it had been so for ever. */
+  fill(level: number): void {
+    this.#means.fill(level * quantileOfMean(0.5, this.#valuesPerBlock));
+    this.#held = this.#means.length;
   }
+
+  /** The mean noise power by a lower quantile of the block means, 0 before the first block. Cost: a few passes. */
+  quantile(share: 0.25 | 0.5): number {
+    return this.#select(share) / quantileOfMean(share, this.#valuesPerBlock);
+  }
+
+  /** The mean noise power by the median of the block means, 0 before the first block. Cost: a few passes. */
+  read(): { level: number } {
+    return { level: this.quantile(0.5) };
+  }
+
+  /** The block mean at 84 %: one standard deviation over the middle for normal values. Cost: a few passes. */
+  upper(): number {
+    return this.#select(0.84);
+  }
+
+  /** Mean of the last block means, of at most as many as there are; 0 before the first. */
+  recentMean(count: number): number {
+    const blocks = Math.min(count, this.#held);
+    const size = this.#means.length;
+    let sum = 0;
+    for (let k = 1; k <= blocks; k++) sum += this.#means[(this.#next - k + size) % size]!;
+    return blocks > 0 ? sum / blocks : 0;
+  }
+
+  #select(share: number): number {
+    const held = this.#held;
+    if (held === 0) return 0;
+    for (let k = 0; k < held; k++) this.#scratch[k] = this.#means[k]!;
+    return select(this.#scratch, held, Math.floor(share * (held - 1) + 0.5));
+  }
+}
+
+/** The value that would stand at `rank` if the first `count` were sorted; changes their order (Hoare 1961, CACM 4:321). */
+function select(values: Float64Array, count: number, rank: number): number {
+  let low = 0;
+  let high = count - 1;
+  while (low < high) {
+    const pivot = values[rank]!;
+    let left = low;
+    let right = high;
+    while (left <= right) {
+      while (values[left]! < pivot) left += 1;
+      while (pivot < values[right]!) right -= 1;
+      if (left > right) break;
+      const kept = values[left]!;
+      values[left] = values[right]!;
+      values[right] = kept;
+      left += 1;
+      right -= 1;
+    }
+    if (right < rank) low = left;
+    if (rank < left) high = right;
+  }
+  return values[rank]!;
+}
+
+/** Quantile of the mean of n squared normal values of variance 1 (Wilson and Hilferty), for shares of a quarter and a half. */
+function quantileOfMean(share: 0.25 | 0.5, values: number): number {
+  const spread = 2 / (9 * values);
+  const normal = share === 0.5 ? 0 : LOWER_QUARTILE;
+  return (1 - spread + normal * Math.sqrt(spread)) ** 3;
 }

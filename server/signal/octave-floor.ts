@@ -1,134 +1,236 @@
-import { BANDS_PER_OCTAVE } from './band-energy.ts';
+import { BANDS_PER_OCTAVE, VALUES_PER_CELL } from './band-energy.ts';
 import { RunningFloor } from './noise-floor.ts';
 
-const BLOCK_S = 0.008;
-const BLOCK_CELLS = 8;
-const FEWEST_BLOCKS = 32;
-const MOST_BLOCKS = 128;
-const BLOCKS_PER_UPDATE = 16;
+const LEAST_CELLS = 4;
+const BLOCKS = 32;
+const BLOCKS_PER_READING = 8;
+/** Values whose mean follows noise that grows. */
+const LEAST_SHORT_VALUES = 128;
 const LEAST_QUIET_SHARE = 0.25;
 const SMALLEST_FLOOR = 1e-16;
 const LEAST_BLOCKS_FOR_SPREAD = 16;
+/** Parts of the longest burst of which the quiet ones tell what the background has become. */
+const RECENT_PARTS = 32;
+const RECENT_QUANTILE = 0.25;
+/** A floor learned anew may be so many standard errors too low. */
+const RELEARNED_ERRORS = 3;
+
+export interface FloorOptions {
+  readonly leaves: number;
+  readonly cellS: number;
+  readonly memoryS: number;
+  readonly longestBurstS: number;
+}
 
 /**
  * The running floors of one octave's sub-bands.
  *
- * A floor is raised by its own statistical error and, where its block means spread wider than those of steady noise, by
+ * A floor is the median of the last second, or the mean of the last few blocks where that is more: noise that grows is followed
+ * at once. It is raised by its own statistical error and, where the blocks still spread wider about it than those of steady noise, by
  * the square of that excess: unsteady noise then gives no more chance candidates than steady noise does.
  */
 export class OctaveFloor {
   /** Noise power of each sub-band. */
-  readonly levels = new Float64Array(BANDS_PER_OCTAVE);
+  readonly levels = new Float64Array(BANDS_PER_OCTAVE).fill(SMALLEST_FLOOR);
   /** What turns a cell's energy into multiples of the raised floor. */
   readonly gains = new Float64Array(BANDS_PER_OCTAVE);
   readonly #leaves: number;
   readonly #floors: readonly RunningFloor[];
-  readonly #sums = new Float64Array(BANDS_PER_OCTAVE);
+  /** Block means over the floor at the time. */
+  readonly #ratios: readonly RunningFloor[];
+  readonly #raises = new Float64Array(BANDS_PER_OCTAVE).fill(1);
+  readonly #shortBlocks: number;
+  readonly #recent: readonly RunningFloor[];
+  readonly #cellsPerPart: number;
   readonly #cellsPerBlock: number;
+  readonly #partSums = new Float64Array(BANDS_PER_OCTAVE);
+  readonly #quietSums = new Float64Array(BANDS_PER_OCTAVE);
+  #partCells = 0;
   #blockCells = 0;
   #quietCells = 0;
   #blocks = 0;
-  #isDue = false;
+  #isChanged = false;
+  #learning: { readonly perBlock: number; readonly floors: readonly RunningFloor[]; held: number } | null =
+    null;
 
-  constructor(leaves: number, cellS: number, memoryS: number) {
+  constructor({ leaves, cellS, memoryS, longestBurstS }: FloorOptions) {
     this.#leaves = leaves;
-    this.#cellsPerBlock = Math.max(BLOCK_CELLS, Math.round(BLOCK_S / cellS));
-    const wanted = Math.ceil(memoryS / (this.#cellsPerBlock * cellS));
-    const blocks = Math.min(MOST_BLOCKS, Math.max(FEWEST_BLOCKS, wanted));
-    this.#floors = Array.from({ length: leaves }, () => new RunningFloor(blocks, this.#cellsPerBlock));
-  }
-
-  /** Sets the floors from the first cells of a stream, before anything is decided. */
-  learn(blocks: readonly Float64Array[]): void {
-    const cells = blocks.reduce((sum, energies) => sum + energies.length / BANDS_PER_OCTAVE, 0);
-    // A short recording is cut into fewer cells per block, so that the median has blocks to choose from.
-    const perBlock = Math.max(1, Math.min(this.#cellsPerBlock, cells >> 4));
-    const floors = this.#floors.map(
-      () => new RunningFloor(Math.max(1, Math.ceil(cells / perBlock)), perBlock),
+    this.#cellsPerPart = powerOfTwo(longestBurstS / RECENT_PARTS / cellS);
+    this.#cellsPerBlock = Math.max(LEAST_CELLS, powerOfTwo(memoryS / BLOCKS / cellS));
+    const perBlock = VALUES_PER_CELL * this.#cellsPerBlock;
+    this.#floors = Array.from({ length: leaves }, () => new RunningFloor(BLOCKS, perBlock));
+    this.#ratios = Array.from({ length: leaves }, () => new RunningFloor(BLOCKS, perBlock));
+    this.#shortBlocks = Math.min(BLOCKS, Math.max(2, Math.ceil(LEAST_SHORT_VALUES / perBlock)));
+    const parts = Math.max(
+      8,
+      Math.min(RECENT_PARTS, Math.floor(longestBurstS / (this.#cellsPerPart * cellS))),
     );
-    const sums = new Float64Array(this.#leaves);
-    let held = 0;
-    for (const energies of blocks) {
-      for (let at = 0; at < energies.length; at += BANDS_PER_OCTAVE) {
-        for (let leaf = 0; leaf < this.#leaves; leaf++)
-          sums[leaf] = (sums[leaf] ?? 0) + (energies[at + leaf] ?? 0);
-        if (++held < perBlock) continue;
-        floors.forEach((floor, leaf) => floor.push((sums[leaf] ?? 0) / perBlock));
-        sums.fill(0);
-        held = 0;
-      }
-    }
-    floors.forEach((floor, leaf) => this.#setLevel(leaf, floor, perBlock));
-  }
-
-  /** Takes the cell at `energies[at]`; only quiet cells move the floor. */
-  gather(energies: Float64Array, at: number, quiet: boolean): void {
-    if (quiet) {
-      const sums = this.#sums;
-      for (let leaf = 0; leaf < BANDS_PER_OCTAVE; leaf++)
-        sums[leaf] = (sums[leaf] ?? 0) + (energies[at + leaf] ?? 0);
-      this.#quietCells += 1;
-    }
-    this.#blockCells += 1;
-    if (this.#blockCells === this.#cellsPerBlock) this.#endBlock();
+    this.#recent = Array.from(
+      { length: leaves },
+      () => new RunningFloor(parts, VALUES_PER_CELL * this.#cellsPerPart),
+    );
   }
 
   /**
-   * Takes cells of which all are quiet, from running sums of gained energies over time and sub-bands.
-   * @param sums [row][sub-bands below]: row `firstRow - 1` stands before the first cell.
+   * Takes the energies [sub-band][value] of a block before anything is decided.
+   * @param valuesInAll values of each sub-band in all blocks that will be learned from.
    */
-  gatherQuiet(sums: Float64Array, firstRow: number, cells: number): void {
-    const width = BANDS_PER_OCTAVE + 1;
+  learn(energies: Float64Array, valuesInAll: number): void {
+    const count = energies.length / BANDS_PER_OCTAVE;
+    // A short recording is cut into smaller blocks, so that the median has some to choose from.
+    const perBlock = Math.max(1, Math.min(VALUES_PER_CELL * this.#cellsPerBlock, valuesInAll >> 4));
+    const most = Math.max(1, Math.ceil(valuesInAll / perBlock));
+    this.#learning ??= {
+      perBlock,
+      floors: this.#floors.map(() => new RunningFloor(most, perBlock)),
+      held: 0,
+    };
+    const { floors } = this.#learning;
+    let held = 0;
+    for (let leaf = 0; leaf < this.#leaves; leaf++) {
+      held = this.#learning.held;
+      let sum = this.#quietSums[leaf]!;
+      for (let n = leaf * count; n < (leaf + 1) * count; n++) {
+        sum += energies[n]!;
+        if (++held < perBlock) continue;
+        floors[leaf]?.push(sum / perBlock);
+        sum = 0;
+        held = 0;
+      }
+      this.#quietSums[leaf] = sum;
+    }
+    this.#learning.held = held;
+  }
+
+  /** Sets the floors from what was learned. */
+  endLearning(): void {
+    const learned = this.#learning;
+    this.#learning = null;
+    this.#quietSums.fill(0);
+    for (let leaf = 0; leaf < this.#leaves; leaf++) {
+      const floor = learned?.floors[leaf];
+      if (!floor) continue;
+      this.levels[leaf] = Math.max(SMALLEST_FLOOR, floor.quantile(0.5));
+      const upper = floor.blocks < LEAST_BLOCKS_FOR_SPREAD ? null : floor.upper() / this.levels[leaf]!;
+      this.#raises[leaf] = raiseOf(learned.perBlock, floor.blocks, upper);
+      this.gains[leaf] = 1 / (this.levels[leaf]! * this.#raises[leaf]!);
+    }
+  }
+
+  /**
+   * Takes some cells in a row from running sums of gained energies; only quiet ones move the floor.
+   * @param sums [sub-band] at multiples of `stride`; `before` is the place of the last sum before the cells.
+   */
+  gather(
+    sums: { values: Float64Array; stride: number },
+    before: number,
+    cells: number,
+    quiet: boolean,
+  ): void {
     for (let done = 0; done < cells;) {
-      const count = Math.min(cells - done, this.#cellsPerBlock - this.#blockCells);
-      const before = (firstRow - 1 + done) * width;
-      const after = before + count * width;
-      for (let leaf = 0; leaf < this.#leaves; leaf++) {
-        const upTo = (sums[after + leaf + 1] ?? 0) - (sums[before + leaf + 1] ?? 0);
-        const below = (sums[after + leaf] ?? 0) - (sums[before + leaf] ?? 0);
-        this.#sums[leaf] = (this.#sums[leaf] ?? 0) + (upTo - below) / (this.gains[leaf] ?? 1);
+      const count = Math.min(
+        cells - done,
+        this.#cellsPerPart - this.#partCells,
+        this.#cellsPerBlock - this.#blockCells,
+      );
+      for (let leaf = 0, at = before + done; leaf < this.#leaves; leaf++, at += sums.stride) {
+        const sum = (sums.values[at + count]! - sums.values[at]!) / this.gains[leaf]!;
+        this.#partSums[leaf] = this.#partSums[leaf]! + sum;
+        if (quiet) this.#quietSums[leaf] = this.#quietSums[leaf]! + sum;
       }
       done += count;
+      this.#partCells += count;
       this.#blockCells += count;
-      this.#quietCells += count;
+      if (quiet) this.#quietCells += count;
+      if (this.#partCells === this.#cellsPerPart) this.#endPart();
       if (this.#blockCells === this.#cellsPerBlock) this.#endBlock();
     }
   }
 
+  /** Whether floors have changed since the last time it was asked. */
+  takeChange(): boolean {
+    const changed = this.#isChanged;
+    this.#isChanged = false;
+    return changed;
+  }
+
+  /**
+   * Takes what the last burst's quieter moments leave for the floor: what lasts longer than a burst is background. Between overlapping
+   * bursts the background is what a quarter of the time lies under.
+   */
+  relearn(): void {
+    this.#recent.forEach((recent, leaf) => {
+      const level = Math.max(recent.quantile(RECENT_QUANTILE), SMALLEST_FLOOR);
+      this.#floors[leaf]?.fill(level);
+      this.levels[leaf] = level;
+      this.#raises[leaf] =
+        1 + RELEARNED_ERRORS * relativeError(VALUES_PER_CELL * this.#cellsPerPart * recent.blocks);
+      this.gains[leaf] = 1 / (level * this.#raises[leaf]!);
+    });
+    this.#quietSums.fill(0);
+    this.#quietCells = 0;
+    this.#isChanged = true;
+  }
+
+  #endPart(): void {
+    this.#recent.forEach((recent, leaf) =>
+      recent.push(this.#partSums[leaf]! / (VALUES_PER_CELL * this.#partCells)),
+    );
+    this.#partSums.fill(0);
+    this.#partCells = 0;
+  }
+
   #endBlock(): void {
+    this.#blocks += 1;
     if (this.#quietCells >= LEAST_QUIET_SHARE * this.#blockCells) this.#pushBlock();
-    this.#sums.fill(0);
+    this.#quietSums.fill(0);
     this.#blockCells = 0;
     this.#quietCells = 0;
   }
 
+  /** Between two readings of the median the level changes by the short mean alone. */
   #pushBlock(): void {
-    this.#floors.forEach((floor, leaf) => floor.push((this.#sums[leaf] ?? 0) / this.#quietCells));
-    this.#blocks += 1;
-    this.#isDue ||= this.#blocks % BLOCKS_PER_UPDATE === 0 && this.#blocks >= FEWEST_BLOCKS;
-  }
-
-  /** Reads the floors anew where enough blocks have come since the last time; `gains` and `levels` change only here. */
-  renew(): void {
-    if (!this.#isDue) return;
-    this.#isDue = false;
-    this.#floors.forEach((floor, leaf) => this.#setLevel(leaf, floor, this.#cellsPerBlock));
-  }
-
-  #setLevel(leaf: number, floor: RunningFloor, valuesPerBlock: number): void {
-    const reading = floor.read();
-    const level = Math.max(SMALLEST_FLOOR, reading.level);
-    const relativeError = 1.25 * Math.sqrt(2 / (valuesPerBlock * Math.max(1, floor.blocks)));
-    const excess = reading.upperSpread / expectedUpperSpread(valuesPerBlock);
-    const unsteady =
-      floor.blocks >= LEAST_BLOCKS_FOR_SPREAD ? Math.max(1, excess / (1 + 2 * relativeError)) : 1;
-    this.levels[leaf] = level;
-    this.gains[leaf] = 1 / (level * (1 + relativeError) * unsteady * unsteady);
+    const isRead = this.#blocks % BLOCKS_PER_READING === 0;
+    const valuesPerBlock = VALUES_PER_CELL * this.#cellsPerBlock;
+    for (let leaf = 0; leaf < this.#leaves; leaf++) {
+      const floor = this.#floors[leaf]!;
+      const ratios = this.#ratios[leaf]!;
+      const mean = this.#quietSums[leaf]! / (VALUES_PER_CELL * this.#quietCells);
+      ratios.push(mean * this.gains[leaf]! * this.#raises[leaf]!);
+      floor.push(mean);
+      if (isRead && floor.blocks === BLOCKS) {
+        this.levels[leaf] = Math.max(SMALLEST_FLOOR, floor.quantile(0.5));
+        this.#raises[leaf] = raiseOf(
+          valuesPerBlock,
+          BLOCKS,
+          ratios.blocks === BLOCKS ? ratios.upper() : null,
+        );
+      }
+      const level = Math.max(this.levels[leaf]!, floor.recentMean(this.#shortBlocks));
+      this.gains[leaf] = 1 / (level * this.#raises[leaf]!);
+    }
+    this.#isChanged = true;
   }
 }
 
-/** The 84 % point over the median of the mean of n squared normal values (Wilson and Hilferty). */
-function expectedUpperSpread(valuesPerBlock: number): number {
+/** The nearest power of two, at least 1: what is counted from different beginnings then meets again. */
+function powerOfTwo(wanted: number): number {
+  return 2 ** Math.max(0, Math.round(Math.log2(wanted)));
+}
+
+function relativeError(values: number): number {
+  return 1.25 * Math.sqrt(2 / Math.max(1, values));
+}
+
+/** @param upper 84 % point of block means over the floor; `null` where there are too few of them. */
+function raiseOf(valuesPerBlock: number, blocks: number, upper: number | null): number {
+  const error = relativeError(valuesPerBlock * blocks);
+  const excess = upper === null ? 1 : upper / expectedUpper(valuesPerBlock);
+  return (1 + error) * Math.max(1, excess / (1 + 2 * error)) ** 2;
+}
+
+/** The 84 % point of the mean of n squared normal values (Wilson and Hilferty). */
+function expectedUpper(valuesPerBlock: number): number {
   const spread = 2 / (9 * valuesPerBlock);
-  return ((1 - spread + Math.sqrt(spread)) / (1 - spread)) ** 3;
+  return (1 - spread + Math.sqrt(spread)) ** 3;
 }

@@ -1,98 +1,91 @@
-import { BANDS_PER_OCTAVE, type OctaveBand } from './band-energy.ts';
+import type { ActiveRegion } from './active-region.ts';
+import { BANDS_PER_OCTAVE, type OctaveBand, VALUES_PER_CELL } from './band-energy.ts';
+import { CellSums, PAST_CELLS } from './cell-sums.ts';
 import { chiSquareThreshold } from './chi-square.ts';
 import type { DetectorSettings } from './detector-settings.ts';
-import { type EnergyTest, planEnergyTests } from './energy-tests.ts';
+import { type EnergyTest, LONGEST_TEST_CELLS, planColumns, planEnergyTests } from './energy-tests.ts';
+import { FiredList } from './fired-list.ts';
 import { OctaveFloor } from './octave-floor.ts';
-
-/** A stretch of one octave in which energy stands over the floor by more than chance explains. */
-export interface ActiveRegion {
-  readonly startSample: number;
-  readonly endSample: number;
-  /** The window that stands out most. */
-  readonly bestStartSample: number;
-  readonly bestEndSample: number;
-  readonly lowHz: number;
-  readonly highHz: number;
-  /** Log-likelihood by which the best window departs from noise. */
-  readonly evidence: number;
-  /** Mean power of the best window over the floor there. */
-  readonly powerRatio: number;
-  /** Noise power per hertz about the best window, full scale squared. */
-  readonly noisePerHz: number;
-  /** The floor learned while it lasted: a change of the background rather than a burst. */
-  readonly cut: boolean;
-  /** It goes on from one that was cut: only what rises inside it is an onset. */
-  readonly continues: boolean;
-}
+import { type WeakSpot, WeakSpots } from './weak-spots.ts';
 
 export interface OctaveTriggerOptions {
   readonly band: OctaveBand;
   readonly sampleRateHz: number;
   readonly highestHz: number;
   readonly settings: DetectorSettings;
+  /** Chance that noise gives one weak spot in one sum. */
+  readonly weakChance: number;
 }
 
-interface Fired {
-  readonly cell: number;
-  readonly index: number;
-  readonly sum: number;
+interface OpenRegion {
+  start: number;
+  best: Omit<ActiveRegion, 'cut' | 'continues'>;
+  continues: boolean;
 }
-
-/** Rows of running sums kept from the block before: the longest test. */
-const HISTORY = 64;
-const ROW = BANDS_PER_OCTAVE + 1;
 
 /**
- * Finds active regions in the cells of one octave.
+ * Finds active regions in the cells of one octave, and weak spots outside of them.
  *
  * Each sub-band's energy is divided by its own running floor; rectangles of one to eight neighbouring sub-bands and 8 to
- * 64 cells in all are summed, and a sum above the chi-square threshold of its number of cells fires. The threshold's
+ * 64 values in all are summed, and a sum above the chi-square threshold of its number of values fires. The threshold's
  * chance is the allowed rate over the number of sums per second, so the rate of chance is known beforehand. A floor
- * whose block means spread wider than those of steady noise is raised by as much.
+ * whose block means spread wider than those of steady noise is raised by as much. Where a sum of 8 or 16 values passes a far lower
+ * threshold only, the place is a weak spot, to be looked at more closely.
  *
  * Source: for the summed squares against a threshold, H. Urkowitz, Energy detection of unknown deterministic signals,
  * Proc. IEEE 55 (1967) 523.
  */
 export class OctaveTrigger {
   readonly testsPerSecond: number;
+  readonly floor: OctaveFloor;
   readonly #band: OctaveBand;
-  readonly #options: OctaveTriggerOptions;
+  readonly #sampleRateHz: number;
   readonly #tests: readonly EnergyTest[];
   readonly #thresholds: Float64Array;
-  readonly #sums: Float64Array;
-  readonly #floor: OctaveFloor;
-  readonly #leaves: number;
+  readonly #weakThresholds: Float64Array;
+  readonly #sums: CellSums;
+  readonly #weak: WeakSpots;
+  readonly #fired = new FiredList();
+  readonly #halfGains = new Float64Array(2);
   readonly #gapCells: number;
   readonly #longestCells: number;
-  #learning: Float64Array[] | null = [];
-  #cell = 0;
-  #open: { start: number; best: ActiveRegion; continues: boolean } | null = null;
+  #blockCell = 0;
+  #open: OpenRegion | null = null;
   #quietFrom = 0;
   #regions: ActiveRegion[] = [];
-  #relearnUntilCell = 0;
   #cutCell = -Infinity;
+  #gatheredCells = 0;
 
-  constructor(options: OctaveTriggerOptions) {
-    const { band, settings, sampleRateHz, highestHz } = options;
+  constructor({ band, sampleRateHz, highestHz, settings, weakChance }: OctaveTriggerOptions) {
     this.#band = band;
-    this.#options = options;
+    this.#sampleRateHz = sampleRateHz;
     const cellS = band.samplesPerCell / sampleRateHz;
-    const leafHz = (band.highHz - band.lowHz) / BANDS_PER_OCTAVE;
-    const usable = Math.floor((highestHz - band.lowHz) / leafHz + 1e-9);
-    this.#leaves = Math.max(1, Math.min(BANDS_PER_OCTAVE, usable));
-    this.#tests = planEnergyTests(this.#leaves, Math.max(2, Math.floor(settings.longestWindowS / cellS)));
-    this.#sums = new Float64Array((HISTORY + band.cellsPerBlock) * ROW);
+    const usable = Math.floor((highestHz - band.lowHz) / this.#leafHz + 1e-9);
+    const leaves = Math.max(1, Math.min(BANDS_PER_OCTAVE, usable));
+    const columns = planColumns(leaves);
+    this.#tests = planEnergyTests(columns, Math.max(2, Math.floor(settings.longestWindowS / cellS)));
+    this.#sums = new CellSums(band, columns);
+    this.#weak = new WeakSpots({ band, leaves, chance: weakChance });
+    this.#weakThresholds = Float64Array.from(this.#tests, (test) => this.#weak.thresholdOf(test));
     this.#thresholds = new Float64Array(this.#tests.length);
     this.testsPerSecond = this.#tests.reduce((sum, test) => sum + 1 / test.hop, 0) / cellS;
     this.#gapCells = Math.max(1, Math.ceil(settings.quietGapS / cellS));
-    this.#longestCells = Math.max(8, Math.ceil(settings.longestBurstS / cellS));
-    this.#floor = new OctaveFloor(this.#leaves, cellS, settings.floorMemoryS);
+    this.#longestCells = Math.max(4, Math.ceil(settings.longestBurstS / cellS));
+    const { floorMemoryS: memoryS, longestBurstS } = settings;
+    this.floor = new OctaveFloor({ leaves, cellS, memoryS, longestBurstS });
   }
 
   setChance(chance: number): void {
     this.#tests.forEach((test, index) => {
-      this.#thresholds[index] = chiSquareThreshold((test.high - test.low) * test.cells, chance);
+      this.#thresholds[index] = chiSquareThreshold(test.degrees, chance);
     });
+  }
+
+  /** Noise power at a frequency of this octave, raised as the thresholds see it, in units of white noise of variance 1. */
+  levelAt(frequencyHz: number): number {
+    const leaf = Math.floor((frequencyHz - this.#band.lowHz) / this.#leafHz);
+    const gain = this.floor.gains[leaf] ?? 0;
+    return gain > 0 ? 1 / (gain * this.#band.gain) : 0;
   }
 
   /** First sample of the region now open; `null` between regions. */
@@ -102,8 +95,7 @@ export class OctaveTrigger {
 
   /** Samples up to which regions are decided, apart from an open one. */
   decidedSamples(): number {
-    const longest = this.#tests.reduce((most, test) => Math.max(most, test.cells), 0);
-    return Math.max(0, this.#cell - longest) * this.#band.samplesPerCell;
+    return Math.max(0, this.#blockCell - LONGEST_TEST_CELLS) * this.#band.samplesPerCell;
   }
 
   takeRegions(): ActiveRegion[] {
@@ -112,160 +104,182 @@ export class OctaveTrigger {
     return regions;
   }
 
+  takeWeakSpots(): WeakSpot[] {
+    return this.#weak.take();
+  }
+
   /**
    * Takes the cells of the block that the tree processed last.
-   * @param learned whether enough has been seen to decide.
    * @param heldSamples samples of the block that were recorded; cells beyond are left out.
    */
-  process(learned: boolean, heldSamples: number): void {
+  process(heldSamples: number): void {
     const cells = Math.floor(heldSamples / this.#band.samplesPerCell);
-    const energies = this.#band.energies.subarray(0, cells * BANDS_PER_OCTAVE);
-    if (!this.#learning) {
-      this.#run(energies);
-      return;
+    for (let from = 0; from < cells;) {
+      this.#setHalfGains();
+      this.#sums.add(this.floor.gains, from, cells);
+      this.#collect(from, cells);
+      this.#weak.scanHalves(this.#halfGains, { from, to: cells, blockCell: this.#blockCell });
+      const to = this.#walk(from, cells);
+      this.#weak.settle(this.#blockCell + to, this.#open?.start ?? Infinity);
+      from = to;
     }
-    this.#learning.push(energies.slice());
-    if (learned) this.#learn();
+    this.#sums.shift(cells);
+    this.#blockCell += cells;
   }
 
   finish(): void {
-    if (this.#learning) this.#learn();
-    if (this.#open) this.#close(this.#cell, false);
+    if (this.#open) this.#close(this.#blockCell, false);
   }
 
-  #learn(): void {
-    const blocks = this.#learning ?? [];
-    this.#learning = null;
-    this.#floor.learn(blocks);
-    for (const energies of blocks) this.#run(energies);
+  get #leafHz(): number {
+    return (this.#band.highHz - this.#band.lowHz) / BANDS_PER_OCTAVE;
   }
 
-  #run(energies: Float64Array): void {
-    const cells = energies.length / BANDS_PER_OCTAVE;
-    this.#addUp(energies, cells);
-    const fired = this.#collectFired(cells);
-    if (fired.length === 0 && !this.#open) {
-      this.#cell += cells;
-      this.#floor.gatherQuiet(this.#sums, HISTORY, cells);
-    } else {
-      this.#replay(energies, fired);
-    }
-    this.#floor.renew();
-    this.#sums.copyWithin(0, cells * ROW, (cells + HISTORY) * ROW);
-  }
-
-  /** Walks the cells of a block in which something fires, or a region is open, one by one. */
-  #replay(energies: Float64Array, fired: readonly Fired[]): void {
-    let next = 0;
-    for (let at = 0; at < energies.length; at += BANDS_PER_OCTAVE) {
-      this.#cell += 1;
-      for (let hit = fired[next]; hit?.cell === this.#cell; hit = fired[++next]) this.#fire(hit);
-      if (this.#open) this.#follow(this.#cell);
-      this.#floor.gather(energies, at, this.#open === null || this.#cell < this.#relearnUntilCell);
+  /** Gains of the halves from those of their sub-bands. */
+  #setHalfGains(): void {
+    const gains = this.floor.gains;
+    const perHalf = BANDS_PER_OCTAVE / 2;
+    for (let half = 0; half < 2; half++) {
+      let level = 0;
+      for (let leaf = perHalf * half; leaf < perHalf * (half + 1); leaf++)
+        level += 1 / gains[leaf]! / perHalf;
+      this.#halfGains[half] = this.#band.gain / this.#band.halfGain / level;
     }
   }
 
-  #collectFired(cells: number): Fired[] {
-    const fired: Fired[] = [];
-    for (let index = 0; index < this.#tests.length; index++) this.#tryTest(index, cells, fired);
-    return fired.sort((a, b) => a.cell - b.cell || a.index - b.index);
-  }
-
-  /** Running sums over time and sub-bands, [cell][sub-bands below]: any rectangle's sum is four of them. */
-  #addUp(energies: Float64Array, cells: number): void {
-    const sums = this.#sums;
-    const gains = this.#floor.gains;
-    const leaves = this.#leaves;
-    let row = HISTORY * ROW;
-    for (let cell = 0, at = 0; cell < cells; cell++, at += BANDS_PER_OCTAVE, row += ROW) {
-      let total = 0;
-      for (let leaf = 0; leaf < leaves; leaf++) {
-        total += (energies[at + leaf] ?? 0) * (gains[leaf] ?? 0);
-        sums[row + leaf + 1] = (sums[row - ROW + leaf + 1] ?? 0) + total;
+  /** Where sums, taken every hop, exceed their threshold, by rising cell. */
+  #collect(from: number, cells: number): void {
+    const fired = this.#fired;
+    fired.clear();
+    const { values, stride } = this.#sums;
+    const blockCell = this.#blockCell;
+    const phase = blockCell % PAST_CELLS;
+    // Sums that reach back over a cut would mix two floors.
+    const validFrom = Math.max(-LONGEST_TEST_CELLS, this.#cutCell - blockCell);
+    for (let index = 0; index < this.#tests.length; index++) {
+      const { column, cells: length, hop } = this.#tests[index]!;
+      const threshold = Math.min(this.#thresholds[index]!, this.#weakThresholds[index]!);
+      const earliest = Math.max(from + 1, validFrom + length);
+      const first = earliest + ((hop - ((phase + earliest) & (hop - 1))) & (hop - 1));
+      const base = column * stride + PAST_CELLS - 1;
+      const last = base + cells;
+      for (let at = base + first; at <= last; at += hop) {
+        const sum = values[at]! - values[at - length]!;
+        if (sum > threshold) this.#hit(blockCell + at - base, index, sum);
       }
     }
+    fired.sort();
   }
 
-  /** Where one test's sums, taken every hop, exceed its threshold. Cells are counted from 1, by their ends. */
-  #tryTest(index: number, cells: number, fired: Fired[]): void {
-    const test = this.#tests[index];
-    if (!test) return;
-    const sums = this.#sums;
-    const threshold = this.#thresholds[index] ?? Infinity;
-    const back = test.cells * ROW;
-    const { hop, low, high } = test;
-    const first = hop - (this.#cell % hop);
-    for (let cell = first; cell <= cells; cell += hop) {
-      const now = (HISTORY + cell - 1) * ROW;
-      const then = now - back;
-      const sum =
-        (sums[now + high] ?? 0) - (sums[now + low] ?? 0) - (sums[then + high] ?? 0) + (sums[then + low] ?? 0);
-      if (sum > threshold) fired.push({ cell: this.#cell + cell, index, sum });
+  #hit(cell: number, index: number, sum: number): void {
+    if (sum > this.#thresholds[index]!) this.#fired.add(cell, index, sum);
+    else this.#weak.add(this.#tests[index]!, cell, sum);
+  }
+
+  /** Goes through what fired; ends early, behind the cell returned, where a region was cut. */
+  #walk(from: number, cells: number): number {
+    const end = this.#blockCell + cells;
+    this.#gatheredCells = this.#blockCell + from;
+    const fired = this.#fired;
+    for (let hit = 0; hit < fired.length; hit++) {
+      const cell = fired.cell(hit);
+      const cut = this.#advance(cell);
+      if (cut !== null) return cut - this.#blockCell;
+      this.#fire(cell, this.#tests[fired.index(hit)]!, fired.sum(hit));
     }
+    const cut = this.#advance(end);
+    if (cut !== null) return cut - this.#blockCell;
+    this.#gather(end);
+    return cells;
   }
 
-  #follow(cell: number): void {
-    if (!this.#open) return;
-    if (cell > this.#quietFrom + this.#gapCells) this.#close(this.#quietFrom, false);
-    else if (cell - this.#open.start > this.#longestCells) this.#cutOpen();
+  /** Closes or cuts the open region where that is due up to a cell. @returns the cell of a cut. */
+  #advance(cell: number): number | null {
+    if (!this.#open) return null;
+    const closesAt = this.#quietFrom + this.#gapCells + 1;
+    const cutsAt = this.#open.start + this.#longestCells + 1;
+    if (Math.min(closesAt, cutsAt) > cell) return null;
+    const at = Math.max(this.#gatheredCells, Math.min(closesAt, cutsAt));
+    this.#gather(at);
+    if (closesAt <= cutsAt) {
+      this.#close(this.#quietFrom, false);
+      return null;
+    }
+    this.#close(at, true);
+    this.#cutCell = at;
+    this.floor.relearn();
+    return at;
   }
 
-  #fire({ cell, index, sum }: Fired): void {
-    const test = this.#tests[index];
-    if (!test) return;
-    this.#quietFrom = Math.max(this.#quietFrom, cell + test.hop - 1);
-    const degrees = (test.high - test.low) * test.cells;
-    const ratio = sum / degrees;
-    const evidence = (degrees / 2) * (ratio - 1 - Math.log(ratio));
+  /** Gives the floor the cells up to `cell`; they are quiet where no region is open. */
+  #gather(cell: number): void {
+    const count = cell - this.#gatheredCells;
+    if (count <= 0) return;
+    const before = PAST_CELLS + this.#gatheredCells - this.#blockCell - 1;
+    this.floor.gather(this.#sums, before, count, this.#open === null);
+    this.#gatheredCells = cell;
+  }
+
+  #fire(cell: number, test: EnergyTest, sum: number): void {
+    const start = Math.max(0, cell - test.cells);
     if (!this.#open) {
-      const best = this.#describe(test, ratio, evidence);
-      this.#open = { start: Math.max(0, cell - test.cells), best, continues: best.continues };
+      if (sum <= this.#thresholds[this.#tests.indexOf(test)]! * this.#backgroundBefore(start, test)) return;
+      this.#gather(Math.max(this.#gatheredCells, start));
+      const continues = cell <= this.#cutCell + this.#longestCells;
+      this.#open = { start, best: this.#describe(cell, test, sum), continues };
+      this.#quietFrom = cell + test.hop - 1;
       return;
     }
-    this.#open.start = Math.min(this.#open.start, Math.max(0, cell - test.cells));
-    if (evidence > this.#open.best.evidence) this.#open.best = this.#describe(test, ratio, evidence);
+    this.#quietFrom = Math.max(this.#quietFrom, cell + test.hop - 1);
+    this.#open.start = Math.min(this.#open.start, start);
+    if (evidenceOf(test, sum) > this.#open.best.evidence) this.#open.best = this.#describe(cell, test, sum);
   }
 
-  #describe(test: EnergyTest, powerRatio: number, evidence: number): ActiveRegion {
-    const { lowHz, highHz, samplesPerCell } = this.#band;
-    const leafHz = (highHz - lowHz) / BANDS_PER_OCTAVE;
+  /**
+   * What the energy just before a window says of a floor that lags: its mean over the floor less one standard deviation, at least 1. What
+   * has grown slowly is no burst.
+   */
+  #backgroundBefore(start: number, { column, low, high }: EnergyTest): number {
+    const { values, stride } = this.#sums;
+    const end = PAST_CELLS + start - this.#blockCell - 1;
+    const from = Math.max(0, end - LONGEST_TEST_CELLS, PAST_CELLS + this.#cutCell - this.#blockCell - 1);
+    const degrees = VALUES_PER_CELL * (high - low) * (end - from);
+    if (degrees <= 0) return 1;
+    const mean = (values[column * stride + end]! - values[column * stride + from]!) / degrees;
+    return Math.max(1, mean * (1 - Math.sqrt(2 / degrees)));
+  }
+
+  #describe(cell: number, test: EnergyTest, sum: number): OpenRegion['best'] {
+    const { lowHz, samplesPerCell } = this.#band;
     let noise = 0;
-    for (let leaf = test.low; leaf < test.high; leaf++) noise += this.#floor.levels[leaf] ?? 0;
-    const startSample = Math.max(0, this.#cell - test.cells) * samplesPerCell;
-    const endSample = this.#cell * samplesPerCell;
+    for (let leaf = test.low; leaf < test.high; leaf++) noise += this.floor.levels[leaf]!;
+    const startSample = Math.max(0, cell - test.cells) * samplesPerCell;
+    const endSample = cell * samplesPerCell;
     return {
       startSample,
       endSample,
       bestStartSample: startSample,
       bestEndSample: endSample,
-      lowHz: lowHz + test.low * leafHz,
-      highHz: lowHz + test.high * leafHz,
-      evidence,
-      powerRatio,
-      noisePerHz: noise / (test.high - test.low) / (this.#options.sampleRateHz / 2),
-      cut: false,
-      continues: this.#cell <= this.#cutCell + HISTORY,
+      lowHz: lowHz + test.low * this.#leafHz,
+      highHz: lowHz + test.high * this.#leafHz,
+      evidence: evidenceOf(test, sum),
+      degrees: test.degrees,
+      powerRatio: sum / test.degrees,
+      noisePerHz: noise / (test.high - test.low) / this.#band.gain / (this.#sampleRateHz / 2),
     };
-  }
-
-  #cutOpen(): void {
-    const cell = this.#cell;
-    this.#close(cell, true);
-    this.#cutCell = cell;
-    this.#relearnUntilCell = cell + this.#longestCells;
   }
 
   #close(endCell: number, cut: boolean): void {
     if (!this.#open) return;
     const { start, best, continues } = this.#open;
     const step = this.#band.samplesPerCell;
-    this.#regions.push({
-      ...best,
-      startSample: start * step,
-      endSample: Math.min(endCell, this.#cell) * step,
-      cut,
-      continues,
-    });
+    this.#regions.push({ ...best, startSample: start * step, endSample: endCell * step, cut, continues });
+    this.#weak.leaveOut(start, endCell + this.#gapCells);
     this.#open = null;
   }
+}
+
+function evidenceOf({ degrees }: EnergyTest, sum: number): number {
+  const ratio = sum / degrees;
+  return (degrees / 2) * (ratio - 1 - Math.log(ratio));
 }

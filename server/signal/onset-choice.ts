@@ -1,20 +1,27 @@
 import type { OnsetFound } from './onset-search.ts';
 
 const PERIODS_APART = 3;
+const ECHO_SHARE = 0.2;
+/** A region in a damped sine's ringing is a burst of its own only where the energy rises by so much. */
+const CLEAR_RISE = 6;
+/** A damped sine is still heard so many decay times after its onset. */
+const RING_DECAYS = 4;
 
 /** One burst as several octaves saw it. */
 export interface ChosenOnset extends OnsetFound {
   /** All octaves that saw it. */
   readonly seenLowHz: number;
   readonly seenHighHz: number;
-  readonly endSample: number;
+  /** Whether it rests on damped sines alone: nowhere would the energy have been enough. */
+  readonly onSineAlone: boolean;
 }
 
 /**
  * One onset per burst from the onsets of all octaves: the one with most evidence speaks, and those near it join.
  *
  * "Near" is the shortest separation or three periods of the lower of the two bands, whichever is longer: a band cannot
- * place an onset better than its periods.
+ * place an onset better than its periods. What another octave hears of a far stronger burst joins it too, wherever it puts
+ * the onset, and so does a damped sine inside a stronger burst's ringing.
  *
  * @param found any order.
  * @returns by rising onset.
@@ -30,7 +37,9 @@ export function chooseOnsets(
   )) {
     const near = chosen.find(
       ({ lead }) =>
-        Math.abs(lead.sample - onset.sample) < reach(lead, onset, separationSamples, sampleRateHz),
+        Math.abs(lead.sample - onset.sample) < reach(lead, onset, separationSamples, sampleRateHz) ||
+        isEchoOf(onset, lead) ||
+        isInRinging(onset, lead),
     );
     if (near) near.joined.push(onset);
     else chosen.push({ lead: onset, joined: [] });
@@ -42,12 +51,29 @@ function reach(lead: OnsetFound, other: OnsetFound, separationSamples: number, s
   return Math.max(separationSamples, (PERIODS_APART * sampleRateHz) / Math.min(lead.lowHz, other.lowHz));
 }
 
+/** Whether a region is what another octave hears of a far stronger burst, whose onset lies in its best window. */
+function isEchoOf(onset: OnsetFound, lead: OnsetFound): boolean {
+  if (onset.evidence >= ECHO_SHARE * lead.evidence) return false;
+  if (!onset.sine?.alone) return lead.sample >= onset.bestStartSample && lead.sample < onset.bestEndSample;
+  const before = lead.startSample - RING_DECAYS * onset.sine.decaySamples;
+  return onset.sample >= before && onset.sample < lead.endSample;
+}
+
+function isInRinging(onset: OnsetFound, lead: OnsetFound): boolean {
+  if (onset.lowHz >= lead.highHz || onset.highHz <= lead.lowHz) return false;
+  const end = lead.sine ? lead.sample + RING_DECAYS * lead.sine.decaySamples : lead.endSample;
+  if (onset.sample >= end) return false;
+  if (onset.sine?.alone) return onset.sample > lead.sample - RING_DECAYS * onset.sine.decaySamples;
+  return lead.sine !== null && onset.sample > lead.sample && onset.rise < CLEAR_RISE;
+}
+
 function describe(lead: OnsetFound, joined: readonly OnsetFound[]): ChosenOnset {
   const all = [lead, ...joined];
   return {
     ...lead,
     seenLowHz: Math.min(...all.map(({ lowHz }) => lowHz)),
     seenHighHz: Math.max(...all.map(({ highHz }) => highHz)),
-    endSample: Math.max(...all.map(({ regionEndSample }) => regionEndSample)),
+    onSineAlone: all.every(({ sine }) => sine?.alone),
+    endSample: Math.max(...all.map(({ endSample }) => endSample)),
   };
 }

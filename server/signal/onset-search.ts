@@ -1,11 +1,12 @@
+import type { SourceSignal } from './band-energy.ts';
 import { chiSquareThreshold } from './chi-square.ts';
 import { type Biquad, butterworth, filterInPlace, groupDelaySamples } from './biquad.ts';
 import type { DetectorSettings } from './detector-settings.ts';
 import { median } from './noise-floor.ts';
-import type { ActiveRegion } from './octave-trigger.ts';
+import type { ActiveRegion } from './active-region.ts';
 import { pickOnset } from './onset.ts';
 
-/** An onset found in one octave. */
+/** An onset found in one octave. Places are samples of the input. */
 export interface OnsetFound {
   readonly sample: number;
   readonly uncertaintySamples: number;
@@ -14,13 +15,26 @@ export interface OnsetFound {
   readonly rise: number;
   readonly lowHz: number;
   readonly highHz: number;
-  readonly regionEndSample: number;
+  /** The region it lies in. */
+  readonly startSample: number;
+  readonly endSample: number;
+  readonly bestStartSample: number;
+  readonly bestEndSample: number;
+  /** The damped sine that fits it. */
+  readonly sine: FittedSine | null;
+}
+
+export interface FittedSine {
+  readonly octave: number;
+  readonly statistic: number;
+  readonly decaySamples: number;
+  /** Whether it rests on the sine alone: the energy would not have been enough. */
+  readonly alone: boolean;
 }
 
 export interface OnsetSearch {
-  /** Raw samples about the region; `firstSample` is the place of the first. */
-  readonly samples: Float32Array;
-  readonly firstSample: number;
+  /** Holds the samples about the region. */
+  readonly source: SourceSignal;
   readonly region: ActiveRegion;
   readonly sampleRateHz: number;
   readonly settings: DetectorSettings;
@@ -34,10 +48,11 @@ const LONG_REGION_S = 0.02;
 /** Chance that noise gives one smoothed energy as high as a new burst's. */
 const STEP_CHANCE = 1e-5;
 
-/** Samples before a region that its search needs: the filter settles and the noise before is read. */
-export function searchLeadSamples(region: ActiveRegion, sampleRateHz: number): number {
+/** Samples of the input that the search of a region reads: [start, end). */
+export function searchReach(region: ActiveRegion, sampleRateHz: number): { start: number; end: number } {
   const { smoothingS, lowHz } = searchBand(region, sampleRateHz);
-  return Math.ceil((6 * smoothingS + 6 / lowHz) * sampleRateHz);
+  const lead = (6 * smoothingS + 6 / lowHz) * sampleRateHz;
+  return { start: region.startSample - lead, end: region.endSample + lead / 2 };
 }
 
 /**
@@ -46,27 +61,32 @@ export function searchLeadSamples(region: ActiveRegion, sampleRateHz: number): n
  * The samples are limited to the band that stood out; two one-sided exponential means of the squared result, one of the
  * past P and one of the future Q, give the rise R = Q / (P + m noise). The largest rise is the region's onset; others
  * count where R exceeds the step. A second click is so found within the ringing of the first. The place is refined by
- * Akaike's criterion about the largest rise, and the filter's group delay is taken off.
+ * Akaike's criterion about the largest rise, and the group delays of the filters are taken off.
  */
-export function findOnsets(search: OnsetSearch): OnsetFound[] {
-  const { region, sampleRateHz, settings } = search;
+export function findOnsets({ source, region, sampleRateHz, settings }: OnsetSearch): OnsetFound[] {
+  const rateHz = sampleRateHz / source.decimation;
   const band = searchBand(region, sampleRateHz);
-  const sections = bandSections(band.lowHz, band.highHz, sampleRateHz);
-  const delay = groupDelaySamples(sections, band.centreHz, sampleRateHz);
-  const filtered = Float64Array.from(search.samples);
+  const sections = bandSections(band.lowHz, band.highHz, rateHz);
+  const delay = groupDelaySamples(sections, band.centreHz, rateHz);
+  const reach = searchReach(region, sampleRateHz);
+  const first = Math.max(source.start, Math.floor(reach.start / source.decimation));
+  const last = Math.min(source.end, Math.ceil(reach.end / source.decimation));
+  const filtered = new Float64Array(
+    source.values.subarray(source.origin + first, source.origin + Math.max(first, last)),
+  );
   filterInPlace(filtered, sections);
-  const settle = Math.min(filtered.length, Math.ceil((4 / band.lowHz) * sampleRateHz));
-  const smoothing = band.smoothingS * sampleRateHz;
-  const noise = region.noisePerHz * (band.highHz - band.lowHz);
+  const settle = Math.min(filtered.length, Math.ceil((4 / band.lowHz) * rateHz));
+  const smoothing = band.smoothingS * rateHz;
+  const noise = region.noisePerHz * source.decimation ** 2 * (band.highHz - band.lowHz);
   const { past, future } = oneSidedMeans(filtered, settle, smoothing, noise);
-  const from = Math.max(settle, region.startSample - search.firstSample - Math.ceil(smoothing));
-  const to = Math.min(filtered.length, region.endSample - search.firstSample);
-  const apart = Math.max(settings.shortestSeparationS * sampleRateHz, smoothing);
+  const from = Math.max(settle, Math.floor(region.startSample / source.decimation - first - smoothing));
+  const to = Math.min(filtered.length, Math.ceil(region.endSample / source.decimation) - first);
+  const apart = Math.max(settings.shortestSeparationS * rateHz, smoothing);
   const degrees = Math.max(1, Math.round(4 * (band.highHz - band.lowHz) * band.smoothingS));
-  const clear = chiSquareThreshold(degrees, STEP_CHANCE) / degrees;
+  const clear = clearRatio(degrees);
   const step = 10 ** (settings.stepDb / 10);
-  const level =
-    from < to ? backgroundOf(filtered.subarray(from, to), noise, LONG_REGION_S * sampleRateHz) : noise;
+  const level = from < to ? backgroundOf(filtered.subarray(from, to), noise, LONG_REGION_S * rateHz) : noise;
+  const { continues } = region;
   const places = steepestPlaces({
     past,
     future,
@@ -78,9 +98,8 @@ export function findOnsets(search: OnsetSearch): OnsetFound[] {
     step,
     clear,
     smoothing,
-    continues: region.continues,
+    continues,
   });
-  if (region.cut) places.splice(1);
   return places.flatMap((place, index) => {
     const before = Math.max(settle, index > 0 ? (places[index - 1] ?? 0) + smoothing / 2 : 0);
     const window = {
@@ -89,25 +108,35 @@ export function findOnsets(search: OnsetSearch): OnsetFound[] {
     };
     const pick = pickOnset(filtered.subarray(window.from, window.to), {
       minimumStepDb: settings.onsetGateDb,
-      independentShare: Math.min(1, (2 * (band.highHz - band.lowHz)) / sampleRateHz),
+      independentShare: Math.min(1, (2 * (band.highHz - band.lowHz)) / rateHz),
     });
     if (!pick) return [];
-    const inFilter = window.from + pick.index;
+    const inFilter = first + window.from + pick.index - delay * visibleDelay((future[place] ?? 0) / noise);
     return [
       {
-        sample: Math.max(
-          0,
-          Math.round(search.firstSample + inFilter - delay * visibleDelay((future[place] ?? 0) / noise)),
-        ),
-        uncertaintySamples: pick.uncertaintySamples,
+        sample: Math.max(0, Math.round(source.inputSample(inFilter, band.centreHz))),
+        uncertaintySamples: pick.uncertaintySamples * source.decimation,
         evidence: region.evidence,
         rise: (future[place] ?? 0) / ((past[place] ?? 0) + noise),
         lowHz: region.lowHz,
         highHz: region.highHz,
-        regionEndSample: region.endSample,
+        startSample: region.startSample,
+        endSample: region.endSample,
+        bestStartSample: region.bestStartSample,
+        bestEndSample: region.bestEndSample,
+        sine: null,
       },
     ];
   });
+}
+
+const clearRatios = new Map<number, number>();
+
+/** Mean of squared normal values over their variance that chance does not explain. */
+function clearRatio(degrees: number): number {
+  const ratio = clearRatios.get(degrees) ?? chiSquareThreshold(degrees, STEP_CHANCE) / degrees;
+  clearRatios.set(degrees, ratio);
+  return ratio;
 }
 
 export function bandSections(lowHz: number, highHz: number, sampleRateHz: number): Biquad[] {

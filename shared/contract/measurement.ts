@@ -201,6 +201,11 @@ export type BurstParameters = z.infer<typeof burstParametersSchema>;
 export const detectedCandidateSchema = burstParametersSchema.extend({
   channel: z.number().int().min(0),
   channels: z.array(z.number().int().min(0)),
+  /**
+   * How often its energy rises by 6 dB and more from onset to end, the onset counted: 1 for a single burst; overlapping ones
+   * that cannot be parted are one with more, their density being rises over duration. 1 in lists made before this was counted.
+   */
+  rises: z.number().int().min(1).default(1),
   /** The band in which it stood out and was measured. */
   bandLowHz: z.number(),
   bandHighHz: z.number(),

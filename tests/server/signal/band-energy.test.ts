@@ -1,27 +1,33 @@
 import { describe, expect, it } from 'vitest';
-import { BANDS_PER_OCTAVE, OctaveTree } from '../../../server/signal/band-energy.ts';
+import { BANDS_PER_OCTAVE, OctaveTree, VALUES_PER_CELL } from '../../../server/signal/band-energy.ts';
 import { butterworth, filterInPlace, groupDelaySamples } from '../../../server/signal/biquad.ts';
 import { seededNormal, seededUniform } from './synthetic-clicks.ts';
 
 const RATE = 192_000;
 
+/** Sub-bands of this octave's width that the whole band to half the rate would have. */
+const bandsIn = (octave: number) => BANDS_PER_OCTAVE * 2 ** (octave + 1);
+
 /** Mean square per sub-band after the filters have settled: [octave][sub-band]. */
 function measure(signal: (n: number) => number, blocks = 8): number[][] {
-  const tree = new OctaveTree(RATE, 4, 4096);
+  const tree = new OctaveTree({ sampleRateHz: RATE, octaves: 4, blockSamples: 4096, heldSamples: 0 });
   const block = new Float32Array(tree.blockSamples);
   const sums = tree.octaves.map(() => new Array<number>(BANDS_PER_OCTAVE).fill(0));
   for (let k = 0; k < blocks; k++) {
     for (let n = 0; n < block.length; n++) block[n] = signal(k * block.length + n);
     tree.process(block);
     if (k === 0) continue;
-    tree.octaves.forEach(({ energies }, octave) => {
+    tree.octaves.forEach(({ energies, gain, samplesPerCell }, octave) => {
       const into = sums[octave] ?? [];
-      energies.forEach(
-        (energy, at) => (into[at % BANDS_PER_OCTAVE] = (into[at % BANDS_PER_OCTAVE] ?? 0) + energy),
-      );
+      const perBand = energies.length / BANDS_PER_OCTAVE;
+      const weight = samplesPerCell / VALUES_PER_CELL / gain / block.length / (blocks - 1) / bandsIn(octave);
+      energies.forEach((energy, at) => {
+        const band = Math.floor(at / perBand);
+        into[band] = (into[band] ?? 0) + energy * weight;
+      });
     });
   }
-  return sums.map((bands) => bands.map((sum) => sum / ((blocks - 1) * block.length)));
+  return sums;
 }
 
 const sine = (frequencyHz: number) => (n: number) => Math.sin((2 * Math.PI * frequencyHz * n) / RATE);

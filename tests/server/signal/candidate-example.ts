@@ -27,6 +27,7 @@ export function candidateAt(
     hearingClass: 'unknown',
     snrDb: 20,
     clipped: false,
+    rises: 1,
     channel,
     channels: [channel],
     bandLowHz: 10_000,

@@ -3,26 +3,11 @@ import { describe, expect, it } from 'vitest';
 import { createDetector, expectedByChance } from '../../../server/signal/detector.ts';
 import { detectedCandidateSchema, type DetectedCandidate } from '../../../shared/contract/measurement.ts';
 import { compareWithTruth } from './click-truth.ts';
+import { detectAll } from './detect.ts';
 import { addClick, clickScene, seededNormal, seededUniform, type SceneOptions } from './synthetic-clicks.ts';
 
-function detect(
-  samples: Float32Array,
-  sampleRateHz: number,
-  blockSamples = samples.length,
-): DetectedCandidate[] {
-  const context = {
-    fullScaleV: null,
-    preampGainDb: null,
-    observableLowHz: 0,
-    observableHighHz: 0.45 * sampleRateHz,
-  };
-  const detector = createDetector({ sampleRateHz, channel: 0, context });
-  const found: DetectedCandidate[] = [];
-  for (let from = 0; from < samples.length; from += blockSamples) {
-    detector.push(samples.subarray(from, from + blockSamples));
-    found.push(...detector.take());
-  }
-  return [...found, ...detector.finish()];
+function detect(samples: Float32Array, sampleRateHz: number, blockSamples?: number): DetectedCandidate[] {
+  return detectAll(samples, { sampleRateHz, ...(blockSamples && { blockSamples }) }).found;
 }
 
 const scene: SceneOptions = {

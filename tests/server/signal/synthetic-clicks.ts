@@ -84,12 +84,13 @@ export function addClick(samples: Float32Array, click: TrueClick, sampleRateHz: 
     samples.length - Math.ceil(click.onset),
     Math.ceil(12 * click.decayS * sampleRateHz),
   );
-  for (let n = 0; n < length; n++) {
-    const t = n / sampleRateHz;
-    const at = click.onset + n;
-    samples[at] =
-      (samples[at] ?? 0) +
-      click.amplitude * Math.exp(-t / click.decayS) * Math.sin(2 * Math.PI * click.frequencyHz * t);
+  const turn = (2 * Math.PI * click.frequencyHz) / sampleRateHz;
+  const shrink = Math.exp(-1 / (click.decayS * sampleRateHz));
+  const onset = Math.ceil(click.onset);
+  let amplitude = click.amplitude * shrink ** (onset - click.onset);
+  for (let n = onset; n < onset + length; n++) {
+    samples[n] = (samples[n] ?? 0) + amplitude * Math.sin(turn * (n - click.onset));
+    amplitude *= shrink;
   }
 }
 
@@ -171,15 +172,22 @@ function octaveRms(samples: Float32Array, sampleRateHz: number): number {
 }
 
 function addHum(samples: Float32Array, sampleRateHz: number): void {
+  const sway = (2 * Math.PI * 0.7) / sampleRateHz;
+  const swaying = samples.map((_, n) => 1 + 0.1 * Math.sin(sway * n));
   for (let harmonic = 1; harmonic <= 24; harmonic++) {
     const frequencyHz = HUM_HZ * harmonic;
     if (frequencyHz > 0.45 * sampleRateHz) return;
     const amplitude = (Math.SQRT2 * OCTAVE_RMS * 100) / harmonic ** 2;
     const turn = (2 * Math.PI * frequencyHz) / sampleRateHz;
-    const sway = (2 * Math.PI * 0.7) / sampleRateHz;
+    // sin((n + 1) w) = 2 cos(w) sin(n w) - sin((n - 1) w)
+    const twiceCosine = 2 * Math.cos(turn);
+    let before = Math.sin(harmonic - turn);
+    let here = Math.sin(harmonic);
     for (let n = 0; n < samples.length; n++) {
-      samples[n] =
-        (samples[n] ?? 0) + amplitude * (1 + 0.1 * Math.sin(sway * n)) * Math.sin(turn * n + harmonic);
+      samples[n] = samples[n]! + amplitude * swaying[n]! * here;
+      const next = twiceCosine * here - before;
+      before = here;
+      here = next;
     }
   }
 }

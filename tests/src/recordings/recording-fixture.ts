@@ -138,6 +138,7 @@ export function candidate(part: Partial<Candidate> = {}): Candidate {
     hearingClass: 'above',
     snrDb: 31,
     clipped: false,
+    rises: 1,
     bandLowHz: 20_000,
     bandHighHz: 400_000,
     ...part,

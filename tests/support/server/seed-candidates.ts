@@ -28,6 +28,7 @@ export function detectedCandidate(facts: Partial<DetectedCandidate> = {}): Detec
     hearingClass: 'above',
     snrDb: 20,
     clipped: false,
+    rises: 1,
     bandLowHz: 20_000,
     bandHighHz: 45_000,
     channel: 0,

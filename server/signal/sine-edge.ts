@@ -1,0 +1,156 @@
+import type { SourceSignal } from './band-energy.ts';
+import { inverseFft } from './complex-fft.ts';
+import { DIFFERENCE_REACH, differencedSpectrum, responseOf } from './differenced-spectrum.ts';
+
+/** What is known of the sine: onset and decay in samples of the source. */
+export interface RoughSine {
+  readonly onset: number;
+  readonly frequencyHz: number;
+  readonly decay: number;
+}
+
+const POINTS = 1024;
+/** Samples per point's step: a source whose octave lies in its upper half is read between its samples. */
+const LENGTH_WIDTHS = 128;
+const TAPER_SHARE = 1 / 32;
+const LEAD_SHARE = 5 / 32;
+const LOWEST_OF_FREQUENCY = 0.3;
+/** About the rough onset so many periods, and decay times over the statistic, are searched. */
+const REACH_PERIODS = 1;
+const REACH_DECAYS = 3;
+const STEPS_PER_PERIOD = 24;
+
+/**
+ * Places the onset of a damped sine whose frequency and decay are known, in the widest band there is: the edge is sharp only there.
+ *
+ * The window's spectrum is divided by the noise's and turned back; a one-pole filter run backwards gives the correlation with a damped
+ * oscillation from each sample on. A body at rest begins to move from zero, so the likeliest onset is where the correlation
+ * with exp(-t / decay) sin(2 pi f t), squared over its mean in noise, is greatest.
+ */
+export class SineEdge {
+  readonly #source: SourceSignal;
+  readonly #rateHz: number;
+  readonly #levelStepHz: number;
+  readonly #size: number;
+  readonly #fft = inverseFft(POINTS);
+  readonly #re = new Float64Array(POINTS);
+  readonly #im = new Float64Array(POINTS);
+
+  /** @param widthHz W: the octave goes from W to 2 W. */
+  constructor(source: SourceSignal, rateHz: number, widthHz: number, levelStepHz: number) {
+    this.#source = source;
+    this.#rateHz = rateHz;
+    this.#levelStepHz = levelStepHz;
+    this.#size = Math.min(POINTS, 2 ** Math.round(Math.log2((LENGTH_WIDTHS * rateHz) / widthHz)));
+  }
+
+  /**
+   * @param statistic of the sine as found: what is left unsure of its onset.
+   * @param inverseLevels one over the noise's power in the input at multiples of the level step; 0 where nothing is known.
+   * @returns the rough onset where the source does not hold enough about it. The spread is that of the likelihoods.
+   */
+  place(rough: RoughSine, statistic: number, inverseLevels: Float64Array): { onset: number; spread: number } {
+    const size = this.#size;
+    const period = this.#rateHz / rough.frequencyHz;
+    const wanted = REACH_PERIODS * period + (REACH_DECAYS * rough.decay) / Math.max(1, statistic);
+    const reach = Math.min((LEAD_SHARE - 2 * TAPER_SHARE) * size, wanted);
+    const first = Math.floor(rough.onset - LEAD_SHARE * size);
+    const holds =
+      first - DIFFERENCE_REACH >= this.#source.start && first + size + DIFFERENCE_REACH <= this.#source.end;
+    if (!holds) return { onset: rough.onset, spread: reach };
+    this.#whiten(first, LOWEST_OF_FREQUENCY * rough.frequencyHz, inverseLevels);
+    this.#correlate(rough);
+    const norm = this.#norm(rough, inverseLevels);
+    const count = Math.ceil((reach / period) * STEPS_PER_PERIOD);
+    const step = period / STEPS_PER_PERIOD;
+    const values = Float64Array.from({ length: 2 * count + 1 }, (_, k) => {
+      const sinePart = this.#sinePartAt(rough.onset - first + (k - count) * step, rough.frequencyHz);
+      return sinePart ** 2 / norm;
+    });
+    return likeliest(values, rough.onset - count * step, step);
+  }
+
+  /** Leaves the whitened samples, of POINTS to the window, in the transform's real part. */
+  #whiten(first: number, lowestHz: number, inverseLevels: Float64Array): void {
+    const size = this.#size;
+    const output = differencedSpectrum(this.#source, first, size, TAPER_SHARE * size);
+    const response = responseOf(size);
+    const binHz = this.#rateHz / size;
+    const { re, im, slot } = this.#fft;
+    re.fill(0);
+    im.fill(0);
+    for (let bin = Math.max(1, Math.ceil(lowestHz / binHz)); bin < size / 2; bin++) {
+      const inverse = inverseLevels[Math.round((bin * binHz) / this.#levelStepHz)] ?? 0;
+      const scale = inverse / this.#source.decimation / response[bin]!;
+      const at = slot[bin]!;
+      re[at] = output[2 * bin]! * scale;
+      im[at] = output[2 * bin + 1]! * scale;
+    }
+    this.#fft.transform();
+  }
+
+  /** Leaves y[n], the sum over m >= n of z[m] exp(-(m - n) / decay) exp(-i w m): turned back, so that it changes slowly. */
+  #correlate({ frequencyHz, decay }: RoughSine): void {
+    const z = this.#fft.re;
+    const samplesPerPoint = this.#size / POINTS;
+    const shrink = Math.exp(-samplesPerPoint / decay);
+    const turn = ((2 * Math.PI * frequencyHz) / this.#rateHz) * samplesPerPoint;
+    const cosine = Math.cos(turn);
+    const sine = Math.sin(turn);
+    let turnRe = Math.cos(turn * (POINTS - 1));
+    let turnIm = -Math.sin(turn * (POINTS - 1));
+    let re = 0;
+    let im = 0;
+    for (let n = POINTS - 1; n >= 0; n--) {
+      re = z[n]! * turnRe + shrink * re;
+      im = z[n]! * turnIm + shrink * im;
+      this.#re[n] = re;
+      this.#im[n] = im;
+      const next = turnRe * cosine - turnIm * sine;
+      turnIm = turnRe * sine + turnIm * cosine;
+      turnRe = next;
+    }
+  }
+
+  /** Mean square of the correlation with a damped sine in noise. */
+  #norm({ frequencyHz, decay }: RoughSine, inverseLevels: Float64Array): number {
+    const samplesPerPoint = this.#size / POINTS;
+    const shrink = Math.exp(-samplesPerPoint / decay);
+    let norm = 0;
+    for (let bin = 1; bin < this.#size / 2; bin++) {
+      const hz = (bin * this.#rateHz) / this.#size;
+      const inverse = inverseLevels[Math.round(hz / this.#levelStepHz)] ?? 0;
+      const w = ((2 * Math.PI * (hz - frequencyHz)) / this.#rateHz) * samplesPerPoint;
+      norm += inverse / (1 - 2 * shrink * Math.cos(w) + shrink * shrink);
+    }
+    return (norm * this.#size) / this.#source.decimation / 8;
+  }
+
+  /** Correlation with a damped sine from a place of the window on; y is read between its points by a line. */
+  #sinePartAt(place: number, frequencyHz: number): number {
+    const at = (place * POINTS) / this.#size;
+    const n = Math.max(0, Math.min(POINTS - 2, Math.floor(at)));
+    const share = at - n;
+    const re = this.#re[n]! + share * (this.#re[n + 1]! - this.#re[n]!);
+    const im = this.#im[n]! + share * (this.#im[n + 1]! - this.#im[n]!);
+    const phase = (2 * Math.PI * frequencyHz * place) / this.#rateHz;
+    return re * Math.sin(phase) + im * Math.cos(phase);
+  }
+}
+
+function likeliest(
+  values: Float64Array,
+  firstPlace: number,
+  step: number,
+): { onset: number; spread: number } {
+  let at = 0;
+  for (let k = 1; k < values.length; k++) if (values[k]! > values[at]!) at = k;
+  let weights = 0;
+  let squares = 0;
+  for (let k = 0; k < values.length; k++) {
+    const weight = Math.exp((values[k]! - values[at]!) / 2);
+    weights += weight;
+    squares += weight * (k - at) ** 2;
+  }
+  return { onset: firstPlace + at * step, spread: Math.sqrt(squares / weights) * step };
+}
