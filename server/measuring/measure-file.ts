@@ -17,7 +17,7 @@ export interface MeasureSteps {
 const stepsHere: MeasureSteps = { atOnce: 1, measureSegment, joinSegments };
 
 /** Changed whenever what a segment leaves for the join changes. */
-const PARTS_VERSION = 2;
+const PARTS_VERSION = 3;
 
 /**
  * Measures a recording, segment by segment, and writes its views.

@@ -13,9 +13,11 @@ import {
   joinFingerprint,
   type Fingerprint,
   type FingerprintPart,
+  type FingerprintRange,
 } from './fingerprint.ts';
+import type { BlockSummer } from './frame-engine.ts';
 import { SILENCE_MEAN_SQUARE, sumOf } from './frame-spectrum.ts';
-import { LowFrames, type LowFrame } from './low-frames.ts';
+import { lowFrameSize, LowFrames, type LowFrame } from './low-frames.ts';
 import { lowRateFactor, lowRateResponse } from './low-rate.ts';
 import { joinPcmHash, PcmHashTracker, type PcmHashPart } from './pcm-hash.ts';
 import type { Span } from './place-list.ts';
@@ -30,7 +32,12 @@ export interface ChannelContentSettings {
   /** Third octaves that the long frames tell apart, and the samples from one of these frames to the next. */
   longBands: readonly ThirdOctave[];
   longHop: number;
+}
+
+export interface ContentTrackerSettings extends ChannelContentSettings {
   segment: Span;
+  /** Sums of `samplesPerLowMean` samples each. */
+  sumBlocks: BlockSummer;
 }
 
 /** What one segment tells of what a channel holds; plain data. */
@@ -59,9 +66,10 @@ const CLEAN_SHARE_OF_LOW_RATE = 0.25;
 
 /** The third octaves below those of the long frames, as far as longer frames of a reduced signal tell them apart. */
 function lowBandsBelow(longBands: readonly ThirdOctave[], sampleRateHz: number): ThirdOctave[] {
-  const frames = new LowFrames(sampleRateHz, 0, () => {});
-  const share = lowRateFactor(sampleRateHz) === 1 ? 0.5 : CLEAN_SHARE_OF_LOW_RATE;
-  const bands = resolvedBands(frames.rateHz / frames.size, share * frames.rateHz);
+  const factor = lowRateFactor(sampleRateHz);
+  const rateHz = sampleRateHz / factor;
+  const share = factor === 1 ? 0.5 : CLEAN_SHARE_OF_LOW_RATE;
+  const bands = resolvedBands(rateHz / lowFrameSize(sampleRateHz), share * rateHz);
   const end = longBands[0]?.index ?? Infinity;
   return bands.filter(({ index }) => index < end);
 }
@@ -82,20 +90,23 @@ export class ChannelContentTracker {
   readonly #lowSums: Float32Array;
   readonly #lowLevels: BandLevels;
   readonly #longLevels: BandLevels;
-  readonly #lowPlace: FingerprintPlace;
-  readonly #longPlace: FingerprintPlace;
+  readonly #lowPlace: FingerprintRange;
+  readonly #longPlace: FingerprintRange;
   readonly #startSample: number;
   readonly #screensSpeech: boolean;
   readonly #longHop: number;
+  readonly #longBands: number;
 
-  constructor({ sampleRateHz, sampleFormat, longBands, longHop, segment }: ChannelContentSettings) {
+  constructor(settings: ContentTrackerSettings) {
+    const { sampleRateHz, sampleFormat, longBands, longHop, segment, sumBlocks } = settings;
     const lowBands = lowBandsBelow(longBands, sampleRateHz);
     this.#startSample = segment.startSample;
     this.#screensSpeech = sampleRateHz >= LEAST_SPEECH_RATE_HZ;
     this.#bits = new EffectiveBitsTracker(sampleFormat);
     this.#hash = new PcmHashTracker(sampleFormat.encoding);
     this.#fingerprint = new FingerprintTracker(sampleRateHz, segment);
-    this.#lowFrames = new LowFrames(sampleRateHz, segment.startSample, (frame) => this.#pushLow(frame));
+    const lowSettings = { sampleRateHz, firstSample: segment.startSample, sumBlocks };
+    this.#lowFrames = new LowFrames(lowSettings, (frame) => this.#pushLow(frame));
     this.#speech = new SpeechFrameTracker(this.#lowFrames);
     this.#lowSummer = new BandSummer(lowBands, this.#lowFrames.rateHz / this.#lowFrames.size);
     this.#lowSums = new Float32Array(lowBands.length);
@@ -104,6 +115,7 @@ export class ChannelContentTracker {
     this.#lowPlace = placeInFingerprint(lowBands);
     this.#longPlace = placeInFingerprint(longBands);
     this.#longHop = longHop;
+    this.#longBands = longBands.length;
   }
 
   pushSamples(samples: Float32Array, from: number, to: number): void {
@@ -112,14 +124,13 @@ export class ChannelContentTracker {
     this.#lowFrames.push(samples, from, to);
   }
 
-  /** @param meanSquares of the bands of long frame `index`, which is not silent. */
-  pushLong(index: number, meanSquares: Float32Array): void {
+  /** Of long frame `index`, which is not silent, the mean squares of its bands are `values[at]` and those that follow. */
+  pushLong(index: number, values: Float32Array, at: number): void {
     // Frames overlap by half: every other one holds all samples once.
-    if (index % 2 === 0) this.#longLevels.push(meanSquares);
+    if (index % 2 === 0) this.#longLevels.push(values.subarray(at, at + this.#longBands));
     const { from, to, firstBand } = this.#longPlace;
-    if (to > from) {
-      this.#fingerprint.push((index + 0.5) * this.#longHop, meanSquares.subarray(from, to), firstBand);
-    }
+    const middleSample = (index + 0.5) * this.#longHop;
+    this.#fingerprint.push(middleSample, values, { from: at + from, to: at + to, firstBand });
   }
 
   finish(): ChannelContentPart {
@@ -141,21 +152,11 @@ export class ChannelContentTracker {
     this.#lowSummer.sum(power, sums);
     if (sumOf(sums, 0, sums.length) < SILENCE_MEAN_SQUARE) return;
     this.#lowLevels.push(sums);
-    const { from, to, firstBand } = this.#lowPlace;
-    if (to <= from) return;
-    const middleSample = startSample + this.#lowFrames.hopSamples;
-    this.#fingerprint.pushShared(middleSample, sums.subarray(from, to), firstBand);
+    this.#fingerprint.pushShared(startSample + this.#lowFrames.hopSamples, sums, this.#lowPlace);
   }
 }
 
-/** Which of some bands the fingerprint takes, and as which of its own. */
-interface FingerprintPlace {
-  from: number;
-  to: number;
-  firstBand: number;
-}
-
-function placeInFingerprint(bands: readonly ThirdOctave[]): FingerprintPlace {
+function placeInFingerprint(bands: readonly ThirdOctave[]): FingerprintRange {
   const [first, last] = [fingerprintBands[0]!.index, fingerprintBands.at(-1)!.index];
   const from = bands.filter(({ index }) => index < first).length;
   const to = Math.max(from, bands.filter(({ index }) => index <= last).length);
@@ -166,12 +167,12 @@ type SmallParts = Pick<ChannelContentPart, 'bits' | 'hash' | 'speech' | 'fingerp
 
 /** Joins the segments of a channel, one after the other. */
 export class ChannelContentJoin {
-  readonly #settings: Omit<ChannelContentSettings, 'segment'>;
+  readonly #settings: ChannelContentSettings;
   readonly #low: BandLevels;
   readonly #long: BandLevels;
   readonly #parts: SmallParts[] = [];
 
-  constructor(settings: Omit<ChannelContentSettings, 'segment'>) {
+  constructor(settings: ChannelContentSettings) {
     const { longBands, sampleRateHz } = settings;
     this.#settings = settings;
     this.#low = new BandLevels(lowBandsBelow(longBands, sampleRateHz));

@@ -20,7 +20,7 @@ export interface ChannelResult extends LongFrameResult {
 export interface ChannelJoinSettings extends LongFrameStatisticsSettings {
   channel: number;
   course: CoursePlan;
-  content: Omit<ChannelContentSettings, 'segment'>;
+  content: ChannelContentSettings;
 }
 
 type SmallParts = Omit<ChannelPart, 'longFrames' | 'content'>;

@@ -92,6 +92,7 @@ export class ChannelPass {
       longBands: rowBands(plan),
       longHop: plan.long.hop,
       segment,
+      sumBlocks: arithmetic.sumLowMeans,
     });
     this.#audible = openAudible(settings);
     this.#longFrames = this.#openLongFrames();
@@ -169,7 +170,7 @@ export class ChannelPass {
       spectrumPoints,
       byMeyda: descriptorsByMeyda,
       onRow: (row) => views.frameRow(row),
-      onBands: (index, meanSquares) => this.#content.pushLong(index, meanSquares),
+      onBands: (index, values, at) => this.#content.pushLong(index, values, at),
       onRows: (count) => sharing?.columns.push(sharing.rows, count),
     });
   }

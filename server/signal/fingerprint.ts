@@ -17,6 +17,13 @@ export interface Fingerprint {
   strengths: Float32Array;
 }
 
+/** Places `[from, to)` of mean squares, the first of which is of this band among `fingerprintBands`. */
+export interface FingerprintRange {
+  from: number;
+  to: number;
+  firstBand: number;
+}
+
 /** Time from one word to the next, whatever the sample rate. */
 export const FINGERPRINT_STEP_S = 0.1;
 /** Third octaves from 400 Hz to 16 kHz: what copies at lower rates and lossy ones keep at least in part. */
@@ -59,21 +66,18 @@ export class FingerprintTracker {
     this.#weights = new Float32Array(this.#steps * BANDS);
   }
 
-  /**
-   * Adds what one short frame tells of some bands to the step that its middle lies in.
-   * @param firstBand place of the first of them among `fingerprintBands`.
-   */
-  push(middleSample: number, meanSquares: Float32Array, firstBand: number): void {
-    this.#add(Math.floor(middleSample / this.#samplesPerStep) - this.#firstStep, 1, meanSquares, firstBand);
+  /** Adds what one short frame tells of some bands to the step that its middle lies in. */
+  push(middleSample: number, meanSquares: Float32Array, range: FingerprintRange): void {
+    this.#add(Math.floor(middleSample / this.#samplesPerStep) - this.#firstStep, 1, meanSquares, range);
   }
 
   /** The same of a frame that is long for a step: shared out over the two steps whose middles are nearest. */
-  pushShared(middleSample: number, meanSquares: Float32Array, firstBand: number): void {
+  pushShared(middleSample: number, meanSquares: Float32Array, range: FingerprintRange): void {
     const place = middleSample / this.#samplesPerStep - 0.5;
     const step = Math.floor(place);
     const later = place - step;
-    this.#add(step - this.#firstStep, 1 - later, meanSquares, firstBand);
-    this.#add(step + 1 - this.#firstStep, later, meanSquares, firstBand);
+    this.#add(step - this.#firstStep, 1 - later, meanSquares, range);
+    this.#add(step + 1 - this.#firstStep, later, meanSquares, range);
   }
 
   finish(): FingerprintPart {
@@ -91,13 +95,14 @@ export class FingerprintTracker {
     return { firstStep: this.#firstStep, words, coarse, strengths };
   }
 
-  #add(step: number, weight: number, meanSquares: Float32Array, firstBand: number): void {
+  #add(step: number, weight: number, meanSquares: Float32Array, range: FingerprintRange): void {
     if (step < 0 || step >= this.#steps) return;
-    const at = step * BANDS + firstBand;
-    const count = Math.min(meanSquares.length, BANDS - firstBand);
-    for (let band = 0; band < count; band++) {
-      this.#sums[at + band]! += weight * meanSquares[band]!;
-      this.#weights[at + band]! += weight;
+    const sums = this.#sums;
+    const weights = this.#weights;
+    const shift = step * BANDS + range.firstBand - range.from;
+    for (let band = range.from; band < range.to; band++) {
+      sums[shift + band]! += weight * meanSquares[band]!;
+      weights[shift + band]! += weight;
     }
   }
 }
@@ -106,17 +111,20 @@ export class FingerprintTracker {
 function windowLogs(sums: Float64Array, weights: Float32Array, perBand: number): Float64Array {
   const steps = sums.length / BANDS;
   const bands = Math.floor(BANDS / perBand);
-  const energies = Float64Array.from({ length: steps * bands }, (_, at) => {
+  const energies = new Float64Array(steps * bands);
+  const logs = new Float64Array(steps * bands).fill(Number.NaN);
+  for (let at = 0; at < energies.length; at++) {
     const first = Math.floor(at / bands) * BANDS + (at % bands) * perBand;
     let energy = 0;
     for (let band = first; band < first + perBand; band++) energy += sums[band]! / weights[band]!;
-    return energy;
-  });
-  return energies.map((_, at) => {
+    energies[at] = energy;
+  }
+  for (let at = (WINDOW_STEPS - 1) * bands; at < logs.length; at++) {
     let energy = SMALLEST_ENERGY;
-    for (let back = 0; back < WINDOW_STEPS; back++) energy += energies[at - back * bands] ?? Number.NaN;
-    return Math.log(energy);
-  });
+    for (let back = 0; back < WINDOW_STEPS; back++) energy += energies[at - back * bands]!;
+    logs[at] = Math.log(energy);
+  }
+  return logs;
 }
 
 /** How the slope from band to band has turned since the window before, as bits; and the least turn of all. */

@@ -20,8 +20,8 @@ export interface LongFramesSettings extends LongFrameStatisticsSettings {
   /** Whether meyda's own extractors give the descriptors, instead of the engine's, which are equal. */
   byMeyda: boolean;
   onRow: (row: FrameRow) => void;
-  /** Mean squares of the bands of a frame that is not silent; reused. */
-  onBands: (frameIndex: number, meanSquares: Float32Array) => void;
+  /** Of a frame that is not silent, the mean squares of its bands are `values[at]` and those that follow; reused. */
+  onBands: (frameIndex: number, values: Float32Array, at: number) => void;
   /** Called when the rows of some frames have been renewed. */
   onRows: (count: number) => void;
 }
@@ -55,7 +55,7 @@ export class LongFrames {
       for (let index = 0; index < count; index++) {
         const isSilent = !this.#describe(index, cursor.samplesOf(run.first + index));
         onRow(this.#row);
-        if (!isSilent) onBands(run.first + index, this.#bandsOf(index));
+        if (!isSilent) onBands(run.first + index, rows.features, this.#bandsAt(index));
       }
     }
   }
@@ -95,10 +95,8 @@ export class LongFrames {
     return LINES_PER_MEAN_SQUARE * sumOf(features, first, first + bands);
   }
 
-  #bandsOf(index: number): Float32Array {
-    const { rows, bands } = this.#settings;
-    const first = index * rows.featureStride + FEATURE.thirdOctaves;
-    return rows.features.subarray(first, first + bands);
+  #bandsAt(index: number): number {
+    return index * this.#settings.rows.featureStride + FEATURE.thirdOctaves;
   }
 
   #copyShape(features: Float32Array, at: number): void {

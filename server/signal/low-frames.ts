@@ -1,5 +1,6 @@
 import { FrameSpectrum } from './frame-spectrum.ts';
-import { LowRateSignal } from './low-rate.ts';
+import type { BlockSummer } from './frame-engine.ts';
+import { lowRateFactor, LowRateSignal } from './low-rate.ts';
 
 const FRAME_S = 0.064;
 
@@ -10,10 +11,26 @@ export interface LowFrame {
   readonly power: Float32Array;
 }
 
+export interface LowFramesSettings {
+  sampleRateHz: number;
+  /** Place in the recording of the first sample that will be pushed. */
+  firstSample: number;
+  /** Sums of `samplesPerLowMean` samples each. */
+  sumBlocks: BlockSummer;
+}
+
+/** Samples of the reduced signal in a frame. */
+export function lowFrameSize(sampleRateHz: number): number {
+  const rateHz = sampleRateHz / lowRateFactor(sampleRateHz);
+  return 2 ** Math.max(5, Math.round(Math.log2(FRAME_S * rateHz)));
+}
+
 /** Frames of about 64 ms, hop half, of a recording reduced to 8 to 16 kHz: what is too slow for the long frames. */
 export class LowFrames {
   readonly rateHz: number;
   readonly size: number;
+  /** Samples of the recording from one frame to the next. */
+  readonly hopSamples: number;
   readonly #signal: LowRateSignal;
   readonly #spectrum: FrameSpectrum;
   readonly #samples: Float32Array;
@@ -23,21 +40,17 @@ export class LowFrames {
   #filled = 0;
   #visited = 0;
 
-  /** @param firstSample place in the recording of the first sample that will be pushed. */
-  constructor(sampleRateHz: number, firstSample: number, visit: (frame: LowFrame) => void) {
-    this.#signal = new LowRateSignal(sampleRateHz);
+  constructor(settings: LowFramesSettings, visit: (frame: LowFrame) => void) {
+    const { sampleRateHz, firstSample, sumBlocks } = settings;
+    this.#signal = new LowRateSignal(sampleRateHz, sumBlocks);
     this.rateHz = this.#signal.rateHz;
-    this.size = 2 ** Math.max(5, Math.round(Math.log2(FRAME_S * this.rateHz)));
+    this.size = lowFrameSize(sampleRateHz);
+    this.hopSamples = (this.size / 2) * lowRateFactor(sampleRateHz);
     this.#spectrum = new FrameSpectrum(this.size);
     this.#samples = new Float32Array(this.size);
     this.#firstSample = firstSample;
     this.#visit = visit;
     this.#frame = { startSample: firstSample, power: this.#spectrum.power };
-  }
-
-  /** Samples of the recording from one frame to the next. */
-  get hopSamples(): number {
-    return (this.size / 2) * this.#signal.factor;
   }
 
   push(samples: Float32Array, from: number, to: number): void {

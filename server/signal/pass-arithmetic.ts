@@ -8,6 +8,7 @@ import type {
 } from './frame-engine.ts';
 import { bandBins, type FramePlan } from './frame-plan.ts';
 import { rowBands } from './frame-row.ts';
+import { samplesPerLowMean } from './low-rate.ts';
 import { samplesPerMean } from './mains.ts';
 import { packageShortFrames } from './package-rows.ts';
 import { CELL_SAMPLES } from './sample-cells.ts';
@@ -27,6 +28,7 @@ export interface PassArithmetic {
   audible: PowerRows | undefined;
   sumCells: CellSummer;
   sumMeans: BlockSummer;
+  sumLowMeans: BlockSummer;
   openTables: OpenSpectrumTables;
 }
 
@@ -41,6 +43,7 @@ export function openArithmetic(
   const ultrasonic = bandBins('ultrasonic', short.size, sampleRateHz);
   const audible = pictures.find(({ layout }) => layout.band === 'audible');
   const means = samplesPerMean(sampleRateHz);
+  const lowMeans = samplesPerLowMean(sampleRateHz);
   return {
     long: engine.longFrames({
       grid: long,
@@ -66,6 +69,7 @@ export function openArithmetic(
         : undefined,
     sumCells: engine.cellSummer(Math.ceil(blockFrames / CELL_SAMPLES) + 1),
     sumMeans: engine.blockSummer(means, Math.ceil(blockFrames / means)),
+    sumLowMeans: engine.blockSummer(lowMeans, Math.ceil(blockFrames / lowMeans)),
     openTables: (settings) => engine.spectrumTables(settings),
   };
 }

@@ -1,4 +1,5 @@
 import { realFft, type RealFft } from './fft.ts';
+import { sumOf } from './frame-spectrum.ts';
 
 /** Band of speech as a telephone carries it. */
 const LEVEL_BAND_HZ = { low: 300, high: 3400 };
@@ -10,6 +11,8 @@ const HIGHEST_HARMONIC_HZ = 1500;
 const STANDS_OUT = 6;
 const HIGHEST_DECADES = 4;
 const SMALLEST_POWER = 1e-14;
+const DECADES_PER_BIT = Math.log10(2) / 2 ** 23;
+const DECADES_OF_ONE = 127 * Math.log10(2);
 const FALL_SHARE = 0.2;
 const RISE_DB_PER_S = 3;
 const LEARNING_FRAMES = 16;
@@ -57,6 +60,9 @@ export class SpeechFrameTracker {
   readonly #fft: RealFft;
   readonly #rise: number;
   readonly #salience: Float32Array;
+  /** A float and its bits, which are its logarithm to within 0.03 decades: a true one would cost more than all the rest. */
+  readonly #ratio = new Float32Array(1);
+  readonly #ratioBits = new Int32Array(this.#ratio.buffer);
   /** Lines that are looked at. */
   readonly #lines: number;
   readonly #levels: number[] = [];
@@ -104,11 +110,8 @@ export class SpeechFrameTracker {
     this.#weigh(power);
     const binHz = this.#rateHz / this.#fft.size;
     const first = Math.ceil(LEVEL_BAND_HZ.low / binHz);
-    const salience = this.#salience;
-    const end = this.#lines;
-    let sum = 0;
-    for (let k = first; k < end; k++) sum += salience[k]!;
-    const levelDb = end > first ? (10 * sum) / (end - first) : 0;
+    const lines = this.#lines - first;
+    const levelDb = lines > 0 ? (10 * sumOf(this.#salience, first, this.#lines)) / lines : 0;
     this.#levels.push(Math.min(255, Math.round(levelDb * LEVEL_STEPS_PER_DB)));
     this.#pitches.push(levelDb < LEAST_LEVEL_DB ? 0 : this.#findPitch(binHz));
   }
@@ -117,6 +120,8 @@ export class SpeechFrameTracker {
     const quiet = this.#quiet;
     const salience = this.#salience;
     const rise = this.#rise;
+    const ratio = this.#ratio;
+    const ratioBits = this.#ratioBits;
     for (let k = 1; k < this.#lines; k++) {
       const value = power[k]!;
       const before = quiet[k]!;
@@ -125,7 +130,10 @@ export class SpeechFrameTracker {
       const now = Math.max(followed, SMALLEST_POWER);
       quiet[k] = now;
       const least = STANDS_OUT * now;
-      salience[k] = value > least ? Math.min(HIGHEST_DECADES, Math.log10(value / least)) : 0;
+      salience[k] = 0;
+      if (value <= least) continue;
+      ratio[0] = value / least;
+      salience[k] = Math.min(HIGHEST_DECADES, ratioBits[0]! * DECADES_PER_BIT - DECADES_OF_ONE);
     }
   }
 

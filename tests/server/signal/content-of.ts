@@ -1,9 +1,19 @@
 import { ChannelContentJoin, ChannelContentTracker } from '../../../server/signal/channel-content.ts';
 import type { SampleFormat } from '../../../server/signal/effective-bits.ts';
-import { FrameSpectrum } from '../../../server/signal/frame-spectrum.ts';
+import type { BlockSummer } from '../../../server/signal/frame-engine.ts';
+import { FrameSpectrum, sumOf } from '../../../server/signal/frame-spectrum.ts';
 import { planFrames } from '../../../server/signal/frame-plan.ts';
 import { rowBands } from '../../../server/signal/frame-row.ts';
+import { samplesPerLowMean } from '../../../server/signal/low-rate.ts';
 import { BandSummer } from '../../../server/signal/third-octaves.ts';
+
+export function lowMeanSums(sampleRateHz: number): BlockSummer {
+  const length = samplesPerLowMean(sampleRateHz);
+  return (samples, from, count) =>
+    Float64Array.from({ length: count }, (_, block) =>
+      sumOf(samples, from + block * length, from + (block + 1) * length),
+    );
+}
 
 /** What a channel holds, found segment by segment as a recording is measured. */
 export function contentOf(
@@ -21,14 +31,15 @@ export function contentOf(
   const sums = new Float32Array(longBands.length);
   for (let startSample = 0; startSample < samples.length; startSample += segment) {
     const endSample = Math.min(samples.length, startSample + segment);
-    const tracker = new ChannelContentTracker({ ...settings, segment: { startSample, endSample } });
+    const segmentSettings = { segment: { startSample, endSample }, sumBlocks: lowMeanSums(sampleRateHz) };
+    const tracker = new ChannelContentTracker({ ...settings, ...segmentSettings });
     tracker.pushSamples(samples, startSample, endSample);
     for (let index = startSample / hop; (index + 1) * hop + hop / 2 <= endSample; index++) {
       const from = Math.max(0, index * hop - hop / 2);
       frame.analyse(samples, from, from + size);
       if (frame.isSilent) continue;
       summer.sum(frame.power, sums);
-      tracker.pushLong(index, sums);
+      tracker.pushLong(index, sums, 0);
     }
     join.add(structuredClone(tracker.finish()));
   }

@@ -5,12 +5,14 @@ import { SpeechFrameTracker } from '../../../server/signal/speech-frames.ts';
 import { screenSpeech, type SpeechPart } from '../../../server/signal/speech-screen.ts';
 import { seededGaussian, seededRandom } from '../../../server/setup/demo-audio/seeded-random.ts';
 import { pinkNoiseSignal, whiteNoiseSignal } from '../../support/wav/signals.ts';
+import { lowMeanSums } from './content-of.ts';
 import { clickScene } from './synthetic-clicks.ts';
 
 function screen(samples: Float32Array, sampleRateHz: number, segment = samples.length) {
   const parts: SpeechPart[] = [];
   for (let startSample = 0; startSample < samples.length; startSample += segment) {
-    const frames = new LowFrames(sampleRateHz, startSample, ({ power }) => tracker.push(power));
+    const settings = { sampleRateHz, firstSample: startSample, sumBlocks: lowMeanSums(sampleRateHz) };
+    const frames = new LowFrames(settings, ({ power }) => tracker.push(power));
     const tracker = new SpeechFrameTracker(frames);
     frames.push(samples, startSample, Math.min(samples.length, startSample + segment));
     parts.push({ ...tracker.finish(), startSample, hopSamples: frames.hopSamples });
