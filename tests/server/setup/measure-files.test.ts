@@ -16,7 +16,7 @@ const RATE_HZ = 192_000;
 function clickRecording(): Uint8Array {
   const frames = 2 * RATE_HZ;
   const burst = { onsetSample: RATE_HZ, amplitude: 0.05, frequencyHz: 40_000, decayS: 0.0002 };
-  const samples = mix(whiteNoiseSignal(frames, 0.001, 3), dampedSines(frames, [burst], RATE_HZ));
+  const samples = mix(whiteNoiseSignal(frames, 0.001, 5), dampedSines(frames, [burst], RATE_HZ));
   return writeWav({ sampleRateHz: RATE_HZ, bitsPerSample: 24, channels: [samples] });
 }
 
