@@ -56,7 +56,7 @@ export function recursiveStaLta(
   return ratios;
 }
 
-function requireWindows({ shortSamples, longSamples }: StaLtaWindows): void {
+export function requireWindows({ shortSamples, longSamples }: StaLtaWindows): void {
   if (
     Number.isInteger(shortSamples) &&
     Number.isInteger(longSamples) &&
