@@ -120,20 +120,27 @@ export class StaLtaEvents {
     const full = Math.max(from, longSamples - 1 - this.#first);
     let short = sumOfSquares(values, from - shortSamples, from);
     let long = sumOfSquares(values, from - longSamples, from);
-    let isActive = this.#isActive;
-    for (let at = from; at < to; at++) {
-      const value = values[at]!;
-      const energy = value * value;
-      const shortGone = values[at - shortSamples]!;
-      const longGone = values[at - longSamples]!;
-      short += energy - shortGone * shortGone;
-      long += energy - longGone * longGone;
-      if (isActive ? short < offSums * long || !(long > 0) : short > onSums * long && at >= full) {
-        isActive = !isActive;
-        this.#turn(this.#first + at, isActive);
+    let at = from;
+    while (at < to) {
+      const isActive = this.#isActive;
+      // Of one sign, both comparisons are one: the sums cross the line upwards outside of an event, downwards inside.
+      const sign = isActive ? -1 : 1;
+      const line = sign * (isActive ? offSums : onSums);
+      const least = isActive ? from : full;
+      let hasTurned = false;
+      for (; at < to && !hasTurned; at++) {
+        const value = values[at]!;
+        const shortGone = values[at - shortSamples]!;
+        const longGone = values[at - longSamples]!;
+        const energy = value * value;
+        short += energy - shortGone * shortGone;
+        long += energy - longGone * longGone;
+        hasTurned = sign * short > line * long && at >= least;
       }
+      if (!hasTurned) return;
+      this.#isActive = !isActive;
+      this.#turn(this.#first + at - 1, this.#isActive);
     }
-    this.#isActive = isActive;
   }
 
   #turn(sample: number, isOn: boolean): void {
