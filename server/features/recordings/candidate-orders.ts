@@ -6,8 +6,8 @@ import type {
   CandidateSortKey,
 } from '../../../shared/contract/candidates.ts';
 import type { Reader } from '../../db/client.ts';
-import { mergeNeighbours, toRankedSlice, type RankedSlice } from './candidate-order.ts';
-import { selectRanked, type DetectorRunRow } from './candidates.queries.ts';
+import { risingPlaces, writeKeys } from './candidate-order.ts';
+import { selectSortValues, type DetectorRunRow } from './candidates.queries.ts';
 
 export interface OrderQuery {
   run: Pick<DetectorRunRow, 'id' | 'candidateCount'>;
@@ -71,16 +71,16 @@ function everything(count: number): CandidateOrder {
 async function rank(db: Reader, { run, sort, filters }: OrderQuery): Promise<Uint32Array> {
   const isDescending = sort.startsWith('-');
   const key = (isDescending ? sort.slice(1) : sort) as CandidateSortKey;
-  let slices: RankedSlice[] = [];
+  const keys = new Float64Array(run.candidateCount);
+  const ordinals = new Uint32Array(run.candidateCount);
+  let count = 0;
   for (let from = 0; from < run.candidateCount; from += rowsPerSlice) {
     const within = { detectorRunId: run.id, from, to: from + rowsPerSlice };
-    const { ordinals, values } = selectRanked(db, within, filters, { key, isDescending });
-    slices.push(toRankedSlice(ordinals, values, isDescending));
+    const found = selectSortValues(db, within, filters, key);
+    ordinals.set(found.ordinals, count);
+    writeKeys(keys.subarray(count), found.values, isDescending);
+    count += found.ordinals.length;
     await nextTurn();
   }
-  while (slices.length > 1) {
-    slices = mergeNeighbours(slices);
-    await nextTurn();
-  }
-  return slices[0]?.ordinals ?? new Uint32Array();
+  return risingPlaces(keys.subarray(0, count)).map((place) => ordinals[place]!);
 }

@@ -62,34 +62,26 @@ const sortColumns = {
   hearingClass: rankOfClass,
 } as const satisfies Record<CandidateSortKey, unknown>;
 
-interface Ranking {
-  key: CandidateSortKey;
-  isDescending: boolean;
-}
-
-/** In order, as columns: made into text by SQLite and parsed once, many rows are read several times quicker. */
-export function selectRanked(
+/** By onset, as columns: made into text by SQLite and parsed once, many rows are read several times quicker. */
+export function selectSortValues(
   db: Reader,
   range: OrdinalRange,
   filters: CandidateFilters,
-  { key, isDescending }: Ranking,
+  key: CandidateSortKey,
 ): { ordinals: number[]; values: (number | null)[] } {
   const value = sql<number | null>`${sortColumns[key]}`.as('value');
-  const ordered = db
+  const found = db
     .select({ ordinal: candidates.ordinal, value })
     .from(candidates)
     .where(and(within(range), matching(filters)))
-    .orderBy(
-      isDescending ? sql`${sortColumns[key]} desc nulls last` : sql`${sortColumns[key]} asc nulls last`,
-      asc(candidates.ordinal),
-    )
-    .as('ordered');
+    .orderBy(asc(candidates.ordinal))
+    .as('found');
   const columns = db
     .select({
-      ordinals: sql<string>`json_group_array(${ordered.ordinal})`,
-      values: sql<string>`json_group_array(${ordered.value})`,
+      ordinals: sql<string>`json_group_array(${found.ordinal})`,
+      values: sql<string>`json_group_array(${found.value})`,
     })
-    .from(ordered)
+    .from(found)
     .get();
   return {
     ordinals: JSON.parse(columns?.ordinals ?? '[]') as number[],
