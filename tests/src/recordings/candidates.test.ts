@@ -92,7 +92,7 @@ describe('the table of candidates', () => {
         count,
         rowAt: candidateAt,
         isBusy: false,
-        sort: 'onset',
+        sort: 'onset' as const,
         rank: 0,
         'onUpdate:rank': (rank: number) => table.setProps({ rank }),
         ...part,
