@@ -47,7 +47,7 @@ function inPieces(samples: Float32Array, pieceSamples: number) {
 }
 
 describe('events by short-term over long-term mean, as a stream', () => {
-  let samples = new Float32Array(0);
+  let samples: Float32Array = new Float32Array(0);
   beforeAll(() => {
     samples = signal();
   });
