@@ -1,16 +1,17 @@
 import { createReadStream } from 'node:fs';
 import { createInterface } from 'node:readline';
 import type {
+  ActiveSpan,
   AudioFormat,
   Bandwidth,
   DetectedCandidate,
   MeasurementSummary,
   Ultrasound,
 } from '../../shared/contract/measurement.ts';
+import { findActiveSpans } from '../signal/active-spans.ts';
 import type { ChannelResult } from '../signal/channel-join.ts';
 import type { CoursePlan } from '../signal/course.ts';
 import { defaultDetectorSettings, detectorVersion } from '../signal/detector-settings.ts';
-import { expectedByChance } from '../signal/detector.ts';
 import { CandidateTally, judgeUltrasound, ultrasonicEnergyShare } from '../signal/ultrasound.ts';
 import { observableBand } from '../signal/ultrasound-band.ts';
 import { joinSpans } from '../signal/ultrasound-tracker.ts';
@@ -41,13 +42,14 @@ export interface DetectionResult {
   ultrasonic: Ultrasound;
   detector: MeasurementSummary['detector'];
   candidatesPerStep: Uint32Array;
+  activeSpans: ActiveSpan[];
   candidateCount: number;
 }
 
 /** Makes one list of candidates, and the verdict on what lies above 20 kHz, of what the segments found. */
 export async function joinDetection(input: DetectionJoinInput): Promise<DetectionResult> {
   const { format, context, course, bandwidth, results } = input;
-  const { sampleRateHz, channels, frames } = format;
+  const { sampleRateHz, frames } = format;
   const { sensorLowHz, sensorHighHz } = context;
   const floorEdgeHz = bandwidth.edge === 'none' ? null : bandwidth.effectiveHz;
   const band = observableBand({ sampleRateHz, sensorLowHz, sensorHighHz, floorEdgeHz });
@@ -64,12 +66,13 @@ export async function joinDetection(input: DetectionJoinInput): Promise<Detectio
   } finally {
     lines.close();
   }
+  const expectedByChance = input.findings.reduce((sum, { part }) => sum + part.expectedByChance, 0);
   const ultrasonic = judgeUltrasound({
     sampleRateHz,
     sensorLowHz,
     band,
     tally,
-    expectedByChance: channels * expectedByChance(frames / sampleRateHz),
+    expectedByChance,
     energyShare: ultrasonicEnergyShare(
       results.map((result) => result.spectra),
       sensorLowHz,
@@ -78,7 +81,12 @@ export async function joinDetection(input: DetectionJoinInput): Promise<Detectio
     tracked: results.map((_, channel) => joinSpans(spansOf(input.findings, channel), input.shortHop)),
   });
   const detector = { version: detectorVersion, settings: { ...defaultDetectorSettings } };
-  return { ultrasonic, detector, candidatesPerStep, candidateCount: lines.count };
+  const activeSpans = findActiveSpans({
+    perStep: candidatesPerStep,
+    samplesPerStep: course.samplesPerStep,
+    ...{ frames, sampleRateHz, expectedByChance },
+  });
+  return { ultrasonic, detector, candidatesPerStep, activeSpans, candidateCount: lines.count };
 }
 
 /** That the floor itself ends below the hearing line is known only after the last sample: then no share means anything. */

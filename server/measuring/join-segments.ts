@@ -74,6 +74,7 @@ export async function joinSegments(input: MeasureInput): Promise<MeasureResult> 
       results.map((result) => result.course),
       found.candidatesPerStep,
     ),
+    activeSpans: found.activeSpans,
     detector: found.detector,
   };
   joinViews(input.viewsDir, layout);

@@ -29,6 +29,8 @@ export interface DetectionPart {
   /** Onsets at most `edgeSamples` from the start and the end of the segment, on both sides. */
   headOnsets: number[];
   tailOnsets: number[];
+  /** Candidates that noise alone may have given in the segment, over all channels. */
+  expectedByChance: number;
   /** One per channel; none where nothing above 20 kHz can be seen. */
   spans: SpanPart[];
 }
@@ -69,6 +71,8 @@ class DetectorsOfSegment implements SegmentDetection {
   readonly #edge: number;
   readonly #headOnsets: number[] = [];
   readonly #tailOnsets: number[] = [];
+  /** Samples of all channels. */
+  #pushed = 0;
 
   constructor(settings: SegmentDetectionSettings) {
     const { format } = settings;
@@ -88,6 +92,7 @@ class DetectorsOfSegment implements SegmentDetection {
   push(channel: number, samples: Float32Array): void {
     const detector = this.#detectors[channel]!;
     detector.push(samples);
+    this.#pushed += samples.length;
     this.#merger.push(detector.take());
   }
 
@@ -106,12 +111,20 @@ class DetectorsOfSegment implements SegmentDetection {
     return {
       headOnsets: this.#headOnsets,
       tailOnsets: this.#tailOnsets,
+      expectedByChance: this.#expectedByChance(),
       spans: this.#trackers.map((tracker) => tracker.finish()),
     };
   }
 
   close(): void {
     this.#lines.close();
+  }
+
+  /** The detectors ran longer than the segment: of what they say, its share of the time. */
+  #expectedByChance(): number {
+    const { startSample, endSample } = this.#settings.segment;
+    const inAll = this.#detectors.reduce((sum, detector) => sum + detector.expectedByChance(), 0);
+    return (inAll * (endSample - startSample) * this.#detectors.length) / Math.max(1, this.#pushed);
   }
 
   /** Detectors count from their first sample; beyond the edges, the neighbours know better. */

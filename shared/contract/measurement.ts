@@ -111,6 +111,16 @@ export const courseSchema = z.object({
 });
 export type Course = z.infer<typeof courseSchema>;
 
+/** A stretch in which candidates are frequent: `ratePerS` over all of it, and how many noise alone may have given there. */
+export const activeSpanSchema = z.object({
+  startSample: z.number().int().min(0),
+  endSample: z.number().int().min(0),
+  candidates: z.number().int(),
+  ratePerS: z.number(),
+  expectedByChance: z.number(),
+});
+export type ActiveSpan = z.infer<typeof activeSpanSchema>;
+
 /** What a channel holds, whoever stored it how. */
 export const channelContentSchema = z.object({
   channel: z.number().int().min(0),
@@ -131,6 +141,8 @@ export const measurementSummarySchema = z.object({
   contents: z.array(channelContentSchema).default([]),
   ultrasonic: ultrasoundSchema,
   course: courseSchema,
+  /** By rising start; none in measurements made before these were found. */
+  activeSpans: z.array(activeSpanSchema).max(50).default([]),
   detector: z.object({
     version: z.string(),
     settings: z.record(z.string(), z.union([z.number(), z.string()])),

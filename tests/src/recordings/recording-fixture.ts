@@ -50,6 +50,7 @@ export function measurement(ultrasonic = ultrasound(), rmsDb: number | null = -5
     bandwidth: { effectiveHz: 412_000, edge: 'none', reason: 'The noise floor shows no edge.' },
     contents: [{ channel: 0, effectiveBits: 16, pcmSha256: 'b'.repeat(64) }],
     ultrasonic,
+    activeSpans: [],
     course: {
       samplesPerStep: 1_000_000,
       levelDb: [-50, -40, null],
