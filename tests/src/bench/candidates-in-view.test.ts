@@ -57,6 +57,7 @@ describe('the counts over the picture', () => {
       beginPath: () => undefined,
       rect: () => undefined,
       clip: () => undefined,
+      fillText: () => undefined,
       fillRect: (...box: number[]) => columns.push(box),
     };
     const places = placeStage({ widthPx: 1066, heightPx: 500, split: 0.5, topHz: 96_000 });
