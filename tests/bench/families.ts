@@ -2,10 +2,12 @@ import type { RowFamily } from './kit/bench.ts';
 import { accuracy } from './rows/accuracy.ts';
 import { archive } from './rows/archive.ts';
 import { bandwidth } from './rows/bandwidth.ts';
+import { candidates } from './rows/candidates.ts';
 import { colours } from './rows/colours.ts';
 import { database } from './rows/database.ts';
 import { decode } from './rows/decode.ts';
 import { detector } from './rows/detector.ts';
+import { events } from './rows/events.ts';
 import { features } from './rows/features.ts';
 import { growth } from './rows/growth.ts';
 import { memory } from './rows/memory.ts';
@@ -21,11 +23,13 @@ export const families: readonly RowFamily[] = [
   memory,
   growth,
   meyda,
+  events,
   accuracy,
   views,
   colours,
   archive,
   database,
+  candidates,
   decode,
   shapes,
   sparse,

@@ -45,6 +45,11 @@ export class ServerVisit {
     this.#server = server;
   }
 
+  /** Of the session, for a browser. */
+  get cookie(): string {
+    return this.#cookie;
+  }
+
   /** Linux keeps the highest resident size of a process. */
   peakMb(): number {
     const status = readFileSync(`/proc/${this.#server.pid}/status`, 'utf8');
