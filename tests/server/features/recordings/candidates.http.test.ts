@@ -1,6 +1,7 @@
 import { parse } from 'csv-parse/sync';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import {
+  candidateSchema,
   candidateSortKeySchema,
   type Candidate,
   type CandidatesPage,
@@ -221,6 +222,14 @@ describe('the files', () => {
     expect(rows[7]).toMatchObject({ snrDb: '', channels: '0 2', clipped: 'false' });
     expect(Number(rows[8]!['peakDb'])).toBe(found[8]!.peakDb);
     expect(answer.text.split('\r\n')).toHaveLength(1203);
+  });
+
+  test('have a column for every value of the contract, also for what older lists lack', async () => {
+    const { rises: _later, ...older } = detectedCandidate();
+    put([older as DetectedCandidate]);
+    const [row = {}] = parse((await get('.csv')).text, { columns: true }) as Record<string, string>[];
+    expect(Object.keys(row).sort()).toEqual(Object.keys(candidateSchema.shape).sort());
+    expect(row['rises']).toBe('1');
   });
 
   test('have lines of JSON as the list has its items', async () => {
