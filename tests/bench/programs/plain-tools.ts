@@ -13,7 +13,7 @@ const openNoDetection: OpenDetection = ({ candidatesPath }) => {
     settle: () => undefined,
     finish: () => {
       lines.close();
-      return { headOnsets: [], tailOnsets: [], spans: [] };
+      return { headOnsets: [], tailOnsets: [], expectedByChance: 0, spans: [] };
     },
     close: () => lines.close(),
   };
