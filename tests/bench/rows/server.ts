@@ -1,3 +1,4 @@
+import { rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { setTimeout as wait } from 'node:timers/promises';
 import { z } from 'zod';
@@ -39,6 +40,7 @@ async function whileMeasuring(
     return [latencyRow(threads, busy, idle), memoryRow(threads, visit.peakMb())];
   } finally {
     await visit.end();
+    rmSync(dataDir, { recursive: true, force: true });
   }
 }
 

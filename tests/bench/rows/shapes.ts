@@ -1,3 +1,4 @@
+import { rmSync } from 'node:fs';
 import type { Bench, BenchRow, RowFamily } from '../kit/bench.ts';
 import { megabytes, short } from '../kit/figures.ts';
 import { runMeasure } from '../kit/measurements.ts';
@@ -23,6 +24,7 @@ export const shapes: RowFamily = {
     for (const shape of SHAPES) {
       const recording = makeRecording(bench, { ...shape, frames: samples / shape.channels });
       rows.push(await measuredRow(bench, recording, nameOf(shape)));
+      rmSync(recording.path);
     }
     return rows;
   },
@@ -34,7 +36,7 @@ function nameOf({ sampleRateHz, encoding, bitsPerSample, channels }: Shape): str
 }
 
 /** Figures without a limit: how they grow is what matters. */
-export async function measuredRow(bench: Bench, recording: MadeRecording, name: string): Promise<BenchRow> {
+async function measuredRow(bench: Bench, recording: MadeRecording, name: string): Promise<BenchRow> {
   const { wallS, cpuS, peakMb } = await runMeasure(bench, recording, { workers: 2 });
   const perSampleNs = (cpuS / (recording.frames * recording.channels)) * 1e9;
   return {
