@@ -7,6 +7,8 @@ export interface ActiveRegion {
   readonly bestEndSample: number;
   readonly lowHz: number;
   readonly highHz: number;
+  /** Lower edge of the octave. */
+  readonly octaveLowHz: number;
   /** Log-likelihood by which the best window departs from noise. */
   readonly evidence: number;
   /** Values summed in the best window. */

@@ -1,14 +1,7 @@
 import type { SourceSignal } from './band-energy.ts';
 import { DIFFERENCE_REACH } from './differenced-spectrum.ts';
 import { SineEdge } from './sine-edge.ts';
-import {
-  planWindow,
-  SHORTEST_WINDOW,
-  TWO_BANDS,
-  WINDOW_KINDS,
-  WINDOW_POINTS,
-  type WindowPlan,
-} from './sine-windows.ts';
+import { planWindow, SHORTEST_WINDOW, TWO_BANDS, WINDOW_KINDS, type WindowPlan } from './sine-windows.ts';
 import { type FittedWindow, SpectrumFit } from './spectrum-fit.ts';
 
 /** A damped sine found in noise: exp(-t / decayS) sin(2 pi f t + phase) from its onset on. */
@@ -99,9 +92,9 @@ export class DampedSineSearch {
     );
     const plan = plans[kind];
     if (!plan) return null;
-    const { margin, skirt } = plan.kind;
+    const { margin, skirt, points } = plan.kind;
     const widthHz = highHz - lowHz + 2 * (margin + skirt) * this.#widthHz;
-    if ((widthHz * plan.size) / rateHz > WINDOW_POINTS) return null;
+    if ((widthHz * plan.size) / rateHz > points) return null;
     return { kind, lowHz, highHz, firstSample, lastSample: firstSample };
   }
 

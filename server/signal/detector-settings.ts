@@ -37,7 +37,7 @@ export const defaultDetectorSettings: DetectorSettings = {
   lowestHz: 1000,
   highestShareOfRate: 0.45,
   chanceRateHz: 1 / 600,
-  chanceShare: 0.05,
+  chanceShare: 0.08,
   sureMemoryS: 3,
   sureRateHz: 0.1,
   longestWindowS: 0.02,

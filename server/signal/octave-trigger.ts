@@ -262,6 +262,7 @@ export class OctaveTrigger {
       bestEndSample: endSample,
       lowHz: lowHz + test.low * this.#leafHz,
       highHz: lowHz + test.high * this.#leafHz,
+      octaveLowHz: lowHz,
       evidence: evidenceOf(test, sum),
       degrees: test.degrees,
       powerRatio: sum / test.degrees,

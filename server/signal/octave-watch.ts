@@ -8,7 +8,7 @@ import { OctaveTrigger } from './octave-trigger.ts';
 import type { WeakSpot } from './weak-spots.ts';
 
 /** Chance that noise gives a weak spot in one window: as many are looked at closely as cost about as much as the rest. */
-const WEAK_CHANCE = 1e-3;
+const WEAK_CHANCE = 4e-4;
 /** A sine that was there before its onset is no onset. */
 const MOST_BEFORE = 0.4;
 
@@ -130,7 +130,9 @@ export class OctaveWatch {
   #take(): void {
     for (const item of this.trigger.takeRegions()) {
       const { end } = searchReach(item, this.#sampleRateHz);
-      this.#regions.push({ item, fromSample: item.startSample, dueSample: end });
+      const spot = this.#sines.spotAbout(item);
+      const dueSample = Math.max(end, spot ? this.#sines.reachOf(spot)[1] : 0);
+      this.#regions.push({ item, fromSample: item.startSample, dueSample });
     }
     for (const weak of this.trigger.takeWeakSpots()) {
       const item = this.#spotOf(weak);
@@ -160,7 +162,7 @@ export class OctaveWatch {
     const sample = Math.max(0, Math.round(sine.onsetSample));
     const near = nearest(found, sample);
     const reach = Math.max(sine.decayS, PERIODS_OFF / sine.frequencyHz) * this.#sampleRateHz;
-    if (!near || (found.length > 1 && Math.abs(near.sample - sample) > reach)) return found;
+    if (!near || (near.isStep && Math.abs(near.sample - sample) > reach)) return found;
     const fitted = {
       octave: this.#octave,
       statistic: sine.statistic,
@@ -186,6 +188,8 @@ export class OctaveWatch {
       endSample,
       bestStartSample: sample,
       bestEndSample: endSample,
+      // What was there before is far less than what begins, or it would not be taken for an onset.
+      isStep: true,
       sine: { octave: this.#octave, statistic, decaySamples: decayS * this.#sampleRateHz, alone: true },
     };
   }

@@ -2,8 +2,6 @@ import type { OnsetFound } from './onset-search.ts';
 
 const PERIODS_APART = 3;
 const ECHO_SHARE = 0.2;
-/** A region in a damped sine's ringing is a burst of its own only where the energy rises by so much. */
-const CLEAR_RISE = 6;
 /** A damped sine is still heard so many decay times after its onset. */
 const RING_DECAYS = 4;
 
@@ -55,16 +53,22 @@ function reach(lead: OnsetFound, other: OnsetFound, separationSamples: number, s
 function isEchoOf(onset: OnsetFound, lead: OnsetFound): boolean {
   if (onset.evidence >= ECHO_SHARE * lead.evidence) return false;
   if (!onset.sine?.alone) return lead.sample >= onset.bestStartSample && lead.sample < onset.bestEndSample;
-  const before = lead.startSample - RING_DECAYS * onset.sine.decaySamples;
-  return onset.sample >= before && onset.sample < lead.endSample;
+  return onset.sample >= ringingBegin(onset, lead) && onset.sample < lead.endSample;
 }
 
+/** Whether it is what goes on of a stronger burst in the same band, rather than a step in it. */
 function isInRinging(onset: OnsetFound, lead: OnsetFound): boolean {
   if (onset.lowHz >= lead.highHz || onset.highHz <= lead.lowHz) return false;
+  // What was there before a sine is told over one decay time: within it the stronger burst may be the same.
+  const apart = onset.sine?.alone ? onset.sine.decaySamples : 0;
+  if (onset.sample > lead.sample + apart && onset.isStep) return false;
   const end = lead.sine ? lead.sample + RING_DECAYS * lead.sine.decaySamples : lead.endSample;
-  if (onset.sample >= end) return false;
-  if (onset.sine?.alone) return onset.sample > lead.sample - RING_DECAYS * onset.sine.decaySamples;
-  return lead.sine !== null && onset.sample > lead.sample && onset.rise < CLEAR_RISE;
+  return onset.sample >= ringingBegin(onset, lead) && onset.sample < end;
+}
+
+/** A sine that leads into a stronger burst is what a window that ends in it has of that. */
+function ringingBegin(onset: OnsetFound, lead: OnsetFound): number {
+  return onset.sine?.alone ? lead.sample - RING_DECAYS * onset.sine.decaySamples : lead.sample;
 }
 
 function describe(lead: OnsetFound, joined: readonly OnsetFound[]): ChosenOnset {

@@ -2,9 +2,9 @@ import type { SourceSignal } from './band-energy.ts';
 import { chiSquareThreshold } from './chi-square.ts';
 import { type Biquad, butterworth, filterInPlace, groupDelaySamples } from './biquad.ts';
 import type { DetectorSettings } from './detector-settings.ts';
-import { median } from './noise-floor.ts';
 import type { ActiveRegion } from './active-region.ts';
 import { pickOnset } from './onset.ts';
+import { backgroundOf, steepPlaces, type SteepPlace } from './steep-places.ts';
 
 /** An onset found in one octave. Places are samples of the input. */
 export interface OnsetFound {
@@ -20,6 +20,8 @@ export interface OnsetFound {
   readonly endSample: number;
   readonly bestStartSample: number;
   readonly bestEndSample: number;
+  /** Whether the energy rises by a step over what was right before, not only over the floor. */
+  readonly isStep: boolean;
   /** The damped sine that fits it. */
   readonly sine: FittedSine | null;
 }
@@ -43,6 +45,10 @@ export interface OnsetSearch {
 const LEAST_HALF_BAND_RATIO = 1.19;
 const PERIODS_PER_SMOOTHING = 2;
 const LOUD_ENOUGH = 40;
+/** Averages that are longer by this are made twice. */
+const LONGER_SMOOTHING = 1.3;
+/** Mean power of the best window over the floor, over the octave, from which the octave is searched as a whole. */
+const LOUD_OCTAVE = 10;
 /** A region longer than this may be a change of the background. */
 const LONG_REGION_S = 0.02;
 /** Chance that noise gives one smoothed energy as high as a new burst's. */
@@ -58,10 +64,9 @@ export function searchReach(region: ActiveRegion, sampleRateHz: number): { start
 /**
  * Onsets inside an active region: where the energy that follows stands most over the energy that came before.
  *
- * The samples are limited to the band that stood out; two one-sided exponential means of the squared result, one of the
- * past P and one of the future Q, give the rise R = Q / (P + m noise). The largest rise is the region's onset; others
- * count where R exceeds the step. A second click is so found within the ringing of the first. The place is refined by
- * Akaike's criterion about the largest rise, and the group delays of the filters are taken off.
+ * The samples are limited to the band that stood out (see `steepPlaces`): averaged for long enough to see the burst at all, its highest rise is
+ * the region's onset; averaged over two periods, every rise by a step is an onset of its own, so that a second click is found within
+ * the ringing of the first. The place is refined by Akaike's criterion about it, and the group delays of the filters are taken off.
  */
 export function findOnsets({ source, region, sampleRateHz, settings }: OnsetSearch): OnsetFound[] {
   const rateHz = sampleRateHz / source.decimation;
@@ -76,58 +81,80 @@ export function findOnsets({ source, region, sampleRateHz, settings }: OnsetSear
   );
   filterInPlace(filtered, sections);
   const settle = Math.min(filtered.length, Math.ceil((4 / band.lowHz) * rateHz));
-  const smoothing = band.smoothingS * rateHz;
   const noise = region.noisePerHz * source.decimation ** 2 * (band.highHz - band.lowHz);
-  const { past, future } = oneSidedMeans(filtered, settle, smoothing, noise);
-  const from = Math.max(settle, Math.floor(region.startSample / source.decimation - first - smoothing));
-  const to = Math.min(filtered.length, Math.ceil(region.endSample / source.decimation) - first);
-  const apart = Math.max(settings.shortestSeparationS * rateHz, smoothing);
-  const degrees = Math.max(1, Math.round(4 * (band.highHz - band.lowHz) * band.smoothingS));
-  const clear = clearRatio(degrees);
-  const step = 10 ** (settings.stepDb / 10);
-  const level = from < to ? backgroundOf(filtered.subarray(from, to), noise, LONG_REGION_S * rateHz) : noise;
-  const { continues } = region;
-  const places = steepestPlaces({
-    past,
-    future,
-    from,
-    to,
-    apart,
+  const places = placesIn(filtered, {
+    from: Math.max(
+      settle,
+      Math.floor(region.startSample / source.decimation - first - band.smoothingS * rateHz),
+    ),
+    to: Math.min(filtered.length, Math.ceil(region.endSample / source.decimation) - first),
+    settle,
     noise,
-    level,
-    step,
-    clear,
-    smoothing,
-    continues,
+    ...{ region, band, settings, rateHz },
   });
-  return places.flatMap((place, index) => {
-    const before = Math.max(settle, index > 0 ? (places[index - 1] ?? 0) + smoothing / 2 : 0);
-    const window = {
-      from: Math.floor(Math.max(before, place - 4 * smoothing)),
-      to: Math.min(filtered.length, Math.ceil(place + 1.5 * smoothing)),
-    };
-    const pick = pickOnset(filtered.subarray(window.from, window.to), {
+  return places.flatMap(({ place, isStep, rise, power, smoothing }, index) => {
+    const before = Math.max(settle, index > 0 ? (places[index - 1]?.place ?? 0) + smoothing / 2 : 0);
+    const start = Math.floor(Math.max(before, place - 4 * smoothing));
+    const end = Math.min(filtered.length, Math.ceil(place + 1.5 * smoothing));
+    const pick = pickOnset(filtered.subarray(start, end), {
       minimumStepDb: settings.onsetGateDb,
       independentShare: Math.min(1, (2 * (band.highHz - band.lowHz)) / rateHz),
     });
     if (!pick) return [];
-    const inFilter = first + window.from + pick.index - delay * visibleDelay((future[place] ?? 0) / noise);
+    const inFilter = first + start + pick.index - delay * visibleDelay(power / noise);
+    const { evidence, lowHz, highHz, startSample, endSample, bestStartSample, bestEndSample } = region;
     return [
       {
         sample: Math.max(0, Math.round(source.inputSample(inFilter, band.centreHz))),
         uncertaintySamples: pick.uncertaintySamples * source.decimation,
-        evidence: region.evidence,
-        rise: (future[place] ?? 0) / ((past[place] ?? 0) + noise),
-        lowHz: region.lowHz,
-        highHz: region.highHz,
-        startSample: region.startSample,
-        endSample: region.endSample,
-        bestStartSample: region.bestStartSample,
-        bestEndSample: region.bestEndSample,
+        ...{ evidence, rise, lowHz, highHz, startSample, endSample, bestStartSample, bestEndSample, isStep },
         sine: null,
       },
     ];
   });
+}
+
+interface RegionPlaces {
+  readonly from: number;
+  readonly to: number;
+  readonly settle: number;
+  readonly noise: number;
+  readonly region: ActiveRegion;
+  readonly band: ReturnType<typeof searchBand>;
+  readonly settings: DetectorSettings;
+  readonly rateHz: number;
+}
+
+/** The highest rise by the long averages, where no step of the short ones lies near, and all steps of the short ones. */
+function placesIn(filtered: Float64Array, options: RegionPlaces): SteepPlace[] {
+  const { from, to, settle, noise, region, band, settings, rateHz } = options;
+  if (to <= from) return [];
+  const level = backgroundOf(filtered.subarray(from, to), noise, LONG_REGION_S * rateHz);
+  const step = 10 ** (settings.stepDb / 10);
+  const placesAt = (smoothingS: number, takesHighest: boolean) => {
+    const smoothing = smoothingS * rateHz;
+    const apart = Math.max(settings.shortestSeparationS * rateHz, smoothing);
+    const clear = clearRatio(Math.max(1, Math.round(4 * (band.highHz - band.lowHz) * smoothingS)));
+    return steepPlaces(filtered, {
+      from,
+      to,
+      settle,
+      noise,
+      level,
+      step,
+      smoothing,
+      apart,
+      clear,
+      takesHighest,
+    });
+  };
+  const wide = placesAt(band.smoothingS, !region.continues);
+  if (band.smoothingS < LONGER_SMOOTHING * band.shortestS) return wide;
+  const sharp = placesAt(band.shortestS, false);
+  const alone = wide.filter(({ place, smoothing }) =>
+    sharp.every((other) => Math.abs(other.place - place) > smoothing),
+  );
+  return [...sharp, ...alone].sort((a, b) => a.place - b.place);
 }
 
 const clearRatios = new Map<number, number>();
@@ -145,112 +172,25 @@ export function bandSections(lowHz: number, highHz: number, sampleRateHz: number
   return [...sections, ...butterworth('lowpass', 2, highHz, sampleRateHz)];
 }
 
+/** The band that stood out, or the whole octave where that stands out as well: another burst may lie elsewhere in it. */
 function searchBand(region: ActiveRegion, sampleRateHz: number) {
+  const { octaveLowHz, powerRatio } = region;
+  const share = (region.highHz - region.lowHz) / octaveLowHz;
+  const isLoud = (powerRatio - 1) * share > LOUD_OCTAVE;
   const centreHz = Math.sqrt(region.lowHz * region.highHz);
-  const lowHz = Math.min(region.lowHz * 0.95, centreHz / LEAST_HALF_BAND_RATIO);
-  const highHz = Math.min(sampleRateHz / 2, Math.max(region.highHz * 1.05, centreHz * LEAST_HALF_BAND_RATIO));
-  const shortest = PERIODS_PER_SMOOTHING / centreHz;
+  const edges = isLoud
+    ? { lowHz: octaveLowHz, highHz: 2 * octaveLowHz }
+    : {
+        lowHz: Math.min(region.lowHz, centreHz / LEAST_HALF_BAND_RATIO),
+        highHz: Math.max(region.highHz, centreHz * LEAST_HALF_BAND_RATIO),
+      };
+  const lowHz = 0.95 * edges.lowHz;
+  const highHz = Math.min(sampleRateHz / 2, 1.05 * edges.highHz);
+  const shortestS = PERIODS_PER_SMOOTHING / centreHz;
   const windowS = (region.bestEndSample - region.bestStartSample) / sampleRateHz;
-  const wanted = LOUD_ENOUGH / (region.powerRatio * (highHz - lowHz));
-  const smoothingS = Math.max(shortest, Math.min(wanted, windowS / 2));
-  return { centreHz, lowHz, highHz, smoothingS };
-}
-
-/** Means of the energy before and from each sample on, exponential, starting from the noise at both ends. */
-function oneSidedMeans(filtered: Float64Array, settle: number, smoothing: number, noise: number) {
-  const count = filtered.length;
-  const keep = Math.exp(-1 / smoothing);
-  const take = 1 - keep;
-  const future = new Float64Array(count);
-  let mean = noise;
-  for (let n = count - 1; n >= 0; n--) {
-    mean = keep * mean + take * (filtered[n] ?? 0) ** 2;
-    future[n] = mean;
-  }
-  const past = new Float64Array(count).fill(noise, 0, settle);
-  mean = noise;
-  for (let n = settle; n < count; n++) {
-    past[n] = mean;
-    mean = keep * mean + take * (filtered[n] ?? 0) ** 2;
-  }
-  return { past, future };
-}
-
-/**
- * What the background may have become inside a long region: where a level lasts it is no burst, and chance rises of it are
- * no onsets. The median of squared normal values is 0.4549 of their mean.
- */
-function backgroundOf(filtered: Float64Array, noise: number, longSamples: number): number {
-  if (filtered.length < longSamples) return noise;
-  const stride = Math.max(1, Math.floor(filtered.length / 1000));
-  const squares = Float64Array.from(
-    { length: Math.floor(filtered.length / stride) },
-    (_, k) => (filtered[k * stride] ?? 0) ** 2,
-  );
-  return Math.max(noise, median(squares) / 0.4549);
-}
-
-interface PlaceSearch {
-  readonly past: Float64Array;
-  readonly future: Float64Array;
-  readonly from: number;
-  readonly to: number;
-  readonly apart: number;
-  readonly noise: number;
-  readonly smoothing: number;
-  /** Background inside the region, the noise or more. */
-  readonly level: number;
-  /** Rise that begins a new burst inside another one. */
-  readonly step: number;
-  /** Whether the region goes on from another one, so that its highest rise need not be an onset. */
-  readonly continues: boolean;
-  /** Mean energy over the noise that chance does not explain. */
-  readonly clear: number;
-}
-
-/** Places of the largest rises in order of time, none nearer to another than `apart`. */
-function steepestPlaces(search: PlaceSearch): number[] {
-  const { past, future, apart, level, step, clear, smoothing, continues } = search;
-  const maxima = risingMaxima(search).sort((a, b) => b.rise - a.rise || a.place - b.place);
-  const places: number[] = [];
-  for (const { place } of maxima) {
-    if (places.some((other) => Math.abs(other - place) < apart)) continue;
-    // What comes before a later, larger rise must stand without it: the mean of the future already feels it.
-    const next = places.reduce((least, other) => (other > place && other < least ? other : least), Infinity);
-    const later = next === Infinity ? 0 : (future[next] ?? 0) * Math.exp((place - next) / smoothing);
-    const stands =
-      (future[place] ?? 0) - later >
-      Math.max(step * (past[place] ?? 0) + clear * search.noise, clear * level);
-    if (stands || (places.length === 0 && !continues)) places.push(place);
-  }
-  return places.sort((a, b) => a - b);
-}
-
-/** Local maxima of the rise: the highest, and those that may stand as bursts of their own. */
-function risingMaxima({
-  past,
-  future,
-  from,
-  to,
-  noise,
-  step,
-  clear,
-}: PlaceSearch): { place: number; rise: number }[] {
-  const maxima: { place: number; rise: number }[] = [];
-  let highest = { place: -1, rise: 0 };
-  let before = 0;
-  let here = (future[from] ?? 0) / ((past[from] ?? 0) + noise);
-  for (let n = from; n < to; n++) {
-    const after = n + 1 < future.length ? (future[n + 1] ?? 0) / ((past[n + 1] ?? 0) + noise) : 0;
-    if (here >= before && here > after) {
-      if (here > highest.rise) highest = { place: n, rise: here };
-      if ((future[n] ?? 0) > step * (past[n] ?? 0) + clear * noise) maxima.push({ place: n, rise: here });
-    }
-    before = here;
-    here = after;
-  }
-  if (highest.place >= 0 && !maxima.some(({ place }) => place === highest.place)) maxima.push(highest);
-  return maxima;
+  const wanted = LOUD_ENOUGH / (region.powerRatio * (region.highHz - region.lowHz));
+  const smoothingS = Math.max(shortestS, Math.min(wanted, windowS / 2));
+  return { centreHz, lowHz, highHz, smoothingS, shortestS };
 }
 
 const VISIBLE_DELAY: readonly (readonly [number, number])[] = [

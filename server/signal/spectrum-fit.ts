@@ -1,7 +1,7 @@
 import type { SourceSignal } from './band-energy.ts';
 import { inverseFft, type InverseFft } from './complex-fft.ts';
 import { differencedSpectrum, responseOf } from './differenced-spectrum.ts';
-import { TAIL_DECAYS, WINDOW_POINTS, type WindowPlan } from './sine-windows.ts';
+import { MOST_POINTS, TAIL_DECAYS, type WindowPlan } from './sine-windows.ts';
 
 /** Decays are looked for down to a kind's own over this. */
 const MOST_SHRINKING = 4;
@@ -20,11 +20,12 @@ export interface FittedWindow {
 export class SpectrumFit {
   readonly #rateHz: number;
   #size = 0;
+  #points = MOST_POINTS;
   #firstBin = 0;
   #bins = 0;
-  readonly #re = new Float64Array(WINDOW_POINTS);
-  readonly #im = new Float64Array(WINDOW_POINTS);
-  readonly #inverse = new Float64Array(WINDOW_POINTS);
+  readonly #re = new Float64Array(MOST_POINTS);
+  readonly #im = new Float64Array(MOST_POINTS);
+  readonly #inverse = new Float64Array(MOST_POINTS);
 
   constructor(rateHz: number) {
     this.#rateHz = rateHz;
@@ -34,7 +35,7 @@ export class SpectrumFit {
   load(
     source: SourceSignal,
     first: number,
-    { size, taper }: WindowPlan,
+    { size, taper, kind }: WindowPlan,
     band: {
       lowHz: number;
       highHz: number;
@@ -48,8 +49,9 @@ export class SpectrumFit {
     const binHz = this.#rateHz / size;
     const { lowHz, highHz, skirtHz } = band;
     const firstBin = Math.max(1, Math.ceil((lowHz - skirtHz) / binHz));
-    const last = Math.min(size / 2 - 1, Math.floor((highHz + skirtHz) / binHz), firstBin + WINDOW_POINTS - 1);
+    const last = Math.min(size / 2 - 1, Math.floor((highHz + skirtHz) / binHz), firstBin + kind.points - 1);
     this.#size = size;
+    this.#points = kind.points;
     this.#firstBin = firstBin;
     this.#bins = last - firstBin + 1;
     for (let k = 0, bin = firstBin; bin <= last; k++, bin++) {
@@ -74,22 +76,22 @@ export class SpectrumFit {
   }): FittedWindow {
     const fft = this.#baseband();
     const { lowHz, highHz, decay } = range;
-    const samplesPerPoint = this.#size / WINDOW_POINTS;
+    const samplesPerPoint = this.#size / this.#points;
     const binHz = this.#rateHz / this.#size;
     const from = Math.max(0, Math.ceil(range.earliest / samplesPerPoint));
-    const to = Math.min(WINDOW_POINTS - 1, Math.floor(range.latest / samplesPerPoint));
-    const end = Math.min(WINDOW_POINTS - 1, Math.ceil(to + (TAIL_DECAYS * decay) / samplesPerPoint));
+    const to = Math.min(this.#points - 1, Math.floor(range.latest / samplesPerPoint));
+    const end = Math.min(this.#points - 1, Math.ceil(to + (TAIL_DECAYS * decay) / samplesPerPoint));
     const shrink = Math.exp(-samplesPerPoint / decay);
     const stepHz = this.#rateHz / (STEPS_PER_BANDWIDTH * decay);
     const count = Math.max(1, Math.round((highHz - lowHz) / stepHz));
-    const scale = (2 * (1 - shrink * shrink)) / (WINDOW_POINTS * this.#size);
+    const scale = (2 * (1 - shrink * shrink)) / (this.#points * this.#size);
     let best: FittedWindow = { onset: 0, frequencyHz: lowHz, decay, statistic: 0 };
     for (let k = 0; k <= count; k++) {
       const frequencyHz = lowHz + (k / count) * (highHz - lowHz);
       const offset = frequencyHz / binHz - this.#firstBin;
       const inverse = this.#inverse[Math.round(offset)] ?? 0;
       if (!(inverse > 0)) continue;
-      const turn = (2 * Math.PI * offset) / WINDOW_POINTS;
+      const turn = (2 * Math.PI * offset) / this.#points;
       const peak = strongest(fft, {
         cosine: shrink * Math.cos(turn),
         sine: shrink * Math.sin(turn),
@@ -107,7 +109,7 @@ export class SpectrumFit {
   /** The best by steps of halving size in onset, frequency and decay; given up where the first round does not reach `hopeful`. */
   refine(coarse: FittedWindow, hopeful: number): FittedWindow {
     let best = { ...coarse, statistic: this.statisticAt(coarse, 1) };
-    let onsetStep = this.#size / WINDOW_POINTS / 2;
+    let onsetStep = this.#size / this.#points / 2;
     let frequencyStep = this.#rateHz / (2 * STEPS_PER_BANDWIDTH * coarse.decay);
     let decayFactor = 1.4;
     for (let round = 0; round < 5; round++) {
@@ -179,7 +181,7 @@ export class SpectrumFit {
   }
 
   #baseband(): InverseFft {
-    const fft = inverseFft(WINDOW_POINTS);
+    const fft = inverseFft(this.#points);
     fft.re.fill(0);
     fft.im.fill(0);
     for (let k = 0; k < this.#bins; k++) {
