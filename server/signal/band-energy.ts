@@ -1,4 +1,5 @@
-import { lowHalfDelaySamples, QuarterEnergies, UpperHalfSplitter } from './half-band.ts';
+import { lowHalfDelaySamples, SPLITTER_STATES } from './half-band.ts';
+import type { Held, OctaveArithmetic, QuarterSplit, UpperHalfSplit } from './octave-arithmetic.ts';
 
 /** Sub-bands of equal width in hertz that one octave is split into. */
 export const BANDS_PER_OCTAVE = 8;
@@ -35,12 +36,23 @@ export interface OctaveBand {
   /** Input samples per cell: two squared samples of each sub-band. */
   readonly samplesPerCell: number;
   readonly cellsPerBlock: number;
-  /** Squares of the block last processed, [sub-band by rising frequency][2 x cell]; of white noise of variance 1 `gain`. */
-  readonly energies: Float64Array;
+  /** Squares of the block last processed, [2 x cell][sub-band by rising frequency]; of white noise of variance 1 `gain`. */
+  readonly energies: Held<Float64Array>;
   readonly gain: number;
-  /** Samples of the lower and the upper half of the octave; white noise of variance 1 has variance `halfGain`. */
-  readonly halves: readonly [Float64Array, Float64Array];
+  /** Samples of the halves of the octave; white noise of variance 1 has variance `halfGain`. */
+  readonly lowerHalf: Held<Float64Array>;
+  readonly upperHalf: Held<Float64Array>;
   readonly halfGain: number;
+}
+
+export interface TreeOptions {
+  readonly arithmetic: OctaveArithmetic;
+  readonly sampleRateHz: number;
+  readonly octaves: number;
+  /** Samples of a block, at least. */
+  readonly blockSamples: number;
+  /** Samples of the input that are kept; of the decimated ones as long a time, and at least 4,096 samples. */
+  readonly heldSamples: number;
 }
 
 /** Samples of a block of whole cells of every octave, at least so many. */
@@ -65,67 +77,74 @@ export class OctaveTree {
   /** Samples that `process` takes. */
   readonly blockSamples: number;
   readonly #stages: readonly OctaveStage[];
-  readonly #rest: Float32Array;
+  readonly #sources: readonly HeldSource[];
 
-  /** @param heldSamples samples of the input that are kept; of the decimated ones as long a time, and at least 4,096 samples. */
-  constructor(options: { sampleRateHz: number; octaves: number; blockSamples: number; heldSamples: number }) {
-    const { sampleRateHz, octaves } = options;
+  constructor(options: TreeOptions) {
+    const { arithmetic, octaves } = options;
     const blockSamples = blockSamplesOf(octaves, options.blockSamples);
     this.blockSamples = blockSamples;
-    this.#stages = Array.from(
-      { length: octaves },
-      (_, index) => new OctaveStage({ sampleRateHz, index, blockSamples, heldSamples: options.heldSamples }),
+    const sources = Array.from(
+      { length: octaves + 1 },
+      (_, index) => new HeldSource(options, index, blockSamples),
     );
-    this.#rest = new Float32Array(blockSamples / 2 ** octaves);
+    this.#stages = sources.slice(0, octaves).map((source, index) => {
+      return new OctaveStage({
+        arithmetic,
+        source,
+        next: sources[index + 1]!,
+        sampleRateHz: options.sampleRateHz,
+        index,
+      });
+    });
+    this.#sources = sources;
     this.octaves = this.#stages;
-    this.sources = this.#stages.map((stage) => stage.source);
+    this.sources = sources.slice(0, octaves);
   }
 
   /** Numbers the samples of all sources anew: the next block begins with sample 0. */
   countFromHere(): void {
-    for (const { source } of this.#stages) source.countFromHere();
+    for (const source of this.#sources) source.countFromHere();
   }
 
   /** Samples taken since the counting began. */
   get processedSamples(): number {
-    return this.#stages[0]?.source.end ?? 0;
+    return this.#sources[0]?.end ?? 0;
   }
 
   /** Takes the next block; the energies then lie in `octaves`. */
   process(block: Float32Array): void {
-    for (const { source } of this.#stages) source.makeRoom();
-    const first = this.#stages[0]?.source;
-    first?.values.set(block, first.room);
-    this.#stages.forEach((stage, k) => {
-      const next = this.#stages[k + 1]?.source;
-      stage.process(next?.values ?? this.#rest, next?.room ?? 0);
-    });
+    for (const source of this.#sources) source.makeRoom();
+    const first = this.#sources[0]!;
+    first.values.set(block, first.room);
+    for (const stage of this.#stages) stage.process();
   }
-}
-
-interface StageOptions {
-  readonly sampleRateHz: number;
-  readonly index: number;
-  readonly blockSamples: number;
-  readonly heldSamples: number;
 }
 
 /** Holds the last samples in one piece: they are moved to the front whenever the array is full. */
 class HeldSource implements SourceSignal {
   readonly decimation: number;
-  readonly values: Float32Array;
+  readonly held: Held<Float32Array>;
   origin = 0;
   end = 0;
   readonly blockSamples: number;
   readonly #sampleRateHz: number;
-  readonly #held: number;
+  readonly #kept: number;
 
-  constructor({ sampleRateHz, index, blockSamples, heldSamples }: StageOptions) {
+  constructor(
+    { arithmetic, sampleRateHz, octaves, heldSamples }: TreeOptions,
+    index: number,
+    blockSamples: number,
+  ) {
     this.#sampleRateHz = sampleRateHz;
     this.decimation = 2 ** index;
     this.blockSamples = blockSamples / this.decimation;
-    this.#held = Math.max(LEAST_HELD, Math.ceil(heldSamples / this.decimation));
-    this.values = new Float32Array(2 * this.#held + 2 * this.blockSamples);
+    // Nobody looks into what is left below the lowest octave.
+    this.#kept = index === octaves ? 0 : Math.max(LEAST_HELD, Math.ceil(heldSamples / this.decimation));
+    this.held = arithmetic.floats(2 * this.#kept + 2 * this.blockSamples);
+  }
+
+  get values(): Float32Array {
+    return this.held.values;
   }
 
   get start(): number {
@@ -140,7 +159,7 @@ class HeldSource implements SourceSignal {
   makeRoom(): void {
     this.end += this.blockSamples;
     if (this.origin + this.end <= this.values.length) return;
-    const keep = this.#held;
+    const keep = this.#kept;
     this.values.copyWithin(0, this.room - keep, this.room);
     this.origin = keep - (this.end - this.blockSamples);
   }
@@ -163,54 +182,62 @@ class HeldSource implements SourceSignal {
   }
 }
 
+interface StageOptions {
+  readonly arithmetic: OctaveArithmetic;
+  readonly source: HeldSource;
+  readonly next: HeldSource;
+  readonly sampleRateHz: number;
+  readonly index: number;
+}
+
 class OctaveStage implements OctaveBand {
   readonly index: number;
   readonly lowHz: number;
   readonly highHz: number;
   readonly samplesPerCell: number;
   readonly cellsPerBlock: number;
-  readonly energies: Float64Array;
+  readonly energies: Held<Float64Array>;
   readonly gain: number;
-  readonly halves: readonly [Float64Array, Float64Array];
+  readonly lowerHalf: Held<Float64Array>;
+  readonly upperHalf: Held<Float64Array>;
   readonly halfGain: number;
-  readonly source: HeldSource;
-  readonly #splitter = new UpperHalfSplitter();
-  readonly #upperHalf = new QuarterEnergies();
-  readonly #lowerHalf = new QuarterEnergies();
-  readonly #upperPlaces: readonly number[];
-  readonly #lowerPlaces: readonly number[];
-  readonly #bands: { readonly low: Float64Array; readonly high: Float64Array };
+  readonly #arithmetic: OctaveArithmetic;
+  readonly #source: HeldSource;
+  readonly #next: HeldSource;
+  readonly #split: UpperHalfSplit;
+  readonly #quarters: readonly QuarterSplit[];
 
-  constructor(options: StageOptions) {
-    const { sampleRateHz, index, blockSamples } = options;
-    const rateHz = sampleRateHz / 2 ** index;
+  constructor({ arithmetic, source, next, sampleRateHz, index }: StageOptions) {
+    const rateHz = sampleRateHz / source.decimation;
     this.index = index;
     this.highHz = rateHz / 2;
     this.lowHz = rateHz / 4;
     this.samplesPerCell = VALUES_PER_CELL * 2 ** (index + 1 + SPLITS);
-    this.cellsPerBlock = blockSamples / this.samplesPerCell;
-    this.energies = new Float64Array(VALUES_PER_CELL * this.cellsPerBlock * BANDS_PER_OCTAVE);
+    this.cellsPerBlock = (source.blockSamples * source.decimation) / this.samplesPerCell;
     this.gain = this.samplesPerCell / VALUES_PER_CELL;
     this.halfGain = this.samplesPerCell / HALF_SAMPLES_PER_CELL;
-    this.source = new HeldSource(options);
-    const quads = this.source.blockSamples / 4;
-    this.#bands = { low: new Float64Array(quads), high: new Float64Array(quads) };
-    const valuesPerBlock = VALUES_PER_CELL * this.cellsPerBlock;
-    this.#upperPlaces = UPPER_PLACES.map((band) => band * valuesPerBlock);
-    this.#lowerPlaces = LOWER_PLACES.map((band) => band * valuesPerBlock);
-    // The octave is an upper half: its own 0 Hz lies at its upper edge, so what comes out as high is its lower half.
-    this.halves = [this.#bands.high, this.#bands.low];
+    this.energies = arithmetic.doubles(VALUES_PER_CELL * this.cellsPerBlock * BANDS_PER_OCTAVE);
+    this.lowerHalf = arithmetic.doubles(source.blockSamples / 4);
+    this.upperHalf = arithmetic.doubles(source.blockSamples / 4);
+    this.#arithmetic = arithmetic;
+    this.#source = source;
+    this.#next = next;
+    const { energies, lowerHalf, upperHalf } = this;
+    const state = (splitters: number) => arithmetic.doubles(splitters * SPLITTER_STATES);
+    this.#split = { input: source.held, low: next.held, lowerHalf, upperHalf, state: state(2) };
+    this.#quarters = [
+      { input: lowerHalf, energies, columns: LOWER_COLUMNS, state: state(3) },
+      { input: upperHalf, energies, columns: UPPER_COLUMNS, state: state(3) },
+    ];
   }
 
-  process(low: Float32Array, lowFrom: number): void {
-    const { source, energies } = this;
-    const values = VALUES_PER_CELL * this.cellsPerBlock;
-    this.#splitter.split(source.values, source.room, source.blockSamples / 4, low, lowFrom, this.#bands);
-    this.#upperHalf.split(this.#bands.low, values, energies, this.#upperPlaces);
-    this.#lowerHalf.split(this.#bands.high, values, energies, this.#lowerPlaces);
+  process(): void {
+    const { room, blockSamples } = this.#source;
+    this.#arithmetic.splitUpperHalf(this.#split, room, blockSamples / 4, this.#next.room);
+    for (const quarters of this.#quarters) this.#arithmetic.splitQuarters(quarters, blockSamples / 16);
   }
 }
 
 /** Sub-bands by rising frequency in which the four quarters of each half come out: every upper half comes out reversed. */
-const UPPER_PLACES = [7, 6, 4, 5];
-const LOWER_PLACES = [0, 1, 3, 2];
+const UPPER_COLUMNS = [7, 6, 4, 5] as const;
+const LOWER_COLUMNS = [0, 1, 3, 2] as const;

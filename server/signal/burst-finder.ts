@@ -2,6 +2,7 @@ import { OctaveTree } from './band-energy.ts';
 import { sineRateHz } from './chance-rate.ts';
 import { detectorBlockSamples, learningSamples, watchedOctaves } from './detector-plan.ts';
 import type { DetectorSettings } from './detector-settings.ts';
+import type { OctaveArithmetic } from './octave-arithmetic.ts';
 import { type NoiseLevels, OctaveWatch } from './octave-watch.ts';
 import { type ChosenOnset, chooseOnsets } from './onset-choice.ts';
 import { OnsetGroups } from './onset-groups.ts';
@@ -19,6 +20,14 @@ const LEAD_IN_CELLS = 12;
 /** Blocks of padding after the end that let filters and windows run out. */
 const MOST_TRAILING_BLOCKS = 64;
 
+export interface BurstFinderOptions {
+  readonly sampleRateHz: number;
+  readonly settings: DetectorSettings;
+  readonly arithmetic: OctaveArithmetic;
+  /** Gets bursts by rising onset, and where what comes after them begins. */
+  readonly onBursts: (bursts: ChosenOnset[], nextSample: number) => void;
+}
+
 /**
  * Finds the onsets of bursts in a stream of samples, with memory that does not depend on its length.
  *
@@ -30,6 +39,7 @@ export class BurstFinder {
   readonly #sampleRateHz: number;
   readonly #settings: DetectorSettings;
   readonly #onBursts: (bursts: ChosenOnset[], nextSample: number) => void;
+  readonly #arithmetic: OctaveArithmetic;
   readonly #octaves: number;
   readonly #groups: OnsetGroups;
   readonly #sure: SureRate;
@@ -43,11 +53,8 @@ export class BurstFinder {
   #inBlock = 0;
   #expectedByChance = 0;
 
-  constructor(
-    sampleRateHz: number,
-    settings: DetectorSettings,
-    onBursts: (bursts: ChosenOnset[], nextSample: number) => void,
-  ) {
+  constructor({ sampleRateHz, settings, arithmetic, onBursts }: BurstFinderOptions) {
+    this.#arithmetic = arithmetic;
     this.#sampleRateHz = sampleRateHz;
     this.#settings = settings;
     this.#onBursts = onBursts;
@@ -107,6 +114,7 @@ export class BurstFinder {
 
   #openTree(heldS: number): OctaveTree {
     return new OctaveTree({
+      arithmetic: this.#arithmetic,
       sampleRateHz: this.#sampleRateHz,
       octaves: this.#octaves,
       blockSamples: detectorBlockSamples(this.#sampleRateHz, this.#settings),
@@ -120,6 +128,7 @@ export class BurstFinder {
     const watches = this.#tree.octaves.map(
       (_, octave) =>
         new OctaveWatch({
+          arithmetic: this.#arithmetic,
           tree: this.#tree,
           octave,
           sampleRateHz,
@@ -142,7 +151,7 @@ export class BurstFinder {
       block.set(head.subarray(at, at + held));
       if (held < block.length) mirrorEnd(block, held);
       tree.process(block);
-      this.#watches.forEach((watch, k) => watch.learn(tree.octaves[k]?.energies, head.length));
+      this.#watches.forEach((watch, k) => watch.learn(tree.octaves[k]?.energies.values, head.length));
     }
     for (const watch of this.#watches) watch.trigger.floor.endLearning();
     const lowest = this.#tree.octaves[this.#octaves - 1];

@@ -1,12 +1,17 @@
 import type { DetectedCandidate } from '../../shared/contract/measurement.ts';
 import { BurstFinder } from './burst-finder.ts';
 import { defaultDetectorSettings, type DetectorSettings } from './detector-settings.ts';
+import type { OctaveArithmetic } from './octave-arithmetic.ts';
+import type { ChosenOnset } from './onset-choice.ts';
+import { plainOctaves } from './plain-octaves.ts';
 import { type CandidateContext, measureFoundBurst } from './found-burst.ts';
 
 export interface DetectorOptions {
   readonly sampleRateHz: number;
   readonly channel: number;
   readonly settings?: Partial<DetectorSettings>;
+  /** What does the arithmetic on every sample; plain TypeScript without. */
+  readonly arithmetic?: OctaveArithmetic;
   readonly context: CandidateContext;
 }
 
@@ -44,12 +49,18 @@ export function createDetector(options: DetectorOptions): Detector {
   if (!(sampleRateHz > 0)) throw new RangeError(`sampleRateHz: ${sampleRateHz} is not above 0`);
   const settings = { ...defaultDetectorSettings, ...options.settings };
   let ready: DetectedCandidate[] = [];
-  const finder = new BurstFinder(sampleRateHz, settings, (bursts, groupEnd) => {
+  const onBursts = (bursts: ChosenOnset[], groupEnd: number) => {
     for (const [index, onset] of bursts.entries()) {
       const nextSample = bursts[index + 1]?.sample ?? groupEnd;
       const { ring } = finder;
       ready.push(measureFoundBurst({ onset, nextSample, ring, sampleRateHz, channel, settings, context }));
     }
+  };
+  const finder = new BurstFinder({
+    sampleRateHz,
+    settings,
+    arithmetic: options.arithmetic ?? plainOctaves,
+    onBursts,
   });
   const take = () => {
     const taken = ready;

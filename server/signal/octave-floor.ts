@@ -1,4 +1,5 @@
 import { BANDS_PER_OCTAVE, VALUES_PER_CELL } from './band-energy.ts';
+import type { CellSums } from './cell-sums.ts';
 import { RunningFloor } from './noise-floor.ts';
 
 const LEAST_CELLS = 4;
@@ -72,11 +73,10 @@ export class OctaveFloor {
   }
 
   /**
-   * Takes the energies [sub-band][value] of a block before anything is decided.
+   * Takes the energies [value][sub-band] of a block before anything is decided.
    * @param valuesInAll values of each sub-band in all blocks that will be learned from.
    */
   learn(energies: Float64Array, valuesInAll: number): void {
-    const count = energies.length / BANDS_PER_OCTAVE;
     // A short recording is cut into smaller blocks, so that the median has some to choose from.
     const perBlock = Math.max(1, Math.min(VALUES_PER_CELL * this.#cellsPerBlock, valuesInAll >> 4));
     const most = Math.max(1, Math.ceil(valuesInAll / perBlock));
@@ -90,8 +90,8 @@ export class OctaveFloor {
     for (let leaf = 0; leaf < this.#leaves; leaf++) {
       held = this.#learning.held;
       let sum = this.#quietSums[leaf]!;
-      for (let n = leaf * count; n < (leaf + 1) * count; n++) {
-        sum += energies[n]!;
+      for (let at = leaf; at < energies.length; at += BANDS_PER_OCTAVE) {
+        sum += energies[at]!;
         if (++held < perBlock) continue;
         floors[leaf]?.push(sum / perBlock);
         sum = 0;
@@ -117,28 +117,17 @@ export class OctaveFloor {
     }
   }
 
-  /**
-   * Takes some cells in a row from running sums of gained energies; only quiet ones move the floor.
-   * @param sums [sub-band] at multiples of `stride`; `before` is the place of the last sum before the cells.
-   */
-  gather(
-    sums: { values: Float64Array; stride: number },
-    before: number,
-    cells: number,
-    quiet: boolean,
-  ): void {
-    for (let done = 0; done < cells;) {
-      const count = Math.min(
-        cells - done,
-        this.#cellsPerPart - this.#partCells,
-        this.#cellsPerBlock - this.#blockCells,
-      );
-      for (let leaf = 0, at = before + done; leaf < this.#leaves; leaf++, at += sums.stride) {
-        const sum = (sums.values[at + count]! - sums.values[at]!) / this.gains[leaf]!;
+  /** Takes the cells [from, to) of running sums of gained energies; only quiet ones move the floor. */
+  gather(sums: CellSums, from: number, to: number, quiet: boolean): void {
+    for (let cell = from; cell < to;) {
+      const room = Math.min(this.#cellsPerPart - this.#partCells, this.#cellsPerBlock - this.#blockCells);
+      const count = Math.min(to - cell, room);
+      for (let leaf = 0; leaf < this.#leaves; leaf++) {
+        const sum = sums.sum(leaf, leaf + 1, cell, cell + count) / this.gains[leaf]!;
         this.#partSums[leaf] = this.#partSums[leaf]! + sum;
         if (quiet) this.#quietSums[leaf] = this.#quietSums[leaf]! + sum;
       }
-      done += count;
+      cell += count;
       this.#partCells += count;
       this.#blockCells += count;
       if (quiet) this.#quietCells += count;

@@ -3,18 +3,26 @@ import { BANDS_PER_OCTAVE, type OctaveBand, VALUES_PER_CELL } from './band-energ
 import { CellSums, PAST_CELLS } from './cell-sums.ts';
 import { chiSquareThreshold } from './chi-square.ts';
 import type { DetectorSettings } from './detector-settings.ts';
-import { type EnergyTest, LONGEST_TEST_CELLS, planColumns, planEnergyTests } from './energy-tests.ts';
-import { FiredList } from './fired-list.ts';
+import { type EnergyTest, LONGEST_TEST_CELLS, planEnergyTests } from './energy-tests.ts';
+import { type OctaveArithmetic, WINDOW_WIDTHS } from './octave-arithmetic.ts';
 import { OctaveFloor } from './octave-floor.ts';
 import { type WeakSpot, WeakSpots } from './weak-spots.ts';
 
 export interface OctaveTriggerOptions {
+  readonly arithmetic: OctaveArithmetic;
   readonly band: OctaveBand;
   readonly sampleRateHz: number;
   readonly highestHz: number;
   readonly settings: DetectorSettings;
   /** Chance that noise gives one weak spot in one sum. */
   readonly weakChance: number;
+}
+
+/** A sum above its threshold, and the cell behind its window. */
+interface Fired {
+  readonly cell: number;
+  readonly test: EnergyTest;
+  readonly sum: number;
 }
 
 interface OpenRegion {
@@ -40,12 +48,13 @@ export class OctaveTrigger {
   readonly floor: OctaveFloor;
   readonly #band: OctaveBand;
   readonly #sampleRateHz: number;
-  readonly #tests: readonly EnergyTest[];
-  readonly #thresholds: Float64Array;
-  readonly #weakThresholds: Float64Array;
+  /** By length, as the windows of the sums. */
+  readonly #tests: readonly (readonly EnergyTest[])[];
+  /** By number of values. */
+  readonly #thresholds: number[] = [];
   readonly #sums: CellSums;
   readonly #weak: WeakSpots;
-  readonly #fired = new FiredList();
+  readonly #fired: Fired[] = [];
   readonly #halfGains = new Float64Array(2);
   readonly #gapCells: number;
   readonly #longestCells: number;
@@ -56,19 +65,16 @@ export class OctaveTrigger {
   #cutCell = -Infinity;
   #gatheredCells = 0;
 
-  constructor({ band, sampleRateHz, highestHz, settings, weakChance }: OctaveTriggerOptions) {
+  constructor({ arithmetic, band, sampleRateHz, highestHz, settings, weakChance }: OctaveTriggerOptions) {
     this.#band = band;
     this.#sampleRateHz = sampleRateHz;
     const cellS = band.samplesPerCell / sampleRateHz;
     const usable = Math.floor((highestHz - band.lowHz) / this.#leafHz + 1e-9);
     const leaves = Math.max(1, Math.min(BANDS_PER_OCTAVE, usable));
-    const columns = planColumns(leaves);
-    this.#tests = planEnergyTests(columns, Math.max(2, Math.floor(settings.longestWindowS / cellS)));
-    this.#sums = new CellSums(band, columns);
-    this.#weak = new WeakSpots({ band, leaves, chance: weakChance });
-    this.#weakThresholds = Float64Array.from(this.#tests, (test) => this.#weak.thresholdOf(test));
-    this.#thresholds = new Float64Array(this.#tests.length);
-    this.testsPerSecond = this.#tests.reduce((sum, test) => sum + 1 / test.hop, 0) / cellS;
+    this.#tests = planEnergyTests(leaves, Math.max(2, Math.floor(settings.longestWindowS / cellS)));
+    this.#sums = new CellSums(arithmetic, band);
+    this.#weak = new WeakSpots({ arithmetic, band, leaves, chance: weakChance });
+    this.testsPerSecond = this.#tests.flat().reduce((sum, test) => sum + 1 / test.hop, 0) / cellS;
     this.#gapCells = Math.max(1, Math.ceil(settings.quietGapS / cellS));
     this.#longestCells = Math.max(4, Math.ceil(settings.longestBurstS / cellS));
     const { floorMemoryS: memoryS, longestBurstS } = settings;
@@ -76,8 +82,14 @@ export class OctaveTrigger {
   }
 
   setChance(chance: number): void {
-    this.#tests.forEach((test, index) => {
-      this.#thresholds[index] = chiSquareThreshold(test.degrees, chance);
+    for (const { degrees } of this.#tests.flat())
+      this.#thresholds[degrees] ??= chiSquareThreshold(degrees, chance);
+    this.#tests.forEach((tests, length) => {
+      for (const test of tests) {
+        const at = length * WINDOW_WIDTHS.length + Math.log2(test.high - test.low);
+        const least = Math.min(this.#thresholds[test.degrees]!, this.#weak.thresholdOf(test));
+        this.#sums.limits.values[at] = least;
+      }
     });
   }
 
@@ -147,45 +159,30 @@ export class OctaveTrigger {
     }
   }
 
-  /** Where sums, taken every hop, exceed their threshold, by rising cell. */
-  #collect(from: number, cells: number): void {
-    const fired = this.#fired;
-    fired.clear();
-    const { values, stride } = this.#sums;
+  /** What fires, by rising cell. */
+  #collect(from: number, to: number): void {
     const blockCell = this.#blockCell;
     const phase = blockCell % PAST_CELLS;
     // Sums that reach back over a cut would mix two floors.
     const validFrom = Math.max(-LONGEST_TEST_CELLS, this.#cutCell - blockCell);
-    for (let index = 0; index < this.#tests.length; index++) {
-      const { column, cells: length, hop } = this.#tests[index]!;
-      const threshold = Math.min(this.#thresholds[index]!, this.#weakThresholds[index]!);
-      const earliest = Math.max(from + 1, validFrom + length);
-      const first = earliest + ((hop - ((phase + earliest) & (hop - 1))) & (hop - 1));
-      const base = column * stride + PAST_CELLS - 1;
-      const last = base + cells;
-      for (let at = base + first; at <= last; at += hop) {
-        const sum = values[at]! - values[at - length]!;
-        if (sum > threshold) this.#hit(blockCell + at - base, index, sum);
+    this.#fired.length = 0;
+    this.#sums.visitHits({ from, to, phase, validFrom }, (endCell, length) => {
+      for (const test of this.#tests[length]!) {
+        const sum = this.#sums.sum(test.low, test.high, endCell - test.cells, endCell);
+        if (sum > this.#thresholds[test.degrees]!) this.#fired.push({ cell: blockCell + endCell, test, sum });
+        else if (sum > this.#weak.thresholdOf(test)) this.#weak.add(test, blockCell + endCell, sum);
       }
-    }
-    fired.sort();
-  }
-
-  #hit(cell: number, index: number, sum: number): void {
-    if (sum > this.#thresholds[index]!) this.#fired.add(cell, index, sum);
-    else this.#weak.add(this.#tests[index]!, cell, sum);
+    });
   }
 
   /** Goes through what fired; ends early, behind the cell returned, where a region was cut. */
   #walk(from: number, cells: number): number {
     const end = this.#blockCell + cells;
     this.#gatheredCells = this.#blockCell + from;
-    const fired = this.#fired;
-    for (let hit = 0; hit < fired.length; hit++) {
-      const cell = fired.cell(hit);
-      const cut = this.#advance(cell);
+    for (const fired of this.#fired) {
+      const cut = this.#advance(fired.cell);
       if (cut !== null) return cut - this.#blockCell;
-      this.#fire(cell, this.#tests[fired.index(hit)]!, fired.sum(hit));
+      this.#fire(fired);
     }
     const cut = this.#advance(end);
     if (cut !== null) return cut - this.#blockCell;
@@ -215,15 +212,15 @@ export class OctaveTrigger {
   #gather(cell: number): void {
     const count = cell - this.#gatheredCells;
     if (count <= 0) return;
-    const before = PAST_CELLS + this.#gatheredCells - this.#blockCell - 1;
-    this.floor.gather(this.#sums, before, count, this.#open === null);
+    const from = this.#gatheredCells - this.#blockCell;
+    this.floor.gather(this.#sums, from, from + count, this.#open === null);
     this.#gatheredCells = cell;
   }
 
-  #fire(cell: number, test: EnergyTest, sum: number): void {
+  #fire({ cell, test, sum }: Fired): void {
     const start = Math.max(0, cell - test.cells);
     if (!this.#open) {
-      if (sum <= this.#thresholds[this.#tests.indexOf(test)]! * this.#backgroundBefore(start, test)) return;
+      if (sum <= this.#thresholds[test.degrees]! * this.#backgroundBefore(start, test)) return;
       this.#gather(Math.max(this.#gatheredCells, start));
       const continues = cell <= this.#cutCell + this.#longestCells;
       this.#open = { start, best: this.#describe(cell, test, sum), continues };
@@ -239,13 +236,12 @@ export class OctaveTrigger {
    * What the energy just before a window says of a floor that lags: its mean over the floor less one standard deviation, at least 1. What
    * has grown slowly is no burst.
    */
-  #backgroundBefore(start: number, { column, low, high }: EnergyTest): number {
-    const { values, stride } = this.#sums;
-    const end = PAST_CELLS + start - this.#blockCell - 1;
-    const from = Math.max(0, end - LONGEST_TEST_CELLS, PAST_CELLS + this.#cutCell - this.#blockCell - 1);
+  #backgroundBefore(start: number, { low, high }: EnergyTest): number {
+    const end = start - this.#blockCell;
+    const from = Math.max(-PAST_CELLS + 1, end - LONGEST_TEST_CELLS, this.#cutCell - this.#blockCell);
     const degrees = VALUES_PER_CELL * (high - low) * (end - from);
     if (degrees <= 0) return 1;
-    const mean = (values[column * stride + end]! - values[column * stride + from]!) / degrees;
+    const mean = this.#sums.sum(low, high, from, end) / degrees;
     return Math.max(1, mean * (1 - Math.sqrt(2 / degrees)));
   }
 

@@ -4,6 +4,7 @@ import { DampedSineSearch, type DampedSine, type Spot } from './damped-sine.ts';
 import type { DetectorSettings } from './detector-settings.ts';
 import { findOnsets, type OnsetFound, searchReach } from './onset-search.ts';
 import type { ActiveRegion } from './active-region.ts';
+import type { OctaveArithmetic } from './octave-arithmetic.ts';
 import { OctaveTrigger } from './octave-trigger.ts';
 import type { WeakSpot } from './weak-spots.ts';
 
@@ -41,6 +42,7 @@ export class OctaveWatch {
   #spots: Pending<Spot>[] = [];
 
   constructor(options: {
+    arithmetic: OctaveArithmetic;
     tree: OctaveTree;
     octave: number;
     sampleRateHz: number;
@@ -54,7 +56,14 @@ export class OctaveWatch {
     const fine = tree.sources[Math.max(0, octave - 2)];
     if (!band || !wide || !narrow || !fine)
       throw new RangeError(`octave: there is none with index ${octave}`);
-    this.trigger = new OctaveTrigger({ band, sampleRateHz, highestHz, settings, weakChance: WEAK_CHANCE });
+    this.trigger = new OctaveTrigger({
+      arithmetic: options.arithmetic,
+      band,
+      sampleRateHz,
+      highestHz,
+      settings,
+      weakChance: WEAK_CHANCE,
+    });
     this.#settings = settings;
     this.#sampleRateHz = sampleRateHz;
     this.#tree = tree;

@@ -3,6 +3,7 @@ import { PAST_CELLS } from './cell-sums.ts';
 import { chiSquareThreshold } from './chi-square.ts';
 import { BOTH_HALVES, ONE_BAND, ONE_BAND_LONG, ONE_HALF, TWO_BANDS } from './sine-windows.ts';
 import type { EnergyTest } from './energy-tests.ts';
+import { HALF_WINDOWS, type HalfScan, type OctaveArithmetic } from './octave-arithmetic.ts';
 
 /** A window whose energy passes a low threshold. Cells count from the begin of the stream, with fractions. */
 export interface WeakSpot {
@@ -16,17 +17,22 @@ export interface WeakSpot {
 }
 
 interface WeakSpotsOptions {
+  readonly arithmetic: OctaveArithmetic;
   readonly band: OctaveBand;
   readonly leaves: number;
   readonly chance: number;
 }
 
+/** Steps of four samples of a half. */
+const STEPS_PER_CELL = HALF_SAMPLES_PER_CELL / 4;
 const DEGREES = 8;
 const LONG_DEGREES = 16;
 const MOST_PER_BLOCK = 16;
 
 /** Weak spots of one octave: collected per block, joined where windows overlap, none where a region is active. */
 export class WeakSpots {
+  readonly #arithmetic: OctaveArithmetic;
+  readonly #halves: HalfScan;
   readonly #band: OctaveBand;
   readonly #leaves: number;
   readonly #threshold: number;
@@ -35,9 +41,13 @@ export class WeakSpots {
   #ready: WeakSpot[] = [];
   #leftOut: (readonly [start: number, end: number])[] = [];
 
-  constructor({ band, leaves, chance }: WeakSpotsOptions) {
+  constructor({ arithmetic, band, leaves, chance }: WeakSpotsOptions) {
+    this.#arithmetic = arithmetic;
     this.#band = band;
     this.#leaves = leaves;
+    const { lowerHalf, upperHalf, cellsPerBlock } = band;
+    const hits = arithmetic.integers(STEPS_PER_CELL * cellsPerBlock * Object.keys(HALF_WINDOWS).length);
+    this.#halves = { lowerHalf, upperHalf, hits };
     this.#threshold = chiSquareThreshold(DEGREES, chance);
     this.#longThreshold = chiSquareThreshold(LONG_DEGREES, chance);
   }
@@ -71,61 +81,33 @@ export class WeakSpots {
     gains: Float64Array,
     { from, to, blockCell }: { from: number; to: number; blockCell: number },
   ): void {
-    const threshold = this.#threshold;
-    const [lower, upper] = this.#band.halves;
     const lowerGain = this.#leaves >= 4 ? gains[0]! : 0;
     const upperGain = this.#leaves >= 8 ? gains[1]! : 0;
-    // Sums over two and over four samples, of the steps before.
-    let both = 0;
-    let lowerFour = 0;
-    let upperFour = 0;
-    const steps = (HALF_SAMPLES_PER_CELL / 4) * to;
-    const firstStep = (HALF_SAMPLES_PER_CELL / 4) * from;
-    for (let step = Math.max(0, firstStep - 1); step < steps; step++) {
-      const n = 4 * step;
-      const a0 = lower[n]!;
-      const a1 = lower[n + 1]!;
-      const a2 = lower[n + 2]!;
-      const a3 = lower[n + 3]!;
-      const b0 = upper[n]!;
-      const b1 = upper[n + 1]!;
-      const b2 = upper[n + 2]!;
-      const b3 = upper[n + 3]!;
-      const a = (a0 * a0 + a1 * a1) * lowerGain;
-      const aNext = (a2 * a2 + a3 * a3) * lowerGain;
-      const b = (b0 * b0 + b1 * b1) * upperGain;
-      const bNext = (b2 * b2 + b3 * b3) * upperGain;
-      const ab = a + b;
-      const abNext = aNext + bNext;
-      const four = a + aNext;
-      const upperNow = b + bNext;
-      if (step >= firstStep) {
-        if (upperGain > 0) {
-          if (both + ab > threshold) this.#addHalf(BOTH_HALVES, blockCell, n - 2, both + ab);
-          if (ab + abNext > threshold) this.#addHalf(BOTH_HALVES, blockCell, n, ab + abNext);
-        }
-        if (lowerFour + four > threshold) this.#addHalf(ONE_HALF, blockCell, n - 4, lowerFour + four);
-        if (upperFour + upperNow > threshold)
-          this.#addHalf(-ONE_HALF, blockCell, n - 4, upperFour + upperNow);
-      }
-      both = abNext;
-      lowerFour = four;
-      upperFour = upperNow;
+    const [first, end] = [STEPS_PER_CELL * from, STEPS_PER_CELL * to];
+    const limits = { lowerGain, upperGain, limit: this.#threshold };
+    const count = this.#arithmetic.scanHalves(this.#halves, { from: first, to: end, ...limits });
+    const hits = this.#halves.hits.values;
+    for (let k = 0; k < count; k++) {
+      const step = hits[k]! >> 2;
+      const window = hits[k]! & 3;
+      if (window >= HALF_WINDOWS.lower) this.#addHalf(window, blockCell, 4 * step - 4);
+      else if (upperGain > 0)
+        this.#addHalf(window, blockCell, window === HALF_WINDOWS.bothEarly ? 4 * step - 2 : 4 * step);
     }
   }
 
-  /** @param kind negative for the upper half. */
-  #addHalf(kind: number, blockCell: number, firstSample: number, sum: number): void {
+  /** @param firstSample of the window in the block's samples of a half. */
+  #addHalf(window: number, blockCell: number, firstSample: number): void {
     const { lowHz, highHz } = this.#band;
     const middleHz = (lowHz + highHz) / 2;
     const firstCell = blockCell + firstSample / HALF_SAMPLES_PER_CELL;
     this.#collected.push({
-      kind: Math.abs(kind),
-      lowHz: kind < 0 ? middleHz : lowHz,
-      highHz: kind === ONE_HALF ? middleHz : highHz,
+      kind: window < HALF_WINDOWS.lower ? BOTH_HALVES : ONE_HALF,
+      lowHz: window === HALF_WINDOWS.upper ? middleHz : lowHz,
+      highHz: window === HALF_WINDOWS.lower ? middleHz : highHz,
       firstCell,
       lastCell: firstCell,
-      strength: sum / this.#threshold,
+      strength: 1,
     });
   }
 

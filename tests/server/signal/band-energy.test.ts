@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { BANDS_PER_OCTAVE, OctaveTree, VALUES_PER_CELL } from '../../../server/signal/band-energy.ts';
 import { butterworth, filterInPlace, groupDelaySamples } from '../../../server/signal/biquad.ts';
+import { plainOctaves } from '../../../server/signal/plain-octaves.ts';
 import { seededNormal, seededUniform } from './synthetic-clicks.ts';
 
 const RATE = 192_000;
@@ -10,7 +11,13 @@ const bandsIn = (octave: number) => BANDS_PER_OCTAVE * 2 ** (octave + 1);
 
 /** Mean square per sub-band after the filters have settled: [octave][sub-band]. */
 function measure(signal: (n: number) => number, blocks = 8): number[][] {
-  const tree = new OctaveTree({ sampleRateHz: RATE, octaves: 4, blockSamples: 4096, heldSamples: 0 });
+  const tree = new OctaveTree({
+    arithmetic: plainOctaves,
+    sampleRateHz: RATE,
+    octaves: 4,
+    blockSamples: 4096,
+    heldSamples: 0,
+  });
   const block = new Float32Array(tree.blockSamples);
   const sums = tree.octaves.map(() => new Array<number>(BANDS_PER_OCTAVE).fill(0));
   for (let k = 0; k < blocks; k++) {
@@ -19,10 +26,9 @@ function measure(signal: (n: number) => number, blocks = 8): number[][] {
     if (k === 0) continue;
     tree.octaves.forEach(({ energies, gain, samplesPerCell }, octave) => {
       const into = sums[octave] ?? [];
-      const perBand = energies.length / BANDS_PER_OCTAVE;
       const weight = samplesPerCell / VALUES_PER_CELL / gain / block.length / (blocks - 1) / bandsIn(octave);
-      energies.forEach((energy, at) => {
-        const band = Math.floor(at / perBand);
+      energies.values.forEach((energy, at) => {
+        const band = at % BANDS_PER_OCTAVE;
         into[band] = (into[band] ?? 0) + energy * weight;
       });
     });
