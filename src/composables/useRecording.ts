@@ -26,6 +26,8 @@ export function useRecording(id: Ref<string>) {
     queryKey: key,
     queryFn: ({ signal }) => getRecording(id.value, signal),
     refetchInterval: ({ state }) => (isUnderway(state.data) ? pollMs : false),
+    // Its course has thousands of figures, which are read much quicker as they are than as reactive ones.
+    shallow: true,
   });
   const retrying = useSubmit(async () => {
     queries.setQueryData(key.value, await measureAgain(id.value));
