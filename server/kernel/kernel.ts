@@ -26,10 +26,59 @@ export interface KernelFunctions {
     scratch: number,
   ): void;
   blockSums(samples: number, blocks: number, length: number, sums: number): void;
-  accumulate(power: number, points: number, maximum: number, sums: number, counts: number): void;
+  accumulate(
+    rows: number,
+    strideBytes: number,
+    marks: number,
+    count: number,
+    points: number,
+    maximum: number,
+    sums: number,
+    counts: number,
+  ): void;
   pool(power: number, group: number, points: number, out: number): void;
   decodeInteger(bytes: number, stride: number, width: number, count: number, samples: number): void;
   decodeFloat(bytes: number, stride: number, width: number, count: number, samples: number): number;
+  splitUpperHalf(
+    input: number,
+    quads: number,
+    low: number,
+    lowerHalf: number,
+    upperHalf: number,
+    state: number,
+    factors: number,
+  ): void;
+  splitQuarters(
+    input: number,
+    quads: number,
+    energies: number,
+    lowLow: number,
+    lowHigh: number,
+    highLow: number,
+    highHigh: number,
+    state: number,
+    factors: number,
+  ): void;
+  addOctaveCells(energies: number, cells: number, sums: number, gains: number): void;
+  scanOctaveCells(
+    sums: number,
+    limits: number,
+    hits: number,
+    from: number,
+    to: number,
+    phase: number,
+    validFrom: number,
+  ): number;
+  scanOctaveHalves(
+    lower: number,
+    upper: number,
+    hits: number,
+    from: number,
+    to: number,
+    lowerGain: number,
+    upperGain: number,
+    limit: number,
+  ): number;
 }
 
 interface WasmMemory {

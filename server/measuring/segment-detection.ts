@@ -1,4 +1,5 @@
 import type { AudioFormat, DetectedCandidate } from '../../shared/contract/measurement.ts';
+import { openKernelOctaves } from '../kernel/kernel-octaves.ts';
 import { CandidateMerger } from '../signal/candidate-merge.ts';
 import { createDetector, type Detector } from '../signal/detector.ts';
 import type { FramePlan } from '../signal/frame-plan.ts';
@@ -65,6 +66,7 @@ export const openSegmentDetection: OpenDetection = (settings) => new DetectorsOf
 class DetectorsOfSegment implements SegmentDetection {
   readonly #settings: SegmentDetectionSettings;
   readonly #lines: LineWriter;
+  readonly #octaves = openKernelOctaves();
   readonly #merger: CandidateMerger;
   readonly #detectors: Detector[];
   readonly #trackers: UltrasoundTracker[];
@@ -118,6 +120,7 @@ class DetectorsOfSegment implements SegmentDetection {
 
   close(): void {
     this.#lines.close();
+    this.#octaves.close();
   }
 
   /** The detectors ran longer than the segment: of what they say, its share of the time. */
@@ -159,6 +162,7 @@ class DetectorsOfSegment implements SegmentDetection {
     return createDetector({
       sampleRateHz: format.sampleRateHz,
       channel,
+      arithmetic: this.#octaves.arithmetic,
       context: {
         fullScaleV: context.fullScaleV,
         preampGainDb: context.preampGainDb,
