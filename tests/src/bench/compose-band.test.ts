@@ -1,3 +1,4 @@
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { Tile } from '@shared/audio/tile.ts';
 import type { PictureLayout } from '@shared/contract/views.ts';
@@ -52,6 +53,12 @@ function compose(options: {
 const clickAt = (place: number) => (column: number, bin: number) =>
   column === place && bin === 2 ? 200 : 10 + bin;
 
+/** The whole steps that a stretch touches. */
+function between(from: number, to: number): number[] {
+  const first = Math.floor(from);
+  return Array.from({ length: Math.max(1, Math.ceil(to) - first) }, (_, index) => first + index);
+}
+
 describe('composing a band', () => {
   it('puts the highest bin on top, and one pixel on each column where they fit', () => {
     const pixels = compose({
@@ -101,5 +108,34 @@ describe('composing a band', () => {
   it('leaves what has not come at all in the colour of the ground', () => {
     const pixels = compose({ widthPx: 8, heightPx: 2, findTile: () => undefined });
     expect(new Set(pixels)).toEqual(new Set([EMPTY]));
+  });
+
+  it('gives every pixel of a wide picture the greatest code under it', () => {
+    const codeAt = (column: number, bin: number) => (column * 37 + bin * 101) % 251;
+    const findTile = (level: number, tile: number) =>
+      level === 0 && tile !== 2 ? tileOf(0, codeAt, tile * 16) : undefined;
+    const sizes = fc.record({
+      widthPx: fc.integer({ min: 1, max: 400 }),
+      heightPx: fc.integer({ min: 1, max: 11 }),
+      startSample: fc.integer({ min: 0, max: 300 }),
+      samples: fc.integer({ min: 1, max: 340 }),
+    });
+    fc.assert(
+      fc.property(sizes, ({ widthPx, heightPx, startSample, samples }) => {
+        const window = { startSample, endSample: startSample + samples };
+        const pixels = compose({ widthPx, heightPx, window, findTile });
+        const step = samples / widthPx;
+        for (let at = 0; at < pixels.length; at++) {
+          const from = startSample + (at % widthPx) * step;
+          const columns = between(from / 10, (from + step) / 10);
+          const top = heightPx - Math.floor(at / widthPx);
+          const bins = between((4 * (top - 1)) / heightPx + 1e-6, (4 * top) / heightPx - 1e-6);
+          const codes = columns.flatMap((column) => bins.map((bin) => codeAt(column, bin)));
+          const isHere = columns.every((column) => Math.floor(column / 16) !== 2);
+          expect(pixels[at]).toBe(isHere ? Math.max(...codes) : EMPTY);
+        }
+      }),
+      { numRuns: 30 },
+    );
   });
 });
