@@ -8,6 +8,7 @@ import { wholeBandReason } from '@/composables/bench/unseen-bands.ts';
 import type { UnseenBand } from '@/composables/bench/unseen-bands.ts';
 import { composeBand } from '@/components/bench/compose-band.ts';
 import type { FindTile } from '@/components/bench/compose-band.ts';
+import { keptImage } from '@/components/bench/kept-image.ts';
 import { FIGURE_FONT, WORD_FONT } from '@/components/bench/useCanvas.ts';
 import type { Palette } from '@/theme/palette.ts';
 
@@ -46,7 +47,7 @@ function drawBand(context: CanvasRenderingContext2D, place: BandPlace, scene: Pi
   const widthPx = Math.round(places.plotWidthPx * pixelRatio);
   const heightPx = Math.round(place.heightPx * pixelRatio);
   const level = levelFor(layout, (window.endSample - window.startSample) / widthPx);
-  const image = context.createImageData(widthPx, heightPx);
+  const image = keptImage(context, place.band, { widthPx, heightPx });
   composeBand(new Uint32Array(image.data.buffer), level, {
     layout,
     window,

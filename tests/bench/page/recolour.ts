@@ -1,6 +1,7 @@
 import { drawPicture } from '@/components/bench/band-drawing.ts';
 import { prepareCanvas } from '@/components/bench/canvas-size.ts';
 import { composeBand } from '@/components/bench/compose-band.ts';
+import { keptImage } from '@/components/bench/kept-image.ts';
 import { toneTable } from '@/components/bench/tile-tones.ts';
 import { FIRST_SPLIT, placeStage } from '@/composables/bench/stage-places.ts';
 import { columnSamples, levelFor, tilesOfWindow } from '@/composables/bench/tile-plan.ts';
@@ -73,7 +74,7 @@ function timeEightTiles(layout: PictureLayout, rounds: number): number[] {
   const findTile = tileStore()(layout);
   const { lowHz, highHz } = layout;
   return time(context, rounds, (round) => {
-    const image = context.createImageData(widthPx, HEIGHT_PX);
+    const image = keptImage(context, layout.band, { widthPx, heightPx: HEIGHT_PX });
     const band = { layout, window, lowHz, highHz, widthPx, heightPx: HEIGHT_PX, findTile };
     composeBand(new Uint32Array(image.data.buffer), 0, {
       ...band,
