@@ -5,6 +5,10 @@ import {
 } from '../signal/spectrum-tables.ts';
 import type { Kernel, KernelArray } from './kernel.ts';
 
+const FLOAT_BYTES = Float32Array.BYTES_PER_ELEMENT;
+/** Points that the kernel takes at once. */
+const POINTS_AT_ONCE = 16;
+
 /** The tables in the kernel's memory. */
 export class KernelSpectrumTables implements SpectrumTables {
   readonly points: number;
@@ -13,19 +17,23 @@ export class KernelSpectrumTables implements SpectrumTables {
   readonly #maximum: KernelArray<Float32Array>;
   readonly #sums: KernelArray<Float64Array>;
   readonly #counts: KernelArray<Uint32Array>;
-  readonly #pooled: KernelArray<Float32Array>;
+  readonly #marks: KernelArray<Int32Array>;
+  readonly #prepared: KernelArray<Float32Array>;
   readonly #staging: KernelArray<Float32Array>;
 
-  /** @throws RangeError for a number of points that is no multiple of four. */
-  constructor(kernel: Kernel, { points, group, classes }: SpectrumTablesSettings) {
-    if (points % 4 !== 0) throw new RangeError(`points: ${points} is no multiple of four`);
+  /** @throws RangeError for a number of points that is no multiple of 16. */
+  constructor(kernel: Kernel, { points, group, classes, capacity }: SpectrumTablesSettings) {
+    if (points % POINTS_AT_ONCE !== 0) {
+      throw new RangeError(`points: ${points} is no multiple of ${POINTS_AT_ONCE}`);
+    }
     this.points = points;
     this.#kernel = kernel;
     this.#group = group;
     this.#maximum = kernel.array(Float32Array, points);
     this.#sums = kernel.array(Float64Array, classes * points);
     this.#counts = kernel.array(Uint32Array, points * QUANTILE_CELLS);
-    this.#pooled = kernel.array(Float32Array, points);
+    this.#marks = kernel.array(Int32Array, capacity);
+    this.#prepared = kernel.array(Float32Array, capacity * points);
     this.#staging = kernel.array(Float32Array, points * group);
   }
 
@@ -41,18 +49,29 @@ export class KernelSpectrumTables implements SpectrumTables {
     return this.#counts.values;
   }
 
-  push(power: Float32Array, classIndex: number, isCounted: boolean): void {
-    const { points } = this;
-    const sums = this.#sums.address + classIndex * points * Float64Array.BYTES_PER_ELEMENT;
-    const counts = isCounted ? this.#counts.address : 0;
-    this.#kernel.call.accumulate(this.#place(power), points, this.#maximum.address, sums, counts);
+  push(rows: Float32Array, stride: number, marks: Int32Array): void {
+    const address = this.#group === 1 ? this.#kernel.addressOf(rows) : undefined;
+    if (address === undefined) this.#prepare(rows, stride, marks.length);
+    this.#marks.values.set(marks);
+    this.#kernel.call.accumulate(
+      address ?? this.#prepared.address,
+      (address === undefined ? this.points : stride) * FLOAT_BYTES,
+      this.#marks.address,
+      marks.length,
+      this.points,
+      this.#maximum.address,
+      this.#sums.address,
+      this.#counts.address,
+    );
   }
 
-  #place(power: Float32Array): number {
+  /** Rows of another memory are copied in, bins averaged to points. */
+  #prepare(rows: Float32Array, stride: number, count: number): void {
     const bins = this.points * this.#group;
-    const address = this.#kernel.place(power, 0, bins, this.#staging);
-    if (this.#group === 1) return address;
-    this.#kernel.call.pool(address, this.#group, this.points, this.#pooled.address);
-    return this.#pooled.address;
+    for (let row = 0; row < count; row++) {
+      const address = this.#kernel.place(rows, row * stride, row * stride + bins, this.#staging);
+      const out = this.#prepared.address + row * this.points * FLOAT_BYTES;
+      this.#kernel.call.pool(address, this.#group, this.points, out);
+    }
   }
 }

@@ -138,6 +138,7 @@ export class KernelArray<T extends { readonly buffer: ArrayBufferLike }> impleme
 export class Kernel {
   readonly call: KernelFunctions;
   readonly #memory = new api.Memory({ initial: 1 });
+  #buffer = this.#memory.buffer;
   #next = FIRST_FREE + GAP_BYTES;
 
   /** @throws Error where `kernel.wasm` has not been built. */
@@ -147,7 +148,7 @@ export class Kernel {
   }
 
   get buffer(): ArrayBuffer {
-    return this.#memory.buffer;
+    return this.#buffer;
   }
 
   /** Forgets every array, so that their memory can be handed out anew. */
@@ -162,7 +163,10 @@ export class Kernel {
     const end = address + length * type.BYTES_PER_ELEMENT;
     this.#next = Math.ceil((end + GAP_BYTES) / GAP_BYTES) * GAP_BYTES;
     const missing = Math.ceil((this.#next - this.buffer.byteLength) / PAGE_BYTES);
-    if (missing > 0) this.#memory.grow(missing);
+    if (missing > 0) {
+      this.#memory.grow(missing);
+      this.#buffer = this.#memory.buffer;
+    }
     return new KernelArray(this, address, () => new type(this.buffer, address, length));
   }
 

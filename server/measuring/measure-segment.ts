@@ -1,4 +1,5 @@
 import { kernelEngine } from '../kernel/kernel-engine.ts';
+import { ChannelContentTracker, type OpenContent } from '../signal/channel-content.ts';
 import { detectorLeadInSamples, detectorTailSamples } from '../signal/detector-reach.ts';
 import type { FrameEngine } from '../signal/frame-engine.ts';
 import { BlockReader } from './block-reader.ts';
@@ -14,9 +15,14 @@ import { ViewWriter } from './view-writer.ts';
 export interface MeasureTools {
   openEngine: () => FrameEngine;
   openDetection: OpenDetection;
+  openContent: OpenContent;
 }
 
-const usualTools: MeasureTools = { openEngine: kernelEngine, openDetection: openSegmentDetection };
+const usualTools: MeasureTools = {
+  openEngine: kernelEngine,
+  openDetection: openSegmentDetection,
+  openContent: (settings) => new ChannelContentTracker(settings),
+};
 
 /**
  * Measures one segment in one pass over its samples, block by block: its stretch of the views, its candidates and its part
@@ -35,22 +41,21 @@ export async function measureSegment(
 ): Promise<void> {
   const engine = tools.openEngine();
   try {
-    await measureWith(engine, { input, segmentIndex, controls, openDetection: tools.openDetection });
+    await measureWith(engine, { input, segmentIndex, controls, ...tools });
   } finally {
     engine.close();
   }
 }
 
-interface SegmentTask {
+interface SegmentTask extends Omit<MeasureTools, 'openEngine'> {
   input: MeasureInput;
   segmentIndex: number;
   controls: MeasureControls;
-  openDetection: OpenDetection;
 }
 
 async function measureWith(
   engine: FrameEngine,
-  { input, segmentIndex, controls, openDetection }: SegmentTask,
+  { input, segmentIndex, controls, openDetection, openContent }: SegmentTask,
 ): Promise<void> {
   const plan = describeMeasurement(input);
   const segment = plan.segments[segmentIndex]!;
@@ -67,7 +72,7 @@ async function measureWith(
     candidatesPath: parts.candidatesPath(segmentIndex),
   });
   try {
-    const pass = new SegmentPass({ plan, segment, views, detection, reach, engine });
+    const pass = new SegmentPass({ plan, segment, views, detection, reach, engine, openContent });
     await pass.run(reader, controls);
     const part = pass.finish();
     views.finish();

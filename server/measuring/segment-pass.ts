@@ -1,4 +1,5 @@
 import { ChannelLikeness } from '../signal/channel-likeness.ts';
+import type { OpenContent } from '../signal/channel-content.ts';
 import { ChannelPairs } from '../signal/channel-pairs.ts';
 import { ChannelPass } from '../signal/channel-pass.ts';
 import type { FrameEngine } from '../signal/frame-engine.ts';
@@ -25,6 +26,7 @@ export interface SegmentPassParts {
   /** The samples that are read for it. */
   reach: Span;
   engine: FrameEngine;
+  openContent: OpenContent;
 }
 
 /** The channels of one segment, walked together. */
@@ -96,7 +98,7 @@ export class SegmentPass {
   }
 
   #openChannel(channel: number, arithmetic: PassArithmetic): ChannelPass {
-    const { plan, segment, views, detection } = this.#parts;
+    const { plan, segment, views, detection, openContent } = this.#parts;
     const { format, layout, course, descriptors, spectrumPoints } = plan;
     return new ChannelPass({
       plan: layout.plan,
@@ -109,6 +111,7 @@ export class SegmentPass {
       },
       course,
       arithmetic,
+      openContent,
       descriptorsByMeyda: descriptors === 'meyda',
       spectrumPoints,
       sampleFormat: format,

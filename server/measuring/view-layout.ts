@@ -9,6 +9,7 @@ import {
   COLUMN_FACTOR,
   columnLevelsWithin,
   columnsAtLevel,
+  FIRST_STORED_LEVELS,
   planPictures,
   type Picture,
 } from '../signal/spectrogram-columns.ts';
@@ -33,11 +34,6 @@ type RecordingShape = Pick<AudioFormat, 'sampleRateHz' | 'frames' | 'channels'>;
 
 const FLOAT_BYTES = 4;
 const PEAK_BYTES = 2 * FLOAT_BYTES;
-/**
- * Finer levels of a picture are made from the samples when asked for; these and the levels above are kept. Short frames
- * follow each other quickly: their level 1 alone would take a fifteenth of the audio's bytes.
- */
-export const FIRST_STORED_LEVELS: Record<PictureBand, number> = { audible: 1, ultrasonic: 2 };
 
 /** Where everything lies in the view files: all sizes follow from rate, frames and channels. */
 export class ViewLayout {

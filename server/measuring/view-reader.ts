@@ -9,10 +9,11 @@ import {
   COLUMN_FACTOR,
   type Picture,
 } from '../signal/spectrogram-columns.ts';
+import { FIRST_STORED_LEVELS } from '../signal/spectrogram-columns.ts';
 import type { AudioPlace } from './block-reader.ts';
 import { computedColumns } from './computed-columns.ts';
 import { peaksFromPyramid, peaksFromSamples, samplesPerPointFor } from './peaks-reader.ts';
-import { FIRST_STORED_LEVELS, ViewLayout, viewPath, type FileRegion } from './view-layout.ts';
+import { ViewLayout, viewPath, type FileRegion } from './view-layout.ts';
 import { readManifest } from './view-manifest.ts';
 
 /** Views are asked for that a recording does not have: a channel, a band, a level or a tile beyond its last. */

@@ -2,8 +2,9 @@ import { closeSync, constants, fdatasyncSync, openSync } from 'node:fs';
 import type { PictureBand } from '../../shared/contract/views.ts';
 import type { ViewSink } from '../signal/channel-pass.ts';
 import type { Span } from '../signal/place-list.ts';
+import { FIRST_STORED_LEVELS } from '../signal/spectrogram-columns.ts';
 import { RegionWriter } from './region-writer.ts';
-import { FIRST_STORED_LEVELS, viewPath, type FileRegion, type ViewLayout } from './view-layout.ts';
+import { viewPath, type FileRegion, type ViewLayout } from './view-layout.ts';
 
 const BUFFER_BYTES = 64 * 1024;
 /** With many channels many regions grow at once. */

@@ -1,7 +1,7 @@
 import { rmsToDb } from '../../shared/audio/units.ts';
 import type { BandLevel } from '../../shared/contract/measurement.ts';
 import { powerQuantile } from './power-quantile.ts';
-import { openPlainTables, type SpectrumTables } from './spectrum-tables.ts';
+import { openPlainTables, spectrumMark, type SpectrumTables } from './spectrum-tables.ts';
 import type { ThirdOctave } from './third-octaves.ts';
 
 /** What the frames of one segment add to the levels of its bands; plain data. */
@@ -14,6 +14,7 @@ export interface BandLevelsPart {
 
 /** The floor is what nine frames of ten exceed. */
 const FLOOR_SHARE = 0.1;
+const ONE_COUNTED = Int32Array.of(spectrumMark(0, true));
 
 /**
  * Levels of bands over time: the noise floor, the median, the mean and the highest frame, by AES17.
@@ -29,12 +30,12 @@ export class BandLevels {
 
   constructor(bands: readonly ThirdOctave[]) {
     this.#bands = bands;
-    this.#tables = openPlainTables({ points: bands.length, group: 1, classes: 1 });
+    this.#tables = openPlainTables({ points: bands.length, group: 1, classes: 1, capacity: 1 });
   }
 
   /** @param meanSquares one per band, of a frame that is not silent. */
   push(meanSquares: Float32Array): void {
-    this.#tables.push(meanSquares, 0, true);
+    this.#tables.push(meanSquares, meanSquares.length, ONE_COUNTED);
     this.#frames++;
   }
 

@@ -40,6 +40,10 @@ export interface ContentTrackerSettings extends ChannelContentSettings {
   sumBlocks: BlockSummer;
 }
 
+/** Looks at one segment of a channel. */
+export type ContentTracker = Pick<ChannelContentTracker, 'pushSamples' | 'pushLong' | 'finish'>;
+export type OpenContent = (settings: ContentTrackerSettings) => ContentTracker;
+
 /** What one segment tells of what a channel holds; plain data. */
 export interface ChannelContentPart {
   bits: EffectiveBitsPart;

@@ -1,9 +1,9 @@
 import type { PictureBand } from '../../shared/contract/views.ts';
-import { ChannelContentTracker, type ChannelContentPart } from './channel-content.ts';
+import type { ChannelContentPart, ContentTracker, OpenContent } from './channel-content.ts';
 import { CourseTracker, type CoursePart, type CoursePlan } from './course.ts';
 import { DropoutTracker, type DropoutPart } from './dropouts.ts';
 import type { SampleFormat } from './effective-bits.ts';
-import { FrameCursor, FRAMES_TOGETHER, type SampleWindow } from './frame-cursor.ts';
+import { FrameCursor, type SampleWindow } from './frame-cursor.ts';
 import type { PowerRows } from './frame-engine.ts';
 import type { FramePlan } from './frame-plan.ts';
 import { rowBands, type FrameRow } from './frame-row.ts';
@@ -12,7 +12,7 @@ import type { LongFramePart } from './long-frame-statistics.ts';
 import { LongFrames } from './long-frames.ts';
 import { MainsTracker, type MainsPart } from './mains.ts';
 import { LONG_FRAMES_AT_ONCE, type PassArithmetic } from './pass-arithmetic.ts';
-import { PictureColumns } from './picture-columns.ts';
+import { framesPerColumn, PictureColumns } from './picture-columns.ts';
 import type { Span } from './place-list.ts';
 import { PeakPyramid } from './pyramid.ts';
 import type { SampleCell } from './sample-cells.ts';
@@ -36,6 +36,7 @@ export interface ChannelPassSettings {
   columnLevels: Record<PictureBand, number>;
   course: CoursePlan;
   arithmetic: PassArithmetic;
+  openContent: OpenContent;
   descriptorsByMeyda: boolean;
   spectrumPoints: number;
   /** Of the samples as they are stored. */
@@ -70,7 +71,7 @@ export class ChannelPass {
   readonly #mains: MainsTracker;
   readonly #course: CourseTracker;
   readonly #pyramid: PeakPyramid;
-  readonly #content: ChannelContentTracker;
+  readonly #content: ContentTracker;
   readonly #longFrames: LongFrames;
   readonly #shortFrames: ShortFrames | undefined;
   readonly #audible: AudibleFrames | undefined;
@@ -86,7 +87,7 @@ export class ChannelPass {
     this.#mains = new MainsTracker(sampleRateHz, arithmetic.sumMeans);
     this.#course = new CourseTracker(settings.course, segment);
     this.#pyramid = new PeakPyramid(settings.peakLevels, (level, low, high) => views.peak(level, low, high));
-    this.#content = new ChannelContentTracker({
+    this.#content = settings.openContent({
       sampleRateHz,
       sampleFormat: settings.sampleFormat,
       longBands: rowBands(plan),
@@ -97,9 +98,13 @@ export class ChannelPass {
     this.#audible = openAudible(settings);
     this.#longFrames = this.#openLongFrames();
     this.#shortFrames = arithmetic.short && new ShortFrames(settings, arithmetic.short, this.#course);
-    // Frames wait for others until they are four.
-    const { size, hop } = plan.audible;
-    this.historySamples = Math.max(size + FRAMES_TOGETHER * hop, this.#dropouts.historySamples);
+    // Frames wait for others until they make a column.
+    const { audible, short } = plan;
+    this.historySamples = Math.max(
+      audible.size + framesPerColumn('audible') * audible.hop,
+      short.size + framesPerColumn('ultrasonic') * short.hop,
+      this.#dropouts.historySamples,
+    );
   }
 
   /** @param from place in the window of the first sample not yet seen. */
@@ -161,13 +166,20 @@ export class ChannelPass {
     const audible = this.#audible;
     const sharing = audible?.rows === arithmetic.long ? audible : undefined;
     return new LongFrames({
-      cursor: new FrameCursor(plan.long, plan.frames, segment, LONG_FRAMES_AT_ONCE),
+      cursor: new FrameCursor(
+        plan.long,
+        plan.frames,
+        segment,
+        LONG_FRAMES_AT_ONCE,
+        framesPerColumn('audible'),
+      ),
       rows: arithmetic.long,
       openTables: arithmetic.openTables,
       bands: rowBands(plan).length,
       sampleRateHz: plan.sampleRateHz,
       size: plan.long.size,
       spectrumPoints,
+      capacity: LONG_FRAMES_AT_ONCE,
       byMeyda: descriptorsByMeyda,
       onRow: (row) => views.frameRow(row),
       onBands: (index, values, at) => this.#content.pushLong(index, values, at),
@@ -203,6 +215,7 @@ function openAudible(settings: ChannelPassSettings): AudibleFrames | undefined {
   if (!picture) return undefined;
   const columns = new PictureColumns(picture, settings);
   if (!arithmetic.audible) return new AudibleFrames(arithmetic.long, columns, undefined);
-  const cursor = new FrameCursor(picture.grid, plan.frames, segment, LONG_FRAMES_AT_ONCE);
+  const together = framesPerColumn('audible');
+  const cursor = new FrameCursor(picture.grid, plan.frames, segment, LONG_FRAMES_AT_ONCE, together);
   return new AudibleFrames(arithmetic.audible, columns, cursor);
 }

@@ -15,24 +15,26 @@ export interface FrameRun {
   end: number;
 }
 
-/** Frames of a run, so that four of them make a column of level 1 of a picture; only the last run may be cut. */
-export const FRAMES_TOGETHER = 4;
-
 /** Hands out the frames of a grid that belong to a segment, many at a time, as its samples arrive. */
 export class FrameCursor {
   readonly #grid: FrameGrid;
   readonly #frames: number;
   readonly #end: number;
   readonly #most: number;
+  readonly #together: number;
   #next: number;
 
-  /** @param frames samples of the whole recording. @param most frames of one run, a multiple of four. */
-  constructor(grid: FrameGrid, frames: number, segment: Span, most: number) {
+  /**
+   * @param frames samples of the whole recording.
+   * @param most frames of one run. @param together all runs but the last are multiples of it, and so is `most`.
+   */
+  constructor(grid: FrameGrid, frames: number, segment: Span, most: number, together: number) {
     const { first, end } = framesIn(grid, segment);
     this.#grid = grid;
     this.#frames = frames;
     this.#end = end;
     this.#most = most;
+    this.#together = together;
     this.#next = first;
   }
 
@@ -42,7 +44,7 @@ export class FrameCursor {
     let end = first;
     const last = Math.min(this.#end, first + this.#most);
     while (end < last && frameStart(this.#grid, end, this.#frames) + this.samplesOf(end) <= endSample) end++;
-    if (end < this.#end) end -= (end - first) % FRAMES_TOGETHER;
+    if (end < this.#end) end -= (end - first) % this.#together;
     if (end === first) return undefined;
     this.#next = end;
     return { first, end };

@@ -10,6 +10,8 @@ export interface LongFrameStatisticsSettings {
   size: number;
   /** Most points of the long-term spectra. */
   spectrumPoints: number;
+  /** Most frames of one push; one without. */
+  capacity?: number;
 }
 
 export type DescriptorMedians = Omit<ChannelDescriptors, 'channel'>;
@@ -33,13 +35,14 @@ export class LongFrameStatistics {
   readonly #seesUltrasound: boolean;
 
   constructor(
-    { sampleRateHz, size, spectrumPoints }: LongFrameStatisticsSettings,
+    { sampleRateHz, size, spectrumPoints, capacity }: LongFrameStatisticsSettings,
     openTables?: OpenSpectrumTables,
   ) {
     const nyquistHz = sampleRateHz / 2;
     const ultrasonic = bandBins('ultrasonic', size, sampleRateHz);
     this.#seesUltrasound = ultrasonic.end > ultrasonic.first;
-    this.longTerm = new LongTermSpectrum({ size, sampleRateHz, maximumPoints: spectrumPoints }, openTables);
+    const settings = { size, sampleRateHz, maximumPoints: spectrumPoints, capacity };
+    this.longTerm = new LongTermSpectrum(settings, openTables);
     this.#medians = {
       centroidHz: new BinnedMedian(0, nyquistHz),
       spreadHz: new BinnedMedian(0, nyquistHz),

@@ -15,6 +15,8 @@ import type { OpenSpectrumTables } from './spectrum-tables.ts';
 export interface LongFramesSettings extends LongFrameStatisticsSettings {
   cursor: FrameCursor;
   rows: LongFrameRows;
+  /** Most frames that the cursor gives at once. */
+  capacity: number;
   openTables: OpenSpectrumTables;
   bands: number;
   /** Whether meyda's own extractors give the descriptors, instead of the engine's, which are equal. */
@@ -39,11 +41,13 @@ export class LongFrames {
   readonly #settings: LongFramesSettings;
   readonly #statistics: LongFrameStatistics;
   readonly #row: FrameRow;
+  readonly #energies: Float64Array;
 
   constructor(settings: LongFramesSettings) {
     this.#settings = settings;
     this.#statistics = new LongFrameStatistics(settings, settings.openTables);
     this.#row = new Float32Array(BAND_COLUMN + settings.bands);
+    this.#energies = new Float64Array(settings.capacity);
   }
 
   advance(window: SampleWindow): void {
@@ -55,8 +59,10 @@ export class LongFrames {
       for (let index = 0; index < count; index++) {
         const isSilent = !this.#describe(index, cursor.samplesOf(run.first + index));
         onRow(this.#row);
+        this.#energies[index] = isSilent ? Number.NaN : this.#energyOf(index);
         if (!isSilent) onBands(run.first + index, rows.features, this.#bandsAt(index));
       }
+      this.#statistics.longTerm.push(rows.power, rows.powerStride, this.#energies.subarray(0, count));
     }
   }
 
@@ -79,20 +85,23 @@ export class LongFrames {
     row[0] = 20 * Math.log10(rms * Math.SQRT2);
     row[2] = 20 * Math.log10(peak / rms);
     row[3] = (features[at + FEATURE.crossings]! * sampleRateHz) / samples;
-    const power = rows.power.subarray(index * rows.powerStride, index * rows.powerStride + rows.bins);
-    if (byMeyda) meydaColumns(power, sampleRateHz, features, at);
+    if (byMeyda) meydaColumns(this.#powerOf(index), sampleRateHz, features, at);
     this.#copyShape(features, at);
-    this.#statistics.longTerm.push(power, this.#energyOf(features, at));
     this.#statistics.pushRow(row);
     return true;
   }
 
-  /** Summed power of the third octaves, which begin at 1 kHz: what decides whether a frame is quiet. */
-  #energyOf(features: Float32Array, at: number): number | undefined {
-    const { bands } = this.#settings;
-    if (bands === 0) return undefined;
-    const first = at + FEATURE.thirdOctaves;
-    return LINES_PER_MEAN_SQUARE * sumOf(features, first, first + bands);
+  #powerOf(index: number): Float32Array {
+    const { power, powerStride, bins } = this.#settings.rows;
+    return power.subarray(index * powerStride, index * powerStride + bins);
+  }
+
+  /** Summed power from 1 kHz up, where the third octaves begin. */
+  #energyOf(index: number): number {
+    const { bands, rows } = this.#settings;
+    if (bands === 0) return this.#statistics.longTerm.energyOf(this.#powerOf(index));
+    const first = this.#bandsAt(index);
+    return LINES_PER_MEAN_SQUARE * sumOf(rows.features, first, first + bands);
   }
 
   #bandsAt(index: number): number {

@@ -1,7 +1,13 @@
 import { ENERGY_CLASSES, EnergyClasses, energyClass } from './energy-classes.ts';
 import { sumOf } from './frame-spectrum.ts';
 import { powerQuantile } from './power-quantile.ts';
-import { openPlainTables, type OpenSpectrumTables, type SpectrumTables } from './spectrum-tables.ts';
+import {
+  NO_SPECTRUM,
+  openPlainTables,
+  spectrumMark,
+  type OpenSpectrumTables,
+  type SpectrumTables,
+} from './spectrum-tables.ts';
 
 /** Densities of one channel on one axis; dB re full scale squared per hertz, so that their integral is the mean square. */
 export interface LongTermSpectra {
@@ -19,6 +25,8 @@ export interface LongTermSettings {
   size: number;
   sampleRateHz: number;
   maximumPoints: number;
+  /** Most spectra of one push; one without. */
+  capacity?: number;
 }
 
 /** What one segment adds to the spectra of a channel; classes without a frame are left out. */
@@ -56,6 +64,7 @@ export class LongTermSpectrum {
   readonly #binsPerPoint: number;
   readonly #tables: SpectrumTables;
   readonly #classFrames = new Uint32Array(ENERGY_CLASSES);
+  readonly #marks: Int32Array;
   readonly #firstActivityBin: number;
   #frames = 0;
   #countedFrames = 0;
@@ -63,25 +72,39 @@ export class LongTermSpectrum {
   /** @param openTables where the spectra are gathered. */
   constructor(settings: LongTermSettings, openTables: OpenSpectrumTables = openPlainTables) {
     const bins = settings.size / 2;
+    const { capacity = 1 } = settings;
     this.#settings = settings;
     const group = Math.max(1, 2 ** Math.ceil(Math.log2(bins / settings.maximumPoints)));
     this.#binsPerPoint = group;
-    this.#tables = openTables({ points: bins / group, group, classes: ENERGY_CLASSES });
+    this.#tables = openTables({ points: bins / group, group, classes: ENERGY_CLASSES, capacity });
+    this.#marks = new Int32Array(capacity);
     const lowBin = Math.ceil((ACTIVITY_LOW_HZ * settings.size) / settings.sampleRateHz);
     this.#firstActivityBin = lowBin < bins / 2 ? Math.max(1, lowBin) : 1;
   }
 
+  /** What decides whether a frame is quiet: the summed power of its bins from 1 kHz up. */
+  energyOf(power: Float32Array): number {
+    return sumOf(power, this.#firstActivityBin, power.length);
+  }
+
   /**
-   * @param power bins 0 to N/2 - 1 of a frame that is not silent. Bin 0 is not used: the mean was removed.
-   * @param energy summed power from 1 kHz up, where that is known.
+   * @param rows bins 0 to N/2 - 1 of each frame, `stride` floats from one to the next. Bin 0 is not used: the mean was removed.
+   * @param energies of the frames, as many as there are rows; NaN for a silent one, which is left out.
    */
-  push(power: Float32Array, energy = sumOf(power, this.#firstActivityBin, power.length)): void {
-    const classIndex = energyClass(energy);
+  push(rows: Float32Array, stride: number, energies: Float64Array): void {
+    const marks = this.#marks.subarray(0, energies.length);
+    for (const [row, energy] of energies.entries()) {
+      marks[row] = Number.isNaN(energy) ? NO_SPECTRUM : this.#mark(energyClass(energy));
+    }
+    this.#tables.push(rows, stride, marks);
+  }
+
+  #mark(classIndex: number): number {
     // Frames overlap by half: every other one holds all samples once.
     const isCounted = this.#frames++ % 2 === 0;
-    this.#tables.push(power, classIndex, isCounted);
     this.#classFrames[classIndex]!++;
     if (isCounted) this.#countedFrames++;
+    return spectrumMark(classIndex, isCounted);
   }
 
   get part(): LongTermPart {

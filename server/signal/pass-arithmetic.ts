@@ -15,7 +15,7 @@ import { CELL_SAMPLES } from './sample-cells.ts';
 import type { OpenSpectrumTables } from './spectrum-tables.ts';
 import type { Picture } from './spectrogram-columns.ts';
 
-/** Frames computed at once, multiples of four. */
+/** Frames computed at once, multiples of those of a column. */
 export const LONG_FRAMES_AT_ONCE = 64;
 export const SHORT_FRAMES_AT_ONCE = 256;
 

@@ -1,13 +1,18 @@
 import type { PictureBand } from '../../shared/contract/views.ts';
 import type { PowerRows } from './frame-engine.ts';
-import { COLUMN_FACTOR, ColumnPyramid, type Picture } from './spectrogram-columns.ts';
+import { COLUMN_FACTOR, ColumnPyramid, FIRST_STORED_LEVELS, type Picture } from './spectrogram-columns.ts';
 
 interface PictureColumnsSettings {
   columnLevels: Record<PictureBand, number>;
   views: { column(band: PictureBand, level: number, codes: Uint8Array): void };
 }
 
-/** Makes the columns of a picture, level 1 and up, from rows of powers. */
+/** Frames that make a column of the first stored level of a picture. */
+export function framesPerColumn(band: PictureBand): number {
+  return COLUMN_FACTOR ** FIRST_STORED_LEVELS[band];
+}
+
+/** Makes the columns of the stored levels of a picture from rows of powers. */
 export class PictureColumns {
   readonly #picture: Picture;
   readonly #pyramid: ColumnPyramid | undefined;
@@ -15,17 +20,18 @@ export class PictureColumns {
   constructor(picture: Picture, { columnLevels, views }: PictureColumnsSettings) {
     const { band, bins } = picture.layout;
     const levels = columnLevels[band];
+    const first = FIRST_STORED_LEVELS[band];
     this.#picture = picture;
     const sink = (level: number, codes: Uint8Array) => views.column(band, level, codes);
-    this.#pyramid = levels > 1 ? new ColumnPyramid(bins, levels, sink) : undefined;
+    this.#pyramid = levels > first ? new ColumnPyramid(bins, first, levels, sink) : undefined;
   }
 
-  /** @param count rows of the next columns of level 0; a multiple of four, save the last ones of a segment. */
+  /** @param count rows of the next columns of level 0; a multiple of `framesPerColumn`, save the last ones of a segment. */
   push(rows: PowerRows, count: number): void {
     if (!this.#pyramid) return;
-    const { firstBin, endBin } = this.#picture;
+    const { layout, firstBin, endBin } = this.#picture;
     const range = { first: firstBin, end: endBin };
-    this.#pyramid.push(rows.encode({ firstRow: 0, endRow: count }, range, COLUMN_FACTOR));
+    this.#pyramid.push(rows.encode({ firstRow: 0, endRow: count }, range, framesPerColumn(layout.band)));
   }
 
   finish(): void {

@@ -3,7 +3,7 @@ import type { ChannelPassSettings } from './channel-pass.ts';
 import { FrameCursor, type SampleWindow } from './frame-cursor.ts';
 import type { ShortFrameRows } from './frame-engine.ts';
 import { SHORT_FRAMES_AT_ONCE } from './pass-arithmetic.ts';
-import { PictureColumns } from './picture-columns.ts';
+import { framesPerColumn, PictureColumns } from './picture-columns.ts';
 
 /** Lines above the hearing line of one short frame: `power[offset + k - first]` is line k, `first` to `end - 1`. */
 export interface ShortFrame {
@@ -29,7 +29,13 @@ export class ShortFrames {
 
   constructor(settings: ChannelPassSettings, rows: ShortFrameRows, course: CourseTracker) {
     const { plan, pictures, segment } = settings;
-    this.#cursor = new FrameCursor(plan.short, plan.frames, segment, SHORT_FRAMES_AT_ONCE);
+    this.#cursor = new FrameCursor(
+      plan.short,
+      plan.frames,
+      segment,
+      SHORT_FRAMES_AT_ONCE,
+      framesPerColumn('ultrasonic'),
+    );
     this.#rows = rows;
     const picture = pictures.find(({ layout }) => layout.band === 'ultrasonic');
     this.#picture = picture && new PictureColumns(picture, settings);

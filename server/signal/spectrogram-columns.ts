@@ -4,6 +4,11 @@ import { bandBins, type FrameGrid, type FramePlan } from './frame-plan.ts';
 
 export const COLUMNS_PER_TILE = 256;
 export const COLUMN_FACTOR = 4;
+/**
+ * Finer levels of a picture are made from the samples when asked for; these and the levels above are kept. Short frames
+ * follow each other quickly: their level 1 alone would take a fifteenth of the audio's bytes.
+ */
+export const FIRST_STORED_LEVELS: Record<PictureBand, number> = { audible: 1, ultrasonic: 2 };
 /** A band with fewer lines is no picture. */
 const MINIMUM_BINS = 4;
 const MAXIMUM_CODE = 255;
@@ -101,50 +106,51 @@ export function encodeColumn(
 /** Takes the finished columns of a level in order, one or more at a time; `codes` is reused. */
 export type ColumnSink = (level: number, codes: Uint8Array) => void;
 
-/** Levels 1 and up of a picture: each column is the maximum of four of the level below, so that no click vanishes. */
+/** The stored levels of a picture: each column is the maximum of four of the level below, so that no click vanishes. */
 export class ColumnPyramid {
   readonly #bins: number;
+  readonly #firstLevel: number;
   readonly #sink: ColumnSink;
-  readonly #open: { codes: Uint8Array; parts: number }[];
+  readonly #open: { codes: Uint8Array; parts: number }[] = [];
 
-  /** @param levels how many, level 0 counted; each column of the highest lies in the segment. */
-  constructor(bins: number, levels: number, sink: ColumnSink) {
+  /** @param levels where they end; each column of the highest lies in the segment. */
+  constructor(bins: number, firstLevel: number, levels: number, sink: ColumnSink) {
     this.#bins = bins;
+    this.#firstLevel = firstLevel;
     this.#sink = sink;
-    this.#open = Array.from({ length: Math.max(0, levels - 2) }, () => ({
-      codes: new Uint8Array(bins),
-      parts: 0,
-    }));
+    for (let level = firstLevel + 1; level < levels; level++) {
+      this.#open.push({ codes: new Uint8Array(bins), parts: 0 });
+    }
   }
 
-  /** @param codes the next columns of level 1. */
+  /** @param codes the next columns of the first level. */
   push(codes: Uint8Array): void {
-    this.#sink(1, codes);
-    for (let at = 0; at < codes.length; at += this.#bins) this.#merge(2, codes, at);
+    this.#sink(this.#firstLevel, codes);
+    for (let at = 0; at < codes.length; at += this.#bins) this.#merge(0, codes, at);
   }
 
   finish(): void {
-    for (let level = 2; level < this.#open.length + 2; level++) {
-      if (this.#open[level - 2]!.parts > 0) this.#emit(level);
-    }
+    for (const [index, { parts }] of this.#open.entries()) if (parts > 0) this.#emit(index);
   }
 
-  #merge(level: number, codes: Uint8Array, at: number): void {
-    const open = this.#open[level - 2];
+  #merge(index: number, codes: Uint8Array, at: number): void {
+    const open = this.#open[index];
     if (!open) return;
     const kept = open.codes;
     for (let b = 0; b < kept.length; b++) {
-      const code = codes[at + b]!;
-      if (code > kept[b]!) kept[b] = code;
+      // The greater one without a branch, which noise would make a guess.
+      const more = codes[at + b]! - kept[b]!;
+      kept[b]! += more & ~(more >> 31);
     }
     open.parts++;
-    if (open.parts === COLUMN_FACTOR) this.#emit(level);
+    if (open.parts === COLUMN_FACTOR) this.#emit(index);
   }
 
-  #emit(level: number): void {
-    const open = this.#open[level - 2]!;
+  #emit(index: number): void {
+    const open = this.#open[index]!;
+    const level = this.#firstLevel + 1 + index;
     this.#sink(level, open.codes);
-    this.#merge(level + 1, open.codes, 0);
+    this.#merge(index + 1, open.codes, 0);
     open.codes.fill(0);
     open.parts = 0;
   }

@@ -14,6 +14,8 @@ export interface SpectrumTablesSettings {
   group: number;
   /** Classes of frames whose spectra are summed apart. */
   classes: number;
+  /** Most rows of one push. */
+  capacity: number;
 }
 
 /** What spectra are gathered in, point by point. The arrays may be replaced when the engine sets something up. */
@@ -24,8 +26,20 @@ export interface SpectrumTables {
   readonly sums: Float64Array;
   /** Histogram of point p from `p * QUANTILE_CELLS`: its cells are the upper bits of a float32, which costs no logarithm. */
   readonly counts: Uint32Array;
-  /** @param power bins of a spectrum, finite and at least 0; bin 0 is left out where bins are averaged. */
-  push(power: Float32Array, classIndex: number, isCounted: boolean): void;
+  /**
+   * @param rows of spectra, `stride` floats from one to the next: powers, finite and at least 0; bin 0 is left out where bins are
+   * averaged. @param marks what to do with each row, see `spectrumMark`; there are as many rows as marks.
+   */
+  push(rows: Float32Array, stride: number, marks: Int32Array): void;
+}
+
+/** A row that is left out. */
+export const NO_SPECTRUM = -1;
+const COUNTED_MARK = 1 << 8;
+
+/** @param classIndex under 256. @param isCounted whether it goes into the histograms. */
+export function spectrumMark(classIndex: number, isCounted: boolean): number {
+  return isCounted ? classIndex | COUNTED_MARK : classIndex;
 }
 
 /** Raises the cell of each power in its histogram. @param bits of float32 powers, finite and at least 0. */
@@ -60,16 +74,23 @@ class PlainSpectrumTables implements SpectrumTables {
     this.#bits = new Uint32Array(this.#pooled.buffer);
   }
 
-  push(power: Float32Array, classIndex: number, isCounted: boolean): void {
+  push(rows: Float32Array, stride: number, marks: Int32Array): void {
+    const bins = this.points * this.#group;
+    for (const [row, mark] of marks.entries()) {
+      if (mark !== NO_SPECTRUM) this.#pushOne(rows.subarray(row * stride, row * stride + bins), mark);
+    }
+  }
+
+  #pushOne(power: Float32Array, mark: number): void {
     const pooled = this.#pooled;
     if (this.#group === 1) pooled.set(power);
     else this.#pool(power);
     const { maximum, sums } = this;
-    for (let p = 0, s = classIndex * this.points; p < pooled.length; p++, s++) {
+    for (let p = 0, s = (mark & ~COUNTED_MARK) * this.points; p < pooled.length; p++, s++) {
       if (pooled[p]! > maximum[p]!) maximum[p] = pooled[p]!;
       sums[s]! += pooled[p]!;
     }
-    if (isCounted) countPowers(this.#bits, this.counts);
+    if ((mark & COUNTED_MARK) !== 0) countPowers(this.#bits, this.counts);
   }
 
   #pool(power: Float32Array): void {

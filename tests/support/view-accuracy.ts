@@ -1,11 +1,7 @@
 import { readFileSync } from 'node:fs';
-import {
-  FIRST_STORED_LEVELS,
-  ViewLayout,
-  viewPath,
-  type FileRegion,
-} from '../../server/measuring/view-layout.ts';
+import { ViewLayout, viewPath, type FileRegion } from '../../server/measuring/view-layout.ts';
 import { readManifest } from '../../server/measuring/view-manifest.ts';
+import { FIRST_STORED_LEVELS } from '../../server/signal/spectrogram-columns.ts';
 
 /** What is stored of the first channel at its finest: rows of descriptors, codes of both pictures, pairs of peaks. */
 export interface ViewValues {

@@ -1,5 +1,6 @@
-import { tileLayout, FIRST_STORED_LEVELS } from '../../../server/measuring/view-layout.ts';
+import { tileLayout } from '../../../server/measuring/view-layout.ts';
 import { readTile } from '../../../server/measuring/view-reader.ts';
+import { FIRST_STORED_LEVELS } from '../../../server/signal/spectrogram-columns.ts';
 import { withFileSource } from '../../../server/store/file-source.ts';
 import { readWavHeader } from '../../../shared/audio/wav-header.ts';
 import type { PictureLayout } from '../../../shared/contract/views.ts';

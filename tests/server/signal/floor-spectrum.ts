@@ -10,7 +10,8 @@ export function floorSpectrum(samples: Float32Array, sampleRateHz: number): Floo
   const frame = new FrameSpectrum(size);
   for (let from = 0; from + size <= samples.length; from += size / 2) {
     frame.analyse(samples, from, from + size);
-    if (!frame.isSilent) longTerm.push(frame.power);
+    const energy = frame.isSilent ? Number.NaN : longTerm.energyOf(frame.power);
+    longTerm.push(frame.power, frame.power.length, Float64Array.of(energy));
   }
   const { frequenciesHz, medianDbPerHz } = longTerm.finish();
   return { sampleRateHz, frequenciesHz, floorDbPerHz: medianDbPerHz };

@@ -64,7 +64,7 @@ describe('the frame cursor', () => {
     const frames = 5000;
     const { long } = planFrames(48_000, frames);
     const takenWith = (blockFrames: number) => {
-      const cursor = new FrameCursor(long, frames, { startSample: 0, endSample: frames }, 8);
+      const cursor = new FrameCursor(long, frames, { startSample: 0, endSample: frames }, 8, 4);
       const seen: number[] = [];
       for (let end = blockFrames; end < frames + blockFrames; end += blockFrames) {
         const window = { samples: new Float32Array(0), startSample: 0, endSample: Math.min(end, frames) };
@@ -83,7 +83,7 @@ describe('the frame cursor', () => {
 
   it('has one short frame when the recording is shorter than a frame', () => {
     const { long } = planFrames(48_000, 3);
-    const cursor = new FrameCursor(long, 3, { startSample: 0, endSample: 3 }, 8);
+    const cursor = new FrameCursor(long, 3, { startSample: 0, endSample: 3 }, 8, 4);
     const window = { samples: new Float32Array(3), startSample: 0, endSample: 3 };
     expect(cursor.take(window)).toEqual({ first: 0, end: 1 });
     expect(cursor.samplesOf(0)).toBe(3);

@@ -12,7 +12,8 @@ function spectraOf(
   const frame = new FrameSpectrum(size);
   for (let from = 0; from + size <= samples.length; from += size / 2) {
     frame.analyse(samples, from, from + size);
-    if (!frame.isSilent) longTerm.push(frame.power);
+    const energy = frame.isSilent ? Number.NaN : longTerm.energyOf(frame.power);
+    longTerm.push(frame.power, frame.power.length, Float64Array.of(energy));
   }
   return longTerm.finish();
 }

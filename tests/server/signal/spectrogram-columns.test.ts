@@ -65,7 +65,7 @@ describe('the levels above', () => {
     const [, picture] = planPictures(planFrames(192_000, 128 * 5000));
     const { layout } = picture!;
     const seen: number[][] = Array.from({ length: layout.levels }, () => []);
-    const pyramid = new ColumnPyramid(layout.bins, layout.levels, (level, codes) =>
+    const pyramid = new ColumnPyramid(layout.bins, 1, layout.levels, (level, codes) =>
       seen[level]!.push(codes[50]!),
     );
     const codes = new Uint8Array(layout.bins);
