@@ -4,6 +4,14 @@ import type { EngineArray } from '../signal/frame-engine.ts';
 /** The functions of `assembly`; addresses are in bytes, counts in samples, bins, rows. */
 export interface KernelFunctions {
   frames(plan: number, samples: number, count: number, power: number, features: number): void;
+  tableRows(
+    features: number,
+    stride: number,
+    rows: number,
+    bands: number,
+    crossingsToHz: number,
+    table: number,
+  ): void;
   powerRows(
     plan: number,
     samples: number,

@@ -65,6 +65,15 @@ export class CellSums {
     return sumOfColumns(sums, now, then, low, high);
   }
 
+  /** Sum of each column over the cells [from, to). */
+  columnSums(from: number, to: number, into: Float64Array): void {
+    const sums = this.#sums.values;
+    const now = BANDS_PER_OCTAVE * (PAST_CELLS + to - 1);
+    const then = BANDS_PER_OCTAVE * (PAST_CELLS + from - 1);
+    for (let column = 0; column < BANDS_PER_OCTAVE; column++)
+      into[column] = sums[now + column]! - sums[then + column]!;
+  }
+
   /** Keeps the end of the block as the past of the next one. */
   shift(cells: number): void {
     const from = cells * BANDS_PER_OCTAVE;

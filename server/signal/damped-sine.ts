@@ -112,9 +112,10 @@ export class DampedSineSearch {
    * frequency and decay the correlation with a damped sine from each point on, whose square over its mean in noise is
    * the generalised likelihood ratio for unknown amplitude and phase. The best of the grid is then refined by steps.
    *
+   * @param mostBefore share of the statistic that what was there before may have.
    * Source: H. L. Van Trees, Detection, Estimation, and Modulation Theory I (1968), 4.4 (unknown phase).
    */
-  search(spot: Spot, leastStatistic: number): DampedSine | null {
+  search(spot: Spot, leastStatistic: number, mostBefore = Infinity): DampedSine | null {
     const { view, plan, first } = this.#windowOf(spot);
     const { source, fit } = view;
     if (first - DIFFERENCE_REACH < source.start || first + plan.size + DIFFERENCE_REACH > source.end)
@@ -135,12 +136,16 @@ export class DampedSineSearch {
     if (coarse.statistic < COARSE_SHARE * leastStatistic) return null;
     const best = fit.refine(coarse, HOPEFUL_SHARE * leastStatistic);
     if (best.statistic < leastStatistic || best.onset <= earliest || best.onset >= latest) return null;
-    return this.#describe(view, first, best);
+    const before = fit.statisticAt(best, -1);
+    return before < mostBefore * best.statistic ? this.#describe(view, first, { ...best, before }) : null;
   }
 
-  #describe({ source, rateHz, fit }: View, first: number, best: FittedWindow): DampedSine {
-    const { frequencyHz, statistic } = best;
-    const before = fit.statisticAt(best, -1);
+  #describe(
+    { source, rateHz }: View,
+    first: number,
+    best: FittedWindow & { readonly before: number },
+  ): DampedSine {
+    const { frequencyHz, statistic, before } = best;
     const decayS = best.decay / rateHz;
     const wide = this.#wide;
     const rough = {

@@ -6,14 +6,18 @@ const LOWER_QUARTILE = -0.674489750196082;
 
 /**
  * Median of a set, the mean of the middle two for an even number; NaN for none.
- * Cost: a sort of a copy.
+ * Cost: a few passes over a copy.
  */
 export function median(values: Float32Array | Float64Array): number {
-  const sorted = Float64Array.from(values).sort();
-  const middle = sorted.length >> 1;
-  if (sorted.length === 0) return Number.NaN;
-  if (sorted.length % 2 === 1) return sorted[middle] ?? Number.NaN;
-  return ((sorted[middle - 1] ?? 0) + (sorted[middle] ?? 0)) / 2;
+  const count = values.length;
+  if (count === 0) return Number.NaN;
+  const copy = new Float64Array(values);
+  const middle = count >> 1;
+  const upper = select(copy, count, middle);
+  if (count % 2 === 1) return upper;
+  let lower = copy[0]!;
+  for (let k = 1; k < middle; k++) lower = Math.max(lower, copy[k]!);
+  return (lower + upper) / 2;
 }
 
 /**

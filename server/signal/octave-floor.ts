@@ -16,6 +16,8 @@ const RECENT_QUANTILE = 0.25;
 /** A floor learned anew may be so many standard errors too low. */
 const RELEARNED_ERRORS = 3;
 
+const gathered = new Float64Array(BANDS_PER_OCTAVE);
+
 export interface FloorOptions {
   readonly leaves: number;
   readonly cellS: number;
@@ -41,12 +43,14 @@ export class OctaveFloor {
   readonly #ratios: readonly RunningFloor[];
   readonly #raises = new Float64Array(BANDS_PER_OCTAVE).fill(1);
   readonly #shortBlocks: number;
-  readonly #recent: readonly RunningFloor[];
+  /** Means of the last parts, quiet or not, [part][sub-band]; the oldest is written over. */
+  readonly #parts: Float64Array;
   readonly #cellsPerPart: number;
   readonly #cellsPerBlock: number;
   readonly #partSums = new Float64Array(BANDS_PER_OCTAVE);
   readonly #quietSums = new Float64Array(BANDS_PER_OCTAVE);
   #partCells = 0;
+  #partsTaken = 0;
   #blockCells = 0;
   #quietCells = 0;
   #blocks = 0;
@@ -66,10 +70,7 @@ export class OctaveFloor {
       8,
       Math.min(RECENT_PARTS, Math.floor(longestBurstS / (this.#cellsPerPart * cellS))),
     );
-    this.#recent = Array.from(
-      { length: leaves },
-      () => new RunningFloor(parts, VALUES_PER_CELL * this.#cellsPerPart),
-    );
+    this.#parts = new Float64Array(parts * BANDS_PER_OCTAVE);
   }
 
   /**
@@ -122,8 +123,9 @@ export class OctaveFloor {
     for (let cell = from; cell < to;) {
       const room = Math.min(this.#cellsPerPart - this.#partCells, this.#cellsPerBlock - this.#blockCells);
       const count = Math.min(to - cell, room);
+      sums.columnSums(cell, cell + count, gathered);
       for (let leaf = 0; leaf < this.#leaves; leaf++) {
-        const sum = sums.sum(leaf, leaf + 1, cell, cell + count) / this.gains[leaf]!;
+        const sum = gathered[leaf]! / this.gains[leaf]!;
         this.#partSums[leaf] = this.#partSums[leaf]! + sum;
         if (quiet) this.#quietSums[leaf] = this.#quietSums[leaf]! + sum;
       }
@@ -148,23 +150,27 @@ export class OctaveFloor {
    * bursts the background is what a quarter of the time lies under.
    */
   relearn(): void {
-    this.#recent.forEach((recent, leaf) => {
+    const count = Math.min(this.#partsTaken, this.#parts.length / BANDS_PER_OCTAVE);
+    const values = VALUES_PER_CELL * this.#cellsPerPart;
+    for (let leaf = 0; leaf < this.#leaves; leaf++) {
+      const recent = new RunningFloor(Math.max(1, count), values);
+      for (let part = 0; part < count; part++) recent.push(this.#parts[part * BANDS_PER_OCTAVE + leaf]!);
       const level = Math.max(recent.quantile(RECENT_QUANTILE), SMALLEST_FLOOR);
       this.#floors[leaf]?.fill(level);
       this.levels[leaf] = level;
-      this.#raises[leaf] =
-        1 + RELEARNED_ERRORS * relativeError(VALUES_PER_CELL * this.#cellsPerPart * recent.blocks);
+      this.#raises[leaf] = 1 + RELEARNED_ERRORS * relativeError(values * count);
       this.gains[leaf] = 1 / (level * this.#raises[leaf]!);
-    });
+    }
     this.#quietSums.fill(0);
     this.#quietCells = 0;
     this.#isChanged = true;
   }
 
   #endPart(): void {
-    this.#recent.forEach((recent, leaf) =>
-      recent.push(this.#partSums[leaf]! / (VALUES_PER_CELL * this.#partCells)),
-    );
+    const at = (this.#partsTaken * BANDS_PER_OCTAVE) % this.#parts.length;
+    for (let leaf = 0; leaf < this.#leaves; leaf++)
+      this.#parts[at + leaf] = this.#partSums[leaf]! / (VALUES_PER_CELL * this.#partCells);
+    this.#partsTaken += 1;
     this.#partSums.fill(0);
     this.#partCells = 0;
   }

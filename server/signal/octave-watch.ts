@@ -104,8 +104,8 @@ export class OctaveWatch {
     });
     this.#spots = this.#spots.filter((pending) => {
       if (pending.dueSample > processed) return true;
-      const sine = this.#sines.search(pending.item, leastStatistic);
-      if (sine && sine.before < MOST_BEFORE * sine.statistic) found.push(this.#onsetOf(sine));
+      const sine = this.#sines.search(pending.item, leastStatistic, MOST_BEFORE);
+      if (sine) found.push(this.#onsetOf(sine));
       return false;
     });
     return found;

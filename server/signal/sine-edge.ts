@@ -30,8 +30,10 @@ const STEPS_PER_PERIOD = 24;
 export class SineEdge {
   readonly #source: SourceSignal;
   readonly #rateHz: number;
-  readonly #levelStepHz: number;
   readonly #size: number;
+  /** One over what differencing and decimation do to each line, and the place of its level. */
+  readonly #scales: Float64Array;
+  readonly #levels: Uint8Array;
   readonly #fft = inverseFft(POINTS);
   readonly #re = new Float64Array(POINTS);
   readonly #im = new Float64Array(POINTS);
@@ -40,8 +42,16 @@ export class SineEdge {
   constructor(source: SourceSignal, rateHz: number, widthHz: number, levelStepHz: number) {
     this.#source = source;
     this.#rateHz = rateHz;
-    this.#levelStepHz = levelStepHz;
-    this.#size = Math.min(POINTS, 2 ** Math.round(Math.log2((LENGTH_WIDTHS * rateHz) / widthHz)));
+    const size = Math.min(POINTS, 2 ** Math.round(Math.log2((LENGTH_WIDTHS * rateHz) / widthHz)));
+    const response = responseOf(size);
+    this.#size = size;
+    this.#scales = Float64Array.from(
+      { length: size / 2 },
+      (_, bin) => 1 / (source.decimation * response[bin]!),
+    );
+    this.#levels = Uint8Array.from({ length: size / 2 }, (_, bin) =>
+      Math.round((bin * rateHz) / size / levelStepHz),
+    );
   }
 
   /**
@@ -74,14 +84,14 @@ export class SineEdge {
   #whiten(first: number, lowestHz: number, inverseLevels: Float64Array): void {
     const size = this.#size;
     const output = differencedSpectrum(this.#source, first, size, TAPER_SHARE * size);
-    const response = responseOf(size);
+    const scales = this.#scales;
+    const levels = this.#levels;
     const binHz = this.#rateHz / size;
     const { re, im, slot } = this.#fft;
     re.fill(0);
     im.fill(0);
     for (let bin = Math.max(1, Math.ceil(lowestHz / binHz)); bin < size / 2; bin++) {
-      const inverse = inverseLevels[Math.round((bin * binHz) / this.#levelStepHz)] ?? 0;
-      const scale = inverse / this.#source.decimation / response[bin]!;
+      const scale = inverseLevels[levels[bin]!]! * scales[bin]!;
       const at = slot[bin]!;
       re[at] = output[2 * bin]! * scale;
       im[at] = output[2 * bin + 1]! * scale;
@@ -116,12 +126,18 @@ export class SineEdge {
   #norm({ frequencyHz, decay }: RoughSine, inverseLevels: Float64Array): number {
     const samplesPerPoint = this.#size / POINTS;
     const shrink = Math.exp(-samplesPerPoint / decay);
+    const binHz = this.#rateHz / this.#size;
+    const turnPerHz = (2 * Math.PI * samplesPerPoint) / this.#rateHz;
+    // cos((k + 1) w) = 2 cos(w) cos(k w) - cos((k - 1) w)
+    const twiceCosine = 2 * Math.cos(turnPerHz * binHz);
+    let before = Math.cos(turnPerHz * -frequencyHz);
+    let here = Math.cos(turnPerHz * (binHz - frequencyHz));
     let norm = 0;
     for (let bin = 1; bin < this.#size / 2; bin++) {
-      const hz = (bin * this.#rateHz) / this.#size;
-      const inverse = inverseLevels[Math.round(hz / this.#levelStepHz)] ?? 0;
-      const w = ((2 * Math.PI * (hz - frequencyHz)) / this.#rateHz) * samplesPerPoint;
-      norm += inverse / (1 - 2 * shrink * Math.cos(w) + shrink * shrink);
+      norm += inverseLevels[this.#levels[bin]!]! / (1 - 2 * shrink * here + shrink * shrink);
+      const next = twiceCosine * here - before;
+      before = here;
+      here = next;
     }
     return (norm * this.#size) / this.#source.decimation / 8;
   }

@@ -16,6 +16,22 @@ export interface FittedWindow {
   readonly statistic: number;
 }
 
+/** What the last statistic was made of: steps along one axis share the rest. */
+function nothingHeld() {
+  const lines = () => new Float64Array(MOST_POINTS);
+  return {
+    onset: NaN,
+    turnedRe: lines(),
+    turnedIm: lines(),
+    frequencyHz: NaN,
+    decay: NaN,
+    direction: 1,
+    norm: NaN,
+    answerRe: lines(),
+    answerIm: lines(),
+  };
+}
+
 /** The whitened spectrum of one window, and the likelihood of damped sines in it. */
 export class SpectrumFit {
   readonly #rateHz: number;
@@ -26,6 +42,7 @@ export class SpectrumFit {
   readonly #re = new Float64Array(MOST_POINTS);
   readonly #im = new Float64Array(MOST_POINTS);
   readonly #inverse = new Float64Array(MOST_POINTS);
+  readonly #held = nothingHeld();
 
   constructor(rateHz: number) {
     this.#rateHz = rateHz;
@@ -50,6 +67,8 @@ export class SpectrumFit {
     const { lowHz, highHz, skirtHz } = band;
     const firstBin = Math.max(1, Math.ceil((lowHz - skirtHz) / binHz));
     const last = Math.min(size / 2 - 1, Math.floor((highHz + skirtHz) / binHz), firstBin + kind.points - 1);
+    this.#held.onset = NaN;
+    this.#held.frequencyHz = NaN;
     this.#size = size;
     this.#points = kind.points;
     this.#firstBin = firstBin;
@@ -129,34 +148,69 @@ export class SpectrumFit {
   }
 
   /** @param direction 1 for a sine that begins at the onset, -1 for one that grows up to it. */
-  statisticAt({ onset, frequencyHz, decay }: Omit<FittedWindow, 'statistic'>, direction: 1 | -1): number {
+  statisticAt(sine: Omit<FittedWindow, 'statistic'>, direction: 1 | -1): number {
+    this.#turnBack(sine.onset);
+    const norm = this.#answer(sine.frequencyHz, sine.decay, direction);
+    const { turnedRe, turnedIm, answerRe, answerIm } = this.#held;
+    let sumRe = 0;
+    let sumIm = 0;
+    for (let k = 0; k < this.#bins; k++) {
+      const xr = turnedRe[k]!;
+      const xi = turnedIm[k]!;
+      const pr = answerRe[k]!;
+      const pi = answerIm[k]!;
+      sumRe += xr * pr - xi * pi;
+      sumIm += xi * pr + xr * pi;
+    }
+    return norm > 0 ? (2 * (sumRe * sumRe + sumIm * sumIm)) / (norm * this.#size) : 0;
+  }
+
+  /** Turns the lines so that the window begins at an onset; done already where it is the one of the last call. */
+  #turnBack(onset: number): void {
+    const held = this.#held;
+    if (held.onset === onset) return;
+    held.onset = onset;
+    const { turnedRe, turnedIm } = held;
     const re = this.#re;
     const im = this.#im;
+    const step = ((2 * Math.PI) / this.#size) * onset;
+    const stepCos = Math.cos(step);
+    const stepSin = Math.sin(step);
+    let cosine = Math.cos(this.#firstBin * step);
+    let sine = Math.sin(this.#firstBin * step);
+    for (let k = 0; k < this.#bins; k++) {
+      turnedRe[k] = re[k]! * cosine - im[k]! * sine;
+      turnedIm[k] = re[k]! * sine + im[k]! * cosine;
+      const next = cosine * stepCos - sine * stepSin;
+      sine = cosine * stepSin + sine * stepCos;
+      cosine = next;
+    }
+  }
+
+  /** The conjugate spectrum of a damped oscillation, and the sum of its squares over the noise, likewise. */
+  #answer(frequencyHz: number, decay: number, direction: 1 | -1): number {
+    const held = this.#held;
+    if (held.frequencyHz === frequencyHz && held.decay === decay && held.direction === direction)
+      return held.norm;
+    const { answerRe, answerIm } = held;
     const inverse = this.#inverse;
     const rate = 1 / decay;
     const binStep = (2 * Math.PI) / this.#size;
     const detune = this.#firstBin * binStep - (2 * Math.PI * frequencyHz) / this.#rateHz;
-    const stepCos = Math.cos(binStep * onset);
-    const stepSin = Math.sin(binStep * onset);
-    let cosine = Math.cos(this.#firstBin * binStep * onset);
-    let sine = Math.sin(this.#firstBin * binStep * onset);
-    let sumRe = 0;
-    let sumIm = 0;
     let norm = 0;
     for (let k = 0; k < this.#bins; k++) {
       // conj(1 / (rate + i w)) = (rate + i w) / (rate^2 + w^2).
       const w = direction * (detune + k * binStep);
       const size = 1 / (rate * rate + w * w);
-      const xr = re[k]! * cosine - im[k]! * sine;
-      const xi = re[k]! * sine + im[k]! * cosine;
-      sumRe += (xr * rate - xi * w) * size;
-      sumIm += (xi * rate + xr * w) * size;
+      answerRe[k] = rate * size;
+      answerIm[k] = w * size;
       norm += inverse[k]! * size;
-      const next = cosine * stepCos - sine * stepSin;
-      sine = cosine * stepSin + sine * stepCos;
-      cosine = next;
     }
-    return norm > 0 ? (2 * (sumRe * sumRe + sumIm * sumIm)) / (norm * this.#size) : 0;
+    held.frequencyHz = frequencyHz;
+    held.decay = decay;
+    held.direction = direction;
+    held.norm = norm;
+    return norm;
   }
 
   #climb(
