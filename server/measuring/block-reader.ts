@@ -1,6 +1,6 @@
 import { open, type FileHandle } from 'node:fs/promises';
 import { bytesPerFrame, type SampleLayout } from '../../shared/audio/audio-format.ts';
-import { zeroNonFinite } from '../../shared/audio/pcm-decode.ts';
+import { decodeChannel, zeroNonFinite } from '../../shared/audio/pcm-decode.ts';
 import type { EngineArray, FrameDecoder, FrameEngine } from '../signal/frame-engine.ts';
 import { packageEngine } from '../signal/package-engine.ts';
 import { decodeWithWavDecoder, SMALL_RECORDING_BYTES } from './small-recording.ts';
@@ -51,38 +51,31 @@ export class BlockReader {
    * @throws RangeError outside the recording; Error when the file ends before its header says.
    */
   async read(startSample: number, count: number, out: readonly Float32Array[], at = 0): Promise<number[]> {
-    if (startSample < 0 || startSample + count > this.frames) {
-      throw new RangeError(`startSample: ${startSample} and ${count} more are not within ${this.frames}`);
-    }
-    if (this.frames * this.#frameBytes <= SMALL_RECORDING_BYTES) {
-      return this.#readSmall(startSample, count, out, at);
-    }
+    this.#requireInside(startSample, count);
+    if (this.#isSmall) return this.#readSmall(startSample, count, out, at);
     const nonFinite = new Array<number>(this.#place.format.channels).fill(0);
-    const framesPerPiece = this.#pieceBytes / this.#frameBytes;
-    for (let done = 0; done < count; done += framesPerPiece) {
-      const frames = Math.min(framesPerPiece, count - done);
-      const bytes = await this.#readBytes(startSample + done, frames);
+    await this.#eachPiece(startSample, count, (bytes, done, frames) => {
       const targets = out.map((samples) => samples.subarray(at + done, at + done + frames));
       const decoded = this.#decode(bytes, targets);
       for (const [channel, found] of decoded.nonFiniteSamples.entries()) nonFinite[channel]! += found;
-    }
+    });
     return nonFinite;
   }
 
-  /** The samples of one channel, `count` from `startSample`. */
+  /** The samples of one channel, `count` from `startSample`; the others are read, but not decoded. */
   async readChannel(channel: number, startSample: number, count: number): Promise<Float32Array> {
+    this.#requireInside(startSample, count);
+    const { format } = this.#place;
     const samples = new Float32Array(count);
-    const framesPerPiece = this.#pieceBytes / this.#frameBytes;
-    const scratch =
-      this.#place.format.channels > 1 ? new Float32Array(Math.min(count, framesPerPiece)) : samples;
-    for (let done = 0; done < count; done += framesPerPiece) {
-      const frames = Math.min(framesPerPiece, count - done);
-      const wanted = samples.subarray(done, done + frames);
-      const out = Array.from({ length: this.#place.format.channels }, (_, index) =>
-        index === channel ? wanted : scratch,
-      );
-      await this.read(startSample + done, frames, out);
+    if (this.#isSmall) {
+      const known = (await this.#decodedWhole())[channel]!;
+      samples.set(known.subarray(startSample, startSample + count));
+      zeroNonFinite(samples, count);
+      return samples;
     }
+    await this.#eachPiece(startSample, count, (bytes, done) => {
+      decodeChannel(bytes, format, channel, samples.subarray(done));
+    });
     return samples;
   }
 
@@ -96,8 +89,7 @@ export class BlockReader {
     out: readonly Float32Array[],
     at: number,
   ): Promise<number[]> {
-    this.#small ??= this.#decodeWhole();
-    const channels = await this.#small;
+    const channels = await this.#decodedWhole();
     return channels.map((samples, channel) => {
       const target = out[channel]!.subarray(at, at + count);
       target.set(samples.subarray(startSample, startSample + count));
@@ -105,8 +97,34 @@ export class BlockReader {
     });
   }
 
-  async #decodeWhole(): Promise<Float32Array[]> {
-    return decodeWithWavDecoder(await this.#readBytes(0, this.frames), this.#place.format);
+  #decodedWhole(): Promise<Float32Array[]> {
+    this.#small ??= this.#readBytes(0, this.frames).then((bytes) =>
+      decodeWithWavDecoder(bytes, this.#place.format),
+    );
+    return this.#small;
+  }
+
+  get #isSmall(): boolean {
+    return this.frames * this.#frameBytes <= SMALL_RECORDING_BYTES;
+  }
+
+  #requireInside(startSample: number, count: number): void {
+    if (startSample < 0 || startSample + count > this.frames) {
+      throw new RangeError(`startSample: ${startSample} and ${count} more are not within ${this.frames}`);
+    }
+  }
+
+  /** The bytes of whole frames, one piece after the other; each is gone when the next is asked for. */
+  async #eachPiece(
+    startSample: number,
+    count: number,
+    use: (bytes: Uint8Array, done: number, frames: number) => void,
+  ): Promise<void> {
+    const framesPerPiece = this.#pieceBytes / this.#frameBytes;
+    for (let done = 0; done < count; done += framesPerPiece) {
+      const frames = Math.min(framesPerPiece, count - done);
+      use(await this.#readBytes(startSample + done, frames), done, frames);
+    }
   }
 
   async #readBytes(startSample: number, frames: number): Promise<Uint8Array> {

@@ -25,22 +25,36 @@ type Lane = { view: DataView; first: number; stride: number; count: number };
  * Cost: one pass, no allocation that grows with the block.
  */
 export function decodeFrames(bytes: Uint8Array, format: SampleLayout, out: Float32Array[]): DecodedFrames {
+  const frames = Math.floor(bytes.length / bytesPerFrame(format));
+  const nonFiniteSamples: number[] = [];
+  for (let channel = 0; channel < format.channels; channel++) {
+    const samples = out[channel] ?? new Float32Array(0);
+    nonFiniteSamples.push(decodeChannel(bytes, format, channel, samples));
+  }
+  return { frames, nonFiniteSamples };
+}
+
+/**
+ * The samples of one channel alone, as `decodeFrames` gives them: the others are not looked at.
+ *
+ * @returns how many samples were not finite
+ * @throws RangeError as `decodeFrames`
+ */
+export function decodeChannel(
+  bytes: Uint8Array,
+  format: SampleLayout,
+  channel: number,
+  out: Float32Array,
+): number {
   const stride = bytesPerFrame(format);
   const frames = Math.floor(bytes.length / stride);
   const decodeLane = laneDecoder(format);
-  const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
-  const nonFiniteSamples: number[] = [];
-  for (let channel = 0; channel < format.channels; channel++) {
-    const samples = out[channel];
-    if (!samples || samples.length < frames) {
-      throw new RangeError(
-        `out[${channel}] holds ${samples?.length ?? 0} samples, the block has ${frames} frames`,
-      );
-    }
-    const first = (channel * format.bitsPerSample) / 8;
-    nonFiniteSamples.push(decodeLane({ view, first, stride, count: frames }, samples));
+  if (out.length < frames) {
+    throw new RangeError(`out[${channel}] holds ${out.length} samples, the block has ${frames} frames`);
   }
-  return { frames, nonFiniteSamples };
+  const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
+  const first = (channel * format.bitsPerSample) / 8;
+  return decodeLane({ view, first, stride, count: frames }, out);
 }
 
 function laneDecoder(format: SampleLayout): (lane: Lane, out: Float32Array) => number {

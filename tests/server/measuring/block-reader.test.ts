@@ -74,6 +74,7 @@ describe('blocks of a recording', () => {
     const out = [new Float32Array(11)];
     await expect(reading('ten.wav', (reader) => reader.read(0, 11, out))).rejects.toThrow(RangeError);
     await expect(reading('ten.wav', (reader) => reader.read(-1, 2, out))).rejects.toThrow(RangeError);
+    await expect(reading('ten.wav', (reader) => reader.readChannel(0, 9, 2))).rejects.toThrow(RangeError);
   });
 });
 
