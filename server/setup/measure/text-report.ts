@@ -1,7 +1,11 @@
 import { createReadStream } from 'node:fs';
 import { createInterface } from 'node:readline';
 import { durationText, frequencyText, levelText } from '../../../shared/audio/unit-text.ts';
-import type { DetectedCandidate, MeasurementSummary } from '../../../shared/contract/measurement.ts';
+import type {
+  DetectedCandidate,
+  MeasurementSummary,
+  QualityFinding,
+} from '../../../shared/contract/measurement.ts';
 import type { MeasureResult } from '../../measuring/join-segments.ts';
 
 const STRONGEST = 10;
@@ -19,7 +23,7 @@ export async function textReport(name: string, result: MeasureResult): Promise<s
       summary.levels.map((_, channel) => levelsText(summary, channel)),
     ),
     ...labelled('Quality', qualityTexts(summary)),
-    ...labelled('Bandwidth', [summary.bandwidth.reason]),
+    ...labelled('Bandwidth', bandwidthTexts(summary)),
     ...labelled('Above 20 kHz', [`${verdictText(summary)}. ${summary.ultrasonic.reason}`]),
     ...labelled('Candidates', [candidatesText(summary)]),
     ...(await strongestLines(result)),
@@ -41,9 +45,22 @@ function levelsText({ levels, descriptors }: MeasurementSummary, channel: number
   return `channel ${channel}: rms ${levelText(rmsDb, 'dB')}, peak ${levelText(peakDb, 'dB')} re full scale, crest ${levelText(crestDb, 'dB')}${centroid}`;
 }
 
+/** Findings about the edge of the floor; they say what the line about the bandwidth would say. */
+const BAND_CODES: ReadonlySet<QualityFinding['code']> = new Set(['band-limited', 'lossy-or-converted']);
+
+function findingText({ weight, sentence }: QualityFinding): string {
+  return weight === 'note' ? sentence : `${weight}: ${sentence}`;
+}
+
 function qualityTexts({ quality }: MeasurementSummary): string[] {
-  if (quality.length === 0) return ['Nothing stands out.'];
-  return quality.map(({ weight, sentence }) => (weight === 'note' ? sentence : `${weight}: ${sentence}`));
+  const others = quality.filter(({ code }) => !BAND_CODES.has(code));
+  if (others.length > 0) return others.map(findingText);
+  return [quality.length === 0 ? 'Nothing stands out.' : 'Nothing else stands out.'];
+}
+
+function bandwidthTexts({ quality, bandwidth }: MeasurementSummary): string[] {
+  const found = quality.filter(({ code }) => BAND_CODES.has(code));
+  return found.length > 0 ? found.map(findingText) : [bandwidth.reason];
 }
 
 function verdictText({ ultrasonic }: MeasurementSummary): string {
@@ -52,8 +69,10 @@ function verdictText({ ultrasonic }: MeasurementSummary): string {
 
 function candidatesText({ ultrasonic }: MeasurementSummary): string {
   const { total, below, across, above, expectedByChance } = ultrasonic.candidates;
+  const unknown = total - below - across - above;
   const chance = expectedByChance < 0.01 ? 'fewer than 0.01' : `at most ${expectedByChance.toFixed(2)}`;
-  const classes = `${below} below the hearing line, ${across} across, ${above} above`;
+  const untold = unknown > 0 ? `, ${unknown} not known` : '';
+  const classes = `${below} below the hearing line, ${across} across, ${above} above${untold}`;
   return `${total} (${classes}); steady noise alone would give ${chance}.`;
 }
 

@@ -8,7 +8,7 @@ import { detectedCandidateSchema, measurementSummarySchema } from '../../../shar
 import { measureFiles } from '../../../server/setup/measure/measure-files.ts';
 import { readOptions, UsageError } from '../../../server/setup/measure/options.ts';
 import { fixtureBytes } from '../../support/wav/format-fixtures.ts';
-import { dampedSines, mix, whiteNoiseSignal } from '../../support/wav/signals.ts';
+import { dampedSines, lowPass, mix, whiteNoiseSignal } from '../../support/wav/signals.ts';
 import { writeWav } from '../../support/wav/write-wav.ts';
 
 const RATE_HZ = 192_000;
@@ -49,6 +49,15 @@ describe('the measure command', () => {
     expect(out).toMatch(/Above 20 kHz\s+Found\./);
     expect(out).toMatch(/Candidates\s+1 \(0 below the hearing line, 0 across, 1 above\)/);
     expect(out).toMatch(/1\.00000\d/);
+  });
+
+  it('says once where the noise floor ends', async () => {
+    const samples = lowPass(whiteNoiseSignal(200_000, 0.01, 7), 46_500, RATE_HZ);
+    const narrow = writeWav({ sampleRateHz: RATE_HZ, bitsPerSample: 24, channels: [samples] });
+    const { out } = await run(await folderWith({ 'narrow.wav': narrow }), 'narrow.wav');
+    const words = out.replace(/\s+/g, ' ');
+    expect(words.match(/The noise floor ends at/g)).toHaveLength(1);
+    expect(words).toMatch(/Quality Nothing else stands out\. Bandwidth caution: The noise floor ends at/);
   });
 
   it('writes everything as JSON: the summary, the spectra and every candidate', async () => {

@@ -2,27 +2,10 @@ import { describe, expect, it } from 'vitest';
 import { findBandwidth } from '../../../server/signal/bandwidth.ts';
 import codecs from '../../../fixtures/bandwidth/spectra.json' with { type: 'json' };
 import { floorSpectrum } from './floor-spectrum.ts';
-import { mix, pinkNoiseSignal, sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
+import { lowPass, mix, pinkNoiseSignal, sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
 
 function bandwidthOf(samples: Float32Array, sampleRateHz: number) {
   return findBandwidth(floorSpectrum(samples, sampleRateHz));
-}
-
-/** Windowed-sinc low-pass (Blackman): a steep filter as a codec or a resampler has it. */
-function lowPass(samples: Float32Array, cutoffHz: number, sampleRateHz: number): Float32Array {
-  const half = 200;
-  const taps = Float64Array.from({ length: 2 * half + 1 }, (_, i) => {
-    const t = i - half;
-    const f = (2 * cutoffHz) / sampleRateHz;
-    const ideal = t === 0 ? f : Math.sin(Math.PI * f * t) / (Math.PI * t);
-    const phase = (2 * Math.PI * i) / (2 * half);
-    return ideal * (0.42 - 0.5 * Math.cos(phase) + 0.08 * Math.cos(2 * phase));
-  });
-  return samples.map((_, n) => {
-    let sum = 0;
-    for (let i = 0; i < taps.length; i++) sum += taps[i]! * (samples[n + half - i] ?? 0);
-    return sum;
-  });
 }
 
 describe('the effective bandwidth', () => {

@@ -53,3 +53,20 @@ export function mix(...signals: Float32Array[]): Float32Array {
     signals.reduce((sum, signal) => sum + signal[n]!, 0),
   );
 }
+
+/** Windowed-sinc low-pass (Blackman): a steep filter as a codec or a resampler has it. */
+export function lowPass(samples: Float32Array, cutoffHz: number, sampleRateHz: number): Float32Array {
+  const half = 200;
+  const taps = Float64Array.from({ length: 2 * half + 1 }, (_, i) => {
+    const t = i - half;
+    const f = (2 * cutoffHz) / sampleRateHz;
+    const ideal = t === 0 ? f : Math.sin(Math.PI * f * t) / (Math.PI * t);
+    const phase = (2 * Math.PI * i) / (2 * half);
+    return ideal * (0.42 - 0.5 * Math.cos(phase) + 0.08 * Math.cos(2 * phase));
+  });
+  return samples.map((_, n) => {
+    let sum = 0;
+    for (let i = 0; i < taps.length; i++) sum += taps[i]! * (samples[n + half - i] ?? 0);
+    return sum;
+  });
+}
