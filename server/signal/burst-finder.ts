@@ -1,10 +1,11 @@
 import { OctaveTree } from './band-energy.ts';
 import { sineRateHz } from './chance-rate.ts';
+import { type LeadInBand, leadInTo } from './detector-lead-in.ts';
 import { detectorBlockSamples, learningSamples, watchedOctaves } from './detector-plan.ts';
 import type { DetectorSettings } from './detector-settings.ts';
 import type { OctaveArithmetic } from './octave-arithmetic.ts';
 import { type NoiseLevels, OctaveWatch } from './octave-watch.ts';
-import { type ChosenOnset, chooseOnsets } from './onset-choice.ts';
+import { type ChosenOnset, chooseOnsets, StrongOnsets } from './onset-choice.ts';
 import { OnsetGroups } from './onset-groups.ts';
 import type { OnsetFound } from './onset-search.ts';
 import { SampleRing } from './sample-ring.ts';
@@ -42,6 +43,7 @@ export class BurstFinder {
   readonly #arithmetic: OctaveArithmetic;
   readonly #octaves: number;
   readonly #groups: OnsetGroups;
+  readonly #strong: StrongOnsets;
   readonly #sure: SureRate;
   readonly #tree: OctaveTree;
   readonly #watches: readonly OctaveWatch[];
@@ -60,6 +62,7 @@ export class BurstFinder {
     this.#onBursts = onBursts;
     this.#octaves = watchedOctaves(sampleRateHz, settings);
     this.#groups = new OnsetGroups(NEIGHBOUR_GAP_S * sampleRateHz, LONGEST_GROUP_S * sampleRateHz);
+    this.#strong = new StrongOnsets(settings.longestBurstS * sampleRateHz);
     this.#sure = new SureRate(settings.sureMemoryS, settings.sureRateHz, sampleRateHz);
     const burstS = settings.longestBurstS + 2 * LEAD_S;
     this.#tree = this.#openTree(burstS);
@@ -96,7 +99,7 @@ export class BurstFinder {
     for (let block = 0; waiting && block < MOST_TRAILING_BLOCKS; block++) {
       this.#block.set(block % 2 === 0 ? trailing.toReversed() : trailing);
       this.#tree.process(this.#block);
-      for (const watch of this.#watches) this.#groups.add(watch.search(this.#noise, this.#mostByChanceHz()));
+      this.#search();
       waiting = this.#watches.some((watch) => watch.isWaiting);
     }
     this.#settle(Infinity);
@@ -156,12 +159,20 @@ export class BurstFinder {
     for (const watch of this.#watches) watch.trigger.floor.endLearning();
     const lowest = this.#tree.octaves[this.#octaves - 1];
     const blocks = Math.ceil((LEAD_IN_CELLS * (lowest?.samplesPerCell ?? 1)) / block.length);
-    const leadIn = mirroredStart(head, block.length * blocks);
+    const leadIn = leadInTo(head, block.length * blocks, this.#leadInBands(), this.#sampleRateHz);
     for (let at = 0; at < leadIn.length; at += block.length) {
       this.#tree.process(leadIn.subarray(at, at + block.length));
     }
     this.#tree.countFromHere();
     this.#take(head);
+  }
+
+  #leadInBands(): LeadInBand[] {
+    return this.#tree.octaves.map(({ lowHz, highHz }) => ({
+      lowHz,
+      highHz,
+      noisePower: this.#levelAt((lowHz + highHz) / 2) * (highHz - lowHz),
+    }));
   }
 
   #levelAt(frequencyHz: number): number {
@@ -188,13 +199,20 @@ export class BurstFinder {
       watch.process(held);
       if (watch.trigger.floor.takeChange()) this.#noise.version += 1;
     }
-    let decided = Infinity;
-    const mostByChanceHz = this.#mostByChanceHz();
+    this.#search();
+    this.#settle(Math.min(...this.#watches.map((watch) => watch.decidedSample())));
+  }
+
+  #search(): void {
     for (const watch of this.#watches) {
-      this.#groups.add(watch.search(this.#noise, mostByChanceHz));
-      decided = Math.min(decided, watch.decidedSample());
+      const found = watch.searchRegions(this.#noise);
+      this.#groups.add(found);
+      this.#strong.add(found);
     }
-    this.#settle(decided);
+    const mostByChanceHz = this.#mostByChanceHz();
+    for (const watch of this.#watches)
+      this.#groups.add(watch.searchSpots(this.#noise, mostByChanceHz, this.#strong));
+    this.#strong.forgetBefore(this.#tree.processedSamples);
   }
 
   /** Rate in one octave above which noise gives nothing that could be believed or counted; what was before now may have grown. */
@@ -241,17 +259,6 @@ export class BurstFinder {
     if (byChanceHz <= sureRateHz) this.#sure.add(sample);
     return byChanceHz <= Math.max(chanceRateHz / 2, chanceShare * about);
   }
-}
-
-/** The first samples turned about the very first one and faded in: `count` samples that lead into them smoothly. */
-function mirroredStart(head: Float32Array, count: number): Float32Array {
-  const centre = head[0] ?? 0;
-  const fade = count / 2;
-  return Float32Array.from({ length: count }, (_, n) => {
-    const back = Math.min(head.length - 1, count - n);
-    const weight = n >= fade ? 1 : 0.5 - 0.5 * Math.cos((Math.PI * n) / fade);
-    return weight * (2 * centre - (head[back] ?? 0));
-  });
 }
 
 /** Fills the block from `held` on with what it held before, turned about the last sample. */

@@ -2,7 +2,7 @@ import type { SourceSignal } from './band-energy.ts';
 import { DIFFERENCE_REACH } from './differenced-spectrum.ts';
 import { SineEdge } from './sine-edge.ts';
 import { planWindow, SHORTEST_WINDOW, TWO_BANDS, WINDOW_KINDS, type WindowPlan } from './sine-windows.ts';
-import { type FittedWindow, SpectrumFit } from './spectrum-fit.ts';
+import { type FittedWindow, MOST_SHRINKING, SpectrumFit } from './spectrum-fit.ts';
 
 /** A damped sine found in noise: exp(-t / decayS) sin(2 pi f t + phase) from its onset on. */
 export interface DampedSine {
@@ -13,8 +13,6 @@ export interface DampedSine {
   readonly decayS: number;
   /** Twice the log-likelihood ratio against noise alone: chi-square with 2 degrees in noise, at one place. */
   readonly statistic: number;
-  /** The same for the mirrored sine that ends where this one begins: what was there before. */
-  readonly before: number;
 }
 
 /** Where a test of energies says that something may have begun. */
@@ -25,6 +23,25 @@ export interface Spot {
   /** Begin of the earliest and of the latest window that fired, in samples of the input that has not been delayed by filters. */
   readonly firstSample: number;
   readonly lastSample: number;
+}
+
+/** A sine of which the grid alone is known, in samples of the input. */
+export interface CoarseSine {
+  /** Where it begins. */
+  readonly fromSample: number;
+  readonly toSample: number;
+  /** At least what the fitted sine's may be. */
+  readonly evidence: number;
+  /** At most what the fitted sine's may be. */
+  readonly decaySamples: number;
+}
+
+export interface SineDemand {
+  readonly leastStatistic: number;
+  /** Share of the statistic that what was there before may have. */
+  readonly mostBefore?: number;
+  /** Whether the grid is enough for such a sine. */
+  readonly isEnough?: (sine: CoarseSine) => boolean;
 }
 
 /** What the coarse grid may lose of the statistic. */
@@ -112,10 +129,9 @@ export class DampedSineSearch {
    * frequency and decay the correlation with a damped sine from each point on, whose square over its mean in noise is
    * the generalised likelihood ratio for unknown amplitude and phase. The best of the grid is then refined by steps.
    *
-   * @param mostBefore share of the statistic that what was there before may have.
    * Source: H. L. Van Trees, Detection, Estimation, and Modulation Theory I (1968), 4.4 (unknown phase).
    */
-  search(spot: Spot, leastStatistic: number, mostBefore = Infinity): DampedSine | null {
+  search(spot: Spot, { leastStatistic, mostBefore = Infinity, isEnough }: SineDemand): DampedSine | null {
     const { view, plan, first } = this.#windowOf(spot);
     const { source, fit } = view;
     if (first - DIFFERENCE_REACH < source.start || first + plan.size + DIFFERENCE_REACH > source.end)
@@ -134,18 +150,32 @@ export class DampedSineSearch {
     const latest = spot.lastSample / source.decimation + plan.onset[1] - first;
     const coarse = fit.scan({ lowHz, highHz, earliest, latest, decay: plan.decay });
     if (coarse.statistic < COARSE_SHARE * leastStatistic) return null;
+    const isBeforeLittle = (sine: FittedWindow) => fit.statisticAt(sine, -1) < mostBefore * sine.statistic;
+    const rough = this.#roughly(view, first, coarse, plan);
+    if (isEnough?.(rough.grid))
+      return coarse.statistic >= leastStatistic && isBeforeLittle(coarse) ? rough.sine : null;
     const best = fit.refine(coarse, HOPEFUL_SHARE * leastStatistic);
     if (best.statistic < leastStatistic || best.onset <= earliest || best.onset >= latest) return null;
-    const before = fit.statisticAt(best, -1);
-    return before < mostBefore * best.statistic ? this.#describe(view, first, { ...best, before }) : null;
+    return isBeforeLittle(best) ? this.#describe(view, first, best) : null;
   }
 
-  #describe(
-    { source, rateHz }: View,
-    first: number,
-    best: FittedWindow & { readonly before: number },
-  ): DampedSine {
-    const { frequencyHz, statistic, before } = best;
+  #roughly({ source, rateHz }: View, first: number, coarse: FittedWindow, { size, kind }: WindowPlan) {
+    const { frequencyHz, decay, statistic } = coarse;
+    const onsetSample = source.inputSample(first + coarse.onset, frequencyHz);
+    const onsetSpreadSamples = (size / kind.points) * source.decimation;
+    return {
+      grid: {
+        fromSample: onsetSample - onsetSpreadSamples,
+        toSample: onsetSample + onsetSpreadSamples,
+        evidence: statistic / COARSE_SHARE / 2,
+        decaySamples: (decay * source.decimation) / MOST_SHRINKING,
+      },
+      sine: { onsetSample, onsetSpreadSamples, frequencyHz, decayS: decay / rateHz, statistic },
+    };
+  }
+
+  #describe({ source, rateHz }: View, first: number, best: FittedWindow): DampedSine {
+    const { frequencyHz, statistic } = best;
     const decayS = best.decay / rateHz;
     const wide = this.#wide;
     const rough = {
@@ -160,7 +190,6 @@ export class DampedSineSearch {
       frequencyHz,
       decayS,
       statistic,
-      before,
     };
   }
 

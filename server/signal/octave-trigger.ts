@@ -18,6 +18,9 @@ export interface OctaveTriggerOptions {
   readonly weakChance: number;
 }
 
+/** Cells at the beginning of the stream into which the turned samples before it reach. */
+const TURNED_CELLS = 4;
+
 /** A sum above its threshold, and the cell behind its window. */
 interface Fired {
   readonly cell: number;
@@ -234,15 +237,16 @@ export class OctaveTrigger {
 
   /**
    * What the energy just before a window says of a floor that lags: its mean over the floor less one standard deviation, at least 1. What
-   * has grown slowly is no burst.
+   * has grown slowly is no burst. In the first cells, which filters mix with their own mirror image, noise may have twice its power.
    */
   #backgroundBefore(start: number, { low, high }: EnergyTest): number {
     const end = start - this.#blockCell;
     const from = Math.max(-PAST_CELLS + 1, end - LONGEST_TEST_CELLS, this.#cutCell - this.#blockCell);
     const degrees = VALUES_PER_CELL * (high - low) * (end - from);
-    if (degrees <= 0) return 1;
+    const least = start < TURNED_CELLS ? 2 : 1;
+    if (degrees <= 0) return least;
     const mean = this.#sums.sum(low, high, from, end) / degrees;
-    return Math.max(1, mean * (1 - Math.sqrt(2 / degrees)));
+    return Math.max(least, mean * (1 - Math.sqrt(2 / degrees)));
   }
 
   #describe(cell: number, test: EnergyTest, sum: number): OpenRegion['best'] {

@@ -1,7 +1,8 @@
 import { type OctaveTree, type SourceSignal, VALUES_PER_CELL } from './band-energy.ts';
 import { sineStatistic } from './chance-rate.ts';
-import { DampedSineSearch, type DampedSine, type Spot } from './damped-sine.ts';
+import { type CoarseSine, DampedSineSearch, type DampedSine, type Spot } from './damped-sine.ts';
 import type { DetectorSettings } from './detector-settings.ts';
+import type { StrongOnsets } from './onset-choice.ts';
 import { findOnsets, type OnsetFound, searchReach } from './onset-search.ts';
 import type { ActiveRegion } from './active-region.ts';
 import type { OctaveArithmetic } from './octave-arithmetic.ts';
@@ -38,8 +39,8 @@ export class OctaveWatch {
   readonly #sines: DampedSineSearch;
   readonly #widthHz: number;
   #noiseVersion = -1;
-  #regions: Pending<ActiveRegion>[] = [];
-  #spots: Pending<Spot>[] = [];
+  readonly #regions: Pending<ActiveRegion>[] = [];
+  readonly #spots: Pending<Spot>[] = [];
 
   constructor(options: {
     arithmetic: OctaveArithmetic;
@@ -86,29 +87,30 @@ export class OctaveWatch {
     this.#take();
   }
 
+  /** What is found in the regions that are due. */
+  searchRegions(noise: NoiseLevels): OnsetFound[] {
+    const due = this.#takeDue(this.#regions);
+    if (due.length > 0) this.#readNoise(noise);
+    return due.flatMap((region) => this.#searchRegion(region));
+  }
+
   /**
-   * What is found in all that is due.
-   * @param mostByChanceHz damped sines that noise gives more often than this are left out.
+   * Damped sines at the weak spots that are due.
+   * @param mostByChanceHz those that noise gives more often than this are left out.
+   * @param strong what all octaves have found in their regions.
    */
-  search(noise: NoiseLevels, mostByChanceHz: number): OnsetFound[] {
-    if (!this.#isAnyDue()) return [];
-    if (this.#noiseVersion !== noise.version) this.#sines.setNoise(noise.levelAt);
-    this.#noiseVersion = noise.version;
-    const processed = this.#tree.processedSamples;
-    const leastStatistic = sineStatistic(mostByChanceHz, this.#widthHz);
-    const found: OnsetFound[] = [];
-    this.#regions = this.#regions.filter((pending) => {
-      if (pending.dueSample > processed) return true;
-      found.push(...this.#searchRegion(pending.item));
-      return false;
+  searchSpots(noise: NoiseLevels, mostByChanceHz: number, strong: StrongOnsets): OnsetFound[] {
+    const due = this.#takeDue(this.#spots);
+    if (due.length > 0) this.#readNoise(noise);
+    const demand = {
+      leastStatistic: sineStatistic(mostByChanceHz, this.#widthHz),
+      mostBefore: MOST_BEFORE,
+      isEnough: (sine: CoarseSine) => strong.joins(sine),
+    };
+    return due.flatMap((spot) => {
+      const sine = this.#sines.search(spot, demand);
+      return sine ? [this.#onsetOf(sine)] : [];
     });
-    this.#spots = this.#spots.filter((pending) => {
-      if (pending.dueSample > processed) return true;
-      const sine = this.#sines.search(pending.item, leastStatistic, MOST_BEFORE);
-      if (sine) found.push(this.#onsetOf(sine));
-      return false;
-    });
-    return found;
   }
 
   /** Nothing that is still to come begins before this sample. */
@@ -131,9 +133,22 @@ export class OctaveWatch {
     return this.#regions.length + this.#spots.length > 0;
   }
 
-  #isAnyDue(): boolean {
-    const isDue = ({ dueSample }: Pending<unknown>) => dueSample <= this.#tree.processedSamples;
-    return this.#regions.some(isDue) || this.#spots.some(isDue);
+  /** Takes out of a list what waits for nothing any more. */
+  #takeDue<T>(pending: Pending<T>[]): T[] {
+    const processed = this.#tree.processedSamples;
+    const due: T[] = [];
+    let kept = 0;
+    for (const one of pending) {
+      if (one.dueSample <= processed) due.push(one.item);
+      else pending[kept++] = one;
+    }
+    pending.length = kept;
+    return due;
+  }
+
+  #readNoise(noise: NoiseLevels): void {
+    if (this.#noiseVersion !== noise.version) this.#sines.setNoise(noise.levelAt);
+    this.#noiseVersion = noise.version;
   }
 
   #take(): void {
@@ -165,8 +180,8 @@ export class OctaveWatch {
     const excess = region.degrees * (region.powerRatio - 1);
     if (found.length === 0) return found;
     const spot = this.#sines.spotAbout(region);
-    const sine =
-      spot && this.#sines.search(spot, (excess > CLEAR_EXCESS ? CLEAR_SHARE : FITTING_SHARE) * excess);
+    const leastStatistic = (excess > CLEAR_EXCESS ? CLEAR_SHARE : FITTING_SHARE) * excess;
+    const sine = spot && this.#sines.search(spot, { leastStatistic });
     if (!sine) return found;
     const sample = Math.max(0, Math.round(sine.onsetSample));
     const near = nearest(found, sample);

@@ -49,6 +49,34 @@ function reach(lead: OnsetFound, other: OnsetFound, separationSamples: number, s
   return Math.max(separationSamples, (PERIODS_APART * sampleRateHz) / Math.min(lead.lowHz, other.lowHz));
 }
 
+/** The strong onsets of the last time, of all octaves: where they are known, damped sines that only join them need no exact place. */
+export class StrongOnsets {
+  readonly #memorySamples: number;
+  #onsets: OnsetFound[] = [];
+
+  constructor(memorySamples: number) {
+    this.#memorySamples = memorySamples;
+  }
+
+  add(found: readonly OnsetFound[]): void {
+    this.#onsets.push(...found);
+  }
+
+  forgetBefore(sample: number): void {
+    this.#onsets = this.#onsets.filter(({ endSample }) => endSample > sample - this.#memorySamples);
+  }
+
+  /** Whether a damped sine found by itself will join a stronger onset, wherever in a stretch it begins. */
+  joins(sine: { fromSample: number; toSample: number; evidence: number; decaySamples: number }): boolean {
+    return this.#onsets.some(
+      (lead) =>
+        sine.evidence < ECHO_SHARE * lead.evidence &&
+        sine.fromSample >= lead.sample - RING_DECAYS * sine.decaySamples &&
+        sine.toSample < lead.endSample,
+    );
+  }
+}
+
 /** Whether a region is what another octave hears of a far stronger burst, whose onset lies in its best window. */
 function isEchoOf(onset: OnsetFound, lead: OnsetFound): boolean {
   if (onset.evidence >= ECHO_SHARE * lead.evidence) return false;

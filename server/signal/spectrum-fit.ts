@@ -4,7 +4,7 @@ import { differencedSpectrum, responseOf } from './differenced-spectrum.ts';
 import { MOST_POINTS, TAIL_DECAYS, type WindowPlan } from './sine-windows.ts';
 
 /** Decays are looked for down to a kind's own over this. */
-const MOST_SHRINKING = 4;
+export const MOST_SHRINKING = 4;
 /** Steps of frequency are 1 / (4 decay): half a step off costs 13 % of the statistic at most. */
 const STEPS_PER_BANDWIDTH = 4;
 

@@ -70,6 +70,34 @@ describe('detector against damped sines of known onset in pink noise and hum', (
   }, 60_000);
 });
 
+describe('detector where a recording begins', () => {
+  it.each([
+    ['white', 40],
+    ['pink', 12],
+  ] as const)(
+    'takes no chance sample of %s noise for a burst, %d times',
+    (colour, times) => {
+      const sampleRateHz = 192_000;
+      const startingWith = (seed: number) => {
+        if (colour === 'pink') return clickScene({ ...scene, seconds: 0.6, ratePerSecond: 0, seed }).samples;
+        const normal = seededNormal(seededUniform(seed));
+        return Float32Array.from({ length: 0.6 * sampleRateHz }, () => 0.01 * normal());
+      };
+      const found = Array.from({ length: times }, (_, seed) => detect(startingWith(seed + 1), sampleRateHz));
+      expect(found.flat().map(({ onsetSample }) => onsetSample)).toEqual([]);
+    },
+    60_000,
+  );
+
+  it('finds a click right behind the first sample', () => {
+    const { samples } = clickScene({ ...scene, seconds: 2, ratePerSecond: 0 });
+    addClick(samples, { onset: 60, frequencyHz: 30_000, decayS: 0.001, amplitude: 0.03 }, scene.sampleRateHz);
+    const found = detect(samples, scene.sampleRateHz);
+    expect(found).toHaveLength(1);
+    expect(Math.abs((found[0]?.onsetSample ?? 0) - 60)).toBeLessThan(20);
+  });
+});
+
 describe('detector where the background changes', () => {
   const { samples } = clickScene({ ...scene, seconds: 5, ratePerSecond: 0 });
   const normal = seededNormal(seededUniform(8));
