@@ -1,4 +1,5 @@
 import type {
+  EngineArray,
   FrameEngine,
   LongFrameRows,
   LongFrameSettings,
@@ -6,6 +7,7 @@ import type {
   ShortFrameSettings,
 } from '../signal/frame-engine.ts';
 import { packageLongFrames, packageShortFrames } from '../signal/package-rows.ts';
+import { raiseColumn } from '../signal/spectrogram-columns.ts';
 import { kernelBlockSummer, kernelCellSummer } from './kernel-cells.ts';
 import { kernelDecoder } from './kernel-decoder.ts';
 import { KernelLongFrames, KernelShortFrames } from './kernel-rows.ts';
@@ -35,12 +37,21 @@ export function kernelEngine(): FrameEngine {
     decoder: (layout, maximumBytes) => kernelDecoder(kernel, layout, maximumBytes),
     cellSummer: (maximumCells) => kernelCellSummer(kernel, maximumCells),
     blockSummer: (length, maximumBlocks) => kernelBlockSummer(kernel, length, maximumBlocks),
+    raise: (kept, codes, at) => raiseInKernel(kernel, kept, codes, at),
     spectrumTables: (settings) => new KernelSpectrumTables(kernel, settings),
     close: () => {
       kernel.clear();
       idle.push(kernel);
     },
   };
+}
+
+function raiseInKernel(kernel: Kernel, kept: EngineArray<Uint8Array>, codes: Uint8Array, at: number): void {
+  const { values } = kept;
+  const keptAddress = kernel.addressOf(values);
+  const address = kernel.addressOf(codes);
+  if (keptAddress === undefined || address === undefined) raiseColumn(kept, codes, at);
+  else kernel.call.raiseCodes(keptAddress, address + at, values.length);
 }
 
 function longFrames(kernel: Kernel, settings: LongFrameSettings): LongFrameRows {

@@ -10,12 +10,15 @@ import {
   type ShortFrameSettings,
 } from '../signal/frame-engine.ts';
 import type { FrameGrid } from '../signal/frame-plan.ts';
+import { BAND_COLUMN } from '../signal/frame-row.ts';
 import { frameRuns, type FrameRun } from '../signal/frame-runs.ts';
 import { planFeatures, planTransform } from './frame-tables.ts';
 import type { Kernel, KernelArray } from './kernel.ts';
 
 /** The kernel works on four frames at a time and writes all four. */
 const SPARE_ROWS = 3;
+/** Rows of the table are written in fours. */
+const SPARE_FLOATS = 3;
 const FLOAT_BYTES = Float32Array.BYTES_PER_ELEMENT;
 
 const multipleOfFour = (count: number) => Math.ceil(count / 4) * 4;
@@ -86,12 +89,16 @@ export class KernelLongFrames extends KernelRows implements LongFrameRows {
   readonly featureStride: number;
   readonly #features: KernelArray<Float32Array>;
   readonly #plan: number;
+  readonly #bands: number;
+  readonly #table: KernelArray<Float32Array>;
 
   constructor(kernel: Kernel, settings: LongFrameSettings) {
     const { grid, sampleRateHz, bands, capacity } = settings;
     super(kernel, { ...settings, firstBin: 0, endBin: grid.size / 2 });
     this.featureStride = multipleOfFour(FEATURE.thirdOctaves + bands.length);
     this.#features = kernel.array(Float32Array, (capacity + SPARE_ROWS) * this.featureStride);
+    this.#bands = bands.length;
+    this.#table = kernel.array(Float32Array, capacity * (BAND_COLUMN + bands.length) + SPARE_FLOATS);
     const { size } = grid;
     this.#plan = planFeatures(kernel, {
       size,
@@ -103,6 +110,20 @@ export class KernelLongFrames extends KernelRows implements LongFrameRows {
 
   get features(): Float32Array {
     return this.#features.values;
+  }
+
+  table(count: number, crossingsToHz: number): Float32Array {
+    const { featureStride } = this;
+    const { address } = this.#features;
+    this.kernel.call.tableRows(
+      address,
+      featureStride,
+      count,
+      this.#bands,
+      crossingsToHz,
+      this.#table.address,
+    );
+    return this.#table.values.subarray(0, count * (BAND_COLUMN + this.#bands));
   }
 
   protected analyseRun(samples: number, count: number, row: number): void {

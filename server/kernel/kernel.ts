@@ -23,6 +23,7 @@ export interface KernelFunctions {
     meanSquares: number,
   ): void;
   codes(power: number, stride: number, rows: number, bins: number, group: number, out: number): void;
+  raiseCodes(kept: number, codes: number, count: number): void;
   cells(
     samples: number,
     count: number,

@@ -55,7 +55,7 @@ export class ViewWriter {
         peaks[level]?.write(pairBytes);
       },
       column: (band, level, codes) => columns[band][level]?.write(codes),
-      frameRow: (row) => frames.write(new Uint8Array(row.buffer, row.byteOffset, row.byteLength)),
+      frameRows: (rows) => frames.write(new Uint8Array(rows.buffer, rows.byteOffset, rows.byteLength)),
     };
   }
 

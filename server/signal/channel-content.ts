@@ -19,6 +19,7 @@ import type { BlockSummer } from './frame-engine.ts';
 import { SILENCE_MEAN_SQUARE, sumOf } from './frame-spectrum.ts';
 import { lowFrameSize, LowFrames, type LowFrame } from './low-frames.ts';
 import { lowRateFactor, lowRateResponse } from './low-rate.ts';
+import { joinMains, MainsTracker, type MainsLine, type MainsPart } from './mains.ts';
 import { joinPcmHash, PcmHashTracker, type PcmHashPart } from './pcm-hash.ts';
 import type { Span } from './place-list.ts';
 import { SpeechFrameTracker } from './speech-frames.ts';
@@ -36,8 +37,9 @@ export interface ChannelContentSettings {
 
 export interface ContentTrackerSettings extends ChannelContentSettings {
   segment: Span;
-  /** Sums of `samplesPerLowMean` samples each. */
-  sumBlocks: BlockSummer;
+  /** Sums of `samplesPerMean` samples each, and of `samplesPerLowMean`. */
+  sumMeans: BlockSummer;
+  sumLowMeans: BlockSummer;
 }
 
 /** Looks at one segment of a channel. */
@@ -46,6 +48,7 @@ export type OpenContent = (settings: ContentTrackerSettings) => ContentTracker;
 
 /** What one segment tells of what a channel holds; plain data. */
 export interface ChannelContentPart {
+  mains: MainsPart;
   bits: EffectiveBitsPart;
   hash: PcmHashPart;
   speech: SpeechPart | null;
@@ -55,6 +58,7 @@ export interface ChannelContentPart {
 }
 
 export interface ChannelContent {
+  mains: MainsLine[];
   bits: EffectiveBits;
   pcmSha256: string;
   /** Places that may hold speech; `null` where the rate is too low to tell. */
@@ -79,12 +83,13 @@ function lowBandsBelow(longBands: readonly ThirdOctave[], sampleRateHz: number):
 }
 
 /**
- * What a channel holds, whoever stored it how: bits that carry something, a hash of its samples, a fingerprint, levels of bands,
- * places that may be speech. Looks at one segment; memory depends on the length of a segment alone.
+ * What a channel holds, whoever stored it how: lines of the mains, bits that carry something, a hash of its samples, a fingerprint,
+ * levels of bands, places that may be speech. Looks at one segment; memory depends on the length of a segment alone.
  *
  * Cost: 5 ns per sample together.
  */
 export class ChannelContentTracker {
+  readonly #mains: MainsTracker;
   readonly #bits: EffectiveBitsTracker;
   readonly #hash: PcmHashTracker;
   readonly #lowFrames: LowFrames;
@@ -102,14 +107,15 @@ export class ChannelContentTracker {
   readonly #longBands: number;
 
   constructor(settings: ContentTrackerSettings) {
-    const { sampleRateHz, sampleFormat, longBands, longHop, segment, sumBlocks } = settings;
+    const { sampleRateHz, sampleFormat, longBands, longHop, segment } = settings;
     const lowBands = lowBandsBelow(longBands, sampleRateHz);
     this.#startSample = segment.startSample;
     this.#screensSpeech = sampleRateHz >= LEAST_SPEECH_RATE_HZ;
+    this.#mains = new MainsTracker(sampleRateHz, settings.sumMeans);
     this.#bits = new EffectiveBitsTracker(sampleFormat);
     this.#hash = new PcmHashTracker(sampleFormat.encoding);
     this.#fingerprint = new FingerprintTracker(sampleRateHz, segment);
-    const lowSettings = { sampleRateHz, firstSample: segment.startSample, sumBlocks };
+    const lowSettings = { sampleRateHz, firstSample: segment.startSample, sumBlocks: settings.sumLowMeans };
     this.#lowFrames = new LowFrames(lowSettings, (frame) => this.#pushLow(frame));
     this.#speech = new SpeechFrameTracker(this.#lowFrames);
     this.#lowSummer = new BandSummer(lowBands, this.#lowFrames.rateHz / this.#lowFrames.size);
@@ -123,6 +129,7 @@ export class ChannelContentTracker {
   }
 
   pushSamples(samples: Float32Array, from: number, to: number): void {
+    this.#mains.push(samples, from, to);
     this.#bits.push(samples, from, to);
     this.#hash.push(samples, from, to);
     this.#lowFrames.push(samples, from, to);
@@ -141,6 +148,7 @@ export class ChannelContentTracker {
     const { hopSamples } = this.#lowFrames;
     const speech = { ...this.#speech.finish(), startSample: this.#startSample, hopSamples };
     return {
+      mains: this.#mains.finish(),
       bits: this.#bits.finish(),
       hash: this.#hash.finish(),
       speech: this.#screensSpeech ? speech : null,
@@ -167,7 +175,7 @@ function placeInFingerprint(bands: readonly ThirdOctave[]): FingerprintRange {
   return { from, to, firstBand: (bands[from]?.index ?? first) - first };
 }
 
-type SmallParts = Pick<ChannelContentPart, 'bits' | 'hash' | 'speech' | 'fingerprint'>;
+type SmallParts = Pick<ChannelContentPart, 'mains' | 'bits' | 'hash' | 'speech' | 'fingerprint'>;
 
 /** Joins the segments of a channel, one after the other. */
 export class ChannelContentJoin {
@@ -196,6 +204,10 @@ export class ChannelContentJoin {
     const speech = this.#parts.flatMap((part) => (part.speech ? [part.speech] : []));
     const restored = ({ middleHz }: ThirdOctave) => 1 / lowRateResponse(middleHz, sampleRateHz);
     return {
+      mains: joinMains(
+        each((part) => part.mains),
+        sampleRateHz,
+      ),
       bits: joinEffectiveBits(
         each((part) => part.bits),
         sampleFormat,

@@ -8,7 +8,6 @@ import {
   type LongFrameResult,
   type LongFrameStatisticsSettings,
 } from './long-frame-statistics.ts';
-import { joinMains } from './mains.ts';
 import type { ChannelFacts } from './quality.ts';
 
 export interface ChannelResult extends LongFrameResult {
@@ -47,6 +46,7 @@ export class ChannelJoin {
 
   finish(): ChannelResult {
     const { channel, course, sampleRateHz } = this.#settings;
+    const content = this.#content.finish();
     const each = <Part>(of: (part: SmallParts) => Part) => this.#parts.map(of);
     const nonFiniteSamples = this.#parts.reduce((sum, part) => sum + part.nonFiniteSamples, 0);
     const { levels, clipped } = joinLevels(
@@ -56,7 +56,7 @@ export class ChannelJoin {
     );
     return {
       ...this.#statistics.finish(),
-      content: this.#content.finish(),
+      content,
       facts: {
         levels,
         clipped,
@@ -64,10 +64,7 @@ export class ChannelJoin {
           each((part) => part.dropouts),
           sampleRateHz,
         ),
-        mains: joinMains(
-          each((part) => part.mains),
-          sampleRateHz,
-        ),
+        mains: content.mains,
       },
       course: joinChannelCourse(
         course,

@@ -6,11 +6,10 @@ import type { SampleFormat } from './effective-bits.ts';
 import { FrameCursor, type SampleWindow } from './frame-cursor.ts';
 import type { PowerRows } from './frame-engine.ts';
 import type { FramePlan } from './frame-plan.ts';
-import { rowBands, type FrameRow } from './frame-row.ts';
+import { rowBands } from './frame-row.ts';
 import { LevelTracker, type LevelPart } from './levels.ts';
 import type { LongFramePart } from './long-frame-statistics.ts';
 import { LongFrames } from './long-frames.ts';
-import { MainsTracker, type MainsPart } from './mains.ts';
 import { LONG_FRAMES_AT_ONCE, type PassArithmetic } from './pass-arithmetic.ts';
 import { framesPerColumn, PictureColumns } from './picture-columns.ts';
 import type { Span } from './place-list.ts';
@@ -23,7 +22,7 @@ import type { Picture } from './spectrogram-columns.ts';
 export interface ViewSink {
   peak(level: number, minimum: number, maximum: number): void;
   column(band: PictureBand, level: number, codes: Uint8Array): void;
-  frameRow(row: FrameRow): void;
+  frameRows(rows: Float32Array): void;
 }
 
 export interface ChannelPassSettings {
@@ -53,7 +52,6 @@ export interface ChannelPart {
   nonFiniteSamples: number;
   levels: LevelPart;
   dropouts: DropoutPart;
-  mains: MainsPart;
   course: CoursePart;
   longFrames: LongFramePart;
   content: ChannelContentPart;
@@ -68,7 +66,6 @@ export class ChannelPass {
   readonly #settings: ChannelPassSettings;
   readonly #levels: LevelTracker;
   readonly #dropouts: DropoutTracker;
-  readonly #mains: MainsTracker;
   readonly #course: CourseTracker;
   readonly #pyramid: PeakPyramid;
   readonly #content: ContentTracker;
@@ -84,7 +81,6 @@ export class ChannelPass {
     this.#settings = settings;
     this.#levels = new LevelTracker(fullScale, segment);
     this.#dropouts = new DropoutTracker({ sampleRateHz, stepSize, fullScale });
-    this.#mains = new MainsTracker(sampleRateHz, arithmetic.sumMeans);
     this.#course = new CourseTracker(settings.course, segment);
     this.#pyramid = new PeakPyramid(settings.peakLevels, (level, low, high) => views.peak(level, low, high));
     this.#content = settings.openContent({
@@ -93,7 +89,8 @@ export class ChannelPass {
       longBands: rowBands(plan),
       longHop: plan.long.hop,
       segment,
-      sumBlocks: arithmetic.sumLowMeans,
+      sumMeans: arithmetic.sumMeans,
+      sumLowMeans: arithmetic.sumLowMeans,
     });
     this.#audible = openAudible(settings);
     this.#longFrames = this.#openLongFrames();
@@ -127,7 +124,6 @@ export class ChannelPass {
       nonFiniteSamples,
       levels: this.#levels.finish(),
       dropouts: this.#dropoutPart,
-      mains: this.#mains.finish(),
       course: this.#course.finish(),
       longFrames: this.#longFrames.finish(),
       content: this.#content.finish(),
@@ -138,7 +134,6 @@ export class ChannelPass {
   #pushSamples(window: SampleWindow, from: number, to: number): void {
     this.#pushCells(window, from, to);
     this.#dropouts.push(window, from, to);
-    this.#mains.push(window.samples, from, to);
     this.#content.pushSamples(window.samples, from, to);
     if (window.startSample + to === this.#settings.segment.endSample) {
       this.#dropoutPart = this.#dropouts.finish(window, to);
@@ -181,7 +176,7 @@ export class ChannelPass {
       spectrumPoints,
       capacity: LONG_FRAMES_AT_ONCE,
       byMeyda: descriptorsByMeyda,
-      onRow: (row) => views.frameRow(row),
+      onTable: (rows) => views.frameRows(rows),
       onBands: (index, values, at) => this.#content.pushLong(index, values, at),
       onRows: (count) => sharing?.columns.push(sharing.rows, count),
     });

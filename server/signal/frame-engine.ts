@@ -96,6 +96,11 @@ export interface LongFrameRows extends PowerRows {
   /** Columns by `FEATURE`; a silent frame has NaN in all but the first four. */
   readonly features: Float32Array;
   readonly featureStride: number;
+  /**
+   * The first `count` rows of features as `writeFrameTable` gives them; reused.
+   * @param crossingsToHz changes of sign of a frame to zero crossings per second.
+   */
+  table(count: number, crossingsToHz: number): Float32Array;
 }
 
 export interface ShortFrameRows extends PowerRows {
@@ -131,6 +136,12 @@ export type CellSummer = (samples: Float32Array, range: CellRange) => CellTable;
 /** Sums of `count` runs of samples from `from`; reused. */
 export type BlockSummer = (samples: Float32Array, from: number, count: number) => Float64Array;
 
+/** Each code of `kept` becomes that of `codes`, which begin at `at`, where that is greater. */
+export type RaiseColumn = (kept: EngineArray<Uint8Array>, codes: Uint8Array, at: number) => void;
+
+/** What columns of a picture are kept in and put together with. */
+export type ColumnEngine = Pick<FrameEngine, 'bytes' | 'raise'>;
+
 /** The measuring arithmetic that costs most, on many frames or cells at a time. One engine per thread. */
 export interface FrameEngine {
   readonly name: 'kernel' | 'package';
@@ -144,6 +155,7 @@ export interface FrameEngine {
   cellSummer(maximumCells: number): CellSummer;
   /** @param length samples of a block. @param maximumBlocks most blocks of one call. */
   blockSummer(length: number, maximumBlocks: number): BlockSummer;
+  raise: RaiseColumn;
   /** For the long-term spectra of one channel. */
   spectrumTables: OpenSpectrumTables;
   /** Its memory may be used again: nothing that it made is to be touched afterwards. */

@@ -19,9 +19,6 @@ export type FrameColumn = (typeof FIRST_COLUMNS)[number];
 
 const LOWEST_BAND_INDEX = 0;
 
-/** One row; NaN stands for what a silent frame does not have. */
-export type FrameRow = Float32Array;
-
 /** Places of the columns that do not depend on the rate. */
 export const CEPSTRAL_COLUMN = FIRST_COLUMNS.length;
 export const BAND_COLUMN = CEPSTRAL_COLUMN + CEPSTRAL_COEFFICIENTS;

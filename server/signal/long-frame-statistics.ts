@@ -1,7 +1,6 @@
 import type { ChannelDescriptors } from '../../shared/contract/measurement.ts';
 import { BinnedMedian, type BinnedMedianPart } from './binned-median.ts';
 import { bandBins } from './frame-plan.ts';
-import type { FrameRow } from './frame-row.ts';
 import type { OpenSpectrumTables } from './spectrum-tables.ts';
 import { LongTermSpectrum, type LongTermPart, type LongTermSpectra } from './long-term-spectrum.ts';
 
@@ -53,15 +52,15 @@ export class LongFrameStatistics {
     };
   }
 
-  /** @param row of a frame that is not silent, as `LongFrames` writes it. */
-  pushRow(row: FrameRow): void {
+  /** @param table whose row of a frame that is not silent begins at `at`. */
+  pushRow(table: Float32Array, at: number): void {
     const medians = this.#medians;
-    medians.zeroCrossingRateHz.push(row[3]!);
-    medians.centroidHz.push(row[4]!);
-    medians.spreadHz.push(row[5]!);
-    medians.flatness.push(row[6]!);
-    medians.rolloff99AmplitudeHz.push(row[7]!);
-    medians.ultrasonicShare.push(row[9]!);
+    medians.zeroCrossingRateHz.push(table[at + 3]!);
+    medians.centroidHz.push(table[at + 4]!);
+    medians.spreadHz.push(table[at + 5]!);
+    medians.flatness.push(table[at + 6]!);
+    medians.rolloff99AmplitudeHz.push(table[at + 7]!);
+    medians.ultrasonicShare.push(table[at + 9]!);
   }
 
   get part(): LongFramePart {

@@ -1,15 +1,13 @@
 import { meydaColumns } from './descriptors.ts';
-import type { FrameCursor } from './frame-cursor.ts';
-import { type SampleWindow } from './frame-cursor.ts';
+import type { FrameCursor, FrameRun, SampleWindow } from './frame-cursor.ts';
 import { FEATURE, type LongFrameRows } from './frame-engine.ts';
 import { SILENCE_MEAN_SQUARE, sumOf } from './frame-spectrum.ts';
-import { BAND_COLUMN, CEPSTRAL_COLUMN, type FrameRow } from './frame-row.ts';
+import { BAND_COLUMN } from './frame-row.ts';
 import {
   LongFrameStatistics,
   type LongFramePart,
   type LongFrameStatisticsSettings,
 } from './long-frame-statistics.ts';
-import { CEPSTRAL_COEFFICIENTS } from './mel-bank.ts';
 import type { OpenSpectrumTables } from './spectrum-tables.ts';
 
 export interface LongFramesSettings extends LongFrameStatisticsSettings {
@@ -21,7 +19,8 @@ export interface LongFramesSettings extends LongFrameStatisticsSettings {
   bands: number;
   /** Whether meyda's own extractors give the descriptors, instead of the engine's, which are equal. */
   byMeyda: boolean;
-  onRow: (row: FrameRow) => void;
+  /** Takes rows of the table as they are stored; reused. */
+  onTable: (rows: Float32Array) => void;
   /** Of a frame that is not silent, the mean squares of its bands are `values[at]` and those that follow; reused. */
   onBands: (frameIndex: number, values: Float32Array, at: number) => void;
   /** Called when the rows of some frames have been renewed. */
@@ -34,35 +33,25 @@ const LINES_PER_MEAN_SQUARE = 3;
 /**
  * Measures the long frames of a segment of one channel: one row of descriptors each, and what they add to the statistics.
  *
- * Levels by AES17; spectral columns by meyda's definitions; a silent frame has NaN in every column but the first
- * two levels, which are NaN too when they do not exist, and counts in no median.
+ * Levels by AES17; spectral columns by meyda's definitions; a silent frame counts in no median.
  */
 export class LongFrames {
   readonly #settings: LongFramesSettings;
   readonly #statistics: LongFrameStatistics;
-  readonly #row: FrameRow;
   readonly #energies: Float64Array;
 
   constructor(settings: LongFramesSettings) {
     this.#settings = settings;
     this.#statistics = new LongFrameStatistics(settings, settings.openTables);
-    this.#row = new Float32Array(BAND_COLUMN + settings.bands);
     this.#energies = new Float64Array(settings.capacity);
   }
 
   advance(window: SampleWindow): void {
-    const { cursor, rows, onRow, onRows, onBands } = this.#settings;
+    const { cursor, rows, onRows } = this.#settings;
     for (let run = cursor.take(window); run !== undefined; run = cursor.take(window)) {
       rows.analyse(window, run.first, run.end);
-      const count = run.end - run.first;
-      onRows(count);
-      for (let index = 0; index < count; index++) {
-        const isSilent = !this.#describe(index, cursor.samplesOf(run.first + index));
-        onRow(this.#row);
-        this.#energies[index] = isSilent ? Number.NaN : this.#energyOf(index);
-        if (!isSilent) onBands(run.first + index, rows.features, this.#bandsAt(index));
-      }
-      this.#statistics.longTerm.push(rows.power, rows.powerStride, this.#energies.subarray(0, count));
+      this.#describe(run);
+      onRows(run.end - run.first);
     }
   }
 
@@ -70,58 +59,44 @@ export class LongFrames {
     return this.#statistics.part;
   }
 
-  /** @returns false for a silent frame. */
-  #describe(index: number, samples: number): boolean {
-    const { rows, sampleRateHz, byMeyda } = this.#settings;
-    const row = this.#row;
-    const features = rows.features;
-    const at = index * rows.featureStride;
-    const peak = features[at + FEATURE.peak]!;
-    const meanSquare = features[at + FEATURE.meanSquare]!;
-    row.fill(Number.NaN);
-    if (peak > 0) row[1] = 20 * Math.log10(peak);
-    if (meanSquare < SILENCE_MEAN_SQUARE) return false;
-    const rms = Math.sqrt(meanSquare);
-    row[0] = 20 * Math.log10(rms * Math.SQRT2);
-    row[2] = 20 * Math.log10(peak / rms);
-    row[3] = (features[at + FEATURE.crossings]! * sampleRateHz) / samples;
-    if (byMeyda) meydaColumns(this.#powerOf(index), sampleRateHz, features, at);
-    this.#copyShape(features, at);
-    this.#statistics.pushRow(row);
-    return true;
+  #describe({ first, end }: FrameRun): void {
+    const { cursor, rows, byMeyda, sampleRateHz, onTable } = this.#settings;
+    const count = end - first;
+    const energies = this.#energies.subarray(0, count);
+    for (let row = 0; row < count; row++) {
+      const at = row * rows.featureStride;
+      const isSilent = rows.features[at + FEATURE.meanSquare]! < SILENCE_MEAN_SQUARE;
+      energies[row] = isSilent ? Number.NaN : this.#energyOf(row);
+      if (byMeyda && !isSilent) meydaColumns(this.#powerOf(row), sampleRateHz, rows.features, at);
+    }
+    const table = rows.table(count, sampleRateHz / cursor.samplesOf(first));
+    onTable(table);
+    this.#statistics.longTerm.push(rows.power, rows.powerStride, energies);
+    this.#gather(first, table, energies);
   }
 
-  #powerOf(index: number): Float32Array {
+  /** What frames that are not silent add to medians and bands. */
+  #gather(first: number, table: Float32Array, energies: Float64Array): void {
+    const { rows, bands, onBands } = this.#settings;
+    const columns = BAND_COLUMN + bands;
+    const { features, featureStride } = rows;
+    for (const [row, energy] of energies.entries()) {
+      if (Number.isNaN(energy)) continue;
+      this.#statistics.pushRow(table, row * columns);
+      onBands(first + row, features, row * featureStride + FEATURE.thirdOctaves);
+    }
+  }
+
+  #powerOf(row: number): Float32Array {
     const { power, powerStride, bins } = this.#settings.rows;
-    return power.subarray(index * powerStride, index * powerStride + bins);
+    return power.subarray(row * powerStride, row * powerStride + bins);
   }
 
   /** Summed power from 1 kHz up, where the third octaves begin. */
-  #energyOf(index: number): number {
+  #energyOf(row: number): number {
     const { bands, rows } = this.#settings;
-    if (bands === 0) return this.#statistics.longTerm.energyOf(this.#powerOf(index));
-    const first = this.#bandsAt(index);
+    if (bands === 0) return this.#statistics.longTerm.energyOf(this.#powerOf(row));
+    const first = row * rows.featureStride + FEATURE.thirdOctaves;
     return LINES_PER_MEAN_SQUARE * sumOf(rows.features, first, first + bands);
-  }
-
-  #bandsAt(index: number): number {
-    return index * this.#settings.rows.featureStride + FEATURE.thirdOctaves;
-  }
-
-  #copyShape(features: Float32Array, at: number): void {
-    const row = this.#row;
-    row[4] = features[at + FEATURE.centroidHz]!;
-    row[5] = features[at + FEATURE.spreadHz]!;
-    row[6] = features[at + FEATURE.flatness]!;
-    row[7] = features[at + FEATURE.rolloff99AmplitudeHz]!;
-    const above = features[at + FEATURE.ultrasonicMeanSquare]!;
-    if (above >= SILENCE_MEAN_SQUARE) row[8] = 10 * Math.log10(2 * above);
-    row[9] = above / features[at + FEATURE.totalMeanSquare]!;
-    for (let c = 0; c < CEPSTRAL_COEFFICIENTS; c++)
-      row[CEPSTRAL_COLUMN + c] = features[at + FEATURE.cepstral + c]!;
-    for (let band = 0; band < this.#settings.bands; band++) {
-      const meanSquare = features[at + FEATURE.thirdOctaves + band]!;
-      if (meanSquare >= SILENCE_MEAN_SQUARE) row[BAND_COLUMN + band] = 10 * Math.log10(2 * meanSquare);
-    }
   }
 }

@@ -1,5 +1,6 @@
 import { ENERGY_CLASSES, EnergyClasses, energyClass } from './energy-classes.ts';
 import { sumOf } from './frame-spectrum.ts';
+import { addCounts, packCounts, type PackedCounts } from './packed-counts.ts';
 import { powerQuantile } from './power-quantile.ts';
 import {
   NO_SPECTRUM,
@@ -32,7 +33,7 @@ export interface LongTermSettings {
 /** What one segment adds to the spectra of a channel; classes without a frame are left out. */
 export interface LongTermPart {
   maximum: Float32Array;
-  counts: Uint32Array;
+  counts: PackedCounts;
   countedFrames: number;
   classFrames: Uint32Array;
   classSums: { index: number; sums: Float64Array }[];
@@ -115,7 +116,7 @@ export class LongTermSpectrum {
     }
     return {
       maximum: maximum.slice(),
-      counts: counts.slice(),
+      counts: packCounts(counts),
       countedFrames: this.#countedFrames,
       classFrames: this.#classFrames,
       classSums,
@@ -126,7 +127,7 @@ export class LongTermSpectrum {
   absorb(part: LongTermPart): void {
     const { maximum, counts, sums, points } = this.#tables;
     part.maximum.forEach((value, p) => (maximum[p] = Math.max(maximum[p]!, value)));
-    for (let cell = 0; cell < counts.length; cell++) counts[cell]! += part.counts[cell]!;
+    addCounts(part.counts, counts);
     for (const { index, sums: added } of part.classSums) {
       added.forEach((sum, p) => (sums[index * points + p]! += sum));
     }

@@ -3,6 +3,7 @@ import type { BlockSummer, CellSummer, CellTable, FrameEngine } from './frame-en
 import { sumOf } from './frame-spectrum.ts';
 import { packageLongFrames, packageShortFrames } from './package-rows.ts';
 import { forEachCell } from './sample-cells.ts';
+import { raiseColumn } from './spectrogram-columns.ts';
 import { openPlainTables } from './spectrum-tables.ts';
 
 /**
@@ -20,6 +21,7 @@ export function packageEngine(): FrameEngine {
     shortFrames: packageShortFrames,
     decoder: (layout) => (bytes, out) => decodeFrames(bytes, layout, out),
     cellSummer,
+    raise: raiseColumn,
     spectrumTables: openPlainTables,
     close: () => undefined,
     blockSummer,

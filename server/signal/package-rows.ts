@@ -11,7 +11,9 @@ import {
 } from './frame-engine.ts';
 import { FrameFeatures } from './frame-features.ts';
 import { frameStart, type FrameGrid } from './frame-plan.ts';
+import { BAND_COLUMN } from './frame-row.ts';
 import { FrameSpectrum, meanSquareOfBins } from './frame-spectrum.ts';
+import { writeFrameTable } from './frame-table.ts';
 import { encodeColumn } from './spectrogram-columns.ts';
 
 interface RowSettings {
@@ -99,13 +101,23 @@ abstract class PackageRows {
 class PackageLongFrames extends PackageRows implements LongFrameRows {
   readonly features: Float32Array;
   readonly featureStride: number;
+  readonly #bands: number;
   readonly #frameFeatures: FrameFeatures;
+  readonly #table: Float32Array;
 
   constructor(settings: LongFrameSettings) {
     super({ ...settings, firstBin: 0, endBin: settings.grid.size / 2 });
     this.featureStride = FEATURE.thirdOctaves + settings.bands.length;
     this.features = new Float32Array(settings.capacity * this.featureStride);
+    this.#bands = settings.bands.length;
     this.#frameFeatures = new FrameFeatures({ ...settings, size: settings.grid.size });
+    this.#table = new Float32Array(settings.capacity * (BAND_COLUMN + this.#bands));
+  }
+
+  table(count: number, crossingsToHz: number): Float32Array {
+    const { features, featureStride } = this;
+    writeFrameTable({ features, featureStride, bands: this.#bands, crossingsToHz }, count, this.#table);
+    return this.#table.subarray(0, count * (BAND_COLUMN + this.#bands));
   }
 
   protected analyseFrame(samples: Float32Array, from: number, to: number, row: number): void {

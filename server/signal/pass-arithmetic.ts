@@ -1,6 +1,7 @@
 import type {
   BlockSummer,
   CellSummer,
+  ColumnEngine,
   FrameEngine,
   LongFrameRows,
   PowerRows,
@@ -29,6 +30,7 @@ export interface PassArithmetic {
   sumCells: CellSummer;
   sumMeans: BlockSummer;
   sumLowMeans: BlockSummer;
+  columns: ColumnEngine;
   openTables: OpenSpectrumTables;
 }
 
@@ -70,6 +72,7 @@ export function openArithmetic(
     sumCells: engine.cellSummer(Math.ceil(blockFrames / CELL_SAMPLES) + 1),
     sumMeans: engine.blockSummer(means, Math.ceil(blockFrames / means)),
     sumLowMeans: engine.blockSummer(lowMeans, Math.ceil(blockFrames / lowMeans)),
+    columns: engine,
     openTables: (settings) => engine.spectrumTables(settings),
   };
 }

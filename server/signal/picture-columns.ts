@@ -1,9 +1,10 @@
 import type { PictureBand } from '../../shared/contract/views.ts';
-import type { PowerRows } from './frame-engine.ts';
+import type { ColumnEngine, PowerRows } from './frame-engine.ts';
 import { COLUMN_FACTOR, ColumnPyramid, FIRST_STORED_LEVELS, type Picture } from './spectrogram-columns.ts';
 
 interface PictureColumnsSettings {
   columnLevels: Record<PictureBand, number>;
+  arithmetic: { columns: ColumnEngine };
   views: { column(band: PictureBand, level: number, codes: Uint8Array): void };
 }
 
@@ -17,13 +18,16 @@ export class PictureColumns {
   readonly #picture: Picture;
   readonly #pyramid: ColumnPyramid | undefined;
 
-  constructor(picture: Picture, { columnLevels, views }: PictureColumnsSettings) {
+  constructor(picture: Picture, { columnLevels, arithmetic, views }: PictureColumnsSettings) {
     const { band, bins } = picture.layout;
     const levels = columnLevels[band];
-    const first = FIRST_STORED_LEVELS[band];
+    const firstLevel = FIRST_STORED_LEVELS[band];
     this.#picture = picture;
     const sink = (level: number, codes: Uint8Array) => views.column(band, level, codes);
-    this.#pyramid = levels > first ? new ColumnPyramid(bins, first, levels, sink) : undefined;
+    this.#pyramid =
+      levels > firstLevel
+        ? new ColumnPyramid({ bins, firstLevel, levels, engine: arithmetic.columns, sink })
+        : undefined;
   }
 
   /** @param count rows of the next columns of level 0; a multiple of `framesPerColumn`, save the last ones of a segment. */

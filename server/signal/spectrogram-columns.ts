@@ -1,5 +1,6 @@
 import type { PictureBand, PictureLayout } from '../../shared/contract/views.ts';
 import { TILE_DB_PER_CODE, TILE_MINIMUM_DB } from '../../shared/audio/tile.ts';
+import type { ColumnEngine, EngineArray, RaiseColumn } from './frame-engine.ts';
 import { bandBins, type FrameGrid, type FramePlan } from './frame-plan.ts';
 
 export const COLUMNS_PER_TILE = 256;
@@ -103,23 +104,41 @@ export function encodeColumn(
   for (let b = 0; b < bins; b++) codes[at + b] = codeOfPower[rowBits[b]! >>> 15]!;
 }
 
+export const raiseColumn: RaiseColumn = ({ values: kept }, codes, at) => {
+  for (let b = 0; b < kept.length; b++) {
+    // The greater one without a branch, which noise would make a guess.
+    const more = codes[at + b]! - kept[b]!;
+    kept[b]! += more & ~(more >> 31);
+  }
+};
+
 /** Takes the finished columns of a level in order, one or more at a time; `codes` is reused. */
 export type ColumnSink = (level: number, codes: Uint8Array) => void;
+
+interface ColumnPyramidSettings {
+  bins: number;
+  firstLevel: number;
+  /** Where the levels end; each column of the highest lies in the segment. */
+  levels: number;
+  engine: ColumnEngine;
+  sink: ColumnSink;
+}
 
 /** The stored levels of a picture: each column is the maximum of four of the level below, so that no click vanishes. */
 export class ColumnPyramid {
   readonly #bins: number;
   readonly #firstLevel: number;
   readonly #sink: ColumnSink;
-  readonly #open: { codes: Uint8Array; parts: number }[] = [];
+  readonly #raise: RaiseColumn;
+  readonly #open: { codes: EngineArray<Uint8Array>; parts: number }[] = [];
 
-  /** @param levels where they end; each column of the highest lies in the segment. */
-  constructor(bins: number, firstLevel: number, levels: number, sink: ColumnSink) {
+  constructor({ bins, firstLevel, levels, engine, sink }: ColumnPyramidSettings) {
     this.#bins = bins;
     this.#firstLevel = firstLevel;
     this.#sink = sink;
+    this.#raise = engine.raise;
     for (let level = firstLevel + 1; level < levels; level++) {
-      this.#open.push({ codes: new Uint8Array(bins), parts: 0 });
+      this.#open.push({ codes: engine.bytes(bins), parts: 0 });
     }
   }
 
@@ -136,12 +155,7 @@ export class ColumnPyramid {
   #merge(index: number, codes: Uint8Array, at: number): void {
     const open = this.#open[index];
     if (!open) return;
-    const kept = open.codes;
-    for (let b = 0; b < kept.length; b++) {
-      // The greater one without a branch, which noise would make a guess.
-      const more = codes[at + b]! - kept[b]!;
-      kept[b]! += more & ~(more >> 31);
-    }
+    this.#raise(open.codes, codes, at);
     open.parts++;
     if (open.parts === COLUMN_FACTOR) this.#emit(index);
   }
@@ -149,9 +163,10 @@ export class ColumnPyramid {
   #emit(index: number): void {
     const open = this.#open[index]!;
     const level = this.#firstLevel + 1 + index;
-    this.#sink(level, open.codes);
-    this.#merge(index + 1, open.codes, 0);
-    open.codes.fill(0);
+    const codes = open.codes.values;
+    this.#sink(level, codes);
+    this.#merge(index + 1, codes, 0);
+    codes.fill(0);
     open.parts = 0;
   }
 }

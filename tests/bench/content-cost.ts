@@ -6,6 +6,7 @@ import { planFrames } from '../../server/signal/frame-plan.ts';
 import { rowBands } from '../../server/signal/frame-row.ts';
 import { LowFrames } from '../../server/signal/low-frames.ts';
 import { samplesPerLowMean } from '../../server/signal/low-rate.ts';
+import { samplesPerMean } from '../../server/signal/mains.ts';
 import { PcmHashTracker } from '../../server/signal/pcm-hash.ts';
 import { SpeechFrameTracker } from '../../server/signal/speech-frames.ts';
 
@@ -18,11 +19,12 @@ const RATES = [48_000, 192_000, 1_000_000];
 const FORMAT = { encoding: 'integer', bitsPerSample: 24 } as const;
 
 const engine = kernelEngine();
+const sumsOf = (length: number) => engine.blockSummer(length, Math.ceil(BLOCK / length));
 const sumsAt = new Map(
-  RATES.map((rateHz) => {
-    const length = samplesPerLowMean(rateHz);
-    return [rateHz, engine.blockSummer(length, Math.ceil(BLOCK / length))];
-  }),
+  RATES.map((rateHz) => [
+    rateHz,
+    { means: sumsOf(samplesPerMean(rateHz)), lowMeans: sumsOf(samplesPerLowMean(rateHz)) },
+  ]),
 );
 const array = engine.samples(FRAMES);
 fillWithNoise(array.values);
@@ -56,7 +58,8 @@ for (const sampleRateHz of RATES) {
   const { hop } = plan.long;
   const longBands = rowBands(plan);
   const meanSquares = new Float32Array(longBands.length).fill(1e-6);
-  const low = { sampleRateHz, firstSample: 0, sumBlocks: sumsAt.get(sampleRateHz)! };
+  const { means: sumMeans, lowMeans: sumLowMeans } = sumsAt.get(sampleRateHz)!;
+  const low = { sampleRateHz, firstSample: 0, sumBlocks: sumLowMeans };
   const at = `${sampleRateHz / 1000} kHz`;
   print(`${at}: hash`, () => {
     const hash = new PcmHashTracker('integer');
@@ -72,10 +75,16 @@ for (const sampleRateHz of RATES) {
     const speech = new SpeechFrameTracker(frames);
     inBlocks((from, to) => frames.push(array.values, from, to));
   });
-  print(`${at}: all, with bands and fingerprint`, () => {
-    const segment = { startSample: 0, endSample: FRAMES };
-    const bands = { longBands, longHop: hop };
-    const content = new ChannelContentTracker({ ...low, ...bands, sampleFormat: FORMAT, segment });
+  print(`${at}: all, with mains, bands and fingerprint`, () => {
+    const content = new ChannelContentTracker({
+      sampleRateHz,
+      sampleFormat: FORMAT,
+      longBands,
+      longHop: hop,
+      segment: { startSample: 0, endSample: FRAMES },
+      sumMeans,
+      sumLowMeans,
+    });
     let index = 0;
     inBlocks((from, to) => {
       content.pushSamples(array.values, from, to);

@@ -25,6 +25,13 @@ export function codes(power: usize, stride: usize, rows: usize, bins: usize, gro
   }
 }
 
+/** The greater one of each pair of codes into `kept`. Writes up to 15 bytes past it, and changes nothing there that counts. */
+export function raiseCodes(kept: usize, codes: usize, count: usize): void {
+  for (const end = kept + count; kept < end; kept += 16, codes += 16) {
+    v128.store(kept, i8x16.max_u(v128.load(kept), v128.load(codes)));
+  }
+}
+
 function codesOf(power: v128): v128 {
   const middle = v128.or(v128.and(power, i32x4.splat(~0x7fff)), i32x4.splat(0x4000));
   const level = f32x4.mul(naturalLog(middle), f32x4.splat(CODES_PER_NEPER));

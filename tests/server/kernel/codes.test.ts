@@ -73,4 +73,19 @@ describe('codes of powers', () => {
       );
     }
   });
+
+  it.each([1, 16, 101, 213])('are raised to the greater of two columns of %d by both engines', (bins) => {
+    const codes = Uint8Array.from({ length: 3 * bins }, (_, i) => (i * 7919) & 255);
+    for (const engine of [kernelEngine(), packageEngine()]) {
+      const kept = engine.bytes(bins);
+      const own = engine.bytes(3 * bins);
+      kept.values.fill(100);
+      own.values.set(codes);
+      const wanted = codes.slice(bins, 2 * bins).map((code) => Math.max(code, 100));
+      engine.raise(kept, own.values, bins);
+      expect(kept.values).toEqual(wanted);
+      engine.raise(kept, codes, 2 * bins);
+      expect(kept.values).toEqual(wanted.map((code, b) => Math.max(code, codes[2 * bins + b]!)));
+    }
+  });
 });

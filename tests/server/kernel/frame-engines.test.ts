@@ -161,6 +161,33 @@ describe('both engines', () => {
     }
   });
 
+  it('agree on the table of long frames, which has silence as NaN', () => {
+    const sampleRateHz = 192_000;
+    const samples = whiteNoiseSignal(2048 * 6 + 77, 0.1, 4);
+    samples.fill(0, 2048 * 2, 2048 * 4);
+    const tableBy = (engine: FrameEngine) => {
+      const { rows, count, columns } = analyseLong(engine, { samples, sampleRateHz, size: 2048 });
+      const table = rows.table(count, sampleRateHz / 2048);
+      return Array.from({ length: count }, (_, row) => [
+        ...table.subarray(row * columns, (row + 1) * columns),
+      ]);
+    };
+    const found = tableBy(kernelEngine());
+    const wanted = tableBy(packageEngine());
+    for (const [row, columns] of wanted.entries()) {
+      for (const [column, value] of columns.entries()) {
+        const name = `row ${row}, column ${column}`;
+        if (Number.isNaN(value)) expect(found[row]![column], name).toBeNaN();
+        else
+          expect(Math.abs(found[row]![column]! - value), name).toBeLessThan(
+            2e-5 * Math.max(1, Math.abs(value)),
+          );
+      }
+    }
+    expect(found.some((columns) => columns.every(Number.isNaN))).toBe(true);
+    expect(found[0]!.some(Number.isNaN)).toBe(false);
+  });
+
   it('give the same rows whichever frames are asked for together, from their own memory or not', () => {
     const samples = whiteNoiseSignal(512 * 20, 0.1, 3);
     const engine = kernelEngine();

@@ -5,14 +5,18 @@ import { FrameSpectrum, sumOf } from '../../../server/signal/frame-spectrum.ts';
 import { planFrames } from '../../../server/signal/frame-plan.ts';
 import { rowBands } from '../../../server/signal/frame-row.ts';
 import { samplesPerLowMean } from '../../../server/signal/low-rate.ts';
+import { samplesPerMean } from '../../../server/signal/mains.ts';
 import { BandSummer } from '../../../server/signal/third-octaves.ts';
 
-export function lowMeanSums(sampleRateHz: number): BlockSummer {
-  const length = samplesPerLowMean(sampleRateHz);
+function sumsOf(length: number): BlockSummer {
   return (samples, from, count) =>
     Float64Array.from({ length: count }, (_, block) =>
       sumOf(samples, from + block * length, from + (block + 1) * length),
     );
+}
+
+export function lowMeanSums(sampleRateHz: number): BlockSummer {
+  return sumsOf(samplesPerLowMean(sampleRateHz));
 }
 
 /** What a channel holds, found segment by segment as a recording is measured. */
@@ -31,8 +35,12 @@ export function contentOf(
   const sums = new Float32Array(longBands.length);
   for (let startSample = 0; startSample < samples.length; startSample += segment) {
     const endSample = Math.min(samples.length, startSample + segment);
-    const segmentSettings = { segment: { startSample, endSample }, sumBlocks: lowMeanSums(sampleRateHz) };
-    const tracker = new ChannelContentTracker({ ...settings, ...segmentSettings });
+    const tracker = new ChannelContentTracker({
+      ...settings,
+      segment: { startSample, endSample },
+      sumMeans: sumsOf(samplesPerMean(sampleRateHz)),
+      sumLowMeans: lowMeanSums(sampleRateHz),
+    });
     tracker.pushSamples(samples, startSample, endSample);
     for (let index = startSample / hop; (index + 1) * hop + hop / 2 <= endSample; index++) {
       const from = Math.max(0, index * hop - hop / 2);

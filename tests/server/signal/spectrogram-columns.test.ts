@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { planFrames } from '../../../server/signal/frame-plan.ts';
+import { packageEngine } from '../../../server/signal/package-engine.ts';
 import {
   ColumnPyramid,
   columnsAtLevel,
@@ -65,9 +66,13 @@ describe('the levels above', () => {
     const [, picture] = planPictures(planFrames(192_000, 128 * 5000));
     const { layout } = picture!;
     const seen: number[][] = Array.from({ length: layout.levels }, () => []);
-    const pyramid = new ColumnPyramid(layout.bins, 1, layout.levels, (level, codes) =>
-      seen[level]!.push(codes[50]!),
-    );
+    const pyramid = new ColumnPyramid({
+      bins: layout.bins,
+      firstLevel: 1,
+      levels: layout.levels,
+      engine: packageEngine(),
+      sink: (level, codes) => seen[level]!.push(codes[50]!),
+    });
     const codes = new Uint8Array(layout.bins);
     for (let index = 0; index < columnsAtLevel(layout.columns, 1); index++) {
       pyramid.push(codes.fill(index === Math.floor(3333 / 4) ? 200 : 20));
