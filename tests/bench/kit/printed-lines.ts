@@ -3,8 +3,14 @@ import { sourceFile } from './places.ts';
 import { runNode } from './programs.ts';
 
 /** What a benchmark that stands for itself prints. @param name of its file. */
-export async function linesOf(bench: Bench, name: string): Promise<string[]> {
-  const { output } = await runNode(bench, sourceFile(name), [], { nodeArguments: ['--import', 'tsx'] });
+export async function linesOf(
+  bench: Bench,
+  name: string,
+  argumentList: readonly string[] = [],
+): Promise<string[]> {
+  const { output } = await runNode(bench, sourceFile(name), argumentList, {
+    nodeArguments: ['--import', 'tsx'],
+  });
   return output.split('\n').filter((line) => line.trim() !== '');
 }
 

@@ -14,7 +14,7 @@ export const detector: RowFamily = {
   name: 'detector',
   about: 'how well clicks of known onset are found',
   async run(bench) {
-    return (await linesOf(bench, 'detector-accuracy.ts')).map(detectorRow);
+    return (await linesOf(bench, 'detector-accuracy.ts', bench.isQuick ? ['--quick'] : [])).map(detectorRow);
   },
 };
 

@@ -69,13 +69,28 @@ const HUM_HZ = 49.7;
  * is the click's peak over the noise within half an octave either side of its frequency, which is that octave's rms.
  */
 export function clickScene(options: SceneOptions): ClickScene {
-  const { sampleRateHz, seconds, seed } = options;
-  const uniform = seededUniform(seed);
-  const count = Math.round(seconds * sampleRateHz);
-  const samples = pinkNoise(count, sampleRateHz, seededNormal(uniform));
+  const uniform = seededUniform(options.seed);
+  const samples = humAndNoise(options, uniform);
+  const clicks = placeClicks(options, samples.length, uniform);
+  for (const click of clicks) addClick(samples, click, options.sampleRateHz);
+  return { samples, clicks };
+}
+
+/** The background of such a scene. */
+export function humAndNoise(
+  { sampleRateHz, seconds, seed }: Pick<SceneOptions, 'sampleRateHz' | 'seconds' | 'seed'>,
+  uniform = seededUniform(seed),
+): Float32Array {
+  const samples = pinkNoise(Math.round(seconds * sampleRateHz), sampleRateHz, seededNormal(uniform));
   addHum(samples, sampleRateHz);
-  const clicks = placeClicks(options, count, uniform);
-  for (const click of clicks) addClick(samples, click, sampleRateHz);
+  return samples;
+}
+
+/** Clicks in a copy of a background. */
+export function clicksOver(background: Float32Array, options: SceneOptions): ClickScene {
+  const samples = background.slice();
+  const clicks = placeClicks(options, samples.length, seededUniform(options.seed));
+  for (const click of clicks) addClick(samples, click, options.sampleRateHz);
   return { samples, clicks };
 }
 
