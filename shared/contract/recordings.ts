@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { idSchema, instantSchema, revisionSchema, sha256Schema } from './ids.ts';
 import { storedLayoutSchema } from './layouts.ts';
 import { licenceSchema } from './licence.ts';
-import { audioFormatSchema, measurementSummarySchema } from './measurement.ts';
+import { audioFormatSchema, measurementSummarySchema, ultrasoundSchema } from './measurement.ts';
 import { pageSchema, pageQuerySchema } from './page.ts';
 import { sensorKindSchema } from './sensors.ts';
 
@@ -61,6 +61,13 @@ export const likenessSchema = z.object({
 });
 export type Likeness = z.infer<typeof likenessSchema>;
 
+/** What of a measurement is told: the verdict on ultrasound is withheld from whoever works blind. */
+const toldMeasurementSchema = measurementSummarySchema.extend({
+  ultrasonic: ultrasoundSchema.extend({ verdict: ultrasoundSchema.shape.verdict.or(z.literal('withheld')) }),
+});
+export type ToldMeasurement = z.infer<typeof toldMeasurementSchema>;
+export type ToldUltrasound = ToldMeasurement['ultrasonic'];
+
 export const recordingListItemSchema = z.object({
   id: idSchema,
   runId: idSchema,
@@ -78,8 +85,8 @@ export const recordingListItemSchema = z.object({
   /** 0 to 1 while measuring. */
   progress: z.number().min(0).max(1),
   sharing: sharingSchema,
+  /** This and the count are `null` where the person works blind on this recording, or nothing is measured yet. */
   ultrasonicVerdict: z.enum(['not-observable', 'found', 'not-found']).nullable(),
-  /** `null` where the person works blind on this recording, or nothing is measured yet. */
   candidateCount: z.number().int().nullable(),
   createdAt: instantSchema,
 });
@@ -106,8 +113,8 @@ export const recordingSchema = recordingListItemSchema.extend({
   captures: z.object({ segments: z.number().int(), liveTimeNs: z.number().int().nullable() }).nullable(),
   /** As it was declared, where the file itself does not say how its samples lie. */
   layout: storedLayoutSchema.nullable(),
-  /** `null` until measured; without ultrasonic counts and course where the person works blind. */
-  measurement: measurementSummarySchema.nullable(),
+  /** `null` until measured; where the person works blind, without verdict, counts, rates, active spans and ultrasonic course. */
+  measurement: toldMeasurementSchema.nullable(),
   failure: z.string().nullable(),
   /** Told to the owning lab only; empty for everybody else. Of copies that others may not see, reviewers alone are told. */
   findings: z.array(guardFindingSchema),

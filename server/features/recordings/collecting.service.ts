@@ -13,8 +13,8 @@ export type CollectingService = ReturnType<typeof createCollectingService>;
 
 /** Recordings that may go into a collection: shared ones that this person may see. */
 export function createCollectingService({ db }: Pick<Ground, 'db'>) {
-  function select(actor: Actor, filters: RecordingFilters) {
-    const shared = { ...filters, sharing: 'shared' as const };
+  function select(actor: Actor, filters: Omit<RecordingFilters, 'askedById'>) {
+    const shared = { ...filters, askedById: actor.id, sharing: 'shared' as const };
     return selectRecordings(db, {
       filters: shared,
       visible: visibleRecordings(actor),

@@ -5,6 +5,7 @@ import type {
   Likeness,
   Recording,
   RecordingListItem,
+  ToldMeasurement,
 } from '../../../shared/contract/recordings.ts';
 import { toInstant } from '../../services/clock.ts';
 import type { SegmentRow } from './segments.queries.ts';
@@ -22,7 +23,7 @@ export function toListItem(view: RecordingListView, blind: boolean): RecordingLi
     channels: format.channels,
     frames: format.frames,
     durationS: durationS(recording),
-    ultrasonicVerdict: view.ultrasonicVerdict,
+    ultrasonicVerdict: blind && view.ultrasonicVerdict !== 'not-observable' ? null : view.ultrasonicVerdict,
     candidateCount: blind ? null : view.candidateCount,
     createdAt: toInstant(recording.createdAtMs),
   };
@@ -87,20 +88,23 @@ function toFinding({ id, kind, sentence, place, foundAtMs }: FindingRow): GuardF
   return { id, kind, sentence, place, foundAt: toInstant(foundAtMs) };
 }
 
-/** Whoever marks blind must not learn where or how often the machine heard something. */
-export function withoutDetections(summary: MeasurementSummary): MeasurementSummary {
+/** Whoever marks blind must not learn whether, where or how often the machine heard something. */
+function withoutDetections(summary: MeasurementSummary): ToldMeasurement {
   const { ultrasonic, course } = summary;
   const isSeen = ultrasonic.verdict !== 'not-observable';
   return {
     ...summary,
     ultrasonic: {
       ...ultrasonic,
+      verdict: isSeen ? 'withheld' : ultrasonic.verdict,
       reason: isSeen ? 'Told when the pass is finished.' : ultrasonic.reason,
+      energyShare: null,
       burstEnergyShare: null,
       spanCount: 0,
       spans: [],
       candidates: { total: 0, below: 0, across: 0, above: 0, expectedByChance: 0 },
     },
+    activeSpans: [],
     course: { ...course, ultrasonicDb: course.ultrasonicDb.map(() => null), candidates: [] },
   };
 }

@@ -57,6 +57,8 @@ export interface RecordingView extends RecordingListView {
 export type RecordingFilters = Omit<ListRecordingsQuery, 'cursor' | 'limit'> & {
   ids?: readonly string[];
   material?: string | undefined;
+  /** Who asks: what is withheld from them, they cannot find by it either. */
+  askedById: string;
 };
 
 function matching(filters: RecordingFilters, visible: SQL): SQL | undefined {
@@ -74,7 +76,18 @@ function matching(filters: RecordingFilters, visible: SQL): SQL | undefined {
     labId ? eq(recordings.labId, labId) : undefined,
     processing ? eq(recordings.processing, processing) : undefined,
     sharing ? eq(recordings.sharing, sharing) : undefined,
-    filters.ultrasonicVerdict ? sql`${ultrasonicVerdict} = ${filters.ultrasonicVerdict}` : undefined,
+    ofVerdict(filters),
+  );
+}
+
+function ofVerdict({ ultrasonicVerdict: verdict, askedById }: RecordingFilters): SQL | undefined {
+  if (verdict === undefined) return undefined;
+  const isOf = sql`${ultrasonicVerdict} = ${verdict}`;
+  if (verdict === 'not-observable') return isOf;
+  return and(
+    isOf,
+    sql`not exists (select 1 from ${passes} where ${passes.recordingId} = ${recordings.id}
+      and ${passes.labelerId} = ${askedById} and ${passes.state} = 'assigned' and ${passes.blind} = 1)`,
   );
 }
 

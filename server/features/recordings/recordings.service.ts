@@ -62,7 +62,8 @@ export interface RecordingAccess {
 
 export function createRecordingsService({ db, clock, ids, jobs, audit }: Parts) {
   function list(actor: Actor, query: ListRecordingsQuery): Page<RecordingListItem> {
-    const { cursor, limit, ...filters } = query;
+    const { cursor, limit, ...asked } = query;
+    const filters = { ...asked, askedById: actor.id };
     const visible = visibleRecordings(actor);
     const rows = selectRecordings(db, { filters, visible, after: readRowCursor(cursor), limit: limit + 1 });
     const { shown, nextCursor } = pageOf(rows, limit, placeOf);

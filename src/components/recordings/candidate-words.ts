@@ -1,6 +1,5 @@
-import type { Ultrasound } from '@shared/contract/measurement.ts';
 import type { Candidate, HearingClass } from '@shared/contract/candidates.ts';
-import type { Recording } from '@shared/contract/recordings.ts';
+import type { Recording, ToldUltrasound } from '@shared/contract/recordings.ts';
 import type { Fact } from '@/components/app/fact.ts';
 import { formatCount, formatNumber } from '@/composables/useFormat.ts';
 
@@ -24,7 +23,7 @@ export function chanceBound(expected: number): string {
 }
 
 /** How the candidates lie to the hearing line, with what noise alone would give beside it. */
-export function candidateFacts({ verdict, candidates }: Ultrasound): Fact[] {
+export function candidateFacts({ verdict, candidates }: ToldUltrasound): Fact[] {
   if (verdict === 'not-observable')
     return [
       { key: 'total', term: 'In the band that can be observed', value: formatNumber(candidates.total) },

@@ -1,5 +1,4 @@
-import type { MeasurementSummary, Ultrasound } from '@shared/contract/measurement.ts';
-import type { Recording } from '@shared/contract/recordings.ts';
+import type { Recording, ToldMeasurement, ToldUltrasound } from '@shared/contract/recordings.ts';
 import { formatBand } from '@/components/sensors/sensor-words.ts';
 import { formatCount, formatNumber, formatShare } from '@/composables/useFormat.ts';
 
@@ -24,7 +23,7 @@ function chanceWords(expected: number): string {
   return `about ${formatNumber(expected, { maximumSignificantDigits: 2 })}`;
 }
 
-function whereTheyLie({ total, above, across, below }: Ultrasound['candidates']): string {
+function whereTheyLie({ total, above, across, below }: ToldUltrasound['candidates']): string {
   // As with a sensor whose band begins at the line or above it.
   if (above + across + below === 0) return 'where they lie to the hearing line cannot be told';
   if (above + across === 0) return total === 1 ? 'not above the hearing line' : 'none above the hearing line';
@@ -42,11 +41,11 @@ function confirmedWords(eventCount: number | null, total: number): string {
 }
 
 /** Nothing rose above the last bit on any channel. */
-function isSilent({ levels }: MeasurementSummary): boolean {
+function isSilent({ levels }: ToldMeasurement): boolean {
   return levels.length > 0 && levels.every(({ rmsDb }) => rmsDb === null);
 }
 
-function ofUnobservable({ reason, candidates }: Ultrasound, eventCount: number | null): Headline {
+function ofUnobservable({ reason, candidates }: ToldUltrasound, eventCount: number | null): Headline {
   const { total } = candidates;
   const title =
     total === 0
@@ -59,7 +58,7 @@ function ofUnobservable({ reason, candidates }: Ultrasound, eventCount: number |
   };
 }
 
-function ofNotFound({ reason, candidates }: Ultrasound, eventCount: number | null): Headline {
+function ofNotFound({ reason, candidates }: ToldUltrasound, eventCount: number | null): Headline {
   const { total } = candidates;
   const title =
     total === 0
@@ -68,7 +67,7 @@ function ofNotFound({ reason, candidates }: Ultrasound, eventCount: number | nul
   return { title, key: '', sentence: `${reason}${total > 0 ? confirmedWords(eventCount, total) : ''}` };
 }
 
-function ofFound(ultrasonic: Ultrasound, eventCount: number | null): Headline {
+function ofFound(ultrasonic: ToldUltrasound, eventCount: number | null): Headline {
   const { candidates, bandLowHz, bandHighHz, burstEnergyShare, spanCount } = ultrasonic;
   const asSeen = `as this sensor sees it (${formatBand(bandLowHz, bandHighHz)})`;
   if (candidates.total === 0) {
@@ -97,7 +96,7 @@ const blindHeadline: Headline = {
     'Candidates, their counts and the ultrasonic course are withheld until your pass is finished, so that your marks are your own.',
 };
 
-function ofMeasured(measurement: MeasurementSummary, { blind, eventCount }: HeadlineFacts): Headline {
+function ofMeasured(measurement: ToldMeasurement, { blind, eventCount }: HeadlineFacts): Headline {
   const { ultrasonic } = measurement;
   if (isSilent(measurement)) {
     const sentence =

@@ -1,5 +1,8 @@
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { listRecordingsQuerySchema } from '../../../../shared/contract/recordings.ts';
+import { eq } from 'drizzle-orm';
+import type { Ultrasound } from '../../../../shared/contract/measurement.ts';
+import { measurements } from '../../../../server/db/schema/measurements.ts';
 import { updateRecording } from '../../../../server/features/recordings/recordings.queries.ts';
 import { detectedCandidate, replaceCandidates } from '../../../support/server/seed-candidates.ts';
 import {
@@ -20,6 +23,15 @@ afterAll(() => app.close());
 const get = (name: PersonName, id: string) => app.deps.services.recordings.get(app.actor(name), id);
 const list = (name: PersonName, facts: object = {}) =>
   app.deps.services.recordings.list(app.actor(name), listRecordingsQuerySchema.parse(facts));
+
+/** As if the detector had heard bursts in the first tenth of a second. */
+function tellActivity(recordingId: string, ultrasonic: Partial<Ultrasound>): void {
+  const isOfIt = eq(measurements.recordingId, recordingId);
+  const { summary } = app.deps.db.select().from(measurements).where(isOfIt).get()!;
+  const span = { startSample: 0, endSample: 9600, candidates: 9, ratePerS: 90, expectedByChance: 0.1 };
+  const told = { ...summary, activeSpans: [span], ultrasonic: { ...summary.ultrasonic, ...ultrasonic } };
+  app.deps.db.update(measurements).set({ summary: told }).where(isOfIt).run();
+}
 
 describe('the list of recordings', () => {
   test('neither shows nor counts what another lab has not shared', async () => {
@@ -107,8 +119,37 @@ describe('whoever works blind', () => {
     expect(blind.measurement?.course.candidates).toEqual([]);
     expect(blind.measurement?.course.ultrasonicDb.every((level) => level === null)).toBe(true);
     expect(blind.measurement?.course.levelDb.some((level) => level !== null)).toBe(true);
-    expect(list('labeler').items.find((item) => item.id === id)?.candidateCount).toBeNull();
+    const listed = { candidateCount: null, ultrasonicVerdict: null };
+    expect(list('labeler').items.find((item) => item.id === id)).toMatchObject(listed);
     expect(get('contributor', id)).toMatchObject({ blind: false, candidateCount: 1, eventCount: 0 });
+  });
+
+  test('learns neither when bursts are frequent, nor whether there is ultrasound at all', async () => {
+    const id = await seedMeasured(app, { sharing: 'shared' });
+    seedPass(app, id, { blind: true });
+    tellActivity(id, { verdict: 'found', energyShare: 0.4 });
+    const { measurement } = get('labeler', id);
+    expect(measurement).toMatchObject({
+      activeSpans: [],
+      ultrasonic: { verdict: 'withheld', energyShare: null },
+    });
+    expect(get('contributor', id).measurement).toMatchObject({
+      activeSpans: [{ candidates: 9 }],
+      ultrasonic: { verdict: 'found' },
+    });
+    const idsOf = (who: PersonName) => list(who, { ultrasonicVerdict: 'found' }).items.map((item) => item.id);
+    expect(idsOf('labeler')).not.toContain(id);
+    expect(idsOf('contributor')).toContain(id);
+  });
+
+  test('is told that ultrasound cannot be observed, which the file alone decides', async () => {
+    const id = await seedMeasured(app, { sharing: 'shared' });
+    seedPass(app, id, { blind: true });
+    tellActivity(id, { verdict: 'not-observable' });
+    expect(get('labeler', id).measurement?.ultrasonic.verdict).toBe('not-observable');
+    expect(list('labeler', { ultrasonicVerdict: 'not-observable' }).items.map((item) => item.id)).toContain(
+      id,
+    );
   });
 
   test('sees everything after finishing, and nothing once the pass is cancelled', async () => {
