@@ -46,14 +46,8 @@ export class ViewWriter {
     );
     const columns = this.#columnRegions(channel);
     const frames = this.#region(this.#framesFile, layout.frameRegionOf(segment, channel));
-    const pair = new Float32Array(2);
-    const pairBytes = new Uint8Array(pair.buffer);
     return {
-      peak(level, minimum, maximum) {
-        pair[0] = minimum;
-        pair[1] = maximum;
-        peaks[level]?.write(pairBytes);
-      },
+      peak: (level, minimum, maximum) => peaks[level]?.writePair(minimum, maximum),
       column: (band, level, codes) => columns[band][level]?.write(codes),
       frameRows: (rows) => frames.write(new Uint8Array(rows.buffer, rows.byteOffset, rows.byteLength)),
     };

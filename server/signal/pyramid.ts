@@ -19,12 +19,6 @@ export function pyramidCell(level: number): number {
 /** Takes the points of a level in order. */
 export type PeakSink = (level: number, minimum: number, maximum: number) => void;
 
-interface OpenPoint {
-  minimum: number;
-  maximum: number;
-  parts: number;
-}
-
 /** Levels whose points lie whole in segments of so many samples. */
 export function pyramidLevelsWithin(frames: number, segmentSamples: number): number[] {
   return pyramidLevels(frames).filter((_, level) => pyramidCell(level) <= segmentSamples);
@@ -35,7 +29,11 @@ export function pyramidLevelsWithin(frames: number, segmentSamples: number): num
  */
 export class PeakPyramid {
   readonly #sink: PeakSink;
-  readonly #open: OpenPoint[];
+  readonly #levels: number;
+  /** Of the open point of each level. */
+  readonly #minima: Float64Array;
+  readonly #maxima: Float64Array;
+  readonly #parts: Uint8Array;
   #minimum = Infinity;
   #maximum = -Infinity;
   #count = 0;
@@ -43,7 +41,10 @@ export class PeakPyramid {
   /** @param levels how many; each point of the highest lies in the segment. */
   constructor(levels: number, sink: PeakSink) {
     this.#sink = sink;
-    this.#open = Array.from({ length: levels }, () => emptyPoint());
+    this.#levels = levels;
+    this.#minima = new Float64Array(levels).fill(Infinity);
+    this.#maxima = new Float64Array(levels).fill(-Infinity);
+    this.#parts = new Uint8Array(levels);
   }
 
   push(cell: SampleCell): void {
@@ -56,32 +57,27 @@ export class PeakPyramid {
   /** Closes the last, shorter points. */
   finish(): void {
     if (this.#count > 0) this.#closeBase();
-    for (let level = 1; level < this.#open.length; level++) {
-      if (this.#open[level]!.parts > 0) this.#emit(level);
+    for (let level = 1; level < this.#levels; level++) {
+      if (this.#parts[level]! > 0) this.#emit(level, this.#minima[level]!, this.#maxima[level]!);
     }
   }
 
   #closeBase(): void {
-    this.#open[0] = { minimum: this.#minimum, maximum: this.#maximum, parts: 1 };
+    this.#emit(0, this.#minimum, this.#maximum);
     this.#minimum = Infinity;
     this.#maximum = -Infinity;
     this.#count = 0;
-    this.#emit(0);
   }
 
-  #emit(level: number): void {
-    const point = this.#open[level]!;
-    this.#sink(level, point.minimum, point.maximum);
-    this.#open[level] = emptyPoint();
-    const above = this.#open[level + 1];
-    if (!above) return;
-    above.minimum = Math.min(above.minimum, point.minimum);
-    above.maximum = Math.max(above.maximum, point.maximum);
-    above.parts++;
-    if (above.parts === PYRAMID_FACTOR) this.#emit(level + 1);
+  #emit(level: number, minimum: number, maximum: number): void {
+    this.#sink(level, minimum, maximum);
+    this.#minima[level] = Infinity;
+    this.#maxima[level] = -Infinity;
+    this.#parts[level] = 0;
+    const above = level + 1;
+    if (above === this.#levels) return;
+    const least = (this.#minima[above] = Math.min(this.#minima[above]!, minimum));
+    const most = (this.#maxima[above] = Math.max(this.#maxima[above]!, maximum));
+    if (++this.#parts[above]! === PYRAMID_FACTOR) this.#emit(above, least, most);
   }
-}
-
-function emptyPoint(): OpenPoint {
-  return { minimum: Infinity, maximum: -Infinity, parts: 0 };
 }
