@@ -204,10 +204,15 @@ export class BurstFinder {
   }
 
   #search(): void {
-    for (const watch of this.#watches) {
-      const found = watch.searchRegions(this.#noise);
+    // The strongest first: what other octaves hear of them is then known as that.
+    const due = this.#watches
+      .flatMap((watch) => watch.takeDueRegions().map((region) => ({ watch, region })))
+      .sort((a, b) => b.region.evidence - a.region.evidence);
+    for (const { watch, region } of due) {
+      const echo = this.#strong.echoIn(region);
+      const found = echo ? [echo] : watch.searchRegion(region, this.#noise);
       this.#groups.add(found);
-      this.#strong.add(found);
+      if (!echo) this.#strong.add(found);
     }
     const mostByChanceHz = this.#mostByChanceHz();
     for (const watch of this.#watches)

@@ -120,14 +120,18 @@ export class OctaveFloor {
 
   /** Takes the cells [from, to) of running sums of gained energies; only quiet ones move the floor. */
   gather(sums: CellSums, from: number, to: number, quiet: boolean): void {
+    const gains = this.gains;
+    const leaves = this.#leaves;
+    const partSums = this.#partSums;
+    const quietSums = this.#quietSums;
     for (let cell = from; cell < to;) {
       const room = Math.min(this.#cellsPerPart - this.#partCells, this.#cellsPerBlock - this.#blockCells);
       const count = Math.min(to - cell, room);
       sums.columnSums(cell, cell + count, gathered);
-      for (let leaf = 0; leaf < this.#leaves; leaf++) {
-        const sum = gathered[leaf]! / this.gains[leaf]!;
-        this.#partSums[leaf] = this.#partSums[leaf]! + sum;
-        if (quiet) this.#quietSums[leaf] = this.#quietSums[leaf]! + sum;
+      for (let leaf = 0; leaf < leaves; leaf++) {
+        const sum = gathered[leaf]! / gains[leaf]!;
+        partSums[leaf] = partSums[leaf]! + sum;
+        if (quiet) quietSums[leaf] = quietSums[leaf]! + sum;
       }
       cell += count;
       this.#partCells += count;

@@ -87,11 +87,9 @@ export class OctaveWatch {
     this.#take();
   }
 
-  /** What is found in the regions that are due. */
-  searchRegions(noise: NoiseLevels): OnsetFound[] {
-    const due = this.#takeDue(this.#regions);
-    if (due.length > 0) this.#readNoise(noise);
-    return due.flatMap((region) => this.#searchRegion(region));
+  /** Regions whose samples have all come. */
+  takeDueRegions(): ActiveRegion[] {
+    return this.#takeDue(this.#regions);
   }
 
   /**
@@ -170,7 +168,9 @@ export class OctaveWatch {
     return { kind, lowHz, highHz, firstSample: firstCell * perCell, lastSample: lastCell * perCell };
   }
 
-  #searchRegion(region: ActiveRegion): OnsetFound[] {
+  /** Onsets in a region, the damped sine that fits it being one of them. */
+  searchRegion(region: ActiveRegion, noise: NoiseLevels): OnsetFound[] {
+    this.#readNoise(noise);
     const found = findOnsets({
       source: this.#fine,
       region,

@@ -1,3 +1,4 @@
+import type { ActiveRegion } from './active-region.ts';
 import type { OnsetFound } from './onset-search.ts';
 
 const PERIODS_APART = 3;
@@ -64,6 +65,25 @@ export class StrongOnsets {
 
   forgetBefore(sample: number): void {
     this.#onsets = this.#onsets.filter(({ endSample }) => endSample > sample - this.#memorySamples);
+  }
+
+  /** What a region adds to a far stronger onset inside its best window, where there is one: it is what another octave hears of that. */
+  echoIn(region: ActiveRegion): OnsetFound | null {
+    const { evidence, bestStartSample, bestEndSample } = region;
+    const lead = this.#onsets.find(
+      ({ sample, evidence: ofLead }) =>
+        evidence < ECHO_SHARE * ofLead && sample >= bestStartSample && sample < bestEndSample,
+    );
+    if (!lead) return null;
+    const { lowHz, highHz, startSample, endSample } = region;
+    return {
+      sample: lead.sample,
+      uncertaintySamples: lead.uncertaintySamples,
+      ...{ evidence, lowHz, highHz, startSample, endSample, bestStartSample, bestEndSample },
+      rise: 0,
+      isStep: false,
+      sine: null,
+    };
   }
 
   /** Whether a damped sine found by itself will join a stronger onset, wherever in a stretch it begins. */

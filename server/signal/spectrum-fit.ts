@@ -230,6 +230,8 @@ export class SpectrumFit {
         if (statistic <= best.statistic || next.decay < leastDecay) break;
         best = { ...next, statistic };
       }
+      // The other way lies what was left behind.
+      if (best !== start) break;
     }
     return best;
   }
