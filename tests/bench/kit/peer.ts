@@ -2,16 +2,10 @@ import { MissingHereError, type Bench } from './bench.ts';
 import { sourceFile } from './places.ts';
 import { runProgram, type ProgramResult } from './programs.ts';
 
-/**
- * One thread, since more cost CPU and gain little, and an allocator that keeps what it was given back: without, a fifth of the time
- * goes into pages that are returned and asked for again.
- */
-const ENVIRONMENT = {
-  OPENBLAS_NUM_THREADS: '1',
-  MALLOC_MMAP_THRESHOLD_: '1000000000',
-  MALLOC_TRIM_THRESHOLD_: '1000000000',
-  PYTHONDONTWRITEBYTECODE: '1',
-};
+/** One thread, since more cost CPU and gain little; the allocator as it comes. */
+const ENVIRONMENT = { OPENBLAS_NUM_THREADS: '1', PYTHONDONTWRITEBYTECODE: '1' };
+/** An allocator that keeps what it was given back: a fifth of the time goes into pages that are returned and asked for again. */
+const KEEPING_PAGES = { MALLOC_MMAP_THRESHOLD_: '1000000000', MALLOC_TRIM_THRESHOLD_: '1000000000' };
 const VERSIONS =
   'import platform, numpy, scipy; print(f"Python {platform.python_version()}, numpy {numpy.__version__}, scipy {scipy.__version__}")';
 
@@ -35,6 +29,8 @@ export function runPeer(
   bench: Bench,
   script: string,
   argumentList: readonly string[],
+  { keepsPages = false } = {},
 ): Promise<ProgramResult> {
-  return runProgram(bench, 'python3', [sourceFile(script), ...argumentList], { environment: ENVIRONMENT });
+  const environment = keepsPages ? { ...ENVIRONMENT, ...KEEPING_PAGES } : ENVIRONMENT;
+  return runProgram(bench, 'python3', [sourceFile(script), ...argumentList], { environment });
 }
