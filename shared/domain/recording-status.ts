@@ -7,6 +7,9 @@ interface Finding {
     'declared-sensitivity' | 'personal-metadata' | 'voice-marked' | 'speech' | 'duplicate' | 'near-duplicate';
 }
 
+/** Kept as the reason why a recording is not measured where a person ended it, so that it is not called a failure. */
+export const MEASURING_STOPPED = 'The measurement was stopped. Measuring again goes on where it ended.';
+
 /** After measuring and screening: a finding holds the recording, nothing found shares it. */
 export function sharingAfterScreen(findings: readonly Finding[]): 'held' | 'shared' {
   return findings.length > 0 ? 'held' : 'shared';

@@ -133,7 +133,8 @@ export function formatShare(share: Maybe): string {
   const digits = percent > 0 && percent < 100 && (percent < 10 || percent > 99) ? 1 : 0;
   if (percent > 0 && percent < 0.05) return `< 0.1${NO_BREAK_SPACE}%`;
   if (percent < 100 && percent >= 99.95) return `> 99.9${NO_BREAK_SPACE}%`;
-  return `${formatNumber(percent, { maximumFractionDigits: digits })}${NO_BREAK_SPACE}%`;
+  const minimumFractionDigits = percent > 99 ? digits : 0;
+  return `${formatNumber(percent, { minimumFractionDigits, maximumFractionDigits: digits })}${NO_BREAK_SPACE}%`;
 }
 
 /** 1 candidate, 214 candidates. */

@@ -1,5 +1,6 @@
 import { useQuery, useQueryClient } from '@tanstack/vue-query';
 import { computed, watch } from 'vue';
+import { MEASURING_STOPPED } from '@shared/domain/recording-status.ts';
 import type { Ref } from 'vue';
 import type { Recording } from '@shared/contract/recordings.ts';
 import { getRecording, measureAgain, stopMeasuring } from '@/api/recordings.ts';
@@ -52,7 +53,9 @@ export function useRecording(id: Ref<string>) {
     () => query.data.value?.processing,
     (now, before) => {
       if (before !== undefined && now === 'measured') void announce('Measured. The measurements are here.');
-      if (before !== undefined && now === 'failed') void announce('The measurement failed.');
+      if (before === undefined || now !== 'failed') return;
+      const isStopped = query.data.value?.failure === MEASURING_STOPPED;
+      void announce(isStopped ? 'Measuring was stopped.' : 'The measurement failed.');
     },
   );
 

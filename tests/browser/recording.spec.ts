@@ -86,6 +86,20 @@ describe('the page of a recording', () => {
     await takeScreenshot(page, 'recording-findings');
   });
 
+  test('tells the stretches in which candidates are frequent, each a way to the bench', async ({ page }) => {
+    await signIn(page, 'contributor');
+    await openRecording(page, 'AlSi7_plate_03.wav');
+    const link = page.getByRole('table', { name: 'Active spans' }).getByRole('link').first();
+    await page.getByText('along the candidates: active spans').waitFor();
+    await link.focus();
+    await page.keyboard.press('Enter');
+    await page.waitForURL(/\/bench\/[0-9a-f-]{36}\?from=\d+&to=\d+$/);
+    await page
+      .getByRole('img', { name: /spectrogram|picture/i })
+      .first()
+      .waitFor();
+  });
+
   test('filters and orders candidates in the address, and leads to their place on the bench', async ({
     page,
   }) => {
@@ -149,6 +163,7 @@ describe('the page of a recording', () => {
     await openRecording(page, pass?.recordingName ?? '');
     await page.getByRole('heading', { level: 1, name: 'You work blind on this recording' }).waitFor();
     expect(await page.getByRole('heading', { name: /^Candidates/ }).count()).toBe(0);
+    expect(await page.getByRole('table', { name: 'Active spans' }).count()).toBe(0);
     await checkAxe(page);
     await takeScreenshot(page, 'recording-blind');
   });

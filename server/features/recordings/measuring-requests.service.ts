@@ -1,5 +1,6 @@
 import type { Recording } from '../../../shared/contract/recordings.ts';
 import type { Actor } from '../../../shared/policy/actor.ts';
+import { MEASURING_STOPPED } from '../../../shared/domain/recording-status.ts';
 import { authorize } from '../../authorize/authorize.ts';
 import { visibleRecordings } from '../../authorize/visible-recordings.ts';
 import type { Tx } from '../../db/client.ts';
@@ -47,11 +48,10 @@ export function createMeasuringRequestsService({ db, clock, jobs, activity, audi
       for (const payload of [{ recordingId: id }, { recordingId: id, again: true }]) {
         jobs.cancel(tx, { kind: 'measure', payload });
       }
-      const failure = 'The measurement was stopped. Measuring again goes on where it ended.';
       const state =
         found.processing === 'measured'
           ? ({ progress: 1 } as const)
-          : ({ processing: 'failed', progress: 0, failure } as const);
+          : ({ processing: 'failed', progress: 0, failure: MEASURING_STOPPED } as const);
       updateRecording(tx, id, { ...state, updatedAtMs: clock.nowMs() });
       return 'recording.measuring-stopped';
     });

@@ -3,7 +3,8 @@ import type { Course } from '@shared/contract/measurement.ts';
 import type { TimeMark } from '@/components/recordings/finding-places.ts';
 import { figureFont, roundRange } from '@/components/recordings/plot-axes.ts';
 import type { PlotSize } from '@/components/recordings/usePlot.ts';
-import { multiplesWithin, niceStep } from '@/composables/axis-ticks.ts';
+import { timeTicks } from '@/composables/bench/time-axis.ts';
+import type { AxisTick } from '@/composables/bench/time-axis.ts';
 import { formatDuration, formatNumber } from '@/composables/useFormat.ts';
 import type { Palette } from '@/theme/palette.ts';
 
@@ -16,8 +17,8 @@ export interface CourseSeries {
 }
 
 const levelFloorSpanDb = 60;
-/** Steps of the axis of time, about. */
-const timeSteps = 8;
+/** Least distance of two labels on the axis of time. */
+const tickDistancePx = 80;
 
 function strongest(values: readonly (number | null)[]): { index: number; value: number } | null {
   let best: { index: number; value: number } | null = null;
@@ -86,12 +87,22 @@ function strokeOf(series: CourseSeries, palette: Palette): string {
   return series.key === 'ultrasonic' ? palette.melt : palette.inkQuiet;
 }
 
+function markColourOf(series: CourseSeries, palette: Palette): string {
+  return series.key === 'candidates' ? palette.ink : palette.glowFill;
+}
+
+/** Places in seconds, as on the bench: a clock where the recording is long. */
+export function secondTicks(durationS: number, widthPx: number): AxisTick[] {
+  const inSeconds = { startSample: 0, endSample: durationS };
+  return timeTicks(inSeconds, { sampleRateHz: 1, widthPx, distancePx: tickDistancePx });
+}
+
 interface CourseLook {
   series: CourseSeries;
   durationS: number;
   /** The axis of time is drawn under the last plot only. */
   hasTimeAxis: boolean;
-  /** Places of findings, drawn along the top. */
+  /** Places of findings, or active spans over the candidates, drawn along the top. */
   marks: readonly TimeMark[];
   onPoint: (index: number | null) => void;
 }
@@ -99,9 +110,9 @@ interface CourseLook {
 const markHeight = 5;
 const leastMarkWidth = 3;
 
-function drawMarks(plot: uPlot, palette: Palette, marks: readonly TimeMark[]): void {
+function drawMarks(plot: uPlot, colour: string, marks: readonly TimeMark[]): void {
   const { top } = plot.bbox;
-  plot.ctx.fillStyle = palette.glowFill;
+  plot.ctx.fillStyle = colour;
   for (const { fromS, toS } of marks) {
     const [from, to] = [plot.valToPos(fromS, 'x', true), plot.valToPos(toS, 'x', true)];
     const width = Math.max(leastMarkWidth * devicePixelRatio, to - from);
@@ -111,47 +122,50 @@ function drawMarks(plot: uPlot, palette: Palette, marks: readonly TimeMark[]): v
 
 export function courseOptions({ series, durationS, hasTimeAxis, marks, onPoint }: CourseLook) {
   const [low, high] = rangeOf(series);
-  return (palette: Palette, size: PlotSize): uPlot.Options => ({
-    ...size,
-    padding: [6, 12, hasTimeAxis ? 0 : 4, 0],
-    legend: { show: false },
-    cursor: { drag: { x: false, y: false }, points: { show: false }, y: false, sync: { key: 'course' } },
-    scales: { x: { time: false, range: () => [0, durationS] }, y: { range: () => [low, high] } },
-    axes: [
-      {
-        show: hasTimeAxis,
-        stroke: palette.inkQuiet,
-        font: figureFont,
-        grid: { show: false },
-        ticks: { stroke: palette.hairline, width: 1, size: 4 },
-        // The library's own steps run into each other in a recording of a few samples.
-        splits: () => multiplesWithin(0, durationS, niceStep(durationS / timeSteps)),
-        values: (_plot, splits) => splits.map((seconds) => (seconds === 0 ? '0' : formatDuration(seconds))),
-        size: 28,
+  return (palette: Palette, size: PlotSize): uPlot.Options => {
+    const ticks = secondTicks(durationS, size.width);
+    return {
+      ...size,
+      padding: [6, 12, hasTimeAxis ? 0 : 4, 0],
+      legend: { show: false },
+      cursor: { drag: { x: false, y: false }, points: { show: false }, y: false, sync: { key: 'course' } },
+      scales: { x: { time: false, range: () => [0, durationS] }, y: { range: () => [low, high] } },
+      axes: [
+        {
+          show: hasTimeAxis,
+          stroke: palette.inkQuiet,
+          font: figureFont,
+          grid: { show: false },
+          ticks: { stroke: palette.hairline, width: 1, size: 4 },
+          // The library's own steps run into each other in a recording of a few samples.
+          splits: () => ticks.map(({ value }) => value),
+          values: () => ticks.map(({ label }) => label),
+          size: 28,
+        },
+        {
+          stroke: palette.inkQuiet,
+          font: figureFont,
+          grid: { stroke: palette.hairline, width: 1 },
+          ticks: { show: false },
+          splits: () => [low, high],
+          values: (_plot, splits) => splits.map((value) => formatNumber(value)),
+          size: 46,
+        },
+      ],
+      series: [
+        {},
+        {
+          stroke: strokeOf(series, palette),
+          fill: `${strokeOf(series, palette)}55`,
+          width: 1.2,
+          fillTo: low,
+          points: { show: false },
+        },
+      ],
+      hooks: {
+        draw: [(plot) => drawMarks(plot, markColourOf(series, palette), marks)],
+        setCursor: [(plot) => onPoint(plot.cursor.idx ?? null)],
       },
-      {
-        stroke: palette.inkQuiet,
-        font: figureFont,
-        grid: { stroke: palette.hairline, width: 1 },
-        ticks: { show: false },
-        splits: () => [low, high],
-        values: (_plot, splits) => splits.map((value) => formatNumber(value)),
-        size: 46,
-      },
-    ],
-    series: [
-      {},
-      {
-        stroke: strokeOf(series, palette),
-        fill: `${strokeOf(series, palette)}55`,
-        width: 1.2,
-        fillTo: low,
-        points: { show: false },
-      },
-    ],
-    hooks: {
-      draw: [(plot) => drawMarks(plot, palette, marks)],
-      setCursor: [(plot) => onPoint(plot.cursor.idx ?? null)],
-    },
-  });
+    };
+  };
 }

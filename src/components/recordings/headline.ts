@@ -1,4 +1,5 @@
 import type { Recording, ToldMeasurement, ToldUltrasound } from '@shared/contract/recordings.ts';
+import { MEASURING_STOPPED } from '@shared/domain/recording-status.ts';
 import { formatBand } from '@/components/sensors/sensor-words.ts';
 import { formatCount, formatNumber, formatShare } from '@/composables/useFormat.ts';
 
@@ -120,6 +121,11 @@ export function headlineOf(facts: HeadlineFacts): Headline {
   if (processing === 'measuring') {
     const sentence = 'The page turns into the measurements when they are there; nothing has to be reloaded.';
     return { title: 'Is being measured', key: '', sentence };
+  }
+  if (failure === MEASURING_STOPPED) {
+    const sentence =
+      'What is finished is kept: measuring again goes on from there. The file itself is stored unchanged.';
+    return { title: 'Measuring was stopped', key: '', sentence };
   }
   if (processing === 'failed') {
     const sentence = ' The file itself is stored unchanged; the measurement can be tried again.';

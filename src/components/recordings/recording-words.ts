@@ -1,4 +1,5 @@
 import type { Processing, Recording, RecordingListItem, Sharing } from '@shared/contract/recordings.ts';
+import { MEASURING_STOPPED } from '@shared/domain/recording-status.ts';
 import type { SensorKind } from '@shared/contract/sensors.ts';
 import { formatShare } from '@/composables/useFormat.ts';
 
@@ -17,7 +18,9 @@ const processingWords: Readonly<Record<Processing, Words>> = {
 export function wordsOfProcessing({
   processing,
   progress,
-}: Pick<Recording, 'processing' | 'progress'>): Words {
+  failure,
+}: Pick<Recording, 'processing' | 'progress'> & Partial<Pick<Recording, 'failure'>>): Words {
+  if (failure === MEASURING_STOPPED) return { value: 'measuring stopped', tone: 'plain' };
   const words = processingWords[processing];
   return processing === 'measuring' ? { ...words, value: `${words.value}, ${formatShare(progress)}` } : words;
 }

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { MEASURING_STOPPED } from '@shared/domain/recording-status.ts';
 import { headlineOf } from '@/components/recordings/headline.ts';
 import type { Headline } from '@/components/recordings/headline.ts';
 import { measurement, recording, ultrasound } from './recording-fixture.ts';
@@ -94,5 +95,8 @@ describe('the headline of a recording', () => {
     const failed = headlineOf(recording({ processing: 'failed', failure: 'Out of memory.', ...nothing }));
     expect(failed.title).toBe('The measurement failed');
     expect(failed.key).toBe('Out of memory.');
+    const stopped = headlineOf(recording({ processing: 'failed', failure: MEASURING_STOPPED, ...nothing }));
+    expect(stopped).toMatchObject({ title: 'Measuring was stopped', key: '' });
+    expect(stopped.sentence).toContain('goes on from there');
   });
 });

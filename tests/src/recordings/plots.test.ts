@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { courseSeries, rangeOf } from '@/components/recordings/course-plot.ts';
+import { courseSeries, rangeOf, secondTicks } from '@/components/recordings/course-plot.ts';
 import { frequencyTicks, roundRange } from '@/components/recordings/plot-axes.ts';
 import {
   curvesOf,
@@ -95,6 +95,20 @@ describe('the course through a recording', () => {
     );
     expect(candidates && rangeOf(candidates)).toEqual([0, 12]);
     expect(level && rangeOf(level)).toEqual([-100, -30]);
+  });
+});
+
+describe('the axis of time', () => {
+  const labels = (durationS: number, widthPx = 720) =>
+    secondTicks(durationS, widthPx).map(({ label }) => label.replace('\u00A0', ' '));
+
+  it('reads like a clock in a long recording, and in seconds in a short one', () => {
+    expect(labels(280).slice(0, 3)).toEqual(['0:00', '1:00', '2:00']);
+    expect(labels(12)).toEqual(['0 s', '2 s', '4 s', '6 s', '8 s', '10 s', '12 s']);
+  });
+
+  it('has fewer labels where there is less room', () => {
+    expect(labels(12, 320)).toEqual(['0 s', '5 s', '10 s']);
   });
 });
 

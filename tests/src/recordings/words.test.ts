@@ -1,5 +1,6 @@
 import { mount, RouterLinkStub } from '@vue/test-utils';
 import { describe, expect, it } from 'vitest';
+import { MEASURING_STOPPED } from '@shared/domain/recording-status.ts';
 import type { QualityFinding } from '@shared/contract/measurement.ts';
 import { sharingSchema } from '@shared/contract/recordings.ts';
 import type { Likeness } from '@shared/contract/recordings.ts';
@@ -42,6 +43,10 @@ describe('a recording in words', () => {
   });
 
   it('tells the progress of its measurement', () => {
+    expect(wordsOfProcessing({ processing: 'failed', progress: 0, failure: MEASURING_STOPPED })).toEqual({
+      value: 'measuring stopped',
+      tone: 'plain',
+    });
     expect(plain(wordsOfProcessing({ processing: 'measuring', progress: 0.4 }).value)).toBe(
       'being measured, 40 %',
     );
