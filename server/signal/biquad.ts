@@ -32,18 +32,29 @@ export function butterworth(kind: PassKind, order: number, edgeHz: number, sampl
   });
 }
 
-/** Runs sections over samples in place, from rest. Cost: about 2 nanoseconds per sample and section. */
+const PASSING: Biquad = { b0: 1, b1: 0, b2: 0, a1: 0, a2: 0 };
+
+/** Runs sections over samples in place, from rest. Cost: about 4 nanoseconds per sample and three sections. */
 export function filterInPlace(samples: Float64Array, sections: readonly Biquad[]): void {
-  for (const { b0, b1, b2, a1, a2 } of sections) {
-    let s1 = 0;
-    let s2 = 0;
-    for (let n = 0; n < samples.length; n++) {
-      const x = samples[n] ?? 0;
-      const y = b0 * x + s1;
-      s1 = b1 * x - a1 * y + s2;
-      s2 = b2 * x - a2 * y;
-      samples[n] = y;
-    }
+  for (let k = 0; k < sections.length; k += 3)
+    filterByThree(samples, sections[k]!, sections[k + 1] ?? PASSING, sections[k + 2] ?? PASSING);
+}
+
+/** Three sections in one loop: each waits for its own last value, and the others go on meanwhile. */
+function filterByThree(samples: Float64Array, p: Biquad, q: Biquad, r: Biquad): void {
+  let [p1, p2, q1, q2, r1, r2] = [0, 0, 0, 0, 0, 0];
+  for (let n = 0; n < samples.length; n++) {
+    const x = samples[n]!;
+    const y = p.b0 * x + p1;
+    p1 = p.b1 * x - p.a1 * y + p2;
+    p2 = p.b2 * x - p.a2 * y;
+    const z = q.b0 * y + q1;
+    q1 = q.b1 * y - q.a1 * z + q2;
+    q2 = q.b2 * y - q.a2 * z;
+    const w = r.b0 * z + r1;
+    r1 = r.b1 * z - r.a1 * w + r2;
+    r2 = r.b2 * z - r.a2 * w;
+    samples[n] = w;
   }
 }
 

@@ -10,6 +10,9 @@ export interface RoughSine {
 }
 
 const POINTS = 1024;
+const HALF = POINTS / 2;
+const turnCosines = Float64Array.from({ length: HALF }, (_, k) => Math.cos((2 * Math.PI * k) / POINTS));
+const turnSines = Float64Array.from({ length: HALF }, (_, k) => Math.sin((2 * Math.PI * k) / POINTS));
 /** Samples per point's step: a source whose octave lies in its upper half is read between its samples. */
 const LENGTH_WIDTHS = 128;
 const TAPER_SHARE = 1 / 32;
@@ -34,7 +37,8 @@ export class SineEdge {
   /** One over what differencing and decimation do to each line, and the place of its level. */
   readonly #scales: Float64Array;
   readonly #levels: Uint8Array;
-  readonly #fft = inverseFft(POINTS);
+  /** Two real values to a complex one. */
+  readonly #fft = inverseFft(HALF);
   readonly #re = new Float64Array(POINTS);
   readonly #im = new Float64Array(POINTS);
 
@@ -80,28 +84,47 @@ export class SineEdge {
     return likeliest(values, rough.onset - count * step, step);
   }
 
-  /** Leaves the whitened samples, of POINTS to the window, in the transform's real part. */
+  /** Leaves the whitened samples, POINTS to the window, in the transform: even ones in the real part, odd ones in the other. */
   #whiten(first: number, lowestHz: number, inverseLevels: Float64Array): void {
     const size = this.#size;
     const output = differencedSpectrum(this.#source, first, size, TAPER_SHARE * size);
     const scales = this.#scales;
     const levels = this.#levels;
     const binHz = this.#rateHz / size;
-    const { re, im, slot } = this.#fft;
-    re.fill(0);
-    im.fill(0);
+    const re = this.#re.fill(0);
+    const im = this.#im.fill(0);
     for (let bin = Math.max(1, Math.ceil(lowestHz / binHz)); bin < size / 2; bin++) {
       const scale = inverseLevels[levels[bin]!]! * scales[bin]!;
-      const at = slot[bin]!;
-      re[at] = output[2 * bin]! * scale;
-      im[at] = output[2 * bin + 1]! * scale;
+      re[bin] = output[2 * bin]! * scale;
+      im[bin] = output[2 * bin + 1]! * scale;
+    }
+    this.#turnToTime();
+  }
+
+  /**
+   * z[n] = Re sum over k of X[k] exp(2 pi i k n / N) by a transform of half the length: with E = (X[k] + conj X[N/2 - k]) / 2 and
+   * O = (X[k] - conj X[N/2 - k]) / 2 exp(2 pi i k / N), that of E + i O has z[2 m] + i z[2 m + 1].
+   */
+  #turnToTime(): void {
+    const { re, im, slot } = this.#fft;
+    const xRe = this.#re;
+    const xIm = this.#im;
+    for (let k = 0; k < HALF; k++) {
+      const mirror = HALF - k;
+      const differenceRe = (xRe[k]! - xRe[mirror]!) / 2;
+      const differenceIm = (xIm[k]! + xIm[mirror]!) / 2;
+      const cosine = turnCosines[k]!;
+      const sine = turnSines[k]!;
+      const at = slot[k]!;
+      re[at] = (xRe[k]! + xRe[mirror]!) / 2 - (differenceRe * sine + differenceIm * cosine);
+      im[at] = (xIm[k]! - xIm[mirror]!) / 2 + (differenceRe * cosine - differenceIm * sine);
     }
     this.#fft.transform();
   }
 
   /** Leaves y[n], the sum over m >= n of z[m] exp(-(m - n) / decay) exp(-i w m): turned back, so that it changes slowly. */
   #correlate({ frequencyHz, decay }: RoughSine): void {
-    const z = this.#fft.re;
+    const { re: evens, im: odds } = this.#fft;
     const samplesPerPoint = this.#size / POINTS;
     const shrink = Math.exp(-samplesPerPoint / decay);
     const turn = ((2 * Math.PI * frequencyHz) / this.#rateHz) * samplesPerPoint;
@@ -112,8 +135,9 @@ export class SineEdge {
     let re = 0;
     let im = 0;
     for (let n = POINTS - 1; n >= 0; n--) {
-      re = z[n]! * turnRe + shrink * re;
-      im = z[n]! * turnIm + shrink * im;
+      const z = (n & 1 ? odds : evens)[n >> 1]!;
+      re = z * turnRe + shrink * re;
+      im = z * turnIm + shrink * im;
       this.#re[n] = re;
       this.#im[n] = im;
       const next = turnRe * cosine - turnIm * sine;
