@@ -74,8 +74,9 @@ export function createRecordingViewsService({ db, recordings, viewFolders, readS
     return knownView(() => readSpectrum(viewFolders.ofMeasurement(row.id, measurementId), channel));
   }
 
-  /** Every long frame of one channel. */
+  /** Every long frame of one channel. It tells the course above 20 kHz, so there is none for whoever works blind. */
   function frames(access: MeasuredAccess, channel: number): Promise<FrameTable> {
+    if (access.blind) throw notFound('This table');
     requireChannel(access.row, channel);
     return readFrameTable(viewFolders.ofMeasurement(access.row.id, access.measurementId), channel);
   }

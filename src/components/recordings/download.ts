@@ -37,12 +37,16 @@ export function downloadsOf(recording: Facts, addressOf: AddressOf): Download[] 
     ...(may.downloadAudio
       ? [one('Original file', `${nameOfContainer(format.container)}, ${formatBytes(sizeBytes)}`, 'audio', '')]
       : []),
-    ...(isMeasured
+    ...(isMeasured && !blind
       ? [
           ofChannels(recording, 'Descriptors of every frame', 'CSV', (channel) => ({
             href: addressOf('frames.csv', channel),
             ending: 'frames.csv',
           })),
+        ]
+      : []),
+    ...(isMeasured
+      ? [
           ofChannels(recording, 'Spectrum while quiet and active', 'JSON', (channel) => ({
             href: addressOf('spectrum', channel),
             ending: 'spectrum.json',

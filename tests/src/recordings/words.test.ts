@@ -103,9 +103,9 @@ describe('the downloads', () => {
     });
   });
 
-  it('hold no candidates for whoever works blind', () => {
+  it('hold no candidates and no course for whoever works blind', () => {
     const hrefs = linksOf({ blind: true }).map(({ href }) => href);
-    expect(hrefs.filter((href) => href.includes('candidates'))).toEqual([]);
+    expect(hrefs.filter((href) => /candidates|frames/.test(href))).toEqual([]);
   });
 
   it('hold only the original until it is measured', () => {

@@ -4,7 +4,7 @@ import { readWavHeader } from '../../../../shared/audio/wav-header.ts';
 import { bytesSource } from '../../../../shared/audio/byte-source.ts';
 import { decodeFrames } from '../../../../shared/audio/pcm-decode.ts';
 import { decodeTile } from '../../../../shared/audio/tile.ts';
-import { seedMeasured, seedRecording, smallWav } from '../../../support/server/seed-recordings.ts';
+import { seedMeasured, seedPass, seedRecording, smallWav } from '../../../support/server/seed-recordings.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
 
 let app: TestApp;
@@ -116,6 +116,16 @@ describe('views', () => {
     expect(widths.size).toBe(1);
     expect(lines.length).toBeGreaterThan(10);
     expect(answer.headers['content-type']).toBe('text/csv; charset=utf-8');
+  });
+
+  test('the table of frames, which tells the course above 20 kHz, is withheld from whoever works blind', async () => {
+    const ofLabeler = async (blind: boolean) => {
+      const recordingId = await seedMeasured(app, { sharing: 'shared' });
+      seedPass(app, recordingId, { blind });
+      return (await app.as('labeler').get(`/api/recordings/${recordingId}/frames.csv`)).status;
+    };
+    expect(await ofLabeler(true)).toBe(404);
+    expect(await ofLabeler(false)).toBe(200);
   });
 
   test('the spectrum has quiet and greatest density on one axis', async () => {
