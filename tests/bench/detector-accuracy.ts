@@ -75,8 +75,8 @@ function printClicks(label: string, background: Float32Array, options: SceneOpti
 
 /** In stretches that memory holds, each with a beginning of its own. */
 function printAlone(sampleRateHz: number, seconds: number, firstSeed: number): void {
-  const pieceS = Math.min(seconds, MOST_SAMPLES_ALONE / sampleRateHz);
-  const pieces = Math.ceil(seconds / pieceS);
+  const pieces = Math.ceil((seconds * sampleRateHz) / MOST_SAMPLES_ALONE);
+  const pieceS = seconds / pieces;
   let count = 0;
   let cpuUs = 0;
   for (let piece = 0; piece < pieces; piece++) {
