@@ -58,17 +58,21 @@ async function measureSegments({ input, plan, parts, controls, steps }: Segments
     done[index] = fraction * (endSample - startSample);
     controls.onProgress?.(done.reduce((sum, samples) => sum + samples, 0) / plan.format.frames);
   };
+  const failure = new AbortController();
+  const signal = AbortSignal.any([failure.signal, ...(controls.signal ? [controls.signal] : [])]);
   const work = async () => {
     for (let index = waiting.shift(); index !== undefined; index = waiting.shift()) {
-      controls.signal?.throwIfAborted();
+      signal.throwIfAborted();
       const measured = index;
-      const own = { ...controls, onProgress: (fraction: number) => report(measured, fraction) };
+      const own = { signal, onProgress: (fraction: number) => report(measured, fraction) };
       if (!(await parts.has(index))) await steps.measureSegment(input, index, own);
       report(index, 1);
     }
   };
   const workers = Math.min(steps.atOnce, plan.segments.length);
-  await Promise.all(Array.from({ length: workers }, work));
+  const workOrStopAll = () => work().catch((error: unknown) => failure.abort(error));
+  await Promise.all(Array.from({ length: workers }, workOrStopAll));
+  signal.throwIfAborted();
 }
 
 /** Everything that decides what a segment gives: parts made under another description are of no use. */

@@ -1,8 +1,9 @@
 import { MessageChannel, type Transferable } from 'node:worker_threads';
-import type { MeasureResult } from './join-segments.ts';
+import { joinSegments, type MeasureResult } from './join-segments.ts';
 import type { MeasureControls } from './measure-controls.ts';
 import { measureFile, type MeasureSteps } from './measure-file.ts';
 import type { MeasureInput } from './measure-plan.ts';
+import { measureSegment } from './measure-segment.ts';
 import type { MeasureTask } from './measure.worker.ts';
 
 /** What this needs of a pool of threads. */
@@ -11,6 +12,11 @@ export interface MeasurePool {
     task: MeasureTask,
     options?: { signal?: AbortSignal; transferList?: Transferable[] },
   ): Promise<MeasureResult | null>;
+}
+
+interface HereOptions {
+  controls?: MeasureControls;
+  measureHere?: MeasureSteps['measureSegment'];
 }
 
 /** Address of the worker without its ending, for the pool. */
@@ -27,6 +33,33 @@ export function measureInWorkers(
   controls: MeasureControls = {},
 ): Promise<MeasureResult> {
   return measureFile(input, controls, stepsIn(pool, atOnce));
+}
+
+/**
+ * The same for a program that has nothing else to do: this thread measures as well and makes the join, so that `pool` needs one
+ * thread fewer, and their memory.
+ */
+export function measureHereAndInWorkers(
+  pool: MeasurePool,
+  atOnce: number,
+  input: MeasureInput,
+  { controls = {}, measureHere = measureSegment }: HereOptions = {},
+): Promise<MeasureResult> {
+  const there = stepsIn(pool, atOnce);
+  let isBusy = false;
+  return measureFile(input, controls, {
+    atOnce,
+    async measureSegment(...task) {
+      if (isBusy) return there.measureSegment(...task);
+      isBusy = true;
+      try {
+        await measureHere(...task);
+      } finally {
+        isBusy = false;
+      }
+    },
+    joinSegments,
+  });
 }
 
 function stepsIn(pool: MeasurePool, atOnce: number): MeasureSteps {

@@ -7,7 +7,7 @@ import { createWorkerPool } from '../../jobs/worker-pool.ts';
 import type { MeasureResult } from '../../measuring/join-segments.ts';
 import type { MeasureControls } from '../../measuring/measure-controls.ts';
 import { measureFile } from '../../measuring/measure-file.ts';
-import { measureInWorkers, measureWorkerModule } from '../../measuring/measure-in-workers.ts';
+import { measureHereAndInWorkers, measureWorkerModule } from '../../measuring/measure-in-workers.ts';
 import type { MeasureInput } from '../../measuring/measure-plan.ts';
 import type { MeasureTask } from '../../measuring/measure.worker.ts';
 import { planSegments } from '../../measuring/segment-plan.ts';
@@ -97,10 +97,10 @@ class Measuring {
     if (atOnce === 1) return measureFile(input, controls);
     const pool = createWorkerPool<MeasureTask, MeasureResult | null>({
       module: measureWorkerModule,
-      workers: atOnce,
+      workers: atOnce - 1,
     });
     try {
-      return await measureInWorkers(pool, atOnce, input, controls);
+      return await measureHereAndInWorkers(pool, atOnce, input, { controls });
     } finally {
       await pool.close();
     }

@@ -1,7 +1,8 @@
 import { createWorkerPool } from '../../../server/jobs/worker-pool.ts';
 import { joinSegments, type MeasureResult } from '../../../server/measuring/join-segments.ts';
 import { measureFile } from '../../../server/measuring/measure-file.ts';
-import { measureInWorkers } from '../../../server/measuring/measure-in-workers.ts';
+import { measureHereAndInWorkers } from '../../../server/measuring/measure-in-workers.ts';
+import type { MeasureControls } from '../../../server/measuring/measure-controls.ts';
 import type { MeasureInput } from '../../../server/measuring/measure-plan.ts';
 import { measureSegment } from '../../../server/measuring/measure-segment.ts';
 import type { MeasureTask } from '../../../server/measuring/measure.worker.ts';
@@ -22,13 +23,17 @@ const context = {
 };
 await (Number(workers) === 1 ? measureHere : measureInThreads)({ filePath, header, context, viewsDir });
 
+function measurePlainly(input: MeasureInput, segmentIndex: number, controls: MeasureControls): Promise<void> {
+  return measureSegment(input, segmentIndex, controls, toolsWith(engine));
+}
+
 function measureHere(input: MeasureInput): Promise<MeasureResult> {
   return measureFile(
     input,
     {},
     {
       atOnce: 1,
-      measureSegment: (task, index, controls) => measureSegment(task, index, controls, toolsWith(engine)),
+      measureSegment: measurePlainly,
       joinSegments,
     },
   );
@@ -37,9 +42,9 @@ function measureHere(input: MeasureInput): Promise<MeasureResult> {
 async function measureInThreads(input: MeasureInput): Promise<MeasureResult> {
   const atOnce = Number(workers);
   const module = new URL('./measure-plain.worker', import.meta.url);
-  const pool = createWorkerPool<MeasureTask, MeasureResult | null>({ module, workers: atOnce });
+  const pool = createWorkerPool<MeasureTask, MeasureResult | null>({ module, workers: atOnce - 1 });
   try {
-    return await measureInWorkers(pool, atOnce, input);
+    return await measureHereAndInWorkers(pool, atOnce, input, { measureHere: measurePlainly });
   } finally {
     await pool.close();
   }

@@ -1,6 +1,10 @@
 import { afterAll, describe, expect, it } from 'vitest';
 import { createWorkerPool } from '../../../server/jobs/worker-pool.ts';
-import { measureInWorkers, measureWorkerModule } from '../../../server/measuring/measure-in-workers.ts';
+import {
+  measureHereAndInWorkers,
+  measureInWorkers,
+  measureWorkerModule,
+} from '../../../server/measuring/measure-in-workers.ts';
 import type { MeasureResult } from '../../../server/measuring/join-segments.ts';
 import { measureFile } from '../../../server/measuring/measure-file.ts';
 import type { MeasureTask } from '../../../server/measuring/measure.worker.ts';
@@ -42,5 +46,34 @@ describe('measuring in a worker thread', () => {
     const source = await storedWav(wav);
     const input = { ...source, filePath: `${source.filePath}-gone`, context: plainContext };
     await expect(measureInWorkers(pool, 2, input)).rejects.toThrow(/ENOENT/);
+  });
+
+  it('ends everywhere when one thread fails', async () => {
+    const source = await storedWav(wav);
+    const signals: AbortSignal[] = [];
+    const measuring = measureHereAndInWorkers(
+      pool,
+      2,
+      { ...source, context: plainContext },
+      {
+        measureHere(_input, _segmentIndex, { signal }) {
+          signals.push(signal!);
+          return Promise.reject(new Error('This thread is out of luck.'));
+        },
+      },
+    );
+    await expect(measuring).rejects.toThrow('out of luck');
+    expect(signals.map(({ aborted }) => aborted)).toEqual([true]);
+  });
+
+  it('gives the same when this thread measures as well', async () => {
+    const sampleRateHz = 4000;
+    const long = writeWav({ sampleRateHz, channels: [whiteNoiseSignal(sampleRateHz * 300, 0.1, 2)] });
+    const source = await storedWav(long);
+    const input = { ...source, context: plainContext };
+    const shared = await measureHereAndInWorkers(pool, 2, input);
+    const here = await measureFile({ ...input, viewsDir: `${source.viewsDir}-here` });
+    expect(shared.summary).toEqual(here.summary);
+    expect(shared.candidateCount).toBe(here.candidateCount);
   });
 });
