@@ -15,7 +15,7 @@ const RATES = [
   { sampleRateHz: 500_000, seconds: 24, aloneS: 150 },
   { sampleRateHz: 1_000_000, seconds: 14, aloneS: 100 },
 ] as const;
-const QUICK_SHARE = 0.25;
+const QUICK_SHARE = 0.15;
 const MOST_SAMPLES_ALONE = 12e6;
 
 type Range = readonly [number, number];
