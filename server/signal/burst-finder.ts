@@ -8,6 +8,7 @@ import { type NoiseLevels, OctaveWatch } from './octave-watch.ts';
 import { type ChosenOnset, chooseOnsets, StrongOnsets } from './onset-choice.ts';
 import { OnsetGroups } from './onset-groups.ts';
 import type { OnsetFound } from './onset-search.ts';
+import { plainOctaves } from './plain-octaves.ts';
 import { SampleRing } from './sample-ring.ts';
 import { SureRate } from './sure-rate.ts';
 
@@ -65,7 +66,7 @@ export class BurstFinder {
     this.#strong = new StrongOnsets(settings.longestBurstS * sampleRateHz);
     this.#sure = new SureRate(settings.sureMemoryS, settings.sureRateHz, sampleRateHz);
     const burstS = settings.longestBurstS + 2 * LEAD_S;
-    this.#tree = this.#openTree(burstS);
+    this.#tree = this.#openTree(burstS, arithmetic);
     this.#watches = this.#openWatches();
     const { blockSamples } = this.#tree;
     this.#block = new Float32Array(blockSamples);
@@ -115,9 +116,9 @@ export class BurstFinder {
     return this.#expectedByChance;
   }
 
-  #openTree(heldS: number): OctaveTree {
+  #openTree(heldS: number, arithmetic: OctaveArithmetic): OctaveTree {
     return new OctaveTree({
-      arithmetic: this.#arithmetic,
+      arithmetic,
       sampleRateHz: this.#sampleRateHz,
       octaves: this.#octaves,
       blockSamples: detectorBlockSamples(this.#sampleRateHz, this.#settings),
@@ -147,7 +148,8 @@ export class BurstFinder {
   #begin(): void {
     const head = (this.#head ?? new Float32Array(0)).subarray(0, this.#headCount);
     this.#head = null;
-    const tree = this.#openTree(0);
+    // Needed for half a second only: arrays of another engine may be held until it is closed.
+    const tree = this.#openTree(0, plainOctaves);
     const block = new Float32Array(tree.blockSamples);
     for (let at = 0; at < head.length; at += block.length) {
       const held = Math.min(block.length, head.length - at);
