@@ -1,11 +1,7 @@
-import { setFlagsFromString } from 'node:v8';
 import { prepareServer } from './prepare.mjs';
 import { runCommand } from './terminal.mjs';
 
-// What is measured lies in large arrays; small objects are collected early, so that they take no memory.
-setFlagsFromString('--max-semi-space-size=2');
-setFlagsFromString('--optimize-for-size');
-
+// The flags of the script in package.json keep the heap small: what is measured lies in large arrays outside of it.
 await runCommand(async () => {
   await prepareServer();
   const built = new URL('../../dist/server/setup/measure/measure-files.js', import.meta.url).href;

@@ -1,5 +1,6 @@
-import { rmSync } from 'node:fs';
+import { readFileSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
+import { z } from 'zod';
 import type { Bench } from './bench.ts';
 import { compiledFile, projectRoot } from './places.ts';
 import { runNode, type ProgramResult } from './programs.ts';
@@ -19,7 +20,19 @@ export function runMeasure(
 ): Promise<ProgramResult> {
   rmSync(viewsDir, { recursive: true, force: true });
   const command = join(projectRoot, 'server/setup/measure.mjs');
-  return runNode(bench, command, ['--workers', String(workers), '--views', viewsDir, path]);
+  return runNode(bench, command, ['--workers', String(workers), '--views', viewsDir, path], {
+    nodeArguments: flagsOfScript(),
+  });
+}
+
+const packageSchema = z.object({ scripts: z.object({ measure: z.string() }) });
+
+/** What the script of the command gives Node.js. */
+function flagsOfScript(): string[] {
+  const { scripts } = packageSchema.parse(
+    JSON.parse(readFileSync(join(projectRoot, 'package.json'), 'utf8')),
+  );
+  return scripts.measure.split(' ').filter((word) => word.startsWith('--'));
 }
 
 /** The same measurement without the search for candidates. */
