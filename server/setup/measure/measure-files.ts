@@ -14,9 +14,10 @@ import { planSegments } from '../../measuring/segment-plan.ts';
 import { nonFiniteRefusal } from '../../signal/non-finite.ts';
 import { writeJsonRefusal, writeJsonReport, writerTo } from './json-report.ts';
 import { openAudio } from './open-audio.ts';
-import { readOptions, USAGE, UsageError, type MeasureOptions } from './options.ts';
+import { readOptions, USAGE, type MeasureOptions } from './options.ts';
 import { progressLine } from './progress-line.ts';
 import { textReport } from './text-report.ts';
+import { UsageError } from './usage-error.ts';
 
 export interface MeasureCommand {
   argumentList: string[];
@@ -69,7 +70,7 @@ class Measuring {
   }
 
   async #measure({ name, path }: MeasureOptions['files'][number]): Promise<void> {
-    const { filePath, header, close } = await openAudio(path);
+    const { filePath, header, close } = await openAudio(path, this.#options.layout);
     const kept = this.#options.viewsDir;
     const folder = kept ?? (await mkdtemp(join(tmpdir(), 'recalesce-measure-')));
     const viewsDir = join(folder, basename(path));

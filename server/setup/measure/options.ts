@@ -2,7 +2,10 @@ import { availableParallelism } from 'node:os';
 import { resolve } from 'node:path';
 import { parseArgs } from 'node:util';
 import { z } from 'zod';
+import type { StoredLayout } from '../../../shared/contract/layouts.ts';
 import type { MeasureContext } from '../../measuring/measure-context.ts';
+import { LAYOUT_USAGE, layoutOptions, readLayout } from './layout-options.ts';
+import { UsageError } from './usage-error.ts';
 
 export interface MeasureOptions {
   files: { name: string; path: string }[];
@@ -11,10 +14,9 @@ export interface MeasureOptions {
   /** Keeps the view files there; a folder of its own for each file is made inside. */
   viewsDir: string | null;
   context: MeasureContext;
+  /** Of every file named; `null` where the files say themselves how their samples lie. */
+  layout: StoredLayout | null;
 }
-
-/** A command line that cannot be followed; the message is a sentence for whoever typed it. */
-export class UsageError extends Error {}
 
 const MOST_WORKERS = 2;
 
@@ -32,6 +34,8 @@ export const USAGE = `Measures recordings and tells what they show.
   --views FOLDER            keeps waveform, pictures, frame table and candidates there
   --help                    this text
 
+${LAYOUT_USAGE}
+
 Exit code 0: all were measured. 1: something else failed. 2: a file was refused, or the command line was.`;
 
 const options = {
@@ -44,6 +48,7 @@ const options = {
   'time-expansion': { type: 'string', default: '1' },
   workers: { type: 'string' },
   views: { type: 'string' },
+  ...layoutOptions,
 } as const;
 
 type Name = keyof typeof options;
@@ -78,6 +83,7 @@ export function readOptions(argumentList: string[], folder: string): MeasureOpti
       Math.min(MOST_WORKERS, availableParallelism()),
     viewsDir: values.views === undefined ? null : resolve(folder, values.views),
     context,
+    layout: readLayout(values, context.fullScaleV),
   };
 }
 

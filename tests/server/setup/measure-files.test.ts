@@ -1,15 +1,14 @@
-import { mkdtemp, readdir, rm, writeFile } from 'node:fs/promises';
+import { readdir } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { PassThrough } from 'node:stream';
-import { text } from 'node:stream/consumers';
-import { describe, expect, it, onTestFinished } from 'vitest';
+import { describe, expect, it } from 'vitest';
 import { detectedCandidateSchema, measurementSummarySchema } from '../../../shared/contract/measurement.ts';
-import { measureFiles } from '../../../server/setup/measure/measure-files.ts';
-import { readOptions, UsageError } from '../../../server/setup/measure/options.ts';
+import { readOptions } from '../../../server/setup/measure/options.ts';
+import { UsageError } from '../../../server/setup/measure/usage-error.ts';
 import { fixtureBytes } from '../../support/wav/format-fixtures.ts';
 import { dampedSines, lowPass, mix, whiteNoiseSignal } from '../../support/wav/signals.ts';
 import { writeWav } from '../../support/wav/write-wav.ts';
+import { folderWith, run } from './measure-command.ts';
 
 const RATE_HZ = 192_000;
 
@@ -18,25 +17,6 @@ function clickRecording(): Uint8Array {
   const burst = { onsetSample: RATE_HZ, amplitude: 0.05, frequencyHz: 40_000, decayS: 0.0002 };
   const samples = mix(whiteNoiseSignal(frames, 0.001, 5), dampedSines(frames, [burst], RATE_HZ));
   return writeWav({ sampleRateHz: RATE_HZ, bitsPerSample: 24, channels: [samples] });
-}
-
-async function folderWith(files: Record<string, Uint8Array | string>): Promise<string> {
-  const folder = await mkdtemp(join(tmpdir(), 'recalesce-command-'));
-  onTestFinished(() => rm(folder, { recursive: true, force: true }));
-  for (const [name, bytes] of Object.entries(files)) await writeFile(join(folder, name), bytes);
-  return folder;
-}
-
-async function run(folder: string, ...argumentList: string[]) {
-  const output = new PassThrough();
-  const errors = Object.assign(new PassThrough(), { isTTY: false }) as unknown as NodeJS.WriteStream &
-    PassThrough;
-  const written = Promise.all([text(output), text(errors)]);
-  const exitCode = await measureFiles({ argumentList, folder, output, errors });
-  output.end();
-  errors.end();
-  const [out, err] = await written;
-  return { exitCode, out, err };
 }
 
 describe('the measure command', () => {
