@@ -1,4 +1,4 @@
-import { splitWordIn } from '../../shared/contract/release-snapshot.ts';
+import { splitWordIn } from '../../shared/domain/split-word.ts';
 
 const maximumSegmentBytes = 100;
 const safeSegment = /^[A-Za-z0-9_][A-Za-z0-9._-]*$/;

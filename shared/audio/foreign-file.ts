@@ -1,7 +1,7 @@
 import { asciiText } from '../lib/byte-text.ts';
 import { RefusedFileError, type FileRefusal } from './refused-file-error.ts';
 
-type Mark = { at: number; bytes: string; name: string; kind: 'lossy' | 'audio' | 'video' | 'other' };
+type Mark = { at: number; bytes: string; name: string; kind: 'lossy' | 'audio' | 'film' | 'video' | 'other' };
 
 /** First bytes of files that are often mistaken for a recording; `bytes` are Latin-1 characters at `at`. */
 const MARKS: Mark[] = [
@@ -13,10 +13,11 @@ const MARKS: Mark[] = [
   { at: 0, bytes: 'riff\x2e\x91\xcf\x11', name: 'a Wave64 file', kind: 'audio' },
   { at: 0, bytes: 'MThd', name: 'a MIDI file', kind: 'other' },
   { at: 4, bytes: 'ftypM4A', name: 'an M4A file', kind: 'lossy' },
-  { at: 4, bytes: 'ftypqt', name: 'a QuickTime film', kind: 'video' },
-  { at: 4, bytes: 'ftyp', name: 'an MP4 film', kind: 'video' },
-  { at: 4, bytes: 'moov', name: 'a QuickTime film', kind: 'video' },
-  { at: 4, bytes: 'mdat', name: 'a QuickTime film', kind: 'video' },
+  { at: 4, bytes: 'ftypqt', name: 'a QuickTime film', kind: 'film' },
+  { at: 4, bytes: 'ftyp', name: 'an MP4 film', kind: 'film' },
+  { at: 4, bytes: 'moov', name: 'a QuickTime film', kind: 'film' },
+  { at: 4, bytes: 'mdat', name: 'a QuickTime film', kind: 'film' },
+  { at: 4, bytes: 'wide', name: 'a QuickTime film', kind: 'film' },
   { at: 0, bytes: '\x1a\x45\xdf\xa3', name: 'a Matroska or WebM film', kind: 'video' },
   { at: 0, bytes: '\x30\x26\xb2\x75', name: 'a Windows Media file', kind: 'lossy' },
   { at: 0, bytes: '\x89PNG', name: 'a PNG picture', kind: 'other' },
@@ -47,6 +48,7 @@ const ADVICE = {
   lossy:
     'Lossy compression has removed what lies above about 16 to 20 kHz, so it cannot be measured: bring in the file from the recorder.',
   audio: 'Save it as WAV or FLAC with the same rate and width.',
+  film: 'The page for bringing in takes its sound out; elsewhere, take it out first as uncompressed WAV.',
   video: 'Take the sound track out as uncompressed WAV.',
   other: 'WAV and FLAC files can be brought in, and samples whose layout is declared.',
 };
@@ -80,9 +82,16 @@ function textRefusal(head: Uint8Array): RefusedFileError {
   );
 }
 
+const codes: Record<Mark['kind'], FileRefusal> = {
+  lossy: 'other-audio',
+  audio: 'other-audio',
+  film: 'film',
+  video: 'other-audio',
+  other: 'not-audio',
+};
+
 function refusal(name: string, kind: Mark['kind']): RefusedFileError {
-  const code: FileRefusal = kind === 'other' ? 'not-audio' : 'other-audio';
-  return new RefusedFileError(code, `This is ${name}. ${ADVICE[kind]}`);
+  return new RefusedFileError(codes[kind], `This is ${name}. ${ADVICE[kind]}`);
 }
 
 function hasMark(head: Uint8Array, mark: Mark): boolean {

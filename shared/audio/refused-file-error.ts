@@ -2,6 +2,8 @@ export type FileRefusal =
   | 'empty'
   | 'not-audio'
   | 'other-audio'
+  /** MP4 or QuickTime: a browser can take its sound out. */
+  | 'film'
   | 'big-endian'
   | 'no-format'
   | 'broken-format'
@@ -25,8 +27,8 @@ export type FileRefusal =
 export class RefusedFileError extends Error {
   readonly code: FileRefusal;
 
-  constructor(code: FileRefusal, message: string) {
-    super(message);
+  constructor(code: FileRefusal, message: string, options?: ErrorOptions) {
+    super(message, options);
     this.name = 'RefusedFileError';
     this.code = code;
   }

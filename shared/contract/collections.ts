@@ -3,7 +3,7 @@ import { idSchema, instantSchema, revisionSchema } from './ids.ts';
 import { licenceSchema } from './licence.ts';
 import { pageSchema, pageQuerySchema } from './page.ts';
 import { recordingListItemSchema } from './recordings.ts';
-import { splitWordIn } from './release-snapshot.ts';
+import { splitWordIn } from '../domain/split-word.ts';
 import { creditSchema } from './runs.ts';
 
 export const saveCollectionSchema = z.object({

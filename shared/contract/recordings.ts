@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { cameraOriginSchema } from './camera.ts';
 import { idSchema, instantSchema, revisionSchema, sha256Schema } from './ids.ts';
 import { storedLayoutSchema } from './layouts.ts';
 import { licenceSchema } from './licence.ts';
@@ -113,6 +114,8 @@ export const recordingSchema = recordingListItemSchema.extend({
   captures: z.object({ segments: z.number().int(), liveTimeNs: z.number().int().nullable() }).nullable(),
   /** As it was declared, where the file itself does not say how its samples lie. */
   layout: storedLayoutSchema.nullable(),
+  /** The film it was taken out of; `null` where it came in as a file of sound. */
+  camera: cameraOriginSchema.nullable(),
   /** `null` until measured; where the person works blind, without verdict, counts, rates, active spans and ultrasonic course. */
   measurement: toldMeasurementSchema.nullable(),
   failure: z.string().nullable(),

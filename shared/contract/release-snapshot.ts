@@ -1,5 +1,7 @@
 import { z } from 'zod';
 import { FILE_KINDS } from '../audio/file-kind.ts';
+import { splitWordIn } from '../domain/split-word.ts';
+import { cameraOriginSchema } from './camera.ts';
 import { eventOriginSchema } from './events.ts';
 import { sha256Schema } from './ids.ts';
 import { storedLayoutSchema } from './layouts.ts';
@@ -20,31 +22,6 @@ const key = z.string().regex(/^[A-Za-z0-9](?:[A-Za-z0-9-]{0,62}[A-Za-z0-9])?$/);
 const sample = z.number().int().min(0).max(Number.MAX_SAFE_INTEGER);
 const knownNumber = z.number().nullable();
 const knownText = z.string().nullable();
-
-/** Loaders of data sets read these words in folder and file names as names of splits. */
-const splitWords = new Set([
-  'train',
-  'training',
-  'test',
-  'testing',
-  'tests',
-  'valid',
-  'validation',
-  'val',
-  'dev',
-  'eval',
-  'evaluation',
-]);
-
-/** The first word of a name that a loader would take for a split; `null` where there is none. */
-export function splitWordIn(name: string): string | null {
-  return (
-    name
-      .toLowerCase()
-      .split(/[^a-z]+/)
-      .find((word) => splitWords.has(word)) ?? null
-  );
-}
 
 const slug = z
   .string()
@@ -146,6 +123,8 @@ export const snapshotRecordingSchema = z
     format: audioFormatSchema.omit({ warnings: true }),
     /** How the samples lie, where the file does not say it itself. */
     layout: storedLayoutSchema.nullable().default(null),
+    /** The film it was taken out of, without the name of the film. */
+    camera: cameraOriginSchema.omit({ fileName: true }).nullable().default(null),
     /** Samples per second of the sound itself: the header's rate times the declared time expansion. */
     sampleRateHz: z.number().positive(),
     timeExpansion: z.number().min(1),

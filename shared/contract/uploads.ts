@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { idSchema, instantSchema, sha256Schema } from './ids.ts';
+import { cameraOriginSchema } from './camera.ts';
 import { declaredLayoutSchema } from './layouts.ts';
 import { licenceSchema } from './licence.ts';
 import { recordingSchema, sensitivitySchema } from './recordings.ts';
@@ -19,6 +20,8 @@ export const declarationSchema = z.object({
   note: z.string().trim().max(2000).default(''),
   /** How the samples lie, for a file that does not say it itself. */
   layout: declaredLayoutSchema.nullable().default(null),
+  /** Of a WAV file that was taken out of a film. */
+  camera: cameraOriginSchema.nullable().default(null),
 });
 export type Declaration = z.infer<typeof declarationSchema>;
 

@@ -1,4 +1,5 @@
 import { index, integer, real, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
+import type { CameraOrigin } from '../../../shared/contract/camera.ts';
 import type { StoredLayout } from '../../../shared/contract/layouts.ts';
 import type { Licence } from '../../../shared/contract/licence.ts';
 import type { AudioFormat } from '../../../shared/contract/measurement.ts';
@@ -38,6 +39,8 @@ export const recordings = sqliteTable(
     timeExpansion: real().notNull().default(1),
     /** How the samples lie, where the file itself does not say. */
     layout: text({ mode: 'json' }).$type<StoredLayout>(),
+    /** The film it was taken out of. */
+    camera: text({ mode: 'json' }).$type<CameraOrigin>(),
     /** How long a trigger would have been answered; `null` where the recording is continuous, or nobody said. */
     liveTimeNs: integer(),
     processing: text().$type<Processing>().notNull(),

@@ -1,4 +1,5 @@
 import { index, integer, real, sqliteTable, text } from 'drizzle-orm/sqlite-core';
+import type { CameraOrigin } from '../../../shared/contract/camera.ts';
 import type { DeclaredLayout } from '../../../shared/contract/layouts.ts';
 import type { Licence } from '../../../shared/contract/licence.ts';
 import type { Sensitivity } from '../../../shared/contract/recordings.ts';
@@ -35,6 +36,8 @@ export const uploads = sqliteTable(
     timeExpansion: real().notNull(),
     /** Told with a file that says nothing of its samples itself. */
     layout: text({ mode: 'json' }).$type<DeclaredLayout>(),
+    /** The film it was taken out of. */
+    camera: text({ mode: 'json' }).$type<CameraOrigin>(),
     state: text().$type<UploadState>().notNull(),
     /** Name of the byte stream in the folder of unfinished uploads; set when the first byte is announced. */
     streamId: text(),

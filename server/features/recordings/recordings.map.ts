@@ -54,6 +54,7 @@ export function toRecording(view: RecordingView, standing: Standing): Recording 
     timeExpansion,
     format,
     layout,
+    camera,
     failure,
     revision,
   } = recording;
@@ -61,7 +62,7 @@ export function toRecording(view: RecordingView, standing: Standing): Recording 
   return {
     ...toListItem(view, blind),
     ...{ setupId, sha256, licence, sensitivity, note, runOffsetNs, timeExpansion, format, layout },
-    ...{ failure, revision },
+    ...{ camera, failure, revision },
     setupName: setup.name,
     fullScaleV: setup.fullScaleV,
     preampGainDb: setup.preampGainDb,

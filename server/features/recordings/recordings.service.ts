@@ -44,7 +44,7 @@ export type NewRecording = Pick<
   RecordingRow,
   | ('id' | 'runId' | 'labId' | 'setupId' | 'uploadedById' | 'fileName' | 'sizeBytes' | 'sha256' | 'format')
   | ('licence' | 'sensitivity' | 'note' | 'runOffsetNs' | 'timeExpansion' | 'layout')
-  | 'liveTimeNs'
+  | ('liveTimeNs' | 'camera')
 >;
 export type NewSegment = Omit<SegmentRow, 'id' | 'recordingId'>;
 export type NewFinding = Pick<FindingRow, 'kind' | 'sentence' | 'place'>;

@@ -1,4 +1,5 @@
 import { FILE_KINDS } from '../../../shared/audio/file-kind.ts';
+import type { CameraOrigin } from '../../../shared/contract/camera.ts';
 import type {
   SnapshotEvent,
   SnapshotMark,
@@ -28,11 +29,17 @@ export function toSnapshotRecording(facts: MemberFacts, measured: Measured): Sna
     fileName: `${id}.${FILE_KINDS[recording.format.container].extension}`,
     format: { ...format, sampleRateHz: Math.round(format.sampleRateHz / timeExpansion) },
     layout: recording.layout,
+    camera: recording.camera && toSnapshotCamera(recording.camera),
     sampleRateHz: format.sampleRateHz,
     sensor: toSnapshotSensor(sensor),
     setup: toSnapshotSetup(setup),
     measured: toSnapshotMeasured(measured),
   };
+}
+
+/** What a film was called can name people and places, as the names of uploaded files can. */
+function toSnapshotCamera({ fileName: _fileName, ...camera }: CameraOrigin): SnapshotRecording['camera'] {
+  return camera;
 }
 
 function toSnapshotSensor({ name, kind, model, lowHz, highHz, sensitivity }: MemberFacts['sensor']) {

@@ -22,13 +22,13 @@ function toValue(name: string, values: string[]): unknown {
       .map((part) => part.trim())
       .filter(Boolean);
   if (values.length > 1) return values;
-  if (name === 'layout') return toLayout(first);
+  if (name === 'layout' || name === 'camera') return toParts(first);
   if (name === 'runOffsetNs' || name === 'timeExpansion') return toNumber(first);
   return first;
 }
 
-/** A layout has parts: it comes as JSON. What is none is told by the schema. */
-function toLayout(text: string): unknown {
+/** What has parts comes as JSON. What is none is told by the schema. */
+function toParts(text: string): unknown {
   if (text.trim() === '') return undefined;
   try {
     return JSON.parse(text);

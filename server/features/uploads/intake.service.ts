@@ -2,6 +2,7 @@ import { link, rm } from 'node:fs/promises';
 import type { Declaration } from '../../../shared/contract/uploads.ts';
 import type { StoredLayout } from '../../../shared/contract/layouts.ts';
 import type { AudioFormat } from '../../../shared/contract/measurement.ts';
+import { FILE_KINDS } from '../../../shared/audio/file-kind.ts';
 import { personalMetadata } from '../../../shared/audio/personal-metadata.ts';
 import { readRecordingFile, type RecordingFile } from '../../../shared/audio/recording-file.ts';
 import { RefusedFileError } from '../../../shared/audio/refused-file-error.ts';
@@ -22,8 +23,9 @@ type Parts = Pick<Ground, 'db' | 'ids' | 'store' | 'activity'> & {
 };
 
 /** Bytes that have arrived whole, and what was declared with them. */
-export interface Arrival extends Omit<Declaration, 'layout'> {
+export interface Arrival extends Omit<Declaration, 'layout' | 'camera'> {
   layout?: Declaration['layout'];
+  camera?: Declaration['camera'];
   path: string;
   fileName: string;
   sizeBytes: number;
@@ -48,6 +50,7 @@ export function createIntakeService({ db, ids, store, activity, recordings, sens
     const setup = sensors.requireSetupOfLab(db, arrival.setupId, arrival.run.labId);
     const layout = toStoredLayout(arrival.layout ?? null, setup.fullScaleV);
     const file = await readFile(arrival.path, layout);
+    requireTakenOut(arrival.camera ?? null, file);
     const format = toTrueFormat(file.format, arrival.timeExpansion);
     const sha256 = await hashFile(arrival.path);
     requireAnnounced(arrival.sha256, sha256);
@@ -76,6 +79,7 @@ export function createIntakeService({ db, ids, store, activity, recordings, sens
         timeExpansion,
         layout,
         liveTimeNs: file.captures?.liveTimeNs ?? null,
+        camera: arrival.camera ?? null,
       };
       const findings = [...declaredFindings(declared.sensitivity), ...foundIn(file)];
       const parts = { findings, segments: segmentsOf(file, runOffsetNs) };
@@ -125,6 +129,13 @@ async function readFile(path: string, layout: StoredLayout | null): Promise<Reco
       throw new ProblemError('file-refused', error.message, { cause: error });
     throw error;
   }
+}
+
+/** What is taken out of a film is a WAV file: nothing else can have come from one. */
+function requireTakenOut(camera: Declaration['camera'], { format }: RecordingFile): void {
+  if (camera === null || FILE_KINDS[format.container].extension === 'wav') return;
+  const detail = 'It is declared that this sound was taken out of a film, but it is no WAV file.';
+  throw new ProblemError('file-refused', detail);
 }
 
 /** The rate from here on is that of the sound itself. */

@@ -8,7 +8,7 @@ import type { RunsService } from '../runs/runs.service.ts';
 import type { SensorsService } from '../sensors/sensors.service.ts';
 import type { IntakeService } from './intake.service.ts';
 import type { UploadFolder } from './upload-folder.ts';
-import { plainFileName } from './uploads.map.ts';
+import { plainCamera, plainFileName } from './uploads.map.ts';
 
 type Parts = Pick<Ground, 'db' | 'ids'> & {
   runs: RunsService;
@@ -54,6 +54,7 @@ export function createSingleRequestService({ db, ids, runs, sensors, recordings,
       sizeBytes,
       sha256,
       fileName: plainFileName(file.fileName),
+      camera: plainCamera(declaration.camera),
     };
     const recordingId = await intake.bringIn({ ...declaration, ...facts }, () => undefined);
     return recordings.get(actor, recordingId);

@@ -1,3 +1,4 @@
+import type { CameraOrigin } from '../../../shared/contract/camera.ts';
 import type { CreateUpload, Upload } from '../../../shared/contract/uploads.ts';
 import { toInstant } from '../../services/clock.ts';
 import type { UploadView } from './uploads.queries.ts';
@@ -12,7 +13,11 @@ export function toUpload({ upload, runTitle }: UploadView, receivedBytes: number
 }
 
 export function toUploadValues(input: CreateUpload) {
-  return { ...input, fileName: plainFileName(input.fileName) };
+  return { ...input, fileName: plainFileName(input.fileName), camera: plainCamera(input.camera) };
+}
+
+export function plainCamera(camera: CameraOrigin | null): CameraOrigin | null {
+  return camera && { ...camera, fileName: plainFileName(camera.fileName) };
 }
 
 /** Names are data, never paths: only the last part is kept, without characters that no file name shows. */

@@ -4,6 +4,7 @@ import type { ReleaseSnapshot, SnapshotRecording } from '../../../shared/contrac
 import { secondsText } from '../cells.ts';
 import type { Column, TableDefinition } from '../table.ts';
 import { audioPath } from './audio-path.ts';
+import { cameraColumns } from './camera-columns.ts';
 import { listeningColumns, measuredColumns } from './recording-columns.ts';
 
 type RecordingColumn = Column<SnapshotRecording>;
@@ -169,7 +170,7 @@ export function recordingsTable(snapshot: ReleaseSnapshot): TableDefinition<Snap
       'One row per recording: file, format, sensor and set-up, and what was measured over the whole.',
     primaryKey: ['file_name'],
     foreignKeys: [{ field: 'run_id', table: 'runs', targetField: 'run_id' }],
-    columns: [...identity, ...format, ...listeningColumns, ...measuredColumns],
+    columns: [...identity, ...format, ...cameraColumns, ...listeningColumns, ...measuredColumns],
     rows: snapshot.recordings,
     orderBy: (row) => [audioPath(row)],
   };

@@ -1,4 +1,4 @@
-import { splitWordIn } from '@shared/contract/release-snapshot.ts';
+import { splitWordIn } from '@shared/domain/split-word.ts';
 
 const longestSlug = 60;
 

@@ -1,5 +1,7 @@
+import { CAMERA_CODECS } from '@shared/audio/camera-codec.ts';
 import type { Recording, Sensitivity } from '@shared/contract/recordings.ts';
 import type { Fact } from '@/components/app/fact.ts';
+import { cameraFacts } from '@/components/recordings/camera-words.ts';
 import { formatOfFile, lengthAndSize } from '@/components/recordings/format-words.ts';
 import { sensorKindWords } from '@/components/recordings/recording-words.ts';
 import { formatBand, formatChain } from '@/components/sensors/sensor-words.ts';
@@ -16,9 +18,19 @@ import {
 
 /** What the file is and how it was recorded. */
 export function fileFacts(recording: Recording): Fact[] {
-  const { format, measurement, timeExpansion, runOffsetNs } = recording;
+  const { format, measurement, timeExpansion, runOffsetNs, camera } = recording;
   return [
     { key: 'format', term: 'Format', value: formatOfFile(format) },
+    ...(camera && CAMERA_CODECS[camera.codec].isLossy
+      ? [
+          {
+            key: 'lossy',
+            term: 'Compressed with loss before',
+            value: CAMERA_CODECS[camera.codec].name,
+            isGlowing: true,
+          },
+        ]
+      : []),
     { key: 'rate', term: 'Sample rate', value: formatSampleRate(recording.sampleRateHz) },
     { key: 'length', term: 'Length', value: lengthAndSize(recording.durationS, recording.sizeBytes) },
     ...capturesOf(recording),
@@ -59,8 +71,9 @@ function sensorOf({ sensorName, sensorKind }: Recording): string {
 
 /** Who brought it in, when, and what others may do with it. */
 export function provenanceFacts(recording: Recording): Fact[] {
-  const { measurement, sensitivity } = recording;
+  const { measurement, sensitivity, camera } = recording;
   return [
+    ...(camera ? cameraFacts(camera) : []),
     { key: 'by', term: 'Brought in by', value: recording.uploadedByName ?? 'not told', isWords: true },
     {
       key: 'at',

@@ -4,7 +4,7 @@ import { secondsLeft } from '@/composables/uploads/transfer-rate.ts';
 import { formatBytes, formatDuration, formatShare } from '@/composables/useFormat.ts';
 
 export const stageWords: Readonly<Record<UploadStage, string>> = {
-  reading: 'header is being read',
+  reading: 'is being read',
   undeclared: 'needs its layout',
   refused: 'cannot be brought in',
   ready: 'ready to be sent',

@@ -7,7 +7,7 @@ const nsPerSecond = 1e9;
 
 /** The declaration as a form holds it, for all files at once: the place on the clock of the run in seconds. */
 export const declarationFormSchema = declarationSchema
-  .omit({ runOffsetNs: true, layout: true })
+  .omit({ runOffsetNs: true, layout: true, camera: true })
   .extend({ runOffsetS: z.number().min(-1e6).max(1e6).nullable() })
   .transform(({ runOffsetS, ...declared }) => ({
     ...declared,

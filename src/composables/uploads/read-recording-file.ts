@@ -5,6 +5,7 @@ import type { PersonalFinding } from '@shared/audio/personal-metadata.ts';
 import { readRecordingFile as readFacts } from '@shared/audio/recording-file.ts';
 import { RefusedFileError } from '@shared/audio/refused-file-error.ts';
 import type { FileRefusal } from '@shared/audio/refused-file-error.ts';
+import type { CameraOrigin } from '@shared/contract/camera.ts';
 import type { DeclaredLayout } from '@shared/contract/layouts.ts';
 
 /** What a file's header tells before a byte of it is sent. */
@@ -12,6 +13,8 @@ export interface FileReading {
   format: AudioFormat;
   /** Fields that could name a person or a place. */
   findings: PersonalFinding[];
+  /** The film it was taken out of. */
+  camera?: CameraOrigin;
 }
 
 /** What a file could be once it is declared how its samples lie, and of a text how it begins. */
@@ -20,7 +23,13 @@ export interface Undeclared {
   firstLines: string[];
 }
 
-export type ReadOutcome = { reading: FileReading } | { refusal: string; undeclared: Undeclared | null };
+export type ReadOutcome =
+  | {
+      reading: FileReading;
+      /** What is sent in place of the chosen file. */
+      takenOut?: File;
+    }
+  | { refusal: string; undeclared: Undeclared | null };
 
 const declarableKinds: Readonly<Partial<Record<FileRefusal, DeclaredLayout['kind']>>> = {
   text: 'CSV',

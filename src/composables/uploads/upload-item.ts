@@ -24,7 +24,7 @@ export type UploadStage =
   | 'missing';
 
 /** What is declared of all files that are sent together. */
-export type UploadTarget = Omit<Declaration, 'layout'> & { runId: string };
+export type UploadTarget = Omit<Declaration, 'layout' | 'camera'> & { runId: string };
 
 export interface UploadItem {
   key: string;
@@ -91,10 +91,11 @@ export function isDone(item: Pick<UploadItem, 'stage'>): boolean {
   return doneStages.has(item.stage);
 }
 
-/** The same file, as far as can be told without reading all of it: by name and size. */
+/** The same file, or the film it was taken out of, as far as can be told without reading all of it: by name and size. */
 export function isSameFile(
-  item: Pick<UploadItem, 'fileName' | 'sizeBytes'>,
+  item: Pick<UploadItem, 'fileName' | 'sizeBytes' | 'reading'>,
   file: Pick<File, 'name' | 'size'>,
 ): boolean {
-  return item.fileName === file.name && item.sizeBytes === file.size;
+  const chosen = item.reading?.camera ?? item;
+  return chosen.fileName === file.name && chosen.sizeBytes === file.size;
 }

@@ -5,7 +5,7 @@ import type { DeclaredLayout } from '@shared/contract/layouts.ts';
 import type { CreateUpload, Upload } from '@shared/contract/uploads.ts';
 import type { ByteTransfer, ByteTransferOptions } from '@/api/upload-bytes.ts';
 import type { Hashing } from '@/composables/uploads/hash-file.ts';
-import type { ReadOutcome } from '@/composables/uploads/read-recording-file.ts';
+import type { FileReading, ReadOutcome } from '@/composables/uploads/read-recording-file.ts';
 import { createTransferRate } from '@/composables/uploads/transfer-rate.ts';
 import { failureOf, failureOfError } from '@/composables/uploads/upload-failure.ts';
 import { isSameFile, newUploadItem } from '@/composables/uploads/upload-item.ts';
@@ -21,6 +21,8 @@ export interface UploadGateway {
   cancel: (uploadId: string) => Promise<void>;
   nowMs: () => number;
 }
+
+type ReadFile = Extract<ReadOutcome, { reading: FileReading }>;
 
 interface Work {
   file: File;
@@ -62,9 +64,21 @@ export function createUploadQueue(gateway: UploadGateway) {
     works.set(item.key, { file });
     const outcome = await gateway.read(file);
     if (item.stage !== 'reading') return;
-    if ('reading' in outcome) return void Object.assign(item, { stage: 'ready', reading: outcome.reading });
+    if ('reading' in outcome) return makeReady(item, outcome);
     const { refusal: message, undeclared } = outcome;
     Object.assign(item, { stage: undeclared ? 'undeclared' : 'refused', message, undeclared });
+  }
+
+  /** What was taken out of a film goes in its place, and goes on where it was interrupted. */
+  function makeReady(item: UploadItem, { reading, takenOut }: ReadFile): void {
+    if (takenOut === undefined) return void Object.assign(item, { stage: 'ready', reading });
+    const { name: fileName, size: sizeBytes } = takenOut;
+    const missing = items.find((other) => other.stage === 'missing' && isSameFile(other, takenOut));
+    if (missing) remove(item.key);
+    works.set((missing ?? item).key, { file: takenOut });
+    if (!missing) return void Object.assign(item, { stage: 'ready', reading, fileName, sizeBytes });
+    Object.assign(missing, { stage: 'waiting', reading });
+    pump();
   }
 
   /** Reads a file by the layout that was declared of it; where the two do not fit, it stays undeclared and says why. */
@@ -127,9 +141,9 @@ export function createUploadQueue(gateway: UploadGateway) {
     work.transfer.start();
   }
 
-  async function announce({ fileName, sizeBytes, target, layout }: UploadItem): Promise<string> {
+  async function announce({ fileName, sizeBytes, target, layout, reading }: UploadItem): Promise<string> {
     if (!target) throw new Error('An upload needs its declaration.');
-    return gateway.create({ ...target, fileName, sizeBytes, layout });
+    return gateway.create({ ...target, fileName, sizeBytes, layout, camera: reading?.camera ?? null });
   }
 
   function transferOf(item: UploadItem, work: Work, isResumed: boolean): ByteTransfer {

@@ -5,7 +5,7 @@ import { transferBytes } from '@/api/upload-bytes.ts';
 import { useActivity } from '@/composables/useActivity.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 import { hashFile } from '@/composables/uploads/hash-file.ts';
-import { readRecordingFile } from '@/composables/uploads/read-recording-file.ts';
+import { readChosenFile } from '@/composables/uploads/read-chosen-file.ts';
 import { uploadNews } from '@/composables/uploads/upload-news.ts';
 import { isInHand } from '@/composables/uploads/upload-item.ts';
 import { createUploadQueue } from '@/composables/uploads/upload-queue.ts';
@@ -18,7 +18,7 @@ export function useUploadQueue() {
   const session = useSessionStore();
   const { announce } = useAnnounce();
   const queue = createUploadQueue({
-    read: readRecordingFile,
+    read: readChosenFile,
     hash: hashFile,
     create: createUpload,
     transfer: transferBytes,

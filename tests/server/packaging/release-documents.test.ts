@@ -148,6 +148,29 @@ describe('the tables', () => {
     );
   });
 
+  it('tell of a recording that was taken out of a film how it was coded and where it begins, not what it was called', () => {
+    const sha256 = 'c'.repeat(64);
+    const film = {
+      sizeBytes: 5000,
+      sha256,
+      container: 'MP4',
+      trackSampleRateHz: 48_000,
+      soundTracks: 1,
+    } as const;
+    const files = documents(({ recordings: [first, second] }) => {
+      Object.assign(first!, { camera: { ...film, codec: 'aac', gaps: 2, soundStartS: -0.25 } });
+      Object.assign(second!, { camera: { ...film, codec: 'pcm', gaps: 0, soundStartS: null } });
+    });
+    const recordings = readTables(files).find((table) => table.name === 'recordings')!;
+    const cells = (column: string) => recordings.rows.map((row) => row[recordings.header.indexOf(column)]);
+    expect(cells('camera_codec')).toEqual(['aac', 'pcm', '']);
+    expect(cells('camera_is_lossy')).toEqual(['true', 'false', '']);
+    expect(cells('camera_sound_start_s')).toEqual(['-0.25', '', '']);
+    expect(cells('camera_gaps')).toEqual(['2', '0', '']);
+    expect(cells('camera_sha256')).toEqual([sha256, sha256, '']);
+    expect(tableFaults(recordings)).toEqual([]);
+  });
+
   it('call a file what it came in as, and tell the layout that a file cannot tell itself', () => {
     const layout = {
       kind: 'raw',

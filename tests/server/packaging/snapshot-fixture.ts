@@ -87,6 +87,7 @@ function recordingRow(index: number, wav: Buffer): SnapshotRecording {
       extensible: false,
     },
     layout: null,
+    camera: null,
     sampleRateHz: 48_000,
     timeExpansion: 1,
     runOffsetNs: index === 0 ? null : 1_500_000_000,

@@ -129,7 +129,7 @@ describe('files that are not what their ending says, or hold coded samples', () 
     ['renamed-caf.wav', 'other-audio', 'a Core Audio file'],
     ['renamed-m4a.wav', 'other-audio', 'an M4A file'],
     ['renamed-mka.wav', 'other-audio', 'a Matroska or WebM film'],
-    ['renamed-mov.wav', 'other-audio', 'a QuickTime film'],
+    ['renamed-mov.wav', 'film', 'a QuickTime film'],
     ['renamed-mp3.wav', 'other-audio', 'an MP3 file'],
     ['renamed-ogg.wav', 'other-audio', 'an Ogg file'],
     ['renamed-png.wav', 'not-audio', 'a PNG picture'],

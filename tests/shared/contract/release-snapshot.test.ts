@@ -1,9 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import {
-  releaseSnapshotSchema,
-  splitWordIn,
-  type ReleaseSnapshot,
-} from '../../../shared/contract/release-snapshot.ts';
+import { releaseSnapshotSchema, type ReleaseSnapshot } from '../../../shared/contract/release-snapshot.ts';
+import { splitWordIn } from '../../../shared/domain/split-word.ts';
 import { makeSnapshot } from '../../server/packaging/snapshot-fixture.ts';
 
 function faultOf(change: (snapshot: ReleaseSnapshot) => void): string {

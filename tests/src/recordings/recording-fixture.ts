@@ -97,6 +97,7 @@ export function recording(part: Partial<Recording> = {}): Recording {
     runOffsetNs: 0,
     timeExpansion: 1,
     layout: null,
+    camera: null,
     captures: null,
     uploadedByName: 'Tomasz Brandvold',
     format,

@@ -1,6 +1,7 @@
 import { flushPromises } from '@vue/test-utils';
 import { beforeEach, describe, expect, it } from 'vitest';
 import type { RawLayout } from '@shared/audio/declared-layout.ts';
+import type { CameraOrigin } from '@shared/contract/camera.ts';
 import type { DeclaredLayout } from '@shared/contract/layouts.ts';
 import type { CreateUpload, Upload } from '@shared/contract/uploads.ts';
 import type { ByteTransferOptions } from '@/api/upload-bytes.ts';
@@ -39,7 +40,24 @@ const layout: RawLayout = {
   headerBytes: 0,
 };
 
+const camera: CameraOrigin = {
+  fileName: 'a.mov',
+  sizeBytes: 1000,
+  sha256: null,
+  container: 'QuickTime',
+  codec: 'aac',
+  trackSampleRateHz: 48_000,
+  soundTracks: 1,
+  gaps: 0,
+  soundStartS: 0,
+};
+
 function outcomeOf(name: string, declared: DeclaredLayout | undefined): ReadOutcome {
+  if (name.endsWith('.mov'))
+    return {
+      reading: { format, findings: [], camera: { ...camera, fileName: name } },
+      takenOut: wav('old.wav'),
+    };
   if (name.endsWith('.mp3')) return { refusal: 'This is an MP3 file.', undeclared: null };
   if (declared?.kind === 'raw' && declared.channels === 3)
     return { refusal: 'It does not fit.', undeclared: null };
@@ -256,6 +274,23 @@ describe('the queue of uploads', () => {
     await flushPromises();
     expect(stages()).toEqual(['sending', 'ready']);
     expect(test.transfers).toHaveLength(1);
+    expect(test.transfers[0]).toMatchObject({ uploadId: 'upload-old', isResumed: true });
+  });
+
+  it('sends the sound of a film in place of the film, and tells the film', async () => {
+    await sendFiles('a.mov');
+    expect(queue.items[0]).toMatchObject({ stage: 'sending', fileName: 'old.wav' });
+    expect(test.created).toMatchObject([{ fileName: 'old.wav', sizeBytes: 1000, camera }]);
+    expect((test.transfers[0]?.file as File).name).toBe('old.wav');
+    await queue.choose([wav('a.mov')]);
+    expect(queue.items).toHaveLength(1);
+  });
+
+  it('goes on with the sound of a film when the film is chosen again', async () => {
+    queue.adopt([openUpload()]);
+    await queue.choose([wav('a.mov')]);
+    await flushPromises();
+    expect(stages()).toEqual(['sending']);
     expect(test.transfers[0]).toMatchObject({ uploadId: 'upload-old', isResumed: true });
   });
 
