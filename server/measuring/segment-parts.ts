@@ -2,7 +2,6 @@ import { readFileSync } from 'node:fs';
 import { access, mkdir, open, readFile, rename, rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { deserialize, serialize } from 'node:v8';
-import { deflateSync, inflateSync } from 'node:zlib';
 import type { LikenessPart } from '../signal/channel-likeness.ts';
 import type { ChannelPair } from '../signal/channel-pairs.ts';
 import type { ChannelPart } from '../signal/channel-pass.ts';
@@ -15,8 +14,6 @@ export interface SegmentPart {
   likeness: LikenessPart;
   detection: DetectionPart;
 }
-
-const FASTEST = { level: 1 };
 
 /** The finished segments of a measurement: a file each, which is there whole or not at all. */
 export class SegmentParts {
@@ -55,7 +52,7 @@ export class SegmentParts {
     const path = this.#partPath(index);
     const file = await open(`${path}.new`, 'w');
     try {
-      await file.writeFile(deflateSync(serialize(part), FASTEST));
+      await file.writeFile(serialize(part));
       await file.sync();
     } finally {
       await file.close();
@@ -64,7 +61,7 @@ export class SegmentParts {
   }
 
   read(index: number): SegmentPart {
-    return deserialize(inflateSync(readFileSync(this.#partPath(index)))) as SegmentPart;
+    return deserialize(readFileSync(this.#partPath(index))) as SegmentPart;
   }
 
   async remove(): Promise<void> {
