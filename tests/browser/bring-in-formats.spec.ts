@@ -1,11 +1,14 @@
 import type { Page } from 'playwright-core';
 import { describe, expect } from 'vitest';
+import { bytesSource } from '../../shared/audio/byte-source.ts';
+import { readWavHeader } from '../../shared/audio/wav-header.ts';
 import { encodeFrames } from '../../server/setup/demo-audio/encode-frames.ts';
 import { checkAxe } from '../support/browser/axe.ts';
 import { choose, openForm } from '../support/browser/bring-in-form.ts';
 import { takeScreenshot } from '../support/browser/screenshot.ts';
 import { signIn } from '../support/browser/sign-in.ts';
 import { test } from '../support/browser/test.ts';
+import { filmBytes } from '../support/film-fixtures.ts';
 import { fixtureBytes } from '../support/wav/format-fixtures.ts';
 import { whiteNoiseSignal } from '../support/wav/signals.ts';
 
@@ -75,5 +78,79 @@ describe('bringing in what is no WAV file', () => {
     await item.getByRole('button', { name: 'Use this layout' }).click();
     await item.getByText('CSV, 64-bit float, 1 channel').waitFor();
     await bringInAndOpen(page, 'capture.csv');
+  });
+});
+
+async function storedAudio(page: Page): Promise<Uint8Array> {
+  const id = new URL(page.url()).pathname.split('/').at(-1);
+  return (await page.request.get(`/api/recordings/${id}/audio`)).body();
+}
+
+async function floatsOf(wav: Uint8Array): Promise<Float32Array> {
+  const { dataOffset, dataBytes } = await readWavHeader(bytesSource(wav));
+  return new Float32Array(Uint8Array.from(wav.subarray(dataOffset, dataOffset + dataBytes)).buffer);
+}
+
+describe('bringing in the film of a camera', () => {
+  const filmFile = (name: string) => ({
+    name,
+    mimeType: name.endsWith('.mov') ? 'video/quicktime' : 'video/mp4',
+    buffer: Buffer.from(filmBytes(name)),
+  });
+  const loadedScripts = (page: Page) =>
+    page.evaluate(() => performance.getEntriesByType('resource').map(({ name }) => name));
+
+  test('uncompressed: its sound alone is sent, with its place on the picture', async ({ page }) => {
+    await signIn(page, 'contributor');
+    await openForm(page);
+    const isReader = (name: string) => name.includes('take-sound-out');
+    expect((await loadedScripts(page)).filter(isReader)).toEqual([]);
+    await choose(page, filmFile('s24.mov'));
+    const item = fileItem(page, 's24.mov');
+    await item.getByText('WAV, 24-bit integer, 2 channels').waitFor();
+    await item.getByText('uncompressed PCM, without loss').waitFor();
+    await item.getByText(/It begins 0\.100\s000\ss after the first picture/).waitFor();
+    expect((await loadedScripts(page)).filter(isReader)).not.toEqual([]);
+    await bringInAndOpen(page, 's24.mov');
+    await page.getByText(/s24\.mov \(QuickTime, /).waitFor();
+    await page.getByText('The film itself is not kept here.').waitFor();
+    expect(await page.getByText('Compressed with loss before').count()).toBe(0);
+    await checkAxe(page);
+  });
+
+  test('AAC: decoded by the browser, and told as compressed with loss', async ({ page }) => {
+    await signIn(page, 'contributor');
+    await openForm(page);
+    await choose(page, filmFile('aac.mp4'));
+    const item = fileItem(page, 'aac.mp4');
+    await item.getByText('WAV, 32-bit float, 2 channels').waitFor();
+    await item.getByText('AAC, compressed with loss').waitFor();
+    await item.getByText('It begins with the first picture').waitFor();
+    await checkAxe(page);
+    await takeScreenshot(page, 'bring-in-film');
+    await bringInAndOpen(page, 'aac.mp4');
+    await page.getByText('Compressed with loss before').waitFor();
+    await page.getByText('AAC leaves out what it takes to be inaudible').waitFor();
+    await takeScreenshot(page, 'recording-of-film');
+    await checkAxe(page);
+    // The samples beside the film are those of ffmpeg (fixtures/camera/make.sh).
+    const ours = await floatsOf(await storedAudio(page));
+    const reference = await floatsOf(filmBytes('aac.mp4.wav'));
+    expect(ours.length).toBe(reference.length);
+    expect(Math.max(...ours.map((value, n) => Math.abs(value - reference[n]!)))).toBeLessThan(1e-5);
+  });
+
+  test('without sound, cut off, or in a codec that cannot be decoded: refused, and told why', async ({
+    page,
+  }) => {
+    await signIn(page, 'contributor');
+    await openForm(page);
+    const cut = { ...filmFile('front.mov'), buffer: Buffer.from(filmBytes('front.mov').slice(0, 5000)) };
+    await choose(page, filmFile('silent.mp4'), filmFile('alac.mov'), cut);
+    await fileItem(page, 'silent.mp4').getByText('This film has no sound track.').waitFor();
+    await fileItem(page, 'alac.mov').getByText('coded as alac, which this browser cannot decode').waitFor();
+    await fileItem(page, 'front.mov').getByText('ends before the film says it does').waitFor();
+    expect(await page.getByText('cannot be brought in', { exact: true }).count()).toBe(3);
+    await checkAxe(page);
   });
 });
