@@ -15,6 +15,7 @@ import { defaultDetectorSettings, detectorVersion } from '../signal/detector-set
 import { CandidateTally, judgeUltrasound, ultrasonicEnergyShare } from '../signal/ultrasound.ts';
 import { observableBand } from '../signal/ultrasound-band.ts';
 import { joinSpans } from '../signal/ultrasound-tracker.ts';
+import type { Joints } from './joints.ts';
 import { LineWriter } from './line-writer.ts';
 import type { MeasureContext } from './measure-context.ts';
 import { edgeSamples, type DetectionPart } from './segment-detection.ts';
@@ -29,6 +30,7 @@ export interface SegmentFindings {
 export interface DetectionJoinInput {
   format: AudioFormat;
   context: MeasureContext;
+  joints: Joints;
   course: CoursePlan;
   shortHop: number;
   results: ChannelResult[];
@@ -44,6 +46,8 @@ export interface DetectionResult {
   candidatesPerStep: Uint32Array;
   activeSpans: ActiveSpan[];
   candidateCount: number;
+  /** Candidates that cannot be told from a jump at a joint. */
+  leftOutAtJoints: number;
 }
 
 /** Makes one list of candidates, and the verdict on what lies above 20 kHz, of what the segments found. */
@@ -56,8 +60,13 @@ export async function joinDetection(input: DetectionJoinInput): Promise<Detectio
   const tally = new CandidateTally(sensorLowHz);
   const candidatesPerStep = new Uint32Array(course.steps);
   const lines = new LineWriter(input.candidatesPath);
+  let leftOutAtJoints = 0;
   try {
     for await (const found of candidatesOf(input)) {
+      if (input.joints.hides(found)) {
+        leftOutAtJoints++;
+        continue;
+      }
       const candidate = band.observable ? found : unjudged(found);
       lines.write(candidate);
       tally.add(candidate);
@@ -86,7 +95,8 @@ export async function joinDetection(input: DetectionJoinInput): Promise<Detectio
     samplesPerStep: course.samplesPerStep,
     ...{ frames, sampleRateHz, expectedByChance },
   });
-  return { ultrasonic, detector, candidatesPerStep, activeSpans, candidateCount: lines.count };
+  const candidateCount = lines.count;
+  return { ultrasonic, detector, candidatesPerStep, activeSpans, candidateCount, leftOutAtJoints };
 }
 
 /** That the floor itself ends below the hearing line is known only after the last sample: then no share means anything. */

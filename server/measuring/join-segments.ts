@@ -32,12 +32,12 @@ export async function joinSegments(input: MeasureInput): Promise<MeasureResult> 
   const parts = new SegmentParts(input.viewsDir);
   const candidatesPath = viewPath(input.viewsDir, 'candidates');
   const { results, pairs, alike, findings } = readParts(plan, parts);
-  const { format, course, layout } = plan;
+  const { format, course, joints, layout } = plan;
   const bandwidth = widestBandwidth(format.sampleRateHz, results);
   const { context } = input;
   const shortHop = layout.plan.short.hop;
   const found = await joinDetection({
-    ...{ format, context, course, shortHop, results, bandwidth, findings },
+    ...{ format, context, joints, course, shortHop, results, bandwidth, findings },
     candidatesPath,
   });
   const summary: MeasurementSummary = {
@@ -61,6 +61,7 @@ export async function joinSegments(input: MeasureInput): Promise<MeasureResult> 
         alike: alike.filter((pair) => !pairs.some((same) => isSamePair(same, pair))),
         bandwidth,
       }),
+      ...joints.findings(found.leftOutAtJoints),
     ],
     bandwidth,
     contents: results.map(({ content }, channel) => ({

@@ -17,7 +17,7 @@ export interface MeasureSteps {
 const stepsHere: MeasureSteps = { atOnce: 1, measureSegment, joinSegments };
 
 /** Changed whenever what a segment leaves for the join changes. */
-const PARTS_VERSION = 3;
+const PARTS_VERSION = 4;
 
 /**
  * Measures a recording, segment by segment, and writes its views.
@@ -76,6 +76,6 @@ async function measureSegments({ input, plan, parts, controls, steps }: Segments
 }
 
 /** Everything that decides what a segment gives: parts made under another description are of no use. */
-function descriptionOf({ header, context }: MeasureInput, { descriptors }: MeasurePlan): string {
-  return JSON.stringify({ version: PARTS_VERSION, detectorVersion, descriptors, header, context });
+function descriptionOf({ header, context, joints }: MeasureInput, { descriptors }: MeasurePlan): string {
+  return JSON.stringify({ version: PARTS_VERSION, detectorVersion, descriptors, header, context, joints });
 }

@@ -1,6 +1,7 @@
 import type { AudioFormat } from '../../shared/contract/measurement.ts';
 import { planCourse, type CoursePlan } from '../signal/course.ts';
 import type { AudioPlace } from './block-reader.ts';
+import { Joints } from './joints.ts';
 import { trueFormat, type MeasureContext } from './measure-context.ts';
 import { planSegments, type Segment } from './segment-plan.ts';
 import { ViewLayout } from './view-layout.ts';
@@ -9,6 +10,8 @@ export interface MeasureInput {
   filePath: string;
   header: AudioPlace & { format: AudioFormat };
   context: MeasureContext;
+  /** First samples of the pieces behind the first, rising, where the recording is made of pieces taken at different times. */
+  joints?: readonly number[];
   /** Gets the view files; made when missing. Rename it when the promise is kept. */
   viewsDir: string;
 }
@@ -19,6 +22,7 @@ export interface MeasurePlan {
   format: AudioFormat;
   layout: ViewLayout;
   course: CoursePlan;
+  joints: Joints;
   segments: Segment[];
   /** Who computes the spectral descriptors of the frames; both are equal. */
   descriptors: 'meyda' | 'engine';
@@ -34,13 +38,15 @@ const MANY_CHANNELS = 8;
 export function describeMeasurement({
   header,
   context,
-}: Pick<MeasureInput, 'header' | 'context'>): MeasurePlan {
+  joints = [],
+}: Pick<MeasureInput, 'header' | 'context' | 'joints'>): MeasurePlan {
   const format = trueFormat(header.format, context.timeExpansion);
   const layout = new ViewLayout(format);
   return {
     format,
     layout,
     course: planCourse(format.frames, layout.plan.short.hop),
+    joints: new Joints(joints, format.sampleRateHz),
     segments: planSegments(format),
     descriptors: layout.plan.long.count * format.channels <= FRAMES_BY_MEYDA ? 'meyda' : 'engine',
     spectrumPoints: format.channels > MANY_CHANNELS ? SPECTRUM_POINTS_MANY_CHANNELS : SPECTRUM_POINTS,

@@ -67,6 +67,7 @@ async function measureWith(
     format: plan.format,
     plan: plan.layout.plan,
     context: input.context,
+    joints: plan.joints,
     segment,
     firstSample: reach.startSample,
     candidatesPath: parts.candidatesPath(segmentIndex),

@@ -2,7 +2,7 @@ import type { AudioFormat, DetectedCandidate } from '../../shared/contract/measu
 import { openKernelOctaves } from '../kernel/kernel-octaves.ts';
 import { CandidateMerger } from '../signal/candidate-merge.ts';
 import { createDetector, type Detector } from '../signal/detector.ts';
-import type { FramePlan } from '../signal/frame-plan.ts';
+import { frameStart, type FramePlan } from '../signal/frame-plan.ts';
 import { fullScaleThreshold } from '../signal/levels.ts';
 import type { Span } from '../signal/place-list.ts';
 import type { ShortFrameSink } from '../signal/short-frames.ts';
@@ -12,6 +12,7 @@ import {
   type SpanPart,
   type UltrasoundTracker,
 } from '../signal/ultrasound-tracker.ts';
+import type { Joints } from './joints.ts';
 import { LineWriter } from './line-writer.ts';
 import type { MeasureContext } from './measure-context.ts';
 
@@ -19,6 +20,7 @@ export interface SegmentDetectionSettings {
   format: AudioFormat;
   plan: FramePlan;
   context: MeasureContext;
+  joints: Joints;
   segment: Span;
   /** Place in the recording of the first sample that will be pushed. */
   firstSample: number;
@@ -48,7 +50,7 @@ export function edgeSamples(sampleRateHz: number): number {
 
 /** Looks for candidates while a segment is read. */
 export interface SegmentDetection {
-  /** Looks for spans above 20 kHz in the short frames of a channel; nothing where the rate leaves nothing to see. */
+  /** Looks for spans above 20 kHz in the short frames of a channel, but for those over a joint; nothing where the rate leaves nothing to see. */
   shortFrameSink(channel: number): ShortFrameSink | undefined;
   /** Every channel gets the same samples before the next ones come. */
   push(channel: number, samples: Float32Array): void;
@@ -88,7 +90,13 @@ class DetectorsOfSegment implements SegmentDetection {
 
   shortFrameSink(channel: number): ShortFrameSink | undefined {
     const tracker = this.#trackers[channel];
-    return tracker && ((frame) => tracker.push(frame));
+    if (tracker === undefined) return undefined;
+    const { joints, plan } = this.#settings;
+    const { short, frames } = plan;
+    return (frame) => {
+      const startSample = frameStart(short, frame.index, frames);
+      if (!joints.isWithin(startSample, startSample + short.size)) tracker.push(frame);
+    };
   }
 
   push(channel: number, samples: Float32Array): void {

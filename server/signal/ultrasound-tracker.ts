@@ -23,7 +23,7 @@ export interface ShortFramePower {
 }
 
 export interface UltrasoundTracker {
-  /** Frames in order. */
+  /** Frames in order; some may be missing. */
   push(frame: ShortFramePower): void;
   finish(): SpanPart;
 }
@@ -84,8 +84,7 @@ class BandTracker implements UltrasoundTracker {
   readonly #endBin: number;
   readonly #floor = new RunningFloor(FLOOR_BLOCKS, Number.MAX_SAFE_INTEGER);
   readonly #spans: SpanCollector;
-  #learning: number[] | null = [];
-  #firstIndex = 0;
+  #learning: { index: number; energy: number }[] | null = [];
   #level = SMALLEST_FLOOR;
   #blockSum = 0;
   #blockCount = 0;
@@ -108,8 +107,7 @@ class BandTracker implements UltrasoundTracker {
       this.#judge(frame.index, energy);
       return;
     }
-    if (this.#learning.length === 0) this.#firstIndex = frame.index;
-    this.#learning.push(energy);
+    this.#learning.push({ index: frame.index, energy });
     if (this.#learning.length === LEARNING_FRAMES) this.#learn();
   }
 
@@ -119,16 +117,17 @@ class BandTracker implements UltrasoundTracker {
   }
 
   #learn(): void {
-    const energies = this.#learning;
+    const learned = this.#learning;
     this.#learning = null;
-    if (!energies || energies.length === 0) return;
+    if (!learned || learned.length === 0) return;
+    const energies = learned.map(({ energy }) => energy);
     const perBlock = energies.length >= 4 * BLOCK_FRAMES ? BLOCK_FRAMES : 1;
     const start = new RunningFloor(Math.ceil(energies.length / perBlock), Number.MAX_SAFE_INTEGER);
     for (let at = 0; at + perBlock <= energies.length; at += perBlock) {
       start.push(energies.slice(at, at + perBlock).reduce((sum, energy) => sum + energy / perBlock, 0));
     }
     this.#level = Math.max(SMALLEST_FLOOR, start.read().level);
-    energies.forEach((energy, at) => this.#judge(this.#firstIndex + at, energy));
+    for (const { index, energy } of learned) this.#judge(index, energy);
   }
 
   #judge(index: number, energy: number): void {

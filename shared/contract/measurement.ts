@@ -62,6 +62,7 @@ export const qualityFindingSchema = z.object({
     'band-limited',
     'lossy-or-converted',
     'speech',
+    'joints',
   ]),
   weight: z.enum(['note', 'caution', 'serious']),
   sentence: z.string(),

@@ -26,6 +26,7 @@ import {
   type RecordingView,
 } from './recordings.queries.ts';
 import type { NewFinding } from './recordings.service.ts';
+import { selectSegments } from './segments.queries.ts';
 import type { StoredAudio, StoredAudioReader } from './stored-audio.ts';
 import type { ViewFolders } from './view-folders.ts';
 
@@ -108,7 +109,10 @@ export function createMeasuringService(parts: Parts) {
       onProgress: (fraction: number) => report((unpackedShare = fraction * mostUnpackedShare)),
     };
     const { filePath, header } = await unpack(recording, task, unpackControls);
-    const input = { filePath, header, context: contextOf(view), viewsDir };
+    const joints = selectSegments(db, recording.id)
+      .slice(1)
+      .map(({ startSample }) => startSample);
+    const input = { filePath, header, context: contextOf(view), joints, viewsDir };
     const onProgress = (fraction: number) => report(unpackedShare + (1 - unpackedShare) * fraction);
     const result = await measureFile(input, { signal: task.signal, onProgress });
     requireFinite(result);

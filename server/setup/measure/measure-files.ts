@@ -70,13 +70,13 @@ class Measuring {
   }
 
   async #measure({ name, path }: MeasureOptions['files'][number]): Promise<void> {
-    const { filePath, header, close } = await openAudio(path, this.#options.layout);
+    const { close, ...audio } = await openAudio(path, this.#options.layout);
     const kept = this.#options.viewsDir;
     const folder = kept ?? (await mkdtemp(join(tmpdir(), 'recalesce-measure-')));
     const viewsDir = join(folder, basename(path));
     const progress = progressLine(this.#command.errors, name);
     try {
-      const input = { filePath, header, context: this.#options.context, viewsDir };
+      const input = { ...audio, context: this.#options.context, viewsDir };
       const { signal } = this.#command;
       const result = await this.#runSteps(input, {
         onProgress: progress.show,

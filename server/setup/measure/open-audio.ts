@@ -11,7 +11,7 @@ import { importRecording } from '../../importing/import-recording.ts';
 import type { MeasureInput } from '../../measuring/measure-plan.ts';
 import { withFileSource } from '../../store/file-source.ts';
 
-export type OpenAudio = Pick<MeasureInput, 'filePath' | 'header'> & {
+export type OpenAudio = Pick<MeasureInput, 'filePath' | 'header' | 'joints'> & {
   /** Removes what was unpacked. */
   close: () => Promise<void>;
 };
@@ -48,9 +48,16 @@ async function unpack(path: string, layout: StoredLayout | null): Promise<OpenAu
     const filePath = join(folder, 'audio.wav');
     const { format } = await importRecording({ filePath: path, targetPath: filePath, layout });
     const header = await withFileSource(filePath, readWavHeader);
-    return { filePath, header: { ...header, format }, close };
+    const joints = layout === null ? await jointsOf(path) : [];
+    return { filePath, header: { ...header, format }, joints, close };
   } catch (error) {
     await close();
     throw error;
   }
+}
+
+/** Where the segments of a capture set meet; none in any other file. */
+async function jointsOf(path: string): Promise<number[]> {
+  const { captures } = await withFileSource(path, readRecordingFile);
+  return (captures?.segments ?? []).slice(1).map(({ startFrame }) => startFrame);
 }

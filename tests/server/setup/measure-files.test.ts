@@ -74,14 +74,15 @@ describe('the measure command', () => {
     });
     const { exitCode, out } = await run(folder, '--json', 'blocks.flac', 'set.zip');
     expect(exitCode).toBe(0);
-    const formats = out
-      .trim()
-      .split('\n')
-      .map((line) => measurementSummarySchema.parse(JSON.parse(line)).format);
+    const lines = out.trim().split('\n');
+    const found = lines.map((line) => measurementSummarySchema.parse(JSON.parse(line)));
+    const formats = found.map(({ format }) => format);
     expect(formats).toMatchObject([
       { container: 'FLAC', frames: 2300, sampleRateHz: 96_000 },
       { container: 'capture-set', frames: 480, sampleRateHz: 500_000, channels: 3 },
     ]);
+    const joints = found.map(({ quality }) => quality.find(({ code }) => code === 'joints')?.count);
+    expect(joints).toEqual([undefined, 1]);
   });
 
   it('refuses a recording with more than a trace of samples that are no numbers', async () => {

@@ -1,8 +1,10 @@
 import { existsSync, readFileSync, rmSync } from 'node:fs';
 import path from 'node:path';
+import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import type { DeclaredLayout } from '../../../../shared/contract/layouts.ts';
 import type { Recording } from '../../../../shared/contract/recordings.ts';
+import { measurements } from '../../../../server/db/schema/measurements.ts';
 import { encodeFrames } from '../../../../server/setup/demo-audio/encode-frames.ts';
 import { seedRun, seedSetup } from '../../../support/server/seed-recordings.ts';
 import { asciiBytes } from '../../../../shared/audio/wav-envelope.ts';
@@ -172,6 +174,12 @@ describe('a capture set', () => {
       { startSample: 0, frames: 240, runTimeNs: 60_000_000_000, preTriggerFrames: null },
       { startSample: 240, frames: 240, runTimeNs: 60_005_000_000, preTriggerFrames: null },
     ]);
+    const row = app.deps.db
+      .select()
+      .from(measurements)
+      .where(eq(measurements.recordingId, recording.id))
+      .get();
+    expect(row?.summary.quality.find(({ code }) => code === 'joints')).toMatchObject({ count: 1 });
     const { samples } = formatFixture('sox-s24-3ch.wav');
     const peaks = await peaksOf(recording.id, 240, 480);
     expect(peaks.body.maximum).toEqual([...samples[0]!].map((sample) => expect.closeTo(sample, 6)));
