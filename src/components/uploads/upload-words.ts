@@ -50,15 +50,23 @@ export function progressWords({ sentBytes, sizeBytes, bytesPerSecond, stage }: U
   return left === null ? speed : `${speed}, ${roughDuration(left)} left`;
 }
 
-/** The bar of a row: how much was sent, then how much was measured. */
+/** Of a film, how much of its sound is taken out: that takes as long as reading all of it. */
+export function readWords({ sizeBytes, readShare }: UploadItem): string {
+  const size = formatBytes(sizeBytes);
+  return readShare > 0 ? `${size}, ${formatShare(readShare)} of its sound taken out` : size;
+}
+
+/** The bar of a row: how much of the sound of a film was taken out, how much was sent, then how much was measured. */
 export function shareOf(item: UploadItem): number | null {
   if (item.stage === 'measuring') return item.measuredShare;
+  if (item.stage === 'reading') return item.readShare > 0 ? item.readShare : null;
   const isShown = ['sending', 'paused', 'lost', 'checking', 'missing', 'waiting'].includes(item.stage);
   return isShown && item.sentBytes > 0 ? item.sentBytes / item.sizeBytes : null;
 }
 
 export function labelOfShare(item: UploadItem): string {
-  return item.stage === 'measuring' ? `${item.fileName}, measured` : `${item.fileName}, sent`;
+  if (item.stage === 'measuring') return `${item.fileName}, measured`;
+  return item.stage === 'reading' ? `${item.fileName}, sound taken out` : `${item.fileName}, sent`;
 }
 
 /** What the header gives away, told before it is sent; empty where it gives away nothing. */

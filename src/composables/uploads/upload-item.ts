@@ -32,6 +32,8 @@ export interface UploadItem {
   sizeBytes: number;
   stage: UploadStage;
   reading: FileReading | null;
+  /** 0 to 1 while the sound of a film is taken out. */
+  readShare: number;
   /** Told once for all files that are sent together. */
   target: UploadTarget | null;
   /** Of a file that does not say itself how its samples lie. */
@@ -57,6 +59,7 @@ export function newUploadItem(key: string, facts: Pick<UploadItem, 'fileName' | 
     key,
     stage: 'reading',
     reading: null,
+    readShare: 0,
     target: null,
     layout: null,
     undeclared: null,

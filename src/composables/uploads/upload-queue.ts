@@ -6,6 +6,7 @@ import type { CreateUpload, Upload } from '@shared/contract/uploads.ts';
 import type { ByteTransfer, ByteTransferOptions } from '@/api/upload-bytes.ts';
 import type { Hashing } from '@/composables/uploads/hash-file.ts';
 import type { FileReading, ReadOutcome } from '@/composables/uploads/read-recording-file.ts';
+import type { ReadWatch } from '@/composables/uploads/read-watch.ts';
 import { createTransferRate } from '@/composables/uploads/transfer-rate.ts';
 import { failureOf, failureOfError } from '@/composables/uploads/upload-failure.ts';
 import { isSameFile, newUploadItem } from '@/composables/uploads/upload-item.ts';
@@ -13,7 +14,7 @@ import type { UploadItem, UploadTarget } from '@/composables/uploads/upload-item
 
 /** What the queue needs of the browser and the server. */
 export interface UploadGateway {
-  read: (file: File, layout?: DeclaredLayout) => Promise<ReadOutcome>;
+  read: (file: File, layout?: DeclaredLayout | null, watch?: ReadWatch) => Promise<ReadOutcome>;
   hash: (file: File) => Hashing;
   create: (input: CreateUpload) => Promise<string>;
   transfer: (options: ByteTransferOptions) => ByteTransfer;
@@ -27,6 +28,8 @@ type ReadFile = Extract<ReadOutcome, { reading: FileReading }>;
 interface Work {
   file: File;
   hashing?: Hashing;
+  /** Gives up reading it. */
+  reading?: AbortController;
   transfer?: ByteTransfer;
 }
 
@@ -61,9 +64,11 @@ export function createUploadQueue(gateway: UploadGateway) {
 
   async function readNew(file: File): Promise<void> {
     const item = add(file.name, file.size);
-    works.set(item.key, { file });
-    const outcome = await gateway.read(file);
-    if (item.stage !== 'reading') return;
+    const reading = new AbortController();
+    works.set(item.key, { file, reading });
+    const onShare = (share: number) => void (item.readShare = share);
+    const outcome = await gateway.read(file, null, { signal: reading.signal, onShare });
+    if (item.stage !== 'reading' || reading.signal.aborted) return;
     if ('reading' in outcome) return makeReady(item, outcome);
     const { refusal: message, undeclared } = outcome;
     Object.assign(item, { stage: undeclared ? 'undeclared' : 'refused', message, undeclared });
@@ -222,6 +227,7 @@ export function createUploadQueue(gateway: UploadGateway) {
 
   function remove(key: string): void {
     works.get(key)?.hashing?.stop();
+    works.get(key)?.reading?.abort();
     works.delete(key);
     const place = items.findIndex((item) => item.key === key);
     if (place >= 0) items.splice(place, 1);
@@ -240,7 +246,10 @@ export function createUploadQueue(gateway: UploadGateway) {
   /** The page is left: nothing goes on without it. */
   async function stop(): Promise<void> {
     await Promise.all(items.map((item) => pause(item.key)));
-    for (const work of works.values()) work.hashing?.stop();
+    for (const { hashing, reading } of works.values()) {
+      hashing?.stop();
+      reading?.abort();
+    }
   }
 
   return { items, choose, declare, adopt, send, pause, resume, resumeLost, cancel, remove, hear, stop };

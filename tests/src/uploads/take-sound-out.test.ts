@@ -54,6 +54,15 @@ describe('taking the sound out of a film', () => {
     expect((await takeSoundOut(filmOf('late-picture.mov'))).camera.soundStartS).toBe(-0.3);
   });
 
+  it('tells how far it is, and ends where nobody waits any more', async () => {
+    const shares: number[] = [];
+    await takeSoundOut(filmOf('s24.mov'), { onShare: (share) => shares.push(share) });
+    expect(shares.at(-1)).toBeCloseTo(1, 9);
+    const left = new AbortController();
+    left.abort();
+    await expect(takeSoundOut(filmOf('s24.mov'), { signal: left.signal })).rejects.toThrow();
+  });
+
   it('refuses a film without sound', async () => {
     expect(await refusalOf(filmOf('silent.mp4'))).toMatch(/^This film has no sound track\./);
   });

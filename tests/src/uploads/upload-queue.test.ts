@@ -8,6 +8,7 @@ import type { ByteTransferOptions } from '@/api/upload-bytes.ts';
 import { clientProblem, ProblemError } from '@/api/problem-error.ts';
 import { createUploadQueue } from '@/composables/uploads/upload-queue.ts';
 import type { ReadOutcome } from '@/composables/uploads/read-recording-file.ts';
+import type { ReadWatch } from '@/composables/uploads/read-watch.ts';
 import type { UploadGateway } from '@/composables/uploads/upload-queue.ts';
 import { format } from '../recordings/recording-fixture.ts';
 
@@ -73,7 +74,7 @@ function makeGateway() {
   const cancelled: string[] = [];
   const created: CreateUpload[] = [];
   const gateway: UploadGateway = {
-    read: (file, layout) => Promise.resolve(outcomeOf(file.name, layout)),
+    read: (file, layout) => Promise.resolve(outcomeOf(file.name, layout ?? undefined)),
     hash: () => ({ sha256: Promise.resolve('a'.repeat(64)), stop: () => undefined }),
     create: (input) => {
       created.push(input);
@@ -284,6 +285,26 @@ describe('the queue of uploads', () => {
     expect((test.transfers[0]?.file as File).name).toBe('old.wav');
     await queue.choose([wav('a.mov')]);
     expect(queue.items).toHaveLength(1);
+  });
+
+  it('tells how much of the sound of a film is taken out, and gives up where it is removed from the list', async () => {
+    const watches: ReadWatch[] = [];
+    test.gateway.read = (_file, _layout, watch = {}) => {
+      watches.push(watch);
+      return new Promise((resolve) => {
+        watch.signal?.addEventListener('abort', () => resolve(outcomeOf('a.mov', undefined)));
+      });
+    };
+    const chosen = queue.choose([wav('a.mov')]);
+    watches[0]?.onShare?.(0.25);
+    expect(queue.items[0]).toMatchObject({ stage: 'reading', readShare: 0.25 });
+    queue.remove(queue.items[0]?.key ?? '');
+    await chosen;
+    expect(watches[0]?.signal?.aborted).toBe(true);
+    expect(queue.items).toHaveLength(0);
+    queue.send(target, 'Film 07');
+    await flushPromises();
+    expect(test.transfers).toHaveLength(0);
   });
 
   it('goes on with the sound of a film when the film is chosen again', async () => {

@@ -17,9 +17,12 @@ export interface CollectedSound {
 
 /**
  * Puts pieces together. What lies before the start of the film is left out: it was cut off, or it is what an encoder needs to
- * begin with. `undefined` where nothing is left.
+ * begin with. `undefined` where nothing is left. What `onPiece` throws ends the work.
  */
-export async function collectSound(pieces: AsyncIterable<SoundPiece>): Promise<CollectedSound | undefined> {
+export async function collectSound(
+  pieces: AsyncIterable<SoundPiece>,
+  onPiece: (endS: number) => void = () => undefined,
+): Promise<CollectedSound | undefined> {
   let sound: CollectedSound | undefined;
   for await (const piece of pieces) {
     const { layout, bytes, timestampS } = fromStartOn(piece);
@@ -29,6 +32,7 @@ export async function collectSound(pieces: AsyncIterable<SoundPiece>): Promise<C
     if (Math.abs(timestampS - sound.endS) > mostSlipS) sound.gaps += 1;
     sound.wav.add(bytes);
     sound.endS = timestampS + bytes.length / bytesPerFrame(layout) / layout.sampleRateHz;
+    onPiece(sound.endS);
   }
   return sound;
 }

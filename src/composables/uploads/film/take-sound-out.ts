@@ -3,6 +3,7 @@ import { CAMERA_CODECS, type CameraCodecKey } from '@shared/audio/camera-codec.t
 import { RefusedFileError } from '@shared/audio/refused-file-error.ts';
 import type { CameraOrigin } from '@shared/contract/camera.ts';
 import { collectSound } from '@/composables/uploads/film/collect-sound.ts';
+import type { ReadWatch } from '@/composables/uploads/read-watch.ts';
 import { soundPieces } from '@/composables/uploads/film/film-track.ts';
 import { pcmWidth } from '@/composables/uploads/film/pcm-bytes.ts';
 
@@ -27,10 +28,13 @@ const mostMissingS = 0.1;
  * Takes the first sound track out of an MP4 or QuickTime film, piece by piece, as a WAV file. Throws RefusedFileError, whose
  * message is a sentence for the person who chose the film.
  */
-export async function takeSoundOut(film: File): Promise<FilmSound> {
+export async function takeSoundOut(film: File, { signal, onShare }: ReadWatch = {}): Promise<FilmSound> {
   const input = new Input({ formats: [MP4, QTFF], source: new BlobSource(film) });
   try {
-    return await takeFirstTrack(film, input);
+    return await takeFirstTrack(film, input, (share) => {
+      signal?.throwIfAborted();
+      onShare?.(share);
+    });
   } catch (error) {
     if (error instanceof RefusedFileError) throw error;
     const message = 'The sound of this film could not be read to its end: the film is damaged or not whole.';
@@ -40,14 +44,19 @@ export async function takeSoundOut(film: File): Promise<FilmSound> {
   }
 }
 
-async function takeFirstTrack(film: File, input: Input): Promise<FilmSound> {
+async function takeFirstTrack(
+  film: File,
+  input: Input,
+  onShare: (share: number) => void,
+): Promise<FilmSound> {
   if ((await input.getTracks()).length === 0) throw new RefusedFileError('damaged', noTracks);
   const tracks = await input.getAudioTracks();
   const [track] = tracks;
   if (track === undefined) throw new RefusedFileError('film', noSound);
   const { codec, family } = await requireDecodable(track);
-  const sound = await collectSound(soundPieces(track, codec));
-  if (sound === undefined || (await track.computeDuration()) - sound.endS > mostMissingS)
+  const endS = await track.computeDuration();
+  const sound = await collectSound(soundPieces(track, codec), (doneS) => onShare(Math.min(1, doneS / endS)));
+  if (sound === undefined || endS - sound.endS > mostMissingS)
     throw new RefusedFileError('damaged', endsEarly);
   const pictureS = await pictureStartS(input);
   return {
