@@ -3,7 +3,9 @@ import { sineRateHz } from './chance-rate.ts';
 import { type LeadInBand, leadInTo } from './detector-lead-in.ts';
 import { detectorBlockSamples, learningSamples, watchedOctaves } from './detector-plan.ts';
 import type { DetectorSettings } from './detector-settings.ts';
+import { watchBesideEdges } from './floor-edges.ts';
 import type { OctaveArithmetic } from './octave-arithmetic.ts';
+import type { OctaveFloor } from './octave-floor.ts';
 import { type NoiseLevels, OctaveWatch } from './octave-watch.ts';
 import { type ChosenOnset, chooseOnsets, StrongOnsets } from './onset-choice.ts';
 import { OnsetGroups } from './onset-groups.ts';
@@ -48,6 +50,7 @@ export class BurstFinder {
   readonly #sure: SureRate;
   readonly #tree: OctaveTree;
   readonly #watches: readonly OctaveWatch[];
+  readonly #floors: readonly OctaveFloor[];
   readonly #noise: NoiseLevels = { version: 0, levelAt: (frequencyHz) => this.#levelAt(frequencyHz) };
   readonly #block: Float32Array;
   #head: Float32Array | null;
@@ -68,6 +71,7 @@ export class BurstFinder {
     const burstS = settings.longestBurstS + 2 * LEAD_S;
     this.#tree = this.#openTree(burstS, arithmetic);
     this.#watches = this.#openWatches();
+    this.#floors = this.#watches.map(({ trigger }) => trigger.floor);
     const { blockSamples } = this.#tree;
     this.#block = new Float32Array(blockSamples);
     this.#head = new Float32Array(learningSamples(sampleRateHz, settings));
@@ -90,6 +94,8 @@ export class BurstFinder {
 
   finish(): void {
     if (this.#head) this.#begin();
+    // Windows reach over the end into samples that were never recorded: no place for what is weak beside a loud band.
+    this.#watchBesideEdges(0);
     if (this.#inBlock > 0) {
       mirrorEnd(this.#block, this.#inBlock);
       this.#processBlock(this.#inBlock);
@@ -159,6 +165,7 @@ export class BurstFinder {
       this.#watches.forEach((watch, k) => watch.learn(tree.octaves[k]?.energies.values, head.length));
     }
     for (const watch of this.#watches) watch.trigger.floor.endLearning();
+    this.#watchBesideEdges(0);
     const lowest = this.#tree.octaves[this.#octaves - 1];
     const blocks = Math.ceil((LEAD_IN_CELLS * (lowest?.samplesPerCell ?? 1)) / block.length);
     const leadIn = leadInTo(head, block.length * blocks, this.#leadInBands(), this.#sampleRateHz);
@@ -197,12 +204,20 @@ export class BurstFinder {
     this.ring.push(this.#block.subarray(0, held));
     this.#inBlock = 0;
     this.#tree.process(this.#block);
+    let hasChanged = false;
     for (const watch of this.#watches) {
       watch.process(held);
-      if (watch.trigger.floor.takeChange()) this.#noise.version += 1;
+      hasChanged = watch.trigger.floor.takeChange() || hasChanged;
     }
+    if (hasChanged) this.#watchBesideEdges(held < this.#block.length ? 0 : this.#tree.processedSamples);
     this.#search();
     this.#settle(Math.min(...this.#watches.map((watch) => watch.decidedSample())));
+  }
+
+  /** @param settledSamples from the beginning of the recording on, which filters have to forget. */
+  #watchBesideEdges(settledSamples: number): void {
+    watchBesideEdges(this.#tree.octaves, this.#floors, settledSamples);
+    this.#noise.version += 1;
   }
 
   #search(): void {

@@ -1,5 +1,5 @@
 /** Changed whenever the same samples could give other candidates. */
-export const detectorVersion = 'band-split-3';
+export const detectorVersion = 'band-split-4';
 
 /** All that decides what the detector finds; stored with its results. */
 export interface DetectorSettings {

@@ -15,10 +15,13 @@ const RECENT_PARTS = 32;
 const RECENT_QUANTILE = 0.25;
 /** A floor learned anew may be so many standard errors too low. */
 const RELEARNED_ERRORS = 3;
+/** What an unwatched sub-band weighs in every sum: a power of two, so that its energy can be had back as it was. */
+const UNWATCHED = 2 ** -100;
 
 const gathered = new Float64Array(BANDS_PER_OCTAVE);
 
 export interface FloorOptions {
+  /** Sub-bands from below that may be watched; the floors of the others are followed as well. */
   readonly leaves: number;
   readonly cellS: number;
   readonly memoryS: number;
@@ -35,9 +38,10 @@ export interface FloorOptions {
 export class OctaveFloor {
   /** Noise power of each sub-band. */
   readonly levels = new Float64Array(BANDS_PER_OCTAVE).fill(SMALLEST_FLOOR);
-  /** What turns a cell's energy into multiples of the raised floor. */
+  /** What turns a cell's energy into multiples of the raised floor, next to nothing where a sub-band is not watched. */
   readonly gains = new Float64Array(BANDS_PER_OCTAVE);
   readonly #leaves: number;
+  readonly #weights = new Float64Array(BANDS_PER_OCTAVE).fill(UNWATCHED);
   readonly #floors: readonly RunningFloor[];
   /** Block means over the floor at the time. */
   readonly #ratios: readonly RunningFloor[];
@@ -60,11 +64,12 @@ export class OctaveFloor {
 
   constructor({ leaves, cellS, memoryS, longestBurstS }: FloorOptions) {
     this.#leaves = leaves;
+    this.#weights.fill(1, 0, leaves);
     this.#cellsPerPart = powerOfTwo(longestBurstS / RECENT_PARTS / cellS);
     this.#cellsPerBlock = Math.max(LEAST_CELLS, powerOfTwo(memoryS / BLOCKS / cellS));
     const perBlock = VALUES_PER_CELL * this.#cellsPerBlock;
-    this.#floors = Array.from({ length: leaves }, () => new RunningFloor(BLOCKS, perBlock));
-    this.#ratios = Array.from({ length: leaves }, () => new RunningFloor(BLOCKS, perBlock));
+    this.#floors = Array.from({ length: BANDS_PER_OCTAVE }, () => new RunningFloor(BLOCKS, perBlock));
+    this.#ratios = Array.from({ length: BANDS_PER_OCTAVE }, () => new RunningFloor(BLOCKS, perBlock));
     this.#shortBlocks = Math.min(BLOCKS, Math.max(2, Math.ceil(LEAST_SHORT_VALUES / perBlock)));
     const parts = Math.max(
       8,
@@ -88,7 +93,7 @@ export class OctaveFloor {
     };
     const { floors } = this.#learning;
     let held = 0;
-    for (let leaf = 0; leaf < this.#leaves; leaf++) {
+    for (let leaf = 0; leaf < BANDS_PER_OCTAVE; leaf++) {
       held = this.#learning.held;
       let sum = this.#quietSums[leaf]!;
       for (let at = leaf; at < energies.length; at += BANDS_PER_OCTAVE) {
@@ -108,27 +113,26 @@ export class OctaveFloor {
     const learned = this.#learning;
     this.#learning = null;
     this.#quietSums.fill(0);
-    for (let leaf = 0; leaf < this.#leaves; leaf++) {
+    for (let leaf = 0; leaf < BANDS_PER_OCTAVE; leaf++) {
       const floor = learned?.floors[leaf];
       if (!floor) continue;
       this.levels[leaf] = Math.max(SMALLEST_FLOOR, floor.quantile(0.5));
       const upper = floor.blocks < LEAST_BLOCKS_FOR_SPREAD ? null : floor.upper() / this.levels[leaf]!;
       this.#raises[leaf] = raiseOf(learned.perBlock, floor.blocks, upper);
-      this.gains[leaf] = 1 / (this.levels[leaf]! * this.#raises[leaf]!);
+      this.#setGain(leaf, this.levels[leaf]!);
     }
   }
 
   /** Takes the cells [from, to) of running sums of gained energies; only quiet ones move the floor. */
   gather(sums: CellSums, from: number, to: number, quiet: boolean): void {
     const gains = this.gains;
-    const leaves = this.#leaves;
     const partSums = this.#partSums;
     const quietSums = this.#quietSums;
     for (let cell = from; cell < to;) {
       const room = Math.min(this.#cellsPerPart - this.#partCells, this.#cellsPerBlock - this.#blockCells);
       const count = Math.min(to - cell, room);
       sums.columnSums(cell, cell + count, gathered);
-      for (let leaf = 0; leaf < leaves; leaf++) {
+      for (let leaf = 0; leaf < BANDS_PER_OCTAVE; leaf++) {
         const sum = gathered[leaf]! / gains[leaf]!;
         partSums[leaf] = partSums[leaf]! + sum;
         if (quiet) quietSums[leaf] = quietSums[leaf]! + sum;
@@ -156,23 +160,40 @@ export class OctaveFloor {
   relearn(): void {
     const count = Math.min(this.#partsTaken, this.#parts.length / BANDS_PER_OCTAVE);
     const values = VALUES_PER_CELL * this.#cellsPerPart;
-    for (let leaf = 0; leaf < this.#leaves; leaf++) {
+    for (let leaf = 0; leaf < BANDS_PER_OCTAVE; leaf++) {
       const recent = new RunningFloor(Math.max(1, count), values);
       for (let part = 0; part < count; part++) recent.push(this.#parts[part * BANDS_PER_OCTAVE + leaf]!);
       const level = Math.max(recent.quantile(RECENT_QUANTILE), SMALLEST_FLOOR);
       this.#floors[leaf]?.fill(level);
       this.levels[leaf] = level;
       this.#raises[leaf] = 1 + RELEARNED_ERRORS * relativeError(values * count);
-      this.gains[leaf] = 1 / (level * this.#raises[leaf]!);
+      this.#setGain(leaf, level);
     }
     this.#quietSums.fill(0);
     this.#quietCells = 0;
     this.#isChanged = true;
   }
 
+  isWatched(leaf: number): boolean {
+    return this.#weights[leaf] === 1;
+  }
+
+  /** Leaves sub-bands out of every sum, or takes them in again. */
+  watch(isWanted: (leaf: number) => boolean): void {
+    for (let leaf = 0; leaf < this.#leaves; leaf++) {
+      const weight = isWanted(leaf) ? 1 : UNWATCHED;
+      this.gains[leaf] = (this.gains[leaf]! / this.#weights[leaf]!) * weight;
+      this.#weights[leaf] = weight;
+    }
+  }
+
+  #setGain(leaf: number, level: number): void {
+    this.gains[leaf] = this.#weights[leaf]! / (level * this.#raises[leaf]!);
+  }
+
   #endPart(): void {
     const at = (this.#partsTaken * BANDS_PER_OCTAVE) % this.#parts.length;
-    for (let leaf = 0; leaf < this.#leaves; leaf++)
+    for (let leaf = 0; leaf < BANDS_PER_OCTAVE; leaf++)
       this.#parts[at + leaf] = this.#partSums[leaf]! / (VALUES_PER_CELL * this.#partCells);
     this.#partsTaken += 1;
     this.#partSums.fill(0);
@@ -191,11 +212,11 @@ export class OctaveFloor {
   #pushBlock(): void {
     const isRead = this.#blocks % BLOCKS_PER_READING === 0;
     const valuesPerBlock = VALUES_PER_CELL * this.#cellsPerBlock;
-    for (let leaf = 0; leaf < this.#leaves; leaf++) {
+    for (let leaf = 0; leaf < BANDS_PER_OCTAVE; leaf++) {
       const floor = this.#floors[leaf]!;
       const ratios = this.#ratios[leaf]!;
       const mean = this.#quietSums[leaf]! / (VALUES_PER_CELL * this.#quietCells);
-      ratios.push(mean * this.gains[leaf]! * this.#raises[leaf]!);
+      ratios.push((mean * this.gains[leaf]! * this.#raises[leaf]!) / this.#weights[leaf]!);
       floor.push(mean);
       if (isRead && floor.blocks === BLOCKS) {
         this.levels[leaf] = Math.max(SMALLEST_FLOOR, floor.quantile(0.5));
@@ -206,7 +227,7 @@ export class OctaveFloor {
         );
       }
       const level = Math.max(this.levels[leaf]!, floor.recentMean(this.#shortBlocks));
-      this.gains[leaf] = 1 / (level * this.#raises[leaf]!);
+      this.#setGain(leaf, level);
     }
     this.#isChanged = true;
   }

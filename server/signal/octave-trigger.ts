@@ -96,11 +96,11 @@ export class OctaveTrigger {
     });
   }
 
-  /** Noise power at a frequency of this octave, raised as the thresholds see it, in units of white noise of variance 1. */
+  /** Noise power at a frequency of this octave, raised as the thresholds see it, in units of white noise of variance 1; 0 where unwatched. */
   levelAt(frequencyHz: number): number {
     const leaf = Math.floor((frequencyHz - this.#band.lowHz) / this.#leafHz);
     const gain = this.floor.gains[leaf] ?? 0;
-    return gain > 0 ? 1 / (gain * this.#band.gain) : 0;
+    return gain > 0 && this.floor.isWatched(leaf) ? 1 / (gain * this.#band.gain) : 0;
   }
 
   /** First sample of the region now open; `null` between regions. */
@@ -150,14 +150,14 @@ export class OctaveTrigger {
     return (this.#band.highHz - this.#band.lowHz) / BANDS_PER_OCTAVE;
   }
 
-  /** Gains of the halves from those of their sub-bands. */
+  /** Gains of the halves from those of their sub-bands; 0 where one of them is not watched. */
   #setHalfGains(): void {
     const gains = this.floor.gains;
     const perHalf = BANDS_PER_OCTAVE / 2;
     for (let half = 0; half < 2; half++) {
       let level = 0;
       for (let leaf = perHalf * half; leaf < perHalf * (half + 1); leaf++)
-        level += 1 / gains[leaf]! / perHalf;
+        level += this.floor.isWatched(leaf) ? 1 / gains[leaf]! / perHalf : Infinity;
       this.#halfGains[half] = this.#band.gain / this.#band.halfGain / level;
     }
   }
