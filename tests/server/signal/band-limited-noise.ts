@@ -13,8 +13,8 @@ export interface BandLimitedOptions {
   readonly clicksPerSecond: number;
 }
 
-const HALF_TAPS = 48;
-const CUTOFF = 0.94;
+const HALF_TAPS = 96;
+const CUTOFF = 0.97;
 const KAISER_BETA = 9;
 /** White noise that has in the octave about 15 kHz what pink noise has in each. */
 const WHITE_DENSITY = 1e-6 / 10_600;
@@ -38,7 +38,7 @@ export function bandLimitedScene(options: BandLimitedOptions): {
   const ratio = sampleRateHz / recordedHz;
   return {
     samples: rounds ? samples.map((value) => Math.round(32_768 * value) / 32_768) : samples,
-    clicks: recorded.clicks.map((click) => ({ ...click, onset: click.onset * ratio })),
+    clicks: recorded.clicks.map((click) => ({ ...click, onset: (click.onset - HALF_TAPS) * ratio })),
   };
 }
 
@@ -56,18 +56,21 @@ function whiteNoise({
   return Float32Array.from({ length: Math.round(seconds * sampleRateHz) }, () => rms * normal());
 }
 
-/** Polyphase conversion between rates that are whole numbers of hertz, by a sinc in Kaiser's window: 90 dB down from half the lower rate. */
-export function converted(samples: Float32Array, fromHz: number, toHz: number): Float32Array {
+/**
+ * Polyphase conversion between rates that are whole numbers of hertz, by a sinc in Kaiser's window: 90 dB down from half the lower rate. What
+ * the filter would have to guess at both ends is left out: the first sample is that at HALF_TAPS.
+ */
+function converted(samples: Float32Array, fromHz: number, toHz: number): Float32Array {
   const phases = toHz / greatestDivisor(fromHz, toHz);
   const taps = Array.from({ length: phases }, (_, phase) => tapsOf(phase / phases));
   const step = (phases * fromHz) / toHz;
-  const count = Math.floor(((samples.length - 1) * toHz) / fromHz);
+  const count = Math.floor(((samples.length - 1 - 2 * HALF_TAPS) * toHz) / fromHz);
   return Float32Array.from({ length: count }, (_, n) => {
     const at = n * step;
-    const first = Math.floor(at / phases) - HALF_TAPS + 1;
+    const first = Math.floor(at / phases) + 1;
     const weights = taps[at % phases]!;
     let sum = 0;
-    for (let k = 0; k < weights.length; k++) sum += weights[k]! * (samples[first + k] ?? 0);
+    for (let k = 0; k < weights.length; k++) sum += weights[k]! * samples[first + k]!;
     return sum;
   });
 }
