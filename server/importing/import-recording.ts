@@ -23,6 +23,8 @@ export interface ImportInput {
 /** What the file really held. */
 export interface Imported {
   format: AudioFormat;
+  /** First frames of the pieces behind the first, where it is made of pieces taken at different times. */
+  joints?: number[];
 }
 
 /**
@@ -50,11 +52,12 @@ async function importSelfTelling(input: ImportInput, controls: ImportControls): 
 /** The segments one after the other, byte by byte. */
 async function importCaptureSet(input: ImportInput, controls: ImportControls): Promise<Imported> {
   return withFileSource(input.filePath, async (source) => {
-    const { format } = await readCaptureSet(source);
+    const { format, segments } = await readCaptureSet(source);
+    const joints = segments.slice(1).map(({ startFrame }) => startFrame);
     const writer = new WavFileWriter(input.targetPath, format);
     return finishing(writer, async () => {
       await readCaptureSet(source, (part) => copySamples(part, format, writer, controls));
-      return { format };
+      return { format, joints };
     });
   });
 }

@@ -46,18 +46,11 @@ async function unpack(path: string, layout: StoredLayout | null): Promise<OpenAu
   const close = () => rm(folder, { recursive: true, force: true });
   try {
     const filePath = join(folder, 'audio.wav');
-    const { format } = await importRecording({ filePath: path, targetPath: filePath, layout });
+    const { format, joints = [] } = await importRecording({ filePath: path, targetPath: filePath, layout });
     const header = await withFileSource(filePath, readWavHeader);
-    const joints = layout === null ? await jointsOf(path) : [];
     return { filePath, header: { ...header, format }, joints, close };
   } catch (error) {
     await close();
     throw error;
   }
-}
-
-/** Where the segments of a capture set meet; none in any other file. */
-async function jointsOf(path: string): Promise<number[]> {
-  const { captures } = await withFileSource(path, readRecordingFile);
-  return (captures?.segments ?? []).slice(1).map(({ startFrame }) => startFrame);
 }
