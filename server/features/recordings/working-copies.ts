@@ -64,14 +64,14 @@ export function createWorkingCopies({ folder, importRecording, freeBytes = freeB
     await rm(unfinished, { recursive: true, force: true });
     await mkdir(unfinished, { recursive: true });
     const input = { filePath: storedPath, targetPath: wavIn(unfinished), layout: source.layout };
-    const imported = await importRecording(input, controls);
+    const { format } = await importRecording(input, controls);
     const facts = path.join(unfinished, 'imported.json');
-    await writeFile(facts, JSON.stringify(imported));
+    await writeFile(facts, JSON.stringify({ format }));
     await syncFile(facts);
     await syncFolder(unfinished);
     await rename(unfinished, own);
     await syncFolder(folder);
-    return { ...imported, filePath: wavIn(own) };
+    return { format, filePath: wavIn(own) };
   }
 
   async function requireRoom({ format }: Source): Promise<void> {
