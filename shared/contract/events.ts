@@ -2,6 +2,7 @@ import { z } from 'zod';
 import { idSchema, instantSchema, revisionSchema } from './ids.ts';
 import { burstParametersSchema } from './measurement.ts';
 import { confidenceSchema } from './schemes.ts';
+import { listeningAidsSchema, markViewSchema } from './mark-circumstances.ts';
 
 export const eventOriginSchema = z.enum(['hand', 'candidate']);
 export type EventOrigin = z.infer<typeof eventOriginSchema>;
@@ -19,6 +20,12 @@ const markFields = {
   classKey: z.string().min(1).max(60),
   confidence: confidenceSchema,
   note: z.string().trim().max(2000).default(''),
+  /** Where the person had put the start, before it was moved to an onset that the machine picked. */
+  rawStartSample: sample.nullable().default(null),
+  /** How far off the start may be: half a pixel of the picture it was set in, or what the picker says of itself. */
+  uncertaintySamples: z.number().min(0).max(Number.MAX_SAFE_INTEGER).nullable().default(null),
+  aids: listeningAidsSchema.nullable().default(null),
+  view: markViewSchema.nullable().default(null),
 };
 const endsAfterStart = {
   path: ['endSample'],
@@ -49,6 +56,10 @@ export const patchEventSchema = z
     classKey: markFields.classKey,
     confidence: confidenceSchema,
     note: z.string().trim().max(2000),
+    rawStartSample: sample.nullable(),
+    uncertaintySamples: z.number().min(0).max(Number.MAX_SAFE_INTEGER).nullable(),
+    aids: listeningAidsSchema.nullable(),
+    view: markViewSchema.nullable(),
   })
   .partial();
 export type PatchEvent = z.infer<typeof patchEventSchema>;
@@ -67,6 +78,10 @@ export const eventSchema = z.object({
   note: z.string(),
   origin: eventOriginSchema,
   candidateId: idSchema.nullable(),
+  rawStartSample: z.number().int().nullable(),
+  uncertaintySamples: z.number().nullable(),
+  aids: listeningAidsSchema.nullable(),
+  view: markViewSchema.nullable(),
   /** Measured by the server on the untouched samples when the mark was saved. */
   parameters: burstParametersSchema.nullable(),
   revision: revisionSchema,

@@ -5,6 +5,32 @@ import { pageSchema, pageQuerySchema } from './page.ts';
 export const passStateSchema = z.enum(['assigned', 'finished', 'cancelled']);
 export type PassState = z.infer<typeof passStateSchema>;
 
+/** Growth phases are marked from camera and temperature alone: the server keeps the sound of the recording back. */
+export const passTaskSchema = z.enum(['events', 'phases']);
+export type PassTask = z.infer<typeof passTaskSchema>;
+
+/** The whole recording, windows drawn at random in strata, or candidates one after another. */
+export const passKindSchema = z.enum(['whole', 'windows', 'rounds']);
+export type PassKind = z.infer<typeof passKindSchema>;
+
+export const roundOrderSchema = z.enum(['time', 'strength', 'uncertainty', 'likeness']);
+export type RoundOrder = z.infer<typeof roundOrderSchema>;
+
+/** Half-open. `stratum` counts the equal parts of the recording from which one window each was drawn. */
+export const passWindowSchema = z.object({
+  startSample: z.number().int().min(0),
+  endSample: z.number().int().min(1),
+  stratum: z.number().int().min(0),
+});
+export type PassWindow = z.infer<typeof passWindowSchema>;
+
+export const coverageWaySchema = z.enum(['seen', 'heard']);
+export type CoverageWay = z.infer<typeof coverageWaySchema>;
+
+/** Shares of the part that the pass is of, from 0 to 1. */
+export const passCoverageSchema = z.object({ seenShare: z.number(), heardShare: z.number() });
+export type PassCoverage = z.infer<typeof passCoverageSchema>;
+
 export const createPassSchema = z.object({
   recordingId: idSchema,
   labelerId: idSchema,

@@ -1,3 +1,4 @@
+import { isDeepStrictEqual } from 'node:util';
 import type { CreateEvent, PatchEvent, RecordingEvent } from '../../../shared/contract/events.ts';
 import type { BurstParameters } from '../../../shared/contract/measurement.ts';
 import { toInstant } from '../../services/clock.ts';
@@ -34,10 +35,15 @@ export function toNewRow(input: CreateEvent, { nowMs, ...stamps }: Stamps): Even
     passId,
     origin,
     candidateId,
+    rawStartSample,
+    uncertaintySamples,
+    aids,
+    view,
   } = input;
   const mark = { channel, startSample, endSample, lowHz, highHz, classKey, confidence, note };
   const times = { createdAtMs: nowMs, updatedAtMs: nowMs, deletedAtMs: null };
-  return { ...mark, passId, origin, candidateId, ...stamps, ...times, revision: 1 };
+  const circumstances = { rawStartSample, uncertaintySamples, aids, view };
+  return { ...mark, passId, origin, candidateId, ...circumstances, ...stamps, ...times, revision: 1 };
 }
 
 /** The row as it would be after the change; what the change does not name stays. */
@@ -49,5 +55,5 @@ export function withChange(row: EventRow, change: PatchEvent): EventRow {
 /** Whether a second PUT asks for what is stored already, so that a retry can be answered like the first try. */
 export function isSameMark(row: EventRow, input: CreateEvent): boolean {
   const stored = toEvent(row) as unknown as Record<string, unknown>;
-  return Object.entries(input).every(([key, value]) => stored[key] === value);
+  return Object.entries(input).every(([key, value]) => isDeepStrictEqual(stored[key], value));
 }

@@ -107,6 +107,25 @@ export function selectOpenBlindPass(db: Reader, recordingId: string, labelerId: 
     .get();
 }
 
+/** Whether any recording of the run is marked blind by this person at the moment. */
+export function selectIsRunBlind(db: Reader, runId: string, labelerId: string): boolean {
+  const row = db
+    .select({ id: passes.id })
+    .from(passes)
+    .innerJoin(recordings, eq(recordings.id, passes.recordingId))
+    .where(
+      and(
+        eq(recordings.runId, runId),
+        eq(passes.labelerId, labelerId),
+        eq(passes.state, 'assigned'),
+        eq(passes.blind, true),
+      ),
+    )
+    .limit(1)
+    .get();
+  return row !== undefined;
+}
+
 export function selectUncancelledPasses(db: Reader, recordingId: string): PassRow[] {
   return db
     .select()

@@ -17,6 +17,7 @@ import {
   insertPass,
   selectAssignable,
   selectLabelers,
+  selectIsRunBlind,
   selectOpenBlindPass,
   selectPass,
   selectPassOf,
@@ -120,6 +121,8 @@ export function createPassesService({ db, clock, ids, activity, audit, schemes }
     requireOwnOpenPass,
     isBlindOn: (reader: Reader, actor: Actor, recordingId: string) =>
       selectOpenBlindPass(reader, recordingId, actor.id) !== undefined,
+    /** For what stands beside the sound of a run: phases and traces tell when something happened. */
+    isBlindOnRun: (reader: Reader, actor: Actor, runId: string) => selectIsRunBlind(reader, runId, actor.id),
     ofRecording: (reader: Reader, recordingId: string) => selectUncancelledPasses(reader, recordingId),
   };
 }

@@ -1,5 +1,6 @@
 import type { EventOrigin, RecordingEvent } from '@shared/contract/events.ts';
 import type { BurstParameters } from '@shared/contract/measurement.ts';
+import type { ListeningAids, MarkView } from '@shared/contract/mark-circumstances.ts';
 import type { Confidence } from '@shared/contract/schemes.ts';
 
 /** What a person says about a span; everything of a mark that can be changed, undone and done again. */
@@ -15,6 +16,12 @@ export interface MarkFields {
   note: string;
   origin: EventOrigin;
   candidateId: string | null;
+  /** Where the person had put the start, before it was moved to a picked onset. */
+  rawStartSample: number | null;
+  /** How far off the start may be. */
+  uncertaintySamples: number | null;
+  aids: ListeningAids | null;
+  view: MarkView | null;
 }
 
 /** A mark on the bench. `key` stays the same while the page lives, also where undoing gives the mark a new id. */
@@ -27,26 +34,32 @@ export interface BenchMark extends MarkFields {
   parameters: BurstParameters | null;
 }
 
+const FIELDS = [
+  'channel',
+  'startSample',
+  'endSample',
+  'lowHz',
+  'highHz',
+  'classKey',
+  'confidence',
+  'note',
+  'origin',
+  'candidateId',
+  'rawStartSample',
+  'uncertaintySamples',
+  'aids',
+  'view',
+] as const satisfies readonly (keyof MarkFields)[];
+
 export function fieldsOf(mark: MarkFields): MarkFields {
-  const { channel, startSample, endSample, lowHz, highHz, classKey, confidence, note, origin, candidateId } =
-    mark;
-  return {
-    channel,
-    startSample,
-    endSample,
-    lowHz,
-    highHz,
-    classKey,
-    confidence,
-    note,
-    origin,
-    candidateId,
-  };
+  const { channel, startSample, endSample, lowHz, highHz, classKey, confidence, note } = mark;
+  const { origin, candidateId, rawStartSample, uncertaintySamples, aids, view } = mark;
+  const said = { channel, startSample, endSample, lowHz, highHz, classKey, confidence, note };
+  return { ...said, origin, candidateId, rawStartSample, uncertaintySamples, aids, view };
 }
 
 export function hasSameFields(a: MarkFields, b: MarkFields): boolean {
-  const other = new Map<string, unknown>(Object.entries(fieldsOf(b)));
-  return Object.entries(fieldsOf(a)).every(([name, value]) => other.get(name) === value);
+  return FIELDS.every((name) => JSON.stringify(a[name]) === JSON.stringify(b[name]));
 }
 
 export function toBenchMark(event: RecordingEvent, ownPassId: string | null, key = event.id): BenchMark {

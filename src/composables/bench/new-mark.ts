@@ -33,6 +33,8 @@ export function defaultSpan(
   return clampSpan({ startSample, endSample: startSample + Math.max(1, samples) }, view.frames);
 }
 
+const UNTOLD = { rawStartSample: null, uncertaintySamples: null, aids: null, view: null };
+
 type Named = Pick<MarkFields, 'classKey' | 'confidence'>;
 
 export function markBySpan(span: DraftSpan, place: MarkPlace, named: Named): MarkFields {
@@ -47,6 +49,7 @@ export function markBySpan(span: DraftSpan, place: MarkPlace, named: Named): Mar
     note: '',
     origin: 'hand',
     candidateId: null,
+    ...UNTOLD,
   };
 }
 
@@ -65,5 +68,6 @@ export function markByCandidate(candidate: Candidate, place: MarkPlace, named: N
     note: '',
     origin: 'candidate',
     candidateId: candidate.id,
+    ...UNTOLD,
   };
 }

@@ -15,6 +15,10 @@ const crack: MarkFields = {
   note: '',
   origin: 'hand',
   candidateId: null,
+  rawStartSample: null,
+  uncertaintySamples: null,
+  aids: null,
+  view: null,
 };
 const twin: MarkFields = { ...crack, classKey: 'twin' };
 
