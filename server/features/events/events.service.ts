@@ -3,7 +3,7 @@ import type { BurstParameters } from '../../../shared/contract/measurement.ts';
 import { voiceClassKey } from '../../../shared/domain/label-scheme.ts';
 import type { SampleSpan } from '../../../shared/domain/event-span.ts';
 import type { Actor } from '../../../shared/policy/actor.ts';
-import type { Tx } from '../../db/client.ts';
+import type { Reader, Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
 import { conflict, invalidField, notFound } from '../../http/problem.ts';
@@ -93,6 +93,17 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
   }
 
   async function insertNew(actor: Actor, id: string, input: PutEvent): Promise<RecordingEvent> {
+    const measured = await prepare(actor, id, input);
+    const stored = write(db, (tx) => {
+      passes.requireOwnOpenPass(tx, actor, measured.passId);
+      return insertWithin(tx, actor, measured);
+    });
+    tellHold(stored);
+    return toEvent(stored);
+  }
+
+  /** A new mark, checked and measured, but not stored: `insertWithin` does that, in the transaction of the caller. */
+  async function prepare(actor: Actor, id: string, input: PutEvent): Promise<EventRow> {
     const { recordingId, ...mark } = input;
     const pass = passes.requireOwnOpenPass(db, actor, mark.passId);
     if (pass.recordingId !== recordingId) throw notFound('This pass');
@@ -100,18 +111,39 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
     const row = toNewRow(mark, stamps);
     checkRow(actor, row, pass.schemeVersion);
     checkCandidate(row, pass.blind);
-    const measured = { ...row, parameters: await recordings.measureSpan(recordingId, row) };
-    const stored = write(db, (tx) => {
-      // The id may have arrived twice while the span was being measured.
-      const twin = selectEvent(tx, id);
-      if (twin) return requireOwn(actor, twin);
-      passes.requireOwnOpenPass(tx, actor, mark.passId);
-      insertEvent(tx, measured);
-      keep(tx, actor, measured, 'event.created');
-      return measured;
-    });
-    tellHold(stored);
-    return toEvent(stored);
+    return { ...row, parameters: await recordings.measureSpan(recordingId, row) };
+  }
+
+  /** The id may have arrived twice while the span was being measured: the first one stays. */
+  function insertWithin(tx: Tx, actor: Actor, row: EventRow): EventRow {
+    const twin = selectEvent(tx, row.id);
+    if (twin) return requireOwn(actor, twin);
+    insertEvent(tx, row);
+    keep(tx, actor, row, 'event.created');
+    return row;
+  }
+
+  /** Another class for a mark whose span stays, in the transaction of the caller, who has checked the pass. */
+  function renameWithin(
+    tx: Tx,
+    actor: Actor,
+    id: string,
+    said: Pick<EventRow, 'classKey' | 'confidence'>,
+  ): EventRow {
+    const row = requireOwn(actor, selectEvent(tx, id));
+    const next = { ...row, ...said, revision: row.revision + 1, updatedAtMs: clock.nowMs() };
+    checkRow(actor, next, passes.requireOwnOpenPass(tx, actor, row.passId).schemeVersion);
+    save(tx, actor, next, 'event.changed');
+    return next;
+  }
+
+  /** Takes a mark away in the transaction of the caller, who has checked the pass; one that is gone is no fault. */
+  function removeWithin(tx: Tx, actor: Actor, id: string): void {
+    const row = selectEvent(tx, id);
+    if (!row || row.deletedAtMs !== null) return;
+    const nowMs = clock.nowMs();
+    const gone = { ...requireOwn(actor, row), deletedAtMs: nowMs, updatedAtMs: nowMs };
+    save(tx, actor, { ...gone, revision: row.revision + 1 }, 'event.deleted');
   }
 
   async function change(
@@ -203,7 +235,18 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
       throw invalidField('candidateId', 'is no candidate of this recording');
   }
 
-  return { list, create, put, patch, remove };
+  /** For whoever stores a mark together with something else. */
+  const within = {
+    prepare,
+    insert: insertWithin,
+    rename: renameWithin,
+    remove: removeWithin,
+    tellHold,
+    find: (reader: Reader, id: string) => selectEvent(reader, id),
+    toEvent,
+  };
+
+  return { list, create, put, patch, remove, within };
 }
 
 /** Somebody else's mark is answered like one that does not exist. */
