@@ -11,6 +11,7 @@ import {
   type RecordingViewsService,
 } from './features/recordings/recording-views.service.ts';
 import { createRecordingsService, type RecordingsService } from './features/recordings/recordings.service.ts';
+import { createRegionsService, type RegionsService } from './features/recordings/regions.service.ts';
 import { createStoredAudioReader, type StoredAudioReader } from './features/recordings/stored-audio.ts';
 import { createWorkingCopies } from './features/recordings/working-copies.ts';
 import { createViewFolders } from './features/recordings/view-folders.ts';
@@ -44,6 +45,7 @@ export interface RecordingServices {
   recordingViews: RecordingViewsService;
   candidates: CandidatesService;
   listening: ListeningService;
+  regions: RegionsService;
   measuring: MeasuringService;
   measuringRequests: MeasuringRequestsService;
   /** Header and path of stored audio, for whoever measures on it. */
@@ -70,6 +72,7 @@ export function createRecordingServices(ground: Ground, audit: AuditService): Re
   const recordingViews = createRecordingViewsService({ ...ground, recordings, viewFolders, readStoredAudio });
   const candidates = createCandidatesService({ ...ground, recordingViews });
   const listening = createListeningService({ recordingViews, readStoredAudio });
+  const regions = createRegionsService({ recordingViews, readStoredAudio });
   const measureFile = createMeasureFile(ground);
   const measuring = createMeasuringService({ ...ground, audit, viewFolders, readStoredAudio, measureFile });
   const measuringRequests = createMeasuringRequestsService({ ...ground, audit, recordings });
@@ -85,6 +88,7 @@ export function createRecordingServices(ground: Ground, audit: AuditService): Re
     recordingViews,
     candidates,
     listening,
+    regions,
     measuring,
     measuringRequests,
     readStoredAudio,

@@ -1,29 +1,24 @@
-import { open, readFile, type FileHandle } from 'node:fs/promises';
+import { open, readFile } from 'node:fs/promises';
 import { z } from 'zod';
 import { encodeTile, TILE_DB_PER_CODE, TILE_MINIMUM_DB } from '../../shared/audio/tile.ts';
 import { spectrumSchema, type Spectrum } from '../../shared/contract/measurement.ts';
-import type { Peaks, PictureBand } from '../../shared/contract/views.ts';
+import type { Peaks, PictureBand, QuietLevels } from '../../shared/contract/views.ts';
 import {
   columnsAtLevel,
   COLUMNS_PER_TILE,
   COLUMN_FACTOR,
   type Picture,
 } from '../signal/spectrogram-columns.ts';
-import { FIRST_STORED_LEVELS } from '../signal/spectrogram-columns.ts';
-import type { AudioPlace } from './block-reader.ts';
-import { computedColumns } from './computed-columns.ts';
 import { peaksFromPyramid, peaksFromSamples, samplesPerPointFor } from './peaks-reader.ts';
-import { ViewLayout, viewPath, type FileRegion } from './view-layout.ts';
+import { quietLevels } from './quiet-levels.ts';
+import { readColumns, readRegion, type ColumnsSource } from './tile-columns.ts';
+import { ViewLayout, viewPath } from './view-layout.ts';
 import { readManifest } from './view-manifest.ts';
 
 /** Views are asked for that a recording does not have: a channel, a band, a level or a tile beyond its last. */
 export class NoSuchViewError extends RangeError {}
 
-export interface ViewSource {
-  viewsDir: string;
-  filePath: string;
-  header: AudioPlace;
-}
+export type ViewSource = ColumnsSource;
 
 export interface PeaksRequest extends ViewSource {
   channel: number;
@@ -65,11 +60,8 @@ export async function readTile(request: TileRequest): Promise<Uint8Array> {
   if (!picture) throw new NoSuchViewError(`The sample rate leaves no ${request.band} picture.`);
   const span = tileSpan(picture, request.level, request.tile);
   const { bins, lowHz, highHz, samplesPerColumn } = picture.layout;
-  const { channel, level } = request;
-  const codes =
-    level < FIRST_STORED_LEVELS[request.band]
-      ? await computedColumns({ source: request, picture, channel, level, ...span })
-      : await storedColumns(request, layout, span);
+  const { channel, level, band } = request;
+  const codes = await readColumns(request, layout, { band, channel, level, ...span });
   const columnSamples = samplesPerColumn * COLUMN_FACTOR ** level;
   return encodeTile({
     bins,
@@ -82,6 +74,13 @@ export async function readTile(request: TileRequest): Promise<Uint8Array> {
     dbPerCode: TILE_DB_PER_CODE,
     codes,
   });
+}
+
+/** What is quiet in each bin of the pictures of a channel. */
+export async function readQuietLevels(source: ViewSource, channel: number): Promise<QuietLevels> {
+  const layout = await layoutOf(source.viewsDir);
+  requireChannel(layout, channel);
+  return quietLevels(source, layout, channel);
 }
 
 export async function readSpectrum(viewsDir: string, channel: number): Promise<Spectrum> {
@@ -145,27 +144,6 @@ function frameRow(layout: ViewLayout, index: number, values: Float32Array): (num
   return row;
 }
 
-async function storedColumns(request: TileRequest, layout: ViewLayout, span: TileSpan): Promise<Uint8Array> {
-  const { band, channel, level } = request;
-  const bins = layout.picture(band)!.layout.bins;
-  const file = await open(viewPath(request.viewsDir, band), 'r');
-  try {
-    return await readRegion(file, layout.pictureRegion(band, channel, level), {
-      offsetBytes: span.firstColumn * bins,
-      sizeBytes: span.columns * bins,
-    });
-  } finally {
-    await file.close();
-  }
-}
-
-async function readRegion(file: FileHandle, region: FileRegion, part: FileRegion): Promise<Uint8Array> {
-  const bytes = new Uint8Array(part.sizeBytes);
-  const { bytesRead } = await file.read(bytes, 0, bytes.length, region.offsetBytes + part.offsetBytes);
-  if (bytesRead !== bytes.length) throw new Error('A view file is shorter than its recording asks for.');
-  return bytes;
-}
-
 interface TileSpan {
   firstColumn: number;
   columns: number;
@@ -175,7 +153,8 @@ function tileSpan(picture: Picture, level: number, tile: number): TileSpan {
   const { layout } = picture;
   const columns = columnsAtLevel(layout.columns, level);
   const firstColumn = tile * COLUMNS_PER_TILE;
-  const isPresent = Number.isInteger(level) && Number.isInteger(tile) && level >= 0 && tile >= 0;
+  const isPresent =
+    Number.isInteger(level) && Number.isInteger(tile) && level >= -layout.finerLevels && tile >= 0;
   if (!isPresent || level >= layout.levels || firstColumn >= columns) {
     throw new NoSuchViewError(`There is no tile ${tile} at level ${level} of the ${layout.band} picture.`);
   }

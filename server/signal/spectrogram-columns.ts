@@ -1,6 +1,7 @@
 import type { PictureBand, PictureLayout } from '../../shared/contract/views.ts';
 import { TILE_DB_PER_CODE, TILE_MINIMUM_DB } from '../../shared/audio/tile.ts';
 import type { ColumnEngine, EngineArray, RaiseColumn } from './frame-engine.ts';
+import { finerLevelsOf } from './finer-frames.ts';
 import { bandBins, type FrameGrid, type FramePlan } from './frame-plan.ts';
 
 export const COLUMNS_PER_TILE = 256;
@@ -47,11 +48,13 @@ function planPicture(band: PictureBand, grid: FrameGrid, sampleRateHz: number): 
     columns: grid.count,
     columnsPerTile: COLUMNS_PER_TILE,
     levels: countLevels(grid.count),
+    frameSamples: grid.size,
+    finerLevels: finerLevelsOf(band, grid.size),
   };
   return { layout, grid, firstBin: first, endBin: end };
 }
 
-/** Columns of a level: a quarter of the level below, the last column may hold fewer than four. */
+/** Columns of a level: a quarter of the level below, the last column may hold fewer than four; exact below level 0. */
 export function columnsAtLevel(columns: number, level: number): number {
   return Math.ceil(columns / COLUMN_FACTOR ** level);
 }

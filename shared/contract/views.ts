@@ -5,7 +5,13 @@ import { spectrumSchema } from './measurement.ts';
 export const pictureBandSchema = z.enum(['audible', 'ultrasonic']);
 export type PictureBand = z.infer<typeof pictureBandSchema>;
 
-/** One picture: `columns` at level 0; level n has a quarter of the columns of level n - 1, by maximum. */
+/** Levels below 0 are made of shorter frames: -1 to this at most. */
+export const mostFinerLevels = 8;
+
+/**
+ * One picture: `columns` at level 0; level n has a quarter of the columns of level n - 1, by maximum. Level -n has four times
+ * the columns of level 1 - n, made of frames half as long, down to `-finerLevels`; its bins are the same.
+ */
 export const pictureLayoutSchema = z.object({
   band: pictureBandSchema,
   /** Lower edge of the lowest bin and upper edge of the highest; the bins between are equally wide. */
@@ -16,6 +22,9 @@ export const pictureLayoutSchema = z.object({
   columns: z.number().int().min(1),
   columnsPerTile: z.number().int().min(1),
   levels: z.number().int().min(1),
+  /** Samples of the frames of level 0. */
+  frameSamples: z.number().int().min(1),
+  finerLevels: z.number().int().min(0).max(mostFinerLevels),
 });
 export type PictureLayout = z.infer<typeof pictureLayoutSchema>;
 
@@ -27,6 +36,19 @@ export const tileLayoutSchema = z.object({
   pictures: z.array(pictureLayoutSchema),
 });
 export type TileLayout = z.infer<typeof tileLayoutSchema>;
+
+/** What is quiet in a picture: for each level, the code of each bin as the tiles have them. */
+export const pictureQuietSchema = z.object({
+  band: pictureBandSchema,
+  levels: z.array(z.object({ level: z.number().int(), codes: z.array(z.number().int().min(0).max(255)) })),
+});
+export type PictureQuiet = z.infer<typeof pictureQuietSchema>;
+
+export const quietLevelsSchema = z.object({
+  channel: z.number().int().min(0),
+  pictures: z.array(pictureQuietSchema),
+});
+export type QuietLevels = z.infer<typeof quietLevelsSchema>;
 
 export const peaksSchema = z.object({
   channel: z.number().int().min(0),
@@ -50,7 +72,7 @@ export type PeaksQuery = z.infer<typeof peaksQuerySchema>;
 
 export const tileParamsSchema = z.object({
   band: pictureBandSchema,
-  level: z.coerce.number().int().min(0).max(20),
+  level: z.coerce.number().int().min(-mostFinerLevels).max(20),
   tile: z.coerce.number().int().min(0),
 });
 export const channelQuerySchema = z.object({ channel: channelSchema });

@@ -1,10 +1,12 @@
 import { pipeline } from 'node:stream/promises';
 import { idParamsSchema } from '../../../shared/contract/ids.ts';
+import { regionQuerySchema, regionReportSchema } from '../../../shared/contract/region.ts';
 import {
   channelQuerySchema,
   listenQuerySchema,
   peaksQuerySchema,
   peaksSchema,
+  quietLevelsSchema,
   spectrumResponseSchema,
   tileLayoutSchema,
   tileParamsSchema,
@@ -39,6 +41,26 @@ export function recordingViewsRoutes(deps: Deps): Route[] {
       params: idParamsSchema,
       response: tileLayoutSchema,
       handler: ({ actor, params }) => recordingViews.layout(actor, params.id),
+    }),
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings/:id/spectrogram/quiet',
+      summary: 'What is quiet in each bin of the pictures of a channel, level by level.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      query: channelQuerySchema,
+      response: quietLevelsSchema,
+      handler: ({ actor, params, query }) => recordingViews.quiet(actor, params.id, query.channel),
+    }),
+    defineRoute({
+      method: 'get',
+      path: '/api/recordings/:id/region',
+      summary: 'Levels and spectrum of a span of a channel, and of a quiet stretch beside it.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      query: regionQuerySchema,
+      response: regionReportSchema,
+      handler: ({ actor, params, query }) => deps.services.regions.measure(actor, params.id, query),
     }),
     defineRoute({
       method: 'get',

@@ -1,14 +1,23 @@
-import type { Peaks, PeaksQuery, PictureBand, TileLayout } from '../../../shared/contract/views.ts';
+import type {
+  Peaks,
+  PeaksQuery,
+  PictureBand,
+  QuietLevels,
+  TileLayout,
+} from '../../../shared/contract/views.ts';
 import type { Spectrum } from '../../../shared/contract/measurement.ts';
 import type { Actor } from '../../../shared/policy/actor.ts';
 import type { Ground } from '../../ground.ts';
 import { conflict, notFound } from '../../http/problem.ts';
+import { keptWhileUsed } from '../../services/kept-while-used.ts';
+import { createGate } from '../../services/gate.ts';
 import { tileLayout } from '../../measuring/view-layout.ts';
 import {
   NoSuchViewError,
   readFrameTable,
   type FrameTable,
   readPeaks,
+  readQuietLevels,
   readSpectrum,
   readTile,
 } from '../../measuring/view-reader.ts';
@@ -35,10 +44,16 @@ interface TilePlace {
   tile: number;
 }
 
+/** Quiet levels are a few kilobytes and cost up to a second where frames are long. */
+const quietLevelsKept = 200;
+
 export type RecordingViewsService = ReturnType<typeof createRecordingViewsService>;
 
 /** What can be looked at once a recording is measured. */
 export function createRecordingViewsService({ db, recordings, viewFolders, readStoredAudio }: Parts) {
+  const keptQuiet = keptWhileUsed<QuietLevels>(quietLevelsKept);
+  const oneAtATime = createGate(1);
+
   function requireMeasured(actor: Actor, id: string): MeasuredAccess {
     const access = recordings.requireVisible(actor, id);
     const measurementId = selectNewestMeasurementId(db, id);
@@ -69,6 +84,14 @@ export function createRecordingViewsService({ db, recordings, viewFolders, readS
     return knownView(() => readTile({ ...source, ...place }));
   }
 
+  async function quiet(actor: Actor, id: string, channel: number): Promise<QuietLevels> {
+    const access = requireMeasured(actor, id);
+    requireChannel(access.row, channel);
+    return keptQuiet(`${access.measurementId}/${channel}`, () =>
+      oneAtATime(async () => readQuietLevels(await sourceOf(access), channel)),
+    );
+  }
+
   function spectrum(actor: Actor, id: string, channel: number): Promise<Spectrum> {
     const { row, measurementId } = requireMeasured(actor, id);
     return knownView(() => readSpectrum(viewFolders.ofMeasurement(row.id, measurementId), channel));
@@ -81,7 +104,7 @@ export function createRecordingViewsService({ db, recordings, viewFolders, readS
     return readFrameTable(viewFolders.ofMeasurement(access.row.id, access.measurementId), channel);
   }
 
-  return { requireMeasured, peaks, layout, tile, spectrum, frames };
+  return { requireMeasured, peaks, layout, tile, quiet, spectrum, frames };
 }
 
 export function requireChannel({ format }: Pick<RecordingRow, 'format'>, channel: number): void {

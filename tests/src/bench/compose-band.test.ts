@@ -9,6 +9,8 @@ const layout: PictureLayout = {
   lowHz: 0,
   highHz: 400,
   bins: 4,
+  frameSamples: 8,
+  finerLevels: 0,
   samplesPerColumn: 10,
   columns: 64,
   columnsPerTile: 16,

@@ -18,6 +18,8 @@ function layoutOf(columns: number): PictureLayout {
     lowHz: 20_000,
     highHz: 96_000,
     bins: 100,
+    frameSamples: 256,
+    finerLevels: 3,
     samplesPerColumn: 128,
     columns,
     columnsPerTile: 256,

@@ -68,6 +68,8 @@ export const recordingsRows: MatrixRow[] = [
   ...readingRows('GET /api/recordings/:id/peaks', '/peaks?points=10'),
   ...readingRows('GET /api/recordings/:id/spectrogram/layout', '/spectrogram/layout'),
   ...readingRows('GET /api/recordings/:id/spectrogram/:band/:level/:tile', '/spectrogram/ultrasonic/1/0'),
+  ...readingRows('GET /api/recordings/:id/spectrogram/quiet', '/spectrogram/quiet'),
+  ...readingRows('GET /api/recordings/:id/region', '/region?startSample=100&endSample=2000'),
   ...readingRows('GET /api/recordings/:id/spectrum', '/spectrum'),
   ...readingRows('GET /api/recordings/:id/frames.csv', '/frames.csv', withheldFromBlind),
   ...readingRows('GET /api/recordings/:id/listen', '/listen?startSample=0&endSample=4800&slow=2'),
