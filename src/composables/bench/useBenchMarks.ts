@@ -20,6 +20,8 @@ export interface BenchMarksOptions {
   events: readonly RecordingEvent[];
 }
 
+export type BenchMarks = ReturnType<typeof useBenchMarks>;
+
 /** The marks on the bench, the changes of them with undo, and how far they are stored. */
 export function useBenchMarks(options: BenchMarksOptions) {
   const { recordingId, sampleRateHz, passId, scheme } = options;

@@ -1,0 +1,77 @@
+import { useLocalStorage } from '@vueuse/core';
+import { computed, nextTick, ref, shallowRef } from 'vue';
+import { voiceClassKey } from '@shared/domain/label-scheme.ts';
+import { FIRST_LOOK, nextColours } from '@/components/bench/look.ts';
+import { pointWords, scaleWords } from '@/components/bench/stage-words.ts';
+import { benchHotkeys } from '@/composables/bench/bench-hotkeys.ts';
+import { withKeys } from '@/composables/bench/class-keys.ts';
+import type { Bench } from '@/composables/bench/useBench.ts';
+import { useAnnounce } from '@/composables/useAnnounce.ts';
+import { useHotkeys } from '@/composables/useHotkeys.ts';
+
+export type DeskSheet = 'keys' | 'finish';
+export type Desk = ReturnType<typeof useDesk>;
+
+/** What the page around the bench adds to it: its keys, its sheets, the colours, the point under the pointer. */
+export function useDesk(bench: Bench) {
+  const { view, marks, layout } = bench;
+  const choices = withKeys(bench.scheme.classes);
+  const look = useLocalStorage('recalesce.bench.look', FIRST_LOOK, { mergeDefaults: true });
+  const point = shallowRef<{ sample: number; hz: number | null } | null>(null);
+  const openSheet = ref<DeskSheet | null>(null);
+  /** A class that holds the recording, while somebody is asked whether it is meant. */
+  const asked = shallowRef<{ classKey: string; isLessSure: boolean } | null>(null);
+  const { announce } = useAnnounce();
+
+  function chooseClass(classKey: string, isLessSure: boolean): void {
+    if (classKey === voiceClassKey) asked.value = { classKey, isLessSure };
+    else bench.chooseClass(classKey, isLessSure);
+  }
+
+  function confirmAsked(): void {
+    if (asked.value) bench.chooseClass(asked.value.classKey, asked.value.isLessSure);
+    asked.value = null;
+  }
+
+  function changeSelectedClass(classKey: string): void {
+    const mark = marks.selected.value;
+    if (classKey === voiceClassKey) chooseClass(classKey, false);
+    else if (mark) marks.change(mark.key, { classKey }, 'class');
+  }
+
+  async function editNote(): Promise<void> {
+    await nextTick();
+    document.querySelector<HTMLElement>('[data-note]')?.focus();
+  }
+
+  function takePoint(place: { sample: number; hz: number | null } | null): void {
+    point.value = place;
+    if (place) view.pointerSample.value = Math.min(layout.frames - 1, Math.max(0, place.sample));
+    else if (view.pointerSample.value !== null) view.placeCursor(view.pointerSample.value);
+  }
+
+  const hotkeys = benchHotkeys(bench, choices, {
+    showKeys: () => (openSheet.value = 'keys'),
+    nextColours: () => (look.value = nextColours(look.value)),
+    editNote: () => void editNote(),
+    say: (words) => void announce(words),
+    chooseClass,
+  });
+  const { inForce } = useHotkeys(hotkeys);
+
+  return {
+    choices,
+    look,
+    openSheet,
+    asked,
+    hotkeys: inForce,
+    scaleText: computed(() => scaleWords(bench, look.value)),
+    readout: computed(() => pointWords(point.value, layout.sampleRateHz)),
+    chooseClass,
+    confirmAsked,
+    changeSelectedClass,
+    takePoint,
+    /** Does what a key does, for a button. */
+    run: (id: string) => hotkeys.find((hotkey) => hotkey.id === id)?.run(new KeyboardEvent('keydown')),
+  };
+}

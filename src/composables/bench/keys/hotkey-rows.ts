@@ -1,0 +1,25 @@
+import type { Hotkey } from '@/composables/useHotkeys.ts';
+
+/** What the keys ask of the page around the bench. */
+export interface PageActions {
+  showKeys: () => void;
+  nextColours: () => void;
+  editNote: () => void;
+  /** For the live region. */
+  say: (words: string) => void;
+  /** Asked first, since some classes hold the recording. */
+  chooseClass: (classKey: string, isLessSure: boolean) => void;
+}
+
+export type Row = [id: string, combo: string, label: string, run: () => void, repeats?: boolean];
+
+export function toHotkeys(group: string, rows: readonly Row[]): Hotkey[] {
+  return rows.map(([id, combo, label, run, repeats = false]) => ({
+    id: `bench.${id}`,
+    combo,
+    label,
+    group,
+    repeats,
+    run,
+  }));
+}
