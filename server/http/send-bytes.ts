@@ -9,6 +9,16 @@ export interface BytesAnswer {
   cacheControl: string;
 }
 
+type MadeAnswer = Omit<BytesAnswer, 'bytes'> & { make: () => Promise<Uint8Array> };
+
+/** Bytes that cost something to make are not made for whoever has them. */
+export async function sendMade(req: Request, res: Response, { make, ...answer }: MadeAnswer): Promise<void> {
+  res.setHeader('ETag', `"${answer.etag}"`);
+  const isKept = req.fresh;
+  res.removeHeader('ETag');
+  sendBytes(req, res, { ...answer, bytes: isKept ? new Uint8Array(0) : await make() });
+}
+
 /** Sends bytes that were made for this request, with their validator and, where asked for, a single range of them. */
 export function sendBytes(req: Request, res: Response, answer: BytesAnswer): void {
   const { bytes, contentType, etag, cacheControl } = answer;

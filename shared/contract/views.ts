@@ -59,7 +59,7 @@ export const peaksSchema = z.object({
 });
 export type Peaks = z.infer<typeof peaksSchema>;
 
-const channelSchema = z.coerce.number().int().min(0).max(63).default(0);
+export const channelSchema = z.coerce.number().int().min(0).max(63).default(0);
 
 /** `endSample` is exclusive; without it, to the end of the recording. */
 export const peaksQuerySchema = z.object({
@@ -78,20 +78,3 @@ export const tileParamsSchema = z.object({
 export const channelQuerySchema = z.object({ channel: channelSchema });
 
 export const spectrumResponseSchema = spectrumSchema;
-
-/** Longest rendition that is made at once. */
-export const longestListenS = 120;
-
-/** A stretch to listen to, `slow` times slower than life; with 1 as it was, at a rate that every browser plays. */
-export const listenQuerySchema = z
-  .object({
-    channel: channelSchema,
-    startSample: z.coerce.number().int().min(0),
-    endSample: z.coerce.number().int().min(1),
-    slow: z.coerce.number().min(1).max(1000).default(1),
-  })
-  .refine((span) => span.endSample > span.startSample, {
-    path: ['endSample'],
-    message: 'must lie after the start',
-  });
-export type ListenQuery = z.infer<typeof listenQuerySchema>;

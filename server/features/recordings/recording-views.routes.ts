@@ -1,9 +1,9 @@
 import { pipeline } from 'node:stream/promises';
 import { idParamsSchema } from '../../../shared/contract/ids.ts';
+import { listenQuerySchema, quietSpanSchema } from '../../../shared/contract/listening.ts';
 import { regionQuerySchema, regionReportSchema } from '../../../shared/contract/region.ts';
 import {
   channelQuerySchema,
-  listenQuerySchema,
   peaksQuerySchema,
   peaksSchema,
   quietLevelsSchema,
@@ -13,7 +13,7 @@ import {
 } from '../../../shared/contract/views.ts';
 import type { Deps } from '../../deps.ts';
 import { defineRoute, type Route } from '../../http/define-route.ts';
-import { sendBytes } from '../../http/send-bytes.ts';
+import { sendBytes, sendMade } from '../../http/send-bytes.ts';
 import { toDisposition } from '../../http/send-file.ts';
 import { framesCsv } from './frames-csv.ts';
 
@@ -75,6 +75,7 @@ export function recordingViewsRoutes(deps: Deps): Route[] {
     tileRoute(deps),
     framesRoute(deps),
     listenRoute(deps),
+    quietSpanRoute(deps),
   ];
 }
 
@@ -126,14 +127,28 @@ function listenRoute({ services }: Deps): Route {
   return defineRoute({
     method: 'get',
     path: '/api/recordings/:id/listen',
-    summary: 'A stretch of a channel for the ear, slowed where asked, as 16-bit WAV at 48 kHz; takes ranges.',
+    summary:
+      'A stretch of a channel for the ear as 16-bit WAV at 48 kHz; slowed, shifted and freed of noise where asked; takes ranges.',
     access: 'signed-in',
     produces: 'audio/wav',
     params: idParamsSchema,
     query: listenQuerySchema,
     handler: async ({ actor, params, query, req, res }) => {
-      const rendition = await services.listening.listen(actor, params.id, query);
-      sendBytes(req, res, { ...rendition, contentType: 'audio/wav', cacheControl });
+      const { etag, make } = await services.listening.listen(actor, params.id, query);
+      await sendMade(req, res, { make, etag, contentType: 'audio/wav', cacheControl });
     },
+  });
+}
+
+function quietSpanRoute({ services }: Deps): Route {
+  return defineRoute({
+    method: 'get',
+    path: '/api/recordings/:id/quiet-span',
+    summary: 'A span of a channel that shows its noise, as the machine chooses it for listening.',
+    access: 'signed-in',
+    params: idParamsSchema,
+    query: channelQuerySchema,
+    response: quietSpanSchema,
+    handler: ({ actor, params, query }) => services.listening.quietSpan(actor, params.id, query.channel),
   });
 }

@@ -1,5 +1,5 @@
 import type { AudioContainer } from '@shared/audio/audio-format.ts';
-import { longestListenS } from '@shared/contract/views.ts';
+import { longestListenS } from '@shared/contract/listening.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 import { HEARING_LINE_HZ } from '@/composables/bench/hearing-line.ts';
 import { formatDuration, formatFrequency } from '@/composables/useFormat.ts';

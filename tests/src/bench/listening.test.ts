@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { longestListenS } from '@shared/contract/views.ts';
+import { longestListenS } from '@shared/contract/listening.ts';
 import {
   gainOf,
   heardWords,

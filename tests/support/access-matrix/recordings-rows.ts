@@ -73,6 +73,7 @@ export const recordingsRows: MatrixRow[] = [
   ...readingRows('GET /api/recordings/:id/spectrum', '/spectrum'),
   ...readingRows('GET /api/recordings/:id/frames.csv', '/frames.csv', withheldFromBlind),
   ...readingRows('GET /api/recordings/:id/listen', '/listen?startSample=0&endSample=4800&slow=2'),
+  ...readingRows('GET /api/recordings/:id/quiet-span', '/quiet-span'),
   {
     route: 'POST /api/recordings/:id/measure',
     state: 'after a measurement that failed',

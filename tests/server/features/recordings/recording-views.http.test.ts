@@ -1,8 +1,5 @@
 import { createHash } from 'node:crypto';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
-import { readWavHeader } from '../../../../shared/audio/wav-header.ts';
-import { bytesSource } from '../../../../shared/audio/byte-source.ts';
-import { decodeFrames } from '../../../../shared/audio/pcm-decode.ts';
 import { decodeTile } from '../../../../shared/audio/tile.ts';
 import { seedMeasured, seedPass, seedRecording, smallWav } from '../../../support/server/seed-recordings.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
@@ -132,51 +129,5 @@ describe('views', () => {
     const { body } = await get('/spectrum');
     expect(body.quietDbPerHz).toHaveLength(body.frequenciesHz.length);
     expect(body.maximumDbPerHz).toHaveLength(body.frequenciesHz.length);
-  });
-});
-
-describe('listening', () => {
-  test('slowed ten times, a burst of 30 kHz comes out at 3 kHz, ten times as late, and not too loud', async () => {
-    const answer = await binary('/listen?startSample=0&endSample=48000&slow=10');
-    const header = await readWavHeader(bytesSource(answer.body));
-    expect(header.format).toMatchObject({
-      sampleRateHz: 48_000,
-      channels: 1,
-      bitsPerSample: 16,
-      frames: 240_000,
-    });
-    const samples = new Float32Array(header.format.frames);
-    decodeFrames(answer.body.subarray(header.dataOffset), header.format, [samples]);
-    const loudest = samples.reduce((peak, sample) => Math.max(peak, Math.abs(sample)), 0);
-    expect(loudest).toBeLessThanOrEqual(10 ** (-6 / 20));
-    expect(loudest).toBeGreaterThan(0.3);
-    // The first burst begins at sample 9,600 of 96 kHz: 0.1 s, so 1 s, 48,000 samples of the rendition.
-    expect(samples.findIndex((sample) => Math.abs(sample) > 0.05)).toBeGreaterThan(47_980);
-    expect(samples.findIndex((sample) => Math.abs(sample) > 0.05)).toBeLessThan(48_020);
-    let crossings = 0;
-    for (let n = 48_000; n < 48_160; n++) if (samples[n]! < 0 !== samples[n + 1]! < 0) crossings++;
-    // 160 samples at 48 kHz are ten periods of 3 kHz.
-    expect(Math.abs(crossings - 20)).toBeLessThanOrEqual(1);
-  });
-
-  test('comes in ranges, from the same bytes each time', async () => {
-    const tail = '/listen?startSample=0&endSample=9600&slow=2';
-    const whole = await binary(tail);
-    const part = await binary(tail)
-      .set('Range', 'bytes=100-199')
-      .set('If-Range', String(whole.headers['etag']));
-    expect([part.status, part.headers['content-range']]).toEqual([206, `bytes 100-199/${whole.body.length}`]);
-    expect(part.body).toEqual(whole.body.subarray(100, 200));
-    expect((await get(tail).set('Range', 'bytes=99999999-')).status).toBe(416);
-  });
-
-  test.each([
-    ['startSample=10&endSample=10', 'endSample'],
-    ['startSample=48000&endSample=48010', 'startSample'],
-    ['startSample=0&endSample=48000&slow=241', 'endSample'],
-    ['startSample=0&endSample=48000&slow=0.5', 'slow'],
-  ])('%s is refused at %s', async (query, path) => {
-    const { status, body } = await get(`/listen?${query}`);
-    expect([status, body.fields[0].path]).toEqual([422, path]);
   });
 });
