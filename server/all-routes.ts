@@ -12,6 +12,8 @@ import { sensorsRoutes } from './features/sensors/sensors.routes.ts';
 import { sessionsRoutes } from './features/sessions/sessions.routes.ts';
 import { uploadsRoutes } from './features/uploads/uploads.routes.ts';
 import { schemesRoutes } from './features/schemes/schemes.routes.ts';
+import { phasesRoutes } from './features/phases/phases.routes.ts';
+import { timelineRoutes } from './features/timeline/timeline.routes.ts';
 import { passesRoutes } from './features/passes/passes.routes.ts';
 import { eventsRoutes } from './features/events/events.routes.ts';
 import { reviewsRoutes } from './features/reviews/reviews.routes.ts';
@@ -37,6 +39,8 @@ export function allRoutes(deps: Deps): Route[] {
     ...candidatesRoutes(deps),
     ...schemesRoutes(deps),
     ...passesRoutes(deps),
+    ...phasesRoutes(deps),
+    ...timelineRoutes(deps),
     ...eventsRoutes(deps),
     ...reviewsRoutes(deps),
     ...collectionsRoutes(deps),

@@ -15,10 +15,11 @@ import { tokenLifeMs } from './features/sessions/session-token.ts';
 import { createTokensService, type TokensService } from './features/sessions/tokens.service.ts';
 import type { Ground } from './ground.ts';
 import { createSessionCookie, type SessionCookie } from './http/session-cookie.ts';
+import { createBesideServices, type BesideServices } from './beside-services.ts';
 import { createMarkingServices, type MarkingServices } from './marking-services.ts';
 import { createRecordingServices, type RecordingServices } from './recording-services.ts';
 
-export interface Services extends RecordingServices, MarkingServices {
+export interface Services extends RecordingServices, MarkingServices, BesideServices {
   audit: AuditService;
   labs: LabsService;
   actors: ActorsService;
@@ -67,6 +68,7 @@ function createServices(ground: Ground): Services {
   const setup = createSetupService({ ...ground, audit, accounts });
   const health = createHealthService(ground);
   const ofRecordings = createRecordingServices(ground, audit);
+  const ofMarking = createMarkingServices(ground, audit, ofRecordings);
   return {
     audit,
     labs,
@@ -82,6 +84,7 @@ function createServices(ground: Ground): Services {
     setup,
     health,
     ...ofRecordings,
-    ...createMarkingServices(ground, audit, ofRecordings),
+    ...ofMarking,
+    ...createBesideServices(ground, audit, { ...ofRecordings, ...ofMarking }),
   };
 }

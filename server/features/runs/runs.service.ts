@@ -80,7 +80,13 @@ export function createRunsService({
     return view !== undefined && toRunFor(actor, view).editable ? view.run : undefined;
   }
 
-  return { list, get, create, update, findOwn };
+  /** For other features: the run, where the person may see it. */
+  function find(reader: Reader, actor: Actor, id: string): Run | undefined {
+    const view = selectRun(reader, id, scopeOf(actor));
+    return view === undefined ? undefined : toRunFor(actor, view);
+  }
+
+  return { list, get, create, update, find, findOwn };
 }
 
 function scopeOf(actor: Actor): RunScope {

@@ -1,3 +1,4 @@
+import { besideRows } from './beside-rows.ts';
 import { markingRows } from './marking-rows.ts';
 import type { MatrixRow } from './matrix-row.ts';
 import { peopleRows } from './people-rows.ts';
@@ -16,5 +17,6 @@ export const allRows: MatrixRow[] = [
   ...uploadsRows,
   ...recordingsRows,
   ...markingRows,
+  ...besideRows,
   ...releasingRows,
 ];
