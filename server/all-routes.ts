@@ -5,6 +5,7 @@ import { healthRoutes } from './features/health/health.routes.ts';
 import { labsRoutes } from './features/labs/labs.routes.ts';
 import { peopleRoutes } from './features/people/people.routes.ts';
 import { candidatesRoutes } from './features/recordings/candidates.routes.ts';
+import { onsetsRoutes } from './features/recordings/onsets.routes.ts';
 import { recordingViewsRoutes } from './features/recordings/recording-views.routes.ts';
 import { recordingsRoutes } from './features/recordings/recordings.routes.ts';
 import { runsRoutes } from './features/runs/runs.routes.ts';
@@ -37,6 +38,7 @@ export function allRoutes(deps: Deps): Route[] {
     ...recordingsRoutes(deps),
     ...recordingViewsRoutes(deps),
     ...candidatesRoutes(deps),
+    ...onsetsRoutes(deps),
     ...schemesRoutes(deps),
     ...passesRoutes(deps),
     ...phasesRoutes(deps),

@@ -6,6 +6,7 @@ import {
   type MeasuringRequestsService,
 } from './features/recordings/measuring-requests.service.ts';
 import { createMeasuringService, type MeasuringService } from './features/recordings/measuring.service.ts';
+import { createOnsetsService, type OnsetsService } from './features/recordings/onsets.service.ts';
 import {
   createRecordingViewsService,
   type RecordingViewsService,
@@ -46,6 +47,7 @@ export interface RecordingServices {
   candidates: CandidatesService;
   listening: ListeningService;
   regions: RegionsService;
+  onsets: OnsetsService;
   measuring: MeasuringService;
   measuringRequests: MeasuringRequestsService;
   /** Header and path of stored audio, for whoever measures on it. */
@@ -73,6 +75,7 @@ export function createRecordingServices(ground: Ground, audit: AuditService): Re
   const candidates = createCandidatesService({ ...ground, recordingViews });
   const listening = createListeningService({ recordingViews, readStoredAudio });
   const regions = createRegionsService({ recordingViews, readStoredAudio });
+  const onsets = createOnsetsService({ recordingViews, readStoredAudio });
   const measureFile = createMeasureFile(ground);
   const measuring = createMeasuringService({ ...ground, audit, viewFolders, readStoredAudio, measureFile });
   const measuringRequests = createMeasuringRequestsService({ ...ground, audit, recordings });
@@ -89,6 +92,7 @@ export function createRecordingServices(ground: Ground, audit: AuditService): Re
     candidates,
     listening,
     regions,
+    onsets,
     measuring,
     measuringRequests,
     readStoredAudio,

@@ -69,6 +69,7 @@ export const recordingsRows: MatrixRow[] = [
   ...readingRows('GET /api/recordings/:id/spectrogram/layout', '/spectrogram/layout'),
   ...readingRows('GET /api/recordings/:id/spectrogram/:band/:level/:tile', '/spectrogram/ultrasonic/1/0'),
   ...readingRows('GET /api/recordings/:id/spectrogram/quiet', '/spectrogram/quiet'),
+  ...readingRows('GET /api/recordings/:id/onset', '/onset?startSample=100&endSample=2000'),
   ...readingRows('GET /api/recordings/:id/region', '/region?startSample=100&endSample=2000'),
   ...readingRows('GET /api/recordings/:id/spectrum', '/spectrum'),
   ...readingRows('GET /api/recordings/:id/frames.csv', '/frames.csv', withheldFromBlind),
