@@ -16,6 +16,7 @@ import { schemesRoutes } from './features/schemes/schemes.routes.ts';
 import { phasesRoutes } from './features/phases/phases.routes.ts';
 import { timelineRoutes } from './features/timeline/timeline.routes.ts';
 import { passesRoutes } from './features/passes/passes.routes.ts';
+import { roundsRoutes } from './features/rounds/rounds.routes.ts';
 import { eventsRoutes } from './features/events/events.routes.ts';
 import { reviewsRoutes } from './features/reviews/reviews.routes.ts';
 import { collectionsRoutes } from './features/collections/collections.routes.ts';
@@ -44,6 +45,7 @@ export function allRoutes(deps: Deps): Route[] {
     ...phasesRoutes(deps),
     ...timelineRoutes(deps),
     ...eventsRoutes(deps),
+    ...roundsRoutes(deps),
     ...reviewsRoutes(deps),
     ...collectionsRoutes(deps),
     ...releasesRoutes(deps),

@@ -11,10 +11,16 @@ import { createGuardService, type GuardService } from './features/recordings/gua
 import { createMarkingService } from './features/recordings/marking.service.ts';
 import { createReleasePlan } from './features/releases/release-plan.ts';
 import { createReleasesService, type ReleasesService } from './features/releases/releases.service.ts';
+import { createAnswersService, type AnswersService } from './features/rounds/answers.service.ts';
+import { createRoundOrders, type RoundOrders } from './features/rounds/round-orders.ts';
+import { createRoundsService, type RoundsService } from './features/rounds/rounds.service.ts';
 import { createReviewsService, type ReviewsService } from './features/reviews/reviews.service.ts';
 import { createSchemesService, type SchemesService } from './features/schemes/schemes.service.ts';
 import type { Ground } from './ground.ts';
 import { createWorkerPool } from './jobs/worker-pool.ts';
+import { findLookAlikesIn, lookAlikesWorkerModule } from './measuring/look-alikes-in-worker.ts';
+import type { CandidateDescriptors } from './signal/look-alike-features.ts';
+import type { LookAlikeGroup } from './signal/look-alike-group.ts';
 import type { ArchiveTask } from './packaging/archive.worker.ts';
 import type { BuiltArchive } from './packaging/build-archive.ts';
 import { archiveWorkerModule, type ArchivePool } from './packaging/build-in-worker.ts';
@@ -25,6 +31,8 @@ export interface MarkingServices {
   schemes: SchemesService;
   passes: PassesService;
   events: EventsService;
+  rounds: RoundsService;
+  answers: AnswersService;
   guard: GuardService;
   reviews: ReviewsService;
   collections: CollectionsService;
@@ -36,13 +44,20 @@ export interface MarkingServices {
 export function createMarkingServices(
   ground: Ground,
   audit: AuditService,
-  { recordings, readStoredAudio }: Pick<RecordingServices, 'recordings' | 'readStoredAudio'>,
+  {
+    recordings,
+    readStoredAudio,
+    candidates,
+  }: Pick<RecordingServices, 'recordings' | 'readStoredAudio' | 'candidates'>,
 ): MarkingServices {
   const schemes = createSchemesService(ground);
   const passes = createPassesService({ ...ground, audit, schemes });
   const guard = createGuardService({ ...ground, audit });
   const marking = createMarkingService({ ...ground, recordings, guard, readStoredAudio });
   const events = createEventsService({ ...ground, audit, passes, schemes, recordings: marking });
+  const rounded = { ...ground, audit, passes, candidates, events };
+  const rounds = createRoundsService({ ...rounded, orders: createOrders(ground) });
+  const answers = createAnswersService(rounded);
   const reviews = createReviewsService({ ...ground, audit, guard });
   const collecting = createCollectingService(ground);
   const collections = createCollectionsService({ ...ground, audit, recordings: collecting });
@@ -50,7 +65,28 @@ export function createMarkingServices(
   const releases = createReleasesService({ ...ground, audit, collections, plan });
   const archivePool = createArchivePool(ground);
   const home = createHomeService(ground);
-  return { schemes, passes, events, guard, reviews, collections, releases, archivePool, home };
+  return {
+    schemes,
+    passes,
+    events,
+    rounds,
+    answers,
+    guard,
+    reviews,
+    collections,
+    releases,
+    archivePool,
+    home,
+  };
+}
+
+function createOrders({ db, onStop }: Ground): RoundOrders {
+  const pool = createWorkerPool<CandidateDescriptors, LookAlikeGroup[]>({
+    module: lookAlikesWorkerModule,
+    workers: 1,
+  });
+  onStop(() => pool.close());
+  return createRoundOrders(db, (descriptors) => findLookAlikesIn(pool, descriptors));
 }
 
 /** One archive at a time: building is bound by the disk. */

@@ -213,7 +213,7 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
   }
 
   /** Open pages hear of a recording that was held by a mark, not of every mark. */
-  function tellHold({ classKey, recordingId }: EventRow): void {
+  function tellHold({ classKey, recordingId }: Pick<EventRow, 'classKey' | 'recordingId'>): void {
     if (classKey === voiceClassKey) recordings.announce(recordingId);
   }
 

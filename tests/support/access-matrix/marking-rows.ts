@@ -1,5 +1,6 @@
 import { v7 as uuidV7 } from 'uuid';
 import { markInput, seedAssigned, seedMark } from '../server/seed-marking.ts';
+import { seedRound } from '../server/seed-rounds.ts';
 import { seedMeasured } from '../server/seed-recordings.ts';
 import type { TestApp } from '../server/test-app.ts';
 import { everybody, signedIn, type MatrixRow } from './matrix-row.ts';
@@ -9,6 +10,12 @@ async function markRequest(app: TestApp, held = false) {
   const event = await seedMark(app, assigned);
   if (held) app.deps.services.guard.share(app.deps.db as never, assigned.recordingId, 'held');
   return { path: `/api/events/${event.id}`, headers: { 'If-Match': '"1"' } };
+}
+
+async function answerRequest(app: TestApp) {
+  const { passId } = await seedRound(app);
+  const { items } = await app.deps.services.rounds.page(app.actor('labeler'), passId, { limit: 1 });
+  return { passId, candidateId: items[0]!.candidate.id, answer: { id: uuidV7(), verdict: 'no-event' } };
 }
 
 const labelerOnly = (status: number) => signedIn(404, { labeler: status });
@@ -103,5 +110,32 @@ export const markingRows: MatrixRow[] = [
     state: 'of the labeler',
     prepare: (app) => markRequest(app),
     expected: labelerOnly(204),
+  },
+  {
+    route: 'GET /api/passes/:id/round',
+    prepare: async (app) => ({ path: `/api/passes/${(await seedRound(app)).passId}/round` }),
+    expected: labelerOnly(200),
+  },
+  {
+    route: 'GET /api/passes/:id/round',
+    state: 'of a blind pass',
+    prepare: async (app) => ({ path: `/api/passes/${(await seedAssigned(app)).passId}/round` }),
+    expected: labelerOnly(409),
+  },
+  {
+    route: 'POST /api/candidates/:id/verdict',
+    prepare: async (app) => {
+      const { passId, candidateId, answer } = await answerRequest(app);
+      return { path: `/api/candidates/${candidateId}/verdict`, body: { ...answer, passId } };
+    },
+    expected: labelerOnly(200),
+  },
+  {
+    route: 'POST /api/passes/:id/verdicts',
+    prepare: async (app) => {
+      const { passId, candidateId, answer } = await answerRequest(app);
+      return { path: `/api/passes/${passId}/verdicts`, body: { answers: [{ ...answer, candidateId }] } };
+    },
+    expected: labelerOnly(200),
   },
 ];
