@@ -46,7 +46,7 @@ function identify(
     return { via: 'token', actor: requireTokenActor(authorization, authenticator) };
   const token = readCookie(request, cookie.name);
   const found = token === null ? null : authenticator.findBySessionToken(token, isUse(request));
-  if (found === null) return nobody;
+  if (found === null || isForSomebodyElse(request, found.actor)) return nobody;
   if (found.renewedToken !== null) cookie.set(response, found.renewedToken);
   return { via: 'cookie', actor: found.actor, sessionId: found.sessionId };
 }
@@ -57,6 +57,12 @@ function isUse(request: Request): boolean {
     request.method === 'GET' &&
     ['/api/sessions/current', '/api/activity'].includes(request.baseUrl + request.path)
   );
+}
+
+/** Work that waited in a browser says whose it is: it must not go out under whoever is signed in there by now. */
+function isForSomebodyElse(request: Request, actor: Actor): boolean {
+  const personId = request.headers['recalesce-person'];
+  return personId !== undefined && personId !== actor.id;
 }
 
 function requireTokenActor(authorization: string, authenticator: Authenticator): Actor {

@@ -21,6 +21,8 @@ interface SendOptions extends ReadOptions {
   body?: unknown;
   /** ETag of the revision that is changed. */
   ifMatch?: string;
+  /** In whose name this is sent: the server refuses it where somebody else is signed in by now. */
+  personId?: string;
 }
 
 interface RawRequest extends SendOptions {
@@ -57,6 +59,7 @@ function headersOf(request: RawRequest): Headers {
   const headers = new Headers({ accept: request.accept });
   if (request.body !== undefined) headers.set('content-type', 'application/json');
   if (request.ifMatch !== undefined) headers.set('if-match', request.ifMatch);
+  if (request.personId !== undefined) headers.set('recalesce-person', request.personId);
   return headers;
 }
 

@@ -124,55 +124,6 @@ describe('the bench', () => {
     await page.getByRole('heading', { name: /1 confirmed yet|[1-9]\d* confirmed yet/ }).waitFor();
   });
 
-  test('keeps marks while the connection is lost and stores them afterwards', async ({ page, guard }) => {
-    guard.expectConsoleError(/ERR_INTERNET_DISCONNECTED/);
-    await signIn(page, 'labeler');
-    const pass = await requirePass(page, false);
-    await openBench(page, `/bench/${pass.recordingId}?from=400000&to=500000`);
-    const before = await countMarks(page);
-    await page.context().setOffline(true);
-    await page.keyboard.press('KeyW');
-    await untilSaid(page, /Not stored yet: 1 mark, the server cannot be reached/);
-    expect(await countMarks(page)).toBe(before + 1);
-    await page.context().setOffline(false);
-    await untilSaid(page, /stored/);
-    await page.reload();
-    await page.locator('canvas.picture').waitFor();
-    expect(await countMarks(page)).toBe(before + 1);
-  });
-
-  test('asks which form of a mark counts when it was changed elsewhere', async ({
-    page,
-    openPage,
-    guard,
-  }) => {
-    guard.expectAnswer(412, /\/api\/events\//);
-    await signIn(page, 'labeler');
-    const other = await openPage();
-    await signIn(other, 'labeler');
-    const pass = await requirePass(page, false);
-    const address = `/bench/${pass.recordingId}?from=600000&to=700000`;
-    await openBench(page, address);
-    await page.keyboard.press('KeyR');
-    await untilSaid(page, /stored/);
-    await openBench(other, address);
-    await other.keyboard.press('KeyL');
-    await other.keyboard.press('KeyJ');
-    for (const one of [page, other]) await one.keyboard.press('Escape');
-    const mine = rows(page).filter({ hasText: 'vessel' }).first();
-    const theirs = rows(other).filter({ hasText: 'vessel' }).first();
-    await mine.click();
-    await theirs.click();
-    await other.getByLabel('Note').fill('looked at twice');
-    await other.keyboard.press('Tab');
-    await untilSaid(other, /stored/);
-    await page.getByLabel('Confidence').selectOption('unsure');
-    await untilSaid(page, /1 mark to decide on/);
-    await page.getByRole('button', { name: 'Keep mine' }).click();
-    await untilSaid(page, /stored/);
-    expect(await mine.textContent()).toContain('unsure');
-  });
-
   test('shows a recording without a lane of classes to those who only look', async ({ page }) => {
     await signIn(page, 'contributor');
     const list = await page.request.get('/api/recordings?limit=50');

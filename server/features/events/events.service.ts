@@ -6,7 +6,7 @@ import type { Actor } from '../../../shared/policy/actor.ts';
 import type { Reader, Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
-import { conflict, invalidField, notFound } from '../../http/problem.ts';
+import { invalidField, notFound, ProblemError } from '../../http/problem.ts';
 import { requireSameRevision } from '../../http/revision.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import type { PassesService } from '../passes/passes.service.ts';
@@ -78,9 +78,8 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
     const { recordingId, ...mark } = input;
     if (row.recordingId !== recordingId || row.passId !== mark.passId) throw notFound('This mark');
     if (isSameMark(row, mark)) return toEvent(row);
-    if (revision === null)
-      throw conflict('Another mark has this id. Send If-Match with its revision to change it.');
-    return change(actor, row, mark, revision);
+    // Without a revision it is the retry of a create, whose mark was changed since: no revision is the one it knows.
+    return change(actor, row, mark, revision ?? 0);
   }
 
   async function patch(
@@ -249,10 +248,10 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
   return { list, create, put, patch, remove, within };
 }
 
-/** Somebody else's mark is answered like one that does not exist. */
+/** Somebody else's mark is answered like one that does not exist; that an own one was deleted is no secret. */
 function requireOwn(actor: Actor, row: EventRow | undefined): EventRow {
   if (!row || row.createdById !== actor.id) throw notFound('This mark');
-  if (row.deletedAtMs !== null) throw notFound('This mark');
+  if (row.deletedAtMs !== null) throw new ProblemError('gone', 'This mark was deleted.');
   return row;
 }
 

@@ -28,7 +28,8 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   });
   const { channel, plotWidthPx } = sources;
   const passId = canMark ? pass.id : null;
-  const marks = useBenchMarks({ recordingId: recording.id, sampleRateHz, passId, scheme, events });
+  const place = { recordingId: recording.id, title: recording.runTitle, sampleRateHz };
+  const marks = useBenchMarks({ ...place, passId, scheme, events });
   const { container } = recording.format;
   const listening = useListening({ recordingId: recording.id, sampleRateHz, container, channel });
 

@@ -5,14 +5,17 @@ import type { LabelScheme } from '@shared/contract/schemes.ts';
 import { byTime, fieldsOf, hasSameFields, toBenchMark } from '@/composables/bench/mark.ts';
 import type { BenchMark, MarkFields } from '@/composables/bench/mark.ts';
 import { markName, markSentence } from '@/composables/bench/mark-words.ts';
-import { saveWords } from '@/composables/bench/save-words.ts';
+import { takeBack } from '@/composables/bench/take-back.ts';
 import { emptyUndoStack, pushStep, takeRedo, takeUndo } from '@/composables/bench/undo-stack.ts';
 import type { Taken } from '@/composables/bench/undo-stack.ts';
 import { useMarkSaving } from '@/composables/bench/useMarkSaving.ts';
+import type { ShownMark } from '@/composables/bench/useMarkSaving.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 
 export interface BenchMarksOptions {
   recordingId: string;
+  /** Of the run, to name what waits by it. */
+  title: string;
   sampleRateHz: number;
   /** The open pass of this person; without one, marks are only shown. */
   passId: string | null;
@@ -24,7 +27,7 @@ export type BenchMarks = ReturnType<typeof useBenchMarks>;
 
 /** The marks on the bench, the changes of them with undo, and how far they are stored. */
 export function useBenchMarks(options: BenchMarksOptions) {
-  const { recordingId, sampleRateHz, passId, scheme } = options;
+  const { sampleRateHz, passId, scheme } = options;
   const { announce } = useAnnounce();
   const speech = { classes: scheme.classes, sampleRateHz };
   const byKey = shallowRef(
@@ -35,25 +38,18 @@ export function useBenchMarks(options: BenchMarksOptions) {
   const selected = computed(() => byKey.value.get(selectedKey.value ?? '') ?? null);
   const undoStack = shallowRef(emptyUndoStack<MarkFields>());
 
-  const { queue, entries, halt, undecided } = useMarkSaving({
-    recordingId,
-    passId: passId ?? '',
-    onStored: takeStored,
-  });
-  for (const event of options.events) queue.adopt(event.id, event.id, event.revision);
+  const saving = useMarkSaving({ ...options, passId: passId ?? '', onShow: showMark });
 
-  const lastStored = new Map(options.events.map((event) => [event.id, event] as const));
-
-  function takeStored(key: string, event: RecordingEvent | null): void {
-    if (event) lastStored.set(key, event);
-    const present = byKey.value.get(key);
-    if (queue.isPending(key)) return;
-    if (!event) {
-      if (present) place(key, null);
+  /** A mark as another window, the server or an earlier page left it. */
+  function showMark(key: string, { fields, event, isSaved }: ShownMark): void {
+    if (!fields || !passId) {
+      if (byKey.value.has(key)) place(key, null);
       return;
     }
-    place(key, toBenchMark(event, passId, key));
-    void announce(`${markSentence(event, speech)}, saved`);
+    const known = byKey.value.get(key) ?? null;
+    const parameters = parametersFor(fields, event) ?? parametersFor(fields, known);
+    place(key, { ...fields, key, passId, isOwn: true, parameters });
+    if (isSaved) void announce(`${markSentence(fields, speech)}, saved`);
   }
 
   function place(key: string, mark: BenchMark | null): void {
@@ -67,19 +63,14 @@ export function useBenchMarks(options: BenchMarksOptions) {
   /** Puts a mark into this form, here at once and on the server as soon as it can be. */
   function put(key: string, fields: MarkFields | null): void {
     if (!passId) return;
-    const present = byKey.value.get(key);
     if (!fields) {
       place(key, null);
-      queue.remove(key);
+      saving.remove(key);
       return;
     }
-    const isSameSpan =
-      present?.startSample === fields.startSample &&
-      present.endSample === fields.endSample &&
-      present.channel === fields.channel;
-    const parameters = isSameSpan ? present.parameters : null;
+    const parameters = parametersFor(fields, byKey.value.get(key) ?? null);
     place(key, { ...fields, key, passId, isOwn: true, parameters });
-    queue.keep(key, fields);
+    saving.keep(key, fields);
   }
 
   function step(change: { name: string; what: string; key: string; after: MarkFields | null }): void {
@@ -112,20 +103,19 @@ export function useBenchMarks(options: BenchMarksOptions) {
     void announce(`${markName(present, speech)} deleted`);
   }
 
-  /** Giving up a change that the server refused goes back to what it has. */
-  function decide(key: string, choice: 'mine' | 'theirs'): void {
-    const entry = undecided.value.find((one) => one.key === key);
-    queue.decide(key, choice);
-    const kept = entry?.state === 'refused' && entry.revision !== null ? lastStored.get(key) : undefined;
-    if (choice === 'theirs' && kept) place(key, toBenchMark(kept, passId, key));
-  }
-
   function goTo(taken: Taken<MarkFields> | null, side: 'before' | 'after'): void {
     if (!taken) return;
     undoStack.value = taken.stack;
     const { key, name } = taken.step;
-    put(key, taken.step[side]);
-    if (taken.step[side]) selectedKey.value = key;
+    const present = byKey.value.get(key);
+    const from = taken.step[side === 'before' ? 'after' : 'before'];
+    const fields = takeBack(present ? fieldsOf(present) : null, from, taken.step[side]);
+    if (fields === undefined) {
+      void announce(`Left as it is, since another window changed it: ${name}`);
+      return;
+    }
+    put(key, fields);
+    if (fields) selectedKey.value = key;
     void announce(side === 'before' ? `Taken back: ${name}` : `Done again: ${name}`);
   }
 
@@ -141,12 +131,22 @@ export function useBenchMarks(options: BenchMarksOptions) {
     undoName: computed(() => undoStack.value.done.at(-1)?.name ?? null),
     redoName: computed(() => undoStack.value.undone.at(-1)?.name ?? null),
     ownCount: computed(() => marks.value.filter(({ isOwn }) => isOwn).length),
-    saving: computed(() =>
-      saveWords(entries.value, halt.value, marks.value.filter(({ isOwn }) => isOwn).length),
-    ),
-    isAllStored: computed(() => entries.value.length === 0),
-    undecided,
-    decide,
-    retry: queue.retry,
+    saving: computed(() => saving.words(marks.value.filter(({ isOwn }) => isOwn).length)),
+    isAllStored: saving.isAllStored,
+    undecided: saving.undecided,
+    decide: saving.decide,
+    retry: saving.retry,
   };
+}
+
+/** The figures of a burst hold as long as its span does. */
+function parametersFor(
+  fields: MarkFields,
+  known: Pick<BenchMark, 'channel' | 'startSample' | 'endSample' | 'parameters'> | null,
+): BenchMark['parameters'] {
+  const isSameSpan =
+    known?.startSample === fields.startSample &&
+    known.endSample === fields.endSample &&
+    known.channel === fields.channel;
+  return isSameSpan ? known.parameters : null;
 }

@@ -46,6 +46,24 @@ describe('setting a mark', () => {
     expect(revisionsOf(id)).toHaveLength(1);
   });
 
+  test('again after it was changed is refused with the mark as it is now, and after it was deleted as gone', async () => {
+    const id = uuidV7();
+    const again = () => labeler().put(`/api/events/${id}`).send(body());
+    await again();
+    await labeler().patch(`/api/events/${id}`).set('If-Match', '"1"').send({ note: 'double' });
+    const changed = await again();
+    expect([changed.status, changed.body.current?.note]).toEqual([412, 'double']);
+    await labeler().delete(`/api/events/${id}`).set('If-Match', '"2"').expect(204);
+    expect((await again()).status).toBe(410);
+  });
+
+  test('in the name of somebody else than is signed in asks to sign in, and stores nothing', async () => {
+    const id = uuidV7();
+    const late = await labeler().put(`/api/events/${id}`).set('Recalesce-Person', uuidV7()).send(body());
+    expect([late.status, late.body.code]).toEqual([401, 'sign-in-required']);
+    expect(revisionsOf(id)).toEqual([]);
+  });
+
   test('twice under one id at the same time stores one mark', async () => {
     const id = uuidV7();
     const answers = await Promise.all([1, 2, 3].map(() => labeler().put(`/api/events/${id}`).send(body())));
@@ -137,7 +155,7 @@ describe('changing a mark', () => {
       { note: 'double' },
       { deleted: true },
     ]);
-    await labeler().delete(`/api/events/${id}`).set('If-Match', '"3"').expect(404);
+    await labeler().delete(`/api/events/${id}`).set('If-Match', '"3"').expect(410);
   });
 
   test('is over when the pass is finished', async () => {

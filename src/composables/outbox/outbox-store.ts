@@ -1,0 +1,88 @@
+import type { OutboxEntry } from '@/composables/outbox/outbox-entry.ts';
+
+/**
+ * Gets what is kept under an id and says what is to be kept instead: `null` for nothing. Pure, since it may be asked twice.
+ * An entry with another id takes the place of the one before.
+ */
+export type EntryChange = (present: OutboxEntry | undefined) => OutboxEntry | null;
+
+/** Where entries are kept until the server has them. */
+export interface OutboxStore {
+  /** One change at a time, whole or not at all. Resolves when it is kept. */
+  update(id: string, change: EntryChange): Promise<OutboxEntry | null>;
+  get(id: string): Promise<OutboxEntry | undefined>;
+  /** Of everybody who used this browser. */
+  all(): Promise<OutboxEntry[]>;
+}
+
+/** Keeps entries as long as the page lives. */
+export function createMemoryStore(): OutboxStore {
+  const entries = new Map<string, OutboxEntry>();
+  return {
+    update: async (id, change) => {
+      const next = change(entries.get(id));
+      if (next?.id !== id) entries.delete(id);
+      if (next) entries.set(next.id, next);
+      return Promise.resolve(next);
+    },
+    get: async (id) => Promise.resolve(entries.get(id)),
+    all: async () => Promise.resolve([...entries.values()]),
+  };
+}
+
+export interface GuardedStore extends OutboxStore {
+  /** False while something is kept in the memory of this page alone. */
+  isDurable: () => boolean;
+}
+
+/**
+ * Keeps in the memory of the page what the store does not take: where a browser has no storage, or no room left, marking
+ * goes on and somebody can be told.
+ */
+export function guardStore(store: OutboxStore): GuardedStore {
+  const held = new Map<string, OutboxEntry | null>();
+  const seen = new Map<string, OutboxEntry>();
+
+  function remember(id: string, entry: OutboxEntry | null): OutboxEntry | null {
+    seen.delete(id);
+    if (entry) seen.set(entry.id, entry);
+    return entry;
+  }
+
+  function presentOf(id: string, stored: OutboxEntry | undefined): OutboxEntry | undefined {
+    const entry = held.get(id);
+    return entry === undefined ? stored : (entry ?? undefined);
+  }
+
+  function hold(id: string, change: EntryChange): OutboxEntry | null {
+    const next = change(presentOf(id, seen.get(id)));
+    held.set(id, null);
+    if (next) held.set(next.id, next);
+    else if (!seen.has(id)) held.delete(id);
+    return remember(id, next);
+  }
+
+  async function update(id: string, change: EntryChange): Promise<OutboxEntry | null> {
+    try {
+      const next = await store.update(id, (stored) => change(presentOf(id, stored)));
+      held.delete(id);
+      return remember(id, next);
+    } catch {
+      return hold(id, change);
+    }
+  }
+
+  async function all(): Promise<OutboxEntry[]> {
+    const stored = await store.all().catch(() => [...seen.values()]);
+    for (const entry of stored) seen.set(entry.id, entry);
+    const kept = stored.filter(({ id }) => !held.has(id));
+    return [...kept, ...[...held.values()].filter((entry) => entry !== null)];
+  }
+
+  return {
+    update,
+    all,
+    get: async (id) => presentOf(id, await store.get(id).catch(() => seen.get(id))),
+    isDurable: () => ![...held.values()].some((entry) => entry !== null),
+  };
+}

@@ -1,0 +1,130 @@
+import { useEventListener } from '@vueuse/core';
+import { defineStore } from 'pinia';
+import { v7 as newId } from 'uuid';
+import { computed, shallowRef, watch } from 'vue';
+import type { RecordingEvent } from '@shared/contract/events.ts';
+import { createIndexedStore } from '@/composables/outbox/indexed-store.ts';
+import { oneSender } from '@/composables/outbox/one-sender.ts';
+import type { MarkChange, MarkPlace, OutboxEntry } from '@/composables/outbox/outbox-entry.ts';
+import type { Halt } from '@/composables/outbox/outbox-sender.ts';
+import { guardStore } from '@/composables/outbox/outbox-store.ts';
+import { createOutbox } from '@/composables/outbox/outbox.ts';
+import type { Outbox, Told } from '@/composables/outbox/outbox.ts';
+import { sendMark } from '@/composables/outbox/send-mark.ts';
+import { createTabChannel } from '@/composables/outbox/tab-channel.ts';
+import { useSessionStore } from '@/stores/session.ts';
+
+function waitFor(delayMs: number, run: () => void): () => void {
+  const timer = setTimeout(run, delayMs);
+  return () => clearTimeout(timer);
+}
+
+/** The marks of whoever is signed in that wait in this browser. Works on every page, so that they go out wherever one is. */
+export const useOutboxStore = defineStore('outbox', () => {
+  const session = useSessionStore();
+  const kept = guardStore(createIndexedStore());
+  const channel = createTabChannel();
+  const entries = shallowRef<readonly OutboxEntry[]>([]);
+  /** Changes on their way into the storage of the browser. */
+  const writingIds = shallowRef<readonly string[]>([]);
+  const halt = shallowRef<Halt>('none');
+  const isDurable = shallowRef(true);
+  const othersCount = shallowRef(0);
+  const listeners = new Set<(told: Told) => void>();
+  const recent = new Map<string, RecordingEvent | null>();
+  let outbox: Outbox | null = null;
+
+  function begin(personId: string): Outbox {
+    return createOutbox({
+      personId,
+      store: kept,
+      channel,
+      send: sendMark,
+      newId,
+      alone: (work) => oneSender(personId, work),
+      wait: waitFor,
+      random: Math.random,
+      nowMs: Date.now,
+      onTold: tell,
+      onChange: show,
+    });
+  }
+
+  function tell(told: Told): void {
+    if (told.event !== undefined) recent.set(told.event?.id ?? told.id, told.event);
+    for (const listener of listeners) listener(told);
+  }
+
+  function show(): void {
+    entries.value = outbox?.entries() ?? [];
+    writingIds.value = outbox?.writingIds() ?? [];
+    halt.value = outbox?.halt() ?? 'none';
+    isDurable.value = kept.isDurable();
+  }
+
+  async function load(begun: Outbox): Promise<void> {
+    const count = await begun.load();
+    if (begun === outbox) othersCount.value = count;
+  }
+
+  function changePerson(personId: string | undefined): void {
+    outbox?.stop();
+    outbox = personId === undefined ? null : begin(personId);
+    othersCount.value = 0;
+    recent.clear();
+    show();
+    if (outbox) void load(outbox);
+  }
+
+  watch(() => session.user?.id, changePerson, { immediate: true, flush: 'sync' });
+  watch(
+    () => session.hasEnded,
+    (hasEnded) => {
+      if (!hasEnded) outbox?.retry();
+    },
+  );
+  // Whether there is a network is only a hint: a server on the same machine is reached without one.
+  useEventListener(window, 'online', () => outbox?.retry());
+  useEventListener(document, 'visibilitychange', () => {
+    if (document.visibilityState === 'visible' && halt.value !== 'signed-out') outbox?.retry();
+  });
+  useEventListener(window, 'beforeunload', (event: BeforeUnloadEvent) => {
+    if (writingIds.value.length > 0 || !isDurable.value) event.preventDefault();
+  });
+  watch(halt, (reason) => {
+    if (reason !== 'none') keepThroughShortage().catch(() => undefined);
+  });
+
+  return {
+    entries,
+    writingIds,
+    halt,
+    isDurable,
+    /** Marks of other people who used this browser. */
+    othersCount,
+    undecided: computed(() => entries.value.filter(({ state }) => state !== 'waiting')),
+    /** What the server was heard to have, by id, since marks were last fetched; `null` for what was removed. */
+    recent: recent as ReadonlyMap<string, RecordingEvent | null>,
+    /** Marks are about to be fetched: what is heard from now on may be newer than what comes. */
+    forgetRecent: () => recent.clear(),
+    put: async (change: MarkChange, place: MarkPlace) => {
+      const own = outbox && session.user?.id === place.personId ? outbox : begin(place.personId);
+      if (own !== outbox) own.stop();
+      await own.put(change, place);
+    },
+    decide: async (id: string, choice: 'mine' | 'theirs') => outbox?.decide(id, choice),
+    retry: () => outbox?.retry(),
+    isPending: (id: string) => outbox?.isPending(id) ?? false,
+    /** Calls the listener at each change of a mark. Returns the way to stop it. */
+    onTold(listener: (told: Told) => void): () => void {
+      listeners.add(listener);
+      return () => listeners.delete(listener);
+    },
+  };
+});
+
+/** Asked for when marks have to wait: a browser that is short of room must not clear them away. */
+async function keepThroughShortage(): Promise<void> {
+  const storage = (navigator as Partial<Navigator>).storage;
+  if (storage && !(await storage.persisted())) await storage.persist();
+}
