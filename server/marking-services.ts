@@ -5,6 +5,7 @@ import {
 } from './features/collections/collections.service.ts';
 import { createEventsService, type EventsService } from './features/events/events.service.ts';
 import { createHomeService, type HomeService } from './features/home/home.service.ts';
+import { createCoverageService, type CoverageService } from './features/passes/coverage.service.ts';
 import { createPassesService, type PassesService } from './features/passes/passes.service.ts';
 import { createCollectingService } from './features/recordings/collecting.service.ts';
 import { createGuardService, type GuardService } from './features/recordings/guard.service.ts';
@@ -30,6 +31,7 @@ import type { RecordingServices } from './recording-services.ts';
 export interface MarkingServices {
   schemes: SchemesService;
   passes: PassesService;
+  coverage: CoverageService;
   events: EventsService;
   rounds: RoundsService;
   answers: AnswersService;
@@ -52,6 +54,7 @@ export function createMarkingServices(
 ): MarkingServices {
   const schemes = createSchemesService(ground);
   const passes = createPassesService({ ...ground, audit, schemes });
+  const coverage = createCoverageService(ground);
   const guard = createGuardService({ ...ground, audit });
   const marking = createMarkingService({ ...ground, recordings, guard, readStoredAudio });
   const events = createEventsService({ ...ground, audit, passes, schemes, recordings: marking });
@@ -68,6 +71,7 @@ export function createMarkingServices(
   return {
     schemes,
     passes,
+    coverage,
     events,
     rounds,
     answers,

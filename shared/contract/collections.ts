@@ -42,7 +42,8 @@ export type ListCollectionsQuery = z.infer<typeof listCollectionsQuerySchema>;
 export const collectionItemSchema = recordingListItemSchema.extend({
   licence: licenceSchema,
   finishedPasses: z.number().int(),
-  eventCount: z.number().int(),
+  /** `null` where the asking person works blind on the recording. */
+  eventCount: z.number().int().nullable(),
   addedAt: instantSchema,
 });
 export type CollectionItem = z.infer<typeof collectionItemSchema>;

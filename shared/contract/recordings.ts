@@ -125,6 +125,8 @@ export const recordingSchema = recordingListItemSchema.extend({
   eventCount: z.number().int().nullable(),
   /** True while an open blind pass of this person forbids candidates, counts and rates. */
   blind: z.boolean(),
+  /** True while this person marks growth phases of the run without its sound: nothing made from the samples is told. */
+  isSoundWithheld: z.boolean(),
   /** What the asking person may do with it; the server decides again at each request. */
   may: z.object({ downloadAudio: z.boolean(), decide: z.boolean(), assign: z.boolean(), mark: z.boolean() }),
   revision: revisionSchema,

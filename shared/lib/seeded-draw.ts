@@ -1,18 +1,12 @@
+import { seededRandom } from './seeded-random.ts';
+
 /** Whole numbers from 0 to below `bound`, the same for the same seed on every machine. */
 export type Draw = (bound: number) => number;
 
-/**
- * For choosing examples, useless for secrets. 32 bits of state, one step per number.
- * Source: Tommy Ettinger (2017), mulberry32, public domain.
- */
+/** For choosing examples, useless for secrets; one step of the generator per number. */
 export function seededDraw(seed: number): Draw {
-  let state = seed >>> 0;
-  return (bound) => {
-    state = (state + 0x6d2b79f5) >>> 0;
-    let mixed = Math.imul(state ^ (state >>> 15), state | 1);
-    mixed ^= mixed + Math.imul(mixed ^ (mixed >>> 7), mixed | 61);
-    return Math.floor((((mixed ^ (mixed >>> 14)) >>> 0) / 0x1_0000_0000) * bound);
-  };
+  const random = seededRandom(seed);
+  return (bound) => Math.floor(random() * bound);
 }
 
 /** Every number from 0 to below `count` once, in a drawn order (Fisher and Yates 1938, in the form of Durstenfeld 1964). */

@@ -7,7 +7,7 @@ import { realFft } from '../../server/signal/fft.ts';
 import { hannWindow } from '../../server/signal/hann.ts';
 import { floorSpectrum } from '../server/signal/floor-spectrum.ts';
 import { addDampedSine } from '../../server/setup/demo-audio/damped-sine.ts';
-import { between, seededRandom } from '../../server/setup/demo-audio/seeded-random.ts';
+import { between, seededRandom } from '../../shared/lib/seeded-random.ts';
 import { pinkNoise, whiteNoise } from '../../server/setup/demo-audio/noise.ts';
 
 // Prints where the bandwidth of files ends that were compressed with loss or converted from a lower rate, as the recordings'

@@ -56,13 +56,14 @@ export function createAuditService({ db, clock, ids }: Pick<Ground, 'db' | 'cloc
   function list(actor: Actor, query: z.output<typeof listAuditQuerySchema>): z.input<typeof auditPageSchema> {
     authorize(actor, { action: 'read', name: 'Audit', row: { id: '' } });
     const beforeSequence = query.cursor === undefined ? null : decodeCursor(query.cursor, 'number');
-    const rows = selectAuditRows(db, query, { beforeSequence, limit: query.limit + 1 });
+    const filter = { ...query, markerId: actor.roles.includes('labeler') ? actor.id : undefined };
+    const rows = selectAuditRows(db, filter, { beforeSequence, limit: query.limit + 1 });
     const shown = rows.slice(0, query.limit);
     const last = shown.at(-1);
     return {
       items: shown.map(({ row, personName }) => toAuditRow(row, personName)),
       nextCursor: rows.length > query.limit && last !== undefined ? encodeCursor(last.row.sequence) : null,
-      total: toTotal(countAuditRows(db, query)),
+      total: toTotal(countAuditRows(db, filter)),
     };
   }
 

@@ -36,9 +36,12 @@ import {
   type ItemView,
 } from './collections.queries.ts';
 
+/** No count of marks is told of one that the asking person marks blind. */
+type CollectableRecording = RecordingListItem & { licence: Licence; isWithheld: boolean };
+
 /** What collecting asks of the recordings feature: only recordings the person may see, only while they are shared. */
 export interface CollectableRecordings {
-  sharedByIds(actor: Actor, ids: readonly string[]): (RecordingListItem & { licence: Licence })[];
+  sharedByIds(actor: Actor, ids: readonly string[]): CollectableRecording[];
   sharedIdsByFilter(actor: Actor, filter: NonNullable<AddItems['filter']>): string[];
 }
 
@@ -108,8 +111,11 @@ export function createCollectionsService({ db, clock, ids, audit, recordings }: 
     );
     const byId = new Map(found.map((recording) => [recording.id, recording]));
     return items.flatMap(({ recordingId, finishedPasses, eventCount, addedAtMs }) => {
-      const recording = byId.get(recordingId);
-      return recording ? [{ ...recording, finishedPasses, eventCount, addedAt: toInstant(addedAtMs) }] : [];
+      const found = byId.get(recordingId);
+      if (!found) return [];
+      const { isWithheld, ...recording } = found;
+      const counts = { finishedPasses, eventCount: isWithheld ? null : eventCount };
+      return [{ ...recording, ...counts, addedAt: toInstant(addedAtMs) }];
     });
   }
 

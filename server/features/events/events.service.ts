@@ -11,7 +11,7 @@ import { requireSameRevision } from '../../http/revision.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import type { PassesService } from '../passes/passes.service.ts';
 import type { SchemesService } from '../schemes/schemes.service.ts';
-import { checkMark } from './event-checks.ts';
+import { checkMark, checkPart, type MarkedPass } from './event-checks.ts';
 import { isSameMark, toEvent, toNewRow, withChange } from './events.map.ts';
 import {
   insertEvent,
@@ -51,13 +51,15 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
     return selectEventsOfPasses(db, visible).map(toEvent);
   }
 
-  /** Blind, a person sees the own marks only; otherwise those of finished passes too, and a curator sees all. */
+  /** Blind, a person sees the own marks of that pass only; otherwise those of finished passes too, and a curator sees all. */
   function visiblePassIds(actor: Actor, recordingId: string): string[] {
     const all = passes.ofRecording(db, recordingId);
     const isBlind = passes.isBlindOn(db, actor, recordingId);
+    // Blind, not even those of an earlier pass: whoever marks a second time must not see what they said the first time.
     const isOpenTo = (pass: (typeof all)[number]) =>
-      pass.labelerId === actor.id ||
-      (!isBlind && (actor.roles.includes('curator') || pass.state === 'finished'));
+      isBlind
+        ? pass.labelerId === actor.id && pass.state === 'assigned'
+        : pass.labelerId === actor.id || actor.roles.includes('curator') || pass.state === 'finished';
     return all.filter(isOpenTo).map((pass) => pass.id);
   }
 
@@ -108,7 +110,7 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
     if (pass.recordingId !== recordingId) throw notFound('This pass');
     const stamps = { id, recordingId, createdById: actor.id, nowMs: clock.nowMs(), parameters: null };
     const row = toNewRow(mark, stamps);
-    checkRow(actor, row, pass.schemeVersion);
+    checkRow(actor, row, pass);
     checkCandidate(row, pass.blind);
     return { ...row, parameters: await recordings.measureSpan(recordingId, row) };
   }
@@ -131,7 +133,7 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
   ): EventRow {
     const row = requireOwn(actor, selectEvent(tx, id));
     const next = { ...row, ...said, revision: row.revision + 1, updatedAtMs: clock.nowMs() };
-    checkRow(actor, next, passes.requireOwnOpenPass(tx, actor, row.passId).schemeVersion);
+    checkRow(actor, next, passes.requireOwnOpenPass(tx, actor, row.passId));
     save(tx, actor, next, 'event.changed');
     return next;
   }
@@ -154,7 +156,7 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
     const pass = passes.requireOwnOpenPass(db, actor, row.passId);
     requireSameRevision(revision, row.revision, toEvent(row));
     const next = { ...withChange(row, input), revision: row.revision + 1, updatedAtMs: clock.nowMs() };
-    checkRow(actor, next, pass.schemeVersion);
+    checkRow(actor, next, pass);
     const parameters = hasSameSpan(row, next)
       ? row.parameters
       : await recordings.measureSpan(row.recordingId, next);
@@ -216,13 +218,14 @@ export function createEventsService({ db, clock, ids, audit, passes, schemes, re
     if (classKey === voiceClassKey) recordings.announce(recordingId);
   }
 
-  function checkRow(actor: Actor, row: EventRow, schemeVersion: number): void {
+  function checkRow(actor: Actor, row: EventRow, pass: MarkedPass): void {
+    checkPart(row, pass);
     const { frames, channels, sampleRateHz } = recordings.requireFacts(actor, row.recordingId);
     checkMark(row, {
       frames,
       channels,
       nyquistHz: sampleRateHz / 2,
-      classes: schemes.get(schemeVersion).classes,
+      classes: schemes.get(pass.schemeVersion).classes,
     });
   }
 

@@ -1,7 +1,8 @@
-import { and, count, desc, eq, inArray, isNull, lt, ne, sql, type SQL } from 'drizzle-orm';
+import { and, count, desc, eq, isNull, lt, ne, sql, type SQL } from 'drizzle-orm';
 import type { PassState } from '../../../shared/contract/passes.ts';
 import type { Reader } from '../../db/client.ts';
-import { events, passes } from '../../db/schema/events.ts';
+import { candidateVerdicts, events, passes } from '../../db/schema/events.ts';
+import { detectorRuns, measurements } from '../../db/schema/measurements.ts';
 import { recordings } from '../../db/schema/recordings.ts';
 import { runs } from '../../db/schema/runs.ts';
 import { serviceRoles, users } from '../../db/schema/users.ts';
@@ -11,15 +12,24 @@ export type PassWithContext = ReturnType<typeof selectPasses>[number];
 
 const eventCount = sql<number>`(select count(*) from ${events} where ${events.passId} = ${passes.id} and ${isNull(events.deletedAtMs)})`;
 
+/** Of the newest run of the detector. */
+const candidateCount = sql<number | null>`(
+  select ${detectorRuns.candidateCount} from ${detectorRuns} inner join ${measurements} on ${measurements.id} = ${detectorRuns.measurementId}
+  where ${measurements.recordingId} = ${passes.recordingId}
+  order by ${measurements.createdAtMs} desc, ${detectorRuns.createdAtMs} desc limit 1
+)`;
+
 const withContext = {
   pass: passes,
   fileName: recordings.fileName,
   frames: sql<number>`json_extract(${recordings.format}, '$.frames')`,
   sampleRateHz: sql<number>`json_extract(${recordings.format}, '$.sampleRateHz')`,
+  channels: sql<number>`json_extract(${recordings.format}, '$.channels')`,
   sharing: recordings.sharing,
   runTitle: runs.title,
   labelerName: users.name,
   eventCount,
+  candidateCount,
 };
 
 function fromPasses(db: Reader) {
@@ -37,14 +47,19 @@ export interface PassFilter {
   recordingId: string | undefined;
   labelerId: string | undefined;
   state: PassState | undefined;
+  /** Open passes that were due before this moment. */
+  dueBeforeMs: number | undefined;
 }
 
-function matching({ visible, recordingId, labelerId, state }: PassFilter): SQL | undefined {
+function matching({ visible, recordingId, labelerId, state, dueBeforeMs }: PassFilter): SQL | undefined {
   return and(
     visible,
     recordingId ? eq(passes.recordingId, recordingId) : undefined,
     labelerId ? eq(passes.labelerId, labelerId) : undefined,
     state ? eq(passes.state, state) : undefined,
+    dueBeforeMs === undefined
+      ? undefined
+      : and(eq(passes.state, 'assigned'), lt(passes.dueAtMs, dueBeforeMs)),
   );
 }
 
@@ -75,19 +90,16 @@ export function selectPassWithContext(db: Reader, id: string): PassWithContext |
   return fromPasses(db).where(eq(passes.id, id)).get();
 }
 
-/** Whether this person has a pass here that counts: assigned or finished. */
-export function selectPassOf(db: Reader, recordingId: string, labelerId: string): PassRow | undefined {
+function isOpenOf(labelerId: string): SQL | undefined {
+  return and(eq(passes.labelerId, labelerId), eq(passes.state, 'assigned'));
+}
+
+/** The pass that this person has on the recording at the moment, if any. */
+export function selectOpenPassOf(db: Reader, recordingId: string, labelerId: string): PassRow | undefined {
   return db
     .select()
     .from(passes)
-    .where(
-      and(
-        eq(passes.recordingId, recordingId),
-        eq(passes.labelerId, labelerId),
-        inArray(passes.state, ['assigned', 'finished']),
-      ),
-    )
-    .orderBy(passes.state)
+    .where(and(eq(passes.recordingId, recordingId), isOpenOf(labelerId)))
     .limit(1)
     .get();
 }
@@ -96,34 +108,24 @@ export function selectOpenBlindPass(db: Reader, recordingId: string, labelerId: 
   return db
     .select()
     .from(passes)
-    .where(
-      and(
-        eq(passes.recordingId, recordingId),
-        eq(passes.labelerId, labelerId),
-        eq(passes.state, 'assigned'),
-        eq(passes.blind, true),
-      ),
-    )
+    .where(and(eq(passes.recordingId, recordingId), isOpenOf(labelerId), eq(passes.blind, true)))
     .get();
 }
 
-/** Whether any recording of the run is marked blind by this person at the moment. */
-export function selectIsRunBlind(db: Reader, runId: string, labelerId: string): boolean {
-  const row = db
-    .select({ id: passes.id })
+/** Passes that this person has open on any recording of the run. */
+export function selectOpenPassesOnRun(db: Reader, runId: string, labelerId: string) {
+  return db
+    .select({ id: passes.id, task: passes.task, blind: passes.blind })
     .from(passes)
     .innerJoin(recordings, eq(recordings.id, passes.recordingId))
-    .where(
-      and(
-        eq(recordings.runId, runId),
-        eq(passes.labelerId, labelerId),
-        eq(passes.state, 'assigned'),
-        eq(passes.blind, true),
-      ),
-    )
-    .limit(1)
-    .get();
-  return row !== undefined;
+    .where(and(eq(recordings.runId, runId), isOpenOf(labelerId)))
+    .all();
+}
+
+/** Candidates that were answered in a pass of rounds. */
+export function countAnswered(db: Reader, passId: string): number {
+  const ofPass = eq(candidateVerdicts.passId, passId);
+  return db.select({ count: count() }).from(candidateVerdicts).where(ofPass).get()?.count ?? 0;
 }
 
 export function selectUncancelledPasses(db: Reader, recordingId: string): PassRow[] {
@@ -152,6 +154,8 @@ export function selectAssignable(db: Reader, recordingId: string) {
   return db
     .select({
       id: recordings.id,
+      runId: recordings.runId,
+      format: recordings.format,
       labId: recordings.labId,
       sharing: recordings.sharing,
       processing: recordings.processing,

@@ -1,15 +1,18 @@
 import { idParamsSchema } from '../../../shared/contract/ids.ts';
+import { addCoverageSchema, coverageSchema } from '../../../shared/contract/coverage.ts';
 import {
+  changePassSchema,
   createPassSchema,
   finishPassSchema,
   listPassesQuerySchema,
+  passCoverageSchema,
   passesPageSchema,
   passSchema,
 } from '../../../shared/contract/passes.ts';
 import type { Deps } from '../../deps.ts';
 import { defineRoute, type Route } from '../../http/define-route.ts';
 
-export function passesRoutes({ services: { passes } }: Deps): Route[] {
+export function passesRoutes({ services: { passes, coverage } }: Deps): Route[] {
   return [
     defineRoute({
       method: 'get',
@@ -29,6 +32,36 @@ export function passesRoutes({ services: { passes } }: Deps): Route[] {
       body: createPassSchema,
       response: passSchema,
       handler: ({ actor, body }) => passes.create(actor, body),
+    }),
+    defineRoute({
+      method: 'patch',
+      path: '/api/passes/:id',
+      summary: 'Changes due date and instructions of an open pass.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      body: changePassSchema,
+      response: passSchema,
+      handler: ({ actor, params, body }) => passes.change(actor, params.id, body),
+    }),
+    defineRoute({
+      method: 'get',
+      path: '/api/passes/:id/coverage',
+      summary: 'What has been seen and heard of the part of a pass, for its labeler and for curators.',
+      access: 'signed-in',
+      params: idParamsSchema,
+      response: coverageSchema,
+      handler: ({ actor, params }) => coverage.get(actor, params.id),
+    }),
+    defineRoute({
+      method: 'post',
+      path: '/api/passes/:id/coverage',
+      summary: 'Adds spans that were seen or heard in the own open pass; safe to repeat.',
+      access: 'signed-in',
+      status: 200,
+      params: idParamsSchema,
+      body: addCoverageSchema,
+      response: passCoverageSchema,
+      handler: ({ actor, params, body }) => coverage.add(actor, params.id, body),
     }),
     defineRoute({
       method: 'post',

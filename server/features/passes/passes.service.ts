@@ -1,154 +1,187 @@
+import { randomInt } from 'node:crypto';
 import type { Page } from '../../../shared/contract/page.ts';
 import { toTotal } from '../../../shared/contract/page.ts';
-import type { CreatePass, ListPassesQuery, Pass } from '../../../shared/contract/passes.ts';
+import type { ChangePass, CreatePass, ListPassesQuery, Pass } from '../../../shared/contract/passes.ts';
 import type { Actor } from '../../../shared/policy/actor.ts';
-import { isAllowed } from '../../authorize/authorize.ts';
 import { visiblePasses } from '../../authorize/visible-passes.ts';
-import type { Reader, Tx } from '../../db/client.ts';
+import { selectWithheld } from '../../authorize/withheld.ts';
+import type { Reader } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
 import { decodeCursor, encodeCursor } from '../../http/cursor.ts';
-import { conflict, forbidden, invalidField, notFound } from '../../http/problem.ts';
+import { conflict, forbidden, notFound } from '../../http/problem.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import type { SchemesService } from '../schemes/schemes.service.ts';
+import { coverageOf } from './coverage.service.ts';
+import { requireReason } from './finish-rule.ts';
+import {
+  drawFor,
+  requireAssignable,
+  requireLabeler,
+  requireOwnOpenPass,
+  requireOwnOpenView,
+} from './pass-checks.ts';
 import { toPass } from './passes.map.ts';
 import {
+  countAnswered,
   countPasses,
   insertPass,
-  selectAssignable,
-  selectLabelers,
-  selectIsRunBlind,
   selectOpenBlindPass,
+  selectOpenPassesOnRun,
   selectPass,
-  selectPassOf,
   selectPasses,
   selectPassWithContext,
   selectUncancelledPasses,
   updatePass,
   type PassRow,
+  type PassWithContext,
 } from './passes.queries.ts';
 
 interface PassesParts extends Pick<Ground, 'db' | 'clock' | 'ids' | 'activity'> {
   audit: AuditService;
   schemes: SchemesService;
+  /** Seeds of drawn windows. */
+  nextSeed?: () => number;
 }
 
 export type PassesService = ReturnType<typeof createPassesService>;
 
-export function createPassesService({ db, clock, ids, activity, audit, schemes }: PassesParts) {
+const drawSeed = () => randomInt(2 ** 32);
+
+export function createPassesService(parts: PassesParts) {
+  const { db, clock, ids, activity, audit, schemes, nextSeed = drawSeed } = parts;
+
   function list(actor: Actor, query: ListPassesQuery): Page<Pass> {
     const filter = {
       visible: visiblePasses(actor),
       recordingId: query.recordingId,
-      labelerId: query.mine ? actor.id : undefined,
+      labelerId: query.mine ? actor.id : query.labelerId,
       state: query.state,
+      dueBeforeMs: query.overdue ? clock.nowMs() : undefined,
     };
     const before = query.cursor === undefined ? undefined : decodeCursor(query.cursor, 'string');
     const rows = selectPasses(db, filter, { before, limit: query.limit + 1 });
     const shown = rows.slice(0, query.limit);
     const last = rows.length > query.limit ? shown.at(-1) : undefined;
     return {
-      items: shown.map(toPass),
+      items: told(actor, shown),
       nextCursor: last === undefined ? null : encodeCursor(last.pass.id),
       total: toTotal(countPasses(db, filter)),
     };
   }
 
+  /** Of a recording on which somebody works blind, no other pass tells them how much was marked or left out. */
+  function told(actor: Actor, views: readonly PassWithContext[]): Pass[] {
+    const recordingIds = [...new Set(views.map(({ pass }) => pass.recordingId))];
+    const withheld = selectWithheld(db, actor, recordingIds);
+    return views.map((view) => {
+      const isOwnOpen = view.pass.labelerId === actor.id && view.pass.state === 'assigned';
+      return toPass(view, !isOwnOpen && (withheld.get(view.pass.recordingId)?.blind ?? false));
+    });
+  }
+
   function create(actor: Actor, input: CreatePass): Pass {
     if (!actor.roles.includes('curator')) throw forbidden('Only curators assign passes.');
     const id = ids.next();
+    const schemeVersion = schemes.newest().version;
     write(db, (tx) => {
-      requireAssignable(tx, actor, input.recordingId);
-      requireLabeler(tx, input);
-      insertPass(tx, { ...toPassRow(input), id, assignedById: actor.id });
+      const recording = requireAssignable(tx, actor, input.recordingId);
+      requireLabeler(tx, input, recording);
+      const windowSeed = input.kind === 'windows' ? nextSeed() : null;
+      const windows = windowSeed === null ? null : drawFor(input, recording, windowSeed);
+      const drawn = { windows, windowSeed, schemeVersion, createdAtMs: clock.nowMs() };
+      insertPass(tx, { ...toPassRow(input), ...drawn, id, assignedById: actor.id });
       audit.record(tx, entry(actor, 'pass.assigned', { id, labelerId: input.labelerId }));
     });
     activity.publish({ topic: 'pass', id }, { personId: input.labelerId, roles: ['curator'] });
-    return require(id);
+    return get(actor, id);
   }
 
-  function toPassRow(input: CreatePass) {
-    const { recordingId, labelerId, blind, instructions, dueAt } = input;
-    const dueAtMs = dueAt === null ? null : Date.parse(dueAt);
-    const schemeVersion = schemes.newest().version;
-    const createdAtMs = clock.nowMs();
-    return {
-      recordingId,
-      labelerId,
-      blind,
-      instructions,
-      dueAtMs,
-      schemeVersion,
-      createdAtMs,
-      state: 'assigned' as const,
-    };
+  function change(actor: Actor, id: string, input: ChangePass): Pass {
+    if (!actor.roles.includes('curator')) throw forbidden('Only curators change passes.');
+    const { dueAt, instructions } = input;
+    const pass = write(db, (tx) => {
+      const open = requireOpen(selectPass(tx, id), 'be changed');
+      updatePass(tx, id, {
+        ...(instructions === undefined ? {} : { instructions }),
+        ...(dueAt === undefined ? {} : { dueAtMs: toMs(dueAt) }),
+      });
+      audit.record(tx, entry(actor, 'pass.changed', open));
+      return open;
+    });
+    activity.publish({ topic: 'pass', id }, { personId: pass.labelerId, roles: ['curator'] });
+    return get(actor, id);
   }
 
   function finish(actor: Actor, id: string, remark: string): Pass {
     write(db, (tx) => {
-      const pass = requireOwnOpenPass(tx, actor, id);
-      updatePass(tx, id, { state: 'finished', remark, finishedAtMs: clock.nowMs() });
-      audit.record(tx, entry(actor, 'pass.finished', pass));
+      const view = requireOwnOpenView(tx, actor, id);
+      const { task, kind } = view.pass;
+      const coverage = task === 'events' ? coverageOf(tx, view) : null;
+      const isOfRounds = kind === 'rounds';
+      const unanswered = isOfRounds ? Math.max(0, (view.candidateCount ?? 0) - countAnswered(tx, id)) : 0;
+      requireReason({ coverage: isOfRounds ? null : coverage, unanswered }, remark);
+      updatePass(tx, id, { state: 'finished', remark, coverage, finishedAtMs: clock.nowMs() });
+      audit.record(tx, entry(actor, 'pass.finished', view.pass));
     });
     activity.publish({ topic: 'pass', id }, { personId: actor.id, roles: ['curator'] });
-    return require(id);
+    return get(actor, id);
   }
 
   function cancel(actor: Actor, id: string): Pass {
     if (!actor.roles.includes('curator')) throw forbidden('Only curators take passes back.');
     write(db, (tx) => {
-      const pass = selectPass(tx, id);
-      if (!pass) throw notFound('This pass');
-      if (pass.state !== 'assigned') throw conflict('Only a pass that is still open can be taken back.');
+      const pass = requireOpen(selectPass(tx, id), 'be taken back');
       updatePass(tx, id, { state: 'cancelled' });
       audit.record(tx, entry(actor, 'pass.cancelled', pass));
     });
     activity.publish({ topic: 'pass', id }, { roles: ['curator'] });
-    return require(id);
+    return get(actor, id);
   }
 
-  function require(id: string): Pass {
+  function get(actor: Actor, id: string): Pass {
     const view = selectPassWithContext(db, id);
-    if (!view) throw notFound('This pass');
-    return toPass(view);
+    const [pass] = view ? told(actor, [view]) : [];
+    if (!pass) throw notFound('This pass');
+    return pass;
+  }
+
+  function openOnRun(reader: Reader, actor: Actor, runId: string, task: PassRow['task']): boolean {
+    return selectOpenPassesOnRun(reader, runId, actor.id).some((pass) => pass.task === task && pass.blind);
   }
 
   return {
     list,
     create,
+    change,
     finish,
     cancel,
     requireOwnOpenPass,
     isBlindOn: (reader: Reader, actor: Actor, recordingId: string) =>
       selectOpenBlindPass(reader, recordingId, actor.id) !== undefined,
-    /** For what stands beside the sound of a run: phases and traces tell when something happened. */
-    isBlindOnRun: (reader: Reader, actor: Actor, runId: string) => selectIsRunBlind(reader, runId, actor.id),
+    /** For what stands beside the sound of a run: phases, traces and films tell when something happened. */
+    isBlindOnRun: (reader: Reader, actor: Actor, runId: string) => openOnRun(reader, actor, runId, 'events'),
+    /** Growth phases are marked blind: those of other people are withheld, camera and temperature are what one works from. */
+    isPhaseBlindOnRun: (reader: Reader, actor: Actor, runId: string) =>
+      openOnRun(reader, actor, runId, 'phases'),
     ofRecording: (reader: Reader, recordingId: string) => selectUncancelledPasses(reader, recordingId),
   };
 }
 
-function requireAssignable(tx: Tx, actor: Actor, recordingId: string): void {
-  const recording = selectAssignable(tx, recordingId);
-  if (!recording || !isAllowed(actor, { action: 'assign', name: 'Recording', row: recording }))
-    throw notFound('This recording');
-  if (recording.processing !== 'measured')
-    throw conflict('A recording can be assigned once it has been measured.');
+function toPassRow(input: CreatePass) {
+  const { recordingId, labelerId, task, kind, roundOrder, blind, instructions, dueAt } = input;
+  const told = { recordingId, labelerId, task, kind, roundOrder, blind, instructions };
+  return { ...told, dueAtMs: toMs(dueAt), state: 'assigned' as const };
 }
 
-function requireLabeler(tx: Tx, input: CreatePass): void {
-  const isLabeler = selectLabelers(tx).some((person) => person.id === input.labelerId);
-  if (!isLabeler) throw invalidField('labelerId', 'is nobody who marks recordings');
-  const pass = selectPassOf(tx, input.recordingId, input.labelerId);
-  if (pass) throw conflict('This person has a pass on this recording already.');
+function toMs(instant: string | null): number | null {
+  return instant === null ? null : Date.parse(instant);
 }
 
-/** Marks are set, and a pass is finished, only by its labeler, while it is open and the recording is shared. */
-export function requireOwnOpenPass(reader: Reader, actor: Actor, passId: string): PassRow {
-  const view = selectPassWithContext(reader, passId);
-  const isOwn = view !== undefined && view.pass.labelerId === actor.id && view.pass.state !== 'cancelled';
-  if (!isOwn || !actor.roles.includes('labeler') || view.sharing !== 'shared') throw notFound('This pass');
-  if (view.pass.state === 'finished') throw conflict('This pass is finished; its marks stay as they are.');
-  return view.pass;
+function requireOpen(pass: PassRow | undefined, what: string): PassRow {
+  if (!pass) throw notFound('This pass');
+  if (pass.state !== 'assigned') throw conflict(`Only a pass that is still open can ${what}.`);
+  return pass;
 }
 
 function entry(actor: Actor, action: string, pass: { id: string; labelerId: string }) {

@@ -3,11 +3,14 @@ import type { Licence } from '../../../shared/contract/licence.ts';
 import type { RecordingListItem } from '../../../shared/contract/recordings.ts';
 import type { Actor } from '../../../shared/policy/actor.ts';
 import { visibleRecordings } from '../../authorize/visible-recordings.ts';
+import { selectWithheld } from '../../authorize/withheld.ts';
 import type { Ground } from '../../ground.ts';
 import { toListItem } from './recordings.map.ts';
 import { selectRecordings, type RecordingFilters } from './recordings.queries.ts';
 
 const mostAtOnce = 5000;
+
+type Collectable = RecordingListItem & { licence: Licence; isWithheld: boolean };
 
 export type CollectingService = ReturnType<typeof createCollectingService>;
 
@@ -23,12 +26,13 @@ export function createCollectingService({ db }: Pick<Ground, 'db'>) {
     });
   }
 
-  function sharedByIds(actor: Actor, ids: readonly string[]): (RecordingListItem & { licence: Licence })[] {
+  function sharedByIds(actor: Actor, ids: readonly string[]): Collectable[] {
     if (ids.length === 0) return [];
-    return select(actor, { ids }).map((view) => ({
-      ...toListItem(view, false),
-      licence: view.recording.licence,
-    }));
+    const withheld = selectWithheld(db, actor, ids);
+    return select(actor, { ids }).map((view) => {
+      const isWithheld = withheld.get(view.recording.id)?.blind ?? false;
+      return { ...toListItem(view, isWithheld), licence: view.recording.licence, isWithheld };
+    });
   }
 
   function sharedIdsByFilter(actor: Actor, filter: NonNullable<AddItems['filter']>): string[] {

@@ -8,7 +8,7 @@ import { measureMarkedSpan } from '../../measuring/measure-span.ts';
 import type { GuardService } from './guard.service.ts';
 import { contextOf } from './measuring.service.ts';
 import { selectUnscopedRecording } from './recordings.queries.ts';
-import type { RecordingsService } from './recordings.service.ts';
+import { requireSound, type RecordingsService } from './recordings.service.ts';
 import type { StoredAudioReader } from './stored-audio.ts';
 
 interface Parts extends Pick<Ground, 'db'> {
@@ -22,7 +22,8 @@ export type MarkingService = ReturnType<typeof createMarkingService>;
 /** What setting a mark asks of a recording: its limits, the figures of a span, and the hold that a voice brings. */
 export function createMarkingService({ db, recordings, guard, readStoredAudio }: Parts) {
   function requireFacts(actor: Actor, recordingId: string) {
-    const { frames, channels, sampleRateHz } = recordings.requireVisible(actor, recordingId).row.format;
+    const { frames, channels, sampleRateHz } = requireSound(recordings.requireVisible(actor, recordingId)).row
+      .format;
     return { frames, channels, sampleRateHz };
   }
 

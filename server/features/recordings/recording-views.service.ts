@@ -21,7 +21,7 @@ import {
   readSpectrum,
   readTile,
 } from '../../measuring/view-reader.ts';
-import type { RecordingAccess, RecordingsService } from './recordings.service.ts';
+import { requireSound, type RecordingAccess, type RecordingsService } from './recordings.service.ts';
 import { selectNewestMeasurementId, type RecordingRow } from './recordings.queries.ts';
 import type { StoredAudioReader } from './stored-audio.ts';
 import type { ViewFolders } from './view-folders.ts';
@@ -55,7 +55,7 @@ export function createRecordingViewsService({ db, recordings, viewFolders, readS
   const oneAtATime = createGate(1);
 
   function requireMeasured(actor: Actor, id: string): MeasuredAccess {
-    const access = recordings.requireVisible(actor, id);
+    const access = requireSound(recordings.requireVisible(actor, id));
     const measurementId = selectNewestMeasurementId(db, id);
     if (access.row.processing !== 'measured' || measurementId === undefined) {
       throw conflict('This recording is not measured yet; its views come with the measurement.');
@@ -92,9 +92,13 @@ export function createRecordingViewsService({ db, recordings, viewFolders, readS
     );
   }
 
-  function spectrum(actor: Actor, id: string, channel: number): Promise<Spectrum> {
-    const { row, measurementId } = requireMeasured(actor, id);
-    return knownView(() => readSpectrum(viewFolders.ofMeasurement(row.id, measurementId), channel));
+  /** Blind, without active time: which frames are active is a finding of the machine. */
+  async function spectrum(actor: Actor, id: string, channel: number): Promise<Spectrum> {
+    const { row, measurementId, blind } = requireMeasured(actor, id);
+    const whole = await knownView(() =>
+      readSpectrum(viewFolders.ofMeasurement(row.id, measurementId), channel),
+    );
+    return blind ? { ...whole, activeDbPerHz: null } : whole;
   }
 
   /** Every long frame of one channel. It tells the course above 20 kHz, so there is none for whoever works blind. */

@@ -7,6 +7,7 @@ import type {
   RecordingListItem,
   ToldMeasurement,
 } from '../../../shared/contract/recordings.ts';
+import type { Withheld } from '../../authorize/withheld.ts';
 import { toInstant } from '../../services/clock.ts';
 import type { SegmentRow } from './segments.queries.ts';
 import type { FindingRow, RecordingListView, RecordingRow, RecordingView } from './recordings.queries.ts';
@@ -31,7 +32,7 @@ export function toListItem(view: RecordingListView, blind: boolean): RecordingLi
 
 /** What the asking person is to this recording. */
 export interface Standing {
-  blind: boolean;
+  withheld: Withheld;
   may: Recording['may'];
   /** Told to the owning lab only. */
   findings: FindingRow[];
@@ -58,9 +59,9 @@ export function toRecording(view: RecordingView, standing: Standing): Recording 
     failure,
     revision,
   } = recording;
-  const { blind, may, findings, likenesses, eventCount, segmentCount, measurement } = standing;
+  const { withheld, may, findings, likenesses, eventCount, segmentCount, measurement } = standing;
   return {
-    ...toListItem(view, blind),
+    ...toListItem(view, withheld.blind),
     ...{ setupId, sha256, licence, sensitivity, note, runOffsetNs, timeExpansion, format, layout },
     ...{ camera, failure, revision },
     setupName: setup.name,
@@ -71,12 +72,16 @@ export function toRecording(view: RecordingView, standing: Standing): Recording 
     sensorLowHz: sensor.lowHz,
     sensorHighHz: sensor.highHz,
     uploadedByName: view.uploadedByName,
-    measurement: measurement && blind ? withoutDetections(measurement) : measurement,
+    measurement: toldMeasurement(measurement, withheld),
     findings: findings.map(toFinding),
     likenesses,
-    eventCount: blind ? null : eventCount,
-    captures: segmentCount > 0 ? { segments: segmentCount, liveTimeNs: recording.liveTimeNs } : null,
-    blind,
+    eventCount: withheld.blind ? null : eventCount,
+    captures:
+      segmentCount > 0 && !withheld.sound
+        ? { segments: segmentCount, liveTimeNs: recording.liveTimeNs }
+        : null,
+    blind: withheld.blind,
+    isSoundWithheld: withheld.sound,
     may,
   };
 }
@@ -89,9 +94,17 @@ function toFinding({ id, kind, sentence, place, foundAtMs }: FindingRow): GuardF
   return { id, kind, sentence, place, foundAt: toInstant(foundAtMs) };
 }
 
+function toldMeasurement(
+  measurement: MeasurementSummary | null,
+  { blind, sound }: Withheld,
+): ToldMeasurement | null {
+  if (measurement === null || sound) return null;
+  return blind ? withoutDetections(measurement) : measurement;
+}
+
 /** Whoever marks blind must not learn whether, where or how often the machine heard something. */
 function withoutDetections(summary: MeasurementSummary): ToldMeasurement {
-  const { ultrasonic, course } = summary;
+  const { ultrasonic, course, descriptors } = summary;
   const isSeen = ultrasonic.verdict !== 'not-observable';
   return {
     ...summary,
@@ -106,6 +119,7 @@ function withoutDetections(summary: MeasurementSummary): ToldMeasurement {
       candidates: { total: 0, below: 0, across: 0, above: 0, expectedByChance: 0 },
     },
     activeSpans: [],
+    descriptors: descriptors.map((channel) => ({ ...channel, ultrasonicShare: null })),
     course: { ...course, ultrasonicDb: course.ultrasonicDb.map(() => null), candidates: [] },
   };
 }

@@ -2,6 +2,7 @@ import { and, desc, eq, inArray, isNotNull, isNull, lt, or, sql, type SQL } from
 import { alias } from 'drizzle-orm/sqlite-core';
 import { countLimit } from '../../../shared/contract/page.ts';
 import type { ListRecordingsQuery, RecordingListItem } from '../../../shared/contract/recordings.ts';
+import { areFindingsOpen } from '../../authorize/withheld.ts';
 import type { Reader } from '../../db/client.ts';
 import { containsText } from '../../db/like-pattern.ts';
 import type { RowPlace } from '../../db/row-place.ts';
@@ -84,11 +85,7 @@ function ofVerdict({ ultrasonicVerdict: verdict, askedById }: RecordingFilters):
   if (verdict === undefined) return undefined;
   const isOf = sql`${ultrasonicVerdict} = ${verdict}`;
   if (verdict === 'not-observable') return isOf;
-  return and(
-    isOf,
-    sql`not exists (select 1 from ${passes} where ${passes.recordingId} = ${recordings.id}
-      and ${passes.labelerId} = ${askedById} and ${passes.state} = 'assigned' and ${passes.blind} = 1)`,
-  );
+  return and(isOf, areFindingsOpen(askedById));
 }
 
 interface RecordingsSlice {
@@ -214,20 +211,15 @@ export function countEvents(db: Reader, recordingId: string): number {
   );
 }
 
-/** Passes of one person that are still open, on the recordings asked for. */
-export function selectOpenPasses(db: Reader, labelerId: string, recordingIds: string[]) {
-  if (recordingIds.length === 0) return [];
-  return db
-    .select({ recordingId: passes.recordingId, blind: passes.blind })
-    .from(passes)
-    .where(
-      and(
-        eq(passes.labelerId, labelerId),
-        eq(passes.state, 'assigned'),
-        inArray(passes.recordingId, recordingIds),
-      ),
-    )
-    .all();
+/** Whether this person has an open pass here in which events are marked. */
+export function hasOpenEventsPass(db: Reader, labelerId: string, recordingId: string): boolean {
+  const isOpen = and(
+    eq(passes.recordingId, recordingId),
+    eq(passes.labelerId, labelerId),
+    eq(passes.state, 'assigned'),
+    eq(passes.task, 'events'),
+  );
+  return db.select({ id: passes.id }).from(passes).where(isOpen).limit(1).get() !== undefined;
 }
 
 export function insertRecording(db: Reader, row: typeof recordings.$inferInsert): void {

@@ -11,6 +11,7 @@ import type { Deps } from '../../deps.ts';
 import { defineRoute, type Route } from '../../http/define-route.ts';
 import { withRevision } from '../../http/revision.ts';
 import { sendFile } from '../../http/send-file.ts';
+import { requireSound } from './recordings.service.ts';
 
 export function recordingsRoutes({ services, store }: Deps): Route[] {
   const { recordings, measuringRequests } = services;
@@ -70,7 +71,7 @@ export function recordingsRoutes({ services, store }: Deps): Route[] {
       produces: 'audio/wav',
       params: idParamsSchema,
       handler: ({ actor, params, res }) => {
-        const { row } = recordings.requireVisible(actor, params.id);
+        const { row } = requireSound(recordings.requireVisible(actor, params.id));
         const kept = { etag: row.sha256, cacheControl: 'private, no-cache' };
         const contentType = contentTypeOf(row.format.container);
         const file = { path: store.pathOf(row.sha256), contentType, downloadName: row.fileName };

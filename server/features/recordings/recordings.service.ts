@@ -9,10 +9,11 @@ import { isForReviewersAlone } from '../../../shared/domain/recording-status.ts'
 import { abilityFor, may } from '../../../shared/policy/ability.ts';
 import { labsOf, type Actor } from '../../../shared/policy/actor.ts';
 import { visibleRecordings } from '../../authorize/visible-recordings.ts';
+import { selectWithheld, withheldOf, type Withheld } from '../../authorize/withheld.ts';
 import type { Reader, Tx } from '../../db/client.ts';
 import type { RowPlace } from '../../db/row-place.ts';
 import type { Ground } from '../../ground.ts';
-import { notFound } from '../../http/problem.ts';
+import { forbidden, notFound } from '../../http/problem.ts';
 import { pageOf, readRowCursor } from '../../http/row-cursor.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import { selectLikenesses } from './likeness.queries.ts';
@@ -20,11 +21,11 @@ import { toListItem, toRecording, toSegment, type Standing } from './recordings.
 import {
   countEvents,
   countRecordings,
+  hasOpenEventsPass,
   insertFindings,
   insertRecording,
   selectFindings,
   selectNewestMeasurement,
-  selectOpenPasses,
   selectRecording,
   selectRecordingRow,
   selectRecordings,
@@ -58,6 +59,8 @@ export interface RecordingAccess {
   row: RecordingRow;
   /** True while an open blind pass forbids candidates, counts and rates. */
   blind: boolean;
+  /** True while this person marks growth phases without the sound; see `requireSound`. */
+  isSoundWithheld: boolean;
 }
 
 export function createRecordingsService({ db, clock, ids, jobs, audit }: Parts) {
@@ -67,8 +70,9 @@ export function createRecordingsService({ db, clock, ids, jobs, audit }: Parts) 
     const visible = visibleRecordings(actor);
     const rows = selectRecordings(db, { filters, visible, after: readRowCursor(cursor), limit: limit + 1 });
     const { shown, nextCursor } = pageOf(rows, limit, placeOf);
-    const blindIds = selectBlindIds(db, actor, shown);
-    const items = shown.map((view) => toListItem(view, blindIds.has(view.recording.id)));
+    const ids = shown.map(({ recording }) => recording.id);
+    const withheld = selectWithheld(db, actor, ids);
+    const items = shown.map((view) => toListItem(view, withheld.get(view.recording.id)?.blind ?? false));
     return { items, nextCursor, total: toTotal(countRecordings(db, filters, visible)) };
   }
 
@@ -82,12 +86,13 @@ export function createRecordingsService({ db, clock, ids, jobs, audit }: Parts) 
   function requireVisible(actor: Actor, id: string): RecordingAccess {
     const row = selectRecordingRow(db, id, visibleRecordings(actor));
     if (row === undefined) throw notFound('This recording');
-    return { row, blind: selectBlindIds(db, actor, [{ recording: row }]).has(id) };
+    const { blind, sound } = withheldOf(db, actor, id);
+    return { row, blind, isSoundWithheld: sound };
   }
 
   /** Where the segments of a capture set lie and when they were taken; none of any other recording. */
   function listSegments(actor: Actor, id: string): { items: CaptureSegment[] } {
-    const { row } = requireVisible(actor, id);
+    const { row } = requireSound(requireVisible(actor, id));
     return { items: selectSegments(db, row.id).map(toSegment) };
   }
 
@@ -125,42 +130,49 @@ function placeOf({ recording }: RecordingListView): RowPlace {
   return { key: recording.createdAtMs, id: recording.id };
 }
 
-/** Those on which the person works blind. Another role does not lift it: who marks blind must not look it up elsewhere. */
-function selectBlindIds(
-  db: Reader,
-  actor: Actor,
-  views: readonly Pick<RecordingListView, 'recording'>[],
-): Set<string> {
-  if (!actor.roles.includes('labeler')) return new Set();
-  const ids = views.map(({ recording }) => recording.id);
-  const blind = selectOpenPasses(db, actor.id, ids).filter((pass) => pass.blind);
-  return new Set(blind.map((pass) => pass.recordingId));
+/** For every answer that is made from the samples: refused to whoever marks growth phases without them. */
+export function requireSound<Access extends RecordingAccess>(access: Access): Access {
+  if (!access.isSoundWithheld) return access;
+  throw forbidden(
+    'The sound of this run is kept back while you mark its growth phases from camera and temperature. It opens when that pass is finished.',
+  );
 }
 
 function standingOf(db: Reader, actor: Actor, view: RecordingView): Standing {
   const { recording } = view;
   const ability = abilityFor(actor);
   const isMeasured = recording.processing === 'measured';
-  const openPasses = selectOpenPasses(db, actor.id, [recording.id]);
-  const isOwnLab = labsOf(actor).includes(recording.labId);
+  const withheld = withheldOf(db, actor, recording.id);
   const canDecide = may(ability, 'decide', 'Recording', recording) && recording.uploadedById !== actor.id;
+  const hasPass = hasOpenEventsPass(db, actor.id, recording.id);
   return {
-    blind: selectBlindIds(db, actor, [view]).has(recording.id),
-    findings: (isOwnLab ? selectFindings(db, recording.id) : []).filter(
-      (finding) => canDecide || !isForReviewersAlone(finding),
-    ),
-    likenesses: selectLikenesses(db, recording.id, visibleRecordings(actor)),
+    withheld,
+    findings: findingsFor(db, actor, { recording, canDecide, withheld }),
+    likenesses: withheld.sound ? [] : selectLikenesses(db, recording.id, visibleRecordings(actor)),
     eventCount: countEvents(db, recording.id),
     segmentCount: countSegments(db, recording.id),
     measurement: isMeasured ? (selectNewestMeasurement(db, recording.id)?.summary ?? null) : null,
     may: {
       // Whoever marks has to hear: a pass that shows the recording lets its bytes be played too.
-      downloadAudio: true,
+      downloadAudio: !withheld.sound,
       decide: canDecide && recording.sharing === 'held',
       assign: isMeasured && may(ability, 'assign', 'Recording', recording),
-      mark: isMeasured && recording.sharing === 'shared' && openPasses.length > 0,
+      mark: isMeasured && recording.sharing === 'shared' && hasPass,
     },
   };
+}
+
+/** Told to the owning lab only. What a person who marked it has heard is withheld from whoever marks it blind. */
+function findingsFor(
+  db: Reader,
+  actor: Actor,
+  { recording, canDecide, withheld }: { recording: RecordingRow; canDecide: boolean; withheld: Withheld },
+): FindingRow[] {
+  if (withheld.sound || !labsOf(actor).includes(recording.labId)) return [];
+  return selectFindings(db, recording.id).filter(
+    (finding) =>
+      (canDecide || !isForReviewersAlone(finding)) && !(withheld.blind && finding.kind === 'voice-marked'),
+  );
 }
 
 function entry(

@@ -1,5 +1,5 @@
 import type { AddNext } from './noise.ts';
-import type { Random } from './seeded-random.ts';
+import type { Random } from '../../../shared/lib/seeded-random.ts';
 
 export type HumLine = { frequencyHz: number; amplitude: number };
 

@@ -1,4 +1,4 @@
-import { seededGaussian, type Random } from './seeded-random.ts';
+import { seededGaussian, type Random } from '../../../shared/lib/seeded-random.ts';
 
 /** Adds the next samples of a signal to `out`. */
 export type AddNext = (out: Float32Array) => void;

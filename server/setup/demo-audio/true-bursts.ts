@@ -6,7 +6,7 @@ import type {
   DemoRecordingSpec,
   PhaseName,
 } from './demo-recording-spec.ts';
-import { between, seededRandom, type Random } from './seeded-random.ts';
+import { between, seededRandom, type Random } from '../../../shared/lib/seeded-random.ts';
 
 /** A burst that is in the file: where it begins, where its envelope has fallen by 30 dB, and why it is there. */
 export type TrueBurst = DampedSine & {

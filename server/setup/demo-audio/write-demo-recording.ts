@@ -6,7 +6,7 @@ import { hum } from './hum.ts';
 import { lowPassed, type NextSamples } from './low-pass.ts';
 import { metadataChunk } from './metadata-chunks.ts';
 import { pinkNoise, whiteNoise } from './noise.ts';
-import { seededRandom } from './seeded-random.ts';
+import { seededRandom } from '../../../shared/lib/seeded-random.ts';
 import { trueBursts } from './true-bursts.ts';
 import { wavEnvelope } from '../../../shared/audio/wav-envelope.ts';
 

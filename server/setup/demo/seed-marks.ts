@@ -1,7 +1,8 @@
 import { createEventSchema } from '../../../shared/contract/events.ts';
+import { createPassSchema } from '../../../shared/contract/passes.ts';
 import type { Deps } from '../../deps.ts';
 import { demoRecordings } from '../demo-audio/demo-recordings.ts';
-import { seededRandom } from '../demo-audio/seeded-random.ts';
+import { seededRandom } from '../../../shared/lib/seeded-random.ts';
 import { trueBursts, type TrueBurst } from '../demo-audio/true-bursts.ts';
 import type { DemoPersonKey } from './demo-people.ts';
 import type { DemoActors } from './seed-people.ts';
@@ -62,17 +63,15 @@ async function seedPass(
 ): Promise<void> {
   const recordingId = recordingIds.get(demoPass.recording) ?? '';
   const labeler = people.actor(demoPass.labeler);
-  const pass = services.passes.create(people.actor('curator'), {
-    recordingId,
-    labelerId: labeler.id,
-    blind: demoPass.blind,
-    dueAt: demoPass.dueAt ?? null,
-    instructions: demoPass.instructions ?? '',
-  });
+  const { blind, dueAt, instructions } = demoPass;
+  const pass = services.passes.create(
+    people.actor('curator'),
+    createPassSchema.parse({ recordingId, labelerId: labeler.id, blind, dueAt, instructions }),
+  );
   for (const mark of marksOf(demoPass)) {
     await services.events.create(labeler, recordingId, createEventSchema.parse({ ...mark, passId: pass.id }));
   }
-  if (demoPass.finished) services.passes.finish(labeler, pass.id, '');
+  if (demoPass.finished) services.passes.finish(labeler, pass.id, 'Looked over from further away.');
 }
 
 /** Marks near the bursts that are in the file, with the small errors of a person. */

@@ -4,7 +4,7 @@ import {
   type DampedSine,
 } from '../../../server/setup/demo-audio/damped-sine.ts';
 import { pinkNoise, type AddNext } from '../../../server/setup/demo-audio/noise.ts';
-import { between, seededRandom, type Random } from '../../../server/setup/demo-audio/seeded-random.ts';
+import { between, seededRandom, type Random } from '../../../shared/lib/seeded-random.ts';
 
 const NOISE_RMS = 0.01;
 const HUM = [

@@ -79,6 +79,7 @@ fill(db);
 const access = {
   row: { format: { frames: FRAMES, sampleRateHz: SAMPLE_RATE_HZ } },
   blind: false,
+  isSoundWithheld: false,
   measurementId: `measurement-${Number(recordings) >> 1}`,
 } as MeasuredAccess;
 const makeService = () => createCandidatesService({ db, recordingViews: { requireMeasured: () => access } });

@@ -117,7 +117,10 @@ describe.sequential('from a recording to a data set', () => {
     // The generator wrote bursts of 30 kHz; the transform of 300 samples tells that to a bin of 320 Hz.
     expect(Math.abs(first.body.parameters.peakFrequencyHz - 30_000)).toBeLessThan(640);
     expect((await put()).body).toEqual(first.body);
-    const finished = await app.as('labeler').post(`/api/passes/${made.passId}/finish`).send({});
+    const finished = await app
+      .as('labeler')
+      .post(`/api/passes/${made.passId}/finish`)
+      .send({ remark: 'Looked over quickly.' });
     expect(finished.body).toMatchObject({ state: 'finished', eventCount: 1 });
   });
 

@@ -3,7 +3,7 @@ import type { Fingerprint } from '../../../server/signal/fingerprint.ts';
 import { matchWords, searchedKeys, storedKeys } from '../../../server/signal/fingerprint-match.ts';
 import { planResampling, resample } from '../../../server/signal/resample.ts';
 import { addDampedSine } from '../../../server/setup/demo-audio/damped-sine.ts';
-import { between, seededRandom } from '../../../server/setup/demo-audio/seeded-random.ts';
+import { between, seededRandom } from '../../../shared/lib/seeded-random.ts';
 import { pinkNoiseSignal } from '../../support/wav/signals.ts';
 import { contentOf } from './content-of.ts';
 

@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest';
 import { LowFrames } from '../../../server/signal/low-frames.ts';
 import { SpeechFrameTracker } from '../../../server/signal/speech-frames.ts';
 import { screenSpeech, type SpeechPart } from '../../../server/signal/speech-screen.ts';
-import { seededGaussian, seededRandom } from '../../../server/setup/demo-audio/seeded-random.ts';
+import { seededGaussian, seededRandom } from '../../../shared/lib/seeded-random.ts';
 import { pinkNoiseSignal, whiteNoiseSignal } from '../../support/wav/signals.ts';
 import { lowMeanSums } from './content-of.ts';
 import { clickScene } from './synthetic-clicks.ts';

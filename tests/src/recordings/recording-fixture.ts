@@ -107,6 +107,7 @@ export function recording(part: Partial<Recording> = {}): Recording {
     likenesses: [],
     eventCount: 0,
     blind: false,
+    isSoundWithheld: false,
     may: { downloadAudio: true, decide: false, assign: false, mark: false },
     revision: 1,
     ...part,

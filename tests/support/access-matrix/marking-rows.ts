@@ -54,7 +54,31 @@ export const markingRows: MatrixRow[] = [
   },
   {
     route: 'POST /api/passes/:id/finish',
-    prepare: async (app) => ({ path: `/api/passes/${(await seedAssigned(app)).passId}/finish`, body: {} }),
+    prepare: async (app) => ({
+      path: `/api/passes/${(await seedAssigned(app)).passId}/finish`,
+      body: { remark: 'Looked over quickly.' },
+    }),
+    expected: labelerOnly(200),
+  },
+  {
+    route: 'PATCH /api/passes/:id',
+    prepare: async (app) => ({
+      path: `/api/passes/${(await seedAssigned(app)).passId}`,
+      body: { instructions: 'Begin with the last minute.' },
+    }),
+    expected: curatorOnly(200),
+  },
+  {
+    route: 'GET /api/passes/:id/coverage',
+    prepare: async (app) => ({ path: `/api/passes/${(await seedAssigned(app)).passId}/coverage` }),
+    expected: signedIn(404, { labeler: 200, curator: 200 }),
+  },
+  {
+    route: 'POST /api/passes/:id/coverage',
+    prepare: async (app) => ({
+      path: `/api/passes/${(await seedAssigned(app)).passId}/coverage`,
+      body: { spans: [{ way: 'seen', channel: 0, startSample: 0, endSample: 9_600, detail: 8 }] },
+    }),
     expected: labelerOnly(200),
   },
   {

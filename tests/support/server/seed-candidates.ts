@@ -3,7 +3,7 @@ import { desc, eq } from 'drizzle-orm';
 import { detectorRuns } from '../../../server/db/schema/measurements.ts';
 import { write } from '../../../server/db/transaction.ts';
 import { insertCandidates } from '../../../server/features/recordings/measurement.queries.ts';
-import { seededRandom } from '../../../server/setup/demo-audio/seeded-random.ts';
+import { seededRandom } from '../../../shared/lib/seeded-random.ts';
 import type { Ground } from '../../../server/ground.ts';
 
 export function detectedCandidate(facts: Partial<DetectedCandidate> = {}): DetectedCandidate {

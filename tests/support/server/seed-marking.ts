@@ -1,7 +1,11 @@
+import type { z } from 'zod';
 import { createEventSchema, type CreateEvent, type RecordingEvent } from '../../../shared/contract/events.ts';
+import { createPassSchema } from '../../../shared/contract/passes.ts';
 import { saveCollectionSchema } from '../../../shared/contract/collections.ts';
 import { seedMeasured, type SeedRecording } from './seed-recordings.ts';
 import type { TestApp } from './test-app.ts';
+
+type PassOrder = Partial<z.input<typeof createPassSchema>>;
 
 export interface Assigned {
   recordingId: string;
@@ -11,16 +15,11 @@ export interface Assigned {
 /** A shared, measured recording with an open pass of the labeler. */
 export async function seedAssigned(
   app: TestApp,
-  { blind = true, ...seed }: SeedRecording & { blind?: boolean } = {},
+  { pass: order = {}, blind = true, ...seed }: SeedRecording & { blind?: boolean; pass?: PassOrder } = {},
 ): Promise<Assigned> {
   const recordingId = await seedMeasured(app, { sharing: 'shared', ...seed });
-  const pass = app.deps.services.passes.create(app.actor('curator'), {
-    recordingId,
-    labelerId: app.personIds.labeler,
-    blind,
-    dueAt: null,
-    instructions: '',
-  });
+  const input = { recordingId, labelerId: app.personIds.labeler, blind, ...order };
+  const pass = app.deps.services.passes.create(app.actor('curator'), createPassSchema.parse(input));
   return { recordingId, passId: pass.id };
 }
 

@@ -1,5 +1,5 @@
 import { infoChunk } from '../../../server/setup/demo-audio/metadata-chunks.ts';
-import { seededRandom } from '../../../server/setup/demo-audio/seeded-random.ts';
+import { seededRandom } from '../../../shared/lib/seeded-random.ts';
 import { asciiBytes, concatBytes, uint32 } from '../../../shared/audio/wav-envelope.ts';
 
 /** A file as its parts say it is; `claims` is the size field, which need not be the truth. */

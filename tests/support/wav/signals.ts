@@ -1,7 +1,7 @@
 import { addDampedSine, type DampedSine } from '../../../server/setup/demo-audio/damped-sine.ts';
 import { hum, type HumLine } from '../../../server/setup/demo-audio/hum.ts';
 import { pinkNoise, whiteNoise } from '../../../server/setup/demo-audio/noise.ts';
-import { seededRandom } from '../../../server/setup/demo-audio/seeded-random.ts';
+import { seededRandom } from '../../../shared/lib/seeded-random.ts';
 
 /** Amplitude times sin(2 pi f n / fs + phase). */
 export function sine(

@@ -160,7 +160,10 @@ describe('changing a mark', () => {
 
   test('is over when the pass is finished', async () => {
     const { id } = await seedMark(app, assigned);
-    await labeler().post(`/api/passes/${assigned.passId}/finish`).send({}).expect(200);
+    await labeler()
+      .post(`/api/passes/${assigned.passId}/finish`)
+      .send({ remark: 'Looked over quickly.' })
+      .expect(200);
     const late = await labeler().patch(`/api/events/${id}`).set('If-Match', '"1"').send({ note: 'late' });
     expect(late.status).toBe(409);
     expect(late.body.detail).toContain('finished');
@@ -179,7 +182,7 @@ describe('reading marks', () => {
       [id],
       [],
     ]);
-    await labeler().post(`/api/passes/${assigned.passId}/finish`).send({});
+    await labeler().post(`/api/passes/${assigned.passId}/finish`).send({ remark: 'Looked over quickly.' });
     expect(await idsFor('contributor')).toEqual([id]);
   });
 });

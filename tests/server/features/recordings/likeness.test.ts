@@ -6,7 +6,7 @@ import {
   selectRecordingRow,
 } from '../../../../server/features/recordings/recordings.queries.ts';
 import { addDampedSine } from '../../../../server/setup/demo-audio/damped-sine.ts';
-import { between, seededRandom } from '../../../../server/setup/demo-audio/seeded-random.ts';
+import { between, seededRandom } from '../../../../shared/lib/seeded-random.ts';
 import { infoChunk } from '../../../../server/setup/demo-audio/metadata-chunks.ts';
 import { seedMeasured, setSharing, smallWav } from '../../../support/server/seed-recordings.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';

@@ -18,7 +18,7 @@ let slugs = 0;
 async function seedReleasable() {
   const assigned = await seedAssigned(app);
   await seedMark(app, assigned, { note: '=HYPERLINK("x")' });
-  app.deps.services.passes.finish(app.actor('labeler'), assigned.passId, '');
+  app.deps.services.passes.finish(app.actor('labeler'), assigned.passId, 'Looked over quickly.');
   seedCredit(app, assigned.recordingId);
   const collectionId = seedCollection(app, [assigned.recordingId], `collection-${(slugs += 1)}`);
   return { ...assigned, collectionId };

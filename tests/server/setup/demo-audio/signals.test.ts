@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { lowPassed } from '../../../../server/setup/demo-audio/low-pass.ts';
-import { seededGaussian, seededRandom } from '../../../../server/setup/demo-audio/seeded-random.ts';
+import { seededGaussian, seededRandom } from '../../../../shared/lib/seeded-random.ts';
 import {
   dampedSines,
   humSignal,
