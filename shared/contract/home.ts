@@ -5,6 +5,7 @@ export const homeSectionKeySchema = z.enum([
   'held-mine',
   'to-decide',
   'my-passes',
+  'overdue-passes',
   'to-assign',
   'releases-in-preparation',
   'failed-measurements',

@@ -24,6 +24,7 @@ const endless = ['/api/activity'];
 
 const queries: Readonly<Record<string, string>> = {
   '/api/recordings/:id/listen': '?startSample=0&endSample=4800',
+  '/api/recordings/:id/onset': '?startSample=0&endSample=4800',
   '/api/recordings/:id/region': '?channel=0&startSample=0&endSample=4800',
 };
 

@@ -1,12 +1,20 @@
-import { and, asc, count, desc, eq, inArray, sql, type SQL } from 'drizzle-orm';
+import { and, asc, count, desc, eq, inArray, lt, sql, type SQL } from 'drizzle-orm';
 import type { Reader } from '../../db/client.ts';
 import { collections, releases } from '../../db/schema/collections.ts';
 import { passes } from '../../db/schema/events.ts';
+import { detectorRuns } from '../../db/schema/measurements.ts';
 import { recordings } from '../../db/schema/recordings.ts';
 import { runs } from '../../db/schema/runs.ts';
 import { uploads } from '../../db/schema/uploads.ts';
+import { users } from '../../db/schema/users.ts';
 
 const shown = 10;
+
+/** Of the newest run of the detector: what a pass of rounds has to offer. */
+const candidateCount = sql<number | null>`(
+  select ${detectorRuns.candidateCount} from ${detectorRuns} where ${detectorRuns.recordingId} = ${passes.recordingId}
+  order by ${detectorRuns.createdAtMs} desc, ${detectorRuns.id} desc limit 1
+)`;
 
 export interface Waiting<Row> {
   total: number;
@@ -96,24 +104,27 @@ export function selectUnassigned(db: Reader): Waiting<RecordingRowOfHome> {
   return selectRecordings(db, where, desc(recordings.createdAtMs));
 }
 
-export function selectOpenPasses(db: Reader, labelerId: string) {
-  const where = and(
-    eq(passes.labelerId, labelerId),
-    eq(passes.state, 'assigned'),
-    eq(recordings.sharing, 'shared'),
-  );
+const isOpenPass = and(eq(passes.state, 'assigned'), eq(recordings.sharing, 'shared'));
+
+function selectPasses(db: Reader, where: SQL | undefined) {
+  const { format } = recordings;
   const rows = db
     .select({
       id: passes.id,
       recordingId: passes.recordingId,
       fileName: recordings.fileName,
       runTitle: runs.title,
-      blind: passes.blind,
-      dueAtMs: passes.dueAtMs,
+      labelerName: users.name,
+      pass: passes,
+      frames: sql<number>`json_extract(${format}, '$.frames')`,
+      sampleRateHz: sql<number>`json_extract(${format}, '$.sampleRateHz')`,
+      channels: sql<number>`json_extract(${format}, '$.channels')`,
+      candidateCount,
     })
     .from(passes)
     .innerJoin(recordings, eq(recordings.id, passes.recordingId))
     .innerJoin(runs, eq(runs.id, recordings.runId))
+    .innerJoin(users, eq(users.id, passes.labelerId))
     .where(where)
     .orderBy(sql`${passes.dueAtMs} is null`, asc(passes.dueAtMs), asc(passes.id))
     .limit(shown)
@@ -125,6 +136,16 @@ export function selectOpenPasses(db: Reader, labelerId: string) {
     .where(where)
     .get();
   return { total: counted?.count ?? 0, rows };
+}
+export type PassRowOfHome = ReturnType<typeof selectPasses>['rows'][number];
+
+/** Due first. */
+export function selectOpenPasses(db: Reader, labelerId: string) {
+  return selectPasses(db, and(isOpenPass, eq(passes.labelerId, labelerId)));
+}
+
+export function selectOverduePasses(db: Reader, nowMs: number) {
+  return selectPasses(db, and(isOpenPass, lt(passes.dueAtMs, nowMs)));
 }
 
 export function selectInPreparation(db: Reader) {

@@ -3,12 +3,14 @@ import { labsWhere, type Actor } from '../../../shared/policy/actor.ts';
 import { decidableRecordings } from '../../authorize/decidable-recordings.ts';
 import type { Ground } from '../../ground.ts';
 import { toInstant } from '../../services/clock.ts';
+import { passWords } from './pass-words.ts';
 import {
   selectFailed,
   selectInMeasuring,
   selectInPreparation,
   selectOpenPasses,
   selectOpenUploads,
+  selectOverduePasses,
   selectOwnHeld,
   selectToDecide,
   selectUnassigned,
@@ -19,7 +21,7 @@ import {
 export type HomeService = ReturnType<typeof createHomeService>;
 
 /** What waits for this person, by the roles they hold; an empty section says that nothing does. */
-export function createHomeService({ db }: Pick<Ground, 'db'>) {
+export function createHomeService({ db, clock }: Pick<Ground, 'db' | 'clock'>) {
   function get(actor: Actor): Home {
     const ownLabs = labsWhere(actor, 'contributor');
     return {
@@ -27,7 +29,7 @@ export function createHomeService({ db }: Pick<Ground, 'db'>) {
         ...(labsWhere(actor, 'reviewer').length > 0 ? [toDecide(actor)] : []),
         ...(actor.roles.includes('labeler') ? [myPasses(actor)] : []),
         ...(ownLabs.length > 0 ? [myUploads(actor), heldMine(actor), failedMeasurements(ownLabs)] : []),
-        ...(actor.roles.includes('curator') ? [toAssign(), inPreparation()] : []),
+        ...(actor.roles.includes('curator') ? [overduePasses(), toAssign(), inPreparation()] : []),
       ],
     };
   }
@@ -43,9 +45,19 @@ export function createHomeService({ db }: Pick<Ground, 'db'>) {
     return section('my-passes', selectOpenPasses(db, actor.id), (row) => ({
       id: row.id,
       title: row.fileName,
-      detail: `${row.runTitle}, ${row.blind ? 'a blind pass' : 'an open pass'}${row.dueAtMs === null ? '' : ', due'}`,
+      detail: `${row.runTitle}, ${passWords(row, clock.nowMs())}`,
       href: `/bench/${row.recordingId}?pass=${row.id}`,
-      at: row.dueAtMs === null ? null : toInstant(row.dueAtMs),
+      at: row.pass.dueAtMs === null ? null : toInstant(row.pass.dueAtMs),
+    }));
+  }
+
+  function overduePasses(): HomeSection {
+    return section('overdue-passes', selectOverduePasses(db, clock.nowMs()), (row) => ({
+      id: row.id,
+      title: row.fileName,
+      detail: `${row.labelerName}, overdue since`,
+      href: `/recordings/${row.recordingId}`,
+      at: row.pass.dueAtMs === null ? null : toInstant(row.pass.dueAtMs),
     }));
   }
 

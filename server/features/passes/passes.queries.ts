@@ -2,7 +2,7 @@ import { and, count, desc, eq, isNull, lt, ne, sql, type SQL } from 'drizzle-orm
 import type { PassState } from '../../../shared/contract/passes.ts';
 import type { Reader } from '../../db/client.ts';
 import { candidateVerdicts, events, passes } from '../../db/schema/events.ts';
-import { detectorRuns, measurements } from '../../db/schema/measurements.ts';
+import { detectorRuns } from '../../db/schema/measurements.ts';
 import { recordings } from '../../db/schema/recordings.ts';
 import { runs } from '../../db/schema/runs.ts';
 import { serviceRoles, users } from '../../db/schema/users.ts';
@@ -14,9 +14,8 @@ const eventCount = sql<number>`(select count(*) from ${events} where ${events.pa
 
 /** Of the newest run of the detector. */
 const candidateCount = sql<number | null>`(
-  select ${detectorRuns.candidateCount} from ${detectorRuns} inner join ${measurements} on ${measurements.id} = ${detectorRuns.measurementId}
-  where ${measurements.recordingId} = ${passes.recordingId}
-  order by ${measurements.createdAtMs} desc, ${detectorRuns.createdAtMs} desc limit 1
+  select ${detectorRuns.candidateCount} from ${detectorRuns} where ${detectorRuns.recordingId} = ${passes.recordingId}
+  order by ${detectorRuns.createdAtMs} desc, ${detectorRuns.id} desc limit 1
 )`;
 
 const withContext = {

@@ -24,6 +24,13 @@ export const sectionWords: Readonly<Record<HomeSectionKey, SectionWords>> = {
     emptyHint: 'A curator assigns recordings; they appear here with their likely minutes.',
     task: ['pass to finish', 'passes to finish'],
   },
+  'overdue-passes': {
+    title: 'Overdue passes',
+    emptyTitle: 'No pass is overdue.',
+    emptyHint: 'A pass comes here when its due date has gone by and it is still open.',
+    action: { label: 'Look through all passes', to: '/passes' },
+    task: ['overdue pass', 'overdue passes'],
+  },
   'failed-measurements': {
     title: 'Measurements that failed',
     emptyTitle: 'Every measurement went through.',

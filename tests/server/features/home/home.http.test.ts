@@ -41,6 +41,7 @@ test('a labeler sees the assigned passes', async () => {
 
 test('a curator sees what nobody marks yet, and nothing that is held', async () => {
   expect(await homeOf('curator')).toEqual({
+    'overdue-passes': [],
     'to-assign': ['nobody-marks.wav'],
     'releases-in-preparation': [],
   });
@@ -52,4 +53,25 @@ test('somebody of another lab sees nothing of it', async () => {
     'held-mine': [],
     'failed-measurements': [],
   });
+});
+
+test('a pass tells its kind, its likely minutes and whether it is overdue, to its labeler and to curators', async () => {
+  const own = createTestApp({ RECALESCE_LOG_LEVEL: 'error' });
+  const windows = { count: 3, lengthS: 0.05 };
+  const dueAt = '2001-01-01T00:00:00.000Z';
+  await seedAssigned(own, { fileName: 'late.wav', pass: { kind: 'windows', windows, dueAt } });
+  const sectionOf = async (name: ActorName, key: string) => {
+    const { body } = await own.as(name).get('/api/home');
+    return (body as Home).sections.find((section) => section.key === key)?.items[0];
+  };
+  expect(await sectionOf('labeler', 'my-passes')).toMatchObject({
+    detail: 'Water droplet, slow cooling, 3 windows, blind, likely 1 min, overdue since',
+    at: dueAt,
+  });
+  expect(await sectionOf('curator', 'overdue-passes')).toMatchObject({
+    title: 'late.wav',
+    detail: 'Test labeler, overdue since',
+    at: dueAt,
+  });
+  await own.close();
 });

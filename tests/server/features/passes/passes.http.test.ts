@@ -4,6 +4,7 @@ import { replaceRoles } from '../../../../server/features/people/people.queries.
 import { drawWindows } from '../../../../shared/domain/pass-windows.ts';
 import { markInput, seedAssigned, seedMark } from '../../../support/server/seed-marking.ts';
 import { seedMeasured, seedRecording, setSharing } from '../../../support/server/seed-recordings.ts';
+import { roundCandidates, seedRound } from '../../../support/server/seed-rounds.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
 
 let app: TestApp;
@@ -272,4 +273,13 @@ describe('a curator', () => {
     await finish(passId, 'Late.').expect(200);
     expect(await idsOf('overdue=true')).not.toContain(passId);
   });
+});
+
+test('rounds are finished when every candidate has an answer, or with a reason', async () => {
+  const { passId } = await seedRound(app, roundCandidates(3));
+  const refused = await finish(passId, '');
+  expect(refused.body.fields).toEqual([
+    { path: 'remark', message: '3 candidates have no answer yet; say why they are left out' },
+  ]);
+  await finish(passId, 'Too weak to tell.').expect(200);
 });
