@@ -1,7 +1,9 @@
 import { decodeTile } from '@shared/audio/tile.ts';
 import type { Tile } from '@shared/audio/tile.ts';
-import { peaksSchema, tileLayoutSchema } from '@shared/contract/views.ts';
-import type { Peaks, PictureBand, TileLayout } from '@shared/contract/views.ts';
+import { regionReportSchema } from '@shared/contract/region.ts';
+import type { RegionReport } from '@shared/contract/region.ts';
+import { peaksSchema, quietLevelsSchema, tileLayoutSchema } from '@shared/contract/views.ts';
+import type { Peaks, PictureBand, QuietLevels, TileLayout } from '@shared/contract/views.ts';
 import { apiAddress, apiGet, apiGetBytes } from '@/api/client.ts';
 
 function viewPath(recordingId: string, view: string): string {
@@ -24,6 +26,34 @@ export async function getTile(query: TileQuery, signal: AbortSignal): Promise<Ti
   const { recordingId, channel, band, level, tile } = query;
   const path = viewPath(recordingId, `spectrogram/${band}/${level}/${tile}`);
   return decodeTile(new Uint8Array(await apiGetBytes(path, { query: { channel }, signal })));
+}
+
+/** What is quiet in each bin of the pictures of a channel. */
+export async function getQuietLevels(
+  recordingId: string,
+  channel: number,
+  signal: AbortSignal,
+): Promise<QuietLevels> {
+  return apiGet(viewPath(recordingId, 'spectrogram/quiet'), quietLevelsSchema, {
+    query: { channel },
+    signal,
+  });
+}
+
+export interface RegionSpan {
+  channel: number;
+  startSample: number;
+  /** Exclusive. */
+  endSample: number;
+}
+
+/** Levels and spectrum of a span, and of a quiet stretch of the same channel. */
+export async function getRegion(
+  recordingId: string,
+  span: RegionSpan,
+  signal: AbortSignal,
+): Promise<RegionReport> {
+  return apiGet(viewPath(recordingId, 'region'), regionReportSchema, { query: { ...span }, signal });
 }
 
 export interface PeaksSpan {

@@ -13,19 +13,32 @@ export interface BandImage {
   highHz: number;
   widthPx: number;
   heightPx: number;
-  /** Pixel of each code. */
+  /** Pixel of each code, or of each code over the quiet where that is shown. */
   table: Uint32Array;
   /** What stands where nothing is loaded yet. */
   emptyPixel: number;
   findTile: FindTile;
+  /** Of a level, what is quiet in each bin: codes are then shown over it, `QUIET_CODE` for as loud as the quiet. */
+  quietOf?: ((level: number) => ArrayLike<number> | undefined) | undefined;
 }
+
+/** Neighbouring columns of pixels to paint; the others stay as they are. */
+export interface BandPart {
+  fromPx: number;
+  endPx: number;
+  /** Set to 1 for each column that was painted from the wanted level, to 0 for those where another one stands in. */
+  whole?: Uint8Array;
+}
+
+/** What a code becomes that equals the quiet of its bin. */
+export const QUIET_CODE = 64;
 
 /** Columns gathered before their rows are painted: few enough that their codes stay near the processor. */
 const STRIP_PX = 128;
 /** From bin to bin in the codes of a strip: no power of two, whose places would crowd each other out of the cache. */
 const BIN_STRIDE = STRIP_PX + 8;
-/** Stands for what is not loaded yet: one more than the greatest code. */
-const EMPTY_CODE = 256;
+/** Stands for what is not loaded yet: one more than the greatest code over the quiet. */
+const EMPTY_CODE = 256 + QUIET_CODE;
 
 /** Neighbouring columns of pixels. */
 interface Strip {
@@ -44,16 +57,23 @@ interface Strip {
  * @param pixels `widthPx * heightPx` pixels, row after row, highest frequency first.
  * @param level the finest level to use.
  */
-export function composeBand(pixels: Uint32Array, level: number, image: BandImage): void {
+export function composeBand(
+  pixels: Uint32Array,
+  level: number,
+  image: BandImage,
+  part: BandPart = { fromPx: 0, endPx: image.widthPx },
+): void {
   const { widthPx } = image;
   const { bins } = image.layout;
   const rows = rowBins(image);
   const levels = levelsOf(image, level);
-  const table = Uint32Array.of(...image.table, image.emptyPixel);
+  const table = new Uint32Array(EMPTY_CODE + 1);
+  table.set(image.table);
+  table[EMPTY_CODE] = image.emptyPixel;
   const codes = new Uint16Array(BIN_STRIDE * (bins + 1));
-  for (let fromPx = 0; fromPx < widthPx; fromPx += STRIP_PX) {
-    const strip = { fromPx, endPx: Math.min(widthPx, fromPx + STRIP_PX), bins, codes };
-    gatherStrip(strip, levels, image);
+  for (let { fromPx } = part; fromPx < part.endPx; fromPx += STRIP_PX) {
+    const strip = { fromPx, endPx: Math.min(part.endPx, fromPx + STRIP_PX), bins, codes };
+    gatherStrip(strip, levels, image, part.whole);
     paintStrip(pixels, strip, { widthPx, rows, table });
   }
 }
@@ -65,9 +85,15 @@ interface ComposedLevel {
   lastColumn: number;
   columnsPerTile: number;
   tileOf: (index: number) => Tile | undefined;
+  /** Added to the code of each bin; without it, codes are shown as they are. */
+  shifts: Int16Array | null;
 }
 
-function levelsOf({ layout, findTile }: BandImage, finest: number): ComposedLevel[] {
+function shiftsOver(quiet: ArrayLike<number> | undefined): Int16Array | null {
+  return quiet ? Int16Array.from(quiet, (code) => QUIET_CODE - code) : null;
+}
+
+function levelsOf({ layout, findTile, quietOf }: BandImage, finest: number): ComposedLevel[] {
   const { levels, columnsPerTile } = layout;
   return Array.from({ length: Math.max(0, levels - finest) }, (_, index) => {
     const level = finest + index;
@@ -77,17 +103,25 @@ function levelsOf({ layout, findTile }: BandImage, finest: number): ComposedLeve
       return known.get(tile);
     };
     const lastColumn = columnsAtLevel(layout, level) - 1;
-    return { level, samples: columnSamples(layout, level), lastColumn, columnsPerTile, tileOf };
+    const shifts = shiftsOver(quietOf?.(level));
+    return { level, samples: columnSamples(layout, level), lastColumn, columnsPerTile, tileOf, shifts };
   });
 }
 
-function gatherStrip(strip: Strip, levels: readonly ComposedLevel[], { window, widthPx }: BandImage): void {
+function gatherStrip(
+  strip: Strip,
+  levels: readonly ComposedLevel[],
+  { window, widthPx }: BandImage,
+  whole: Uint8Array | undefined,
+): void {
   const { startSample, endSample } = window;
   const samplesPerPixel = (endSample - startSample) / widthPx;
   strip.codes.fill(0);
   for (let x = strip.fromPx; x < strip.endPx; x++) {
     const fromSample = startSample + x * samplesPerPixel;
-    gatherPixel(strip, x - strip.fromPx, placeOf(levels, fromSample, fromSample + samplesPerPixel));
+    const place = placeOf(levels, fromSample, fromSample + samplesPerPixel);
+    gatherPixel(strip, x - strip.fromPx, place);
+    if (whole) whole[x] = place && place.level === levels[0] ? 1 : 0;
   }
 }
 
@@ -117,10 +151,20 @@ function gatherPixel(strip: Strip, column: number, place: Place | null): void {
     for (let bin = 0; bin < strip.bins; bin++) strip.codes[bin * BIN_STRIDE + column] = EMPTY_CODE;
     return;
   }
-  const { columnsPerTile, tileOf } = place.level;
+  const { columnsPerTile, tileOf, shifts } = place.level;
   for (let from = place.from; from <= place.to; from++) {
     const index = Math.floor(from / columnsPerTile);
-    raise(strip, column, tileOf(index)!.codes, (from - index * columnsPerTile) * strip.bins);
+    const at = (from - index * columnsPerTile) * strip.bins;
+    if (shifts) raiseShifted(strip, column, tileOf(index)!.codes.subarray(at), shifts);
+    else raise(strip, column, tileOf(index)!.codes, at);
+  }
+}
+
+/** As `raise`, over the quiet of each bin; what lies far below it stays at zero. */
+function raiseShifted({ codes, bins }: Strip, column: number, source: Uint8Array, shifts: Int16Array): void {
+  for (let bin = 0, at = column; bin < bins; bin++, at += BIN_STRIDE) {
+    const code = source[bin]! + shifts[bin]!;
+    if (code > codes[at]!) codes[at] = code;
   }
 }
 

@@ -222,7 +222,7 @@ export function drawCursor({ context, places, window, colours }: StagePen, sampl
   const x = Math.round(xOf(sample, { places, window })) + 0.5;
   if (x < places.gutterPx || x > places.gutterPx + places.plotWidthPx) return;
   const bottom = places.waveTopPx + places.waveHeightPx;
-  const pictureBottom = places.audible.topPx + places.audible.heightPx;
+  const pictureBottom = Math.max(...places.rows.map((row) => row.topPx + row.heightPx));
   drawHair(
     context,
     x,

@@ -1,5 +1,6 @@
 import { frequencyAtY } from '@/composables/bench/frequency-axis.ts';
 import type { DraftSpan } from '@/composables/bench/new-mark.ts';
+import { rowAt } from '@/composables/bench/stage-places.ts';
 import type { StagePlaces } from '@/composables/bench/stage-places.ts';
 import { sampleAtPixel } from '@/composables/bench/time-axis.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
@@ -26,9 +27,26 @@ export function sampleAt(x: number, { places, window }: StageView): number {
   return sampleAtPixel(x - places.gutterPx, window, places.plotWidthPx);
 }
 
-/** `null` outside the bands: the waveform says nothing about frequency. */
+/** A place under the pointer, of the channel whose picture is there. */
+export interface PointedPlace {
+  sample: number;
+  hz: number | null;
+  channel: number;
+}
+
+export function pointedAt(point: StagePoint, view: StageView): PointedPlace {
+  const row = rowAt(point.y, view.places);
+  return {
+    sample: sampleAt(point.x, view),
+    hz: row && frequencyAtY(point.y, [row.ultrasonic, row.audible]),
+    channel: row?.channel ?? view.places.channel,
+  };
+}
+
+/** In the chosen channel; `null` outside its bands: the waveform says nothing about frequency. */
 export function frequencyAt(y: number, { places }: StageView): number | null {
-  if (y < places.glyphHeightPx || y > places.audible.topPx + places.audible.heightPx) return null;
+  const isAbove = y < (places.rows.length > 1 ? places.ultrasonic.topPx : places.glyphHeightPx);
+  if (isAbove || y > places.audible.topPx + places.audible.heightPx) return null;
   return frequencyAtY(y, [places.ultrasonic, places.audible]);
 }
 

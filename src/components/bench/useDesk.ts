@@ -1,8 +1,9 @@
 import { useLocalStorage } from '@vueuse/core';
 import { computed, nextTick, ref, shallowRef } from 'vue';
 import { voiceClassKey } from '@shared/domain/label-scheme.ts';
-import { FIRST_LOOK, nextColours } from '@/components/bench/look.ts';
-import { pointWords, scaleWords } from '@/components/bench/stage-words.ts';
+import { FIRST_LOOK, nextColours, otherView } from '@/components/bench/look.ts';
+import type { PointedPlace } from '@/components/bench/pointer-work.ts';
+import { frameWords, readoutWords, scaleWords } from '@/components/bench/stage-words.ts';
 import { benchHotkeys } from '@/composables/bench/bench-hotkeys.ts';
 import { withKeys } from '@/composables/bench/class-keys.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
@@ -17,7 +18,7 @@ export function useDesk(bench: Bench) {
   const { view, marks, layout } = bench;
   const choices = withKeys(bench.scheme.classes);
   const look = useLocalStorage('recalesce.bench.look', FIRST_LOOK, { mergeDefaults: true });
-  const point = shallowRef<{ sample: number; hz: number | null } | null>(null);
+  const point = shallowRef<PointedPlace | null>(null);
   const openSheet = ref<DeskSheet | null>(null);
   /** A class that holds the recording, while somebody is asked whether it is meant. */
   const asked = shallowRef<{ classKey: string; isLessSure: boolean } | null>(null);
@@ -44,7 +45,7 @@ export function useDesk(bench: Bench) {
     document.querySelector<HTMLElement>('[data-note]')?.focus();
   }
 
-  function takePoint(place: { sample: number; hz: number | null } | null): void {
+  function takePoint(place: PointedPlace | null): void {
     point.value = place;
     if (place) view.pointerSample.value = Math.min(layout.frames - 1, Math.max(0, place.sample));
     else if (view.pointerSample.value !== null) view.placeCursor(view.pointerSample.value);
@@ -53,6 +54,7 @@ export function useDesk(bench: Bench) {
   const hotkeys = benchHotkeys(bench, choices, {
     showKeys: () => (openSheet.value = 'keys'),
     nextColours: () => (look.value = nextColours(look.value)),
+    otherView: () => (look.value = otherView(look.value)),
     editNote: () => void editNote(),
     say: (words) => void announce(words),
     chooseClass,
@@ -66,7 +68,8 @@ export function useDesk(bench: Bench) {
     asked,
     hotkeys: inForce,
     scaleText: computed(() => scaleWords(bench, look.value)),
-    readout: computed(() => pointWords(point.value, layout.sampleRateHz)),
+    frameText: computed(() => frameWords(bench)),
+    readout: computed(() => readoutWords(bench, point.value)),
     chooseClass,
     confirmAsked,
     changeSelectedClass,

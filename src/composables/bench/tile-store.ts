@@ -9,9 +9,9 @@ export interface TileRequest {
 }
 
 export interface TileStoreParts {
-  load: (request: TileRequest) => Promise<Tile>;
-  /** A tile has come, or could not be had. */
-  onArrival: (request: TileRequest, error: unknown) => void;
+  load: (request: TileRequest, signal: AbortSignal) => Promise<Tile>;
+  /** A tile has come, or could not be had this time. */
+  onChange: () => void;
   /** Tiles kept at most; the ones used longest ago go first. */
   capacity?: number;
   /** Requests under way at once. */
@@ -20,50 +20,73 @@ export interface TileStoreParts {
 
 export type TileStore = ReturnType<typeof createTileStore>;
 
-/** Levels 0 to 20 and fewer than 2^40 tiles per channel. */
+interface Failure {
+  times: number;
+  /** On the clock of the page, ms. */
+  againAtMs: number;
+  error: unknown;
+}
+
+const FIRST_WAIT_MS = 1000;
+const LONGEST_WAIT_MS = 30_000;
+
 function keyOf({ channel, band, level, tile }: TileRequest): string {
   return `${channel}/${band}/${level}/${tile}`;
 }
 
 /**
- * Keeps the tiles of one recording. `want` replaces what is still waiting by a new list, most urgent first, so that
- * a fast pan does not fetch what it has left behind.
+ * Keeps the tiles of one recording. `want` replaces what is wanted by a new list, most urgent first: what waits and is not in
+ * it is forgotten and what is under way is given up, so that a fast pan does not fetch what it has left behind. What could
+ * not be had is tried again as long as it is wanted, after 1, 2, 4 ... 30 seconds.
  */
-export function createTileStore({ load, onArrival, capacity = 600, parallel = 6 }: TileStoreParts) {
+export function createTileStore({ load, onChange, capacity = 1000, parallel = 6 }: TileStoreParts) {
   const tiles = new Map<string, Tile>();
-  const underway = new Set<string>();
-  const failed = new Set<string>();
-  let waiting: TileRequest[] = [];
+  const underway = new Map<string, AbortController>();
+  const failures = new Map<string, Failure>();
+  let wanted: TileRequest[] = [];
+  let timer: ReturnType<typeof setTimeout> | undefined;
 
   function want(requests: readonly TileRequest[]): void {
-    waiting = requests.filter((request) => {
-      const key = keyOf(request);
-      return !tiles.has(key) && !underway.has(key) && !failed.has(key);
-    });
+    wanted = [...requests];
+    const keys = new Set(requests.map(keyOf));
+    for (const [key, controller] of underway) if (!keys.has(key)) controller.abort();
+    for (const key of failures.keys()) if (!keys.has(key)) failures.delete(key);
+    for (const request of requests) find(request);
     fill();
   }
 
   function fill(): void {
-    while (underway.size < parallel) {
-      const request = waiting.shift();
-      if (!request) return;
-      void fetchOne(request);
+    clearTimeout(timer);
+    const now = performance.now();
+    for (const request of wanted) {
+      if (underway.size >= parallel) return;
+      const key = keyOf(request);
+      const isDue = (failures.get(key)?.againAtMs ?? 0) <= now;
+      if (isDue && !tiles.has(key) && !underway.has(key)) void fetchOne(request);
     }
+    const next = Math.min(...[...failures.values()].map(({ againAtMs }) => againAtMs));
+    if (Number.isFinite(next)) timer = setTimeout(fill, Math.max(1, next - now + 1));
   }
 
   async function fetchOne(request: TileRequest): Promise<void> {
     const key = keyOf(request);
-    underway.add(key);
+    const controller = new AbortController();
+    underway.set(key, controller);
     try {
-      keep(key, await load(request));
-      underway.delete(key);
-      onArrival(request, null);
+      keep(key, await load(request, controller.signal));
+      failures.delete(key);
     } catch (error) {
-      underway.delete(key);
-      failed.add(key);
-      onArrival(request, error);
+      if (!controller.signal.aborted) note(key, error);
     }
+    underway.delete(key);
+    if (!controller.signal.aborted) onChange();
     fill();
+  }
+
+  function note(key: string, error: unknown): void {
+    const times = (failures.get(key)?.times ?? 0) + 1;
+    const waitMs = Math.min(LONGEST_WAIT_MS, FIRST_WAIT_MS * 2 ** (times - 1));
+    failures.set(key, { times, againAtMs: performance.now() + waitMs, error });
   }
 
   function keep(key: string, tile: Tile): void {
@@ -82,10 +105,21 @@ export function createTileStore({ load, onArrival, capacity = 600, parallel = 6 
     return tile;
   }
 
-  /** Tries again what could not be had. */
-  function forgive(): void {
-    failed.clear();
+  /** How many wanted tiles could not be had yet, and why the last of them could not. */
+  function failing(): { count: number; error: unknown } {
+    return { count: failures.size, error: [...failures.values()].at(-1)?.error ?? null };
   }
 
-  return { want, find, forgive, isIdle: () => underway.size === 0 && waiting.length === 0 };
+  /** Tries at once what could not be had. */
+  function retry(): void {
+    for (const failure of failures.values()) failure.againAtMs = 0;
+    fill();
+  }
+
+  function close(): void {
+    want([]);
+    clearTimeout(timer);
+  }
+
+  return { want, find, failing, retry, close };
 }

@@ -7,6 +7,7 @@ import { useBenchMarks } from '@/composables/bench/useBenchMarks.ts';
 import { useBenchSources } from '@/composables/bench/useBenchSources.ts';
 import { useBenchWindow } from '@/composables/bench/useBenchWindow.ts';
 import { useClassKey } from '@/composables/bench/useClassKey.ts';
+import { useRegion } from '@/composables/bench/useRegion.ts';
 import { useListening } from '@/composables/bench/useListening.ts';
 
 export type Bench = ReturnType<typeof useBench>;
@@ -40,6 +41,8 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   });
   const hand = { view, marks, draft, selectedCandidate, markSample };
   const classKey = useClassKey({ layout, scheme, canMark, ...hand, channel, plotWidthPx });
+
+  const region = useRegion({ recordingId: recording.id, layout, channel, ...hand });
 
   function selectMark(key: string | null): void {
     selectedCandidate.value = null;
@@ -85,6 +88,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     canMark,
     areCandidatesShown,
     listening,
+    region,
     ...classKey,
     selectMark,
     selectCandidate,

@@ -4,6 +4,7 @@ import type { Ref } from 'vue';
 import type { TileLayout } from '@shared/contract/views.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 import { useCandidates } from '@/composables/bench/useCandidates.ts';
+import { useChannels } from '@/composables/bench/useChannels.ts';
 import { usePeaks } from '@/composables/bench/usePeaks.ts';
 import { useQuiet } from '@/composables/bench/useQuiet.ts';
 import { useTiles } from '@/composables/bench/useTiles.ts';
@@ -17,22 +18,24 @@ export interface BenchSourcesOptions {
 
 const FIRST_WIDTH_PX = 800;
 
-/** What the server sends for the part that is shown: tiles, peaks, candidates. */
+/** What the server sends for the part that is shown: tiles, what is quiet in them, peaks, candidates. */
 export function useBenchSources({ recordingId, layout, window, areCandidatesShown }: BenchSourcesOptions) {
-  const channel = ref(0);
+  const channels = useChannels(layout.channels);
+  const { channel } = channels;
   const plotWidthPx = ref(FIRST_WIDTH_PX);
   const { pixelRatio } = useDevicePixelRatio();
   const widthPx = computed(() => Math.round(plotWidthPx.value * pixelRatio.value));
-  const place = { recordingId, channel, window, widthPx };
-  const tiles = useTiles({ ...place, layout });
+  const place = { recordingId, window, widthPx };
+  const tiles = useTiles({ ...place, layout, channels: channels.shown });
   return {
     channel,
+    channels,
     /** Width of the plots in CSS pixels, and in those of the screen. */
     plotWidthPx,
     widthPx,
     tiles,
-    ...useQuiet({ layout, window, find: tiles.find }),
-    peaks: usePeaks({ ...place, frames: layout.frames }),
+    ...useQuiet({ recordingId, layout, window, channels: channels.shown, find: tiles.find }),
+    peaks: usePeaks({ ...place, channel, frames: layout.frames }),
     candidates: useCandidates({ recordingId, isShown: areCandidatesShown, window }),
   };
 }

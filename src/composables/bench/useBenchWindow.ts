@@ -24,6 +24,8 @@ export function useBenchWindow(frames: number) {
   const router = useRouter();
   const shown = shallowRef<TimeWindow>(startWindow());
   const cursorSample = shallowRef((shown.value.startSample + shown.value.endSample) / 2);
+  /** How high the keyboard's cursor reads the level, where it was ever moved up or down. */
+  const cursorHz = shallowRef<number | null>(null);
   /** Where the pointer is over the picture; the keyboard takes over until it moves again. */
   const pointerSample = shallowRef<number | null>(null);
 
@@ -76,6 +78,7 @@ export function useBenchWindow(frames: number) {
     place,
     pointerSample,
     cursorSample,
+    cursorHz,
     show,
     placeCursor,
     moveCursor,

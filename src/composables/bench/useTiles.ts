@@ -1,10 +1,11 @@
-import { tryOnScopeDispose, watchDebounced } from '@vueuse/core';
+import { tryOnScopeDispose } from '@vueuse/core';
 import { shallowRef, toValue, watch } from 'vue';
 import type { MaybeRefOrGetter } from 'vue';
 import type { Tile } from '@shared/audio/tile.ts';
 import type { PictureBand, TileLayout } from '@shared/contract/views.ts';
 import { getTile } from '@/api/views.ts';
 import { planTiles } from '@/composables/bench/tile-plan.ts';
+import type { Heading } from '@/composables/bench/tile-plan.ts';
 import { createTileStore } from '@/composables/bench/tile-store.ts';
 import type { TileRequest } from '@/composables/bench/tile-store.ts';
 import { windowSamples } from '@/composables/bench/time-axis.ts';
@@ -13,60 +14,67 @@ import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 export interface TilesOptions {
   recordingId: string;
   layout: TileLayout;
-  channel: MaybeRefOrGetter<number>;
+  /** Those that are shown, the one that is marked first. */
+  channels: MaybeRefOrGetter<readonly number[]>;
   window: MaybeRefOrGetter<TimeWindow>;
   /** Pixels of the picture, as the screen has them. */
   widthPx: MaybeRefOrGetter<number>;
 }
 
-const FORGIVE_AFTER_MS = 4000;
+export interface TileTrouble {
+  /** Tiles that are wanted and could not be had yet; they are asked for again. */
+  count: number;
+  error: unknown;
+}
+
+/** Where the window goes, as far as it keeps its length. */
+export function headingOf(now: TimeWindow, before: TimeWindow): Heading {
+  const isSameZoom = Math.abs(windowSamples(now) / windowSamples(before) - 1) < 1e-6;
+  if (!isSameZoom || now.startSample === before.startSample) return 0;
+  return now.startSample > before.startSample ? 1 : -1;
+}
 
 /** Fetches the tiles that the window needs. `arrivals` counts what has come, so that the picture is drawn again. */
-export function useTiles({ recordingId, layout, channel, window, widthPx }: TilesOptions) {
+export function useTiles({ recordingId, layout, channels, window, widthPx }: TilesOptions) {
   const arrivals = shallowRef(0);
-  const error = shallowRef<unknown>(null);
-  const stop = new AbortController();
+  const trouble = shallowRef<TileTrouble>({ count: 0, error: null });
   const store = createTileStore({
-    load: (request) => getTile({ recordingId, ...request }, stop.signal),
-    onArrival: (_request, problem) => {
-      error.value = problem;
+    load: (request, signal) => getTile({ recordingId, ...request }, signal),
+    onChange: () => {
+      const now = store.failing();
+      if (now.count !== trouble.value.count || now.error !== trouble.value.error) trouble.value = now;
       arrivals.value++;
     },
   });
 
-  function wanted(): TileRequest[] {
+  function wanted(heading: Heading): TileRequest[] {
     const shown = toValue(window);
     const samplesPerPixel = windowSamples(shown) / Math.max(1, toValue(widthPx));
-    const plans = layout.pictures.map((picture) => ({
-      band: picture.band,
-      ...planTiles(picture, shown, samplesPerPixel),
-    }));
-    const place = (band: PictureBand) => ({ band, channel: toValue(channel) });
+    const plans = toValue(channels).flatMap((channel) =>
+      layout.pictures.map((picture) => ({
+        place: { channel, band: picture.band },
+        ...planTiles(picture, shown, samplesPerPixel, heading),
+      })),
+    );
     return [
-      ...plans.flatMap(({ band, shown: tiles }) => tiles.map((tile) => ({ ...place(band), ...tile }))),
-      ...plans.flatMap(({ band, ahead }) => ahead.map((tile) => ({ ...place(band), ...tile }))),
+      ...plans.flatMap(({ place, shown: tiles }) => tiles.map((tile) => ({ ...place, ...tile }))),
+      ...plans.flatMap(({ place, ahead }) => ahead.map((tile) => ({ ...place, ...tile }))),
     ];
   }
 
-  function find(band: PictureBand, level: number, tile: number): Tile | undefined {
-    return store.find({ channel: toValue(channel), band, level, tile });
+  function find(channel: number, band: PictureBand, level: number, tile: number): Tile | undefined {
+    return store.find({ channel, band, level, tile });
   }
 
   watch(
-    () => wanted(),
-    (requests) => store.want(requests),
+    () => [toValue(window), toValue(channels), toValue(widthPx)] as const,
+    ([now], before) => {
+      store.want(wanted(before?.[0] ? headingOf(now, before[0]) : 0));
+      trouble.value = store.failing();
+    },
     { immediate: true },
   );
-  watchDebounced(
-    error,
-    (problem) => {
-      if (problem === null) return;
-      store.forgive();
-      store.want(wanted());
-    },
-    { debounce: FORGIVE_AFTER_MS },
-  );
-  tryOnScopeDispose(() => stop.abort());
+  tryOnScopeDispose(() => store.close());
 
-  return { find, arrivals, error, isIdle: store.isIdle };
+  return { find, arrivals, trouble, retry: store.retry };
 }

@@ -1,7 +1,7 @@
 import { drawPicture } from '@/components/bench/band-drawing.ts';
 import { prepareCanvas } from '@/components/bench/canvas-size.ts';
 import { composeBand } from '@/components/bench/compose-band.ts';
-import { keptImage } from '@/components/bench/kept-image.ts';
+import { keptBand } from '@/components/bench/kept-image.ts';
 import { toneTable } from '@/components/bench/tile-tones.ts';
 import { FIRST_SPLIT, placeStage } from '@/composables/bench/stage-places.ts';
 import { columnSamples, levelFor, tilesOfWindow } from '@/composables/bench/tile-plan.ts';
@@ -74,9 +74,9 @@ function timeEightTiles(layout: PictureLayout, rounds: number): number[] {
   const findTile = tileStore()(layout);
   const { lowHz, highHz } = layout;
   return time(context, rounds, (round) => {
-    const image = keptImage(context, layout.band, { widthPx, heightPx: HEIGHT_PX });
+    const { image, pixels } = keptBand(context, layout.band, { widthPx, heightPx: HEIGHT_PX });
     const band = { layout, window, lowHz, highHz, widthPx, heightPx: HEIGHT_PX, findTile };
-    composeBand(new Uint32Array(image.data.buffer), 0, {
+    composeBand(pixels, 0, {
       ...band,
       table: tonesOf(round),
       emptyPixel: EMPTY_PIXEL,
@@ -100,8 +100,8 @@ function timeWhole(layout: TileLayout, rounds: number): Pick<Recolouring, 'whole
       unseen: [],
       colours: palettes.light,
       pixelRatio: 1,
-      tableOf: () => tonesOf(round),
-      findTile: (band) => store(layoutOf(band)),
+      tonesOf: () => ({ table: tonesOf(round), key: String(round) }),
+      findTile: (_channel, band) => store(layoutOf(band)),
     }),
   );
   const samplesPerPixel = (window.endSample - window.startSample) / places.plotWidthPx;

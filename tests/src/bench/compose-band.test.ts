@@ -2,7 +2,7 @@ import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { Tile } from '@shared/audio/tile.ts';
 import type { PictureLayout } from '@shared/contract/views.ts';
-import { composeBand } from '@/components/bench/compose-band.ts';
+import { composeBand, QUIET_CODE } from '@/components/bench/compose-band.ts';
 
 const layout: PictureLayout = {
   band: 'audible',
@@ -17,7 +17,7 @@ const layout: PictureLayout = {
   levels: 3,
 };
 /** Each code is its own pixel, so that codes can be read from the picture. */
-const table = Uint32Array.from({ length: 256 }, (_, code) => code);
+const table = Uint32Array.from({ length: 256 + QUIET_CODE }, (_, code) => code);
 const EMPTY = 999;
 
 function tileOf(level: number, codeAt: (column: number, bin: number) => number, first: number): Tile {
@@ -139,5 +139,50 @@ describe('composing a band', () => {
       }),
       { numRuns: 30 },
     );
+  });
+
+  it('shows every bin over its own quiet: a steady line vanishes, a click and its height stay', () => {
+    const hum = (column: number, bin: number) =>
+      (bin === 1 ? 150 : 20) + (column === 5 && bin === 2 ? 90 : 0);
+    const pixels = new Uint32Array(64 * 4);
+    const image = { layout, window: { startSample: 0, endSample: 640 }, lowHz: 0, highHz: 400 };
+    composeBand(pixels, 0, {
+      ...image,
+      widthPx: 64,
+      heightPx: 4,
+      table,
+      emptyPixel: EMPTY,
+      findTile: (_level, tile) => tileOf(0, hum, tile * 16),
+      quietOf: () => [20, 150, 20, 20],
+    });
+    expect(pixels[1 * 64 + 5]).toBe(QUIET_CODE + 90);
+    pixels[1 * 64 + 5] = QUIET_CODE;
+    expect(new Set(pixels)).toEqual(new Set([QUIET_CODE]));
+  });
+
+  it('paints the asked columns alone, and says which of them show the wanted level', () => {
+    const pixels = new Uint32Array(64 * 4).fill(7);
+    const whole = new Uint8Array(64).fill(9);
+    composeBand(
+      pixels,
+      0,
+      {
+        layout,
+        window: { startSample: 0, endSample: 640 },
+        lowHz: 0,
+        highHz: 400,
+        widthPx: 64,
+        heightPx: 4,
+        table,
+        emptyPixel: EMPTY,
+        findTile: (level, tile) =>
+          level === 1 || tile === 0 ? tileOf(level, () => 50, tile * 16) : undefined,
+      },
+      { fromPx: 10, endPx: 20, whole },
+    );
+    expect([...pixels.subarray(64, 128)].map((pixel) => pixel === 7)).toEqual(
+      Array.from({ length: 64 }, (_, x) => x < 10 || x >= 20),
+    );
+    expect([...whole.subarray(9, 21)]).toEqual([9, 1, 1, 1, 1, 1, 1, 0, 0, 0, 0, 9]);
   });
 });

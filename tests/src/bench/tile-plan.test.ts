@@ -4,6 +4,7 @@ import type { PictureLayout } from '@shared/contract/views.ts';
 import {
   columnsAtLevel,
   columnSamples,
+  frameSamplesAt,
   levelFor,
   planTiles,
   tilesOfWindow,
@@ -65,6 +66,7 @@ describe('tile plan', () => {
         const { shown, ahead } = planTiles(layout, window, samplesPerPixel);
         for (const { level, tile } of [...shown, ...ahead]) {
           expect(level).toBeLessThan(layout.levels);
+          expect(level).toBeGreaterThanOrEqual(-layout.finerLevels);
           expect(tile).toBeGreaterThanOrEqual(0);
           expect(tile * layout.columnsPerTile).toBeLessThan(columnsAtLevel(layout, level));
         }
@@ -83,14 +85,49 @@ describe('tile plan', () => {
     );
   });
 
-  it('fetches the coarser picture and both neighbours ahead', () => {
+  it('takes finer levels where columns would be wider than four pixels, as far as there are any', () => {
+    const layout = layoutOf(10_000);
+    const levels = [128, 33, 32, 31, 9, 8, 7, 2, 1.9, 0.02].map((samplesPerPixel) =>
+      levelFor(layout, samplesPerPixel),
+    );
+    expect(levels).toEqual([0, 0, 0, -1, -1, -1, -2, -2, -3, -3]);
+    expect([0, -1, -3, 2].map((level) => frameSamplesAt(layout, level))).toEqual([256, 128, 32, 256]);
+    expect(columnsAtLevel(layout, -2)).toBe(160_000);
+  });
+
+  it('fetches the whole, the coarser picture, both neighbours and the next finer one ahead', () => {
     const layout = layoutOf(256 * 64);
     const window = { startSample: 256 * 128 * 10, endSample: 256 * 128 * 11 };
     expect(tilesOfWindow(layout, window, 0)).toEqual([{ level: 0, tile: 10 }]);
     expect(planTiles(layout, window, 128).ahead).toEqual([
+      { level: 3, tile: 0 },
       { level: 1, tile: 2 },
       { level: 0, tile: 11 },
       { level: 0, tile: 9 },
+      { level: -1, tile: 41 },
+      { level: -1, tile: 42 },
     ]);
+  });
+
+  it('fetches further on the side where the window is going', () => {
+    const layout = layoutOf(256 * 64);
+    const window = { startSample: 256 * 128 * 10, endSample: 256 * 128 * 13 };
+    const asked = (heading: -1 | 0 | 1) =>
+      planTiles(layout, window, 128, heading)
+        .ahead.filter(({ level }) => level === 0)
+        .map(({ tile }) => tile);
+    expect(asked(1)).toEqual([13, 14, 15, 9]);
+    expect(asked(-1)).toEqual([9, 8, 7, 13]);
+    expect(asked(0)).toEqual([13, 9]);
+  });
+
+  it('asks for nothing twice', () => {
+    fc.assert(
+      fc.property(scene, ({ layout, window, samplesPerPixel }) => {
+        const { shown, ahead } = planTiles(layout, window, samplesPerPixel, 1);
+        const keys = [...shown, ...ahead].map(({ level, tile }) => `${level}/${tile}`);
+        expect(new Set(keys).size).toBe(keys.length);
+      }),
+    );
   });
 });

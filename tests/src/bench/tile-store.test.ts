@@ -1,4 +1,4 @@
-import { describe, expect, it } from 'vitest';
+import { afterEach, describe, expect, it, vi } from 'vitest';
 import type { Tile } from '@shared/audio/tile.ts';
 import { quietLevelDb } from '@/composables/bench/quiet-level.ts';
 import { createTileStore } from '@/composables/bench/tile-store.ts';
@@ -12,19 +12,28 @@ function tileOf(codes: readonly number[]): Tile {
 const place = (tile: number): TileRequest => ({ channel: 0, band: 'audible', level: 0, tile });
 const settled = () => new Promise((done) => setTimeout(done));
 
-function storeWith(options: { capacity?: number; parallel?: number; failing?: number[] } = {}) {
+afterEach(() => {
+  vi.useRealTimers();
+});
+
+function storeWith(
+  options: { capacity?: number; parallel?: number; failing?: Set<number>; waits?: boolean } = {},
+) {
   const asked: number[] = [];
-  const arrived: [number, unknown][] = [];
+  const givenUp: number[] = [];
+  let changes = 0;
   const store = createTileStore({
     ...options,
-    load: async ({ tile }) => {
+    load: async ({ tile }, signal) => {
       asked.push(tile);
-      if (options.failing?.includes(tile)) throw new Error('not there');
+      signal.addEventListener('abort', () => givenUp.push(tile));
+      if (options.waits) await new Promise((_done, fail) => signal.addEventListener('abort', fail));
+      if (options.failing?.has(tile)) throw new Error('not there');
       return tileOf([tile]);
     },
-    onArrival: ({ tile }, error) => arrived.push([tile, error]),
+    onChange: () => changes++,
   });
-  return { store, asked, arrived };
+  return { store, asked, givenUp, countChanges: () => changes };
 }
 
 describe('tile store', () => {
@@ -58,17 +67,51 @@ describe('tile store', () => {
     expect([1, 2, 3].map((tile) => store.find(place(tile)) !== undefined)).toEqual([true, false, true]);
   });
 
-  it('does not ask again for a tile that failed, until it is forgiven', async () => {
-    const { store, asked, arrived } = storeWith({ failing: [4] });
-    store.want([place(4)]);
+  it('gives up what is under way and nobody wants any more, without calling it a failure', async () => {
+    const { store, asked, givenUp } = storeWith({ parallel: 2, waits: true });
+    store.want([place(1), place(2), place(3)]);
+    store.want([place(2), place(4)]);
     await settled();
+    expect(givenUp).toEqual([1]);
+    expect(asked).toEqual([1, 2, 4]);
+    expect(store.failing()).toEqual({ count: 0, error: null });
+    store.close();
+    expect(givenUp).toEqual([1, 2, 4]);
+  });
+
+  it('asks again for what failed after a second, then after two, as long as it is wanted', async () => {
+    vi.useFakeTimers();
+    const failing = new Set([4]);
+    const { store, asked, countChanges } = storeWith({ failing });
+    store.want([place(4), place(5)]);
+    await vi.advanceTimersByTimeAsync(990);
+    expect(asked).toEqual([4, 5]);
+    expect(store.failing().count).toBe(1);
+    expect(store.failing().error).toBeInstanceOf(Error);
+    await vi.advanceTimersByTimeAsync(30);
+    expect(asked).toEqual([4, 5, 4]);
+    await vi.advanceTimersByTimeAsync(1900);
+    expect(asked).toHaveLength(3);
+    failing.clear();
+    await vi.advanceTimersByTimeAsync(200);
+    expect(asked).toEqual([4, 5, 4, 4]);
+    expect(store.failing()).toEqual({ count: 0, error: null });
+    expect(countChanges()).toBe(4);
+  });
+
+  it('does not ask again for what nobody wants, and at once where somebody asks for it', async () => {
+    vi.useFakeTimers();
+    const { store, asked } = storeWith({ failing: new Set([4, 6]) });
     store.want([place(4)]);
-    await settled();
-    expect(asked).toEqual([4]);
-    expect(arrived[0]?.[1]).toBeInstanceOf(Error);
-    store.forgive();
-    store.want([place(4)]);
-    expect(asked).toEqual([4, 4]);
+    await vi.advanceTimersByTimeAsync(10);
+    store.want([place(6)]);
+    await vi.advanceTimersByTimeAsync(10);
+    store.retry();
+    await vi.advanceTimersByTimeAsync(10);
+    expect(asked).toEqual([4, 6, 6]);
+    store.close();
+    await vi.advanceTimersByTimeAsync(60_000);
+    expect(asked).toHaveLength(3);
   });
 
   it('finds the level that half of a tile stays under, silence left out', () => {

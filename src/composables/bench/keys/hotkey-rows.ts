@@ -4,6 +4,8 @@ import type { Hotkey } from '@/composables/useHotkeys.ts';
 export interface PageActions {
   showKeys: () => void;
   nextColours: () => void;
+  /** Levels as they are, or over the quiet. */
+  otherView: () => void;
   editNote: () => void;
   /** For the live region. */
   say: (words: string) => void;

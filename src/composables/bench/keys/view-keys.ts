@@ -17,6 +17,8 @@ export function viewRows({ view, marks, selectedCandidate, plotWidthPx }: Bench)
     ['cursor.right.fine', 'Shift+ArrowRight', 'by one pixel', () => view.moveCursor(onePixel()), true],
     ['zoom.in', 'ArrowUp', 'closer, around the cursor', () => view.zoom(1 / 2), true],
     ['zoom.out', 'ArrowDown', 'further away', () => view.zoom(2), true],
+    ['pan.left.little', 'Control+ArrowLeft', 'earlier by little', () => view.pan(-0.05), true],
+    ['pan.right.little', 'Control+ArrowRight', 'later by little', () => view.pan(0.05), true],
     ['pan.left', 'PageUp', 'earlier by most of the window', () => view.pan(-0.8), true],
     ['pan.right', 'PageDown', 'later by most of the window', () => view.pan(0.8), true],
     ['zoom.selected', 'KeyI', 'closer to the selected mark or candidate', showSelected],
