@@ -108,9 +108,9 @@ function bottomOf({ topPx, heightPx }: ChannelRow): number {
   return topPx + heightPx;
 }
 
-/** The least height at which stacked channels can still be told apart. */
-export function leastStageHeight(channels: number): number {
-  return Math.max(380, 130 + channels * 56);
+/** The least height at which stacked channels can still be told apart; lower where something else needs the room. */
+export function leastStageHeight(channels: number, isShort: boolean): number {
+  return Math.max(isShort ? 310 : 380, 130 + channels * 56);
 }
 
 /** The row at a height of the stage; `null` above, below and between. */
