@@ -21,6 +21,7 @@ import { eventsRoutes } from './features/events/events.routes.ts';
 import { reviewsRoutes } from './features/reviews/reviews.routes.ts';
 import { collectionsRoutes } from './features/collections/collections.routes.ts';
 import { releasesRoutes } from './features/releases/releases.routes.ts';
+import { tracesRoutes } from './features/traces/traces.routes.ts';
 import { homeRoutes } from './features/home/home.routes.ts';
 import type { Route } from './http/define-route.ts';
 
@@ -46,6 +47,7 @@ export function allRoutes(deps: Deps): Route[] {
     ...timelineRoutes(deps),
     ...eventsRoutes(deps),
     ...roundsRoutes(deps),
+    ...tracesRoutes(deps),
     ...reviewsRoutes(deps),
     ...collectionsRoutes(deps),
     ...releasesRoutes(deps),

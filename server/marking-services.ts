@@ -17,6 +17,8 @@ import { createRoundOrders, type RoundOrders } from './features/rounds/round-ord
 import { createRoundsService, type RoundsService } from './features/rounds/rounds.service.ts';
 import { createReviewsService, type ReviewsService } from './features/reviews/reviews.service.ts';
 import { createSchemesService, type SchemesService } from './features/schemes/schemes.service.ts';
+import { createTracePointsService, type TracePointsService } from './features/traces/trace-points.service.ts';
+import { createTracesService, type TracesService } from './features/traces/traces.service.ts';
 import type { Ground } from './ground.ts';
 import { createWorkerPool } from './jobs/worker-pool.ts';
 import { findLookAlikesIn, lookAlikesWorkerModule } from './measuring/look-alikes-in-worker.ts';
@@ -32,6 +34,8 @@ export interface MarkingServices {
   schemes: SchemesService;
   passes: PassesService;
   coverage: CoverageService;
+  traces: TracesService;
+  tracePoints: TracePointsService;
   events: EventsService;
   rounds: RoundsService;
   answers: AnswersService;
@@ -46,12 +50,12 @@ export interface MarkingServices {
 export function createMarkingServices(
   ground: Ground,
   audit: AuditService,
-  {
-    recordings,
-    readStoredAudio,
-    candidates,
-  }: Pick<RecordingServices, 'recordings' | 'readStoredAudio' | 'candidates'>,
+  ofRecordings: Pick<
+    RecordingServices,
+    'recordings' | 'readStoredAudio' | 'candidates' | 'runs' | 'uploadFolder'
+  >,
 ): MarkingServices {
+  const { recordings, readStoredAudio, candidates, runs, uploadFolder: folder } = ofRecordings;
   const schemes = createSchemesService(ground);
   const passes = createPassesService({ ...ground, audit, schemes });
   const coverage = createCoverageService(ground);
@@ -61,6 +65,8 @@ export function createMarkingServices(
   const rounded = { ...ground, audit, passes, candidates, events };
   const rounds = createRoundsService({ ...rounded, orders: createOrders(ground) });
   const answers = createAnswersService(rounded);
+  const traces = createTracesService({ ...ground, audit, runs, passes, folder });
+  const tracePoints = createTracePointsService({ ...ground, runs, passes });
   const reviews = createReviewsService({ ...ground, audit, guard });
   const collecting = createCollectingService(ground);
   const collections = createCollectionsService({ ...ground, audit, recordings: collecting });
@@ -75,6 +81,8 @@ export function createMarkingServices(
     events,
     rounds,
     answers,
+    traces,
+    tracePoints,
     guard,
     reviews,
     collections,

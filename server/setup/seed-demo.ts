@@ -9,6 +9,7 @@ import { seedMarks } from './demo/seed-marks.ts';
 import { renewPasswords, seedPeople } from './demo/seed-people.ts';
 import { seedRecordings } from './demo/seed-recordings.ts';
 import { seedReleases } from './demo/seed-releases.ts';
+import { seedTraces } from './demo/seed-traces.ts';
 import { findSeedState, markSeeded, markSeedingBegun } from './demo/seed-state.ts';
 
 /* Fills an empty data folder with the demo scenario; does nothing but renew the passwords where it is there already. */
@@ -50,6 +51,7 @@ async function fill(deps: Deps, password: string): Promise<void> {
     const people = await seedPeople(deps, password);
     const recordingIds = await seedRecordings(deps, people);
     await untilIdle(deps);
+    await seedTraces(deps, people, recordingIds);
     await seedMarks(deps, people, recordingIds);
     await seedReleases(deps, people, recordingIds, () => untilIdle(deps));
   } finally {

@@ -16,7 +16,6 @@ const limits = {
   fields: 40,
   fieldSize: 8192,
   fieldNameSize: 100,
-  fileSize: maximumUploadBytes,
   headerPairs: 20,
 };
 
@@ -24,10 +23,14 @@ const limits = {
  * Reads a multipart form (RFC 7578) with one file in the part `file`, which goes straight to `path`. Whoever calls
  * removes that file, also when this rejects.
  */
-export async function receiveForm(request: IncomingMessage, path: string): Promise<ReceivedForm> {
-  const busboy = openBusboy(request);
+export async function receiveForm(
+  request: IncomingMessage,
+  path: string,
+  maximumBytes = maximumUploadBytes,
+): Promise<ReceivedForm> {
+  const busboy = openBusboy(request, maximumBytes);
   const fields = new Map<string, string[]>();
-  const file = new FileBranch(path, busboy);
+  const file = new FileBranch({ path, maximumBytes }, busboy);
   busboy.on('field', (name, value, nameCut, valueCut) => {
     if (nameCut || valueCut) busboy.destroy(invalidField(name, 'is too long'));
     else fields.set(name, [...(fields.get(name) ?? []), value]);
@@ -44,7 +47,7 @@ export async function receiveForm(request: IncomingMessage, path: string): Promi
   }
 }
 
-function openBusboy(request: IncomingMessage): BusboyInstance {
+function openBusboy(request: IncomingMessage, fileSize: number): BusboyInstance {
   const contentType = request.headers['content-type'] ?? '';
   if (!/^multipart\/form-data\s*;.*boundary=/i.test(contentType)) {
     throw new ProblemError(
@@ -52,7 +55,8 @@ function openBusboy(request: IncomingMessage): BusboyInstance {
       'The body must be a form, with the content type multipart/form-data.',
     );
   }
-  return new Busboy({ headers: { ...request.headers, 'content-type': contentType }, limits });
+  const headers = { ...request.headers, 'content-type': contentType };
+  return new Busboy({ headers, limits: { ...limits, fileSize } });
 }
 
 /** Unlike a pipeline, this leaves the request open when the form is refused, so that the refusal can be answered. */
@@ -78,6 +82,7 @@ function feed(request: IncomingMessage, busboy: BusboyInstance): Promise<void> {
 /** The one part that is written to the disk. */
 class FileBranch {
   readonly #path: string;
+  readonly #maximumBytes: number;
   readonly #busboy: BusboyInstance;
   #stream: BusboyFileStream | null = null;
   #fileName = '';
@@ -85,8 +90,9 @@ class FileBranch {
   #written: Promise<void> | null = null;
   readonly #stop = new AbortController();
 
-  constructor(path: string, busboy: BusboyInstance) {
+  constructor({ path, maximumBytes }: { path: string; maximumBytes: number }, busboy: BusboyInstance) {
     this.#path = path;
+    this.#maximumBytes = maximumBytes;
     this.#busboy = busboy;
   }
 
@@ -116,7 +122,7 @@ class FileBranch {
     if (this.#written === null) throw invalidField('file', 'is needed');
     await this.#written;
     if (this.#stream?.truncated === true)
-      throw new ProblemError('too-large', 'The file is larger than 64 GiB.');
+      throw new ProblemError('too-large', `The file is larger than ${formatLimit(this.#maximumBytes)}.`);
     return { fileName: this.#fileName, sizeBytes: this.#sizeBytes };
   }
 
@@ -124,6 +130,10 @@ class FileBranch {
     this.#stop.abort();
     await this.#written?.catch(() => undefined);
   }
+}
+
+function formatLimit(bytes: number): string {
+  return bytes >= 2 ** 30 ? `${bytes / 2 ** 30} GiB` : `${bytes / 1e6} MB`;
 }
 
 function toProblem(error: unknown): unknown {

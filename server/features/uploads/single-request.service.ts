@@ -8,7 +8,8 @@ import type { RunsService } from '../runs/runs.service.ts';
 import type { SensorsService } from '../sensors/sensors.service.ts';
 import type { IntakeService } from './intake.service.ts';
 import type { UploadFolder } from './upload-folder.ts';
-import { plainCamera, plainFileName } from './uploads.map.ts';
+import { plainFileName } from './plain-file-name.ts';
+import { plainCamera } from './uploads.map.ts';
 
 type Parts = Pick<Ground, 'db' | 'ids'> & {
   runs: RunsService;

@@ -1,3 +1,4 @@
+import { plainFileName } from './plain-file-name.ts';
 import type { CameraOrigin } from '../../../shared/contract/camera.ts';
 import type { CreateUpload, Upload } from '../../../shared/contract/uploads.ts';
 import { toInstant } from '../../services/clock.ts';
@@ -18,11 +19,4 @@ export function toUploadValues(input: CreateUpload) {
 
 export function plainCamera(camera: CameraOrigin | null): CameraOrigin | null {
   return camera && { ...camera, fileName: plainFileName(camera.fileName) };
-}
-
-/** Names are data, never paths: only the last part is kept, without characters that no file name shows. */
-export function plainFileName(name: string): string {
-  const last = name.split(/[\\/]/).at(-1) ?? '';
-  const shown = last.replace(/[\p{Cc}\p{Cf}\p{Co}\p{Cs}\u2028\u2029]/gu, '').trim();
-  return shown === '' || /^\.+$/.test(shown) ? 'recording.wav' : shown.slice(0, 255);
 }

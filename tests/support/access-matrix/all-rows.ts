@@ -7,6 +7,7 @@ import { releasingRows } from './releasing-rows.ts';
 import { runsRows } from './runs-rows.ts';
 import { serviceRows } from './service-rows.ts';
 import { sessionsRows } from './sessions-rows.ts';
+import { tracesRows } from './traces-rows.ts';
 import { uploadsRows } from './uploads-rows.ts';
 
 export const allRows: MatrixRow[] = [
@@ -18,5 +19,6 @@ export const allRows: MatrixRow[] = [
   ...recordingsRows,
   ...markingRows,
   ...besideRows,
+  ...tracesRows,
   ...releasingRows,
 ];
