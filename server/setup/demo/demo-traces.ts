@@ -1,4 +1,4 @@
-import { seededGaussian, seededRandom } from '../demo-audio/seeded-random.ts';
+import { seededGaussian, seededRandom } from '../../../shared/lib/seeded-random.ts';
 
 /** A temperature through straight pieces, as a thermocouple with lag and noise shows it. */
 export interface DemoTrace {

@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { seededGaussian, seededRandom } from '../../../server/setup/demo-audio/seeded-random.ts';
+import { seededGaussian, seededRandom } from '../../../shared/lib/seeded-random.ts';
 import { findRecalescences } from '../../../server/signal/recalescence.ts';
 import { freezingTrace, type TemperatureTruth } from './synthetic-temperature.ts';
 

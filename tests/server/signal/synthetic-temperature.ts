@@ -1,4 +1,4 @@
-import { seededGaussian, seededRandom } from '../../../server/setup/demo-audio/seeded-random.ts';
+import { seededGaussian, seededRandom } from '../../../shared/lib/seeded-random.ts';
 
 export interface TemperatureTruth {
   rateHz?: number;
