@@ -1,3 +1,5 @@
+import type { GrowthPhaseKind } from '@shared/contract/phases.ts';
+
 /** The colours of one theme. Every pair that carries text is listed in TEXT_PAIRS and meets WCAG 2.2 AA. */
 export interface Palette {
   /** Ground of every page. */
@@ -120,15 +122,15 @@ export const GRAPHIC_PAIRS: readonly PairName[] = [
 ];
 
 /** Growth phases of a run: fill of the ribbon and the text upon it, the same in both themes. */
-export const phaseColours = {
-  supercooled_liquid: { fill: '#86B7CC', text: '#10202A' },
+export const phaseColours: Readonly<Record<GrowthPhaseKind, { fill: string; text: string }>> = {
+  'supercooled-liquid': { fill: '#86B7CC', text: '#10202A' },
   nucleation: { fill: '#F4C98B', text: '#10202A' },
   recalescence: { fill: '#E08A1E', text: '#10202A' },
-  dendritic_growth: { fill: '#B0124F', text: '#FFFFFF' },
-  cellular_growth: { fill: '#8C4A86', text: '#FFFFFF' },
-  planar_growth: { fill: '#2C7A71', text: '#FFFFFF' },
-  eutectic_growth: { fill: '#4A5FA5', text: '#FFFFFF' },
+  'dendritic-growth': { fill: '#B0124F', text: '#FFFFFF' },
+  'cellular-growth': { fill: '#8C4A86', text: '#FFFFFF' },
+  'planar-growth': { fill: '#2C7A71', text: '#FFFFFF' },
+  'eutectic-growth': { fill: '#4A5FA5', text: '#FFFFFF' },
   coarsening: { fill: '#B9A98C', text: '#10202A' },
-  cooling_of_the_solid: { fill: '#95A3AB', text: '#10202A' },
-  not_visible: { fill: '#D2DBDF', text: '#10202A' },
-} as const;
+  'solid-cooling': { fill: '#95A3AB', text: '#10202A' },
+  'not-visible': { fill: '#D2DBDF', text: '#10202A' },
+};

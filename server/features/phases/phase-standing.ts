@@ -28,6 +28,11 @@ export function areWithheld({ openPasses }: PhaseStanding): boolean {
   return openPasses.some(({ task, blind }) => task === 'events' && blind);
 }
 
+/** One pass for growth phases closes the sound of every recording of the run: several sensors heard the same. */
+export function isSoundClosed({ openPasses }: PhaseStanding): boolean {
+  return openPasses.some(({ task }) => task === 'phases');
+}
+
 /** In these the person may mark phases: given for phases, or for events with everything shown. */
 export function phasePasses({ openPasses }: PhaseStanding): OpenPass[] {
   const fit = openPasses.filter(({ task, blind }) => task === 'phases' || !blind);

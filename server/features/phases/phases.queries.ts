@@ -1,4 +1,4 @@
-import { and, asc, count, eq, isNull, sql, type SQL } from 'drizzle-orm';
+import { and, asc, count, eq, isNull, type SQL } from 'drizzle-orm';
 import type { Reader } from '../../db/client.ts';
 import { growthPhases } from '../../db/schema/beside-sound.ts';
 import { passes } from '../../db/schema/events.ts';
@@ -51,22 +51,14 @@ export function selectOpenPassesOnRun(db: Reader, runId: string, labelerId: stri
     .all();
 }
 
-/** Whether any recording of the run can be heard by the person: it is visible, and no pass keeps its sound back. */
-export function selectIsSoundOpen(db: Reader, runId: string, personId: string, visible: SQL): boolean {
-  const isKeptBack = sql`exists (
-    select 1 from ${passes}
-    where ${passes.recordingId} = ${recordings.id} and ${passes.labelerId} = ${personId}
-      and ${passes.state} = 'assigned' and ${passes.task} = 'phases'
-  )`;
+export function selectHasRecordings(db: Reader, runId: string, visible: SQL): boolean {
   const row = db
-    .select({
-      isOpen: sql<number>`exists (
-      select 1 from ${recordings} where ${recordings.runId} = ${runId} and ${visible} and not ${isKeptBack}
-    )`,
-    })
-    .from(sql`(select 1)`)
+    .select({ id: recordings.id })
+    .from(recordings)
+    .where(and(eq(recordings.runId, runId), visible))
+    .limit(1)
     .get();
-  return row?.isOpen === 1;
+  return row !== undefined;
 }
 
 export function insertPhase(db: Reader, row: PhaseRow): void {

@@ -20,13 +20,14 @@ import {
   areWithheld,
   isPhaseEditable,
   isPhaseVisible,
+  isSoundClosed,
   phasePasses,
   type PhaseStanding,
 } from './phase-standing.ts';
 import {
   countPhases,
   insertPhase,
-  selectIsSoundOpen,
+  selectHasRecordings,
   selectOpenPassesOnRun,
   selectPhase,
   selectPhases,
@@ -97,10 +98,11 @@ export function createPhasesService({ db, clock, ids, audit, runs, passes }: Par
 
   function add(tx: Tx, actor: Actor, input: PutPhase, id: string): GrowthPhase {
     const { runId, ...phase } = input;
-    requireMayAdd(tx, actor, requireStanding(tx, actor, runId), phase.passId);
+    const standing = requireStanding(tx, actor, runId);
+    requireMayAdd(tx, actor, standing, phase.passId);
     if (countPhases(tx, runId) >= mostPhases)
       throw conflict(`This run has ${mostPhases} growth phases already. Remove some first.`);
-    const isSoundOpen = selectIsSoundOpen(tx, runId, actor.id, visibleRecordings(actor));
+    const isSoundOpen = !isSoundClosed(standing) && selectHasRecordings(tx, runId, visibleRecordings(actor));
     const stamps = { id, runId, createdById: actor.id, nowMs: clock.nowMs(), isSoundOpen };
     const row = toNewPhaseRow(phase, stamps);
     insertPhase(tx, row);
@@ -160,13 +162,9 @@ export function createPhasesService({ db, clock, ids, audit, runs, passes }: Par
   }
 
   /** For what else is laid on the clock of the run. */
-  function whatIsHeldBack(actor: Actor, runId: string): { isBlind: boolean; soundlessIds: Set<string> } {
+  function whatIsHeldBack(actor: Actor, runId: string): { isBlind: boolean; isSoundless: boolean } {
     const standing = requireStanding(db, actor, runId);
-    const soundless = standing.openPasses.filter(({ task }) => task === 'phases');
-    return {
-      isBlind: areWithheld(standing),
-      soundlessIds: new Set(soundless.map(({ recordingId }) => recordingId)),
-    };
+    return { isBlind: areWithheld(standing), isSoundless: isSoundClosed(standing) };
   }
 
   return { list, create, put, patch, remove, whatIsHeldBack };

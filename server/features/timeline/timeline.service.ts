@@ -20,13 +20,10 @@ export type TimelineService = ReturnType<typeof createTimelineService>;
 /** Everything of a run that was recorded, on its clock. */
 export function createTimelineService({ recordings, events, phases }: Parts) {
   function get(actor: Actor, runId: string, counted: Counted): RunTimeline {
-    const { isBlind, soundlessIds } = phases.whatIsHeldBack(actor, runId);
+    const { isBlind, isSoundless } = phases.whatIsHeldBack(actor, runId);
     const page = recordings.list(actor, { runId, limit: mostRecordings });
     const lay = ({ id }: { id: string }) =>
-      layOne(actor, id, {
-        counted: isBlind ? null : counted,
-        isSoundless: soundlessIds.has(id),
-      });
+      layOne(actor, id, { counted: isBlind ? null : counted, isSoundless });
     return {
       runId,
       counted: isBlind ? null : counted,

@@ -25,6 +25,8 @@ export async function seedRecordings(deps: Deps, people: DemoActors): Promise<De
   return ids;
 }
 
+const pauseS = 5;
+
 function contributorOf(people: DemoActors, lab: DemoLab) {
   return people.actor(lab === 'northlight' ? 'contributor' : 'contributor2');
 }
@@ -49,6 +51,13 @@ function seedRun({ services }: Deps, people: DemoActors, { lab, run }: DemoRun):
   );
 }
 
+/** Recordings of one run follow each other, with a pause of some seconds. */
+export function demoOffsetNs({ recordings }: DemoRun, key: string): number {
+  const before = recordings.slice(0, recordings.indexOf(key));
+  const secondsOf = (one: string) => demoRecordings.find((spec) => spec.key === one)?.seconds ?? 0;
+  return before.reduce((sum, one) => sum + (secondsOf(one) + pauseS) * 1e9, 0);
+}
+
 interface Incoming {
   demoRun: DemoRun;
   run: Run;
@@ -70,7 +79,7 @@ async function bringIn(
     licence: demoRun.licence ?? 'CC-BY-4.0',
     sensitivity: demoRun.sensitivity ?? [],
     note: spec.about,
-    runOffsetNs: 0,
+    runOffsetNs: demoOffsetNs(demoRun, key),
     timeExpansion: 1,
   } as const;
   try {

@@ -4,6 +4,7 @@ import { toHotkeys } from '@/composables/bench/keys/hotkey-rows.ts';
 import type { PageActions } from '@/composables/bench/keys/hotkey-rows.ts';
 import { listenRows } from '@/composables/bench/keys/listen-keys.ts';
 import { classKeys, editRows } from '@/composables/bench/keys/mark-keys.ts';
+import { phaseRows } from '@/composables/bench/keys/phase-keys.ts';
 import { pictureRows } from '@/composables/bench/keys/picture-keys.ts';
 import { viewRows } from '@/composables/bench/keys/view-keys.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
@@ -23,6 +24,7 @@ export function benchHotkeys(bench: Bench, choices: readonly ClassChoice[], page
     ...toHotkeys('Zoom and move', viewRows(bench)),
     ...toHotkeys('Picture', pictureRows(bench, page)),
     ...toHotkeys('Listen', listenRows(bench)),
+    ...toHotkeys('Growth phases', phaseRows(bench)),
     ...toHotkeys('Page', [['keys', 'sign:?', 'this sheet of keys', page.showKeys]]),
   ];
 }

@@ -3,6 +3,7 @@ import type { Candidate } from '@shared/contract/candidates.ts';
 import { clampSpan } from '@shared/domain/event-span.ts';
 import type { BenchData } from '@/composables/bench/load-bench.ts';
 import type { DraftSpan } from '@/composables/bench/new-mark.ts';
+import { useBeside } from '@/composables/bench/useBeside.ts';
 import { useBenchMarks } from '@/composables/bench/useBenchMarks.ts';
 import { useBenchSources } from '@/composables/bench/useBenchSources.ts';
 import { useBenchWindow } from '@/composables/bench/useBenchWindow.ts';
@@ -39,6 +40,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     const heard = listening.isPlaying.value ? listening.playheadSample.value : null;
     return view.pointerSample.value ?? heard ?? view.place.value;
   });
+  const beside = useBeside({ recording, view, markSample });
   const hand = { view, marks, draft, selectedCandidate, markSample };
   const classKey = useClassKey({ layout, scheme, canMark, ...hand, channel, plotWidthPx });
 
@@ -75,6 +77,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     draft.value = null;
     selectedCandidate.value = null;
     marks.selectedKey.value = null;
+    beside.marking.drop();
     listening.stop();
   }
 
@@ -89,6 +92,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     areCandidatesShown,
     listening,
     region,
+    beside,
     ...classKey,
     selectMark,
     selectCandidate,
