@@ -1,9 +1,11 @@
 import { passesPageSchema, passSchema } from '@shared/contract/passes.ts';
-import type { CreatePass, Pass, PassState } from '@shared/contract/passes.ts';
+import type { ChangePass, CreatePass, Pass, PassState } from '@shared/contract/passes.ts';
 import { apiGet, apiSend } from '@/api/client.ts';
 
 export interface PassFilters {
   recordingId?: string | undefined;
+  labelerId?: string | undefined;
+  overdue?: boolean | undefined;
   mine?: boolean | undefined;
   state?: PassState | undefined;
   cursor?: string | undefined;
@@ -27,4 +29,9 @@ export async function createPass(input: CreatePass): Promise<Pass> {
 /** Takes an open pass back. */
 export async function cancelPass(id: string): Promise<Pass> {
   return apiSend('POST', `/api/passes/${id}/cancel`, passSchema);
+}
+
+/** Due date and instructions of an open pass; what is left out stays. */
+export async function changePass(id: string, input: ChangePass): Promise<Pass> {
+  return apiSend('PATCH', `/api/passes/${id}`, passSchema, { body: input });
 }

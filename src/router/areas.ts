@@ -8,6 +8,7 @@ export type Area =
   | 'recordings'
   | 'bench'
   | 'reviews'
+  | 'passes'
   | 'collections'
   | 'people'
   | 'labs'
@@ -21,6 +22,7 @@ const canEnter: Readonly<Record<Area, (ability: AppAbility) => boolean>> = {
   recordings: (ability) => ability.can('read', 'Recording') || ability.can('update', 'Pass'),
   bench: (ability) => ability.can('update', 'Pass') || ability.can('read', 'Recording'),
   reviews: (ability) => ability.can('decide', 'Recording'),
+  passes: (ability) => ability.can('create', 'Pass'),
   collections: (ability) => ability.can('read', 'Collection'),
   people: (ability) => ability.can('manage', 'Person'),
   labs: (ability) => ability.can('manage', 'Lab'),
@@ -45,6 +47,7 @@ export const navigation: readonly NavigationEntry[] = [
   { label: 'Bring in', to: '/bring-in', access: 'bring-in' },
   { label: 'Sensors', to: '/sensors', access: 'sensors' },
   { label: 'Review desk', to: '/reviews', access: 'reviews' },
+  { label: 'Passes', to: '/passes', access: 'passes' },
   { label: 'Collections', to: '/collections', access: 'collections' },
   { label: 'Releases', to: '/releases', access: 'anyone' },
   { label: 'People', to: '/people', access: 'people' },

@@ -92,6 +92,12 @@ export const routes: RouteRecordRaw[] = [
     component: () => import('@/views/ReviewView.vue'),
   },
   {
+    path: '/passes',
+    name: 'passes',
+    meta: { access: 'passes' },
+    component: () => import('@/views/PassesView.vue'),
+  },
+  {
     path: '/collections',
     name: 'collections',
     meta: { access: 'collections' },

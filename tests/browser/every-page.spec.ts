@@ -54,6 +54,9 @@ const visits: Record<DemoPerson | 'nobody', Visit[]> = {
     at('/', 'home-labeler'),
     first('/bench/:recordingId', 'bench-marking', '/api/passes?mine=true&state=assigned', 'recordingId'),
   ],
+  labeler2: [
+    first('/bench/:recordingId', 'bench-silent', '/api/passes?mine=true&state=assigned', 'recordingId'),
+  ],
   reviewer: [
     at('/', 'home-reviewer'),
     at('/reviews', 'reviews'),
@@ -61,6 +64,7 @@ const visits: Record<DemoPerson | 'nobody', Visit[]> = {
   ],
   curator: [
     at('/', 'home-curator'),
+    at('/passes', 'passes'),
     at('/collections', 'collections'),
     at('/collections/new', 'collection-new'),
     first('/collections/:id', 'collection', '/api/collections'),

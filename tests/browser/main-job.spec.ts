@@ -91,10 +91,9 @@ describe.sequential('from a WAV file to a released data set', () => {
       .filter({ hasText: /stored/ })
       .waitFor();
     await page.getByRole('button', { name: 'Finish pass' }).click();
-    await page
-      .getByRole('dialog')
-      .getByRole('button', { name: /^Finish/ })
-      .click();
+    const sheet = page.getByRole('dialog');
+    await sheet.getByRole('textbox').fill('Only the first burst was asked for.');
+    await sheet.getByRole('button', { name: /^Finish/ }).click();
     await page
       .getByText(/finished/)
       .first()

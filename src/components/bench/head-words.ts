@@ -1,6 +1,7 @@
 import type { Pass } from '@shared/contract/passes.ts';
 import type { Recording } from '@shared/contract/recordings.ts';
 import type { SensorKind } from '@shared/contract/sensors.ts';
+import { kindWords } from '@/components/bench/pass-words.ts';
 import { formatFrequency } from '@/composables/useFormat.ts';
 
 const SENSOR_WORDS: Partial<Record<SensorKind, string>> = {
@@ -21,7 +22,5 @@ export function sensorPill({ sensorKind, sensorLowHz, sensorHighHz }: Recording)
 
 export function passPill(pass: Pass | null, canMark: boolean): string {
   if (!pass) return 'none of yours, to look at only';
-  const kind = pass.blind ? 'blind' : 'candidates shown';
-  if (canMark) return kind;
-  return pass.state === 'finished' ? 'finished' : kind;
+  return !canMark && pass.state === 'finished' ? 'finished' : kindWords(pass);
 }

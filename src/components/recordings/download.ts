@@ -21,13 +21,13 @@ export type AddressOf = (kind: DownloadKind, channel?: number) => string;
 
 type Facts = Pick<
   Recording,
-  'fileName' | 'format' | 'sizeBytes' | 'processing' | 'blind' | 'may' | 'channels'
+  'fileName' | 'format' | 'sizeBytes' | 'processing' | 'blind' | 'isSoundWithheld' | 'may' | 'channels'
 >;
 
 /** What can be taken along of a recording; whoever works blind gets what was recorded, not what was found. */
 export function downloadsOf(recording: Facts, addressOf: AddressOf): Download[] {
   const { fileName, format, sizeBytes, processing, blind, may } = recording;
-  const isMeasured = processing === 'measured';
+  const isMeasured = processing === 'measured' && !recording.isSoundWithheld;
   const one = (label: string, detail: string, kind: DownloadKind, ending = `.${kind}`): Download => ({
     label,
     detail,

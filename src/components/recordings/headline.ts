@@ -5,7 +5,7 @@ import { formatCount, formatNumber, formatShare } from '@/composables/useFormat.
 
 export type HeadlineFacts = Pick<
   Recording,
-  'processing' | 'progress' | 'failure' | 'blind' | 'measurement' | 'eventCount'
+  'processing' | 'progress' | 'failure' | 'blind' | 'isSoundWithheld' | 'measurement' | 'eventCount'
 >;
 
 export interface Headline {
@@ -97,6 +97,13 @@ const blindHeadline: Headline = {
     'Candidates, their counts and the ultrasonic course are withheld until your pass is finished, so that your marks are your own.',
 };
 
+const silentHeadline: Headline = {
+  title: 'You mark the growth phases of this run without its sound',
+  key: '',
+  sentence:
+    'The sound, and everything measured on it, is kept back until your pass is finished, so that the phases come from camera and temperature alone.',
+};
+
 function ofMeasured(measurement: ToldMeasurement, { blind, eventCount }: HeadlineFacts): Headline {
   const { ultrasonic } = measurement;
   if (isSilent(measurement)) {
@@ -131,6 +138,7 @@ export function headlineOf(facts: HeadlineFacts): Headline {
     const sentence = ' The file itself is stored unchanged; the measurement can be tried again.';
     return { title: 'The measurement failed', key: failure ?? 'No reason was kept.', sentence };
   }
+  if (facts.isSoundWithheld) return silentHeadline;
   if (measurement === null) {
     const sentence = 'Its measurements are withheld from you.';
     return { title: 'Measured', key: '', sentence };

@@ -6,6 +6,7 @@ import { listenRows } from '@/composables/bench/keys/listen-keys.ts';
 import { classKeys, editRows } from '@/composables/bench/keys/mark-keys.ts';
 import { phaseRows } from '@/composables/bench/keys/phase-keys.ts';
 import { pictureRows } from '@/composables/bench/keys/picture-keys.ts';
+import { passRows } from '@/composables/bench/keys/pass-keys.ts';
 import { viewRows } from '@/composables/bench/keys/view-keys.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
 import type { Hotkey } from '@/composables/useHotkeys.ts';
@@ -21,6 +22,7 @@ export function benchHotkeys(bench: Bench, choices: readonly ClassChoice[], page
   return [
     ...marking,
     ...toHotkeys('Go', goRows(bench, page)),
+    ...toHotkeys('Through the pass', passRows(bench, page)),
     ...toHotkeys('Zoom and move', viewRows(bench)),
     ...toHotkeys('Picture', pictureRows(bench, page)),
     ...toHotkeys('Listen', listenRows(bench)),

@@ -19,6 +19,9 @@ export interface BenchData {
   events: RecordingEvent[];
 }
 
+/** A pass of growth phases has no sound to show; a recording that is not measured has none yet. */
+export type BenchWithoutSound = Pick<BenchData, 'recording' | 'pass'>;
+
 export function choosePass(passes: readonly Pass[], wantedId: string | null): Pass | null {
   const counted = passes.filter(({ state }) => state !== 'cancelled');
   const wanted = counted.find(({ id }) => id === wantedId);
@@ -29,15 +32,17 @@ export async function loadBench(
   recordingId: string,
   wantedPassId: string | null,
   signal: AbortSignal,
-): Promise<BenchData | Pick<BenchData, 'recording'>> {
-  const recording = await getRecording(recordingId, signal);
-  if (recording.processing !== 'measured') return { recording };
-  const [layout, passes, events] = await Promise.all([
-    getTileLayout(recordingId, signal),
+): Promise<BenchData | BenchWithoutSound> {
+  const [recording, passes] = await Promise.all([
+    getRecording(recordingId, signal),
     listPasses({ recordingId, mine: true, limit: 20 }, signal),
-    listEvents(recordingId, signal),
   ]);
   const pass = choosePass(passes.items, wantedPassId);
+  if (recording.processing !== 'measured' || recording.isSoundWithheld) return { recording, pass };
+  const [layout, events] = await Promise.all([
+    getTileLayout(recordingId, signal),
+    listEvents(recordingId, signal),
+  ]);
   const scheme = await getScheme(pass?.schemeVersion ?? 'newest', signal);
   return { recording, layout, pass, scheme, events };
 }

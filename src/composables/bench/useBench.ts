@@ -10,6 +10,7 @@ import { useBenchWindow } from '@/composables/bench/useBenchWindow.ts';
 import { useClassKey } from '@/composables/bench/useClassKey.ts';
 import { useRegion } from '@/composables/bench/useRegion.ts';
 import { useListening } from '@/composables/bench/useListening.ts';
+import { useCoverage } from '@/composables/pass/useCoverage.ts';
 
 export type Bench = ReturnType<typeof useBench>;
 
@@ -42,7 +43,11 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   });
   const beside = useBeside({ recording, view, markSample });
   const hand = { view, marks, draft, selectedCandidate, markSample };
-  const classKey = useClassKey({ layout, scheme, canMark, ...hand, channel, plotWidthPx });
+  const { channels, tiles } = sources;
+  const looked = { view, channels, plotWidthPx, isDrawn: tiles.isIdle };
+  const coverage = useCoverage({ pass, canMark, layout, listening, ...looked });
+  const { isOutside } = coverage;
+  const classKey = useClassKey({ isOutside, layout, scheme, canMark, ...hand, channel, plotWidthPx });
 
   const region = useRegion({ recordingId: recording.id, layout, channel, ...hand });
 
@@ -93,6 +98,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     listening,
     region,
     beside,
+    coverage,
     ...classKey,
     selectMark,
     selectCandidate,

@@ -11,9 +11,11 @@ import type { DraftSpan } from '@/composables/bench/new-mark.ts';
 import { pixelAtSample } from '@/composables/bench/time-axis.ts';
 import type { BenchMarks } from '@/composables/bench/useBenchMarks.ts';
 import type { BenchWindow } from '@/composables/bench/useBenchWindow.ts';
+import { useAnnounce } from '@/composables/useAnnounce.ts';
 
 /** A class key changes the selected mark where the cursor is this near to it; elsewhere it sets a new one. */
 const NEAR_PX = 10;
+const OUTSIDE_WORDS = 'Outside the windows of this pass: no mark is set here';
 
 export interface ClassKeyParts extends Pick<BenchData, 'layout' | 'scheme'> {
   canMark: boolean;
@@ -24,12 +26,15 @@ export interface ClassKeyParts extends Pick<BenchData, 'layout' | 'scheme'> {
   markSample: Ref<number>;
   channel: Ref<number>;
   plotWidthPx: Ref<number>;
+  /** In a pass of windows: whether a mark that begins here lies in none of them. */
+  isOutside: (sample: number) => boolean;
 }
 
 /** What the one key does: it sets a mark of a class, or changes the one in hand. */
 export function useClassKey(parts: ClassKeyParts) {
   const { layout, scheme, canMark, view, marks, draft, selectedCandidate, markSample, plotWidthPx } = parts;
   const { frames, sampleRateHz } = layout;
+  const { announce } = useAnnounce();
 
   function isNear(sample: number, span: SampleSpan): boolean {
     const px = (at: number) => pixelAtSample(at, view.shown.value, plotWidthPx.value);
@@ -47,10 +52,16 @@ export function useClassKey(parts: ClassKeyParts) {
     return isNear(markSample.value, span) ? candidate : null;
   });
 
+  /** Where a new mark would begin, near enough. */
+  function startOfNew(): number {
+    return draft.value?.startSample ?? proposed.value?.onsetSample ?? markSample.value;
+  }
+
   /** What a class key would do now, in words. */
   const intent = computed(() => {
     if (!canMark) return '';
     const at = timeWords(markSample.value, sampleRateHz);
+    if (!marked.value && parts.isOutside(startOfNew())) return OUTSIDE_WORDS;
     if (draft.value) return 'A class key marks the drawn span';
     if (marked.value)
       return `A class key changes the selected ${classTitle(marked.value.classKey, scheme.classes)}`;
@@ -78,6 +89,10 @@ export function useClassKey(parts: ClassKeyParts) {
       return;
     }
     const fields = fieldsFor(classKey, isLessSure);
+    if (parts.isOutside(fields.startSample)) {
+      void announce(OUTSIDE_WORDS);
+      return;
+    }
     draft.value = null;
     selectedCandidate.value = null;
     marks.set(fields);

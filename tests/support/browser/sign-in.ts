@@ -2,7 +2,14 @@ import type { APIResponse, BrowserContext, Page } from 'playwright-core';
 import { inject } from 'vitest';
 
 export type DemoPerson =
-  'administrator' | 'contributor' | 'contributor2' | 'labeler' | 'reviewer' | 'curator' | 'curator2';
+  | 'administrator'
+  | 'contributor'
+  | 'contributor2'
+  | 'labeler'
+  | 'labeler2'
+  | 'reviewer'
+  | 'curator'
+  | 'curator2';
 
 type StorageState = Awaited<ReturnType<BrowserContext['storageState']>>;
 
