@@ -153,7 +153,9 @@ describe('while growth phases are marked without the sound, no route tells', () 
       const passId = assignToLabeler(app, found.recordingId, { task: 'phases' });
       if (rights === 'every role') giveEveryRole(app);
       expect(await leaks(passId, secrets)).toEqual([]);
-      const asked = soundRoutes().map(({ path }) => path);
+      const { body: timeline } = await ask(`/api/runs/${found.runId}/timeline`);
+    expect(timeline).toMatchObject({ recordings: [{ id: found.recordingId, course: null }] });
+    const asked = soundRoutes().map(({ path }) => path);
       expect(asked).toContain('/api/recordings/:id/audio');
       const answers: Record<string, number> = {};
       for (const { route, address } of requestsOf(passId, '')) {

@@ -44,7 +44,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   const beside = useBeside({ recording, view, markSample });
   const hand = { view, marks, draft, selectedCandidate, markSample };
   const { channels, tiles } = sources;
-  const looked = { view, channels, plotWidthPx, isDrawn: tiles.isIdle };
+  const looked = { view, channels, plotWidthPx, isDrawn: tiles.isWhole };
   const coverage = useCoverage({ pass, canMark, layout, listening, ...looked });
   const { isOutside } = coverage;
   const classKey = useClassKey({ isOutside, layout, scheme, canMark, ...hand, channel, plotWidthPx });

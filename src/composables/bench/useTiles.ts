@@ -62,6 +62,18 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
     ];
   }
 
+  /** Whether all of the window is there, at the level that its zoom asks for. */
+  function isWhole(): boolean {
+    const shown = toValue(window);
+    const samplesPerPixel = windowSamples(shown) / Math.max(1, toValue(widthPx));
+    return toValue(channels).every((channel) =>
+      layout.pictures.every((picture) => {
+        const tiles = planTiles(picture, shown, samplesPerPixel, 0).shown;
+        return tiles.every((tile) => store.find({ channel, band: picture.band, ...tile }) !== undefined);
+      }),
+    );
+  }
+
   function find(channel: number, band: PictureBand, level: number, tile: number): Tile | undefined {
     return store.find({ channel, band, level, tile });
   }
@@ -76,5 +88,5 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
   );
   tryOnScopeDispose(() => store.close());
 
-  return { find, arrivals, trouble, retry: store.retry };
+  return { find, isWhole, arrivals, trouble, retry: store.retry };
 }
