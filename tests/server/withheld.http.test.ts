@@ -154,8 +154,8 @@ describe('while growth phases are marked without the sound, no route tells', () 
       if (rights === 'every role') giveEveryRole(app);
       expect(await leaks(passId, secrets)).toEqual([]);
       const { body: timeline } = await ask(`/api/runs/${found.runId}/timeline`);
-    expect(timeline).toMatchObject({ recordings: [{ id: found.recordingId, course: null }] });
-    const asked = soundRoutes().map(({ path }) => path);
+      expect(timeline).toMatchObject({ recordings: [{ id: found.recordingId, course: null }] });
+      const asked = soundRoutes().map(({ path }) => path);
       expect(asked).toContain('/api/recordings/:id/audio');
       const answers: Record<string, number> = {};
       for (const { route, address } of requestsOf(passId, '')) {

@@ -1,3 +1,4 @@
+import { Readable } from 'node:stream';
 import { createPassSchema } from '../../../shared/contract/passes.ts';
 import { conditionTraces, growthPhases, videos } from '../../../server/db/schema/beside-sound.ts';
 import { write } from '../../../server/db/transaction.ts';
@@ -60,7 +61,7 @@ export async function seedPlanted(app: TestApp): Promise<Planted> {
     otherPassId: assigned.passId,
     candidateId: items[0]?.id ?? '',
     markId: mark.id,
-    ...seedBeside(app, runId),
+    ...(await seedBeside(app, runId)),
   };
 }
 
@@ -74,12 +75,15 @@ function plantedCandidates() {
   );
 }
 
-function seedBeside(app: TestApp, runId: string) {
-  const { db, ids, clock } = app.deps;
+async function seedBeside(app: TestApp, runId: string) {
+  const { db, ids, clock, store } = app.deps;
   const nowMs = clock.nowMs();
   const made = { runId, createdById: app.personIds.contributor, createdAtMs: nowMs, updatedAtMs: nowMs };
   const [phaseId, traceId, filmId] = [ids.next(), ids.next(), ids.next()];
-  const file = { sha256: 'a'.repeat(64), sizeBytes: 10 };
+  const points = await store.putStream(Readable.from([Buffer.from(new Float64Array([0, 20, 1, 19]).buffer)]));
+  const stored = await store.putStream(Readable.from([Buffer.from('s;degC\n0;20\n1;19\n')]));
+  const file = { sha256: stored.sha256, sizeBytes: 17 };
+  const mapping = { timeColumn: 0, timeUnit: 's', valueColumn: 1, unit: 'degC' } as const;
   db.insert(growthPhases)
     .values({
       ...made,
@@ -96,8 +100,8 @@ function seedBeside(app: TestApp, runId: string) {
   db.insert(conditionTraces)
     .values({
       ...{ ...made, ...file, id: traceId, name: planted.traceName, quantity: 'temperature', unit: 'degC' },
-      ...{ fileName: 'trace.csv', mapping: {} as never, pointsSha256: 'b'.repeat(64), points: 2 },
-      ...{ durationS: 1, minimum: 0, maximum: 1, runOffsetNs: 0 },
+      ...{ fileName: 'trace.csv', mapping, pointsSha256: points.sha256, points: 2 },
+      ...{ durationS: 1, minimum: 19, maximum: 20, runOffsetNs: 0 },
     })
     .run();
   db.insert(videos)
