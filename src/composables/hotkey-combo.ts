@@ -63,6 +63,13 @@ export function ariaCombo(combo: string): string {
   return combo.split('+').map(spokenPart).join('+');
 }
 
+/** Shift stands last among the modifiers; a sign has none, since Shift is part of it. */
+export function withShift(combo: string): string {
+  if (combo.includes('Shift+') || combo.includes('sign:')) return combo;
+  const parts = combo.split('+');
+  return [...parts.slice(0, -1), 'Shift', ...parts.slice(-1)].join('+');
+}
+
 export function isSingleKey(combo: string): boolean {
   return !combo.includes('Control+') && !combo.includes('Alt+');
 }

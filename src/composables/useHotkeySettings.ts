@@ -18,9 +18,13 @@ export const useHotkeySettings = createGlobalState(() => {
     settings.value = { ...settings.value, remapped: { ...settings.value.remapped, [id]: combo } };
   }
 
+  function remapTo(remapped: Readonly<Record<string, string>>): void {
+    settings.value = { ...settings.value, remapped: { ...remapped } };
+  }
+
   function reset(): void {
     settings.value = { areSingleKeysOn: true, remapped: {} };
   }
 
-  return { settings, remap, reset };
+  return { settings, remap, remapTo, reset };
 });

@@ -1,7 +1,7 @@
 import { useEventListener } from '@vueuse/core';
 import { computed, toValue } from 'vue';
 import type { ComputedRef, MaybeRefOrGetter } from 'vue';
-import { isSingleKey, positionCombo, signCombo } from '@/composables/hotkey-combo.ts';
+import { isSingleKey, positionCombo, signCombo, withShift } from '@/composables/hotkey-combo.ts';
 import { useHotkeySettings } from '@/composables/useHotkeySettings.ts';
 
 export interface Hotkey {
@@ -12,9 +12,24 @@ export interface Hotkey {
   /** What it does, for the sheet of keys. */
   label: string;
   group?: string;
+  /** Id of the hotkey whose combination this one adds Shift to, wherever that is put. */
+  withShiftOf?: string;
+  /** A second combination for the same: works, but is not listed. */
+  isSecond?: boolean;
   /** Held keys repeat only where that is meant, as for moving along the axis. */
   repeats?: boolean;
   run: (event: KeyboardEvent) => void;
+}
+
+/** Each with the combination that a person put it on, or its first one. */
+export function combosInForce(
+  hotkeys: readonly Hotkey[],
+  remapped: Readonly<Record<string, string>>,
+): Hotkey[] {
+  return hotkeys.map((hotkey) => {
+    const base = remapped[hotkey.withShiftOf ?? ''];
+    return { ...hotkey, combo: base ? withShift(base) : (remapped[hotkey.id] ?? hotkey.combo) };
+  });
 }
 
 const OWN_KEYS = 'input, textarea, select, [contenteditable="true"], [role="textbox"]';
@@ -49,12 +64,7 @@ export function useHotkeys(
   isActive: MaybeRefOrGetter<boolean> = true,
 ): { inForce: ComputedRef<Hotkey[]> } {
   const { settings } = useHotkeySettings();
-  const inForce = computed(() =>
-    toValue(hotkeys).map((hotkey) => ({
-      ...hotkey,
-      combo: settings.value.remapped[hotkey.id] ?? hotkey.combo,
-    })),
-  );
+  const inForce = computed(() => combosInForce(toValue(hotkeys), settings.value.remapped));
 
   function isOn(hotkey: Hotkey): boolean {
     return settings.value.areSingleKeysOn || !isSingleKey(hotkey.combo);

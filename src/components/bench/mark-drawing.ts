@@ -15,6 +15,8 @@ export interface Fracture {
   glyph: string;
   kind: 'mark' | 'candidate';
   isSelected: boolean;
+  /** Of the selected ones, the one whose span is drawn and whose edges can be taken hold of. */
+  isLead: boolean;
 }
 
 export interface StagePen {
@@ -106,14 +108,38 @@ export function drawFractures(pen: StagePen, fractures: readonly Fracture[]): vo
   context.beginPath();
   context.rect(places.gutterPx, 0, places.plotWidthPx, places.heightPx);
   context.clip();
+  const visible = fractures.filter((fracture) => isVisible(fracture, pen));
   let lastGlyphX = Number.NEGATIVE_INFINITY;
-  for (const fracture of fractures) {
-    if (fracture.isSelected || !isVisible(fracture, pen)) continue;
+  for (const fracture of oneInEachColumn(visible, pen)) {
     lastGlyphX = drawFracture(pen, fracture, lastGlyphX);
   }
-  const selected = fractures.find(({ isSelected }) => isSelected);
-  if (selected && isVisible(selected, pen)) drawSelected(pen, selected);
+  for (const fracture of visible) if (fracture.isSelected) drawChosen(pen, fracture);
+  const lead = visible.find(({ isLead }) => isLead);
+  if (lead) drawSelected(pen, lead);
   context.restore();
+}
+
+/** Ten thousand marks in a thousand columns of pixels are no more than a thousand strokes of each kind. */
+function oneInEachColumn(fractures: readonly Fracture[], pen: StagePen): Fracture[] {
+  const last = { mark: Number.NaN, candidate: Number.NaN };
+  return fractures.filter(({ isSelected, kind, startSample }) => {
+    if (isSelected) return false;
+    const column = Math.round(xOf(startSample, pen));
+    const isNew = column !== last[kind];
+    last[kind] = column;
+    return isNew;
+  });
+}
+
+/** One of several that are selected: a full line, with its glyph. */
+function drawChosen(pen: StagePen, fracture: Fracture): void {
+  if (fracture.isLead) return;
+  const onsetX = xOf(fracture.startSample, pen);
+  drawInBand(pen, onsetX - BESIDE_PX, pen.places.ultrasonic, fracture);
+  drawInBand(pen, onsetX - BESIDE_PX, pen.places.audible, fracture);
+  drawInWave(pen, onsetX, fracture);
+  drawSpanBar(pen, onsetX, xOf(fracture.endSample, pen));
+  if (fracture.kind === 'mark') drawGlyph(pen, onsetX, fracture.glyph, pen.colours.fracture);
 }
 
 /** Returns where the last glyph stands: where fractures crowd, not every glyph has room. */

@@ -25,13 +25,15 @@ export interface FractureSources {
   marks: readonly BenchMark[];
   candidates: readonly Candidate[];
   classes: readonly EventClass[];
-  selectedKey: string | null;
+  selectedKeys: ReadonlySet<string>;
+  /** Of several, the one whose edges can be taken hold of. */
+  leadKey: string | null;
   selectedCandidateId: string | null;
 }
 
 /** Marks and candidates as the picture draws them; a candidate that became a mark is not drawn twice. */
 export function toFractures(sources: FractureSources): Fracture[] {
-  const { marks, candidates, classes, selectedKey, selectedCandidateId } = sources;
+  const { marks, candidates, classes, selectedKeys, leadKey, selectedCandidateId } = sources;
   const taken = new Set(marks.map(({ candidateId }) => candidateId));
   const dotted = candidates
     .filter(({ id }) => !taken.has(id))
@@ -44,6 +46,7 @@ export function toFractures(sources: FractureSources): Fracture[] {
       glyph: '',
       kind: 'candidate' as const,
       isSelected: candidate.id === selectedCandidateId,
+      isLead: candidate.id === selectedCandidateId,
     }));
   const solid = marks.map((mark) => ({
     key: mark.key,
@@ -53,7 +56,8 @@ export function toFractures(sources: FractureSources): Fracture[] {
     highHz: mark.highHz,
     glyph: classGlyph(mark.classKey, classes),
     kind: 'mark' as const,
-    isSelected: mark.key === selectedKey,
+    isSelected: selectedKeys.has(mark.key),
+    isLead: mark.key === leadKey,
   }));
   return [...dotted, ...solid];
 }

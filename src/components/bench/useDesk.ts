@@ -1,22 +1,28 @@
 import { useLocalStorage } from '@vueuse/core';
 import { computed, nextTick, ref, shallowRef } from 'vue';
 import { voiceClassKey } from '@shared/domain/label-scheme.ts';
+import { useMarkLink } from '@/components/bench/useMarkLink.ts';
 import { FIRST_LOOK, nextColours, otherView } from '@/components/bench/look.ts';
 import type { PointedPlace } from '@/components/bench/pointer-work.ts';
 import { frameWords, readoutWords, scaleWords } from '@/components/bench/stage-words.ts';
 import { benchHotkeys } from '@/composables/bench/bench-hotkeys.ts';
 import { withKeys } from '@/composables/bench/class-keys.ts';
+import { provideKeys, shownKey } from '@/composables/bench/keys-context.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 import { useHotkeys } from '@/composables/useHotkeys.ts';
+import { useHotkeySettings } from '@/composables/useHotkeySettings.ts';
 
 export type DeskSheet = 'keys' | 'finish';
 export type Desk = ReturnType<typeof useDesk>;
 
 /** What the page around the bench adds to it: its keys, its sheets, the colours, the point under the pointer. */
 export function useDesk(bench: Bench) {
-  const { view, marks, layout } = bench;
-  const choices = withKeys(bench.scheme.classes);
+  const { view, layout } = bench;
+  const classes = withKeys(bench.scheme.classes);
+  const link = useMarkLink(bench);
+  /** Parts of the aside that a key opens. */
+  const aside = shallowRef<{ showSteps: () => void; showTable: () => void } | null>(null);
   const look = useLocalStorage('recalesce.bench.look', FIRST_LOOK, { mergeDefaults: true });
   const point = shallowRef<PointedPlace | null>(null);
   const openSheet = ref<DeskSheet | null>(null);
@@ -35,9 +41,8 @@ export function useDesk(bench: Bench) {
   }
 
   function changeSelectedClass(classKey: string): void {
-    const mark = marks.selected.value;
     if (classKey === voiceClassKey) chooseClass(classKey, false);
-    else if (mark) marks.change(mark.key, { classKey }, 'class');
+    else bench.hand.setClass(classKey);
   }
 
   async function editNote(): Promise<void> {
@@ -51,22 +56,37 @@ export function useDesk(bench: Bench) {
     else if (view.pointerSample.value !== null) view.placeCursor(view.pointerSample.value);
   }
 
-  const hotkeys = benchHotkeys(bench, choices, {
+  const hotkeys = benchHotkeys(bench, classes, {
     showKeys: () => (openSheet.value = 'keys'),
     nextColours: () => (look.value = nextColours(look.value)),
     otherView: () => (look.value = otherView(look.value)),
     editNote: () => void editNote(),
+    showSteps: () => aside.value?.showSteps(),
+    showTable: () => aside.value?.showTable(),
+    copyLink: () => void link.copyLink(),
     say: (words) => void announce(words),
     chooseClass,
   });
-  const { inForce } = useHotkeys(hotkeys);
+  const { inForce } = useHotkeys(hotkeys, () => openSheet.value === null && asked.value === null);
+  const { settings } = useHotkeySettings();
+  provideKeys(inForce);
+  const choices = computed(() =>
+    classes.map((choice) => {
+      const hotkey = inForce.value.find(({ id }) => id === `bench.class.${choice.key}`);
+      return { ...choice, keyName: shownKey(hotkey, settings.value.areSingleKeysOn).text };
+    }),
+  );
+  link.openLink();
 
   return {
     choices,
     look,
     openSheet,
     asked,
-    hotkeys: inForce,
+    aside,
+    ...link,
+    /** With their first combinations, as the sheet of keys needs them. */
+    hotkeys,
     scaleText: computed(() => scaleWords(bench, look.value)),
     frameText: computed(() => frameWords(bench)),
     readout: computed(() => readoutWords(bench, point.value)),

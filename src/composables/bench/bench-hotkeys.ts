@@ -3,10 +3,11 @@ import { goRows } from '@/composables/bench/keys/go-keys.ts';
 import { toHotkeys } from '@/composables/bench/keys/hotkey-rows.ts';
 import type { PageActions } from '@/composables/bench/keys/hotkey-rows.ts';
 import { listenRows } from '@/composables/bench/keys/listen-keys.ts';
-import { classKeys, editRows } from '@/composables/bench/keys/mark-keys.ts';
+import { classKeys, editRows, placeRows, secondRows } from '@/composables/bench/keys/mark-keys.ts';
 import { phaseRows } from '@/composables/bench/keys/phase-keys.ts';
 import { pictureRows } from '@/composables/bench/keys/picture-keys.ts';
 import { passRows } from '@/composables/bench/keys/pass-keys.ts';
+import { selectRows } from '@/composables/bench/keys/select-keys.ts';
 import { viewRows } from '@/composables/bench/keys/view-keys.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
 import type { Hotkey } from '@/composables/useHotkeys.ts';
@@ -17,12 +18,18 @@ import type { Hotkey } from '@/composables/useHotkeys.ts';
  */
 export function benchHotkeys(bench: Bench, choices: readonly ClassChoice[], page: PageActions): Hotkey[] {
   const marking = bench.canMark
-    ? [...classKeys(choices, page), ...toHotkeys('Edit the selected mark', editRows(bench, page))]
+    ? [
+        ...classKeys(choices, page),
+        ...toHotkeys('Change the marks in hand', editRows(bench, page)),
+        ...toHotkeys('Start and end of the marks in hand', placeRows(bench, page)),
+        ...toHotkeys('', secondRows(bench)).map((hotkey) => ({ ...hotkey, isSecond: true })),
+      ]
     : [];
   return [
     ...marking,
     ...toHotkeys('Go', goRows(bench, page)),
     ...toHotkeys('Through the pass', passRows(bench, page)),
+    ...toHotkeys('Select and tell', selectRows(bench, page)),
     ...toHotkeys('Zoom and move', viewRows(bench)),
     ...toHotkeys('Picture', pictureRows(bench, page)),
     ...toHotkeys('Listen', listenRows(bench)),

@@ -39,3 +39,9 @@ export function markSentence(mark: MarkFields, { classes, sampleRateHz }: MarkSp
   const title = classTitle(mark.classKey, classes);
   return `${title}, ${mark.confidence}, at ${timeWords(mark.startSample, sampleRateHz)}`;
 }
+
+/** "crack at 41.324 8 s", or "3 marks" */
+export function severalName(marks: readonly MarkFields[], speech: MarkSpeech): string {
+  const [first] = marks;
+  return first && marks.length === 1 ? markName(first, speech) : `${marks.length} marks`;
+}

@@ -33,11 +33,14 @@ export function defaultSpan(
   return clampSpan({ startSample, endSample: startSample + Math.max(1, samples) }, view.frames);
 }
 
-const UNTOLD = { rawStartSample: null, uncertaintySamples: null, aids: null, view: null };
+/** How a mark came about, beside what it says. */
+export type Told = Pick<MarkFields, 'rawStartSample' | 'uncertaintySamples' | 'aids' | 'view'>;
+
+const UNTOLD: Told = { rawStartSample: null, uncertaintySamples: null, aids: null, view: null };
 
 type Named = Pick<MarkFields, 'classKey' | 'confidence'>;
 
-export function markBySpan(span: DraftSpan, place: MarkPlace, named: Named): MarkFields {
+export function markBySpan(span: DraftSpan, place: MarkPlace, named: Named, told = UNTOLD): MarkFields {
   const fitted = clampSpan(span, place.frames);
   const { lowHz, highHz } = span;
   return {
@@ -49,12 +52,18 @@ export function markBySpan(span: DraftSpan, place: MarkPlace, named: Named): Mar
     note: '',
     origin: 'hand',
     candidateId: null,
-    ...UNTOLD,
+    ...told,
   };
 }
 
-/** Span and channel are the detector's; the class is the person's. */
-export function markByCandidate(candidate: Candidate, place: MarkPlace, named: Named): MarkFields {
+/** Span, channel and uncertainty are the detector's; the class is the person's. */
+export function markByCandidate(
+  candidate: Candidate,
+  place: MarkPlace,
+  named: Named,
+  told = UNTOLD,
+): MarkFields {
+  const { onsetUncertaintyUs } = candidate;
   const span = clampSpan(
     { startSample: candidate.onsetSample, endSample: candidate.endSample },
     place.frames,
@@ -68,6 +77,7 @@ export function markByCandidate(candidate: Candidate, place: MarkPlace, named: N
     note: '',
     origin: 'candidate',
     candidateId: candidate.id,
-    ...UNTOLD,
+    ...told,
+    uncertaintySamples: onsetUncertaintyUs === null ? null : onsetUncertaintyUs * 1e-6 * place.sampleRateHz,
   };
 }

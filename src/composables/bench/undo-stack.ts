@@ -1,12 +1,17 @@
-/** One change of one mark, with what it was before and what it became; `null` stands for "not there". */
+/** What became of one mark; `null` stands for "not there". */
+export interface MarkChange<Mark> {
+  key: string;
+  before: Mark | null;
+  after: Mark | null;
+}
+
+/** One thing that was done, to one mark or to several at once. */
 export interface MarkStep<Mark> {
   /** What was done, for the button and the live region: "crack at 41.3248 s set". */
   name: string;
-  key: string;
   /** Which kind of change: "start", "class". */
   what: string;
-  before: Mark | null;
-  after: Mark | null;
+  changes: readonly MarkChange<Mark>[];
   /** When it was done, in milliseconds of the wall clock. */
   atMs: number;
 }
@@ -33,28 +38,31 @@ export function emptyUndoStack<Mark>(): UndoStack<Mark> {
 export function pushStep<Mark>(stack: UndoStack<Mark>, step: MarkStep<Mark>): UndoStack<Mark> {
   const last = stack.done.at(-1);
   if (!last || !goesOn(last, step)) return { done: [...stack.done, step], undone: [] };
-  return {
-    done: [...stack.done.slice(0, -1), { ...step, name: last.name, before: last.before }],
-    undone: [],
-  };
+  const changes = step.changes.map((change, index) => ({
+    ...change,
+    before: last.changes[index]?.before ?? null,
+  }));
+  return { done: [...stack.done.slice(0, -1), { ...step, name: last.name, changes }], undone: [] };
 }
 
 /** Moving an edge by ten presses of a key is one change, not ten. */
 function goesOn<Mark>(last: MarkStep<Mark>, step: MarkStep<Mark>): boolean {
-  const isBothChange = last.before !== null && last.after !== null && step.after !== null;
-  return (
-    isBothChange && last.key === step.key && last.what === step.what && step.atMs - last.atMs < ONE_CHANGE_MS
-  );
+  if (last.what !== step.what || step.atMs - last.atMs >= ONE_CHANGE_MS) return false;
+  if (last.changes.length !== step.changes.length) return false;
+  return step.changes.every(({ key, after }, index) => {
+    const earlier = last.changes[index];
+    return earlier?.key === key && earlier.before !== null && earlier.after !== null && after !== null;
+  });
 }
 
-/** Takes the newest change back: the caller puts `step.before` in place. */
+/** Takes the newest change back: the caller puts each `before` in place. */
 export function takeUndo<Mark>(stack: UndoStack<Mark>): Taken<Mark> | null {
   const step = stack.done.at(-1);
   if (!step) return null;
   return { step, stack: { done: stack.done.slice(0, -1), undone: [...stack.undone, step] } };
 }
 
-/** Does the newest change that was taken back again: the caller puts `step.after` in place. */
+/** Does the newest change that was taken back again: the caller puts each `after` in place. */
 export function takeRedo<Mark>(stack: UndoStack<Mark>): Taken<Mark> | null {
   const step = stack.undone.at(-1);
   if (!step) return null;

@@ -1,7 +1,9 @@
 import { computed, shallowRef } from 'vue';
 import type { Candidate } from '@shared/contract/candidates.ts';
-import { clampSpan } from '@shared/domain/event-span.ts';
 import type { BenchData } from '@/composables/bench/load-bench.ts';
+import { useCircumstances } from '@/composables/bench/marking/useCircumstances.ts';
+import { useMarkHand } from '@/composables/bench/marking/useMarkHand.ts';
+import { useOnsetSnap } from '@/composables/bench/marking/useOnsetSnap.ts';
 import type { DraftSpan } from '@/composables/bench/new-mark.ts';
 import { useBeside } from '@/composables/bench/useBeside.ts';
 import { useBenchMarks } from '@/composables/bench/useBenchMarks.ts';
@@ -31,8 +33,8 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   });
   const { channel, plotWidthPx } = sources;
   const passId = canMark ? pass.id : null;
-  const place = { recordingId: recording.id, title: recording.runTitle, sampleRateHz };
-  const marks = useBenchMarks({ ...place, passId, scheme, events });
+  const named = { recordingId: recording.id, title: recording.runTitle, sampleRateHz };
+  const marks = useBenchMarks({ ...named, passId, scheme, events });
   const { container } = recording.format;
   const listening = useListening({ recordingId: recording.id, sampleRateHz, container, channel });
 
@@ -42,12 +44,29 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     return view.pointerSample.value ?? heard ?? view.place.value;
   });
   const beside = useBeside({ recording, view, markSample });
-  const hand = { view, marks, draft, selectedCandidate, markSample };
   const { channels, tiles } = sources;
   const looked = { view, channels, plotWidthPx, isDrawn: tiles.isWhole };
   const coverage = useCoverage({ pass, canMark, layout, listening, ...looked });
-  const { isOutside } = coverage;
-  const classKey = useClassKey({ isOutside, layout, scheme, canMark, ...hand, channel, plotWidthPx });
+  const circumstances = useCircumstances({
+    window: view.shown,
+    widthPx: plotWidthPx,
+    areCandidatesShown,
+    aidsInUse: () => null,
+  });
+  const snapping = useOnsetSnap({ recordingId: recording.id, marks });
+  const place = { view, marks, markSample, plotWidthPx, circumstances };
+  const hand = useMarkHand({ frames, sampleRateHz, ...place });
+  const classKey = useClassKey({
+    layout,
+    scheme,
+    canMark,
+    isOutside: coverage.isOutside,
+    ...place,
+    draft,
+    selectedCandidate,
+    channel,
+    onSet: (key) => void snapping.snapFresh(key),
+  });
 
   const region = useRegion({ recordingId: recording.id, layout, channel, ...hand });
 
@@ -68,16 +87,6 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     view.placeCursor(candidate.onsetSample);
   }
 
-  function moveEdge(edge: 'start' | 'end', sample: number): void {
-    const mark = marks.selected.value;
-    if (!mark) return;
-    const moved =
-      edge === 'start'
-        ? { startSample: Math.min(sample, mark.endSample - 1), endSample: mark.endSample }
-        : { startSample: mark.startSample, endSample: Math.max(sample, mark.startSample + 1) };
-    marks.change(mark.key, clampSpan(moved, frames), edge);
-  }
-
   function dropAll(): void {
     draft.value = null;
     selectedCandidate.value = null;
@@ -92,7 +101,9 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     pass,
     scheme,
     ...sources,
-    ...hand,
+    ...place,
+    draft,
+    selectedCandidate,
     canMark,
     areCandidatesShown,
     listening,
@@ -100,9 +111,11 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     beside,
     coverage,
     ...classKey,
+    hand,
+    snapping,
     selectMark,
     selectCandidate,
-    moveEdge,
+    moveEdge: hand.moveEdge,
     dropAll,
   };
 }

@@ -4,10 +4,10 @@ import type { RecordingEvent } from '@shared/contract/events.ts';
 import type { LabelScheme } from '@shared/contract/schemes.ts';
 import { byTime, fieldsOf, hasSameFields, toBenchMark } from '@/composables/bench/mark.ts';
 import type { BenchMark, MarkFields } from '@/composables/bench/mark.ts';
-import { markName, markSentence } from '@/composables/bench/mark-words.ts';
-import { takeBack } from '@/composables/bench/take-back.ts';
-import { emptyUndoStack, pushStep, takeRedo, takeUndo } from '@/composables/bench/undo-stack.ts';
-import type { Taken } from '@/composables/bench/undo-stack.ts';
+import { markName, markSentence, severalName } from '@/composables/bench/mark-words.ts';
+import { withChanges } from '@/composables/bench/marking/sorted-marks.ts';
+import { useMarkHistory } from '@/composables/bench/marking/useMarkHistory.ts';
+import { useMarkSelection } from '@/composables/bench/marking/useMarkSelection.ts';
 import { useMarkSaving } from '@/composables/bench/useMarkSaving.ts';
 import type { ShownMark } from '@/composables/bench/useMarkSaving.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
@@ -23,6 +23,15 @@ export interface BenchMarksOptions {
   events: readonly RecordingEvent[];
 }
 
+/** One thing that is done to marks, however many they are. */
+export interface MarkDeed {
+  name: string;
+  /** Which kind of change: "start", "class". */
+  what: string;
+  /** `null` removes the mark; a key that is not known makes a new one. */
+  edits: readonly { key: string; after: MarkFields | null }[];
+}
+
 export type BenchMarks = ReturnType<typeof useBenchMarks>;
 
 /** The marks on the bench, the changes of them with undo, and how far they are stored. */
@@ -30,108 +39,132 @@ export function useBenchMarks(options: BenchMarksOptions) {
   const { sampleRateHz, passId, scheme } = options;
   const { announce } = useAnnounce();
   const speech = { classes: scheme.classes, sampleRateHz };
-  const byKey = shallowRef(
+  const byKey = shallowRef<ReadonlyMap<string, BenchMark>>(
     new Map(options.events.map((event) => [event.id, toBenchMark(event, passId)] as const)),
   );
-  const marks = computed(() => [...byKey.value.values()].sort(byTime));
-  const selectedKey = shallowRef<string | null>(null);
-  const selected = computed(() => byKey.value.get(selectedKey.value ?? '') ?? null);
-  const undoStack = shallowRef(emptyUndoStack<MarkFields>());
+  const marks = shallowRef<readonly BenchMark[]>([...byKey.value.values()].sort(byTime));
+  const selection = useMarkSelection(byKey);
+  const history = useMarkHistory({
+    present(key) {
+      const mark = byKey.value.get(key);
+      return mark ? fieldsOf(mark) : null;
+    },
+    place: (changes) => put(changes),
+    select: (keys) => selection.selectMany(keys),
+  });
 
   const saving = useMarkSaving({ ...options, passId: passId ?? '', onShow: showMark });
+  const ownCount = computed(() => marks.value.reduce((sum, { isOwn }) => sum + (isOwn ? 1 : 0), 0));
 
   /** A mark as another window, the server or an earlier page left it. */
   function showMark(key: string, { fields, event, isSaved }: ShownMark): void {
     if (!fields || !passId) {
-      if (byKey.value.has(key)) place(key, null);
+      if (byKey.value.has(key)) place([{ key, mark: null }]);
       return;
     }
     const known = byKey.value.get(key) ?? null;
     const parameters = parametersFor(fields, event) ?? parametersFor(fields, known);
-    place(key, { ...fields, key, passId, isOwn: true, parameters });
+    place([{ key, mark: { ...fields, key, passId, isOwn: true, parameters } }]);
     if (isSaved) void announce(`${markSentence(fields, speech)}, saved`);
   }
 
-  function place(key: string, mark: BenchMark | null): void {
+  function place(changes: readonly { key: string; mark: BenchMark | null }[]): void {
     const next = new Map(byKey.value);
-    if (mark) next.set(key, mark);
-    else next.delete(key);
-    byKey.value = next;
-    if (!mark && selectedKey.value === key) selectedKey.value = null;
-  }
-
-  /** Puts a mark into this form, here at once and on the server as soon as it can be. */
-  function put(key: string, fields: MarkFields | null): void {
-    if (!passId) return;
-    if (!fields) {
-      place(key, null);
-      saving.remove(key);
-      return;
+    const moves = changes.map(({ key, mark }) => ({ before: next.get(key), after: mark }));
+    for (const { key, mark } of changes) {
+      if (mark) next.set(key, mark);
+      else next.delete(key);
     }
-    const parameters = parametersFor(fields, byKey.value.get(key) ?? null);
-    place(key, { ...fields, key, passId, isOwn: true, parameters });
-    saving.keep(key, fields);
+    byKey.value = next;
+    marks.value = withChanges(marks.value, moves);
+    for (const { key, mark } of changes) if (!mark) selection.forget(key);
   }
 
-  function step(change: { name: string; what: string; key: string; after: MarkFields | null }): void {
-    const present = byKey.value.get(change.key);
-    const before = present ? fieldsOf(present) : null;
-    undoStack.value = pushStep(undoStack.value, { ...change, before, atMs: Date.now() });
-    put(change.key, change.after);
+  /** Puts marks into these forms, here at once and on the server as soon as it can be. */
+  function put(changes: readonly { key: string; fields: MarkFields | null }[]): void {
+    if (!passId) return;
+    const markOf = (key: string, fields: MarkFields): BenchMark => {
+      const parameters = parametersFor(fields, byKey.value.get(key) ?? null);
+      return { ...fields, key, passId, isOwn: true, parameters };
+    };
+    place(changes.map(({ key, fields }) => ({ key, mark: fields && markOf(key, fields) })));
+    for (const { key, fields } of changes) {
+      if (fields) saving.keep(key, fields);
+      else saving.remove(key);
+    }
+  }
+
+  /** Marks of others stay as they are; what would change nothing is no step. */
+  function apply({ name, what, edits }: MarkDeed): boolean {
+    const changes = edits.flatMap(({ key, after }) => {
+      const present = byKey.value.get(key);
+      if (present && (!present.isOwn || (after && hasSameFields(present, after)))) return [];
+      return [{ key, before: present ? fieldsOf(present) : null, after }];
+    });
+    if (changes.length === 0 || !passId) return false;
+    history.push({ name, what, changes, atMs: Date.now() });
+    put(changes.map(({ key, after }) => ({ key, fields: after })));
+    return true;
+  }
+
+  function ownOf(keys: readonly string[]): BenchMark[] {
+    return keys.flatMap((key) => {
+      const mark = byKey.value.get(key);
+      return mark?.isOwn ? [mark] : [];
+    });
   }
 
   /** Sets a new mark and selects it. */
-  function set(fields: MarkFields): void {
+  function set(fields: MarkFields): string {
     const key = newId();
-    step({ name: `${markName(fields, speech)} set`, what: 'set', key, after: fields });
-    selectedKey.value = key;
+    apply({ name: `${markName(fields, speech)} set`, what: 'set', edits: [{ key, after: fields }] });
+    selection.selectedKey.value = key;
+    return key;
   }
 
   /** Changes an own mark; `what` names the change: "class", "start". */
   function change(key: string, values: Partial<MarkFields>, what: string): void {
-    const present = byKey.value.get(key);
-    if (!present?.isOwn) return;
-    const after = { ...fieldsOf(present), ...values };
-    if (hasSameFields(present, after)) return;
-    step({ name: `${what} of ${markName(present, speech)} changed`, what, key, after });
+    changeAll([key], () => values, what);
   }
 
-  function remove(key: string): void {
-    const present = byKey.value.get(key);
-    if (!present?.isOwn) return;
-    step({ name: `${markName(present, speech)} deleted`, what: 'delete', key, after: null });
-    void announce(`${markName(present, speech)} deleted`);
+  /** The same kind of change of several marks, as one step. */
+  function changeAll(
+    keys: readonly string[],
+    valuesFor: (mark: BenchMark) => Partial<MarkFields>,
+    what: string,
+  ): boolean {
+    const present = ownOf(keys);
+    const edits = present.map((mark) => ({
+      key: mark.key,
+      after: { ...fieldsOf(mark), ...valuesFor(mark) },
+    }));
+    return apply({ name: `${what} of ${severalName(present, speech)} changed`, what, edits });
   }
 
-  function goTo(taken: Taken<MarkFields> | null, side: 'before' | 'after'): void {
-    if (!taken) return;
-    undoStack.value = taken.stack;
-    const { key, name } = taken.step;
-    const present = byKey.value.get(key);
-    const from = taken.step[side === 'before' ? 'after' : 'before'];
-    const fields = takeBack(present ? fieldsOf(present) : null, from, taken.step[side]);
-    if (fields === undefined) {
-      void announce(`Left as it is, since another window changed it: ${name}`);
-      return;
-    }
-    put(key, fields);
-    if (fields) selectedKey.value = key;
-    void announce(side === 'before' ? `Taken back: ${name}` : `Done again: ${name}`);
+  function removeAll(keys: readonly string[]): void {
+    const present = ownOf(keys);
+    const name = `${severalName(present, speech)} deleted`;
+    const edits = present.map(({ key }) => ({ key, after: null }));
+    if (apply({ name, what: 'delete', edits })) void announce(name);
   }
 
   return {
     marks,
-    selected,
-    selectedKey,
+    speech,
+    ...selection,
+    ownOf,
+    find: (key: string) => byKey.value.get(key) ?? null,
+    /** Under which id the server knows a mark; `null` while it does not. */
+    storedId: (key: string) => (byKey.value.get(key)?.isOwn === false ? key : saving.storedId(key)),
+    apply,
     set,
     change,
-    remove,
-    undo: () => goTo(takeUndo(undoStack.value), 'before'),
-    redo: () => goTo(takeRedo(undoStack.value), 'after'),
-    undoName: computed(() => undoStack.value.done.at(-1)?.name ?? null),
-    redoName: computed(() => undoStack.value.undone.at(-1)?.name ?? null),
-    ownCount: computed(() => marks.value.filter(({ isOwn }) => isOwn).length),
-    saving: computed(() => saving.words(marks.value.filter(({ isOwn }) => isOwn).length)),
+    changeAll,
+    remove: (key: string) => removeAll([key]),
+    removeAll,
+    ...history,
+    ownCount,
+    saving: computed(() => saving.words(ownCount.value)),
     isAllStored: saving.isAllStored,
     undecided: saving.undecided,
     decide: saving.decide,

@@ -1,11 +1,13 @@
 import { computed } from 'vue';
 import type { Ref } from 'vue';
 import type { Candidate } from '@shared/contract/candidates.ts';
+import type { Confidence } from '@shared/contract/schemes.ts';
 import type { SampleSpan } from '@shared/domain/event-span.ts';
 import type { BenchData } from '@/composables/bench/load-bench.ts';
 import { lessSure } from '@/composables/bench/mark.ts';
 import type { MarkFields } from '@/composables/bench/mark.ts';
 import { classTitle, timeWords } from '@/composables/bench/mark-words.ts';
+import type { Circumstances } from '@/composables/bench/marking/useCircumstances.ts';
 import { defaultSpan, markByCandidate, markBySpan } from '@/composables/bench/new-mark.ts';
 import type { DraftSpan } from '@/composables/bench/new-mark.ts';
 import { pixelAtSample } from '@/composables/bench/time-axis.ts';
@@ -28,6 +30,9 @@ export interface ClassKeyParts extends Pick<BenchData, 'layout' | 'scheme'> {
   plotWidthPx: Ref<number>;
   /** In a pass of windows: whether a mark that begins here lies in none of them. */
   isOutside: (sample: number) => boolean;
+  circumstances: Circumstances;
+  /** A new mark was set. */
+  onSet: (key: string) => void;
 }
 
 /** What the one key does: it sets a mark of a class, or changes the one in hand. */
@@ -41,6 +46,11 @@ export function useClassKey(parts: ClassKeyParts) {
     return px(sample) >= px(span.startSample) - NEAR_PX && px(sample) <= px(span.endSample) + NEAR_PX;
   }
 
+  /** Several that are in hand are changed together, wherever the cursor is. */
+  const several = computed(() => {
+    const own = marks.selectedMarks.value.filter(({ isOwn }) => isOwn);
+    return own.length > 1 && !draft.value ? own : null;
+  });
   const marked = computed(() => {
     const mark = marks.selected.value;
     return mark?.isOwn && !draft.value && isNear(markSample.value, mark) ? mark : null;
@@ -61,8 +71,10 @@ export function useClassKey(parts: ClassKeyParts) {
   const intent = computed(() => {
     if (!canMark) return '';
     const at = timeWords(markSample.value, sampleRateHz);
-    if (!marked.value && parts.isOutside(startOfNew())) return OUTSIDE_WORDS;
+    if (!marked.value && !several.value && parts.isOutside(startOfNew())) return OUTSIDE_WORDS;
     if (draft.value) return 'A class key marks the drawn span';
+    if (several.value)
+      return `A class key changes the ${several.value.length} selected marks; Esc lets them go`;
     if (marked.value)
       return `A class key changes the selected ${classTitle(marked.value.classKey, scheme.classes)}`;
     if (proposed.value) return 'A class key takes the selected candidate';
@@ -72,20 +84,21 @@ export function useClassKey(parts: ClassKeyParts) {
   function fieldsFor(classKey: string, isLessSure: boolean): MarkFields {
     const place = { channel: parts.channel.value, frames, sampleRateHz };
     const named = { classKey, confidence: isLessSure ? ('probable' as const) : ('sure' as const) };
-    if (draft.value) return markBySpan(draft.value, place, named);
-    if (proposed.value) return markByCandidate(proposed.value, place, named);
+    const told = { ...parts.circumstances.placedNow(), aids: parts.circumstances.aidsInUse() };
+    if (draft.value) return markBySpan(draft.value, place, named, told);
+    if (proposed.value) return markByCandidate(proposed.value, place, named, told);
     const size = { widthPx: plotWidthPx.value, frames, sampleRateHz };
     const span = defaultSpan(markSample.value, view.shown.value, size);
-    return markBySpan({ ...span, lowHz: null, highHz: null }, place, named);
+    return markBySpan({ ...span, lowHz: null, highHz: null }, place, named, told);
   }
 
   /** Shift says: less sure. */
   function chooseClass(classKey: string, isLessSure: boolean): void {
     if (!canMark) return;
-    const present = marked.value;
+    const present = several.value ?? (marked.value ? [marked.value] : null);
     if (present) {
-      const confidence = isLessSure ? lessSure(present.confidence) : 'sure';
-      marks.change(present.key, { classKey, confidence }, 'class');
+      const keys = present.map(({ key }) => key);
+      marks.changeAll(keys, ({ confidence }) => named(classKey, confidence, isLessSure), 'class');
       return;
     }
     const fields = fieldsFor(classKey, isLessSure);
@@ -95,9 +108,14 @@ export function useClassKey(parts: ClassKeyParts) {
     }
     draft.value = null;
     selectedCandidate.value = null;
-    marks.set(fields);
+    const key = marks.set(fields);
     if (view.pointerSample.value === null) view.placeCursor(fields.startSample);
+    parts.onSet(key);
   }
 
   return { marked, intent, chooseClass };
+}
+
+function named(classKey: string, confidence: Confidence, isLessSure: boolean) {
+  return { classKey, confidence: isLessSure ? lessSure(confidence) : ('sure' as const) };
 }

@@ -131,6 +131,11 @@ export function useMarkSaving({
   const pending = computed(() => outbox.entries.filter((entry) => entry.place.passId === passId));
   const writingIds = computed(() => outbox.writingIds.filter((id) => keys.has(id)));
   return {
+    /** Under which id the server has a mark; `null` while it has none. */
+    storedId(key: string): string | null {
+      const id = ids.get(key);
+      return id !== undefined && stored.has(id) ? id : null;
+    },
     keep: (key: string, mark: MarkFields) => put(key, mark),
     remove: (key: string) => put(key, null),
     retry: () => outbox.retry(),

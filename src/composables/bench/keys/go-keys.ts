@@ -34,7 +34,7 @@ export function goRows(bench: Bench, page: PageActions): Row[] {
   ];
 }
 
-function neighbour<Item>(
+export function neighbour<Item>(
   items: readonly Item[],
   placeOf: (item: Item) => number,
   at: number,

@@ -9,10 +9,14 @@ export interface PageActions {
   editNote: () => void;
   /** For the live region. */
   say: (words: string) => void;
+  showSteps: () => void;
+  showTable: () => void;
+  copyLink: () => void;
   /** Asked first, since some classes hold the recording. */
   chooseClass: (classKey: string, isLessSure: boolean) => void;
 }
 
+/** A combination of its own, a name that says what happens, and what does it. */
 export type Row = [id: string, combo: string, label: string, run: () => void, repeats?: boolean];
 
 export function toHotkeys(group: string, rows: readonly Row[]): Hotkey[] {
