@@ -21,6 +21,7 @@ function fracture(values: Partial<Fracture>): Fracture {
     glyph: '◆',
     kind: 'mark',
     isSelected: false,
+    isLead: false,
     ...values,
   };
 }
