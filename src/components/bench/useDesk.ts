@@ -1,5 +1,5 @@
 import { useLocalStorage } from '@vueuse/core';
-import { computed, nextTick, ref, shallowRef } from 'vue';
+import { computed, nextTick, ref, shallowRef, watchEffect } from 'vue';
 import { voiceClassKey } from '@shared/domain/label-scheme.ts';
 import { useMarkLink } from '@/components/bench/useMarkLink.ts';
 import { FIRST_LOOK, nextColours, otherView } from '@/components/bench/look.ts';
@@ -25,6 +25,7 @@ export function useDesk(bench: Bench) {
   const aside = shallowRef<{ showSteps: () => void; showTable: () => void } | null>(null);
   const look = useLocalStorage('recalesce.bench.look', FIRST_LOOK, { mergeDefaults: true });
   const point = shallowRef<PointedPlace | null>(null);
+  watchEffect(() => (bench.circumstances.isNormalised.value = look.value.isOverQuiet));
   const openSheet = ref<DeskSheet | null>(null);
   /** A class that holds the recording, while somebody is asked whether it is meant. */
   const asked = shallowRef<{ classKey: string; isLessSure: boolean } | null>(null);

@@ -55,7 +55,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   });
   const snapping = useOnsetSnap({ recordingId: recording.id, marks });
   const place = { view, marks, markSample, plotWidthPx, circumstances };
-  const hand = useMarkHand({ frames, sampleRateHz, ...place });
+  const hand = useMarkHand({ frames, sampleRateHz, channel, ...place });
   const classKey = useClassKey({
     layout,
     scheme,
@@ -68,7 +68,14 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     onSet: (key) => void snapping.snapFresh(key),
   });
 
-  const region = useRegion({ recordingId: recording.id, layout, channel, ...hand });
+  const region = useRegion({
+    recordingId: recording.id,
+    layout,
+    channel,
+    ...place,
+    draft,
+    selectedCandidate,
+  });
 
   function selectMark(key: string | null): void {
     selectedCandidate.value = null;

@@ -24,7 +24,7 @@ export function editRows(bench: Bench, page: PageActions): Row[] {
     ['doubtful', 'Digit3', 'confidence: unsure', () => hand.setConfidence('unsure')],
     ['note', 'KeyN', 'write a note', page.editNote],
     ['split', 'Slash', 'split at the cursor', hand.splitAtCursor],
-    ['merge', 'KeyM', 'make one of the selected marks', hand.mergeSelected],
+    ['merge', 'Shift+KeyM', 'make one of the selected marks', hand.mergeSelected],
     ['delete', 'Delete', 'delete', hand.removeSelected],
     ['undo', 'Control+KeyZ', 'take the last change back', marks.undo, true],
     ['redo', 'Control+Shift+KeyZ', 'do it again', marks.redo, true],
@@ -57,8 +57,8 @@ export function placeRows({ hand, snapping, marks }: Bench, page: PageActions): 
     ['start.later', 'Period', 'start later', () => hand.nudge('start', 1), true],
     ['end.earlier', 'Shift+Comma', 'end earlier', () => hand.nudge('end', -1), true],
     ['end.later', 'Shift+Period', 'end later', () => hand.nudge('end', 1), true],
-    ['whole.earlier', 'BracketLeft', 'whole mark earlier', () => hand.nudge('whole', -1), true],
-    ['whole.later', 'BracketRight', 'whole mark later', () => hand.nudge('whole', 1), true],
+    ['whole.earlier', 'Alt+Comma', 'whole mark earlier', () => hand.nudge('whole', -1), true],
+    ['whole.later', 'Alt+Period', 'whole mark later', () => hand.nudge('whole', 1), true],
     ['nudge.unit', 'Semicolon', 'step: pixel, sample, millisecond', hand.cycleUnit],
   ];
 }

@@ -17,7 +17,7 @@ export function selectRows({ marks, markSample, hand, view }: Bench, page: PageA
     ['select.next', 'Shift+KeyL', 'next mark as well', extend(1), true],
     ['select.previous', 'Shift+KeyJ', 'previous mark as well', extend(-1), true],
     ['select.view', 'Control+KeyA', 'all marks in view', hand.selectInView],
-    ['table', 'Backslash', 'into the table of marks', page.showTable],
+    ['table', 'Backquote', 'into the table of marks', page.showTable],
     ['link', 'Quote', 'copy a link to the selected mark', page.copyLink],
   ];
 }

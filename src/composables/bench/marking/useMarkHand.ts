@@ -24,6 +24,8 @@ import { useAnnounce } from '@/composables/useAnnounce.ts';
 export interface MarkHandParts {
   frames: number;
   sampleRateHz: number;
+  /** The one that is shown. */
+  channel: Ref<number>;
   view: BenchWindow;
   marks: BenchMarks;
   markSample: Ref<number>;
@@ -113,7 +115,8 @@ export function useMarkHand(parts: MarkHandParts) {
 
   function selectBetween(fromSample: number, toSample: number, isAdding = false): void {
     const inside = marks.marks.value.filter(
-      ({ startSample, endSample }) => startSample < toSample && endSample > fromSample,
+      (mark) =>
+        mark.channel === parts.channel.value && mark.startSample < toSample && mark.endSample > fromSample,
     );
     const kept = isAdding ? [...marks.selectedKeys.value] : [];
     marks.selectMany([...new Set([...kept, ...inside.map(({ key }) => key)])]);

@@ -16,6 +16,7 @@ function anyBench(): Bench {
 const page = {
   showKeys: vi.fn(),
   nextColours: vi.fn(),
+  otherView: vi.fn(),
   editNote: vi.fn(),
   showSteps: vi.fn(),
   showTable: vi.fn(),
@@ -23,7 +24,7 @@ const page = {
   say: vi.fn(),
   chooseClass: vi.fn(),
 };
-const classes = withKeys(labelSchemeV1.classes);
+const classes = withKeys(labelSchemeV1);
 const hotkeys = benchHotkeys(anyBench(), classes, page);
 
 describe('the keys of the bench', () => {
@@ -35,7 +36,7 @@ describe('the keys of the bench', () => {
   it('have a name and a place in the sheet, and every class has one', () => {
     expect(hotkeys.filter(({ label, group, isSecond }) => !label || (!group && !isSecond))).toEqual([]);
     const ids = new Set(hotkeys.map(({ id }) => id));
-    expect(labelSchemeV1.classes.filter(({ key }) => !ids.has(`bench.class.${key}`))).toEqual([]);
+    expect(labelSchemeV1.filter(({ key }) => !ids.has(`bench.class.${key}`))).toEqual([]);
   });
 
   it('are none that browsers or controls keep for themselves', () => {
@@ -63,7 +64,7 @@ describe('putting an action on another key', () => {
     const outcome = remapKey(hotkeys, {}, 'bench.merge', 'KeyN');
     expect(outcome).toMatchObject({ kind: 'taken', by: { id: 'bench.note' } });
     const swapped = outcome.kind === 'taken' ? (outcome.swapped ?? {}) : {};
-    expect(swapped).toEqual({ 'bench.merge': 'KeyN', 'bench.note': 'KeyM' });
+    expect(swapped).toEqual({ 'bench.merge': 'KeyN', 'bench.note': 'Shift+KeyM' });
     expect(firstClash(combosInForce(hotkeys, swapped))).toBeNull();
   });
 
@@ -90,7 +91,7 @@ describe('putting an action on another key', () => {
   it('goes back to the first key, or tells who has it now', () => {
     const moved = { 'bench.merge': 'KeyX' };
     expect(resetKey(hotkeys, moved, 'bench.merge')).toEqual({ kind: 'done', remapped: {} });
-    const taken = { 'bench.merge': 'KeyX', 'bench.note': 'KeyM' };
+    const taken = { 'bench.merge': 'KeyX', 'bench.note': 'Shift+KeyM' };
     expect(resetKey(hotkeys, taken, 'bench.merge')).toMatchObject({
       kind: 'taken',
       by: { id: 'bench.note' },

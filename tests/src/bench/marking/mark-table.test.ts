@@ -34,7 +34,7 @@ function benchOf(list: BenchMark[]) {
   const selection = useMarkSelection(shallowRef(new Map(list.map((mark) => [mark.key, mark]))));
   return {
     marks: { marks, ...selection },
-    scheme: labelSchemeV1,
+    scheme: { classes: labelSchemeV1 },
     layout: { sampleRateHz: 192_000, channels: 2, frames: 1e9 },
     hand: { setConfidence },
     selectMark: (key: string | null) => (selection.selectedKey.value = key),
@@ -69,7 +69,7 @@ const focused = () => document.activeElement?.getAttribute('data-cell');
 beforeEach(() => {
   vi.spyOn(HTMLElement.prototype, 'offsetHeight', 'get').mockReturnValue(260);
   vi.spyOn(HTMLElement.prototype, 'offsetWidth', 'get').mockReturnValue(360);
-  vi.spyOn(Element.prototype, 'clientHeight', 'get').mockReturnValue(260);
+  vi.spyOn(HTMLElement.prototype, 'clientHeight', 'get').mockReturnValue(260);
 });
 afterEach(() => {
   document.body.innerHTML = '';
