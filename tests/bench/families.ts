@@ -10,6 +10,7 @@ import { detector } from './rows/detector.ts';
 import { events } from './rows/events.ts';
 import { features } from './rows/features.ts';
 import { growth } from './rows/growth.ts';
+import { marking } from './rows/marking.ts';
 import { memory } from './rows/memory.ts';
 import { meyda } from './rows/meyda.ts';
 import { server } from './rows/server.ts';
@@ -30,6 +31,7 @@ export const families: readonly RowFamily[] = [
   archive,
   database,
   candidates,
+  marking,
   decode,
   shapes,
   sparse,

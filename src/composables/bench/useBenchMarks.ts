@@ -127,18 +127,19 @@ export function useBenchMarks(options: BenchMarksOptions) {
     changeAll([key], () => values, what);
   }
 
-  /** The same kind of change of several marks, as one step. */
+  /** The same kind of change of several marks, as one step; `nameOf` makes its name of that of the marks. */
   function changeAll(
     keys: readonly string[],
     valuesFor: (mark: BenchMark) => Partial<MarkFields>,
     what: string,
+    nameOf = (marked: string) => `${what} of ${marked} changed`,
   ): boolean {
     const present = ownOf(keys);
     const edits = present.map((mark) => ({
       key: mark.key,
       after: { ...fieldsOf(mark), ...valuesFor(mark) },
     }));
-    return apply({ name: `${what} of ${severalName(present, speech)} changed`, what, edits });
+    return apply({ name: nameOf(severalName(present, speech)), what, edits });
   }
 
   function removeAll(keys: readonly string[]): void {

@@ -61,8 +61,9 @@ export function useMarkHand(parts: MarkHandParts) {
   function nudge(part: MarkPart, direction: 1 | -1): void {
     const samples = direction * stepSamples.value;
     const shift = part === 'whole' ? fittedShift(own.value, samples, frames) : samples;
-    const what = part === 'whole' ? 'place' : part;
-    marks.changeAll(ownKeys(), (mark) => placed(mark, movedSpan(mark, part, shift, frames)), what);
+    const values = (mark: BenchMark) => placed(mark, movedSpan(mark, part, shift, frames));
+    if (part === 'whole') marks.changeAll(ownKeys(), values, 'move', (marked) => `${marked} moved`);
+    else marks.changeAll(ownKeys(), values, part);
   }
 
   function cycleUnit(): void {

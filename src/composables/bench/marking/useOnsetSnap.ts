@@ -1,5 +1,5 @@
 import { useLocalStorage } from '@vueuse/core';
-import { onScopeDispose, ref } from 'vue';
+import { onScopeDispose, ref, watch } from 'vue';
 import type { OnsetAnswer } from '@shared/contract/onset.ts';
 import { pickOnset } from '@/api/onsets.ts';
 import { isProblem } from '@/api/problem-error.ts';
@@ -30,6 +30,7 @@ export function useOnsetSnap({ recordingId, marks }: { recordingId: string; mark
   const leaving = new AbortController();
   const { announce } = useAnnounce();
   onScopeDispose(() => leaving.abort());
+  watch(marks.selectedKey, () => (outcome.value = ''));
 
   async function ask(mark: BenchMark, patienceMs: number): Promise<Asked> {
     const { channel, startSample, endSample, lowHz } = mark;
@@ -67,7 +68,8 @@ export function useOnsetSnap({ recordingId, marks }: { recordingId: string; mark
     if (leaving.signal.aborted) return;
     const found = answers.filter((one) => isAsItWas(one) && pickedValues(one) !== null);
     const values = new Map(found.map((one) => [one.mark.key, pickedValues(one) ?? {}]));
-    marks.changeAll([...values.keys()], ({ key }) => values.get(key) ?? {}, 'picked onset');
+    const nameOf = (marked: string) => `${marked} moved to the picked onset`;
+    marks.changeAll([...values.keys()], ({ key }) => values.get(key) ?? {}, 'snap', nameOf);
     tell(outcomeWords(answers, found));
   }
 
@@ -87,7 +89,7 @@ export function useOnsetSnap({ recordingId, marks }: { recordingId: string; mark
   function unsnap(keys: readonly string[]): void {
     const moved = keys.filter((key) => typeof marks.find(key)?.rawStartSample === 'number');
     if (moved.length === 0) return tell('The start stands where you put it.');
-    marks.changeAll(moved, putBack, 'start as it was put');
+    marks.changeAll(moved, putBack, 'unsnap', (marked) => `${marked} moved back to where it was put`);
     tell('The start stands again where you put it.');
   }
 
