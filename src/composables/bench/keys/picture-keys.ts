@@ -24,8 +24,8 @@ export function pictureRows({ view, layout, channels, region }: Bench, page: Pag
   };
   return [
     ...rows,
-    ['channel.next', 'BracketRight', 'next channel', step(1)],
-    ['channel.previous', 'BracketLeft', 'previous channel', step(-1)],
+    ['channel.next', 'Shift+PageDown', 'next channel', step(1)],
+    ['channel.previous', 'Shift+PageUp', 'previous channel', step(-1)],
     [
       'channel.stack',
       'Backslash',
