@@ -200,7 +200,7 @@ describe('marking', () => {
     await page.keyboard.press('KeyA');
     await untilStored(page);
     const words = await onset(page);
-    await page.keyboard.press('Quote');
+    await page.keyboard.press('Control+Alt+KeyL');
     await page
       .locator('[data-link-words]')
       .filter({ hasText: /copied/ })

@@ -59,6 +59,6 @@ export function placeRows({ hand, snapping, marks }: Bench, page: PageActions): 
     ['end.later', 'Shift+Period', 'end later', () => hand.nudge('end', 1), true],
     ['whole.earlier', 'Alt+Comma', 'whole mark earlier', () => hand.nudge('whole', -1), true],
     ['whole.later', 'Alt+Period', 'whole mark later', () => hand.nudge('whole', 1), true],
-    ['nudge.unit', 'Semicolon', 'step: pixel, sample, millisecond', hand.cycleUnit],
+    ['nudge.unit', 'Shift+Semicolon', 'step: pixel, sample, millisecond', hand.cycleUnit],
   ];
 }

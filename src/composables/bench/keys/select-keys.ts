@@ -18,6 +18,6 @@ export function selectRows({ marks, markSample, hand, view }: Bench, page: PageA
     ['select.previous', 'Shift+KeyJ', 'previous mark as well', extend(-1), true],
     ['select.view', 'Control+KeyA', 'all marks in view', hand.selectInView],
     ['table', 'Backquote', 'into the table of marks', page.showTable],
-    ['link', 'Quote', 'copy a link to the selected mark', page.copyLink],
+    ['link', 'Control+Alt+KeyL', 'copy a link to the selected mark', page.copyLink],
   ];
 }
