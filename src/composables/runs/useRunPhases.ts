@@ -5,12 +5,12 @@ import type { MaybeRefOrGetter } from 'vue';
 import type { GrowthPhase, GrowthPhases, PatchPhase } from '@shared/contract/phases.ts';
 import { deletePhase, listPhases, patchPhase, putPhase } from '@/api/phases.ts';
 import { emptyUndoStack, pushStep, takeRedo, takeUndo } from '@/composables/bench/undo-stack.ts';
-import type { MarkStep } from '@/composables/bench/undo-stack.ts';
+import type { MarkChange } from '@/composables/bench/undo-stack.ts';
 import { phaseNames, runTimeWords } from '@/composables/runs/phase-words.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 
 export type PhaseFields = Pick<GrowthPhase, 'phase' | 'startNs' | 'endNs' | 'basis' | 'confidence' | 'note'>;
-type Step = MarkStep<GrowthPhase>;
+type Step = MarkChange<GrowthPhase> & { name: string; what: string };
 
 function fieldsOf({ phase, startNs, endNs, basis, confidence, note }: GrowthPhase): PhaseFields {
   return { phase, startNs, endNs, basis, confidence, note };
@@ -84,9 +84,9 @@ export function useRunPhases(runId: MaybeRefOrGetter<string>) {
     return done;
   }
 
-  async function make(step: Omit<Step, 'atMs'>): Promise<boolean> {
-    const isStored = await store(() => bring(step.key, step.after), step.name);
-    if (isStored) stack.value = pushStep(stack.value, { ...step, atMs: Date.now() });
+  async function make({ name, what, ...change }: Step): Promise<boolean> {
+    const isStored = await store(() => bring(change.key, change.after), name);
+    if (isStored) stack.value = pushStep(stack.value, { name, what, changes: [change], atMs: Date.now() });
     return isStored;
   }
 
@@ -124,16 +124,19 @@ export function useRunPhases(runId: MaybeRefOrGetter<string>) {
   async function undo(): Promise<void> {
     const taken = takeUndo(stack.value);
     if (!taken) return;
-    const { step } = taken;
-    if (await store(() => bring(step.key, step.before), `taken back: ${step.name}`))
+    const { name, changes } = taken.step;
+    const [first] = changes;
+    if (first && (await store(() => bring(first.key, first.before), `taken back: ${name}`)))
       stack.value = taken.stack;
   }
 
   async function redo(): Promise<void> {
     const taken = takeRedo(stack.value);
     if (!taken) return;
-    const { step } = taken;
-    if (await store(() => bring(step.key, step.after), `done again: ${step.name}`)) stack.value = taken.stack;
+    const { name, changes } = taken.step;
+    const [first] = changes;
+    if (first && (await store(() => bring(first.key, first.after), `done again: ${name}`)))
+      stack.value = taken.stack;
   }
 
   return {
