@@ -43,7 +43,7 @@ const demoPasses: DemoPass[] = [
     instructions: 'Six windows stand for the whole. Mark what begins inside them, and nothing outside.',
   },
   {
-    recording: 'casting-b',
+    recording: 'casting-a',
     labeler: 'labeler',
     blind: false,
     marks: 0,
