@@ -9,6 +9,9 @@ import { benchHotkeys } from '@/composables/bench/bench-hotkeys.ts';
 import { withKeys } from '@/composables/bench/class-keys.ts';
 import { provideKeys, shownKey } from '@/composables/bench/keys-context.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
+import { withRoundKeys } from '@/composables/rounds/round-keys.ts';
+import { joinSaving } from '@/composables/rounds/round-words.ts';
+import type { Round } from '@/composables/rounds/useRound.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 import { useHotkeys } from '@/composables/useHotkeys.ts';
 import { useHotkeySettings } from '@/composables/useHotkeySettings.ts';
@@ -17,8 +20,8 @@ export type DeskSheet = 'keys' | 'finish';
 export type Desk = ReturnType<typeof useDesk>;
 
 /** What the page around the bench adds to it: its keys, its sheets, the colours, the point under the pointer. */
-export function useDesk(bench: Bench) {
-  const { view, layout } = bench;
+export function useDesk(bench: Bench, round: Round | null = null) {
+  const { view, marks, layout } = bench;
   const classes = withKeys(bench.scheme.classes);
   const link = useMarkLink(bench);
   /** Parts of the aside that a key opens. */
@@ -33,11 +36,17 @@ export function useDesk(bench: Bench) {
 
   function chooseClass(classKey: string, isLessSure: boolean): void {
     if (classKey === voiceClassKey) asked.value = { classKey, isLessSure };
+    else name(classKey, isLessSure);
+  }
+
+  /** In a round a class answers the candidate, unless somebody has drawn a span that the detector has not. */
+  function name(classKey: string, isLessSure: boolean): void {
+    if (round && !bench.draft.value) round.answerEvent(classKey, isLessSure);
     else bench.chooseClass(classKey, isLessSure);
   }
 
   function confirmAsked(): void {
-    if (asked.value) bench.chooseClass(asked.value.classKey, asked.value.isLessSure);
+    if (asked.value) name(asked.value.classKey, asked.value.isLessSure);
     asked.value = null;
   }
 
@@ -57,7 +66,7 @@ export function useDesk(bench: Bench) {
     else if (view.pointerSample.value !== null) view.placeCursor(view.pointerSample.value);
   }
 
-  const hotkeys = benchHotkeys(bench, classes, {
+  const benchKeys = benchHotkeys(bench, classes, {
     showKeys: () => (openSheet.value = 'keys'),
     nextColours: () => (look.value = nextColours(look.value)),
     otherView: () => (look.value = otherView(look.value)),
@@ -68,6 +77,7 @@ export function useDesk(bench: Bench) {
     say: (words) => void announce(words),
     chooseClass,
   });
+  const hotkeys = round ? withRoundKeys(benchKeys, bench, round) : benchKeys;
   const { inForce } = useHotkeys(hotkeys, () => openSheet.value === null && asked.value === null);
   const { settings } = useHotkeySettings();
   provideKeys(inForce);
@@ -88,6 +98,18 @@ export function useDesk(bench: Bench) {
     ...link,
     /** With their first combinations, as the sheet of keys needs them. */
     hotkeys,
+    saving: computed(() => joinSaving(marks.saving.value, round?.saving.value)),
+    isAllStored: computed(() => marks.isAllStored.value && (round?.isAllStored.value ?? true)),
+    retry: () => {
+      marks.retry();
+      round?.retry();
+    },
+    /** What a class key would do now. */
+    intent: computed(() =>
+      round && !bench.draft.value
+        ? 'A class key names the candidate, with Shift less sure'
+        : bench.intent.value,
+    ),
     scaleText: computed(() => scaleWords(bench, look.value)),
     frameText: computed(() => frameWords(bench)),
     readout: computed(() => readoutWords(bench, point.value)),

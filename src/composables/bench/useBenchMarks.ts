@@ -80,6 +80,18 @@ export function useBenchMarks(options: BenchMarksOptions) {
     for (const { key, mark } of changes) if (!mark) selection.forget(key);
   }
 
+  /** A mark that the server has made together with an answer to a candidate. */
+  function takeIn(event: RecordingEvent): void {
+    saving.adopt(event);
+    place([{ key: event.id, mark: toBenchMark(event, passId) }]);
+  }
+
+  /** A mark that went together with its answer. */
+  function takeOut(key: string): void {
+    saving.forget(key);
+    place([{ key, mark: null }]);
+  }
+
   /** Puts marks into these forms, here at once and on the server as soon as it can be. */
   function put(changes: readonly { key: string; fields: MarkFields | null }[]): void {
     if (!passId) return;
@@ -157,6 +169,8 @@ export function useBenchMarks(options: BenchMarksOptions) {
     find: (key: string) => byKey.value.get(key) ?? null,
     /** Under which id the server knows a mark; `null` while it does not. */
     storedId: (key: string) => (byKey.value.get(key)?.isOwn === false ? key : saving.storedId(key)),
+    takeIn,
+    takeOut,
     apply,
     set,
     change,

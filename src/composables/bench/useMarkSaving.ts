@@ -138,6 +138,9 @@ export function useMarkSaving({
     },
     keep: (key: string, mark: MarkFields) => put(key, mark),
     remove: (key: string) => put(key, null),
+    /** What the server stored, or took away, together with something else. */
+    adopt,
+    forget: (key: string) => forget(ids.get(key) ?? key),
     retry: () => outbox.retry(),
     decide: (id: string, choice: 'mine' | 'theirs') => void outbox.decide(id, choice),
     /** Also of earlier passes of this person on the recording: what was refused there is not forgotten. */

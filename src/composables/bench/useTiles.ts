@@ -37,6 +37,8 @@ export function headingOf(now: TimeWindow, before: TimeWindow): Heading {
 /** Fetches the tiles that the window needs. `arrivals` counts what has come, so that the picture is drawn again. */
 export function useTiles({ recordingId, layout, channels, window, widthPx }: TilesOptions) {
   const arrivals = shallowRef(0);
+  /** What will be shown next, fetched behind everything else. */
+  const next = shallowRef<{ window: TimeWindow; channel: number } | null>(null);
   const trouble = shallowRef<TileTrouble>({ count: 0, error: null });
   const store = createTileStore({
     load: (request, signal) => getTile({ recordingId, ...request }, signal),
@@ -59,6 +61,7 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
     return [
       ...plans.flatMap(({ place, shown: tiles }) => tiles.map((tile) => ({ ...place, ...tile }))),
       ...plans.flatMap(({ place, ahead }) => ahead.map((tile) => ({ ...place, ...tile }))),
+      ...wantedNext(),
     ];
   }
 
@@ -74,12 +77,25 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
     );
   }
 
+  function wantedNext(): TileRequest[] {
+    if (!next.value) return [];
+    const { window: part, channel } = next.value;
+    const samplesPerPixel = windowSamples(part) / Math.max(1, toValue(widthPx));
+    return layout.pictures.flatMap((picture) =>
+      planTiles(picture, part, samplesPerPixel, 0).shown.map((tile) => ({
+        channel,
+        band: picture.band,
+        ...tile,
+      })),
+    );
+  }
+
   function find(channel: number, band: PictureBand, level: number, tile: number): Tile | undefined {
     return store.find({ channel, band, level, tile });
   }
 
   watch(
-    () => [toValue(window), toValue(channels), toValue(widthPx)] as const,
+    () => [toValue(window), toValue(channels), toValue(widthPx), next.value] as const,
     ([now], before) => {
       store.want(wanted(before?.[0] ? headingOf(now, before[0]) : 0));
       trouble.value = store.failing();
@@ -88,5 +104,5 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
   );
   tryOnScopeDispose(() => store.close());
 
-  return { find, isWhole, arrivals, trouble, retry: store.retry };
+  return { find, isWhole, arrivals, trouble, next, retry: store.retry };
 }
