@@ -26,7 +26,7 @@ describe('the traces of a run', () => {
       await section.getByText('Recalescence, offered as nucleation.').waitFor();
       await section.getByText(/consistent with about 16 % of the water frozen in the flash/).waitFor();
       expect(await section.getByRole('img').getAttribute('aria-label')).toContain(
-        "320\u00A0s before the run's zero",
+        "5\u00A0min\u00A020\u00A0s before the run's zero",
       );
       await section.scrollIntoViewIfNeeded();
       await checkAxe(page);
