@@ -66,9 +66,10 @@ function deletedHereWords(entry: OutboxEntry, classes: readonly EventClass[]): U
   };
 }
 
-function describe({ place }: OutboxEntry, mark: MarkFields | null, classes: readonly EventClass[]): string {
-  if (!mark) return 'deleted';
-  const { sampleRateHz } = place;
+function describe(entry: OutboxEntry, mark: MarkFields | null, classes: readonly EventClass[]): string {
+  const { sampleRateHz } = entry.place;
+  const before = entry.base?.mark ?? entry.sent.find((form) => form !== null);
+  if (!mark) return before ? `deleted, ${markSentence(before, { classes, sampleRateHz })}` : 'deleted';
   const length = formatDuration((mark.endSample - mark.startSample) / sampleRateHz);
   const note = mark.note ? `, "${mark.note}"` : '';
   return `${markSentence(mark, { classes, sampleRateHz })}, lasting ${length}${note}`;

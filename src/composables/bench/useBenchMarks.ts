@@ -9,7 +9,7 @@ import { withChanges } from '@/composables/bench/marking/sorted-marks.ts';
 import { useMarkHistory } from '@/composables/bench/marking/useMarkHistory.ts';
 import { useMarkSelection } from '@/composables/bench/marking/useMarkSelection.ts';
 import { useMarkSaving } from '@/composables/bench/useMarkSaving.ts';
-import type { ShownMark } from '@/composables/bench/useMarkSaving.ts';
+import type { ShownMark } from '@/composables/bench/mark-ledger.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 
 export interface BenchMarksOptions {

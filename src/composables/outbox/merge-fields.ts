@@ -54,7 +54,8 @@ export function mergeFields<Form extends object>(input: MergeInput<Form>): Merge
   const { base, sent = [], prefer = 'mine' } = input;
   const mine = input.mine as Fields;
   const theirs = input.theirs as Fields;
-  const isMine = (name: string) => !isSameValue(mine[name], base[name]);
+  // Also what was sent and then taken back: the server may have it.
+  const isMine = (name: string) => [mine, ...sent].some((form) => !isSameValue(form[name], base[name]));
   const isTheirs = (name: string) =>
     !isSameValue(theirs[name], base[name]) && !sent.some((form) => isSameValue(form[name], theirs[name]));
   const isClash = (name: string) => isMine(name) && isTheirs(name) && !isSameValue(mine[name], theirs[name]);

@@ -10,8 +10,8 @@ export type MarkAnswer =
   | { kind: 'removed' }
   /** Somebody changed it in between; `null` where it was deleted. */
   | { kind: 'conflict'; theirs: RecordingEvent | null }
-  /** The server says no, and will say so again. */
-  | { kind: 'refused'; sentence: string };
+  /** The server says no, and will say so again; `isInvalid` where it does not even look for the mark. */
+  | { kind: 'refused'; sentence: string; isInvalid?: boolean };
 
 /** What becomes of an entry, and what the server has now where that has become known. */
 export interface Outcome {
@@ -31,7 +31,7 @@ export function withAnswer(
 ): Outcome {
   if (answer.kind === 'stored') return afterStored(entry, formOf(request), answer.event);
   if (answer.kind === 'removed') return afterRemoved(entry, newId);
-  if (answer.kind === 'refused') return afterRefused(entry, request, answer.sentence);
+  if (answer.kind === 'refused') return afterRefused(entry, request, answer);
   if (answer.theirs) return afterStale({ ...entry, theirs: answer.theirs }, answer.theirs);
   return entry.sent.includes(null) ? afterRemoved(entry, newId) : inConflict(entry, null);
 }
@@ -50,9 +50,11 @@ function anew(entry: OutboxEntry, newId: NewId): OutboxEntry {
   return { ...entry, id: newId(), base: null, sent: [], state: 'waiting', sentence: '', theirs: null };
 }
 
-/** A create that is refused was not stored by an earlier try either: the server looks for that first. */
-function afterRefused(entry: OutboxEntry, { kind }: SaveRequest, sentence: string): Outcome {
-  const sent = kind === 'create' ? [] : entry.sent;
+type Refusal = Extract<MarkAnswer, { kind: 'refused' }>;
+
+/** A new mark that does not fit was not stored by an earlier try either, so that it can be corrected and sent anew. */
+function afterRefused(entry: OutboxEntry, { kind }: SaveRequest, { sentence, isInvalid }: Refusal): Outcome {
+  const sent = kind === 'create' && isInvalid ? [] : entry.sent;
   return { entry: { ...entry, state: 'refused', sentence, sent }, event: undefined };
 }
 

@@ -1,7 +1,8 @@
 import type { RecordingEvent } from '@shared/contract/events.ts';
 import type { MarkFields } from '@/composables/bench/mark.ts';
 import { fieldsOf } from '@/composables/bench/mark.ts';
-import { changedFields, holdsAll, mergeFields } from '@/composables/outbox/merge-fields.ts';
+import { changedFields, holdsAll, isSameValue, mergeFields } from '@/composables/outbox/merge-fields.ts';
+import type { Fields } from '@/composables/outbox/merge-fields.ts';
 
 /** Whose mark it is, and where it belongs. */
 export interface MarkPlace {
@@ -69,19 +70,45 @@ export function withChange(
 ): OutboxEntry | null {
   const entry = present ?? newEntry(change, place, nowMs);
   const wish = wishOf(entry, change);
+  const base = baseUnder(entry, change);
   const state = entry.state === 'refused' ? 'waiting' : entry.state;
-  const next: OutboxEntry = { ...entry, wish, state, sentence: state === 'waiting' ? '' : entry.sentence };
+  const sentence = state === 'waiting' ? '' : entry.sentence;
+  const next: OutboxEntry = { ...entry, base, wish, state, sentence };
   return isDone(next) ? null : next;
 }
 
-function newEntry({ id, stored }: MarkChange, place: MarkPlace, nowMs: number): OutboxEntry {
-  const facts = { sent: [], state: 'waiting', sentence: '', theirs: null } as const;
-  return { ...facts, sent: [], id, place, base: stored, wish: stored?.mark ?? null, sinceMs: nowMs };
+/**
+ * Another window, or an answer, may have been a moment faster than this change: a mark that was shown but is neither kept nor
+ * known to be stored has just been stored; one that was shown as removed has just been removed. Both are asked for.
+ */
+function newEntry({ id, from, stored }: MarkChange, place: MarkPlace, nowMs: number): OutboxEntry {
+  const facts = { id, place, base: stored, sinceMs: nowMs, sentence: '', theirs: null };
+  const sent = stored ? (from ? [] : [null]) : from ? [from] : [];
+  return { ...facts, sent, state: 'waiting', wish: stored?.mark ?? from };
 }
 
 function wishOf({ wish }: OutboxEntry, { from, to }: MarkChange): MarkFields | null {
   if (!to || !from || !wish) return to;
   return { ...wish, ...changedFields({ ...from }, { ...to }) };
+}
+
+const NO_REVISION = 0;
+
+/**
+ * A field that the server has got from elsewhere a moment ago, and that is changed now by somebody who did not see it yet, is
+ * said to be changed from what was seen, under a revision that the server never has: so it asks which of the two counts.
+ */
+function baseUnder({ base, wish }: OutboxEntry, { from, to }: MarkChange): StoredMark | null {
+  if (!base || !wish || !from || !to) return base;
+  const server: Fields = { ...base.mark };
+  const wanted: Fields = { ...wish };
+  const seen: Fields = { ...from };
+  const unseen = Object.keys(changedFields(seen, { ...to })).filter(
+    (name) => isSameValue(wanted[name], server[name]) && !isSameValue(seen[name], server[name]),
+  );
+  if (unseen.length === 0) return base;
+  const mark = { ...base.mark, ...Object.fromEntries(unseen.map((name) => [name, seen[name]])) };
+  return { revision: NO_REVISION, mark };
 }
 
 /** Nothing was sent that could have been stored, and the server has what is wanted. */

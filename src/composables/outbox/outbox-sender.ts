@@ -104,7 +104,7 @@ export function createSender(parts: SenderParts) {
     const { request, entry } = await takeRequest(id);
     if (!request || !entry) return true;
     const answer = await send(request, entry.place);
-    if (answer.kind === 'signed-out') setHalt('signed-out');
+    if (answer.kind === 'signed-out') pause('signed-out', null);
     else if (answer.kind !== 'later') await settle(id, request, answer);
     else if (answer.why !== 'failing') pause(answer.why, answer.retryAfterS);
     else return false;
@@ -134,7 +134,8 @@ export function createSender(parts: SenderParts) {
     onEntry(id, entry, known.outcome.event);
   }
 
-  function pause(why: Exclude<Halt, 'none' | 'signed-out'>, retryAfterS: number | null): void {
+  /** Also where nobody is signed in: somebody may have signed in again in another window. */
+  function pause(why: Exclude<Halt, 'none'>, retryAfterS: number | null): void {
     setHalt(why);
     stopWaiting?.();
     stopWaiting = wait(delayMs(failures, retryAfterS, random()), retry);

@@ -1,8 +1,8 @@
 import type { RecordingEvent } from '@shared/contract/events.ts';
 import { withChoice } from '@/composables/outbox/outbox-answers.ts';
 import type { Outcome } from '@/composables/outbox/outbox-answers.ts';
-import { withChange } from '@/composables/outbox/outbox-entry.ts';
-import type { MarkChange, MarkPlace, OutboxEntry } from '@/composables/outbox/outbox-entry.ts';
+import { toStored, withChange } from '@/composables/outbox/outbox-entry.ts';
+import type { MarkChange, MarkPlace, OutboxEntry, StoredMark } from '@/composables/outbox/outbox-entry.ts';
 import { createSender } from '@/composables/outbox/outbox-sender.ts';
 import type { Halt, SenderParts } from '@/composables/outbox/outbox-sender.ts';
 import type { TabChannel } from '@/composables/outbox/tab-channel.ts';
@@ -33,6 +33,9 @@ export function createOutbox(parts: OutboxParts) {
   const { personId, store, channel, newId, nowMs, onTold, onChange } = parts;
   const entries = new Map<string, OutboxEntry>();
   const writing = new Map<string, number>();
+  /** Ids of removed marks that came back under a new one. */
+  const becameIds = new Map<string, string>();
+  const latest = new Map<string, StoredMark>();
   let halt: Halt = 'none';
   let isStopped = false;
   const sender = createSender({ ...parts, onEntry: settle, onHalt: setHalt });
@@ -47,6 +50,8 @@ export function createOutbox(parts: OutboxParts) {
   function take(id: string, entry: OutboxEntry | null, event?: RecordingEvent | null): void {
     if (entry?.id !== id) entries.delete(id);
     if (entry) entries.set(entry.id, entry);
+    if (entry && entry.id !== id) becameIds.set(id, entry.id);
+    if (event) latest.set(event.id, toStored(event));
     onTold({ id, entry, event });
     onChange();
   }
@@ -78,12 +83,24 @@ export function createOutbox(parts: OutboxParts) {
     }
   }
 
+  /** An answer may have come after the change was made on the page, and before it is kept. */
+  function fromLatest(change: MarkChange): MarkChange {
+    const known = latest.get(change.id);
+    const isNewer = known !== undefined && known.revision > (change.stored?.revision ?? 0);
+    return isNewer ? { ...change, stored: known } : change;
+  }
+
   /** Resolves when the change is kept. */
   async function put(change: MarkChange, place: MarkPlace): Promise<void> {
     const { id } = change;
+    const isMoved = () => becameIds.has(id);
     const entry = await whileWriting(id, () =>
-      store.update(id, (present) => withChange(present, change, place, nowMs())),
+      store.update(id, (present) =>
+        present || !isMoved() ? withChange(present, fromLatest(change), place, nowMs()) : null,
+      ),
     );
+    const becameId = becameIds.get(id);
+    if (!entry && becameId !== undefined) return put({ ...change, id: becameId, stored: null }, place);
     settle(id, entry);
     sender.wake();
   }

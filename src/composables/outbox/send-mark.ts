@@ -39,9 +39,10 @@ export function answerOf(error: unknown, kind: SaveRequest['kind']): SendAnswer 
   if (code === 'stale') return staleAnswer(error);
   if (kind === 'remove' && (status === 404 || status === 410)) return { kind: 'removed' };
   if (code === 'gone') return { kind: 'conflict', theirs: null };
-  return { kind: 'refused', sentence: sentenceOf(error) };
+  return { kind: 'refused', sentence: sentenceOf(error), isInvalid: INVALID.includes(status) };
 }
 
+const INVALID = [400, 413, 422];
 const BUSY = [408, 425, 429, 503];
 
 function reasonToWait({ code, status }: ProblemError) {

@@ -239,8 +239,8 @@ describe('the outbox', () => {
 
   it('keeps what the server refuses, with its sentence, until it is changed or given up', async () => {
     await put('m', null, crack);
-    await answer(0, { kind: 'refused', sentence: 'The pass is finished.' });
-    expect(outbox.entries()).toMatchObject([{ state: 'refused', sentence: 'The pass is finished.' }]);
+    await answer(0, { kind: 'refused', sentence: 'It ends too late.', isInvalid: true });
+    expect(outbox.entries()).toMatchObject([{ state: 'refused', sentence: 'It ends too late.' }]);
     await put('m', crack, twin);
     expect(request(1)).toMatchObject({ kind: 'create', mark: twin });
     await answer(1, { kind: 'refused', sentence: 'The pass is finished.' });
@@ -251,7 +251,7 @@ describe('the outbox', () => {
   it('takes up what an earlier page could not store, and sends nothing of anybody else', async () => {
     await put('m', null, crack);
     await answer(0, { kind: 'signed-out' });
-    expect(outbox.halt()).toBe('signed-out');
+    expect([outbox.halt(), waits.length]).toEqual(['signed-out', 1]);
     outbox.stop();
     sent = [];
     outbox = open('bob');
