@@ -14,6 +14,11 @@ import { sendMark } from '@/composables/outbox/send-mark.ts';
 import { createTabChannel } from '@/composables/outbox/tab-channel.ts';
 import { useSessionStore } from '@/stores/session.ts';
 
+/** Nothing of what the page watches can be kept by the browser. */
+function plain(change: MarkChange): MarkChange {
+  return JSON.parse(JSON.stringify(change)) as MarkChange;
+}
+
 function waitFor(delayMs: number, run: () => void): () => void {
   const timer = setTimeout(run, delayMs);
   return () => clearTimeout(timer);
@@ -110,7 +115,7 @@ export const useOutboxStore = defineStore('outbox', () => {
     put: async (change: MarkChange, place: MarkPlace) => {
       const own = outbox && session.user?.id === place.personId ? outbox : begin(place.personId);
       if (own !== outbox) own.stop();
-      await own.put(change, place);
+      await own.put(plain(change), place);
     },
     decide: async (id: string, choice: 'mine' | 'theirs') => outbox?.decide(id, choice),
     retry: () => outbox?.retry(),
