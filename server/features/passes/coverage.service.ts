@@ -11,6 +11,7 @@ import {
 import { partOfPass } from '../../../shared/domain/pass-windows.ts';
 import { intersectSpans } from '../../../shared/domain/span-set.ts';
 import type { Actor } from '../../../shared/policy/actor.ts';
+import { withheldOf } from '../../authorize/withheld.ts';
 import type { Reader, Tx } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
@@ -65,10 +66,10 @@ export function createCoverageService({ db, clock, ids }: Parts) {
     }
   }
 
-  /** For the labeler of the pass, and for curators once it is finished or while it is open; the person marks, not the machine. */
+  /** For the labeler of the pass, and for curators, unless they mark the recording blind themselves. */
   function get(actor: Actor, passId: string): Coverage {
     const view = selectPassWithContext(db, passId);
-    if (!view || !mayRead(actor, view)) throw notFound('This pass');
+    if (!view || !mayRead(db, actor, view)) throw notFound('This pass');
     const rows = selectCoverage(db, passId);
     const extent = extentOf(view);
     return {
@@ -81,9 +82,11 @@ export function createCoverageService({ db, clock, ids }: Parts) {
   return { add, get };
 }
 
-function mayRead(actor: Actor, { pass, sharing }: PassWithContext): boolean {
+function mayRead(db: Reader, actor: Actor, { pass, sharing }: PassWithContext): boolean {
+  if (sharing !== 'shared') return false;
   const isOwn = pass.labelerId === actor.id && actor.roles.includes('labeler') && pass.state !== 'cancelled';
-  return sharing === 'shared' && (isOwn || actor.roles.includes('curator'));
+  if (isOwn) return true;
+  return actor.roles.includes('curator') && !withheldOf(db, actor, pass.recordingId).blind;
 }
 
 export function extentOf({ pass, frames, channels }: PassWithContext): PassExtent {
