@@ -32,7 +32,20 @@ export interface CoverageOptions {
   plotWidthPx: Ref<number>;
   /** Whether everything of the part shown has been drawn. */
   isDrawn: () => boolean;
-  listening: { isPlaying: Ref<boolean>; playheadSample: Ref<number | null>; slow: Ref<number> };
+  listening: Listening;
+}
+
+interface Listening {
+  isPlaying: Readonly<Ref<boolean>>;
+  playheadSample: Readonly<Ref<number | null>>;
+  slow: Readonly<Ref<number>>;
+  /** Tells each stretch that was played; without it the playhead is followed. */
+  onHeard?: (listener: (heard: HeardSpan) => void) => () => void;
+}
+
+interface HeardSpan extends SampleSpan {
+  channel: number;
+  aids: { slow: number };
 }
 
 export type BenchCoverage = ReturnType<typeof useCoverage>;
@@ -144,10 +157,12 @@ export function useCoverage(options: CoverageOptions) {
       // Without it the ribbon begins empty; what is gathered from here on is stored all the same.
       .catch(() => undefined)
       .finally(() => (isLoaded.value = true));
-    useIntervalFn(() => {
-      look(performance.now());
-      hear();
-    }, LOOK_EVERY_MS);
+    useIntervalFn(() => look(performance.now()), LOOK_EVERY_MS);
+    const stopHearing = listening.onHeard?.((span) =>
+      note('heard', span, { detail: span.aids.slow, in: [span.channel] }),
+    );
+    if (stopHearing) tryOnScopeDispose(stopHearing);
+    else useIntervalFn(hear, LOOK_EVERY_MS);
     useIntervalFn(() => void outbox.flush(), SEND_EVERY_MS);
     useEventListener(window, 'online', () => void outbox.flush());
     tryOnScopeDispose(() => void outbox.flush());
