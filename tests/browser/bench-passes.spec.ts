@@ -74,8 +74,8 @@ describe('a pass of windows', () => {
     await dialog.getByLabel('Length of a window').fill('1');
     await dialog.getByLabel('How much').selectOption({ label: 'a number of windows' });
     await dialog.getByLabel('Windows', { exact: true }).fill('3');
-    await dialog.getByText(/^3 windows of 1 s, \d+ % of the recording/).waitFor();
-    await dialog.getByText(/Likely to take about 1 min/).waitFor();
+    await dialog.getByText(/^3 windows of 1\ss, \d+ % of the recording/).waitFor();
+    await dialog.getByText(/Likely to take about \d+ min/).waitFor();
     await checkAxe(page);
     await takeScreenshot(page, 'pass-form');
     await dialog.getByRole('button', { name: 'Assign' }).click();
@@ -120,8 +120,7 @@ describe('a pass of windows', () => {
     expect(await itemsOf(page, `/api/recordings/${pass.recordingId}/events`)).toHaveLength(1);
   });
 
-  test('is finished only with a reason while something was not seen', async ({ page, guard }) => {
-    guard.expectAnswer(422, /finish/);
+  test('is finished only with a reason while something was not seen', async ({ page }) => {
     await signIn(page, 'labeler');
     await openBench(page, await openPass(page, isNew));
     await page.getByRole('button', { name: 'Finish pass' }).click();
@@ -175,7 +174,9 @@ test('a pass of growth phases opens without a picture of the sound, and says why
   await page.goto(`/bench/${pass.recordingId}?pass=${pass.id}`);
   await page.getByText('The sound of this run is kept back.').waitFor();
   await page.waitForLoadState('networkidle');
-  expect(asked.filter((url) => /spectrogram|peaks|listen|audio|candidates/.test(url))).toEqual([]);
+  expect(
+    asked.filter((url) => /recordings.*\/(spectrogram|peaks|listen|audio|candidates)/.test(url)),
+  ).toEqual([]);
   await checkAxe(page);
   await takeScreenshot(page, 'bench-silent');
 });
