@@ -1,5 +1,5 @@
 import { useLocalStorage } from '@vueuse/core';
-import { computed, nextTick, ref, shallowRef, watchEffect } from 'vue';
+import { computed, nextTick, ref, shallowRef, watch, watchEffect } from 'vue';
 import { voiceClassKey } from '@shared/domain/label-scheme.ts';
 import { useMarkLink } from '@/components/bench/useMarkLink.ts';
 import { FIRST_LOOK, nextColours, otherView } from '@/components/bench/look.ts';
@@ -31,12 +31,16 @@ export function useDesk(bench: Bench, round: Round | null = null) {
   watchEffect(() => (bench.circumstances.isNormalised.value = look.value.isOverQuiet));
   const openSheet = ref<DeskSheet | null>(null);
   /** A class that holds the recording, while somebody is asked whether it is meant. */
-  const asked = shallowRef<{ classKey: string; isLessSure: boolean } | null>(null);
+  const asked = shallowRef<{ run: () => void } | null>(null);
   const { announce } = useAnnounce();
 
+  function askFirst(classKey: string, run: () => void): void {
+    if (classKey === voiceClassKey) asked.value = { run };
+    else run();
+  }
+
   function chooseClass(classKey: string, isLessSure: boolean): void {
-    if (classKey === voiceClassKey) asked.value = { classKey, isLessSure };
-    else name(classKey, isLessSure);
+    askFirst(classKey, () => name(classKey, isLessSure));
   }
 
   /** In a round a class answers the candidate, unless somebody has drawn a span that the detector has not. */
@@ -46,14 +50,18 @@ export function useDesk(bench: Bench, round: Round | null = null) {
   }
 
   function confirmAsked(): void {
-    if (asked.value) name(asked.value.classKey, asked.value.isLessSure);
+    asked.value?.run();
     asked.value = null;
   }
 
   function changeSelectedClass(classKey: string): void {
-    if (classKey === voiceClassKey) chooseClass(classKey, false);
-    else bench.hand.setClass(classKey);
+    askFirst(classKey, () => bench.hand.setClass(classKey));
   }
+
+  watch(
+    () => bench.marks.selectedKeys.value.size,
+    (count) => count > 1 && void announce(`${count} marks selected`),
+  );
 
   async function editNote(): Promise<void> {
     await nextTick();

@@ -11,7 +11,6 @@ export function selectRows({ marks, markSample, hand, view }: Bench, page: PageA
     marks.selectMany([...marks.selectedKeys.value, next.key], next.key);
     view.bringIntoView(next);
     view.placeCursor(next.startSample);
-    page.say(`${marks.selectedKeys.value.size} marks selected`);
   };
   return [
     ['select.next', 'Shift+KeyL', 'next mark as well', extend(1), true],

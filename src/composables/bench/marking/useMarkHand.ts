@@ -121,7 +121,6 @@ export function useMarkHand(parts: MarkHandParts) {
     );
     const kept = isAdding ? [...marks.selectedKeys.value] : [];
     marks.selectMany([...new Set([...kept, ...inside.map(({ key }) => key)])]);
-    void announce(`${marks.selectedKeys.value.size} marks selected`);
   }
 
   return {
