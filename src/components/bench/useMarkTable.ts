@@ -27,9 +27,11 @@ export function useMarkTable(marks: () => readonly BenchMark[], columns: () => r
   const sort = ref<MarkSort>({ key: 'onset', isFalling: false });
   const classKey = ref('');
 
-  const filtered = computed(() =>
-    classKey.value === '' ? marks() : marks().filter((mark) => mark.classKey === classKey.value),
-  );
+  /** A class that no mark has any more is no choice: all are shown again. */
+  const filtered = computed(() => {
+    const some = marks().filter((mark) => mark.classKey === classKey.value);
+    return some.length === 0 ? marks() : some;
+  });
   const shown = computed(() => {
     const { key, isFalling } = sort.value;
     const column = columns().find((one) => one.key === key);
