@@ -3,14 +3,16 @@ import { describe, expect, it, vi } from 'vitest';
 import { labelSchemeV1 } from '@shared/domain/label-scheme.ts';
 import { benchHotkeys } from '@/composables/bench/bench-hotkeys.ts';
 import { withKeys } from '@/composables/bench/class-keys.ts';
+import { withRoundKeys } from '@/composables/rounds/round-keys.ts';
+import type { Round } from '@/composables/rounds/useRound.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
 import { comboFault, firstClash, NO_KEY, remapKey, resetKey } from '@/composables/key-remap.ts';
 import { combosInForce } from '@/composables/useHotkeys.ts';
 
-/** A bench of which every part is there and does nothing: enough to ask for its keys. */
-function anyBench(): Bench {
+/** Every part of it is there and does nothing: enough to ask for the keys of a bench or a round. */
+function anything(): unknown {
   const part: object = new Proxy(() => undefined, { get: (_, name) => (name === 'value' ? true : part) });
-  return part as Bench;
+  return part;
 }
 
 const page = {
@@ -25,12 +27,18 @@ const page = {
   chooseClass: vi.fn(),
 };
 const classes = withKeys(labelSchemeV1);
-const hotkeys = benchHotkeys(anyBench(), classes, page);
+const bench = anything() as Bench;
+const hotkeys = benchHotkeys(bench, classes, page);
 
 describe('the keys of the bench', () => {
   it('are each the key of one action or class alone', () => {
     expect(firstClash(hotkeys)?.map(({ id }) => id) ?? null).toBeNull();
     expect(new Set(hotkeys.map(({ id }) => id)).size).toBe(hotkeys.length);
+  });
+
+  it('stay so in a round', () => {
+    const inRound = withRoundKeys(hotkeys, bench, anything() as Round);
+    expect(firstClash(inRound)?.map(({ id }) => id) ?? null).toBeNull();
   });
 
   it('have a name and a place in the sheet, and every class has one', () => {
