@@ -13,6 +13,7 @@ import { growth } from './rows/growth.ts';
 import { marking } from './rows/marking.ts';
 import { memory } from './rows/memory.ts';
 import { meyda } from './rows/meyda.ts';
+import { picture } from './rows/picture.ts';
 import { server } from './rows/server.ts';
 import { shapes } from './rows/shapes.ts';
 import { sparse } from './rows/sparse.ts';
@@ -32,6 +33,7 @@ export const families: readonly RowFamily[] = [
   database,
   candidates,
   marking,
+  picture,
   decode,
   shapes,
   sparse,

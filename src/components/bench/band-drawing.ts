@@ -39,23 +39,27 @@ export interface PictureScene {
   ) => ((level: number) => ArrayLike<number> | undefined) | undefined;
 }
 
+/** All from the wanted level, coarser ones standing in, or a part of it without any. */
+export type Drawn = 'whole' | 'partly' | 'empty';
+
 /**
  * Every shown channel with its bands, what cannot be seen of them, and their frequency axes.
  *
- * @returns whether all of it is drawn from the wanted level.
+ * @returns what is drawn of it.
  */
-export function drawPicture(context: CanvasRenderingContext2D, scene: PictureScene): boolean {
+export function drawPicture(context: CanvasRenderingContext2D, scene: PictureScene): Drawn {
   const { rows } = scene.places;
-  let isWhole = true;
+  const drawn = new Set<Drawn>();
   for (const row of rows) {
     for (const place of [row.ultrasonic, row.audible]) {
-      isWhole = drawBand(context, { row, place }, scene) && isWhole;
+      drawn.add(drawBand(context, { row, place }, scene));
       drawUnseen(context, place, scene);
       drawAxis(context, place, scene);
     }
     if (rows.length > 1) drawRowName(context, row, scene);
   }
-  return isWhole;
+  if (drawn.has('empty')) return 'empty';
+  return drawn.has('partly') ? 'partly' : 'whole';
 }
 
 function pixelOf(hex: string): number {
@@ -67,13 +71,13 @@ function drawBand(
   context: CanvasRenderingContext2D,
   { row, place }: { row: ChannelRow; place: BandPlace },
   scene: PictureScene,
-): boolean {
+): Drawn {
   const { places, window, colours, pixelRatio } = scene;
   const layout = scene.layout.pictures.find(({ band }) => band === place.band);
   if (!layout) {
     context.fillStyle = colours.tint;
     context.fillRect(places.gutterPx, place.topPx, places.plotWidthPx, place.heightPx);
-    return true;
+    return 'whole';
   }
   const widthPx = Math.round(places.plotWidthPx * pixelRatio);
   const heightPx = Math.round(place.heightPx * pixelRatio);
@@ -88,11 +92,13 @@ function drawBand(
   const findTile = scene.findTile(row.channel, place.band);
   const emptyPixel = pixelOf(colours.tint);
   const image = { ...range, layout, window: shown, widthPx, heightPx, table: tones.table, emptyPixel };
+  let empty = 0;
   for (const part of partsToPaint(kept.whole))
-    composeBand(kept.pixels, level, { ...image, findTile, quietOf }, { ...part, whole: kept.whole });
+    empty += composeBand(kept.pixels, level, { ...image, findTile, quietOf }, { ...part, whole: kept.whole });
   const [left, top] = [places.gutterPx, place.topPx].map((px) => Math.round(px * pixelRatio));
   context.putImageData(kept.image, left ?? 0, top ?? 0);
-  return !kept.whole.includes(0);
+  if (empty > 0) return 'empty';
+  return kept.whole.includes(0) ? 'partly' : 'whole';
 }
 
 function drawAxis(context: CanvasRenderingContext2D, place: BandPlace, scene: PictureScene): void {

@@ -56,13 +56,14 @@ interface Strip {
  *
  * @param pixels `widthPx * heightPx` pixels, row after row, highest frequency first.
  * @param level the finest level to use.
+ * @returns columns of pixels for which no level is here.
  */
 export function composeBand(
   pixels: Uint32Array,
   level: number,
   image: BandImage,
   part: BandPart = { fromPx: 0, endPx: image.widthPx },
-): void {
+): number {
   const { widthPx } = image;
   const { bins } = image.layout;
   const rows = rowBins(image);
@@ -71,11 +72,13 @@ export function composeBand(
   table.set(image.table);
   table[EMPTY_CODE] = image.emptyPixel;
   const codes = new Uint16Array(BIN_STRIDE * (bins + 1));
+  let empty = 0;
   for (let { fromPx } = part; fromPx < part.endPx; fromPx += STRIP_PX) {
     const strip = { fromPx, endPx: Math.min(part.endPx, fromPx + STRIP_PX), bins, codes };
-    gatherStrip(strip, levels, image, part.whole);
+    empty += gatherStrip(strip, levels, image, part.whole);
     paintStrip(pixels, strip, { widthPx, rows, table });
   }
+  return empty;
 }
 
 /** A level with its tiles as they are now, each looked up once. */
@@ -113,16 +116,19 @@ function gatherStrip(
   levels: readonly ComposedLevel[],
   { window, widthPx }: BandImage,
   whole: Uint8Array | undefined,
-): void {
+): number {
   const { startSample, endSample } = window;
   const samplesPerPixel = (endSample - startSample) / widthPx;
   strip.codes.fill(0);
+  let empty = 0;
   for (let x = strip.fromPx; x < strip.endPx; x++) {
     const fromSample = startSample + x * samplesPerPixel;
     const place = placeOf(levels, fromSample, fromSample + samplesPerPixel);
     gatherPixel(strip, x - strip.fromPx, place);
     if (whole) whole[x] = place && place.level === levels[0] ? 1 : 0;
+    if (!place) empty++;
   }
+  return empty;
 }
 
 /** The columns of a level under one column of pixels. */

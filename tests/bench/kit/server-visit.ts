@@ -2,6 +2,7 @@ import type { ChildProcess } from 'node:child_process';
 import { once } from 'node:events';
 import { createReadStream, readFileSync, statSync } from 'node:fs';
 import { basename } from 'node:path';
+import { setTimeout as wait } from 'node:timers/promises';
 import { z } from 'zod';
 import { findFreePort } from '../../support/browser/demo-server.ts';
 import { startProgram } from './programs.ts';
@@ -75,6 +76,16 @@ export class ServerVisit {
     await this.#sendBytes(id, path, sizeBytes);
     const answer = await this.send('POST', `/api/uploads/${id}/complete`, {});
     return z.object({ recording: answerWithId }).parse(await answer.json()).recording.id;
+  }
+
+  async untilMeasured(id: string, limitMs: number): Promise<void> {
+    const startedMs = performance.now();
+    while (performance.now() - startedMs < limitMs) {
+      const answer: unknown = await (await this.send('GET', `/api/recordings/${id}`)).json();
+      if (z.object({ processing: z.string() }).parse(answer).processing === 'measured') return;
+      await wait(500);
+    }
+    throw new Error('The recording was not measured in time.');
   }
 
   async end(): Promise<void> {

@@ -1,6 +1,7 @@
 import type { Page } from 'playwright-core';
 import { launchChromium } from '../../support/browser/chromium.ts';
 import { MissingHereError } from './bench.ts';
+import { framesWhile } from './frames.ts';
 import type { ServerVisit } from './server-visit.ts';
 
 export interface TableVisit {
@@ -19,22 +20,6 @@ const PRESSES = 60;
 const SETTLE_MS = 1500;
 
 // Text, since all of it is known in the page alone.
-const watchFrames = `(() => {
-  const frames = [];
-  let last = performance.now();
-  let isOver = false;
-  const step = (now) => {
-    frames.push(now - last);
-    last = now;
-    if (!isOver) requestAnimationFrame(step);
-  };
-  requestAnimationFrame(step);
-  globalThis.endFrames = () => {
-    isOver = true;
-    return frames.slice(2);
-  };
-})()`;
-
 /** From the start of the request until the first row stands in the page; the page is loaded already. */
 const watchFirstRows = `(() => {
   globalThis.firstRows = new Promise((resolve) => {
@@ -73,12 +58,6 @@ export async function visitTable(visit: ServerVisit, path: string, times: number
   } finally {
     await browser.close();
   }
-}
-
-async function framesWhile(page: Page, work: () => Promise<void>): Promise<number[]> {
-  await page.evaluate(watchFrames);
-  await work();
-  return page.evaluate<number[]>('endFrames()');
 }
 
 async function turnWheel(page: Page, pixels: number): Promise<void> {

@@ -1,6 +1,5 @@
 import { mkdirSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
-import { setTimeout as wait } from 'node:timers/promises';
 import { z } from 'zod';
 import { seedManyCandidates } from '../../support/browser/many-candidates.ts';
 import type { Bench, BenchRow, RowFamily } from '../kit/bench.ts';
@@ -70,7 +69,7 @@ async function tableRows(bench: Bench): Promise<BenchRow[]> {
   const visit = await ServerVisit.begin(dataDir);
   try {
     const id = await visit.bringIn(ultrasonicRecording(bench, 0.25));
-    await untilMeasured(visit, id);
+    await visit.untilMeasured(id, MEASURE_MS);
     seedManyCandidates(dataDir, id, MANY);
     const seen = await visitTable(visit, `/recordings/${id}`, bench.pairs);
     const firstRows = spreadOf(seen.firstRowsMs);
@@ -101,14 +100,4 @@ function frameRow(what: string, framesMs: number[]): BenchRow {
     must: `${MOST_FRAME_MS} ms`,
     holds: median < MOST_FRAME_MS,
   };
-}
-
-async function untilMeasured(visit: ServerVisit, id: string): Promise<void> {
-  const startedMs = performance.now();
-  while (performance.now() - startedMs < MEASURE_MS) {
-    const answer: unknown = await (await visit.send('GET', `/api/recordings/${id}`)).json();
-    if (z.object({ processing: z.string() }).parse(answer).processing === 'measured') return;
-    await wait(500);
-  }
-  throw new Error('The recording was not measured in time.');
 }
