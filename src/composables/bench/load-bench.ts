@@ -39,10 +39,10 @@ export async function loadBench(
   ]);
   const pass = choosePass(passes.items, wantedPassId);
   if (recording.processing !== 'measured' || recording.isSoundWithheld) return { recording, pass };
-  const [layout, events] = await Promise.all([
+  const [layout, events, scheme] = await Promise.all([
     getTileLayout(recordingId, signal),
     listEvents(recordingId, signal),
+    getScheme(pass?.schemeVersion ?? 'newest', signal),
   ]);
-  const scheme = await getScheme(pass?.schemeVersion ?? 'newest', signal);
   return { recording, layout, pass, scheme, events };
 }

@@ -15,6 +15,8 @@ export interface TilePlace {
 
 export interface TilePlan {
   level: number;
+  /** The one tile that holds the whole recording. */
+  root: TilePlace;
   /** Tiles that the window shows, from left to right. */
   shown: TilePlace[];
   /** Fetched after them: what stands in meanwhile, then what the next movement would show. */
@@ -76,13 +78,8 @@ export function planTiles(
   const shown = tilesOfWindow(layout, window, level);
   const root = { level: layout.levels - 1, tile: 0 };
   const parents = level + 1 < layout.levels ? tilesOfWindow(layout, widened(window), level + 1) : [];
-  const all = [
-    root,
-    ...parents,
-    ...neighboursOf(layout, shown, heading),
-    ...childrenOf(layout, window, level),
-  ];
-  return { level, shown, ahead: withoutRepeats(all, shown) };
+  const all = [...parents, ...neighboursOf(layout, shown, heading), ...childrenOf(layout, window, level)];
+  return { level, root, shown, ahead: withoutRepeats(all, [root, ...shown]) };
 }
 
 /** Twice the window: what zooming out by one step shows. */

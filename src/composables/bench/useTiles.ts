@@ -1,4 +1,4 @@
-import { tryOnScopeDispose } from '@vueuse/core';
+import { tryOnScopeDispose, useThrottleFn } from '@vueuse/core';
 import { shallowRef, toValue, watch } from 'vue';
 import type { MaybeRefOrGetter } from 'vue';
 import type { Tile } from '@shared/audio/tile.ts';
@@ -26,6 +26,8 @@ export interface TileTrouble {
   count: number;
   error: unknown;
 }
+
+const BETWEEN_PLANS_MS = 50;
 
 /** Where the window goes, as far as it keeps its length. */
 export function headingOf(now: TimeWindow, before: TimeWindow): Heading {
@@ -58,7 +60,10 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
         ...planTiles(picture, shown, samplesPerPixel, heading),
       })),
     );
+    // One tile for each band is the whole recording: it stands in everywhere until the others are here.
+    const roots = plans.map(({ place, root }) => ({ ...place, ...root }));
     return [
+      ...roots,
       ...plans.flatMap(({ place, shown: tiles }) => tiles.map((tile) => ({ ...place, ...tile }))),
       ...plans.flatMap(({ place, ahead }) => ahead.map((tile) => ({ ...place, ...tile }))),
       ...wantedNext(),
@@ -94,14 +99,18 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
     return store.find({ channel, band, level, tile });
   }
 
-  watch(
-    () => [toValue(window), toValue(channels), toValue(widthPx), next.value] as const,
-    ([now], before) => {
-      store.want(wanted(before?.[0] ? headingOf(now, before[0]) : 0));
-      trouble.value = store.failing();
-    },
-    { immediate: true },
-  );
+  let lastWindow = toValue(window);
+  function wantNow(): void {
+    const now = toValue(window);
+    store.want(wanted(headingOf(now, lastWindow)));
+    lastWindow = now;
+    trouble.value = store.failing();
+  }
+
+  // While the window moves it is enough to ask a few times for each tile's width.
+  const wantSoon = useThrottleFn(wantNow, BETWEEN_PLANS_MS, true, false);
+  wantNow();
+  watch(() => [toValue(window), toValue(channels), toValue(widthPx), next.value] as const, wantSoon);
   tryOnScopeDispose(() => store.close());
 
   return { find, isWhole, arrivals, trouble, next, retry: store.retry };

@@ -5,8 +5,10 @@ import { framesWhile } from './frames.ts';
 import type { ServerVisit } from './server-visit.ts';
 
 export interface PictureVisit {
-  /** From the navigation until both bands are drawn whole; the first one without anything in the browser's cache. */
+  /** From the navigation until no part of the picture is empty; the first one without anything in the browser's cache. */
   firstPictureMs: number[];
+  /** Until both bands are drawn from the wanted level. */
+  wholePictureMs: number[];
   panFramesMs: number[];
   zoomFramesMs: number[];
   /** Frames at which a part of the picture had nothing to show while it was panned and zoomed. */
@@ -22,15 +24,18 @@ const WHEEL_PX = 100;
 const SETTLE_MS = 1500;
 
 // Text, since all of it is known in the page alone.
-/** From the start of the navigation until the picture says that it is drawn whole. */
+/** From the start of the navigation until the picture says what of it is drawn. */
 const watchFirstPicture = `(() => {
-  globalThis.firstPicture = new Promise((resolve) => {
+  const until = (states) => new Promise((resolve) => {
     const look = () => {
-      if (document.querySelector('canvas.picture[data-drawn="whole"]')) resolve(performance.now());
+      const drawn = document.querySelector('canvas.picture')?.dataset.drawn;
+      if (states.includes(drawn)) resolve(performance.now());
       else requestAnimationFrame(look);
     };
     look();
   });
+  globalThis.firstPicture = until(['partly', 'whole']);
+  globalThis.wholePicture = until(['whole']);
   globalThis.emptyFrames = 0;
   const count = () => {
     if (document.querySelector('canvas.picture[data-drawn="empty"]')) globalThis.emptyFrames++;
@@ -51,16 +56,18 @@ export async function visitPicture(visit: ServerVisit, id: string, times: number
     const page = await context.newPage();
     await page.addInitScript(watchFirstPicture);
     const firstPictureMs: number[] = [];
+    const wholePictureMs: number[] = [];
     for (let n = 0; n < times; n++) {
       await page.goto(`${visit.origin}/bench/${id}`);
       firstPictureMs.push(await page.evaluate<number>('firstPicture'));
+      wholePictureMs.push(await page.evaluate<number>('wholePicture'));
       await page.waitForTimeout(SETTLE_MS);
     }
     const panFramesMs = await framesAtTwoSeconds(page, visit, id, () => holdKey(page));
     const panEmpty = await page.evaluate<number>('emptyFrames');
     const zoomFramesMs = await framesAtTwoSeconds(page, visit, id, () => turnWheel(page));
     const zoomEmpty = await page.evaluate<number>('emptyFrames');
-    return { firstPictureMs, panFramesMs, zoomFramesMs, emptyFrames: panEmpty + zoomEmpty };
+    return { firstPictureMs, wholePictureMs, panFramesMs, zoomFramesMs, emptyFrames: panEmpty + zoomEmpty };
   } finally {
     await browser.close();
   }
@@ -74,7 +81,7 @@ async function framesAtTwoSeconds(
   work: () => Promise<void>,
 ): Promise<number[]> {
   await page.goto(`${visit.origin}/bench/${id}?from=3840000&to=4224000`);
-  await page.evaluate('firstPicture');
+  await page.evaluate('wholePicture');
   await page.waitForTimeout(SETTLE_MS);
   await page.evaluate('globalThis.emptyFrames = 0');
   return framesWhile(page, work);

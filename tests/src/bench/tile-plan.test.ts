@@ -99,8 +99,8 @@ describe('tile plan', () => {
     const layout = layoutOf(256 * 64);
     const window = { startSample: 256 * 128 * 10, endSample: 256 * 128 * 11 };
     expect(tilesOfWindow(layout, window, 0)).toEqual([{ level: 0, tile: 10 }]);
+    expect(planTiles(layout, window, 128).root).toEqual({ level: 3, tile: 0 });
     expect(planTiles(layout, window, 128).ahead).toEqual([
-      { level: 3, tile: 0 },
       { level: 1, tile: 2 },
       { level: 0, tile: 11 },
       { level: 0, tile: 9 },
