@@ -45,8 +45,10 @@ export function createTileStore({ load, onChange, capacity = 1000, parallel = 6 
   const failures = new Map<string, Failure>();
   let wanted: TileRequest[] = [];
   let timer: ReturnType<typeof setTimeout> | undefined;
+  let isClosed = false;
 
   function want(requests: readonly TileRequest[]): void {
+    if (isClosed) return;
     wanted = [...requests];
     const keys = new Set(requests.map(keyOf));
     for (const [key, controller] of underway) if (!keys.has(key)) controller.abort();
@@ -116,8 +118,10 @@ export function createTileStore({ load, onChange, capacity = 1000, parallel = 6 
     fill();
   }
 
+  /** Gives up what is under way; nothing is asked for afterwards. */
   function close(): void {
     want([]);
+    isClosed = true;
     clearTimeout(timer);
   }
 

@@ -77,6 +77,8 @@ describe('tile store', () => {
     expect(store.failing()).toEqual({ count: 0, error: null });
     store.close();
     expect(givenUp).toEqual([1, 2, 4]);
+    store.want([place(7)]);
+    expect(asked).not.toContain(7);
   });
 
   it('asks again for what failed after a second, then after two, as long as it is wanted', async () => {
