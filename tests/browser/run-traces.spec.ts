@@ -46,12 +46,12 @@ describe('the traces of a run', () => {
       buffer: readFileSync('fixtures/traces/logger.csv'),
     });
     await dialog.getByText(/501\u00A0rows/).waitFor();
-    expect(await dialog.getByLabel('Column of values').inputValue()).toBe('1');
-    expect(await dialog.getByLabel('Decimal sign').inputValue()).toBe('comma');
-    await dialog.getByLabel('Decimal sign').selectOption('point');
+    expect(await dialog.getByLabel('Column of values', { exact: true }).inputValue()).toBe('1');
+    expect(await dialog.getByLabel('Decimal sign', { exact: true }).inputValue()).toBe('comma');
+    await dialog.getByLabel('Decimal sign', { exact: true }).selectOption('point');
     await dialog.getByText('have decimal commas').waitFor();
     await checkAxe(page);
-    await dialog.getByLabel('Decimal sign').selectOption('comma');
+    await dialog.getByLabel('Decimal sign', { exact: true }).selectOption('comma');
     await dialog.getByText(/501\u00A0rows/).waitFor();
     await dialog.getByLabel('Run time of the first row').fill('-57');
     await takeScreenshot(page, 'run-traces-dialog');
