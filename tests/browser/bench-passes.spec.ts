@@ -22,15 +22,17 @@ async function itemsOf<Item>(page: Page, address: string): Promise<Item[]> {
   return ((await answer.json()) as { items: Item[] }).items;
 }
 
-/** A shared recording on which nobody has a pass. */
+/** A shared recording of one channel on which nobody has a pass. */
 async function findFree(page: Page): Promise<string> {
-  const recordings = await itemsOf<{ id: string; durationS: number }>(
+  const recordings = await itemsOf<{ id: string; durationS: number; channels: number }>(
     page,
     '/api/recordings?sharing=shared&processing=measured&limit=100',
   );
   const passes = await itemsOf<{ recordingId: string }>(page, '/api/passes?limit=200');
   const taken = new Set(passes.map(({ recordingId }) => recordingId));
-  const free = recordings.find(({ id, durationS }) => !taken.has(id) && durationS >= 12);
+  const free = recordings.find(
+    ({ id, durationS, channels }) => !taken.has(id) && durationS >= 12 && channels === 1,
+  );
   if (!free) throw new Error('Every recording of the demo has a pass.');
   return free.id;
 }
