@@ -1,3 +1,4 @@
+import { coverageSpanSchema } from '@shared/contract/coverage.ts';
 import type { CoverageSpan } from '@shared/contract/coverage.ts';
 import { toSpanSet } from '@shared/domain/span-set.ts';
 
@@ -58,10 +59,11 @@ export function createCoverageOutbox({ send, read, write }: CoverageOutboxOption
   return { add, all, flush };
 }
 
+const keptSchema = coverageSpanSchema.array();
+
 function restore(text: string | null): CoverageSpan[] {
   try {
-    const kept: unknown = JSON.parse(text ?? '[]');
-    return Array.isArray(kept) ? (kept as CoverageSpan[]) : [];
+    return keptSchema.parse(JSON.parse(text ?? '[]'));
   } catch {
     return [];
   }
