@@ -14,6 +14,7 @@ import { marking } from './rows/marking.ts';
 import { memory } from './rows/memory.ts';
 import { meyda } from './rows/meyda.ts';
 import { picture } from './rows/picture.ts';
+import { rounds } from './rows/rounds.ts';
 import { server } from './rows/server.ts';
 import { shapes } from './rows/shapes.ts';
 import { sparse } from './rows/sparse.ts';
@@ -37,6 +38,7 @@ export const families: readonly RowFamily[] = [
   decode,
   shapes,
   sparse,
+  rounds,
   server,
   detector,
   bandwidth,
