@@ -177,7 +177,8 @@ export function createAnswerQueue(parts: AnswerQueueParts) {
     /** Takes up again what an earlier page could not store. */
     restore(kept: readonly AnswerPacket[]): void {
       for (const packet of kept)
-        packets.set(packet.id, { ...packet, state: 'waiting', sentence: '', theirs: null });
+        if (!packets.has(packet.id))
+          packets.set(packet.id, { ...packet, state: 'waiting', sentence: '', theirs: null });
       next();
     },
     stop: () => stopWaiting?.(),
