@@ -15,6 +15,7 @@ import { uploadsRoutes } from './features/uploads/uploads.routes.ts';
 import { schemesRoutes } from './features/schemes/schemes.routes.ts';
 import { phasesRoutes } from './features/phases/phases.routes.ts';
 import { timelineRoutes } from './features/timeline/timeline.routes.ts';
+import { videosRoutes } from './features/videos/videos.routes.ts';
 import { passesRoutes } from './features/passes/passes.routes.ts';
 import { roundsRoutes } from './features/rounds/rounds.routes.ts';
 import { eventsRoutes } from './features/events/events.routes.ts';
@@ -45,6 +46,7 @@ export function allRoutes(deps: Deps): Route[] {
     ...passesRoutes(deps),
     ...phasesRoutes(deps),
     ...timelineRoutes(deps),
+    ...videosRoutes(deps),
     ...eventsRoutes(deps),
     ...roundsRoutes(deps),
     ...tracesRoutes(deps),

@@ -1,6 +1,7 @@
 import type { AuditService } from './features/audit/audit.service.ts';
 import { createPhasesService, type PhasesService } from './features/phases/phases.service.ts';
 import { createTimelineService, type TimelineService } from './features/timeline/timeline.service.ts';
+import { createVideosService, type VideosService } from './features/videos/videos.service.ts';
 import type { Ground } from './ground.ts';
 import type { MarkingServices } from './marking-services.ts';
 import type { RecordingServices } from './recording-services.ts';
@@ -9,6 +10,7 @@ import type { RecordingServices } from './recording-services.ts';
 export interface BesideServices {
   phases: PhasesService;
   timeline: TimelineService;
+  videos: VideosService;
 }
 
 export function createBesideServices(
@@ -19,9 +21,11 @@ export function createBesideServices(
     recordings,
     passes,
     events,
-  }: Pick<RecordingServices & MarkingServices, 'runs' | 'recordings' | 'passes' | 'events'>,
+    uploadFolder,
+  }: Pick<RecordingServices & MarkingServices, 'runs' | 'recordings' | 'passes' | 'events' | 'uploadFolder'>,
 ): BesideServices {
   const phases = createPhasesService({ ...ground, audit, runs, passes });
   const timeline = createTimelineService({ recordings, events, phases });
-  return { phases, timeline };
+  const videos = createVideosService({ ...ground, audit, runs, passes, folder: uploadFolder });
+  return { phases, timeline, videos };
 }

@@ -5,6 +5,7 @@ import { ConfigError, processConfig, type Config } from '../config.ts';
 import { createDeps, type Deps } from '../deps.ts';
 import { createJobRunner } from '../jobs/runner.ts';
 import { openGround } from '../open-ground.ts';
+import { seedFilms } from './demo/seed-films.ts';
 import { seedPhases } from './demo/seed-phases.ts';
 import { seedMarks } from './demo/seed-marks.ts';
 import { renewPasswords, seedPeople } from './demo/seed-people.ts';
@@ -52,6 +53,7 @@ async function fill(deps: Deps, password: string): Promise<void> {
     const people = await seedPeople(deps, password);
     const recordingIds = await seedRecordings(deps, people);
     seedPhases(deps, people, recordingIds);
+    await seedFilms(deps, people, recordingIds);
     await untilIdle(deps);
     await seedTraces(deps, people, recordingIds);
     await seedMarks(deps, people, recordingIds);

@@ -86,11 +86,11 @@ function drawRates(context: CanvasRenderingContext2D, scene: FreezeScene): void 
   context.globalAlpha = 0.42;
   drawColumns(context, scene, scene.rates, toShare);
   context.globalAlpha = 1;
-  // The upper edge in full colour, so that single events stay visible at the foot.
+  // The upper edge in full colour, so that a single event stays visible at the foot.
   const { widthPx, heightPx, rates } = scene;
   const step = widthPx / rates.length;
   rates.forEach((rate, column) => {
-    if (!rate) return;
+    if (!rate || toShare(rate) < 0.01) return;
     const top = heightPx - Math.max(1.5, toShare(rate) * heightPx);
     context.fillRect(column * step, top, Math.max(1, step), 1.5);
   });

@@ -33,7 +33,7 @@ export function benchHotkeys(bench: Bench, choices: readonly ClassChoice[], page
     ...toHotkeys('Zoom and move', viewRows(bench)),
     ...toHotkeys('Picture', pictureRows(bench, page)),
     ...toHotkeys('Listen', listenRows(bench)),
-    ...toHotkeys('Growth phases', phaseRows(bench)),
+    ...toHotkeys('Growth phases and film', phaseRows(bench)),
     ...toHotkeys('Page', [['keys', 'sign:?', 'this sheet of keys', page.showKeys]]),
   ];
 }

@@ -1,3 +1,4 @@
+import { useLocalStorage } from '@vueuse/core';
 import { computed } from 'vue';
 import type { Ref } from 'vue';
 import { useRouter } from 'vue-router';
@@ -15,7 +16,8 @@ import { stripSpan } from '@/composables/runs/run-axis.ts';
 import { usePhaseMarking } from '@/composables/runs/usePhaseMarking.ts';
 import { useRunPhases } from '@/composables/runs/useRunPhases.ts';
 import { useRunTimeline } from '@/composables/runs/useRunTimeline.ts';
-import type { StripTrace } from '@/composables/runs/strip-trace.ts';
+import { useRunVideos } from '@/composables/runs/useRunVideos.ts';
+import { useStripTraces } from '@/composables/runs/useStripTraces.ts';
 
 export interface BesideOptions {
   recording: Recording;
@@ -24,6 +26,8 @@ export interface BesideOptions {
   markSample: Readonly<Ref<number>>;
 }
 
+/** Where the film stands on the bench. */
+export type FilmPlace = 'beside' | 'under' | 'closed';
 export type Beside = ReturnType<typeof useBeside>;
 
 /** What lies beside the sound of the recording at hand, on the clock of its run. */
@@ -32,7 +36,9 @@ export function useBeside({ recording, view, markSample }: BesideOptions) {
   const timeline = useRunTimeline(recording.runId);
   const phases = useRunPhases(recording.runId);
   const marking = usePhaseMarking(phases);
-  const traces = computed<readonly StripTrace[]>(() => []);
+  const { traces, proposals } = useStripTraces(recording.runId);
+  const videos = useRunVideos(recording.runId);
+  const filmPlace = useLocalStorage<FilmPlace>('recalesce.bench.film', 'closed');
 
   const own = computed(() => timeline.recordings.value.find(({ id }) => id === recording.id) ?? null);
   /** Until the server has told the place: as the recording itself declares it. */
@@ -76,6 +82,9 @@ export function useBeside({ recording, view, markSample }: BesideOptions) {
     phases,
     marking,
     traces,
+    proposals,
+    videos,
+    filmPlace,
     laid,
     span,
     window,

@@ -32,6 +32,12 @@ export const basisWords: Readonly<Record<PhaseBasis, string>> = {
   temperature: 'from the temperature',
   inferred: 'inferred from the rest',
 };
+/** For tables. */
+export const basisShort: Readonly<Record<PhaseBasis, string>> = {
+  camera: 'camera',
+  temperature: 'temperature',
+  inferred: 'inferred',
+};
 export const basisOptions = (Object.keys(basisWords) as PhaseBasis[]).map((value) => ({
   value,
   label: basisWords[value],

@@ -89,3 +89,16 @@ export function levelColumns(
   }
   return levels;
 }
+
+/** Means over `radius` columns to either side, twice, so that a rate reads as an area; what is not known stays so. */
+export function smoothColumns(values: readonly (number | null)[], radius: number): (number | null)[] {
+  return meanColumns(meanColumns(values, radius), radius);
+}
+
+function meanColumns(values: readonly (number | null)[], radius: number): (number | null)[] {
+  return values.map((value, at) => {
+    if (value === null) return null;
+    const near = values.slice(Math.max(0, at - radius), at + radius + 1).filter((one) => one !== null);
+    return near.reduce((sum, one) => sum + one, 0) / near.length;
+  });
+}

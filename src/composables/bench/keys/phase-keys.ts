@@ -3,7 +3,10 @@ import type { Bench } from '@/composables/bench/useBench.ts';
 
 /** Growth phases on the axis of the run; none where the server keeps them back, or nothing may be added. */
 export function phaseRows({ beside }: Pick<Bench, 'beside'>): Row[] {
-  const { marking, phases, cursorNs } = beside;
+  const { marking, phases, cursorNs, videos, filmPlace } = beside;
+  const toggleFilm = () => {
+    if (videos.items.value.length > 0) filmPlace.value = filmPlace.value === 'closed' ? 'beside' : 'closed';
+  };
   const whenAllowed = (run: () => void) => () => {
     if (phases.canAdd.value) run();
   };
@@ -22,5 +25,6 @@ export function phaseRows({ beside }: Pick<Bench, 'beside'>): Row[] {
     ],
     ['phase.next', 'Shift+BracketRight', 'next phase', () => marking.step(1)],
     ['phase.previous', 'Shift+BracketLeft', 'previous phase', () => marking.step(-1)],
+    ['film', 'Backslash', 'show the film, or close it', toggleFilm],
   ];
 }
