@@ -6,7 +6,7 @@ import { mostVideoBytes } from '../../../shared/contract/videos.ts';
 import { ProblemError } from '../../http/problem.ts';
 
 /** How many bytes will come; a film is not taken without knowing. */
-export function announcedFilmBytes(request: IncomingMessage): number {
+export function announcedFilmBytes(request: Pick<IncomingMessage, 'headers'>): number {
   const announced = Number(request.headers['content-length'] ?? Number.NaN);
   if (!Number.isSafeInteger(announced) || announced <= 0)
     throw new ProblemError('malformed-request', 'Say in Content-Length how large the film is.');

@@ -4,6 +4,7 @@ import path from 'node:path';
 import { BufferSource, Input, MP4 } from 'mediabunny';
 import { afterAll, beforeAll, beforeEach, describe, expect, test } from 'vitest';
 import { auditLog } from '../../../../server/db/schema/audit-log.ts';
+import { announcedFilmBytes } from '../../../../server/features/videos/receive-film.ts';
 import { barsBytes, filmBytes } from '../../../support/film-fixtures.ts';
 import { seedPhasePass, seedRunOfRecording } from '../../../support/server/seed-phases.ts';
 import { seedPass } from '../../../support/server/seed-recordings.ts';
@@ -127,15 +128,11 @@ describe('bringing in a film', () => {
     ]);
   });
 
-  test('has to say how large it is before its bytes are read', async () => {
-    const answer = await app
-      .as('contributor')
-      .post(`/api/runs/${runId}/videos`)
-      .query({ fileName: 'x.mp4', peopleAgreed: 'true' })
-      .set('Transfer-Encoding', 'chunked')
-      .send(Buffer.from('x'));
-    expect(answer.status).toBe(400);
-    expect(answer.body.detail).toContain('Content-Length');
+  test('has to say how large it is, and no film is larger than 4 GB', () => {
+    const announce = (headers: Record<string, string>) => () => announcedFilmBytes({ headers });
+    expect(announce({})).toThrow(/Content-Length/);
+    expect(announce({ 'content-length': '4000000001' })).toThrow(/4 GB at most/);
+    expect(announce({ 'content-length': '4000000000' })()).toBe(4_000_000_000);
   });
 });
 
