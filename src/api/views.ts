@@ -1,10 +1,12 @@
 import { decodeTile } from '@shared/audio/tile.ts';
 import type { Tile } from '@shared/audio/tile.ts';
+import { quietSpanSchema } from '@shared/contract/listening.ts';
+import type { GateSource, QuietSpan } from '@shared/contract/listening.ts';
 import { regionReportSchema } from '@shared/contract/region.ts';
 import type { RegionReport } from '@shared/contract/region.ts';
 import { peaksSchema, quietLevelsSchema, tileLayoutSchema } from '@shared/contract/views.ts';
 import type { Peaks, PictureBand, QuietLevels, TileLayout } from '@shared/contract/views.ts';
-import { apiAddress, apiGet, apiGetBytes } from '@/api/client.ts';
+import { apiGet, apiGetBytes } from '@/api/client.ts';
 
 function viewPath(recordingId: string, view: string): string {
   return `/api/recordings/${recordingId}/${view}`;
@@ -74,16 +76,30 @@ export function audioAddress(recordingId: string): string {
   return viewPath(recordingId, 'audio');
 }
 
-export interface ListenSpan {
+export interface RenditionQuery {
   channel: number;
   startSample: number;
   /** Exclusive. */
   endSample: number;
   /** How many times slower; 1 is as recorded. */
   slow: number;
+  /** What is heard as 0 Hz. */
+  shiftHz?: number;
+  gate?: GateSource;
+  gateStartSample?: number;
+  gateEndSample?: number;
 }
 
-/** A rendition for the ear: 48 kHz, limited and faded, made on demand. */
-export function listenAddress(recordingId: string, span: ListenSpan): string {
-  return apiAddress(viewPath(recordingId, 'listen'), { ...span });
+/** A WAV file for the ear: 48 kHz, limited and faded, made on demand. */
+export async function getRendition(
+  recordingId: string,
+  query: RenditionQuery,
+  signal: AbortSignal,
+): Promise<ArrayBuffer> {
+  return apiGetBytes(viewPath(recordingId, 'listen'), { query: { ...query }, signal });
+}
+
+/** The machine's choice of a span that shows the noise of a channel. */
+export async function getQuietSpan(recordingId: string, channel: number): Promise<QuietSpan> {
+  return apiGet(viewPath(recordingId, 'quiet-span'), quietSpanSchema, { query: { channel } });
 }

@@ -34,7 +34,8 @@ export async function renderShifted(
   const length = outputLength(span);
   const z: ComplexSamples = { re: new Float32Array(length), im: new Float32Array(length) };
   await eachBlock({ source, span, plan, length }, ({ input, inputStart, from, to }) => {
-    const mixed = mixDown(input, inputStart, carrierCycles);
+    // By the recording's own samples, so that renditions of neighbouring spans join.
+    const mixed = mixDown(input, span.startSample + inputStart, carrierCycles);
     for (const part of ['re', 'im'] as const) {
       const output = z[part].subarray(from, to);
       resample(plan, { input: mixed[part], inputStart, outputStart: from, output });

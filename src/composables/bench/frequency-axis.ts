@@ -17,6 +17,12 @@ export function yOfFrequency(hz: number, place: BandPlace): number {
   return place.topPx + (1 - Math.min(1, Math.max(0, share))) * place.heightPx;
 }
 
+/** The height of a frequency in whichever band shows it, those above the other one first. */
+export function yAcrossBands(hz: number, places: readonly BandPlace[]): number {
+  const place = places.find(({ lowHz }) => hz >= lowHz) ?? places.at(-1);
+  return place ? yOfFrequency(hz, place) : 0;
+}
+
 /** The frequency at a height of the picture; between the bands it is the hearing line. */
 export function frequencyAtY(y: number, places: readonly BandPlace[]): number {
   const place = places.find(({ topPx, heightPx }) => y >= topPx && y <= topPx + heightPx);

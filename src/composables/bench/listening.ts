@@ -1,22 +1,36 @@
 import type { AudioContainer } from '@shared/audio/audio-format.ts';
-import { longestListenS } from '@shared/contract/listening.ts';
+import { highestCarrierShare, longestListenS } from '@shared/contract/listening.ts';
+import type { ListeningAids } from '@shared/contract/mark-circumstances.ts';
+import type { RenditionQuery } from '@/api/views.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
-import { HEARING_LINE_HZ } from '@/composables/bench/hearing-line.ts';
-import { formatDuration, formatFrequency } from '@/composables/useFormat.ts';
 
-/** How many times slower; 1 is as recorded. */
+/** How many times slower; 1 is at the speed of life. */
 export const SLOW_FACTORS = [1, 2, 5, 10, 20, 50, 100] as const;
 export type SlowFactor = (typeof SLOW_FACTORS)[number];
 
-/** The loudest a listener can choose: a full-scale click then still keeps 6 dB to full scale. */
-export const HIGHEST_LEVEL_DB = -6;
 export const LOWEST_LEVEL_DB = -48;
+export const HIGHEST_LEVEL_DB = 12;
 export const FIRST_LEVEL_DB = -18;
+/** Where no limiter stands behind it. */
+export const HIGHEST_UNLIMITED_DB = -24;
 
-/** Browsers play WAV up to this rate themselves; above it, and slowed, the server makes a rendition. */
+export const LOWEST_CARRIER_HZ = 1000;
+const USUAL_CARRIER_HZ = 40_000;
+/** A carrier stands so far below what is to be heard. */
+const BELOW_PEAK_HZ = 3000;
+
+/** What a rendition of 48 kHz holds whole. */
+const HEARD_BAND_HZ = 18_000;
+
+/** Browsers play WAV up to this rate themselves; above it, and changed in any way, the server makes a rendition. */
 const HIGHEST_PLAIN_RATE_HZ = 192_000;
-/** What the server reads for one rendition at most. */
-const MOST_INPUT_SAMPLES = 24_000_000;
+/** A piece that is made at once: long enough to be ahead, short enough to begin soon. */
+const PIECE_S = 15;
+const PIECE_SAMPLES = 4_000_000;
+/** A loop is one piece; what the server reads for one at most, with many channels in the file. */
+const LOOP_SAMPLES = 8_000_000;
+/** Fades of the renditions, which lie on one another where pieces join. */
+export const JOINT_S = 0.005;
 
 /** Of the files as they came in, browsers play these; not all of their forms. */
 export function isPlayedByBrowsers(container: AudioContainer): boolean {
@@ -28,56 +42,81 @@ export interface PlayPlan {
   /** What is heard, in samples of the recording; the end is exclusive. */
   startSample: number;
   endSample: number;
-  slow: SlowFactor;
+  aids: ListeningAids;
   /** Place of `startSample` in what is played. */
   offsetS: number;
   /** Samples of the recording that pass in one second of listening. */
   samplesPerSecond: number;
 }
 
-export function planPlay(
-  span: TimeWindow,
-  slow: SlowFactor,
-  recording: { sampleRateHz: number; isOriginalPlayable: boolean },
-): PlayPlan {
-  const { sampleRateHz, isOriginalPlayable } = recording;
+export interface PlayFacts {
+  sampleRateHz: number;
+  isOriginalPlayable: boolean;
+  isLooping: boolean;
+}
+
+/** How a span is played; a long one as far as it is made at once. */
+export function planPlay(span: TimeWindow, aids: ListeningAids, facts: PlayFacts): PlayPlan {
+  const { sampleRateHz, isOriginalPlayable, isLooping } = facts;
   const startSample = Math.max(0, Math.floor(span.startSample));
   const wantedEnd = Math.max(startSample + 1, Math.ceil(span.endSample));
-  const samplesPerSecond = sampleRateHz / slow;
-  if (slow === 1 && isOriginalPlayable && sampleRateHz <= HIGHEST_PLAIN_RATE_HZ) {
+  const samplesPerSecond = sampleRateHz / aids.slow;
+  const isUnchanged = aids.mode === 'as-recorded' && aids.gate === 'off';
+  if (isUnchanged && isOriginalPlayable && !isLooping && sampleRateHz <= HIGHEST_PLAIN_RATE_HZ) {
     const offsetS = startSample / sampleRateHz;
-    return { source: 'original', startSample, endSample: wantedEnd, slow, offsetS, samplesPerSecond };
+    return { source: 'original', startSample, endSample: wantedEnd, aids, offsetS, samplesPerSecond };
   }
-  const mostSamples = Math.min(MOST_INPUT_SAMPLES, Math.floor(longestListenS * samplesPerSecond));
-  const endSample = Math.min(wantedEnd, startSample + mostSamples);
-  return { source: 'rendition', startSample, endSample, slow, offsetS: 0, samplesPerSecond };
+  const mostSamples = isLooping
+    ? Math.min(LOOP_SAMPLES, Math.floor(longestListenS * samplesPerSecond))
+    : Math.min(PIECE_SAMPLES, Math.floor(PIECE_S * samplesPerSecond));
+  const endSample = Math.min(wantedEnd, startSample + Math.max(1, mostSamples));
+  return { source: 'rendition', startSample, endSample, aids, offsetS: 0, samplesPerSecond };
 }
 
-export function sampleHeard(plan: PlayPlan, currentTimeS: number): number {
-  return plan.startSample + (currentTimeS - plan.offsetS) * plan.samplesPerSecond;
+/** Where the piece after this one begins: its fade in lies on the fade out of this one. */
+export function nextPieceStart({ endSample, samplesPerSecond }: PlayPlan): number {
+  return endSample - Math.round(JOINT_S * samplesPerSecond);
 }
 
-export function gainOf(levelDb: number): number {
-  return 10 ** (Math.min(levelDb, HIGHEST_LEVEL_DB) / 20);
+export function renditionQuery(plan: PlayPlan, channel: number, noise: TimeWindow | null): RenditionQuery {
+  const { startSample, endSample, aids } = plan;
+  return {
+    channel,
+    startSample,
+    endSample,
+    slow: aids.slow,
+    ...(aids.carrierHz === null ? {} : { shiftHz: aids.carrierHz }),
+    ...gateQuery(aids, noise),
+  };
 }
 
-/** Says what is heard: "20 times slower: 150 kHz is heard as 7.5 kHz". */
-export function heardWords(slow: SlowFactor, sampleRateHz: number, peakFrequencyHz: number | null): string {
-  if (slow === 1) {
-    return sampleRateHz / 2 > HEARING_LINE_HZ ? 'As recorded: heard up to 20 kHz' : 'As recorded';
-  }
-  const exampleHz = peakFrequencyHz ?? exampleFrequency(slow, sampleRateHz);
-  return `${slow} times slower: ${formatFrequency(exampleHz)} is heard as ${formatFrequency(exampleHz / slow)}`;
+function gateQuery({ gate }: ListeningAids, noise: TimeWindow | null): Partial<RenditionQuery> {
+  if (gate === 'off') return {};
+  if (gate === 'machine' || !noise) return { gate: 'machine' };
+  return { gate: 'span', gateStartSample: noise.startSample, gateEndSample: noise.endSample };
 }
 
-/** A round frequency that the recording holds and that is heard well when slowed. */
-function exampleFrequency(slow: number, sampleRateHz: number): number {
-  const rounds = [400_000, 200_000, 150_000, 100_000, 50_000, 20_000, 10_000, 5000];
-  return rounds.find((hz) => hz < sampleRateHz / 2.2 && hz / slow <= 15_000) ?? 1000;
+export function sampleHeard(plan: PlayPlan, timeS: number): number {
+  return plan.startSample + (timeS - plan.offsetS) * plan.samplesPerSecond;
 }
 
-/** "20 ms lasts 0.4 s" */
-export function lastsWords(samples: number, sampleRateHz: number, slow: SlowFactor): string {
-  const seconds = samples / sampleRateHz;
-  return `${formatDuration(seconds, 2)} lasts ${formatDuration(seconds * slow, 2)}`;
+export function gainOf(levelDb: number, isLimited: boolean): number {
+  return 10 ** (Math.min(levelDb, isLimited ? HIGHEST_LEVEL_DB : HIGHEST_UNLIMITED_DB) / 20);
+}
+
+/** Whole hundreds of hertz that the server takes. */
+export function clampCarrier(hz: number, sampleRateHz: number): number {
+  const highestHz = Math.floor((highestCarrierShare * sampleRateHz) / 100) * 100;
+  return Math.min(highestHz, Math.max(LOWEST_CARRIER_HZ, Math.round(hz / 100) * 100));
+}
+
+/** Of what is heard while shifted, the highest frequency in the recording. */
+export function heardBandHz(carrierHz: number, slow: number, sampleRateHz: number): number {
+  return Math.min(sampleRateHz / 2, carrierHz + HEARD_BAND_HZ * slow);
+}
+
+/** Below the strongest frequency of what is in hand; without one, where much is to be heard. */
+export function firstCarrier(sampleRateHz: number, peakFrequencyHz: number | null): number {
+  const besidePeak = peakFrequencyHz === null ? null : peakFrequencyHz - BELOW_PEAK_HZ;
+  return clampCarrier(besidePeak ?? Math.min(USUAL_CARRIER_HZ, sampleRateHz / 4), sampleRateHz);
 }

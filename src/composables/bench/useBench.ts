@@ -5,6 +5,8 @@ import { useCircumstances } from '@/composables/bench/marking/useCircumstances.t
 import { useMarkHand } from '@/composables/bench/marking/useMarkHand.ts';
 import { useOnsetSnap } from '@/composables/bench/marking/useOnsetSnap.ts';
 import type { DraftSpan } from '@/composables/bench/new-mark.ts';
+import { windowSamples } from '@/composables/bench/time-axis.ts';
+import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 import { useBeside } from '@/composables/bench/useBeside.ts';
 import { useBenchMarks } from '@/composables/bench/useBenchMarks.ts';
 import { useBenchSources } from '@/composables/bench/useBenchSources.ts';
@@ -36,13 +38,29 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   const named = { recordingId: recording.id, title: recording.runTitle, sampleRateHz };
   const marks = useBenchMarks({ ...named, passId, scheme, events });
   const { container } = recording.format;
-  const listening = useListening({ recordingId: recording.id, sampleRateHz, container, channel });
+  const listening = useListening({
+    recordingId: recording.id,
+    sampleRateHz,
+    channels: layout.channels,
+    container,
+    channel,
+  });
 
   /** While sound runs and no pointer is over the picture, marks are set where it is heard. */
   const markSample = computed(() => {
     const heard = listening.isPlaying.value ? listening.playheadSample.value : null;
     return view.pointerSample.value ?? heard ?? view.place.value;
   });
+
+  /** Where the next mark would stand, with a little room: what was heard there is kept with it. */
+  function inHand(): TimeWindow {
+    if (draft.value) return draft.value;
+    const candidate = selectedCandidate.value;
+    if (candidate) return { startSample: candidate.onsetSample, endSample: candidate.endSample };
+    const room = 0.02 * windowSamples(view.shown.value);
+    return { startSample: markSample.value - room, endSample: markSample.value + room };
+  }
+
   const beside = useBeside({ recording, view, markSample });
   const { channels, tiles } = sources;
   const looked = { view, channels, plotWidthPx, isDrawn: tiles.isWhole };
@@ -51,7 +69,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     window: view.shown,
     widthPx: plotWidthPx,
     areCandidatesShown,
-    aidsInUse: () => null,
+    aidsInUse: () => listening.aidsInUse(inHand()),
   });
   const snapping = useOnsetSnap({ recordingId: recording.id, marks });
   const place = { view, marks, markSample, plotWidthPx, circumstances };
@@ -75,6 +93,10 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     ...place,
     draft,
     selectedCandidate,
+  });
+  const peakFrequencyHz = computed(() => {
+    const burst = selectedCandidate.value ?? marks.selected.value?.parameters;
+    return burst?.peakFrequencyHz ?? null;
   });
 
   function selectMark(key: string | null): void {
@@ -117,6 +139,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     region,
     beside,
     coverage,
+    peakFrequencyHz,
     ...classKey,
     hand,
     snapping,

@@ -1,12 +1,17 @@
 import type { Row } from '@/composables/bench/keys/hotkey-rows.ts';
-import { SLOW_FACTORS } from '@/composables/bench/listening.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
 
-export function listenRows({ listening, view, marks, selectedCandidate, markSample }: Bench): Row[] {
+const CARRIER_STEP_HZ = 1000;
+
+export function listenRows(bench: Bench): Row[] {
+  return [...playRows(bench), ...wayRows(bench)];
+}
+
+function playRows({ listening, view, marks, draft, selectedCandidate, markSample }: Bench): Row[] {
   const toggle = () => {
     if (listening.isPlaying.value) return listening.stop();
-    const { startSample, endSample } = view.shown.value;
-    const from = Math.max(startSample, Math.min(markSample.value, endSample - 1));
+    const { startSample, endSample } = draft.value ?? view.shown.value;
+    const from = draft.value ? startSample : Math.max(startSample, Math.min(markSample.value, endSample - 1));
     void listening.play({ startSample: from, endSample });
   };
   const playSelected = () => {
@@ -21,15 +26,29 @@ export function listenRows({ listening, view, marks, selectedCandidate, markSamp
       endSample: span.endSample + room,
     });
   };
-  const shift = (direction: 1 | -1) => () => {
-    const at = SLOW_FACTORS.indexOf(listening.slow.value) + direction;
-    listening.slow.value = SLOW_FACTORS[Math.min(SLOW_FACTORS.length - 1, Math.max(0, at))] ?? 1;
-  };
   return [
-    ['play', 'Space', 'play from the cursor, stop', toggle],
+    ['play', 'Space', 'play the drawn span, or from the cursor; stop', toggle],
     ['play.selected', 'KeyP', 'play the selected mark or candidate', playSelected],
-    ['slower', 'Minus', 'slower', shift(1)],
-    ['faster', 'Equal', 'faster', shift(-1)],
     ['loop', 'KeyK', 'repeat, or not', () => (listening.isLooping.value = !listening.isLooping.value)],
+  ];
+}
+
+function wayRows({ listening, peakFrequencyHz }: Bench): Row[] {
+  const { chooseMode, stepSlow, moveCarrier, carrierHz, noise } = listening;
+  const carrierBy = (hz: number) => () => moveCarrier(carrierHz.value + hz);
+  return [
+    ['listen.as-recorded', 'Digit6', 'hear it as recorded', () => chooseMode('as-recorded')],
+    ['listen.slowed', 'Digit7', 'hear it slowed', () => chooseMode('slowed')],
+    [
+      'listen.shifted',
+      'Digit8',
+      'hear it shifted down by the carrier',
+      () => chooseMode('shifted', peakFrequencyHz.value),
+    ],
+    ['listen.gated', 'Digit9', 'hum gated, or not', noise.toggleGate],
+    ['slower', 'Minus', 'slower', () => stepSlow(1)],
+    ['faster', 'Equal', 'faster', () => stepSlow(-1)],
+    ['carrier.lower', 'Shift+Minus', 'carrier 1 kHz lower', carrierBy(-CARRIER_STEP_HZ), true],
+    ['carrier.higher', 'Shift+Equal', 'carrier 1 kHz higher', carrierBy(CARRIER_STEP_HZ), true],
   ];
 }
