@@ -165,11 +165,12 @@ describe('the bench', () => {
     await signIn(page, 'labeler');
     const pass = await requirePass(page, false);
     await openBench(page, `/bench/${pass.recordingId}?from=1500000&to=1560000`);
-    await page.getByText('20\u00D7').click();
+    await page.getByRole('button', { name: /^Slowed 10 times/ }).click();
+    await page.getByRole('button', { name: 'Slower' }).click();
     expect(await page.locator('[data-heard]').textContent()).toMatch(/^20 times slower: .+ is heard as .+/);
     await page.keyboard.press('Space');
     await page.getByRole('button', { name: 'Stop' }).waitFor();
     await page.getByRole('button', { name: 'Play from the cursor' }).waitFor({ timeout: 15_000 });
-    expect(await page.locator('.listen [role="alert"]').count()).toBe(0);
+    expect(await page.locator('.sound [role="alert"]').count()).toBe(0);
   });
 });

@@ -7,14 +7,18 @@ async function getJson<Body>(page: Page, address: string): Promise<Body> {
   return (await (await page.request.get(address)).json()) as Body;
 }
 
-/** Sends a file long enough to be looked at while it is measured; resolves to the id of its recording. */
-export async function bringIn(page: Page, fileName: string): Promise<string> {
+/** Noise that is long enough to be looked at while it is measured. */
+function longNoise(): Uint8Array {
+  const sampleRateHz = 192_000;
+  return writeWav({ sampleRateHz, channels: [whiteNoiseSignal(30 * sampleRateHz, 0.01, 11)] });
+}
+
+/** Sends a file; resolves to the id of its recording. */
+export async function bringIn(page: Page, fileName: string, wav = longNoise()): Promise<string> {
   type Items = { items: { id: string; labId: string; editable?: boolean }[] };
   const run = (await getJson<Items>(page, '/api/runs')).items.find(({ editable }) => editable);
   const setup = (await getJson<Items>(page, `/api/setups?labId=${run?.labId}`)).items[0];
-  const sampleRateHz = 192_000;
-  const channels = [whiteNoiseSignal(30 * sampleRateHz, 0.01, 11)];
-  const buffer = Buffer.from(writeWav({ sampleRateHz, channels }));
+  const buffer = Buffer.from(wav);
   const { origin } = inject('demoServer');
   const answer = await page.request.post(`/api/runs/${run?.id}/recordings`, {
     headers: { Origin: origin, 'Sec-Fetch-Site': 'same-origin' },
