@@ -5,14 +5,13 @@ import { useCircumstances } from '@/composables/bench/marking/useCircumstances.t
 import { useMarkHand } from '@/composables/bench/marking/useMarkHand.ts';
 import { useOnsetSnap } from '@/composables/bench/marking/useOnsetSnap.ts';
 import type { DraftSpan } from '@/composables/bench/new-mark.ts';
-import { windowSamples } from '@/composables/bench/time-axis.ts';
-import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 import { useBeside } from '@/composables/bench/useBeside.ts';
 import { useBenchMarks } from '@/composables/bench/useBenchMarks.ts';
 import { useBenchSources } from '@/composables/bench/useBenchSources.ts';
 import { useBenchWindow } from '@/composables/bench/useBenchWindow.ts';
 import { useClassKey } from '@/composables/bench/useClassKey.ts';
 import { useRegion } from '@/composables/bench/useRegion.ts';
+import { useInHand } from '@/composables/bench/useInHand.ts';
 import { useListening } from '@/composables/bench/useListening.ts';
 import { useCoverage } from '@/composables/pass/useCoverage.ts';
 
@@ -38,29 +37,15 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   const named = { recordingId: recording.id, title: recording.runTitle, sampleRateHz };
   const marks = useBenchMarks({ ...named, passId, scheme, events });
   const { container } = recording.format;
-  const listening = useListening({
-    recordingId: recording.id,
-    sampleRateHz,
-    channels: layout.channels,
-    container,
-    channel,
-  });
+  const sound = { sampleRateHz, channels: layout.channels, container, channel };
+  const listening = useListening({ recordingId: recording.id, ...sound });
 
   /** While sound runs and no pointer is over the picture, marks are set where it is heard. */
   const markSample = computed(() => {
     const heard = listening.isPlaying.value ? listening.playheadSample.value : null;
     return view.pointerSample.value ?? heard ?? view.place.value;
   });
-
-  /** Where the next mark would stand, with a little room: what was heard there is kept with it. */
-  function inHand(): TimeWindow {
-    if (draft.value) return draft.value;
-    const candidate = selectedCandidate.value;
-    if (candidate) return { startSample: candidate.onsetSample, endSample: candidate.endSample };
-    const room = 0.02 * windowSamples(view.shown.value);
-    return { startSample: markSample.value - room, endSample: markSample.value + room };
-  }
-
+  const inHand = useInHand({ shown: view.shown, draft, selectedCandidate, markSample, marks });
   const beside = useBeside({ recording, view, markSample });
   const { channels, tiles } = sources;
   const looked = { view, channels, plotWidthPx, isDrawn: tiles.isWhole };
@@ -69,7 +54,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     window: view.shown,
     widthPx: plotWidthPx,
     areCandidatesShown,
-    aidsInUse: () => listening.aidsInUse(inHand()),
+    aidsInUse: () => listening.aidsInUse(inHand.span.value),
   });
   const snapping = useOnsetSnap({ recordingId: recording.id, marks });
   const place = { view, marks, markSample, plotWidthPx, circumstances };
@@ -93,10 +78,6 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     ...place,
     draft,
     selectedCandidate,
-  });
-  const peakFrequencyHz = computed(() => {
-    const burst = selectedCandidate.value ?? marks.selected.value?.parameters;
-    return burst?.peakFrequencyHz ?? null;
   });
 
   function selectMark(key: string | null): void {
@@ -139,7 +120,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     region,
     beside,
     coverage,
-    peakFrequencyHz,
+    peakFrequencyHz: inHand.peakFrequencyHz,
     ...classKey,
     hand,
     snapping,

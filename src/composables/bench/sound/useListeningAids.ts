@@ -16,9 +16,19 @@ export function useListeningAids(sampleRateHz: number) {
   const gate = ref<GateProfile>('off');
   let isCarrierChosen = false;
 
-  const slow = computed<SlowFactor>(() => {
-    if (mode.value === 'slowed') return slowedBy.value;
-    return mode.value === 'shifted' ? shiftedBy.value : 1;
+  const slow = computed<SlowFactor>({
+    get: () => {
+      if (mode.value === 'slowed') return slowedBy.value;
+      return mode.value === 'shifted' ? shiftedBy.value : 1;
+    },
+    set: (factor) => {
+      if (mode.value === 'shifted') shiftedBy.value = factor;
+      else if (factor === 1) mode.value = 'as-recorded';
+      else {
+        slowedBy.value = factor;
+        mode.value = 'slowed';
+      }
+    },
   });
   const aids = computed<ListeningAids>(() => ({
     mode: mode.value,
@@ -41,13 +51,7 @@ export function useListeningAids(sampleRateHz: number) {
   /** One step slower or faster; from as recorded, slower is slowed, and faster than twice is as recorded. */
   function stepSlow(direction: 1 | -1): void {
     const at = SLOW_FACTORS.indexOf(slow.value) + direction;
-    const next = SLOW_FACTORS[Math.min(SLOW_FACTORS.length - 1, Math.max(0, at))] ?? 1;
-    if (mode.value === 'shifted') shiftedBy.value = next;
-    else if (next === 1) mode.value = 'as-recorded';
-    else {
-      slowedBy.value = next;
-      mode.value = 'slowed';
-    }
+    slow.value = SLOW_FACTORS[Math.min(SLOW_FACTORS.length - 1, Math.max(0, at))] ?? 1;
   }
 
   return { mode, slow, slowedBy, shiftedBy, carrierHz, gate, aids, chooseMode, moveCarrier, stepSlow };
