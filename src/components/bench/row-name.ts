@@ -5,6 +5,9 @@ import type { Palette } from '@/theme/palette.ts';
 const BAR_PX = 4;
 const INSET_PX = 8;
 const PLATE_PX = 18;
+/** Under the strokes of marks at the upper edge of a row, where the row is high enough. */
+const UNDER_STROKES_PX = 16;
+const ROOM_FOR_BOTH_PX = 70;
 
 /** People count channels from 1. */
 export function channelName(channel: number): string {
@@ -25,11 +28,12 @@ export function drawRowName(
   const width = context.measureText(text).width + 2 * INSET_PX;
   const left = places.gutterPx + (isChosen ? BAR_PX : 0);
   context.fillStyle = isChosen ? colours.ink : colours.paper;
-  context.fillRect(left, row.topPx, width, PLATE_PX);
+  const top = row.topPx + (row.heightPx >= ROOM_FOR_BOTH_PX ? UNDER_STROKES_PX : 0);
+  context.fillRect(left, top, width, PLATE_PX);
   context.fillStyle = isChosen ? colours.paper : colours.ink;
   context.textAlign = 'left';
   context.textBaseline = 'middle';
-  context.fillText(text, left + INSET_PX, row.topPx + PLATE_PX / 2 + 0.5);
+  context.fillText(text, left + INSET_PX, top + PLATE_PX / 2 + 0.5);
   if (!isChosen) return;
   context.fillStyle = colours.ink;
   context.fillRect(places.gutterPx, row.topPx, BAR_PX, row.heightPx);

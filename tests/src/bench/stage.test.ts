@@ -6,7 +6,7 @@ import type { Fracture } from '@/components/bench/mark-drawing.ts';
 import { withKeys } from '@/composables/bench/class-keys.ts';
 import { frequencyAtY, frequencyTicks, yOfFrequency } from '@/composables/bench/frequency-axis.ts';
 import { defaultSpan } from '@/composables/bench/new-mark.ts';
-import { placeStage, splitAtY } from '@/composables/bench/stage-places.ts';
+import { placeStage, rowAt, splitAtY } from '@/composables/bench/stage-places.ts';
 
 const places = placeStage({ widthPx: 1066, heightPx: 500, split: 0.6, topHz: 400_000 });
 const view = { places, window: { startSample: 0, endSample: 10_000 } };
@@ -45,6 +45,29 @@ describe('stage', () => {
         expect(stage.waveTopPx + stage.waveHeightPx).toBeLessThanOrEqual(stage.heightPx + 1);
       }),
     );
+  });
+
+  it('puts channels under one another without overlap, each with the same split', () => {
+    const channels = [0, 1, 2, 3, 4, 5, 6, 7];
+    const stack = placeStage({
+      widthPx: 900,
+      heightPx: 700,
+      split: 0.6,
+      topHz: 96_000,
+      channels,
+      channel: 3,
+    });
+    for (const [index, row] of stack.rows.entries()) {
+      const next = stack.rows[index + 1];
+      const bottom = row.topPx + row.heightPx;
+      expect(row.audible.topPx + row.audible.heightPx).toBe(bottom);
+      expect(bottom).toBeLessThan(next ? next.topPx : stack.waveTopPx);
+      expect(row.ultrasonic.heightPx).toBe(stack.rows[0]?.ultrasonic.heightPx);
+      expect(rowAt(row.topPx + 5, stack)?.channel).toBe(index);
+    }
+    expect(stack.waveTopPx + stack.waveHeightPx).toBeLessThanOrEqual(700);
+    expect([stack.channel, stack.ultrasonic.topPx]).toEqual([3, stack.rows[3]?.topPx]);
+    expect(rowAt(stack.waveTopPx + 3, stack)).toBeNull();
   });
 
   it('puts the hearing line where it was dragged to', () => {
