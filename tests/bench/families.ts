@@ -15,6 +15,7 @@ import { memory } from './rows/memory.ts';
 import { meyda } from './rows/meyda.ts';
 import { picture } from './rows/picture.ts';
 import { rounds } from './rows/rounds.ts';
+import { saving } from './rows/saving.ts';
 import { server } from './rows/server.ts';
 import { shapes } from './rows/shapes.ts';
 import { sparse } from './rows/sparse.ts';
@@ -40,6 +41,7 @@ export const families: readonly RowFamily[] = [
   sparse,
   rounds,
   server,
+  saving,
   detector,
   bandwidth,
 ];

@@ -1,0 +1,51 @@
+import type { Locator, Page } from 'playwright-core';
+
+export interface PassFacts {
+  id: string;
+  recordingId: string;
+  blind: boolean;
+}
+
+export interface StoredMark {
+  id: string;
+  passId: string;
+  startSample: number;
+  classKey: string;
+  confidence: string;
+  note: string;
+}
+
+/** An open pass of whoever is signed in that is not blind. */
+export async function requireOpenPass(page: Page): Promise<PassFacts> {
+  const answer = await page.request.get('/api/passes?mine=true&state=assigned');
+  const { items } = (await answer.json()) as { items: PassFacts[] };
+  const pass = items.find(({ blind }) => !blind);
+  if (!pass) throw new Error('The demo has no open pass that is not blind.');
+  return pass;
+}
+
+export async function openBenchAt(page: Page, pass: PassFacts, from: number): Promise<void> {
+  await page.goto(`/bench/${pass.recordingId}?pass=${pass.id}&from=${from}&to=${from + 100_000}`);
+  await page.locator('canvas.picture').waitFor();
+}
+
+export async function untilSaid(page: Page, words: RegExp): Promise<void> {
+  await page.locator('[data-saving]').filter({ hasText: words }).waitFor();
+}
+
+export function markRows(page: Page): Locator {
+  return page.getByRole('group', { name: 'Marks in order of time' }).locator('tbody tr');
+}
+
+/** What the server has of a pass, asked past the page. */
+export async function storedMarks(page: Page, pass: PassFacts): Promise<StoredMark[]> {
+  const answer = await page.request.get(`/api/recordings/${pass.recordingId}/events?passId=${pass.id}`);
+  return ((await answer.json()) as { items: StoredMark[] }).items;
+}
+
+/** Sets a mark by one key, a little to the right of the one before. */
+export async function markNext(page: Page, key = 'KeyF'): Promise<void> {
+  await page.keyboard.press('Escape');
+  for (let presses = 0; presses < 12; presses++) await page.keyboard.press('ArrowRight');
+  await page.keyboard.press(key);
+}
