@@ -79,10 +79,10 @@ describe('the picture of the bench', () => {
     page.on('request', (request) => asked.push(request.url()));
     await page.keyboard.press('Shift+KeyH');
     await page.getByText('over the quiet of each frequency').waitFor();
-    await expect.poll(() => pictureHash(page)).not.toBe(plain);
+    await expect.poll(() => pictureHash(page), { timeout: 10_000 }).not.toBe(plain);
     await takeScreenshot(page, 'bench-over-quiet');
     await page.getByLabel('Over the quiet').uncheck();
-    await expect.poll(() => pictureHash(page)).toBe(plain);
+    await expect.poll(() => pictureHash(page), { timeout: 10_000 }).toBe(plain);
     expect(asked.filter((url) => url.includes('/spectrogram/'))).toEqual([]);
   });
 
@@ -116,6 +116,6 @@ describe('the picture of the bench', () => {
     await page.getByText(/pieces? of the picture (is|are) missing/).waitFor();
     await page.context().setOffline(false);
     await untilDrawn(page);
-    await expect.poll(() => page.getByText(/pieces? of the picture/).count()).toBe(0);
+    await expect.poll(() => page.getByText(/pieces? of the picture/).count(), { timeout: 40_000 }).toBe(0);
   });
 });

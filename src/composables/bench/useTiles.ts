@@ -111,7 +111,12 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
   const wantSoon = useThrottleFn(wantNow, BETWEEN_PLANS_MS, true, false);
   wantNow();
   watch(() => [toValue(window), toValue(channels), toValue(widthPx), next.value] as const, wantSoon);
-  tryOnScopeDispose(() => store.close());
+  // The browser knows first that the connection is back.
+  globalThis.addEventListener('online', store.retry);
+  tryOnScopeDispose(() => {
+    globalThis.removeEventListener('online', store.retry);
+    store.close();
+  });
 
   return { find, isWhole, arrivals, trouble, next, retry: store.retry };
 }
