@@ -26,10 +26,6 @@ async function untilShown(page: Page): Promise<void> {
   await page.locator('[data-round-place]').waitFor();
 }
 
-function answeredWords(page: Page): Promise<string> {
-  return page.locator('[data-round-progress]').innerText();
-}
-
 async function untilAnswered(page: Page, count: number): Promise<void> {
   await page
     .locator('[data-round-progress]')

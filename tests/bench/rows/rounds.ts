@@ -2,7 +2,7 @@ import { join } from 'node:path';
 import { setTimeout as wait } from 'node:timers/promises';
 import { z } from 'zod';
 import { seedManyCandidates } from '../../support/browser/many-candidates.ts';
-import type { Bench, BenchRow, RowFamily } from '../kit/bench.ts';
+import type { BenchRow, RowFamily } from '../kit/bench.ts';
 import { short } from '../kit/figures.ts';
 import { spreadOf } from '../kit/ratios.ts';
 import { ultrasonicRecording } from '../kit/recordings.ts';
