@@ -27,6 +27,7 @@ export async function requireOpenPass(page: Page): Promise<PassFacts> {
 export async function openBenchAt(page: Page, pass: PassFacts, from: number): Promise<void> {
   await page.goto(`/bench/${pass.recordingId}?pass=${pass.id}&from=${from}&to=${from + 100_000}`);
   await page.locator('canvas.picture').waitFor();
+  await page.waitForLoadState('networkidle');
 }
 
 export async function untilSaid(page: Page, words: RegExp): Promise<void> {
