@@ -25,6 +25,6 @@ export function phaseRows({ beside }: Pick<Bench, 'beside'>): Row[] {
     ],
     ['phase.next', 'Shift+BracketRight', 'next phase', () => marking.step(1)],
     ['phase.previous', 'Shift+BracketLeft', 'previous phase', () => marking.step(-1)],
-    ['film', 'Digit9', 'show the film, or close it', toggleFilm],
+    ['film', 'Digit5', 'show the film, or close it', toggleFilm],
   ];
 }
