@@ -3,6 +3,7 @@ import { decodeTile } from '../../../shared/audio/tile.ts';
 import { tileLayout } from '../../../server/measuring/view-layout.ts';
 import { NoSuchViewError, readTile, type ViewSource } from '../../../server/measuring/view-reader.ts';
 import { mix, sine, whiteNoiseSignal } from '../../support/wav/signals.ts';
+import type { WriteWavInput } from '../../support/wav/write-wav.ts';
 import { measured } from './measured.ts';
 
 const RATE_HZ = 192_000;
@@ -27,7 +28,12 @@ function directLevel(frame: Float32Array, hz: number): number {
 describe('levels finer than the kept ones', () => {
   const frames = 100_003;
   const samples = mix(whiteNoiseSignal(frames, 0.01, 7), sine(frames, 61_000, RATE_HZ, 0.1));
-  const wav = { sampleRateHz: RATE_HZ, encoding: 'float', bitsPerSample: 32, channels: [samples] } as const;
+  const wav: WriteWavInput = {
+    sampleRateHz: RATE_HZ,
+    encoding: 'float',
+    bitsPerSample: 32,
+    channels: [samples],
+  };
 
   it('are what a direct computation gives for the frame that they say, at both ends and between', async () => {
     const { source, summary } = await measured(wav);

@@ -4,6 +4,7 @@ import type { MarkFields } from '@/composables/bench/mark.ts';
 import { takeBack } from '@/composables/bench/take-back.ts';
 import type { MarkPlace } from '@/composables/outbox/outbox-entry.ts';
 import { createOutbox } from '@/composables/outbox/outbox.ts';
+import type { Outbox } from '@/composables/outbox/outbox.ts';
 import type { Life } from './flaky-browser.ts';
 import type { World } from './model-world.ts';
 
@@ -13,8 +14,21 @@ interface Step {
   to: MarkFields | null;
 }
 
+export interface ModelWindow {
+  place: MarkPlace;
+  life: Life;
+  view: ReadonlyMap<string, MarkFields>;
+  outbox: Outbox;
+  step: (key: string, to: MarkFields | null) => void;
+  undo: () => void;
+  isAtWork: () => boolean;
+  isReady: () => boolean;
+  /** Without a warning, as a crash, a reload and a closed window all are. */
+  end: () => void;
+}
+
 /** A window with the bench in it: what it shows, what can be undone in it, and its part of the outbox. */
-export function openWindow(world: World, place: MarkPlace) {
+export function openWindow(world: World, place: MarkPlace): ModelWindow {
   const { time, random, server, network, oracle } = world;
   const life: Life = { isAlive: true, onEnd: [] };
   const view = new Map<string, MarkFields>();
@@ -115,7 +129,6 @@ export function openWindow(world: World, place: MarkPlace) {
     undo,
     isAtWork: () => life.isAlive && state.isReady && outbox.halt() !== 'signed-out',
     isReady: () => state.isReady,
-    /** Without a warning, as a crash, a reload and a closed window all are. */
     end(): void {
       life.isAlive = false;
       outbox.stop();
@@ -123,5 +136,3 @@ export function openWindow(world: World, place: MarkPlace) {
     },
   };
 }
-
-export type ModelWindow = ReturnType<typeof openWindow>;

@@ -83,7 +83,8 @@ async function seedBeside(app: TestApp, runId: string) {
   const points = await store.putStream(Readable.from([Buffer.from(new Float64Array([0, 20, 1, 19]).buffer)]));
   const stored = await store.putStream(Readable.from([Buffer.from('s;degC\n0;20\n1;19\n')]));
   const file = { sha256: stored.sha256, sizeBytes: 17 };
-  const mapping = { timeColumn: 0, timeUnit: 's', valueColumn: 1, unit: 'degC' } as const;
+  const columns = { timeColumn: 0, timeUnit: 's', valueColumn: 1, unit: 'degC' } as const;
+  const mapping = { ...columns, separator: 'comma', decimal: 'point' } as const;
   db.insert(growthPhases)
     .values({
       ...made,

@@ -4,6 +4,7 @@ import { decodeFrames } from '../../../../shared/audio/pcm-decode.ts';
 import { readWavHeader } from '../../../../shared/audio/wav-header.ts';
 import { seedMeasured, smallWav } from '../../../support/server/seed-recordings.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
+import { collectBytes } from '../../../support/server/collect-bytes.ts';
 import { dampedSines, mix, whiteNoiseSignal } from '../../../support/wav/signals.ts';
 
 let app: TestApp;
@@ -16,14 +17,7 @@ afterAll(() => app.close());
 
 const bursts = [{ onsetSample: 9600, amplitude: 0.5, frequencyHz: 30_000, decayS: 0.0005 }];
 const get = (tail: string) => app.as('contributor').get(`/api/recordings/${id}${tail}`);
-const binary = (tail: string) => get(tail).buffer(true).parse(collect);
-
-function collect(response: unknown, done: (error: Error | null, body: Buffer) => void): void {
-  const stream = response as NodeJS.ReadableStream;
-  const parts: Buffer[] = [];
-  stream.on('data', (part: Buffer) => parts.push(part));
-  stream.on('end', () => done(null, Buffer.concat(parts)));
-}
+const binary = (tail: string) => get(tail).buffer(true).parse(collectBytes);
 
 async function samplesOf(bytes: Buffer): Promise<Float32Array> {
   const header = await readWavHeader(bytesSource(bytes));
@@ -91,7 +85,7 @@ describe('listening', () => {
     const wav = smallWav({ channels: [mix(dampedSines(48_000, bursts, 96_000), noise)] });
     const noisyId = await seedMeasured(app, { sharing: 'shared', wav });
     const noisy = (tail: string) =>
-      app.as('contributor').get(`/api/recordings/${noisyId}${tail}`).buffer(true).parse(collect);
+      app.as('contributor').get(`/api/recordings/${noisyId}${tail}`).buffer(true).parse(collectBytes);
     for (const tail of [
       'gate=machine',
       'gate=machine&slow=4',

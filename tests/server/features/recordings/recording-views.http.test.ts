@@ -3,6 +3,7 @@ import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { decodeTile } from '../../../../shared/audio/tile.ts';
 import { seedMeasured, seedPass, seedRecording, smallWav } from '../../../support/server/seed-recordings.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
+import { collectBytes } from '../../../support/server/collect-bytes.ts';
 
 let app: TestApp;
 let id: string;
@@ -16,14 +17,7 @@ const wav = Buffer.from(smallWav());
 const sha256 = createHash('sha256').update(wav).digest('hex');
 const get = (tail: string, name: 'contributor' | 'otherContributor' = 'contributor') =>
   app.as(name).get(`/api/recordings/${id}${tail}`);
-const binary = (tail: string) => get(tail).buffer(true).parse(collect);
-
-function collect(response: unknown, done: (error: Error | null, body: Buffer) => void): void {
-  const stream = response as NodeJS.ReadableStream;
-  const parts: Buffer[] = [];
-  stream.on('data', (part: Buffer) => parts.push(part));
-  stream.on('end', () => done(null, Buffer.concat(parts)));
-}
+const binary = (tail: string) => get(tail).buffer(true).parse(collectBytes);
 
 describe('the original bytes', () => {
   test('come unchanged, under their hash, as a download that nobody else keeps', async () => {

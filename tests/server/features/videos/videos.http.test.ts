@@ -9,6 +9,7 @@ import { barsBytes, filmBytes } from '../../../support/film-fixtures.ts';
 import { seedPhasePass, seedRunOfRecording } from '../../../support/server/seed-phases.ts';
 import { seedPass } from '../../../support/server/seed-recordings.ts';
 import { createTestApp, type TestApp } from '../../../support/server/test-app.ts';
+import { collectBytes } from '../../../support/server/collect-bytes.ts';
 
 let app: TestApp;
 let runId: string;
@@ -32,13 +33,7 @@ const bring = (bytes: Uint8Array, fileName = 'stage 17.webm', agreed = 'true') =
 const list = async (who: Who = 'contributor') =>
   (await app.as(who).get(`/api/runs/${runId}/videos`).expect(200)).body;
 const download = (id: string, who: Who = 'contributor') =>
-  app.as(who).get(`/api/videos/${id}/film`).buffer(true).parse(collect);
-
-function collect(res: NodeJS.ReadableStream, done: (error: Error | null, body: Buffer) => void): void {
-  const parts: Buffer[] = [];
-  res.on('data', (part: Buffer) => parts.push(part));
-  res.on('end', () => done(null, Buffer.concat(parts)));
-}
+  app.as(who).get(`/api/videos/${id}/film`).buffer(true).parse(collectBytes);
 
 describe('bringing in a film', () => {
   test.each([
