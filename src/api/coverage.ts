@@ -14,13 +14,18 @@ export async function getCoverage(passId: string, signal?: AbortSignal): Promise
   ];
 }
 
-/** Refused for good is what the server has judged; everything else may go through another time. */
+/**
+ * In the name of whoever looked and listened, and of nobody else who signs in at the same browser. Refused for good is what the
+ * server has judged; everything else may go through another time.
+ */
 export async function addCoverage(
   passId: string,
   spans: CoverageSpan[],
+  personId: string,
 ): Promise<'stored' | 'later' | 'never'> {
   try {
-    await apiSend('POST', `/api/passes/${passId}/coverage`, passCoverageSchema, { body: { spans } });
+    const sent = { body: { spans }, personId };
+    await apiSend('POST', `/api/passes/${passId}/coverage`, passCoverageSchema, sent);
     return 'stored';
   } catch (error) {
     const status = error instanceof ProblemError ? error.status : 0;

@@ -188,7 +188,7 @@ describe('marking', () => {
     expect(await countMarks(page)).toBe(before + 1);
     await pressAll(page, ['Control+KeyZ', 'Control+KeyZ']);
     expect(await countMarks(page)).toBe(before + 1);
-    await page.getByText('Last changes').click();
+    await page.getByText('Last changes', { exact: true }).click();
     await page.getByRole('button', { name: 'before the first change' }).click();
     await untilStored(page);
     expect(await countMarks(page)).toBe(before);
@@ -213,7 +213,10 @@ describe('marking', () => {
     await page.keyboard.press('Delete');
     await untilStored(page);
     await page.goto(link);
-    await page.getByText(/The mark of this link is not here/).waitFor();
+    await page
+      .locator('[data-link-words]')
+      .filter({ hasText: /The mark of this link is not here/ })
+      .waitFor();
     await checkAxe(page);
     expect(pass.recordingId).toBeTruthy();
   });
@@ -226,10 +229,13 @@ describe('marking', () => {
     await page.keyboard.press('Shift+Slash');
     await page.getByRole('button', { name: /^crack: F/ }).click();
     await page.keyboard.press('KeyN');
-    await page.getByText(/N does already: write a note/).waitFor();
+    await page
+      .locator('[data-key-words]')
+      .filter({ hasText: /N does already: write a note/ })
+      .waitFor();
     await page.getByRole('button', { name: /^crack: F/ }).click();
     await page.keyboard.press('KeyX');
-    await page.getByText('crack: now on X').waitFor();
+    await page.locator('[data-key-words]').filter({ hasText: 'crack: now on X' }).waitFor();
     await checkAxe(page);
     await takeScreenshot(page, 'bench-keys');
     await page.keyboard.press('Escape');

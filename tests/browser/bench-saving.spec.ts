@@ -1,7 +1,6 @@
 import { cp, mkdtemp, rm } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
-import { setTimeout as wait } from 'node:timers/promises';
 import type { Page } from 'playwright-core';
 import { describe, expect, inject } from 'vitest';
 import { checkAxe } from '../support/browser/axe.ts';
@@ -40,6 +39,8 @@ async function endSession(page: Page): Promise<void> {
 describe('marks on the bench are never lost', () => {
   test('while the network is cut for a minute', async ({ page, guard }) => {
     guard.expectConsoleError(/ERR_INTERNET_DISCONNECTED/);
+    // The minute passes by the clock of the page, which runs on and is put forward.
+    await page.clock.install();
     await signIn(page, 'labeler');
     const pass = await requireOpenPass(page);
     await openBenchAt(page, pass, 200_000);
@@ -48,7 +49,7 @@ describe('marks on the bench are never lost', () => {
     for (let mark = 0; mark < CUT_MARKS; mark++) {
       await markNext(page);
       if (mark === 0) await untilSaid(page, /Kept here, 1 waiting: the server cannot be reached/);
-      await wait(BETWEEN_MARKS_MS);
+      await page.clock.fastForward(BETWEEN_MARKS_MS);
     }
     await untilSaid(page, /Kept here, 12 waiting/);
     await checkAxe(page);
@@ -105,13 +106,17 @@ describe('marks on the bench are never lost', () => {
     await untilSaid(page, /stored/);
     const [made] = (await storedMarks(page, pass)).filter(({ startSample }) => startSample >= 600_000);
     await markRows(other).filter({ hasText: 'vessel' }).first().click();
-    await other.getByLabel('Note').fill('from the other window');
+    await other.getByRole('textbox', { name: 'Note' }).fill('from the other window');
     await other.keyboard.press('Tab');
     await untilSaid(other, /stored/);
     await page.bringToFront();
     await page.keyboard.press('Escape');
     await page.keyboard.press('Control+KeyZ');
-    await wait(1000);
+    await page
+      .getByRole('status')
+      .filter({ hasText: /Left as it is, since another window changed it|Taken back/ })
+      .waitFor();
+    await untilSaid(page, /stored/);
     const after = await storedMarks(page, pass);
     expect(after.length).toBe(before + 1);
     expect(after.find(({ id }) => id === made?.id)?.note).toBe('from the other window');
@@ -175,16 +180,16 @@ describe('marks on the bench are never lost', () => {
     const [here, there] = [page, elsewhere].map((one) => markRows(one).filter({ hasText: 'vessel' }).last());
     await here?.click();
     await there?.click();
-    await elsewhere.getByLabel('Note').fill('looked at twice');
+    await elsewhere.getByRole('textbox', { name: 'Note' }).fill('looked at twice');
     await elsewhere.keyboard.press('Tab');
     await untilSaid(elsewhere, /stored/);
     await page.getByLabel('Confidence').selectOption('unsure');
     await untilSaid(page, /stored/);
-    await expect.poll(() => page.getByLabel('Note').inputValue()).toBe('looked at twice');
-    await page.getByLabel('Note').fill('mine');
+    await expect.poll(() => page.getByRole('textbox', { name: 'Note' }).inputValue()).toBe('looked at twice');
+    await page.getByRole('textbox', { name: 'Note' }).fill('mine');
     await page.keyboard.press('Tab');
     await untilSaid(page, /stored/);
-    await elsewhere.getByLabel('Note').fill('theirs');
+    await elsewhere.getByRole('textbox', { name: 'Note' }).fill('theirs');
     await elsewhere.keyboard.press('Tab');
     await untilSaid(elsewhere, /1 mark to decide on/);
     await elsewhere.getByText('there: mine').waitFor();

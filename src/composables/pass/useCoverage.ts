@@ -66,7 +66,7 @@ export function useCoverage(options: CoverageOptions) {
   const isLoaded = ref(!isKept);
   const name = `recalesce.coverage.${pass?.id ?? ''}`;
   const outbox = createCoverageOutbox({
-    send: (spans) => addCoverage(pass?.id ?? '', spans),
+    send: (spans) => addCoverage(pass?.id ?? '', spans, pass?.labelerId ?? ''),
     read: () => localStorage.getItem(name),
     write: keepText(name),
   });

@@ -35,7 +35,7 @@ export async function untilSaid(page: Page, words: RegExp): Promise<void> {
 }
 
 export function markRows(page: Page): Locator {
-  return page.getByRole('group', { name: 'Marks in order of time' }).locator('tbody tr');
+  return page.getByRole('grid', { name: 'Marks' }).locator('[data-key]');
 }
 
 /** What the server has of a pass, asked past the page. */
