@@ -13,6 +13,7 @@ import { useClassKey } from '@/composables/bench/useClassKey.ts';
 import { useRegion } from '@/composables/bench/useRegion.ts';
 import { useInHand } from '@/composables/bench/useInHand.ts';
 import { useListening } from '@/composables/bench/useListening.ts';
+import { useSelection } from '@/composables/bench/useSelection.ts';
 import { useCoverage } from '@/composables/pass/useCoverage.ts';
 
 export type Bench = ReturnType<typeof useBench>;
@@ -59,51 +60,17 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   const snapping = useOnsetSnap({ recordingId: recording.id, marks });
   const place = { view, marks, markSample, plotWidthPx, circumstances };
   const hand = useMarkHand({ frames, sampleRateHz, channel, ...place });
-  const classKey = useClassKey({
-    layout,
-    scheme,
-    canMark,
-    isOutside: coverage.isOutside,
-    ...place,
-    draft,
-    selectedCandidate,
-    channel,
-    onSet: (key) => void snapping.snapFresh(key),
-  });
+  const taken = { draft, selectedCandidate, channel };
+  const { isOutside } = coverage;
+  const onSet = (key: string) => void snapping.snapFresh(key);
+  const classKey = useClassKey({ layout, scheme, canMark, isOutside, ...place, ...taken, onSet });
+  const region = useRegion({ recordingId: recording.id, layout, ...place, ...taken });
 
-  const region = useRegion({
-    recordingId: recording.id,
-    layout,
-    channel,
-    ...place,
-    draft,
-    selectedCandidate,
-  });
-
-  function selectMark(key: string | null): void {
-    selectedCandidate.value = null;
-    marks.selectedKey.value = key;
-    const mark = marks.selected.value;
-    if (!mark) return;
-    view.bringIntoView(mark);
-    view.placeCursor(mark.startSample);
-  }
-
-  function selectCandidate(candidate: Candidate | null): void {
-    marks.selectedKey.value = null;
-    selectedCandidate.value = candidate;
-    if (!candidate) return;
-    view.bringIntoView({ startSample: candidate.onsetSample, endSample: candidate.endSample });
-    view.placeCursor(candidate.onsetSample);
-  }
-
-  function dropAll(): void {
-    draft.value = null;
-    selectedCandidate.value = null;
-    marks.selectedKey.value = null;
+  function letGo(): void {
     beside.marking.drop();
     listening.stop();
   }
+  const selection = useSelection({ view, marks, draft, selectedCandidate, onDrop: letGo });
 
   return {
     recording,
@@ -124,9 +91,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     ...classKey,
     hand,
     snapping,
-    selectMark,
-    selectCandidate,
+    ...selection,
     moveEdge: hand.moveEdge,
-    dropAll,
   };
 }

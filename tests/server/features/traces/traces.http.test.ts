@@ -218,7 +218,7 @@ describe('a blind pass', () => {
     expect(await list()).toBe(0);
     for (const rest of ['', '/points', '/recalescence', '/file'])
       expect((await app.as('labeler').get(`/api/traces/${trace.id}${rest}`)).status).toBe(404);
-    app.deps.services.passes.finish(app.actor('labeler'), passId, '');
+    app.deps.services.passes.finish(app.actor('labeler'), passId, 'Looked at elsewhere.');
     expect(await list()).toBe(1);
   });
 });
