@@ -36,7 +36,7 @@ async function untilAnswered(page: Page, count: number): Promise<void> {
 async function untilStored(page: Page): Promise<void> {
   await page
     .locator('[data-saving]')
-    .filter({ hasText: /All .* answers? stored|No answers yet/ })
+    .filter({ hasText: /All\s\d+\sanswers?\sstored|No answers yet/ })
     .waitFor();
 }
 
@@ -78,6 +78,9 @@ describe('a round', () => {
     expect(await page.locator('[data-round-place]').innerText()).toContain('Candidate 21');
     await press(page, 'KeyJ');
     await untilAnswered(page, 21);
+    // A round goes from candidate to candidate, not over the recording.
+    expect(await page.getByRole('img', { name: /^Coverage/ }).count()).toBe(0);
+    expect(await page.getByRole('button', { name: 'Next unseen' }).count()).toBe(0);
   });
 
   test('takes an answer back, with its mark, and shows the candidate again', async ({ page }) => {

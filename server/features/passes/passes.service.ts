@@ -117,10 +117,10 @@ export function createPassesService(parts: PassesParts) {
     write(db, (tx) => {
       const view = requireOwnOpenView(tx, actor, id);
       const { task, kind } = view.pass;
-      const coverage = task === 'events' ? coverageOf(tx, view) : null;
       const isOfRounds = kind === 'rounds';
+      const coverage = task === 'events' && !isOfRounds ? coverageOf(tx, view) : null;
       const unanswered = isOfRounds ? Math.max(0, (view.candidateCount ?? 0) - countAnswered(tx, id)) : 0;
-      requireReason({ coverage: isOfRounds ? null : coverage, unanswered }, remark);
+      requireReason({ coverage, unanswered }, remark);
       updatePass(tx, id, { state: 'finished', remark, coverage, finishedAtMs: clock.nowMs() });
       audit.record(tx, entry(actor, 'pass.finished', view.pass));
     });

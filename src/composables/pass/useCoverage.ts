@@ -54,14 +54,14 @@ const LOOK_EVERY_MS = 300;
 const REST_MS = 600;
 const SEND_EVERY_MS = 5000;
 
-/** What of the part of a pass has been seen and heard. Nothing here waits for the server, and nothing waits for it. */
+/** What of the part of a pass has been seen and heard; a pass of rounds has no part. Nothing here waits for the server, and nothing waits for it. */
 export function useCoverage(options: CoverageOptions) {
   const { pass, canMark, layout, view, plotWidthPx, listening } = options;
   const { channel, shown: shownChannels, choose } = options.channels;
   const { frames, channels, sampleRateHz } = layout;
   const windows = pass?.windows ?? null;
   const part = partOfPass(windows, frames);
-  const isKept = canMark && pass !== null && pass.task === 'events';
+  const isKept = canMark && pass?.task === 'events' && pass.kind !== 'rounds';
   const gathered = shallowRef<readonly CoverageSpan[]>([]);
   const isLoaded = ref(!isKept);
   const name = `recalesce.coverage.${pass?.id ?? ''}`;

@@ -281,5 +281,7 @@ test('rounds are finished when every candidate has an answer, or with a reason',
   expect(refused.body.fields).toEqual([
     { path: 'remark', message: '3 candidates have no answer yet; say why they are left out' },
   ]);
-  await finish(passId, 'Too weak to tell.').expect(200);
+  const finished = await finish(passId, 'Too weak to tell.').expect(200);
+  // A round asks about candidates: a share of the recording that was seen would say nothing.
+  expect(finished.body.coverage).toBeNull();
 });
