@@ -107,8 +107,9 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
     trouble.value = store.failing();
   }
 
-  // While the window moves it is enough to ask a few times for each tile's width.
-  const wantSoon = useThrottleFn(wantNow, BETWEEN_PLANS_MS, true, false);
+  // While the window moves it is enough to ask a few times for each tile's width: at once, so that a single jump is never
+  // left without its tiles, and once more at the end.
+  const wantSoon = useThrottleFn(wantNow, BETWEEN_PLANS_MS, true, true);
   wantNow();
   watch(() => [toValue(window), toValue(channels), toValue(widthPx), next.value] as const, wantSoon);
   // The browser knows first that the connection is back.
