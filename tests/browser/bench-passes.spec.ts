@@ -127,7 +127,7 @@ describe('a pass of windows', () => {
     await openBench(page, await openPass(page, isNew));
     await page.getByRole('button', { name: 'Finish pass' }).click();
     const sheet = page.getByRole('dialog');
-    await sheet.getByText(/^Not seen from near enough/).waitFor();
+    await sheet.getByText(/Not seen from near enough/).waitFor();
     await sheet.getByRole('button', { name: 'Finish pass' }).click();
     await sheet.getByText(/Something was not seen/).waitFor();
     await checkAxe(page);

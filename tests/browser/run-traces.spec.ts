@@ -53,7 +53,7 @@ describe('the traces of a run', () => {
     await checkAxe(page);
     await dialog.getByLabel('Decimal sign', { exact: true }).selectOption('comma');
     await dialog.getByText(/501\u00A0rows/).waitFor();
-    await dialog.getByLabel('Run time of the first row').fill('-57');
+    await dialog.getByRole('textbox', { name: /^Run time of the first row/ }).fill('-57');
     await takeScreenshot(page, 'run-traces-dialog');
     await dialog.getByRole('button', { name: 'Add the trace' }).click();
     await section.getByText('Recalescence, offered as nucleation.').waitFor();
