@@ -151,7 +151,7 @@ describe('marking', () => {
     const pass = await openBench(page, openPage);
     const { items } = await getJson<{ items: { onsetSample: number }[] }>(
       page,
-      `/api/recordings/${pass.recordingId}/candidates?limit=3&sort=-strength`,
+      `/api/recordings/${pass.recordingId}/candidates?limit=3&sort=-snrDb`,
     );
     const at = items[0]?.onsetSample ?? 0;
     await openBench(page, openPage, `&from=${at - 4000}&to=${at + 4000}`);

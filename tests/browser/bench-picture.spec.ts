@@ -81,7 +81,7 @@ describe('the picture of the bench', () => {
     await page.getByText('over the quiet of each frequency').waitFor();
     await expect.poll(() => pictureHash(page), { timeout: 10_000 }).not.toBe(plain);
     await takeScreenshot(page, 'bench-over-quiet');
-    await page.getByLabel('Over the quiet').uncheck();
+    await page.getByRole('checkbox', { name: 'Over the quiet' }).uncheck();
     await expect.poll(() => pictureHash(page), { timeout: 10_000 }).toBe(plain);
     expect(asked.filter((url) => url.includes('/spectrogram/'))).toEqual([]);
   });

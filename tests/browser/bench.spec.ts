@@ -26,7 +26,6 @@ async function requirePass(page: Page, isBlind: boolean): Promise<PassFacts> {
 async function openBench(page: Page, address: string): Promise<void> {
   await page.goto(address);
   await page.locator('canvas.picture').waitFor();
-  await page.waitForLoadState('networkidle');
 }
 
 function saving(page: Page): Locator {

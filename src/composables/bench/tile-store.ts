@@ -81,7 +81,8 @@ export function createTileStore({ load, onChange, capacity = 1000, parallel = 6 
       if (!controller.signal.aborted) note(key, error);
     }
     underway.delete(key);
-    if (!controller.signal.aborted) onChange();
+    // One that was given up may have come all the same, and be wanted again by now.
+    if (!controller.signal.aborted || tiles.has(key)) onChange();
     fill();
   }
 

@@ -19,6 +19,9 @@ import { formatCount } from '@/composables/useFormat.ts';
 
 export type Round = ReturnType<typeof useRound>;
 
+/** Of a press that comes before the candidate it would answer. */
+const UNSEEN_WORDS = 'Nothing answered: the candidate is not shown yet';
+
 /** Candidates one after another: one key answers, stores, goes on and plays the next. */
 export function useRound(bench: Bench, passId: string) {
   const { scheme, marks } = bench;
@@ -59,7 +62,11 @@ export function useRound(bench: Bench, passId: string) {
 
   function answer(said: Said): void {
     const item = current.value;
-    if (!item || place.isWaiting.value) return;
+    // Nothing is answered that nobody has seen, and no press is dropped without a word.
+    if (!item || place.isWaiting.value) {
+      void announce(UNSEEN_WORDS);
+      return;
+    }
     const facts = factsOf(item);
     const changes = [{ candidateId: item.candidate.id, before: sayingOf(item), after: said }];
     answers.give({ name: nameOf(item, said), rank: item.rank, atMs: Date.now(), changes }, facts);

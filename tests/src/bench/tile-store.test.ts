@@ -81,6 +81,25 @@ describe('tile store', () => {
     expect(asked).not.toContain(7);
   });
 
+  it('tells of a tile that was given up, wanted again and came all the same', async () => {
+    const arrive: (() => void)[] = [];
+    let changes = 0;
+    const store = createTileStore({
+      load: async ({ tile }) => {
+        await new Promise<void>((done) => arrive.push(done));
+        return tileOf([tile]);
+      },
+      onChange: () => changes++,
+    });
+    store.want([place(1)]);
+    store.want([]);
+    store.want([place(1)]);
+    for (const done of arrive) done();
+    await settled();
+    expect(store.find(place(1))).toBeDefined();
+    expect(changes).toBe(1);
+  });
+
   it('asks again for what failed after a second, then after two, as long as it is wanted', async () => {
     vi.useFakeTimers();
     const failing = new Set([4]);

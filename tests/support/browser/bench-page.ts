@@ -26,8 +26,8 @@ export async function requireOpenPass(page: Page): Promise<PassFacts> {
 
 export async function openBenchAt(page: Page, pass: PassFacts, from: number): Promise<void> {
   await page.goto(`/bench/${pass.recordingId}?pass=${pass.id}&from=${from}&to=${from + 100_000}`);
+  // Once it shows itself it takes keys, whatever is still on its way.
   await page.locator('canvas.picture').waitFor();
-  await page.waitForLoadState('networkidle');
 }
 
 export async function untilSaid(page: Page, words: RegExp): Promise<void> {
