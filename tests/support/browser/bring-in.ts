@@ -13,8 +13,28 @@ function longNoise(): Uint8Array {
   return writeWav({ sampleRateHz, channels: [whiteNoiseSignal(30 * sampleRateHz, 0.01, 11)] });
 }
 
+/** A set-up with a sensor of this band, in the lab whose runs the person may edit; resolves to its id. */
+export async function setUpSensor(page: Page, band: { lowHz: number; highHz: number }): Promise<string> {
+  const runs = await getJson<{ items: { labId: string; editable?: boolean }[] }>(page, '/api/runs');
+  const labId = runs.items.find(({ editable }) => editable)?.labId;
+  const headers = { Origin: inject('demoServer').origin, 'Sec-Fetch-Site': 'same-origin' };
+  const create = async (address: string, data: object) => {
+    const answer = await page.request.post(address, { headers, data });
+    expect(answer.status(), await answer.text()).toBe(201);
+    return ((await answer.json()) as { id: string }).id;
+  };
+  const sensor = { labId, name: `Disc from ${band.lowHz / 1000} kHz`, kind: 'contact-ae', ...band };
+  const sensorId = await create('/api/sensors', sensor);
+  return create('/api/setups', { sensorId, name: 'Under the plate', fullScaleV: 2 });
+}
+
 /** Sends a file; resolves to the id of its recording. */
-export async function bringIn(page: Page, fileName: string, wav = longNoise()): Promise<string> {
+export async function bringIn(
+  page: Page,
+  fileName: string,
+  wav = longNoise(),
+  setupId?: string,
+): Promise<string> {
   type Items = { items: { id: string; labId: string; editable?: boolean }[] };
   const run = (await getJson<Items>(page, '/api/runs')).items.find(({ editable }) => editable);
   const setup = (await getJson<Items>(page, `/api/setups?labId=${run?.labId}`)).items[0];
@@ -23,7 +43,7 @@ export async function bringIn(page: Page, fileName: string, wav = longNoise()): 
   const answer = await page.request.post(`/api/runs/${run?.id}/recordings`, {
     headers: { Origin: origin, 'Sec-Fetch-Site': 'same-origin' },
     multipart: {
-      setupId: setup?.id ?? '',
+      setupId: setupId ?? setup?.id ?? '',
       licence: 'CC-BY-4.0',
       file: { name: fileName, mimeType: 'audio/wav', buffer },
     },
