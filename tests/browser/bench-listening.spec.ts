@@ -55,7 +55,7 @@ async function openBench(page: Page, address: string): Promise<void> {
 
 /** What the page gets when it plays from the middle of what it shows. */
 async function heard(page: Page): Promise<Float32Array> {
-  const answer = page.waitForResponse(({ url }) => url().includes('/listen?'));
+  const answer = page.waitForResponse((response) => response.url().includes('/listen?'));
   await page.keyboard.press('Space');
   const bytes = await (await answer).body();
   const header = await readWavHeader(bytesSource(bytes));
@@ -125,7 +125,7 @@ describe('listening on the bench', () => {
     await page.keyboard.press('KeyK');
     await page.keyboard.press('Space');
     await page.getByRole('button', { name: 'Stop' }).waitFor();
-    const gated = page.waitForResponse(({ url }) => url().includes('gate=machine'));
+    const gated = page.waitForResponse((response) => response.url().includes('gate=machine'));
     await page.keyboard.press('Digit9');
     await gated;
     await page.getByText(/quiet span \d/).waitFor();

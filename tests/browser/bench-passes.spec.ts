@@ -60,6 +60,12 @@ async function untilSeen(page: Page, least: number): Promise<void> {
   await expect.poll(() => seenPercent(page), { timeout: 15_000 }).toBeGreaterThanOrEqual(least);
 }
 
+/** What the server has of it; the bench sends every few seconds. */
+async function storedShare(page: Page, { id }: PassFacts): Promise<number> {
+  const answer = await page.request.get(`/api/passes/${id}/coverage`);
+  return ((await answer.json()) as { seenShare: number }).seenShare;
+}
+
 const isNew = (pass: PassFacts) => pass.recordingId === walk.recordingId;
 
 describe('a pass of windows', () => {
@@ -88,7 +94,8 @@ describe('a pass of windows', () => {
     page,
   }) => {
     await signIn(page, 'labeler');
-    await openBench(page, await openPass(page, isNew));
+    const pass = await openPass(page, isNew);
+    await openBench(page, pass);
     expect(await seenPercent(page)).toBe(0);
     await page.keyboard.press('Quote');
     await untilSeen(page, 33);
@@ -99,6 +106,7 @@ describe('a pass of windows', () => {
     await page.locator('canvas.picture').waitFor();
     await untilSeen(page, 66);
     await checkAxe(page);
+    await expect.poll(() => storedShare(page, pass), { timeout: 15_000 }).toBeGreaterThan(0.6);
   });
 
   test('takes a mark inside a window, and none outside', async ({ page }) => {
