@@ -183,7 +183,7 @@ describe('marks on the bench are never lost', () => {
     await elsewhere.getByRole('textbox', { name: 'Note' }).fill('looked at twice');
     await elsewhere.keyboard.press('Tab');
     await untilSaid(elsewhere, /stored/);
-    await page.getByLabel('Confidence').selectOption('unsure');
+    await page.getByRole('combobox', { name: /^Confidence/ }).selectOption('unsure');
     await untilSaid(page, /stored/);
     await expect.poll(() => page.getByRole('textbox', { name: 'Note' }).inputValue()).toBe('looked at twice');
     await page.getByRole('textbox', { name: 'Note' }).fill('mine');
