@@ -85,7 +85,7 @@ describe('the sheet of keys', () => {
     const sheet = mountSheet();
     await putOn(sheet, 'write a note', { code: 'KeyX', key: 'x' });
     await putOn(sheet, 'make one', { code: 'KeyZ', key: 'z' });
-    await sheet.get('button[aria-label="make one: back to its first key"]').trigger('click');
+    await sheet.get('button[aria-label="reset: make one"]').trigger('click');
     expect(useHotkeySettings().settings.value.remapped).toEqual({ 'bench.note': 'KeyX' });
     await sheet
       .findAll('button')
