@@ -79,9 +79,11 @@ const visits: Record<DemoPerson | 'nobody', Visit[]> = {
   ],
 };
 
-const looks = (['light', 'dark'] as const).flatMap((colorScheme) =>
-  [1280, 768].map((width) => ({ colorScheme, width })),
-);
+/** Each theme and each width once: what goes wrong with both together has not been seen yet, and costs minutes. */
+const looks = [
+  { colorScheme: 'light', width: 1280 },
+  { colorScheme: 'dark', width: 768 },
+] as const;
 
 describe('every page', () => {
   test('is visited here', () => {
