@@ -43,7 +43,7 @@ const RISING = [
   ['lowHz', 'highHz'],
 ] as const;
 
-/** A field that only makes sense beside another goes with it. */
+/** A field that only makes sense beside another goes with it, where that one was changed. */
 const GOES_WITH: Readonly<Record<string, string>> = { rawStartSample: 'startSample', candidateId: 'origin' };
 
 /** How a mark was made, not what it says: nobody is asked about these. */
@@ -61,9 +61,10 @@ export function mergeFields<Form extends object>(input: MergeInput<Form>): Merge
   const isClash = (name: string) => isMine(name) && isTheirs(name) && !isSameValue(mine[name], theirs[name]);
   const sideOf = (name: string) => (isClash(name) ? prefer : isMine(name) ? 'mine' : 'theirs');
   const names = Object.keys(mine);
+  const isMoved = (name: string) => name in mine && (isMine(name) || isTheirs(name));
   const pick = (name: string) => {
     const lead = GOES_WITH[name];
-    return (sideOf(lead !== undefined && lead in mine ? lead : name) === 'mine' ? mine : theirs)[name];
+    return (sideOf(lead !== undefined && isMoved(lead) ? lead : name) === 'mine' ? mine : theirs)[name];
   };
   const merged = Object.fromEntries(names.map((name) => [name, pick(name)]));
   const turned = RISING.flatMap((pair) => (isTurned(merged, pair) ? keepPair(merged, pair) : []));

@@ -95,6 +95,11 @@ describe('taking a change back', () => {
     expect(takeBack({ ...crack, note: 'more' }, crack, null)).toBeUndefined();
   });
 
+  it('brings back that a start was picked, also where picking had not moved it', () => {
+    const picked = { ...crack, rawStartSample: crack.startSample, uncertaintySamples: 0.1 };
+    expect(takeBack(crack, crack, picked)).toEqual(picked);
+  });
+
   it('removes what was set, and sets what was deleted', () => {
     expect(takeBack(crack, crack, null)).toBeNull();
     expect(takeBack(null, null, crack)).toEqual(crack);
