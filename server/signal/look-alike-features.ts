@@ -1,3 +1,5 @@
+import { median } from './noise-floor.ts';
+
 /** What the detector tells of each candidate, a value for each; NaN where it tells nothing. */
 export interface CandidateDescriptors {
   peakFrequencyHz: Float64Array;
@@ -67,7 +69,6 @@ function within(units: number): number {
 
 /** Of the values that are numbers; 0 where there is none. */
 function medianOfTold(values: Float64Array): number {
-  const told = values.filter((value) => !Number.isNaN(value)).sort();
-  if (told.length === 0) return 0;
-  return (told[(told.length - 1) >> 1]! + told[told.length >> 1]!) / 2;
+  const told = values.filter((value) => !Number.isNaN(value));
+  return told.length === 0 ? 0 : median(told);
 }

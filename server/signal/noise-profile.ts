@@ -1,5 +1,6 @@
 import { realFft } from './fft.ts';
 import { hannWindow } from './hann.ts';
+import { median } from './noise-floor.ts';
 
 /** What a noise looks like: power of each line of a transform of `size` samples under a Hann window, smoothed over its neighbours. */
 export interface NoiseProfile {
@@ -64,17 +65,10 @@ export class NoiseProfiler {
     const column = new Float64Array(this.#frames.length);
     const power = Float64Array.from({ length: lines }, (_, k) => {
       for (const [t, frame] of this.#frames.entries()) column[t] = frame[k]!;
-      return medianOf(column) * MEDIAN_TO_MEAN;
+      return column.length === 0 ? 0 : median(column) * MEDIAN_TO_MEAN;
     });
     return { size: this.size, power: smoothLines(power) };
   }
-}
-
-function medianOf(values: Float64Array): number {
-  if (values.length === 0) return 0;
-  const sorted = values.toSorted();
-  const half = sorted.length >> 1;
-  return sorted.length % 2 === 1 ? sorted[half]! : (sorted[half - 1]! + sorted[half]!) / 2;
 }
 
 /** |X[k]|^2 of a frame under a periodic Hann window, k from 0 to N / 2. */

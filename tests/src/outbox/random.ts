@@ -1,12 +1,8 @@
-/** A generator of the same numbers for the same seed (mulberry32, from memory). */
+import { seededRandom } from '@shared/lib/seeded-random.ts';
+
+/** What the model draws, the same for the same seed. */
 export function createRandom(seed: number) {
-  let state = seed >>> 0;
-  const next = (): number => {
-    state = (state + 0x6d2b79f5) >>> 0;
-    let mixed = Math.imul(state ^ (state >>> 15), state | 1);
-    mixed ^= mixed + Math.imul(mixed ^ (mixed >>> 7), mixed | 61);
-    return ((mixed ^ (mixed >>> 14)) >>> 0) / 2 ** 32;
-  };
+  const next = seededRandom(seed);
   return {
     next,
     below: (limit: number) => Math.floor(next() * limit),

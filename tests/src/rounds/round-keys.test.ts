@@ -1,4 +1,4 @@
-import { describe, expect, it, vi } from 'vitest';
+import { describe, expect, it } from 'vitest';
 import { labelSchemeV1 } from '@shared/domain/label-scheme.ts';
 import { benchHotkeys } from '@/composables/bench/bench-hotkeys.ts';
 import { withKeys } from '@/composables/bench/class-keys.ts';
@@ -6,26 +6,10 @@ import type { Bench } from '@/composables/bench/useBench.ts';
 import { comboFault, firstClash } from '@/composables/key-remap.ts';
 import { ROUND_KEYS, withRoundKeys } from '@/composables/rounds/round-keys.ts';
 import type { Round } from '@/composables/rounds/useRound.ts';
+import { anything, idlePage } from '../bench/idle-bench.ts';
 
-/** Parts that are all there and do nothing: enough to ask for keys. */
-function anything(): object {
-  const part: object = new Proxy(() => undefined, { get: (_, name) => (name === 'value' ? true : part) });
-  return part;
-}
-
-const page = {
-  showKeys: vi.fn(),
-  nextColours: vi.fn(),
-  otherView: vi.fn(),
-  editNote: vi.fn(),
-  showSteps: vi.fn(),
-  showTable: vi.fn(),
-  copyLink: vi.fn(),
-  say: vi.fn(),
-  chooseClass: vi.fn(),
-};
 const bench = anything() as Bench;
-const ofBench = benchHotkeys(bench, withKeys(labelSchemeV1), page);
+const ofBench = benchHotkeys(bench, withKeys(labelSchemeV1), idlePage);
 const hotkeys = withRoundKeys(ofBench, bench, anything() as Round);
 
 describe('the keys of a round', () => {

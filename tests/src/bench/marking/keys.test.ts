@@ -1,5 +1,5 @@
 import fc from 'fast-check';
-import { describe, expect, it, vi } from 'vitest';
+import { describe, expect, it } from 'vitest';
 import { labelSchemeV1 } from '@shared/domain/label-scheme.ts';
 import { benchHotkeys } from '@/composables/bench/bench-hotkeys.ts';
 import { withKeys } from '@/composables/bench/class-keys.ts';
@@ -8,27 +8,11 @@ import type { Round } from '@/composables/rounds/useRound.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
 import { comboFault, firstClash, NO_KEY, remapKey, resetKey } from '@/composables/key-remap.ts';
 import { combosInForce } from '@/composables/useHotkeys.ts';
+import { anything, idlePage } from '../idle-bench.ts';
 
-/** Every part of it is there and does nothing: enough to ask for the keys of a bench or a round. */
-function anything(): unknown {
-  const part: object = new Proxy(() => undefined, { get: (_, name) => (name === 'value' ? true : part) });
-  return part;
-}
-
-const page = {
-  showKeys: vi.fn(),
-  nextColours: vi.fn(),
-  otherView: vi.fn(),
-  editNote: vi.fn(),
-  showSteps: vi.fn(),
-  showTable: vi.fn(),
-  copyLink: vi.fn(),
-  say: vi.fn(),
-  chooseClass: vi.fn(),
-};
 const classes = withKeys(labelSchemeV1);
 const bench = anything() as Bench;
-const hotkeys = benchHotkeys(bench, classes, page);
+const hotkeys = benchHotkeys(bench, classes, idlePage);
 
 describe('the keys of the bench', () => {
   it('are each the key of one action or class alone', () => {
