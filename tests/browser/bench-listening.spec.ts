@@ -6,6 +6,7 @@ import { bytesSource } from '../../shared/audio/byte-source.ts';
 import { decodeFrames } from '../../shared/audio/pcm-decode.ts';
 import { readWavHeader } from '../../shared/audio/wav-header.ts';
 import { checkAxe } from '../support/browser/axe.ts';
+import { requirePass } from '../support/browser/bench-page.ts';
 import { bringIn } from '../support/browser/bring-in.ts';
 import { launchChromium } from '../support/browser/chromium.ts';
 import { takeScreenshot } from '../support/browser/screenshot.ts';
@@ -143,10 +144,8 @@ describe('listening on the bench', () => {
   }) => {
     guard.expectAnswer(422, /\/listen\?/);
     await signIn(page, 'labeler');
-    const passes = await page.request.get('/api/passes?mine=true&state=assigned');
-    const { items } = (await passes.json()) as { items: { recordingId: string; blind: boolean }[] };
-    const open = items.find(({ blind }) => !blind);
-    await openBench(page, `/bench/${open?.recordingId}?from=1500000&to=1502000`);
+    const { recordingId: passOf } = await requirePass(page, { blind: false });
+    await openBench(page, `/bench/${passOf}?from=1500000&to=1502000`);
     await page.keyboard.press('Digit9');
     const stage = await page.locator('canvas.overlay').boundingBox();
     if (!stage) throw new Error('The stage is not there.');

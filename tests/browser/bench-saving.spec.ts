@@ -8,7 +8,7 @@ import {
   markNext,
   markRows,
   openBenchAt,
-  requireOpenPass,
+  requirePass,
   storedMarks,
   untilSaid,
 } from '../support/browser/bench-page.ts';
@@ -42,7 +42,7 @@ describe('marks on the bench are never lost', () => {
     // The minute passes by the clock of the page, which runs on and is put forward.
     await page.clock.install();
     await signIn(page, 'labeler');
-    const pass = await requireOpenPass(page);
+    const pass = await requirePass(page, { blind: false });
     await openBenchAt(page, pass, 200_000);
     const before = await storedMarks(page, pass);
     await page.context().setOffline(true);
@@ -66,7 +66,7 @@ describe('marks on the bench are never lost', () => {
   test('when the window is closed before they could be sent', async ({ page, guard }) => {
     guard.expectConsoleError(/ERR_FAILED/);
     await signIn(page, 'labeler');
-    const pass = await requireOpenPass(page);
+    const pass = await requirePass(page, { blind: false });
     await openBenchAt(page, pass, 400_000);
     const before = (await storedMarks(page, pass)).length;
     await page.context().route(EVENTS, (route) => route.abort());
@@ -95,7 +95,7 @@ describe('marks on the bench are never lost', () => {
 
   test('and are the same in two windows', async ({ page }) => {
     await signIn(page, 'labeler');
-    const pass = await requireOpenPass(page);
+    const pass = await requirePass(page, { blind: false });
     const other = await page.context().newPage();
     await openBenchAt(page, pass, 600_000);
     await openBenchAt(other, pass, 600_000);
@@ -128,7 +128,7 @@ describe('marks on the bench are never lost', () => {
   }) => {
     guard.expectAnswer(401, /\/api\//);
     await signIn(page, 'labeler');
-    const pass = await requireOpenPass(page);
+    const pass = await requirePass(page, { blind: false });
     await openBenchAt(page, pass, 800_000);
     const before = (await storedMarks(page, pass)).length;
     await endSession(page);
@@ -144,7 +144,7 @@ describe('marks on the bench are never lost', () => {
     guard.expectConsoleError(/ERR_FAILED/);
     guard.expectAnswer(401, /\/api\//);
     await signIn(page, 'labeler');
-    const pass = await requireOpenPass(page);
+    const pass = await requirePass(page, { blind: false });
     await openBenchAt(page, pass, 1_000_000);
     const before = (await storedMarks(page, pass)).length;
     await page.context().route(EVENTS, (route) => route.abort());
@@ -172,7 +172,7 @@ describe('marks on the bench are never lost', () => {
     await signIn(page, 'labeler');
     const elsewhere = await openPage();
     await signIn(elsewhere, 'labeler');
-    const pass = await requireOpenPass(page);
+    const pass = await requirePass(page, { blind: false });
     await openBenchAt(page, pass, 1_200_000);
     await markNext(page, 'KeyR');
     await untilSaid(page, /stored/);
@@ -225,7 +225,7 @@ describe('marks on the bench are never lost', () => {
       const page = await context.newPage();
       const headers = { Origin: origin, 'Sec-Fetch-Site': 'same-origin' };
       await page.request.post('/api/sessions', { headers, data: { email: emailOf('labeler'), password } });
-      const pass = await requireOpenPass(page);
+      const pass = await requirePass(page, { blind: false });
       await openBenchAt(page, pass, 200_000);
       const before = (await storedMarks(page, pass)).length;
       await markNext(page);

@@ -1,27 +1,10 @@
 import type { Locator, Page } from 'playwright-core';
 import { describe, expect } from 'vitest';
 import { checkAxe } from '../support/browser/axe.ts';
+import { requirePass, untilSaid } from '../support/browser/bench-page.ts';
 import { takeScreenshot } from '../support/browser/screenshot.ts';
 import { signIn } from '../support/browser/sign-in.ts';
 import { test } from '../support/browser/test.ts';
-
-interface PassFacts {
-  id: string;
-  recordingId: string;
-  blind: boolean;
-  recordingName: string;
-}
-
-async function openPasses(page: Page): Promise<PassFacts[]> {
-  const answer = await page.request.get('/api/passes?mine=true&state=assigned');
-  return ((await answer.json()) as { items: PassFacts[] }).items;
-}
-
-async function requirePass(page: Page, isBlind: boolean): Promise<PassFacts> {
-  const pass = (await openPasses(page)).find(({ blind }) => blind === isBlind);
-  if (!pass) throw new Error(`The demo has no open pass with blind: ${isBlind}.`);
-  return pass;
-}
 
 async function openBench(page: Page, address: string): Promise<void> {
   await page.goto(address);
@@ -30,10 +13,6 @@ async function openBench(page: Page, address: string): Promise<void> {
 
 function saving(page: Page): Locator {
   return page.locator('[data-saving]');
-}
-
-async function untilSaid(page: Page, words: RegExp): Promise<void> {
-  await saving(page).filter({ hasText: words }).waitFor();
 }
 
 function rows(page: Page): Locator {
@@ -48,7 +27,7 @@ async function countMarks(page: Page): Promise<number> {
 describe('the bench', () => {
   test('lets a labeler mark a blind pass with the keyboard alone, and keeps the marks', async ({ page }) => {
     await signIn(page, 'labeler');
-    const pass = await requirePass(page, true);
+    const pass = await requirePass(page, { blind: true });
     const asked: string[] = [];
     page.on('request', (request) => asked.push(request.url()));
     await openBench(page, `/bench/${pass.recordingId}?pass=${pass.id}`);
@@ -81,7 +60,7 @@ describe('the bench', () => {
 
   test('takes changes back and does them again', async ({ page }) => {
     await signIn(page, 'labeler');
-    const pass = await requirePass(page, false);
+    const pass = await requirePass(page, { blind: false });
     await openBench(page, `/bench/${pass.recordingId}?from=100000&to=200000`);
     const before = await countMarks(page);
     await page.keyboard.press('KeyS');
@@ -105,7 +84,7 @@ describe('the bench', () => {
 
   test('marks a drawn span with its band, and a candidate', async ({ page }) => {
     await signIn(page, 'labeler');
-    const pass = await requirePass(page, false);
+    const pass = await requirePass(page, { blind: false });
     await openBench(page, `/bench/${pass.recordingId}?from=1500000&to=1800000`);
     const stage = await page.locator('canvas.overlay').boundingBox();
     if (!stage) throw new Error('The stage is not there.');
@@ -147,7 +126,7 @@ describe('the bench', () => {
   }) => {
     const page = await openPage({ viewport: { width: 768, height: 1024 }, colorScheme: 'dark' });
     await signIn(page, 'labeler');
-    const pass = await requirePass(page, false);
+    const pass = await requirePass(page, { blind: false });
     await openBench(page, `/bench/${pass.recordingId}`);
     await page.keyboard.press('KeyL');
     await checkAxe(page);
@@ -162,7 +141,7 @@ describe('the bench', () => {
 
   test('plays a part slower and says what is heard', async ({ page }) => {
     await signIn(page, 'labeler');
-    const pass = await requirePass(page, false);
+    const pass = await requirePass(page, { blind: false });
     await openBench(page, `/bench/${pass.recordingId}?from=1500000&to=1560000`);
     await page.getByRole('button', { name: /^Slowed 10 times/ }).click();
     await page.getByRole('button', { name: 'Slower' }).click();

@@ -1,7 +1,8 @@
 import type { Locator, Page } from 'playwright-core';
 import { describe, expect } from 'vitest';
 import { checkAxe } from '../support/browser/axe.ts';
-import { bringIn } from '../support/browser/bring-in.ts';
+import { requirePass } from '../support/browser/bench-page.ts';
+import { bringIn, longNoise } from '../support/browser/bring-in.ts';
 import { signIn } from '../support/browser/sign-in.ts';
 import { takeScreenshot } from '../support/browser/screenshot.ts';
 import { test } from '../support/browser/test.ts';
@@ -154,13 +155,8 @@ describe('the page of a recording', () => {
 
   test('withholds from whoever works blind what would lead them, and says why', async ({ page }) => {
     await signIn(page, 'labeler');
-    const answer = await page.request.get('/api/passes?mine=true&state=assigned');
-    const { items } = (await answer.json()) as {
-      items: { recordingId: string; recordingName: string; blind: boolean }[];
-    };
-    const pass = items.find(({ blind }) => blind);
-    expect(pass).toBeDefined();
-    await openRecording(page, pass?.recordingName ?? '');
+    const pass = await requirePass(page, { blind: true });
+    await openRecording(page, pass.recordingName);
     await page.getByRole('heading', { level: 1, name: 'You work blind on this recording' }).waitFor();
     expect(await page.getByRole('heading', { name: /^Candidates/ }).count()).toBe(0);
     expect(await page.getByRole('table', { name: 'Active spans' }).count()).toBe(0);
@@ -170,7 +166,9 @@ describe('the page of a recording', () => {
 
   test('turns into the measurements while one watches', async ({ page }) => {
     await signIn(page, 'contributor');
-    const id = await bringIn(page, 'watched.wav');
+    // Those ahead of it keep the machine busy, so that it is seen waiting however quick the machine is.
+    await bringIn(page, 'ahead.wav', longNoise(240, 12));
+    const id = await bringIn(page, 'watched.wav', longNoise(30, 13));
     await page.goto(`/recordings/${id}`);
     await page.getByRole('heading', { level: 1, name: /^(Waits to be|Is being) measured$/ }).waitFor();
     await page.getByRole('progressbar', { name: 'Measured' }).waitFor();

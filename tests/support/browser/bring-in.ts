@@ -7,10 +7,10 @@ async function getJson<Body>(page: Page, address: string): Promise<Body> {
   return (await (await page.request.get(address)).json()) as Body;
 }
 
-/** Noise that is long enough to be looked at while it is measured. */
-function longNoise(): Uint8Array {
+/** Noise that takes a while to be measured. */
+export function longNoise(durationS = 30, seed = 11): Uint8Array {
   const sampleRateHz = 192_000;
-  return writeWav({ sampleRateHz, channels: [whiteNoiseSignal(30 * sampleRateHz, 0.01, 11)] });
+  return writeWav({ sampleRateHz, channels: [whiteNoiseSignal(durationS * sampleRateHz, 0.01, seed)] });
 }
 
 /** A set-up with a sensor of this band, in the lab whose runs the person may edit; resolves to its id. */
