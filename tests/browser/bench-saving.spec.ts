@@ -131,6 +131,8 @@ describe('marks on the bench are never lost', () => {
     const pass = await requirePass(page, { blind: false });
     await openBenchAt(page, pass, 800_000);
     const before = (await storedMarks(page, pass)).length;
+    // Otherwise a piece of the picture may ask for the sign-in before the mark is made.
+    await page.waitForLoadState('networkidle');
     await endSession(page);
     await markNext(page);
     await page.getByRole('dialog', { name: 'Sign in again to go on' }).waitFor();
