@@ -104,7 +104,7 @@ describe('the bench', () => {
       .getByRole('button', { name: /crack\b/ })
       .click();
     await untilSaid(page, /stored/);
-    await page.getByRole('heading', { name: /1 confirmed yet|[1-9]\d* confirmed yet/ }).waitFor();
+    await page.getByRole('heading', { name: /candidates, [1-9]\d* confirmed/ }).waitFor();
   });
 
   test('shows a recording without a lane of classes to those who only look', async ({ page }) => {
