@@ -14,6 +14,7 @@ import { useRegion } from '@/composables/bench/useRegion.ts';
 import { useInHand } from '@/composables/bench/useInHand.ts';
 import { useListening } from '@/composables/bench/useListening.ts';
 import { useSelection } from '@/composables/bench/useSelection.ts';
+import { markRoom } from '@/composables/pass/mark-room.ts';
 import { useCoverage } from '@/composables/pass/useCoverage.ts';
 
 export type Bench = ReturnType<typeof useBench>;
@@ -36,7 +37,8 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   const { channel, plotWidthPx } = sources;
   const passId = canMark ? pass.id : null;
   const named = { recordingId: recording.id, title: recording.runTitle, sampleRateHz };
-  const marks = useBenchMarks({ ...named, passId, scheme, events });
+  const room = markRoom(pass?.windows ?? null, frames);
+  const marks = useBenchMarks({ ...named, passId, scheme, events, room });
   const { container } = recording.format;
   const sound = { sampleRateHz, channels: layout.channels, container, channel };
   const listening = useListening({ recordingId: recording.id, ...sound });
@@ -57,13 +59,12 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     areCandidatesShown,
     aidsInUse: () => listening.aidsInUse(inHand.span.value),
   });
-  const snapping = useOnsetSnap({ recordingId: recording.id, marks });
-  const place = { view, marks, markSample, plotWidthPx, circumstances };
+  const snapping = useOnsetSnap({ recordingId: recording.id, marks, room });
+  const place = { view, marks, markSample, plotWidthPx, circumstances, room };
   const hand = useMarkHand({ frames, sampleRateHz, channel, ...place });
   const taken = { draft, selectedCandidate, channel };
-  const { isOutside } = coverage;
   const onSet = (key: string) => void snapping.snapFresh(key);
-  const classKey = useClassKey({ layout, scheme, canMark, isOutside, ...place, ...taken, onSet });
+  const classKey = useClassKey({ layout, scheme, canMark, ...place, ...taken, onSet });
   const region = useRegion({ recordingId: recording.id, layout, ...place, ...taken });
 
   function letGo(): void {

@@ -10,6 +10,8 @@ import { useMarkHistory } from '@/composables/bench/marking/useMarkHistory.ts';
 import { useMarkSelection } from '@/composables/bench/marking/useMarkSelection.ts';
 import { useMarkSaving } from '@/composables/bench/useMarkSaving.ts';
 import type { ShownMark } from '@/composables/bench/mark-ledger.ts';
+import { OUTSIDE_WORDS } from '@/composables/pass/mark-room.ts';
+import type { MarkRoom } from '@/composables/pass/mark-room.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 
 export interface BenchMarksOptions {
@@ -21,6 +23,7 @@ export interface BenchMarksOptions {
   passId: string | null;
   scheme: LabelScheme;
   events: readonly RecordingEvent[];
+  room: Pick<MarkRoom, 'isOutside'>;
 }
 
 /** One thing that is done to marks, however many they are. */
@@ -106,7 +109,7 @@ export function useBenchMarks(options: BenchMarksOptions) {
     }
   }
 
-  /** Marks of others stay as they are; what would change nothing is no step. */
+  /** Marks of others stay as they are; what would change nothing is no step; what cannot be stored is not done. */
   function apply({ name, what, edits }: MarkDeed): boolean {
     const changes = edits.flatMap(({ key, after }) => {
       const present = byKey.value.get(key);
@@ -114,6 +117,10 @@ export function useBenchMarks(options: BenchMarksOptions) {
       return [{ key, before: present ? fieldsOf(present) : null, after }];
     });
     if (changes.length === 0 || !passId) return false;
+    if (changes.some(({ after }) => after && options.room.isOutside(after.startSample))) {
+      void announce(OUTSIDE_WORDS);
+      return false;
+    }
     history.push({ name, what, changes, atMs: Date.now() });
     put(changes.map(({ key, after }) => ({ key, fields: after })));
     return true;

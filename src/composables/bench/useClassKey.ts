@@ -13,11 +13,12 @@ import type { DraftSpan } from '@/composables/bench/new-mark.ts';
 import { pixelAtSample } from '@/composables/bench/time-axis.ts';
 import type { BenchMarks } from '@/composables/bench/useBenchMarks.ts';
 import type { BenchWindow } from '@/composables/bench/useBenchWindow.ts';
+import { OUTSIDE_WORDS } from '@/composables/pass/mark-room.ts';
+import type { MarkRoom } from '@/composables/pass/mark-room.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 
 /** A class key changes the selected mark where the cursor is this near to it; elsewhere it sets a new one. */
 const NEAR_PX = 10;
-const OUTSIDE_WORDS = 'Outside the windows of this pass: no mark is set here';
 
 export interface ClassKeyParts extends Pick<BenchData, 'layout' | 'scheme'> {
   canMark: boolean;
@@ -28,8 +29,7 @@ export interface ClassKeyParts extends Pick<BenchData, 'layout' | 'scheme'> {
   markSample: Ref<number>;
   channel: Ref<number>;
   plotWidthPx: Ref<number>;
-  /** In a pass of windows: whether a mark that begins here lies in none of them. */
-  isOutside: (sample: number) => boolean;
+  room: MarkRoom;
   circumstances: Circumstances;
   /** A new mark was set. */
   onSet: (key: string) => void;
@@ -71,7 +71,7 @@ export function useClassKey(parts: ClassKeyParts) {
   const intent = computed(() => {
     if (!canMark) return '';
     const at = timeWords(markSample.value, sampleRateHz);
-    if (!marked.value && !several.value && parts.isOutside(startOfNew())) return OUTSIDE_WORDS;
+    if (!marked.value && !several.value && parts.room.isOutside(startOfNew())) return OUTSIDE_WORDS;
     if (draft.value) return 'A class key marks the drawn span';
     if (several.value)
       return `A class key changes the ${several.value.length} selected marks; Esc lets them go`;
@@ -102,7 +102,7 @@ export function useClassKey(parts: ClassKeyParts) {
       return;
     }
     const fields = fieldsFor(classKey, isLessSure);
-    if (parts.isOutside(fields.startSample)) {
+    if (parts.room.isOutside(fields.startSample)) {
       void announce(OUTSIDE_WORDS);
       return;
     }

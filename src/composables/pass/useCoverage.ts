@@ -14,7 +14,7 @@ import {
 import type { CoveredSpan } from '@shared/domain/coverage-rule.ts';
 import { partOfPass } from '@shared/domain/pass-windows.ts';
 import type { SampleSpan } from '@shared/domain/event-span.ts';
-import { holdsSample, intersectSpans, toSpanSet } from '@shared/domain/span-set.ts';
+import { intersectSpans, toSpanSet } from '@shared/domain/span-set.ts';
 import { addCoverage, getCoverage } from '@/api/coverage.ts';
 import type { BenchChannels } from '@/composables/bench/useChannels.ts';
 import { windowSamples } from '@/composables/bench/time-axis.ts';
@@ -179,7 +179,6 @@ export function useCoverage(options: CoverageOptions) {
     left,
     isCovered,
     isCloseEnough,
-    isOutside: (sample: number) => windows !== null && !holdsSample(part, Math.round(sample)),
     goTo,
     goToUnseen,
     goToWindow,

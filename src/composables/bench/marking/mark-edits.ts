@@ -7,28 +7,48 @@ export type Edge = 'start' | 'end';
 /** An edge, or the mark as a whole. */
 export type MarkPart = Edge | 'whole';
 
-/** The span with one part of it moved; it stays inside the recording and keeps at least a sample. */
-export function movedSpan(span: SampleSpan, part: MarkPart, samples: number, frames: number): SampleSpan {
+/** The span with one part of it moved; it stays inside the recording, begins inside `room` and keeps at least a sample. */
+export function movedSpan(
+  span: SampleSpan,
+  part: MarkPart,
+  samples: number,
+  frames: number,
+  room: SampleSpan = wholeOf(frames),
+): SampleSpan {
   const { startSample, endSample } = span;
-  if (part === 'start')
-    return clampSpan({ startSample: Math.min(startSample + samples, endSample - 1), endSample }, frames);
+  if (part === 'start') {
+    const latest = Math.min(endSample, room.endSample) - 1;
+    const moved = Math.max(room.startSample, Math.min(startSample + samples, latest));
+    return clampSpan({ startSample: moved, endSample }, frames);
+  }
   if (part === 'end')
     return clampSpan({ startSample, endSample: Math.max(endSample + samples, startSample + 1) }, frames);
-  const shift = fittedShift([span], samples, frames);
+  const shift = fittedShift([span], samples, frames, () => room);
   return { startSample: startSample + shift, endSample: endSample + shift };
 }
 
-/** How far all of these spans can be moved together without one leaving the recording; whole samples. */
-export function fittedShift(spans: readonly SampleSpan[], samples: number, frames: number): number {
-  const room = spans.reduce(
-    (least, { startSample, endSample }) => ({
-      before: Math.min(least.before, startSample),
-      after: Math.min(least.after, frames - endSample),
-    }),
-    { before: Infinity, after: Infinity },
-  );
+/**
+ * How far all of these spans can be moved together without one leaving the recording, or beginning outside of the room
+ * around its start; whole samples.
+ */
+export function fittedShift(
+  spans: readonly SampleSpan[],
+  samples: number,
+  frames: number,
+  roomAround: (startSample: number) => SampleSpan = () => wholeOf(frames),
+): number {
+  const least = { before: Infinity, after: Infinity };
+  for (const { startSample, endSample } of spans) {
+    const room = roomAround(startSample);
+    least.before = Math.min(least.before, startSample - room.startSample);
+    least.after = Math.min(least.after, frames - endSample, room.endSample - 1 - startSample);
+  }
   if (spans.length === 0) return 0;
-  return Math.max(-Math.max(0, room.before), Math.min(Math.max(0, room.after), Math.round(samples)));
+  return Math.max(-Math.max(0, least.before), Math.min(Math.max(0, least.after), Math.round(samples)));
+}
+
+function wholeOf(frames: number): SampleSpan {
+  return { startSample: 0, endSample: frames };
 }
 
 /** Two marks of one, parted before this sample; `null` where it lies on an edge or outside. */

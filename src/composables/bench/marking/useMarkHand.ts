@@ -19,6 +19,7 @@ import type { NudgeUnit } from '@/composables/bench/marking/nudge-step.ts';
 import type { Circumstances } from '@/composables/bench/marking/useCircumstances.ts';
 import type { BenchMarks } from '@/composables/bench/useBenchMarks.ts';
 import type { BenchWindow } from '@/composables/bench/useBenchWindow.ts';
+import type { MarkRoom } from '@/composables/pass/mark-room.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 
 export interface MarkHandParts {
@@ -31,11 +32,14 @@ export interface MarkHandParts {
   markSample: Ref<number>;
   plotWidthPx: Ref<number>;
   circumstances: Circumstances;
+  room: MarkRoom;
 }
+
+const EDGE_WORDS = 'A mark begins inside its window: it stops at the edge';
 
 /** What is done to the marks in hand, one or several: each is one step that can be taken back. */
 export function useMarkHand(parts: MarkHandParts) {
-  const { frames, sampleRateHz, view, marks, markSample, plotWidthPx, circumstances } = parts;
+  const { frames, sampleRateHz, view, marks, markSample, plotWidthPx, circumstances, room } = parts;
   const { announce } = useAnnounce();
   const nudgeUnit = useLocalStorage<NudgeUnit>('recalesce.bench.nudge', 'pixel');
   const stepSamples = computed(() =>
@@ -54,16 +58,27 @@ export function useMarkHand(parts: MarkHandParts) {
     const mark = marks.selected.value;
     if (!mark) return;
     const from = edge === 'start' ? mark.startSample : mark.endSample;
-    marks.change(mark.key, placed(mark, movedSpan(mark, edge, sample - from, frames)), edge);
+    const span = moved(mark, edge, sample - from);
+    marks.change(mark.key, placed(mark, span), edge);
+    if (edge === 'start') tellOfEdge(sample, span.startSample);
+  }
+
+  const moved = (mark: BenchMark, part: MarkPart, samples: number) =>
+    movedSpan(mark, part, samples, frames, room.around(mark.startSample));
+
+  function tellOfEdge(wantedSample: number, startSample: number): void {
+    if (wantedSample !== startSample && room.isOutside(wantedSample)) void announce(EDGE_WORDS);
   }
 
   /** Several marks keep their distances, unless only an edge of each is moved. */
   function nudge(part: MarkPart, direction: 1 | -1): void {
     const samples = direction * stepSamples.value;
-    const shift = part === 'whole' ? fittedShift(own.value, samples, frames) : samples;
-    const values = (mark: BenchMark) => placed(mark, movedSpan(mark, part, shift, frames));
+    const shift = part === 'whole' ? fittedShift(own.value, samples, frames, room.around) : samples;
+    const values = (mark: BenchMark) => placed(mark, moved(mark, part, shift));
+    const starts = own.value.map(({ startSample }) => startSample);
     if (part === 'whole') marks.changeAll(ownKeys(), values, 'move', (marked) => `${marked} moved`);
     else marks.changeAll(ownKeys(), values, part);
+    if (part !== 'end' && starts.some((start) => room.isOutside(start + samples))) void announce(EDGE_WORDS);
   }
 
   function cycleUnit(): void {

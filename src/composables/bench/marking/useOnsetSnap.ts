@@ -7,6 +7,7 @@ import type { BenchMark, MarkFields } from '@/composables/bench/mark.ts';
 import { timeWords } from '@/composables/bench/mark-words.ts';
 import { zoomUncertainty } from '@/composables/bench/marking/onset-words.ts';
 import type { BenchMarks } from '@/composables/bench/useBenchMarks.ts';
+import type { MarkRoom } from '@/composables/pass/mark-room.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 
 /** Asked for, an answer is waited for; unasked, a mark does not move any more after so long. */
@@ -20,8 +21,14 @@ interface Asked {
   problem: string;
 }
 
+export interface OnsetSnapParts {
+  recordingId: string;
+  marks: BenchMarks;
+  room: Pick<MarkRoom, 'isOutside'>;
+}
+
 /** Moves starts to the onset that is picked on the samples, and back to where the person had put them. */
-export function useOnsetSnap({ recordingId, marks }: { recordingId: string; marks: BenchMarks }) {
+export function useOnsetSnap({ recordingId, marks, room }: OnsetSnapParts) {
   /** Whether new marks are moved as soon as they are set. */
   const snapsNew = useLocalStorage('recalesce.bench.snap-new', false);
   const isPicking = ref(false);
@@ -59,6 +66,8 @@ export function useOnsetSnap({ recordingId, marks }: { recordingId: string; mark
     );
   }
 
+  const isOutside = (onset: number | null | undefined) => typeof onset === 'number' && room.isOutside(onset);
+
   async function snap(keys: readonly string[], patienceMs = ASKED_MS): Promise<void> {
     const own = marks.ownOf(keys);
     if (own.length === 0) return;
@@ -66,7 +75,9 @@ export function useOnsetSnap({ recordingId, marks }: { recordingId: string; mark
     const answers = await Promise.all(own.map((mark) => ask(mark, patienceMs)));
     isPicking.value = false;
     if (leaving.signal.aborted) return;
-    const found = answers.filter((one) => isAsItWas(one) && pickedValues(one) !== null);
+    const found = answers.filter(
+      (one) => isAsItWas(one) && pickedValues(one) !== null && !isOutside(one.answer?.onsetSample),
+    );
     const values = new Map(found.map((one) => [one.mark.key, pickedValues(one) ?? {}]));
     const nameOf = (marked: string) => `${marked} moved to the picked onset`;
     marks.changeAll([...values.keys()], ({ key }) => values.get(key) ?? {}, 'snap', nameOf);
@@ -83,6 +94,7 @@ export function useOnsetSnap({ recordingId, marks }: { recordingId: string; mark
     if (!isAsItWas(first) && found.length === 0)
       return 'The mark was changed meanwhile and stays as you made it.';
     if (onset >= first.mark.endSample) return 'The onset lies after the end of the mark.';
+    if (isOutside(onset)) return 'The onset lies outside the windows of this pass.';
     return `Starts at the picked onset, ${timeWords(onset, marks.speech.sampleRateHz)}`;
   }
 

@@ -6,6 +6,7 @@ import { clientProblem } from '@/api/problem-error.ts';
 import type { BenchMark, MarkFields } from '@/composables/bench/mark.ts';
 import { useOnsetSnap } from '@/composables/bench/marking/useOnsetSnap.ts';
 import type { BenchMarks } from '@/composables/bench/useBenchMarks.ts';
+import { markRoom } from '@/composables/pass/mark-room.ts';
 import { benchMark } from './mark-fixture.ts';
 
 vi.mock('@/api/onsets.ts', () => ({ pickOnset: vi.fn() }));
@@ -30,7 +31,8 @@ function snapping(marks: readonly BenchMark[]) {
       return keys.length > 0;
     },
   };
-  const parts = { recordingId: 'r', marks: fake as unknown as BenchMarks };
+  const room = markRoom([{ startSample: 900, endSample: 5200 }], 10_000);
+  const parts = { recordingId: 'r', marks: fake as unknown as BenchMarks, room };
   const snap = effectScope().run(() => useOnsetSnap(parts));
   if (!snap) throw new Error('The scope is not active.');
   return snap;
@@ -102,6 +104,15 @@ describe('moving a start to the picked onset', () => {
     picked.mockRejectedValueOnce(new DOMException('late', 'TimeoutError'));
     await snap.snap(['a']);
     expect(snap.outcome.value).toBe('The picker did not answer in time. The mark stays where you put it.');
+    expect(held.get('a')).toEqual(benchMark());
+    expect(steps).not.toHaveBeenCalled();
+  });
+
+  it('leaves a mark whose onset lies before its window, and says so', async () => {
+    const snap = snapping([benchMark()]);
+    picked.mockResolvedValueOnce(found(899));
+    await snap.snap(['a']);
+    expect(snap.outcome.value).toBe('The onset lies outside the windows of this pass.');
     expect(held.get('a')).toEqual(benchMark());
     expect(steps).not.toHaveBeenCalled();
   });
