@@ -1,13 +1,15 @@
 import { createMongoAbility } from '@casl/ability';
 import { unpackRules } from '@casl/ability/extra';
 import type { PackRule } from '@casl/ability/extra';
+import { useEventListener } from '@vueuse/core';
 import { defineStore } from 'pinia';
-import { computed, ref, shallowRef } from 'vue';
+import { computed, onScopeDispose, ref, shallowRef } from 'vue';
 import { abilityFor } from '@shared/policy/ability.ts';
 import type { AppAbility } from '@shared/policy/ability.ts';
 import type { CurrentUser, SignIn } from '@shared/contract/sessions.ts';
 import { onSignInRequired } from '@/api/client.ts';
 import * as sessions from '@/api/sessions.ts';
+import { createSessionNews } from '@/stores/session-news.ts';
 
 type AppRule = AppAbility['rules'][number];
 
@@ -23,6 +25,7 @@ export const useSessionStore = defineStore('session', () => {
   /** True when the session ended while somebody was at work: a sign-in is laid over the page. */
   const hasEnded = ref(false);
   const ability = computed(() => toAbility(user.value));
+  const news = createSessionNews();
   let loading: Promise<void> | null = null;
 
   async function fetchUser(): Promise<void> {
@@ -37,11 +40,23 @@ export const useSessionStore = defineStore('session', () => {
     await loading;
   }
 
-  /** Somebody is signed in from now on. */
-  function welcome(person: CurrentUser): void {
+  function goOnAs(person: CurrentUser): void {
     user.value = person;
     isLoaded.value = true;
     hasEnded.value = false;
+  }
+
+  /** Somebody is signed in from now on. */
+  function welcome(person: CurrentUser): void {
+    goOnAs(person);
+    news.post();
+  }
+
+  /** The same person may have signed in again in another window; anybody else has to say so here. */
+  async function lookAgain(): Promise<void> {
+    if (!hasEnded.value) return;
+    const person = await sessions.getCurrentUser().catch(() => null);
+    if (person && hasEnded.value && person.id === user.value?.id) goOnAs(person);
   }
 
   async function signIn(input: SignIn): Promise<void> {
@@ -60,8 +75,15 @@ export const useSessionStore = defineStore('session', () => {
     hasEnded.value = false;
   }
 
-  onSignInRequired(() => {
-    if (user.value) hasEnded.value = true;
+  onScopeDispose(
+    onSignInRequired(() => {
+      if (user.value) hasEnded.value = true;
+    }),
+  );
+  onScopeDispose(news.listen(() => void lookAgain()));
+  useEventListener(window, 'focus', () => void lookAgain());
+  useEventListener(document, 'visibilitychange', () => {
+    if (document.visibilityState === 'visible') void lookAgain();
   });
 
   return { user, isLoaded, hasEnded, ability, load, refresh: fetchUser, welcome, signIn, signOut, forget };

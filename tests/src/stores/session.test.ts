@@ -1,10 +1,12 @@
 import { packRules } from '@casl/ability/extra';
-import { createPinia, setActivePinia } from 'pinia';
+import { createPinia, disposePinia, setActivePinia } from 'pinia';
+import type { Pinia } from 'pinia';
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
 import { abilityFor } from '@shared/policy/ability.ts';
 import type { CurrentUser } from '@shared/contract/sessions.ts';
 import { apiGet } from '@/api/client.ts';
 import { useAbility } from '@/composables/useAbility.ts';
+import { createSessionNews } from '@/stores/session-news.ts';
 import { useSessionStore } from '@/stores/session.ts';
 import { z } from 'zod';
 
@@ -21,11 +23,15 @@ function contributor(): CurrentUser {
 
 const fetchMock = vi.fn<typeof fetch>();
 
+let pinia: Pinia;
+
 beforeEach(() => {
-  setActivePinia(createPinia());
+  pinia = createPinia();
+  setActivePinia(pinia);
   vi.stubGlobal('fetch', fetchMock);
 });
 afterEach(() => {
+  disposePinia(pinia);
   vi.unstubAllGlobals();
   fetchMock.mockReset();
 });
@@ -80,11 +86,66 @@ describe('the session', () => {
   it('is marked as ended, with the person kept, when the server asks to sign in', async () => {
     const session = useSessionStore();
     session.welcome(contributor());
-    const problem = { type: 't', title: 't', status: 401, detail: 'd', requestId: 'r', fields: [] };
-    const body = JSON.stringify({ ...problem, code: 'sign-in-required' });
-    fetchMock.mockResolvedValueOnce(new Response(body, { status: 401 }));
-    await apiGet('/api/runs', z.unknown()).catch(() => undefined);
+    await endSession();
     expect(session.hasEnded).toBe(true);
     expect(session.user?.name).toBe('Tomasz');
+  });
+});
+
+async function endSession(): Promise<void> {
+  const problem = { type: 't', title: 't', status: 401, detail: 'd', requestId: 'r', fields: [] };
+  const body = JSON.stringify({ ...problem, code: 'sign-in-required' });
+  fetchMock.mockResolvedValueOnce(new Response(body, { status: 401 }));
+  await apiGet('/api/runs', z.unknown()).catch(() => undefined);
+}
+
+describe('a session that has ended in several windows', () => {
+  const answers = (user: CurrentUser | null) =>
+    fetchMock.mockImplementation(() => Promise.resolve(new Response(JSON.stringify({ user }))));
+
+  async function endedSession() {
+    const session = useSessionStore();
+    session.welcome(contributor());
+    await endSession();
+    fetchMock.mockClear();
+    return session;
+  }
+
+  it('goes on in all of them once the same person has signed in in one', async () => {
+    const session = await endedSession();
+    answers(contributor());
+    const elsewhere = createSessionNews();
+    elsewhere.post();
+    await vi.waitFor(() => expect(session.hasEnded).toBe(false));
+    expect(session.user?.name).toBe('Tomasz');
+  });
+
+  it('goes on when its window is looked at again, where the windows cannot tell each other', async () => {
+    const session = await endedSession();
+    answers(contributor());
+    window.dispatchEvent(new Event('focus'));
+    await vi.waitFor(() => expect(session.hasEnded).toBe(false));
+  });
+
+  it('waits on where somebody else signed in, nobody, or the server does not answer', async () => {
+    const session = await endedSession();
+    answers({ ...contributor(), id: otherLab });
+    window.dispatchEvent(new Event('focus'));
+    await vi.waitFor(() => expect(fetchMock).toHaveBeenCalledTimes(1));
+    answers(null);
+    window.dispatchEvent(new Event('focus'));
+    await vi.waitFor(() => expect(fetchMock).toHaveBeenCalledTimes(2));
+    fetchMock.mockRejectedValueOnce(new TypeError('Failed to fetch'));
+    window.dispatchEvent(new Event('focus'));
+    await vi.waitFor(() => expect(fetchMock).toHaveBeenCalledTimes(3));
+    await new Promise((resolve) => setTimeout(resolve));
+    expect(session.hasEnded).toBe(true);
+    expect(session.user?.id).toBe(id);
+  });
+
+  it('asks nothing while it lasts', () => {
+    useSessionStore().welcome(contributor());
+    window.dispatchEvent(new Event('focus'));
+    expect(fetchMock).not.toHaveBeenCalled();
   });
 });
