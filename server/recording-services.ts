@@ -75,7 +75,7 @@ export function createRecordingServices(ground: Ground, audit: AuditService): Re
   const candidates = createCandidatesService({ ...ground, recordingViews });
   const listening = createListeningService({ recordingViews, readStoredAudio });
   const regions = createRegionsService({ recordingViews, readStoredAudio });
-  const onsets = createOnsetsService({ recordingViews, readStoredAudio });
+  const onsets = createOnsetsService({ ...ground, recordingViews, readStoredAudio });
   const measureFile = createMeasureFile(ground);
   const measuring = createMeasuringService({ ...ground, audit, viewFolders, readStoredAudio, measureFile });
   const measuringRequests = createMeasuringRequestsService({ ...ground, audit, recordings });

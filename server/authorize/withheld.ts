@@ -1,5 +1,6 @@
-import { eq, inArray, sql, type SQL } from 'drizzle-orm';
+import { and, eq, inArray, sql, type SQL } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/sqlite-core';
+import type { PassWindow } from '../../shared/contract/passes.ts';
 import type { Actor } from '../../shared/policy/actor.ts';
 import type { Reader } from '../db/client.ts';
 import { passes } from '../db/schema/events.ts';
@@ -61,4 +62,15 @@ export function selectWithheld(
 
 export function withheldOf(db: Reader, actor: Actor, recordingId: string): Withheld {
   return selectWithheld(db, actor, [recordingId]).get(recordingId) ?? nothing;
+}
+
+/** The windows of an open blind pass of this person; `null` where nothing is limited to windows. */
+export function blindWindowsOf(db: Reader, actor: Actor, recordingId: string): PassWindow[] | null {
+  const isOpenAndBlind = and(
+    eq(passes.recordingId, recordingId),
+    eq(passes.labelerId, actor.id),
+    eq(passes.state, 'assigned'),
+    eq(passes.blind, true),
+  );
+  return db.select({ windows: passes.windows }).from(passes).where(isOpenAndBlind).get()?.windows ?? null;
 }

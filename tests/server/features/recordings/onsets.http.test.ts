@@ -1,4 +1,6 @@
+import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
+import { passes } from '../../../../server/db/schema/events.ts';
 import { onsetAnswerSchema } from '../../../../shared/contract/onset.ts';
 import { seedAssigned } from '../../../support/server/seed-marking.ts';
 import { seedMeasured } from '../../../support/server/seed-recordings.ts';
@@ -47,5 +49,26 @@ describe('the onset of a span', () => {
       .as('labeler')
       .get(`/api/recordings/${recordingId}/onset?startSample=9800&endSample=10200`);
     expect(answer.status).toBe(200);
+  });
+
+  test('is looked for inside the window alone where a blind pass has windows', async () => {
+    const { recordingId, passId } = await seedAssigned(app, { blind: true });
+    const windows = [{ startSample: 9400, endSample: 9700, stratum: 0 }];
+    app.deps.db.update(passes).set({ windows }).where(eq(passes.id, passId)).run();
+    const asked = async (tail: string, who: 'labeler' | 'contributor') => {
+      const { body } = await app.as(who).get(`/api/recordings/${recordingId}/onset?${tail}`);
+      return onsetAnswerSchema.parse(body);
+    };
+    const inside = await asked('startSample=9550&endSample=9800', 'labeler');
+    expect(Math.abs((inside.onsetSample ?? 0) - 9600)).toBeLessThanOrEqual(2);
+    const atEdge = await asked('startSample=9404&endSample=9800', 'labeler');
+    expect(atEdge.reason).toBe(
+      'The span begins with the window: there is no quiet before it to compare with.',
+    );
+    const outside = 'startSample=9390&endSample=9800';
+    expect((await asked(outside, 'labeler')).reason).toBe(
+      'The span begins outside the windows of this pass.',
+    );
+    expect((await asked(outside, 'contributor')).onsetSample).not.toBeNull();
   });
 });
