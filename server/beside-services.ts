@@ -1,6 +1,8 @@
 import type { AuditService } from './features/audit/audit.service.ts';
 import { createPhasesService, type PhasesService } from './features/phases/phases.service.ts';
 import { createTimelineService, type TimelineService } from './features/timeline/timeline.service.ts';
+import { createBytesTurn } from './features/videos/kept-bytes.ts';
+import { createVideoSweepService, type VideoSweepService } from './features/videos/video-sweep.service.ts';
 import { createVideosService, type VideosService } from './features/videos/videos.service.ts';
 import type { Ground } from './ground.ts';
 import type { MarkingServices } from './marking-services.ts';
@@ -11,6 +13,7 @@ export interface BesideServices {
   phases: PhasesService;
   timeline: TimelineService;
   videos: VideosService;
+  videoSweep: VideoSweepService;
 }
 
 export function createBesideServices(
@@ -26,6 +29,8 @@ export function createBesideServices(
 ): BesideServices {
   const phases = createPhasesService({ ...ground, audit, runs, passes });
   const timeline = createTimelineService({ recordings, events, phases });
-  const videos = createVideosService({ ...ground, audit, runs, passes, folder: uploadFolder });
-  return { phases, timeline, videos };
+  const inTurn = createBytesTurn();
+  const videos = createVideosService({ ...ground, audit, runs, passes, folder: uploadFolder, inTurn });
+  const videoSweep = createVideoSweepService({ ...ground, audit, inTurn });
+  return { phases, timeline, videos, videoSweep };
 }

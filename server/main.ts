@@ -42,19 +42,21 @@ async function main(): Promise<void> {
   const runner = createJobRunner({ queue: deps.jobs, handlers: allJobs(deps), log: deps.log, lanes });
   await listen(server, config);
   runner.start();
-  sweepUploads(deps);
+  sweepBytes(deps);
   exitOnTheUnexpected(deps);
   stopOnSignals({ ground, deps, server, runner, devClient });
   deps.log.info({ host: config.host, port: config.port, publicUrl: config.publicUrl }, 'listening');
   announceSetup(deps);
 }
 
-/** Uploads that nobody goes on with are cleared, at the start and every quarter of an hour. */
-function sweepUploads({ services, log }: Deps): void {
+/** Uploads that nobody goes on with, and films removed long ago, are cleared at the start and every quarter of an hour. */
+function sweepBytes({ services, log }: Deps): void {
   const sweep = () => {
-    services.uploadSweep
-      .sweep()
-      .catch((error: unknown) => log.error({ err: error }, 'clearing uploads failed'));
+    for (const { what, sweeper } of [
+      { what: 'uploads', sweeper: services.uploadSweep },
+      { what: 'removed films', sweeper: services.videoSweep },
+    ])
+      sweeper.sweep().catch((error: unknown) => log.error({ err: error }, `clearing ${what} failed`));
   };
   setInterval(sweep, sweepEveryMs).unref();
   sweep();

@@ -1,6 +1,7 @@
-import { and, asc, count, eq, isNull } from 'drizzle-orm';
+import { and, asc, count, eq, isNull, lte, ne, or } from 'drizzle-orm';
 import type { Reader } from '../../db/client.ts';
-import { videos } from '../../db/schema/beside-sound.ts';
+import { conditionTraces, videos } from '../../db/schema/beside-sound.ts';
+import { recordings } from '../../db/schema/recordings.ts';
 
 export type VideoRow = typeof videos.$inferSelect;
 
@@ -32,4 +33,31 @@ export function insertVideo(db: Reader, row: VideoRow): void {
 
 export function updateVideo(db: Reader, { id, ...values }: VideoRow): void {
   db.update(videos).set(values).where(eq(videos.id, id)).run();
+}
+
+/** Those that were removed at this instant or before it, the oldest first. */
+export function selectVideosRemovedBefore(db: Reader, atMs: number, limit: number): VideoRow[] {
+  return db
+    .select()
+    .from(videos)
+    .where(lte(videos.deletedAtMs, atMs))
+    .orderBy(asc(videos.deletedAtMs))
+    .limit(limit)
+    .all();
+}
+
+export function deleteVideo(db: Reader, id: string): void {
+  db.delete(videos).where(eq(videos.id, id)).run();
+}
+
+/** Whether anything but this film has the same bytes; a film may have come as a recording too. */
+export function isNamedElsewhere(db: Reader, { id, sha256 }: Pick<VideoRow, 'id' | 'sha256'>): boolean {
+  const isOther = and(eq(videos.sha256, sha256), ne(videos.id, id));
+  const traceBytes = or(eq(conditionTraces.sha256, sha256), eq(conditionTraces.pointsSha256, sha256));
+  return (
+    db.select({ id: videos.id }).from(videos).where(isOther).get() !== undefined ||
+    db.select({ id: recordings.id }).from(recordings).where(eq(recordings.sha256, sha256)).get() !==
+      undefined ||
+    db.select({ id: conditionTraces.id }).from(conditionTraces).where(traceBytes).get() !== undefined
+  );
 }

@@ -5,7 +5,7 @@ import type { Actor } from '../../../shared/policy/actor.ts';
 import type { Reader } from '../../db/client.ts';
 import { write } from '../../db/transaction.ts';
 import type { Ground } from '../../ground.ts';
-import { conflict, forbidden, notFound } from '../../http/problem.ts';
+import { conflict, forbidden, notFound, ProblemError } from '../../http/problem.ts';
 import { requireSameRevision } from '../../http/revision.ts';
 import type { AuditService } from '../audit/audit.service.ts';
 import type { PassesService } from '../passes/passes.service.ts';
@@ -14,6 +14,7 @@ import { hashFile } from '../uploads/hash-file.ts';
 import { plainFileName } from '../uploads/plain-file-name.ts';
 import type { UploadFolder } from '../uploads/upload-folder.ts';
 import { containerOf } from './film-boxes.ts';
+import { isKept, type createBytesTurn } from './kept-bytes.ts';
 import { readFilm, writeWithoutSound } from './read-film.ts';
 import { toVideo } from './videos.map.ts';
 import {
@@ -30,6 +31,7 @@ type Parts = Pick<Ground, 'db' | 'clock' | 'ids' | 'store'> & {
   runs: RunsService;
   passes: Pick<PassesService, 'isBlindOnRun'>;
   folder: Pick<UploadFolder, 'requireRoom'>;
+  inTurn: ReturnType<typeof createBytesTurn>;
 };
 
 /** A file to send, and how it is called. */
@@ -41,7 +43,9 @@ export interface FilmFile {
 export type VideosService = ReturnType<typeof createVideosService>;
 
 /** Films of a run. Who reads the run sees them, unless they mark a recording of it blind. */
-export function createVideosService({ db, clock, ids, store, audit, runs, passes, folder }: Parts) {
+export function createVideosService(parts: Parts) {
+  const { db, clock, ids, store, audit, runs, passes, folder, inTurn } = parts;
+
   function list(actor: Actor, runId: string): Videos {
     const run = runs.get(actor, runId);
     if (passes.isBlindOnRun(db, actor, runId)) return { items: [], isWithheld: true, mayAdd: false };
@@ -80,9 +84,12 @@ export function createVideosService({ db, clock, ids, store, audit, runs, passes
       if (hasSound) await writeWithoutSound(film.path, kept, container);
       const sha256 = await hashFile(kept);
       const { size: sizeBytes } = await stat(kept);
-      await store.putFile(kept, sha256);
       const told = { runId, container, sha256, sizeBytes, fileName: plainFileName(film.fileName), ...facts };
-      return { ...addRow(actor, told), isSoundLeftOut: hasSound };
+      const added = await inTurn(async () => {
+        await store.putFile(kept, sha256);
+        return addRow(actor, told);
+      });
+      return { ...added, isSoundLeftOut: hasSound };
     } finally {
       await rm(kept, { force: true });
     }
@@ -128,7 +135,7 @@ export function createVideosService({ db, clock, ids, store, audit, runs, passes
     });
   }
 
-  /** The bytes are still there: a removal can be taken back. */
+  /** As long as the bytes are kept, a removal can be taken back. */
   function restore(actor: Actor, id: string, revision: number): Video {
     return change(actor, id, {
       action: 'video.restored',
@@ -170,6 +177,8 @@ export function createVideosService({ db, clock, ids, store, audit, runs, passes
     if (row === undefined || run === undefined || passes.isBlindOnRun(reader, actor, row.runId))
       throw notFound('This film');
     if ((row.deletedAtMs !== null) !== isRemoved) throw notFound('This film');
+    if (row.deletedAtMs !== null && !isKept(row.deletedAtMs, clock.nowMs()))
+      throw new ProblemError('gone', 'This film was removed too long ago: its bytes are not kept any more.');
     return { row, run };
   }
 
