@@ -1,6 +1,7 @@
-import { coverageSpanSchema } from '@shared/contract/coverage.ts';
 import type { CoverageSpan } from '@shared/contract/coverage.ts';
 import { toSpanSet } from '@shared/domain/span-set.ts';
+import { createKeptCoverage, passesKept } from '@/composables/pass/kept-coverage.ts';
+import type { CoveragePlace } from '@/composables/pass/kept-coverage.ts';
 
 /** What came of sending a batch: `later` keeps it, `never` gives it up. */
 export type SendOutcome = 'stored' | 'later' | 'never';
@@ -8,8 +9,9 @@ export type SendOutcome = 'stored' | 'later' | 'never';
 export interface CoverageOutboxOptions {
   send: (spans: CoverageSpan[]) => Promise<SendOutcome>;
   /** Where what is not stored yet outlives the page. */
-  read: () => string | null;
-  write: (text: string | null) => void;
+  read: () => CoverageSpan[];
+  /** An empty list where nothing waits any more. */
+  write: (spans: readonly CoverageSpan[]) => void;
 }
 
 const MOST_IN_BATCH = 400;
@@ -19,7 +21,7 @@ const MOST_IN_BATCH = 400;
  * again as often as needed, since the server joins them too and a batch that comes twice changes nothing.
  */
 export function createCoverageOutbox({ send, read, write }: CoverageOutboxOptions) {
-  let waiting: CoverageSpan[] = restore(read());
+  let waiting: CoverageSpan[] = joinLanes(read());
   let underway: CoverageSpan[] = [];
   let sending: Promise<boolean> | null = null;
 
@@ -27,14 +29,9 @@ export function createCoverageOutbox({ send, read, write }: CoverageOutboxOption
     return [...underway, ...waiting];
   }
 
-  function keep(): void {
-    const left = all();
-    write(left.length > 0 ? JSON.stringify(left) : null);
-  }
-
   function add(spans: readonly CoverageSpan[]): void {
     waiting = joinLanes([...waiting, ...spans]);
-    keep();
+    write(all());
   }
 
   async function sendNext(): Promise<boolean> {
@@ -44,7 +41,7 @@ export function createCoverageOutbox({ send, read, write }: CoverageOutboxOption
       const outcome = await send(underway);
       if (outcome === 'later') waiting = joinLanes(all());
       underway = [];
-      keep();
+      write(all());
       if (outcome === 'later') return false;
     }
     return true;
@@ -59,24 +56,29 @@ export function createCoverageOutbox({ send, read, write }: CoverageOutboxOption
   return { add, all, flush };
 }
 
-const keptSchema = coverageSpanSchema.array();
-
-function restore(text: string | null): CoverageSpan[] {
-  try {
-    return keptSchema.parse(JSON.parse(text ?? '[]'));
-  } catch {
-    return [];
-  }
-}
-
 /** Joins spans of one way, channel and detail where they overlap or touch. */
 export function joinLanes(spans: readonly CoverageSpan[]): CoverageSpan[] {
   const lanes = new Map<string, CoverageSpan[]>();
   for (const span of spans) {
     const lane = `${span.way}/${span.channel}/${span.detail}`;
-    lanes.set(lane, [...(lanes.get(lane) ?? []), span]);
+    const known = lanes.get(lane);
+    if (known) known.push(span);
+    else lanes.set(lane, [span]);
   }
   return [...lanes.values()].flatMap((lane) =>
     toSpanSet(lane).map((span) => ({ ...(lane[0] as CoverageSpan), ...span })),
   );
+}
+
+/** What other benches of this person could not send; a pass that takes nothing any more lets it go. */
+export async function sendLeftBehind(
+  place: CoveragePlace,
+  send: (passId: string, spans: CoverageSpan[]) => Promise<SendOutcome>,
+  storage: Storage,
+): Promise<void> {
+  for (const passId of passesKept(place.personId, storage)) {
+    if (passId === place.passId) continue;
+    const kept = createKeptCoverage({ ...place, passId }, storage);
+    await createCoverageOutbox({ ...kept, send: (spans) => send(passId, spans) }).flush();
+  }
 }

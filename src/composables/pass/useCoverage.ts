@@ -1,4 +1,5 @@
 import { tryOnScopeDispose, useEventListener, useIntervalFn } from '@vueuse/core';
+import { v7 as newId } from 'uuid';
 import { computed, ref, shallowRef } from 'vue';
 import type { Ref } from 'vue';
 import type { CoverageSpan } from '@shared/contract/coverage.ts';
@@ -19,7 +20,8 @@ import { addCoverage, getCoverage } from '@/api/coverage.ts';
 import type { BenchChannels } from '@/composables/bench/useChannels.ts';
 import { windowSamples } from '@/composables/bench/time-axis.ts';
 import type { BenchWindow } from '@/composables/bench/useBenchWindow.ts';
-import { createCoverageOutbox } from '@/composables/pass/coverage-outbox.ts';
+import { createCoverageOutbox, sendLeftBehind } from '@/composables/pass/coverage-outbox.ts';
+import { createKeptCoverage } from '@/composables/pass/kept-coverage.ts';
 import { firstScreen, neighbourWindow, nextUnseen } from '@/composables/pass/pass-part.ts';
 
 export interface CoverageOptions {
@@ -64,11 +66,11 @@ export function useCoverage(options: CoverageOptions) {
   const isKept = canMark && pass?.task === 'events' && pass.kind !== 'rounds';
   const gathered = shallowRef<readonly CoverageSpan[]>([]);
   const isLoaded = ref(!isKept);
-  const name = `recalesce.coverage.${pass?.id ?? ''}`;
+  const kept = { personId: pass?.labelerId ?? '', passId: pass?.id ?? '', windowId: newId() };
+  const send = (passId: string, spans: CoverageSpan[]) => addCoverage(passId, spans, kept.personId);
   const outbox = createCoverageOutbox({
-    send: (spans) => addCoverage(pass?.id ?? '', spans, pass?.labelerId ?? ''),
-    read: () => localStorage.getItem(name),
-    write: keepText(name),
+    ...createKeptCoverage(kept, localStorage),
+    send: (spans) => send(kept.passId, spans),
   });
   let restingSince = 0;
   let rested = { shown: view.shown.value, channels: shownChannels.value };
@@ -152,6 +154,7 @@ export function useCoverage(options: CoverageOptions) {
 
   if (isKept) {
     gathered.value = outbox.all();
+    void sendLeftBehind(kept, send, localStorage);
     void getCoverage(pass.id)
       .then((stored) => (gathered.value = [...stored, ...gathered.value]))
       // Without it the ribbon begins empty; what is gathered from here on is stored all the same.
@@ -201,16 +204,4 @@ function joinByWay(spans: readonly CoverageSpan[]): CoverageSpan[] {
       channels,
     ).map((span) => ({ ...span, way, detail: 1 })),
   );
-}
-
-/** A full or closed store must not stop anybody from working. */
-function keepText(name: string): (text: string | null) => void {
-  return (text) => {
-    try {
-      if (text === null) localStorage.removeItem(name);
-      else localStorage.setItem(name, text);
-    } catch {
-      // Kept in memory alone, then.
-    }
-  };
 }
