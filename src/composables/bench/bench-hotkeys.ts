@@ -8,6 +8,7 @@ import { phaseRows } from '@/composables/bench/keys/phase-keys.ts';
 import { pictureRows } from '@/composables/bench/keys/picture-keys.ts';
 import { passRows } from '@/composables/bench/keys/pass-keys.ts';
 import { selectRows } from '@/composables/bench/keys/select-keys.ts';
+import { spanRows } from '@/composables/bench/keys/span-keys.ts';
 import { viewRows } from '@/composables/bench/keys/view-keys.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
 import type { Hotkey } from '@/composables/useHotkeys.ts';
@@ -30,6 +31,7 @@ export function benchHotkeys(bench: Bench, choices: readonly ClassChoice[], page
     ...toHotkeys('Go', goRows(bench, page)),
     ...toHotkeys('Through the pass', passRows(bench, page)),
     ...toHotkeys('Select and tell', selectRows(bench, page)),
+    ...toHotkeys('Draw a span', spanRows(bench)),
     ...toHotkeys('Zoom and move', viewRows(bench)),
     ...toHotkeys('Picture', pictureRows(bench, page)),
     ...toHotkeys('Listen', listenRows(bench)),

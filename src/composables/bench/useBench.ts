@@ -10,6 +10,7 @@ import { useBenchMarks } from '@/composables/bench/useBenchMarks.ts';
 import { useBenchSources } from '@/composables/bench/useBenchSources.ts';
 import { useBenchWindow } from '@/composables/bench/useBenchWindow.ts';
 import { useClassKey } from '@/composables/bench/useClassKey.ts';
+import { useDrawnSpan } from '@/composables/bench/useDrawnSpan.ts';
 import { useRegion } from '@/composables/bench/useRegion.ts';
 import { useInHand } from '@/composables/bench/useInHand.ts';
 import { useListening } from '@/composables/bench/useListening.ts';
@@ -65,6 +66,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   const taken = { draft, selectedCandidate, channel };
   const onSet = (key: string) => void snapping.snapFresh(key);
   const classKey = useClassKey({ layout, scheme, canMark, ...place, ...taken, onSet });
+  const drawn = useDrawnSpan({ layout, draft, ...place });
   const region = useRegion({ recordingId: recording.id, layout, ...place, ...taken });
 
   function letGo(): void {
@@ -81,6 +83,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
     ...sources,
     ...place,
     draft,
+    drawn,
     selectedCandidate,
     canMark,
     areCandidatesShown,
