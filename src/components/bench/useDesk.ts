@@ -10,6 +10,7 @@ import { withKeys } from '@/composables/bench/class-keys.ts';
 import { provideKeys, shownKey } from '@/composables/bench/keys-context.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
 import { withRoundKeys } from '@/composables/rounds/round-keys.ts';
+import { useRoundLook } from '@/composables/rounds/useRoundLook.ts';
 import { joinSaving } from '@/composables/rounds/round-words.ts';
 import type { Round } from '@/composables/rounds/useRound.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
@@ -27,6 +28,7 @@ export function useDesk(bench: Bench, round: Round | null = null) {
   /** Parts of the aside that a key opens. */
   const aside = shallowRef<{ showSteps: () => void; showTable: () => void } | null>(null);
   const look = useLocalStorage('recalesce.bench.look', FIRST_LOOK, { mergeDefaults: true });
+  const pictureLook = useRoundLook(bench, look, round ? bench.selectedCandidate : shallowRef(null));
   const point = shallowRef<PointedPlace | null>(null);
   watchEffect(() => (bench.circumstances.isNormalised.value = look.value.isOverQuiet));
   const openSheet = ref<DeskSheet | null>(null);
@@ -100,6 +102,7 @@ export function useDesk(bench: Bench, round: Round | null = null) {
   return {
     choices,
     look,
+    pictureLook,
     openSheet,
     asked,
     aside,
@@ -118,7 +121,7 @@ export function useDesk(bench: Bench, round: Round | null = null) {
         ? 'A class key names the candidate, with Shift less sure'
         : bench.intent.value,
     ),
-    scaleText: computed(() => scaleWords(bench, look.value)),
+    scaleText: computed(() => scaleWords(bench, pictureLook.value)),
     frameText: computed(() => frameWords(bench)),
     readout: computed(() => readoutWords(bench, point.value)),
     chooseClass,

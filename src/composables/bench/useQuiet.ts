@@ -28,6 +28,11 @@ function toBins({ pictures }: QuietLevels): QuietBins {
   );
 }
 
+/** A frame of half the length holds twice as much of an even noise in each bin; levels above 0 are maxima of level 0. */
+function noiseGainDb(level: number, coarser: number): number {
+  return 10 * Math.log10(2) * (Math.min(0, coarser) - Math.min(0, level));
+}
+
 /**
  * What is quiet in each bin of the shown channels, fetched once for each; and what counts as quiet in a band as a whole. Until
  * it has come, or where it cannot be had, the latter is taken from the first tile that has come.
@@ -37,6 +42,7 @@ export function useQuiet({ recordingId, layout, channels, window, find }: QuietO
   const quietError = shallowRef<unknown>(null);
   const asked = new Set<number>();
   const guessed = new Map<string, number>();
+  const quietTiles = new WeakMap<Tile, number | null>();
   const stop = new AbortController();
 
   async function fetchBins(channel: number): Promise<void> {
@@ -67,24 +73,35 @@ export function useQuiet({ recordingId, layout, channels, window, find }: QuietO
     return (codes && medianLevelDb(codes)) ?? guessFromTiles(channel, band, level);
   }
 
+  /** Tiles of a fine level may hold nothing but one burst: the quietest that was seen counts, of coarser levels as well. */
   function guessFromTiles(channel: number, band: PictureBand, level: number): number {
-    const key = `${channel}/${band}/${level}`;
-    const kept = guessed.get(key);
-    if (kept !== undefined) return kept;
-    const levelDb = quietIn(channel, band, level);
-    if (levelDb !== undefined) guessed.set(key, levelDb);
-    // The picture that stands in until the wanted level is here.
-    const coarser = [1, 2, 3, 4].map((further) => quietIn(channel, band, level + further));
-    return levelDb ?? coarser.find((value) => value !== undefined) ?? FALLBACK_QUIET_DB;
+    const picture = layout.pictures.find((one) => one.band === band);
+    const bounds = Array.from({ length: (picture?.levels ?? 0) - level }, (_, further) => {
+      const key = `${channel}/${band}/${level + further}`;
+      const seen = [guessed.get(key), quietIn(channel, band, level + further)];
+      const least = Math.min(...seen.filter((value) => value !== undefined));
+      if (Number.isFinite(least)) guessed.set(key, least);
+      return least + noiseGainDb(level, level + further);
+    });
+    const least = Math.min(...bounds);
+    return Number.isFinite(least) ? least : FALLBACK_QUIET_DB;
   }
 
   function quietIn(channel: number, band: PictureBand, level: number): number | undefined {
     const picture = layout.pictures.find((one) => one.band === band);
     const places = picture && level < picture.levels ? tilesOfWindow(picture, toValue(window), level) : [];
-    const tiles = places
-      .map(({ tile }) => find(channel, band, level, tile))
-      .filter((tile) => tile !== undefined);
-    return tiles.map(quietLevelDb).find((value) => value !== null) ?? undefined;
+    const levels = places.map(({ tile }) => quietOfTile(find(channel, band, level, tile)));
+    const least = Math.min(...levels.filter((value) => value !== null));
+    return Number.isFinite(least) ? least : undefined;
+  }
+
+  function quietOfTile(tile: Tile | undefined): number | null {
+    if (!tile) return null;
+    const known = quietTiles.get(tile);
+    if (known !== undefined) return known;
+    const levelDb = quietLevelDb(tile);
+    quietTiles.set(tile, levelDb);
+    return levelDb;
   }
 
   watch(() => toValue(channels), fetchMissing, { immediate: true });
