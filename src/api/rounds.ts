@@ -13,14 +13,24 @@ export async function getRound(
   return apiGet(`/api/passes/${passId}/round`, roundPageSchema, options);
 }
 
+/** Answers are sent later too, when somebody else may be signed in at this browser. */
+interface InTheNameOf {
+  personId: string;
+  signal: AbortSignal;
+}
+
 /** Stores one answer, or many at once; safe to repeat. */
-export async function sendAnswers(passId: string, answers: readonly RoundAnswer[]): Promise<Answered[]> {
+export async function sendAnswers(
+  passId: string,
+  answers: readonly RoundAnswer[],
+  as: InTheNameOf,
+): Promise<Answered[]> {
   const [only, second] = answers;
   if (only && !second) {
     const { candidateId, ...answer } = only;
     const path = `/api/candidates/${candidateId}/verdict`;
-    return [await apiSend('POST', path, answeredSchema, { body: { ...answer, passId } })];
+    return [await apiSend('POST', path, answeredSchema, { body: { ...answer, passId }, ...as })];
   }
   const path = `/api/passes/${passId}/verdicts`;
-  return (await apiSend('POST', path, answeredManySchema, { body: { answers } })).items;
+  return (await apiSend('POST', path, answeredManySchema, { body: { answers }, ...as })).items;
 }

@@ -94,9 +94,10 @@ export interface RenditionQuery {
 export async function getRendition(
   recordingId: string,
   query: RenditionQuery,
-  signal: AbortSignal,
+  signal?: AbortSignal,
 ): Promise<ArrayBuffer> {
-  return apiGetBytes(viewPath(recordingId, 'listen'), { query: { ...query }, signal });
+  const options = { query: { ...query }, ...(signal ? { signal } : {}) };
+  return apiGetBytes(viewPath(recordingId, 'listen'), options);
 }
 
 /** The machine's choice of a span that shows the noise of a channel. */

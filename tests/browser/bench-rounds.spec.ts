@@ -65,6 +65,7 @@ describe('a round', () => {
     await untilAnswered(page, 20);
     await untilStored(page);
     await takeScreenshot(page, 'bench-round-light');
+    expect(await page.locator('[data-round-heard]').innerText()).toMatch(/times slower: |As recorded/);
     const { items, progress } = await roundOf(page, pass);
     expect(progress).toMatchObject({ events: 3, noEvents: 16, undecided: 1 });
     expect(items.slice(0, 4).map(({ answer }) => answer?.classKey)).toEqual([
@@ -106,10 +107,14 @@ describe('a round', () => {
       .locator('[data-saving]')
       .filter({ hasText: /Kept here, 3.answers waiting/ })
       .waitFor();
+    // From whatever page is open, and told where one begins.
+    await page.goto('/');
+    const kept = page.getByText(/3.answers kept in this browser, not stored yet/);
+    await kept.waitFor();
+    await takeScreenshot(page, 'home-kept-answers-light');
     await page.unroute('**/verdict');
-    await page.reload();
-    await untilShown(page);
-    await untilStored(page);
+    await page.evaluate(() => globalThis.dispatchEvent(new Event('online')));
+    await kept.waitFor({ state: 'detached' });
     expect((await roundOf(page, pass)).progress.noEvents).toBe(before.noEvents + 3);
   });
 

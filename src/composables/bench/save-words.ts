@@ -1,5 +1,5 @@
 import type { OutboxEntry } from '@/composables/outbox/outbox-entry.ts';
-import type { Halt } from '@/composables/outbox/outbox-sender.ts';
+import type { Halt } from '@/composables/outbox/sending-loop.ts';
 
 export type SaveState = 'stored' | 'saving' | 'unsent' | 'undecided';
 

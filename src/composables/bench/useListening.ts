@@ -107,6 +107,10 @@ export function useListening({ recordingId, sampleRateHz, channels, container, c
     isLoading: playing.isLoading,
     playheadSample: playing.playheadSample,
     play: (span: TimeWindow) => attempt(() => playing.play(span)),
+    /** Plays what may have been fetched ahead by `prefetch`. */
+    playPrefetched: (span: TimeWindow) => attempt(() => playing.play(span, true)),
+    prefetch: (span: TimeWindow, way: { aids: ListeningAids; channel: number }) =>
+      void playing.prefetch(span, way),
     stop: playing.stop,
     /** Called with each stretch that was heard, as it goes along. Returns how to end that. */
     onHeard: log.onHeard,

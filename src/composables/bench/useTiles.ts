@@ -27,20 +27,27 @@ export interface TileTrouble {
   error: unknown;
 }
 
+/** A part that will be shown without any movement to it. */
+export interface UpcomingPart {
+  window: TimeWindow;
+  channel: number;
+}
+
 const BETWEEN_PLANS_MS = 50;
 
-/** Where the window goes, as far as it keeps its length. */
+/** Where the window goes, as far as it keeps its length. A jump to another place goes nowhere. */
 export function headingOf(now: TimeWindow, before: TimeWindow): Heading {
   const isSameZoom = Math.abs(windowSamples(now) / windowSamples(before) - 1) < 1e-6;
-  if (!isSameZoom || now.startSample === before.startSample) return 0;
+  const moved = Math.abs(now.startSample - before.startSample);
+  if (!isSameZoom || moved === 0 || moved > windowSamples(now)) return 0;
   return now.startSample > before.startSample ? 1 : -1;
 }
 
 /** Fetches the tiles that the window needs. `arrivals` counts what has come, so that the picture is drawn again. */
 export function useTiles({ recordingId, layout, channels, window, widthPx }: TilesOptions) {
   const arrivals = shallowRef(0);
-  /** What will be shown next, fetched behind everything else. */
-  const next = shallowRef<{ window: TimeWindow; channel: number } | null>(null);
+  /** What will be shown next, in that order: fetched right behind what is shown. */
+  const upcoming = shallowRef<readonly UpcomingPart[]>([]);
   const trouble = shallowRef<TileTrouble>({ count: 0, error: null });
   const store = createTileStore({
     load: (request, signal) => getTile({ recordingId, ...request }, signal),
@@ -62,29 +69,25 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
     );
     // One tile for each band is the whole recording: it stands in everywhere until the others are here.
     const roots = plans.map(({ place, root }) => ({ ...place, ...root }));
+    // Where it is known what comes next, nothing is fetched beside the window unless it moves.
+    const isWaiting = upcoming.value.length > 0 && heading === 0;
     return [
       ...roots,
       ...plans.flatMap(({ place, shown: tiles }) => tiles.map((tile) => ({ ...place, ...tile }))),
-      ...plans.flatMap(({ place, ahead }) => ahead.map((tile) => ({ ...place, ...tile }))),
-      ...wantedNext(),
+      ...upcoming.value.flatMap(lanesOf).flatMap(tilesOf),
+      ...(isWaiting ? [] : plans.flatMap(({ place, ahead }) => ahead.map((tile) => ({ ...place, ...tile })))),
     ];
   }
 
-  /** Whether all of the window is there, at the level that its zoom asks for. */
-  function isWhole(): boolean {
-    const shown = toValue(window);
-    const samplesPerPixel = windowSamples(shown) / Math.max(1, toValue(widthPx));
-    return toValue(channels).every((channel) =>
-      layout.pictures.every((picture) => {
-        const tiles = planTiles(picture, shown, samplesPerPixel, 0).shown;
-        return tiles.every((tile) => store.find({ channel, band: picture.band, ...tile }) !== undefined);
-      }),
-    );
+  /** Stacked channels are shown together. */
+  function lanesOf({ window: part, channel }: UpcomingPart): UpcomingPart[] {
+    const stacked = toValue(channels);
+    const lanes = stacked.includes(channel) ? stacked : [channel];
+    return lanes.map((lane) => ({ window: part, channel: lane }));
   }
 
-  function wantedNext(): TileRequest[] {
-    if (!next.value) return [];
-    const { window: part, channel } = next.value;
+  /** The tiles that show a part whole, at the level that its zoom asks for. */
+  function tilesOf({ window: part, channel }: UpcomingPart): TileRequest[] {
     const samplesPerPixel = windowSamples(part) / Math.max(1, toValue(widthPx));
     return layout.pictures.flatMap((picture) =>
       planTiles(picture, part, samplesPerPixel, 0).shown.map((tile) => ({
@@ -93,6 +96,12 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
         ...tile,
       })),
     );
+  }
+
+  /** Whether all of the window is there. */
+  function isWhole(): boolean {
+    const parts = toValue(channels).map((channel) => ({ window: toValue(window), channel }));
+    return parts.flatMap(tilesOf).every((request) => store.find(request) !== undefined);
   }
 
   function find(channel: number, band: PictureBand, level: number, tile: number): Tile | undefined {
@@ -111,7 +120,7 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
   // left without its tiles, and once more at the end.
   const wantSoon = useThrottleFn(wantNow, BETWEEN_PLANS_MS, true, true);
   wantNow();
-  watch(() => [toValue(window), toValue(channels), toValue(widthPx), next.value] as const, wantSoon);
+  watch(() => [toValue(window), toValue(channels), toValue(widthPx), upcoming.value] as const, wantSoon);
   // The browser knows first that the connection is back.
   globalThis.addEventListener('online', store.retry);
   tryOnScopeDispose(() => {
@@ -119,5 +128,5 @@ export function useTiles({ recordingId, layout, channels, window, widthPx }: Til
     store.close();
   });
 
-  return { find, isWhole, arrivals, trouble, next, retry: store.retry };
+  return { find, isWhole, arrivals, trouble, upcoming, retry: store.retry };
 }

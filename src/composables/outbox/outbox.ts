@@ -4,7 +4,8 @@ import type { Outcome } from '@/composables/outbox/outbox-answers.ts';
 import { toStored, withChange } from '@/composables/outbox/outbox-entry.ts';
 import type { MarkChange, MarkPlace, OutboxEntry, StoredMark } from '@/composables/outbox/outbox-entry.ts';
 import { createSender } from '@/composables/outbox/outbox-sender.ts';
-import type { Halt, SenderParts } from '@/composables/outbox/outbox-sender.ts';
+import type { SenderParts } from '@/composables/outbox/outbox-sender.ts';
+import type { Halt } from '@/composables/outbox/sending-loop.ts';
 import type { TabChannel } from '@/composables/outbox/tab-channel.ts';
 
 /** One mark has changed here, in another window or on the server. */

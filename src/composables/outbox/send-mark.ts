@@ -6,7 +6,7 @@ import type { ProblemError } from '@/api/problem-error.ts';
 import type { MarkPlace, SaveRequest } from '@/composables/outbox/outbox-entry.ts';
 import type { SendAnswer } from '@/composables/outbox/outbox-sender.ts';
 
-const LONGEST_ANSWER_MS = 20_000;
+export const LONGEST_ANSWER_MS = 20_000;
 
 /** One request for one mark, in the name of the person who made it and of nobody else. */
 export async function sendMark(request: SaveRequest, place: MarkPlace): Promise<SendAnswer> {
@@ -45,7 +45,7 @@ export function answerOf(error: unknown, kind: SaveRequest['kind']): SendAnswer 
 const INVALID = [400, 413, 422];
 const BUSY = [408, 425, 429, 503];
 
-function reasonToWait({ code, status }: ProblemError) {
+export function reasonToWait({ code, status }: ProblemError) {
   if (code === 'offline') return 'unreachable';
   if (status === 507) return 'full';
   if (BUSY.includes(status)) return 'busy';
@@ -61,7 +61,7 @@ function staleAnswer({ problem }: ProblemError): SendAnswer {
   return { kind: 'conflict', theirs };
 }
 
-function sentenceOf(error: ProblemError): string {
+export function sentenceOf(error: ProblemError): string {
   const fields = error.fields.map(({ path, message }) => `${path} ${message}`).join('; ');
   return fields ? `${error.message} ${fields}.` : error.message;
 }

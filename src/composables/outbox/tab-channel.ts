@@ -9,21 +9,21 @@ export interface OutboxNews {
   event?: RecordingEvent | null;
 }
 
-export interface TabChannel {
-  post(news: OutboxNews): void;
+export interface TabChannel<News extends { personId: string } = OutboxNews> {
+  post(news: News): void;
   /** Returns the way to stop it. */
-  listen(personId: string, hear: (news: OutboxNews) => void): () => void;
+  listen(personId: string, hear: (news: News) => void): () => void;
 }
 
-const NAME = 'recalesce-outbox';
-
 /** Where a browser has no channel, the other windows find out when they are opened next. */
-export function createTabChannel(): TabChannel {
-  const channel = typeof BroadcastChannel === 'undefined' ? null : new BroadcastChannel(NAME);
+export function createTabChannel<News extends { personId: string } = OutboxNews>(
+  name = 'recalesce-outbox',
+): TabChannel<News> {
+  const channel = typeof BroadcastChannel === 'undefined' ? null : new BroadcastChannel(name);
   return {
     post: (news) => channel?.postMessage(news),
     listen(personId, hear) {
-      const onMessage = ({ data }: MessageEvent<OutboxNews>) => {
+      const onMessage = ({ data }: MessageEvent<News>) => {
         if (data.personId === personId) hear(data);
       };
       channel?.addEventListener('message', onMessage);

@@ -1,4 +1,3 @@
-import { useEventListener } from '@vueuse/core';
 import { defineStore } from 'pinia';
 import { v7 as newId } from 'uuid';
 import { computed, shallowRef, watch } from 'vue';
@@ -6,23 +5,15 @@ import type { RecordingEvent } from '@shared/contract/events.ts';
 import { createIndexedStore } from '@/composables/outbox/indexed-store.ts';
 import { oneSender } from '@/composables/outbox/one-sender.ts';
 import type { MarkChange, MarkPlace, OutboxEntry } from '@/composables/outbox/outbox-entry.ts';
-import type { Halt } from '@/composables/outbox/outbox-sender.ts';
+import type { Halt } from '@/composables/outbox/sending-loop.ts';
 import { guardStore } from '@/composables/outbox/outbox-store.ts';
 import { createOutbox } from '@/composables/outbox/outbox.ts';
 import type { Outbox, Told } from '@/composables/outbox/outbox.ts';
+import { plain } from '@/composables/outbox/plain.ts';
 import { sendMark } from '@/composables/outbox/send-mark.ts';
 import { createTabChannel } from '@/composables/outbox/tab-channel.ts';
+import { useSendingTimes, waitFor } from '@/composables/outbox/useSendingTimes.ts';
 import { useSessionStore } from '@/stores/session.ts';
-
-/** Nothing of what the page watches can be kept by the browser. */
-function plain(change: MarkChange): MarkChange {
-  return JSON.parse(JSON.stringify(change)) as MarkChange;
-}
-
-function waitFor(delayMs: number, run: () => void): () => void {
-  const timer = setTimeout(run, delayMs);
-  return () => clearTimeout(timer);
-}
 
 /** The marks of whoever is signed in that wait in this browser. Works on every page, so that they go out wherever one is. */
 export const useOutboxStore = defineStore('outbox', () => {
@@ -82,22 +73,10 @@ export const useOutboxStore = defineStore('outbox', () => {
   }
 
   watch(() => session.user?.id, changePerson, { immediate: true, flush: 'sync' });
-  watch(
-    () => session.hasEnded,
-    (hasEnded) => {
-      if (!hasEnded) outbox?.retry();
-    },
-  );
-  // Whether there is a network is only a hint: a server on the same machine is reached without one.
-  useEventListener(window, 'online', () => outbox?.retry());
-  useEventListener(document, 'visibilitychange', () => {
-    if (document.visibilityState === 'visible' && halt.value !== 'signed-out') outbox?.retry();
-  });
-  useEventListener(window, 'beforeunload', (event: BeforeUnloadEvent) => {
-    if (writingIds.value.length > 0 || !isDurable.value) event.preventDefault();
-  });
-  watch(halt, (reason) => {
-    if (reason !== 'none') keepThroughShortage().catch(() => undefined);
+  useSendingTimes({
+    halt,
+    retry: () => outbox?.retry(),
+    isUnsafe: () => writingIds.value.length > 0 || !isDurable.value,
   });
 
   return {
@@ -127,9 +106,3 @@ export const useOutboxStore = defineStore('outbox', () => {
     },
   };
 });
-
-/** Asked for when marks have to wait: a browser that is short of room must not clear them away. */
-async function keepThroughShortage(): Promise<void> {
-  const storage = (navigator as Partial<Navigator>).storage;
-  if (storage && !(await storage.persisted())) await storage.persist();
-}

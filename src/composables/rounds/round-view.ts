@@ -1,4 +1,5 @@
 import type { Candidate } from '@shared/contract/candidates.ts';
+import { HEARING_LINE_HZ } from '@/composables/bench/hearing-line.ts';
 import { SLOW_FACTORS } from '@/composables/bench/listening.ts';
 import type { SlowFactor } from '@/composables/bench/listening.ts';
 import { clampWindow } from '@/composables/bench/time-axis.ts';
@@ -25,9 +26,15 @@ export function windowOf({ onsetSample, endSample }: Burst, frames: number): Tim
 /** The pitch at which clicks are told apart well. */
 const COMFORTABLE_HZ = 7000;
 
-/** The least slowing that brings the burst to where people hear well; none for what is low already. */
-export function slowOf({ peakFrequencyHz, bandLowHz, bandHighHz }: Burst): SlowFactor {
-  const hz = peakFrequencyHz ?? Math.sqrt(Math.max(1, bandLowHz) * bandHighHz);
+/** How high a burst lies. */
+export function pitchHz({ peakFrequencyHz, bandLowHz, bandHighHz }: Burst): number {
+  return peakFrequencyHz ?? Math.sqrt(Math.max(1, bandLowHz) * bandHighHz);
+}
+
+/** None for what people hear; else the least slowing that brings the burst to where they hear well. */
+export function slowOf(burst: Burst): SlowFactor {
+  const hz = pitchHz(burst);
+  if (hz <= HEARING_LINE_HZ) return 1;
   return SLOW_FACTORS.find((factor) => hz / factor <= COMFORTABLE_HZ) ?? 100;
 }
 

@@ -2,10 +2,12 @@ import type { RoundOrder } from '@shared/contract/passes.ts';
 import type { RoundItem, RoundProgress } from '@shared/contract/rounds.ts';
 import type { EventClass } from '@shared/contract/schemes.ts';
 import { classTitle } from '@/composables/bench/mark-words.ts';
-import type { AnswerHalt, QueuedPacket } from '@/composables/rounds/answer-queue.ts';
-import { isUndecided } from '@/composables/rounds/answer-queue.ts';
+import type { Halt } from '@/composables/outbox/sending-loop.ts';
+import { isUndecided } from '@/composables/rounds/answer-packet.ts';
+import type { AnswerPacket } from '@/composables/rounds/answer-packet.ts';
 import { answeredCount } from '@/composables/rounds/round-steps.ts';
 import type { Said } from '@/composables/rounds/round-steps.ts';
+import { HALT_WORDS } from '@/composables/bench/save-words.ts';
 import type { SaveWords } from '@/composables/bench/save-words.ts';
 import { formatCount, formatNumber } from '@/composables/useFormat.ts';
 
@@ -47,14 +49,9 @@ export function tallyWords({ events, noEvents, undecided }: RoundProgress): stri
   return `${formatCount(events, 'event')}, ${formatNumber(noEvents)} no event, ${formatNumber(undecided)} undecided`;
 }
 
-const HALTED: Readonly<Record<Exclude<AnswerHalt, 'none'>, string>> = {
-  unreachable: 'the server cannot be reached; it is tried again',
-  'signed-out': 'sign in again',
-};
-
 export interface AnswerSavingFacts {
-  packets: readonly QueuedPacket[];
-  halt: AnswerHalt;
+  packets: readonly AnswerPacket[];
+  halt: Halt;
   /** False while something is only in the memory of this page. */
   isKept: boolean;
   answered: number;
@@ -69,7 +66,7 @@ export function answerSaveWords({ packets, halt, isKept, answered }: AnswerSavin
   if (waiting > 0 && halt !== 'none')
     return {
       state: 'unsent',
-      text: `${keptWords(isKept)}, ${formatCount(waiting, 'answer')} waiting: ${HALTED[halt]}`,
+      text: `${keptWords(isKept)}, ${formatCount(waiting, 'answer')} waiting: ${HALT_WORDS[halt]}`,
     };
   if (waiting > 0) return { state: 'saving', text: `Saving ${formatCount(waiting, 'answer')}` };
   if (answered === 0) return { state: 'stored', text: 'No answers yet' };
@@ -84,6 +81,12 @@ export function placeWords(
   const drawn = isDrawn ? ', drawn at random' : '';
   const again = said ? ' Answered already: another answer takes its place.' : '';
   return `Candidate ${formatNumber(rank + 1)} of ${formatNumber(candidates)} in this order${drawn}.${again}`;
+}
+
+/** Whose picture it is. People count channels from 1. */
+export function channelWords({ channel, shown }: { channel: number; shown: number }): string {
+  const heard = `Heard on channel ${channel + 1}`;
+  return channel === shown ? `${heard}, which is shown.` : `${heard}; channel ${shown + 1} is shown.`;
 }
 
 /** Marks set by hand come first where they are not stored; else the line is that of the round. */

@@ -16,6 +16,7 @@ import { useRoundPlace } from '@/composables/rounds/useRoundPlace.ts';
 import { FIRST_SETTINGS, useShowing } from '@/composables/rounds/useShowing.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 import { formatCount } from '@/composables/useFormat.ts';
+import { useSessionStore } from '@/stores/session.ts';
 
 export type Round = ReturnType<typeof useRound>;
 
@@ -28,20 +29,23 @@ export function useRound(bench: Bench, passId: string) {
   const { sampleRateHz } = bench.layout;
   const { announce } = useAnnounce();
   const settings = useLocalStorage('recalesce.rounds', FIRST_SETTINGS, { mergeDefaults: true });
-  const { show, prepare, factsOf } = useShowing(bench, settings);
+  const showing = useShowing(bench, settings);
+  const { show, factsOf } = showing;
   const pace = shallowRef(FRESH);
   const last = shallowRef<Said | null>(null);
   const isReady = ref(false);
   const startProblem = shallowRef<unknown>(null);
 
   const items = useRoundItems({ passId, onItems: (found) => answers.adopt(found) });
-  const answers = useRoundAnswers({ passId, progress: items.progress, marks });
+  const { id: recordingId, runTitle: title } = bench.recording;
+  const waiting = { personId: useSessionStore().user?.id ?? '', recordingId, passId, title };
+  const answers = useRoundAnswers({ place: waiting, progress: items.progress, marks });
   const sayingOf = (item: RoundItem | null) => answers.said.value.get(item?.candidate.id ?? '') ?? null;
   const place = useRoundPlace({ items, isAnswered: (item) => sayingOf(item) !== null, show });
   const { current } = place;
   const lookAlikes = useLookAlikes({ items, current, said: answers.said });
 
-  watch(place.next, prepare);
+  watch(place.upcoming, showing.prepare);
 
   async function start(order: RoundOrder | null = null): Promise<void> {
     startProblem.value = null;
@@ -130,6 +134,7 @@ export function useRound(bench: Bench, passId: string) {
       ),
     ),
     ...place,
+    ...showing.heard,
     said: computed(() => sayingOf(current.value)),
     last,
     lookAlikes,

@@ -1,16 +1,17 @@
-import { computed, shallowRef } from 'vue';
+import { computed, onScopeDispose, shallowRef } from 'vue';
 import { v7 as newId } from 'uuid';
 import type { ListeningAids, MarkView } from '@shared/contract/mark-circumstances.ts';
 import type { Answered, RoundAnswer, RoundItem, RoundProgress } from '@shared/contract/rounds.ts';
 import type { Ref } from 'vue';
 import type { BenchMarks } from '@/composables/bench/useBenchMarks.ts';
-import { isUndecided } from '@/composables/rounds/answer-queue.ts';
+import { isUndecided } from '@/composables/rounds/answer-packet.ts';
+import type { AnswerPlace } from '@/composables/rounds/answer-packet.ts';
 import { afterChange, isSameSaying, saidOf } from '@/composables/rounds/round-steps.ts';
 import type { RoundStep, Said } from '@/composables/rounds/round-steps.ts';
-import { useAnswerSaving } from '@/composables/rounds/useAnswerSaving.ts';
+import { useAnswerOutboxStore } from '@/composables/rounds/useAnswerOutboxStore.ts';
 
 export interface RoundAnswersOptions {
-  passId: string;
+  place: AnswerPlace;
   progress: Ref<RoundProgress>;
   marks: Pick<BenchMarks, 'marks' | 'takeIn' | 'takeOut'>;
 }
@@ -25,35 +26,63 @@ export interface AnswerFacts {
   tookMs: number | null;
 }
 
+const WAITING = { state: 'waiting', sentence: '', theirs: null } as const;
 const UNTOLD: AnswerFacts = { aids: null, view: null, groupKey: null, isLookedAt: false, tookMs: null };
 
 /** What was said about the candidates, with undo; stored as it is said. */
-export function useRoundAnswers({ passId, progress, marks }: RoundAnswersOptions) {
+export function useRoundAnswers({ place, progress, marks }: RoundAnswersOptions) {
   const said = shallowRef<ReadonlyMap<string, Said>>(new Map());
   const done = shallowRef<readonly RoundStep[]>([]);
   const undone = shallowRef<readonly RoundStep[]>([]);
-  const { queue, packets, halt, isKept, takeUp } = useAnswerSaving({ passId, onStored: takeStored });
-  const pendingIds = computed(
-    () => new Set(packets.value.flatMap(({ answers }) => answers.map(({ candidateId }) => candidateId))),
+  const outbox = useAnswerOutboxStore();
+  const packets = computed(() => outbox.packets.filter((packet) => packet.place.passId === place.passId));
+  /** What waits here, by candidate, the newest. */
+  const pending = computed(
+    () =>
+      new Map(packets.value.flatMap(({ answers }) => answers.map((answer) => [answer.candidateId, answer]))),
+  );
+  /** Whose waiting answer is in the counts, since the server last told them. */
+  const counted = new Set<string>();
+  onScopeDispose(
+    outbox.onStored((answered, passId) => {
+      if (passId === place.passId) takeStored(answered);
+    }),
   );
 
   /** What the server has counts where nothing newer waits here. */
   function adopt(items: readonly RoundItem[]): void {
     const next = new Map(said.value);
+    const waiting = items.filter(({ candidate }) => pending.value.has(candidate.id));
+    const fresh = waiting.filter(({ candidate }) => !counted.has(candidate.id));
     for (const item of items) {
       const { id } = item.candidate;
-      if (pendingIds.value.has(id)) continue;
-      queue.adopt(id, item.answer);
+      if (waiting.includes(item) && !fresh.includes(item)) continue;
+      outbox.adopt(id, item.answer);
       const present = saidOf(item);
       if (present) next.set(id, present);
       else next.delete(id);
     }
     said.value = next;
+    for (const { candidate } of fresh) counted.add(candidate.id);
+    say(fresh.map(({ candidate }) => ({ candidateId: candidate.id, after: waitingSaid(candidate.id) })));
+  }
+
+  function waitingSaid(candidateId: string): Said | null {
+    const answer = pending.value.get(candidateId);
+    if (!answer?.verdict) return null;
+    const { verdict, mark } = answer;
+    return { verdict, classKey: mark?.classKey ?? null, confidence: mark?.confidence ?? null };
+  }
+
+  /** Sends what an earlier page had left, as far as that can be done now. */
+  async function takeUp(): Promise<void> {
+    await outbox.settle(place.passId);
+    counted.clear();
   }
 
   function takeStored(answered: readonly Answered[]): void {
     for (const { candidateId, answer, event } of answered) {
-      if (pendingIds.value.has(candidateId)) continue;
+      if (pending.value.has(candidateId)) continue;
       say([{ candidateId, after: saidOf({ answer }) }]);
       const old = marks.marks.value.filter((mark) => mark.isOwn && mark.candidateId === candidateId);
       for (const mark of old) if (mark.key !== event?.id) marks.takeOut(mark.key);
@@ -88,7 +117,8 @@ export function useRoundAnswers({ passId, progress, marks }: RoundAnswersOptions
   function put(step: RoundStep, side: 'before' | 'after', facts: AnswerFacts): void {
     say(step.changes.map((change) => ({ candidateId: change.candidateId, after: change[side] })));
     const answers = step.changes.map((change) => toAnswer(change.candidateId, change[side], facts));
-    queue.add({ id: newId(), name: step.name, answers });
+    for (const { candidateId } of answers) counted.add(candidateId);
+    void outbox.add({ id: newId(), place, name: step.name, answers, ...WAITING });
   }
 
   /** Answers, and remembers how to take it back. */
@@ -127,12 +157,12 @@ export function useRoundAnswers({ passId, progress, marks }: RoundAnswersOptions
     lastStep: computed(() => done.value.at(-1) ?? null),
     nextStep: computed(() => undone.value.at(-1) ?? null),
     packets,
-    halt,
-    isKept,
+    halt: computed(() => outbox.halt),
+    isKept: computed(() => outbox.isDurable),
     takeUp,
     undecided: computed(() => packets.value.filter(isUndecided)),
-    decide: queue.decide,
-    retry: queue.retry,
+    decide: (id: string, choice: 'mine' | 'theirs') => void outbox.decide(id, choice),
+    retry: () => outbox.retry(),
   };
 }
 

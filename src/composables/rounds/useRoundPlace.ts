@@ -8,6 +8,9 @@ export interface RoundPlaceOptions {
   show: (item: RoundItem) => void;
 }
 
+/** So many are fetched while somebody looks at one: who is sure answers faster than a busy server draws. */
+const UPCOMING = 3;
+
 /** Where a round stands, and the way to the next candidate, back, and on. */
 export function useRoundPlace({ items, isAnswered, show }: RoundPlaceOptions) {
   const current = shallowRef<RoundItem | null>(null);
@@ -42,6 +45,17 @@ export function useRoundPlace({ items, isAnswered, show }: RoundPlaceOptions) {
       if (!isAnswered(item)) return { item };
     }
     return null;
+  }
+
+  /** Those that come next, as far as they are here. */
+  function upcomingAfter(rank: number): RoundItem[] {
+    const found: RoundItem[] = [];
+    let known = nextKnown(rank + 1);
+    while (known && 'item' in known && found.length < UPCOMING) {
+      found.push(known.item);
+      known = nextKnown(known.item.rank + 1);
+    }
+    return found;
   }
 
   /** To the next that is not answered: at once where it is here. At the end, what was left out comes again. */
@@ -117,9 +131,6 @@ export function useRoundPlace({ items, isAnswered, show }: RoundPlaceOptions) {
       place.value = -1;
       isDone.value = false;
     },
-    next: computed(() => {
-      const known = current.value ? nextKnown(current.value.rank + 1) : null;
-      return known && 'item' in known ? known.item : null;
-    }),
+    upcoming: computed(() => (current.value ? upcomingAfter(current.value.rank) : [])),
   };
 }

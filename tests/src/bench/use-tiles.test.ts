@@ -24,9 +24,10 @@ const tile: Tile = {
   ...{ bins: 4, columns: 100, samplesPerColumn: 10, startSample: 0, lowHz: 0, highHz: 20_000 },
   ...{ minimumDb: -120, dbPerCode: 0.5, codes: new Uint8Array(400) },
 };
-const scope = effectScope();
+let scope = effectScope();
 
 beforeEach(() => {
+  scope = effectScope();
   vi.useFakeTimers();
   vi.mocked(getTile).mockResolvedValue(tile);
 });
@@ -48,5 +49,38 @@ describe('the tiles of a window', () => {
     await nextTick();
     await vi.advanceTimersByTimeAsync(5000);
     expect(tiles?.isWhole()).toBe(true);
+  });
+});
+
+const part = (startSample: number) => ({
+  window: { startSample, endSample: startSample + 1000 },
+  channel: 0,
+});
+const fetched = () => vi.mocked(getTile).mock.calls.map(([{ level, tile: index }]) => `${level}/${index}`);
+
+describe('what is known to come next', () => {
+  it('is fetched in its order right behind what is shown, and nothing beside that', async () => {
+    const window = shallowRef(part(0).window);
+    const tiles = scope.run(() =>
+      useTiles({ recordingId: 'one', layout, channels: [0], window, widthPx: 100 }),
+    );
+    if (tiles) tiles.upcoming.value = [part(50_000), part(20_000), part(40_000)];
+    vi.mocked(getTile).mockClear();
+    window.value = part(10_000).window;
+    await vi.advanceTimersByTimeAsync(5000);
+    expect(fetched()).toEqual(['0/10', '0/50', '0/20', '0/40']);
+  });
+
+  it('is there whole when it is jumped to', async () => {
+    const window = shallowRef(part(10_000).window);
+    const tiles = scope.run(() =>
+      useTiles({ recordingId: 'one', layout, channels: [0], window, widthPx: 100 }),
+    );
+    if (tiles) tiles.upcoming.value = [part(50_000), part(20_000), part(40_000)];
+    await vi.advanceTimersByTimeAsync(5000);
+    for (const { window: next } of [part(50_000), part(20_000), part(40_000)]) {
+      window.value = next;
+      expect(tiles?.isWhole()).toBe(true);
+    }
   });
 });

@@ -60,6 +60,13 @@ export function createSoundDeck(recordingId: string) {
     };
   }
 
+  /** Fetches what will be played next, once something was played at all: the loudspeaker is not opened for it. */
+  async function fetchAhead({ plan, channel, noise }: DeckRequest): Promise<void> {
+    const chain = await opening;
+    if (chain && plan.source === 'rendition')
+      await store.prefetch(chain.context, renditionQuery(plan, channel, noise));
+  }
+
   function fileSound(chain: PlayChain, plan: PlayPlan): ReadySound {
     file ??= createFilePlayer(chain);
     const player = file;
@@ -82,5 +89,5 @@ export function createSoundDeck(recordingId: string) {
     void opening?.then((chain) => chain.close());
   }
 
-  return { open, prepare, rest, close };
+  return { open, prepare, fetchAhead, rest, close };
 }

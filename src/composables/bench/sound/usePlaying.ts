@@ -43,10 +43,18 @@ export function usePlaying({ deck, settings, onHeard, onFailure }: Options) {
   let reportedTo = 0;
   let frame = 0;
   let asked = new AbortController();
+  /** Renditions can be fetched ahead; a place in the file cannot. */
+  let isMade = false;
 
-  async function play(wanted: TimeWindow): Promise<void> {
+  function settingsOf(isRendition: boolean): PlaySettings {
+    const now = settings();
+    return isRendition ? { ...now, facts: { ...now.facts, isOriginalPlayable: false } } : now;
+  }
+
+  async function play(wanted: TimeWindow, isRendition = false): Promise<void> {
     stop();
     span = wanted;
+    isMade = isRendition;
     isPlaying.value = true;
     playheadSample.value = wanted.startSample;
     await begin(wanted);
@@ -65,7 +73,7 @@ export function usePlaying({ deck, settings, onHeard, onFailure }: Options) {
     asked = new AbortController();
     const { signal } = asked;
     isLoading.value = true;
-    const { aids, channel, noise, facts } = settings();
+    const { aids, channel, noise, facts } = settingsOf(isMade);
     const plan = planPlay(wanted, aids, facts);
     const { isLooping } = facts;
     const sound = await deck.prepare({ plan, channel, noise, isLooping }, signal);
@@ -87,11 +95,18 @@ export function usePlaying({ deck, settings, onHeard, onFailure }: Options) {
     void fetchAhead(taken, asked.signal);
   }
 
+  /** Fetches the rendition of a span that will be played next, in a way that will be in use then. */
+  async function prefetch(wanted: TimeWindow, way: Pick<PlaySettings, 'aids' | 'channel'>): Promise<void> {
+    const { noise, facts } = settingsOf(true);
+    const plan = planPlay(wanted, way.aids, facts);
+    await deck.fetchAhead({ plan, channel: way.channel, noise, isLooping: facts.isLooping });
+  }
+
   /** Of a span that is longer than what is made at once, the piece behind. */
   async function fetchAhead(before: Piece, signal: AbortSignal): Promise<void> {
     next = null;
     if (!span || before.isLooping || before.plan.endSample >= Math.ceil(span.endSample)) return;
-    const { aids, channel, noise, facts } = settings();
+    const { aids, channel, noise, facts } = settingsOf(isMade);
     const rest = { startSample: nextPieceStart(before.plan), endSample: span.endSample };
     const plan = planPlay(rest, aids, facts);
     const sound: ReadySound | null = await deck
@@ -164,5 +179,5 @@ export function usePlaying({ deck, settings, onHeard, onFailure }: Options) {
     deck.rest();
   }
 
-  return { isPlaying, isLoading, playheadSample, play, goOn, stop, report };
+  return { isPlaying, isLoading, playheadSample, play, prefetch, goOn, stop, report };
 }
