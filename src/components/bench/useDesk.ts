@@ -4,13 +4,13 @@ import { voiceClassKey } from '@shared/domain/label-scheme.ts';
 import { useMarkLink } from '@/components/bench/useMarkLink.ts';
 import { FIRST_LOOK, nextColours, otherView } from '@/components/bench/look.ts';
 import type { PointedPlace } from '@/components/bench/pointer-work.ts';
-import { frameWords, readoutWords, scaleWords } from '@/components/bench/stage-words.ts';
+import { frameWords, readoutWords } from '@/components/bench/stage-words.ts';
 import { benchHotkeys } from '@/composables/bench/bench-hotkeys.ts';
 import { withKeys } from '@/composables/bench/class-keys.ts';
 import { provideKeys, shownKey } from '@/composables/bench/keys-context.ts';
 import type { Bench } from '@/composables/bench/useBench.ts';
 import { withRoundKeys } from '@/composables/rounds/round-keys.ts';
-import { useRoundLook } from '@/composables/rounds/useRoundLook.ts';
+import { useRoundLook } from '@/components/rounds/useRoundLook.ts';
 import { joinSaving } from '@/composables/rounds/round-words.ts';
 import type { Round } from '@/composables/rounds/useRound.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
@@ -28,7 +28,6 @@ export function useDesk(bench: Bench, round: Round | null = null) {
   /** Parts of the aside that a key opens. */
   const aside = shallowRef<{ showSteps: () => void; showTable: () => void } | null>(null);
   const look = useLocalStorage('recalesce.bench.look', FIRST_LOOK, { mergeDefaults: true });
-  const pictureLook = useRoundLook(bench, look, round ? bench.selectedCandidate : shallowRef(null));
   const point = shallowRef<PointedPlace | null>(null);
   watchEffect(() => (bench.circumstances.isNormalised.value = look.value.isOverQuiet));
   const openSheet = ref<DeskSheet | null>(null);
@@ -102,7 +101,7 @@ export function useDesk(bench: Bench, round: Round | null = null) {
   return {
     choices,
     look,
-    pictureLook,
+    ...useRoundLook(bench, look, round !== null),
     openSheet,
     asked,
     aside,
@@ -121,7 +120,6 @@ export function useDesk(bench: Bench, round: Round | null = null) {
         ? 'A class key names the candidate, with Shift less sure'
         : bench.intent.value,
     ),
-    scaleText: computed(() => scaleWords(bench, pictureLook.value)),
     frameText: computed(() => frameWords(bench)),
     readout: computed(() => readoutWords(bench, point.value)),
     chooseClass,

@@ -7,7 +7,7 @@ import type { TileLayout } from '@shared/contract/views.ts';
 import { getQuietLevels } from '@/api/views.ts';
 import { FIRST_LOOK } from '@/components/bench/look.ts';
 import { useQuiet } from '@/composables/bench/useQuiet.ts';
-import { lookUpTo } from '@/composables/rounds/useRoundLook.ts';
+import { lookUpTo } from '@/components/rounds/useRoundLook.ts';
 
 vi.mock('@/api/views.ts');
 

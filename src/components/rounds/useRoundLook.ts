@@ -1,7 +1,7 @@
 import { computed } from 'vue';
 import type { Ref } from 'vue';
-import type { Candidate } from '@shared/contract/candidates.ts';
 import type { Look } from '@/components/bench/look.ts';
+import { scaleWords } from '@/components/bench/stage-words.ts';
 import { HEARING_LINE_HZ } from '@/composables/bench/hearing-line.ts';
 import { levelFor } from '@/composables/bench/tile-plan.ts';
 import { windowSamples } from '@/composables/bench/time-axis.ts';
@@ -17,14 +17,11 @@ export function lookUpTo(look: Look, peakDb: number | null, quietDb: number): Lo
   return neededDb > look.rangeDb ? { ...look, rangeDb: neededDb } : look;
 }
 
-/** How the picture is coloured while a candidate is shown. */
-export function useRoundLook(
-  { layout, view, widthPx, quietOf, tiles }: Bench,
-  look: Ref<Look>,
-  candidate: Ref<Candidate | null>,
-) {
-  return computed(() => {
-    const burst = candidate.value;
+/** How the picture is coloured, in a round as suits the candidate that is shown, and that in words. */
+export function useRoundLook(bench: Bench, look: Ref<Look>, isInRound: boolean) {
+  const { layout, view, widthPx, quietOf, tiles, selectedCandidate } = bench;
+  const pictureLook = computed(() => {
+    const burst = isInRound ? selectedCandidate.value : null;
     if (!burst || tiles.arrivals.value === 0) return look.value;
     const band = pitchHz(burst) > HEARING_LINE_HZ ? 'ultrasonic' : 'audible';
     const picture = layout.pictures.find((one) => one.band === band);
@@ -32,4 +29,5 @@ export function useRoundLook(
     const level = levelFor(picture, windowSamples(view.shown.value) / Math.max(1, widthPx.value));
     return lookUpTo(look.value, burst.peakDb, quietOf(band, level));
   });
+  return { pictureLook, scaleText: computed(() => scaleWords(bench, pictureLook.value)) };
 }
