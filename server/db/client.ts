@@ -1,5 +1,6 @@
 import Database from 'better-sqlite3';
 import { drizzle } from 'drizzle-orm/better-sqlite3';
+import { keepStatements } from './kept-statements.ts';
 
 export type Db = ReturnType<typeof openDatabase>;
 export type Tx = Parameters<Parameters<Db['transaction']>[0]>[0];
@@ -11,6 +12,7 @@ export function openDatabase(file: string) {
   const raw = new Database(file);
   try {
     applyPragmas(raw, file);
+    keepStatements(raw);
   } catch (error) {
     raw.close();
     throw error;

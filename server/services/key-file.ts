@@ -1,4 +1,4 @@
-import { randomBytes } from 'node:crypto';
+import { createSecretKey, randomBytes, type KeyObject } from 'node:crypto';
 import {
   chmodSync,
   closeSync,
@@ -15,7 +15,7 @@ import path from 'node:path';
 const keyBytes = 32;
 /** Each kind of token has a key of its own. */
 export interface Keys {
-  session: Buffer;
+  session: KeyObject;
 }
 
 export class KeyFileError extends Error {}
@@ -24,7 +24,7 @@ export class KeyFileError extends Error {}
 export function loadKeys(folder: string): Keys {
   mkdirSync(folder, { recursive: true, mode: 0o700 });
   chmodSync(folder, 0o700);
-  return { session: loadKey(path.join(folder, 'session.key')) };
+  return { session: createSecretKey(loadKey(path.join(folder, 'session.key'))) };
 }
 
 function loadKey(file: string): Buffer {

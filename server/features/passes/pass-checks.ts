@@ -9,6 +9,7 @@ import {
   selectLabelers,
   selectOpenPassesOnRun,
   selectOpenPassOf,
+  selectPassAndSharing,
   selectPassWithContext,
   type PassRow,
   type PassWithContext,
@@ -51,14 +52,18 @@ export function drawFor(input: CreatePass, { format }: Assignable, seed: number)
 }
 
 /** Marks are set, and a pass is finished, only by its labeler, while it is open and the recording is shared. */
-export function requireOwnOpenView(reader: Reader, actor: Actor, passId: string): PassWithContext {
-  const view = selectPassWithContext(reader, passId);
-  const isOwn = view !== undefined && view.pass.labelerId === actor.id && view.pass.state !== 'cancelled';
-  if (!isOwn || !actor.roles.includes('labeler') || view.sharing !== 'shared') throw notFound('This pass');
-  if (view.pass.state === 'finished') throw conflict('This pass is finished; its marks stay as they are.');
-  return view;
+export function requireOwnOpenPass(reader: Reader, actor: Actor, passId: string): PassRow {
+  const found = selectPassAndSharing(reader, passId);
+  const isOwn = found !== undefined && found.pass.labelerId === actor.id && found.pass.state !== 'cancelled';
+  if (!isOwn || !actor.roles.includes('labeler') || found.sharing !== 'shared') throw notFound('This pass');
+  if (found.pass.state === 'finished') throw conflict('This pass is finished; its marks stay as they are.');
+  return found.pass;
 }
 
-export function requireOwnOpenPass(reader: Reader, actor: Actor, passId: string): PassRow {
-  return requireOwnOpenView(reader, actor, passId).pass;
+/** The same, with what the pass is of; it counts marks, so it is not for each mark that is stored. */
+export function requireOwnOpenView(reader: Reader, actor: Actor, passId: string): PassWithContext {
+  const { id } = requireOwnOpenPass(reader, actor, passId);
+  const view = selectPassWithContext(reader, id);
+  if (!view) throw notFound('This pass');
+  return view;
 }

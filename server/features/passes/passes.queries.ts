@@ -89,6 +89,16 @@ export function selectPassWithContext(db: Reader, id: string): PassWithContext |
   return fromPasses(db).where(eq(passes.id, id)).get();
 }
 
+/** What is asked at each mark: the pass, and whether its recording is shared. */
+export function selectPassAndSharing(db: Reader, id: string) {
+  return db
+    .select({ pass: passes, sharing: recordings.sharing })
+    .from(passes)
+    .innerJoin(recordings, eq(recordings.id, passes.recordingId))
+    .where(eq(passes.id, id))
+    .get();
+}
+
 function isOpenOf(labelerId: string): SQL | undefined {
   return and(eq(passes.labelerId, labelerId), eq(passes.state, 'assigned'));
 }

@@ -7,7 +7,7 @@ import { notFound } from '../../http/problem.ts';
 import { measureMarkedSpan } from '../../measuring/measure-span.ts';
 import type { GuardService } from './guard.service.ts';
 import { contextOf } from './measuring.service.ts';
-import { selectUnscopedRecording } from './recordings.queries.ts';
+import { selectMeasuredWith } from './recordings.queries.ts';
 import { requireSound, type RecordingsService } from './recordings.service.ts';
 import type { StoredAudioReader } from './stored-audio.ts';
 
@@ -31,7 +31,7 @@ export function createMarkingService({ db, recordings, guard, readStoredAudio }:
     recordingId: string,
     { channel, startSample, endSample }: SampleSpan & { channel: number },
   ): Promise<BurstParameters | null> {
-    const view = selectUnscopedRecording(db, recordingId);
+    const view = selectMeasuredWith(db, recordingId);
     if (!view) throw notFound('This recording');
     const { filePath, header } = await readStoredAudio(view.recording);
     const { sampleRateHz } = view.recording.format;

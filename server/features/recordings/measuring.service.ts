@@ -19,11 +19,11 @@ import {
   insertFindings,
   requireRecording,
   selectFindings,
-  selectUnscopedRecording,
+  selectMeasuredWith,
   updateProgress,
   updateRecording,
   type RecordingRow,
-  type RecordingView,
+  type MeasuredWith,
 } from './recordings.queries.ts';
 import type { NewFinding } from './recordings.service.ts';
 import { selectSegments } from './segments.queries.ts';
@@ -69,7 +69,7 @@ export function createMeasuringService(parts: Parts) {
    * finished are used again; what it left of rows is removed first.
    */
   async function measure(recordingId: string, task: MeasuringTask): Promise<void> {
-    const view = selectUnscopedRecording(db, recordingId);
+    const view = selectMeasuredWith(db, recordingId);
     if (view === undefined) return;
     const wasMeasured = view.recording.processing === 'measured';
     if (wasMeasured && !task.again) return;
@@ -96,7 +96,7 @@ export function createMeasuringService(parts: Parts) {
   }
 
   async function compute(
-    view: RecordingView,
+    view: MeasuredWith,
     measurementId: string,
     task: MeasuringTask,
   ): Promise<Omit<Found, 'measurementId'>> {
@@ -227,7 +227,7 @@ function isSameFinding(known: Pick<NewFinding, 'kind' | 'sentence'>, found: NewF
   return known.kind === found.kind && known.sentence === found.sentence;
 }
 
-export function contextOf({ sensor, setup, recording }: RecordingView): MeasureContext {
+export function contextOf({ sensor, setup, recording }: MeasuredWith): MeasureContext {
   const { lowHz: sensorLowHz, highHz: sensorHighHz } = sensor;
   const { fullScaleV, preampGainDb } = setup;
   return { sensorLowHz, sensorHighHz, fullScaleV, preampGainDb, timeExpansion: recording.timeExpansion };

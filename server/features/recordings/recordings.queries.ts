@@ -151,9 +151,17 @@ export function selectRecording(db: Reader, id: string, visible: SQL): Recording
     .get();
 }
 
-/** For the server's own work, which nobody's rights narrow. */
-export function selectUnscopedRecording(db: Reader, id: string): RecordingView | undefined {
-  return selectRecording(db, id, sql`1`);
+export type MeasuredWith = NonNullable<ReturnType<typeof selectMeasuredWith>>;
+
+/** A recording and what it was recorded with, for the server's own work, which nobody's rights narrow. */
+export function selectMeasuredWith(db: Reader, id: string) {
+  return db
+    .select({ recording: recordings, setup: setups, sensor: sensors })
+    .from(recordings)
+    .innerJoin(setups, eq(setups.id, recordings.setupId))
+    .innerJoin(sensors, eq(sensors.id, setups.sensorId))
+    .where(eq(recordings.id, id))
+    .get();
 }
 
 export function requireRecording(db: Reader, id: string): RecordingRow {

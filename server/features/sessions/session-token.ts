@@ -1,3 +1,4 @@
+import type { KeyObject } from 'node:crypto';
 import jwt from 'jsonwebtoken';
 import { z } from 'zod';
 
@@ -24,7 +25,7 @@ const claimsSchema = z.object({
 });
 
 /** A signed token that names a session row; by itself it gives nobody anything. */
-export function signSessionToken(key: Buffer, claims: SessionClaims & { tokenId: string }): string {
+export function signSessionToken(key: KeyObject, claims: SessionClaims & { tokenId: string }): string {
   const iat = Math.floor(claims.issuedAtMs / 1000);
   const payload = { sid: claims.sessionId, iat, exp: iat + tokenLifeMs / 1000 };
   return jwt.sign(payload, key, {
@@ -38,7 +39,7 @@ export function signSessionToken(key: Buffer, claims: SessionClaims & { tokenId:
 }
 
 /** `null` for whatever is not exactly such a token: the library alone would take one without `exp` or with any `typ`. */
-export function verifySessionToken(key: Buffer, token: string, nowMs: number): SessionClaims | null {
+export function verifySessionToken(key: KeyObject, token: string, nowMs: number): SessionClaims | null {
   const verified = verify(key, token, nowMs);
   if (verified?.header.typ !== type || verified.header.alg !== algorithm) return null;
   const claims = claimsSchema.safeParse(verified.payload);
@@ -48,7 +49,7 @@ export function verifySessionToken(key: Buffer, token: string, nowMs: number): S
   return { personId: sub, sessionId: sid, issuedAtMs: iat * 1000 };
 }
 
-function verify(key: Buffer, token: string, nowMs: number): jwt.Jwt | null {
+function verify(key: KeyObject, token: string, nowMs: number): jwt.Jwt | null {
   try {
     return jwt.verify(token, key, {
       algorithms: [algorithm],

@@ -1,4 +1,4 @@
-import { randomBytes, randomUUID } from 'node:crypto';
+import { createSecretKey, randomBytes, randomUUID, type KeyObject } from 'node:crypto';
 import jwt from 'jsonwebtoken';
 import { describe, expect, test } from 'vitest';
 import {
@@ -7,7 +7,7 @@ import {
   verifySessionToken,
 } from '../../../../server/features/sessions/session-token.ts';
 
-const key = randomBytes(32);
+const key = createSecretKey(randomBytes(32));
 const nowMs = Date.UTC(2031, 4, 6);
 const nowS = nowMs / 1000;
 const personId = randomUUID();
@@ -26,7 +26,7 @@ const header = { alg: 'HS256', typ: 'session+jwt' };
 
 function forge(
   claims: object,
-  options: { header?: object; key?: Buffer; algorithm?: jwt.Algorithm } = {},
+  options: { header?: object; key?: KeyObject; algorithm?: jwt.Algorithm } = {},
 ): string {
   const algorithm = options.algorithm ?? 'HS256';
   return jwt.sign(claims, options.key ?? key, {
@@ -63,8 +63,11 @@ describe('the token of a session', () => {
 
   test.each<readonly [string, string]>([
     ['an unsigned one', unsigned()],
-    ['another key', forge(good, { key: randomBytes(32) })],
-    ['HS512 with the right key', forge(good, { algorithm: 'HS512', key: Buffer.concat([key, key]) })],
+    ['another key', forge(good, { key: createSecretKey(randomBytes(32)) })],
+    [
+      'HS512 with the right key',
+      forge(good, { algorithm: 'HS512', key: createSecretKey(Buffer.concat([key.export(), key.export()])) }),
+    ],
     ['HS384', forge(good, { algorithm: 'HS384' })],
     ['another typ', forge(good, { header: { typ: 'JWT' } })],
     ['a longer life than we give', forge({ ...good, exp: nowS + 86_400 })],
