@@ -16,6 +16,8 @@ export interface Hotkey {
   withShiftOf?: string;
   /** A second combination for the same: works, but is not listed. */
   isSecond?: boolean;
+  /** Whether the sheet lists it; always unless told. */
+  isListed?: () => boolean;
   /** Held keys repeat only where that is meant, as for moving along the axis. */
   repeats?: boolean;
   run: (event: KeyboardEvent) => void;

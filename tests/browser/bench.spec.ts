@@ -121,6 +121,29 @@ describe('the bench', () => {
     await takeScreenshot(page, 'bench-looking');
   });
 
+  test('keeps strip, picture, waveform and everything to work with in sight in a window of 1280 by 800', async ({
+    page,
+  }) => {
+    await signIn(page, 'labeler');
+    const pass = await requirePass(page, { blind: false });
+    await openBench(page, `/bench/${pass.recordingId}?pass=${pass.id}`);
+    await page.keyboard.press('KeyM');
+    await page.getByRole('region', { name: 'What is shown' }).waitFor();
+    await page.mouse.move(5, 5);
+    const parts = ['.freeze', '.lane', 'canvas.picture', '.look', '.sound', '[data-saving]', '.pass'];
+    for (const part of parts) {
+      const box = await page.locator(part).first().boundingBox();
+      expect(box, part).not.toBeNull();
+      expect((box?.y ?? 0) + (box?.height ?? 0), part).toBeLessThanOrEqual(800);
+    }
+    const picture = await page.locator('canvas.picture').boundingBox();
+    // The glyphs over it and the gap under it belong to the same canvas.
+    expect((picture?.height ?? 0) - 34).toBeGreaterThanOrEqual(0.385 * 800);
+    const scrollsPx = await page.evaluate(() => document.documentElement.scrollHeight - innerHeight);
+    expect(scrollsPx).toBeLessThanOrEqual(0);
+    await takeScreenshot(page, 'bench-laptop');
+  });
+
   test('is usable in the dark theme, at the width of a tablet, and with its sheet of keys', async ({
     openPage,
   }) => {

@@ -5,19 +5,19 @@ import type { Palette } from '@/theme/palette.ts';
 export interface RibbonDrawing {
   widthPx: number;
   heightPx: number;
-  frames: number;
+  /** From samples of the recording to the width. */
+  toPx: (sample: number) => number;
   /** What the pass is of; `isWhole` where that is everything. */
   part: SpanSet;
   isWhole: boolean;
   seen: readonly SampleSpan[];
   heard: readonly SampleSpan[];
-  window: SampleSpan;
   colours: Palette;
 }
 
 /** A window of a long recording would be thinner than a line. */
 const LEAST_PX = 3;
-const HEARD_PX = 3;
+const HEARD_PX = 2;
 
 /**
  * The part of the pass as a trough, what was seen as its filling, what was heard as a line under it: height and place tell
@@ -26,7 +26,7 @@ const HEARD_PX = 3;
 export function drawRibbon(context: CanvasRenderingContext2D, drawing: RibbonDrawing): void {
   const { widthPx, heightPx, part, isWhole, colours } = drawing;
   context.clearRect(0, 0, widthPx, heightPx);
-  const troughPx = heightPx - HEARD_PX - 2;
+  const troughPx = heightPx - HEARD_PX - 1;
   const least = isWhole ? 1 : LEAST_PX;
   for (const { left, width } of boxes(part, drawing, least)) {
     context.fillStyle = colours.tint;
@@ -37,30 +37,20 @@ export function drawRibbon(context: CanvasRenderingContext2D, drawing: RibbonDra
   }
   context.fillStyle = colours.melt;
   for (const { left, width } of boxes(drawing.seen, drawing, 1))
-    context.fillRect(left, 2, width, troughPx - 4);
+    context.fillRect(left, 1, width, troughPx - 2);
   context.fillStyle = colours.ink;
   for (const { left, width } of boxes(drawing.heard, drawing, 1))
-    context.fillRect(left, heightPx - HEARD_PX, width, HEARD_PX - 1);
-  drawWindow(context, drawing);
+    context.fillRect(left, heightPx - HEARD_PX, width, HEARD_PX);
 }
 
 function boxes(
   spans: readonly SampleSpan[],
-  { widthPx, frames }: RibbonDrawing,
+  { widthPx, toPx }: RibbonDrawing,
   leastPx: number,
 ): { left: number; width: number }[] {
   return spans.map(({ startSample, endSample }) => {
-    const left = (startSample / frames) * widthPx;
-    const width = ((endSample - startSample) / frames) * widthPx;
+    const left = toPx(startSample);
+    const width = toPx(endSample) - left;
     return { left: Math.min(left, widthPx - leastPx), width: Math.max(leastPx, width) };
   });
-}
-
-/** Where one is: a bracket from edge to edge. */
-function drawWindow(context: CanvasRenderingContext2D, drawing: RibbonDrawing): void {
-  const [box] = boxes([drawing.window], drawing, LEAST_PX);
-  if (!box) return;
-  context.strokeStyle = drawing.colours.ink;
-  context.lineWidth = 1.5;
-  context.strokeRect(box.left + 0.75, 0.75, Math.max(1.5, box.width - 1.5), drawing.heightPx - 1.5);
 }

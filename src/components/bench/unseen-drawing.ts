@@ -12,6 +12,36 @@ export interface UnseenScene {
   colours: Palette;
 }
 
+interface Stretch {
+  topPx: number;
+  bottomPx: number;
+}
+
+/** From top to bottom, what of the stage shows something: the bands without their hatch, and the waveform. */
+export function seenStretches(
+  { rows, waveTopPx, waveHeightPx }: Pick<StagePlaces, 'rows' | 'waveTopPx' | 'waveHeightPx'>,
+  unseen: readonly UnseenBand[],
+): Stretch[] {
+  const bands = rows.flatMap(({ ultrasonic, audible }) => [ultrasonic, audible]);
+  const wave = { topPx: waveTopPx, bottomPx: waveTopPx + waveHeightPx };
+  return [...bands.flatMap((place) => seenOfBand(place, unseen)), wave];
+}
+
+function seenOfBand(place: BandPlace, unseen: readonly UnseenBand[]): Stretch[] {
+  const bottomPx = place.topPx + place.heightPx;
+  const hatched = unseen
+    .map(({ lowHz, highHz }) => ({
+      topPx: yOfFrequency(highHz, place),
+      bottomPx: yOfFrequency(lowHz, place),
+    }))
+    .toSorted((a, b) => a.topPx - b.topPx);
+  const starts = [place.topPx, ...hatched.map((one) => one.bottomPx)];
+  const ends = [...hatched.map((one) => one.topPx), bottomPx];
+  return starts
+    .map((topPx, index) => ({ topPx, bottomPx: ends[index] ?? bottomPx }))
+    .filter((stretch) => stretch.bottomPx > stretch.topPx);
+}
+
 const patterns = new Map<string, CanvasPattern | null>();
 
 /** Made once for each pair of colours: a new canvas for every drawing would cost more than the drawing. */

@@ -4,7 +4,7 @@ import { toHotkeys } from '@/composables/bench/keys/hotkey-rows.ts';
 import type { PageActions } from '@/composables/bench/keys/hotkey-rows.ts';
 import { listenRows } from '@/composables/bench/keys/listen-keys.ts';
 import { classKeys, editRows, placeRows, secondRows } from '@/composables/bench/keys/mark-keys.ts';
-import { phaseRows } from '@/composables/bench/keys/phase-keys.ts';
+import { hasPhaseUse, phaseRows } from '@/composables/bench/keys/phase-keys.ts';
 import { pictureRows } from '@/composables/bench/keys/picture-keys.ts';
 import { passRows } from '@/composables/bench/keys/pass-keys.ts';
 import { selectRows } from '@/composables/bench/keys/select-keys.ts';
@@ -35,7 +35,10 @@ export function benchHotkeys(bench: Bench, choices: readonly ClassChoice[], page
     ...toHotkeys('Zoom and move', viewRows(bench)),
     ...toHotkeys('Picture', pictureRows(bench, page)),
     ...toHotkeys('Listen', listenRows(bench)),
-    ...toHotkeys('Growth phases and film', phaseRows(bench)),
+    ...toHotkeys('Growth phases and film', phaseRows(bench)).map((hotkey) => ({
+      ...hotkey,
+      isListed: () => hasPhaseUse(hotkey.id, bench),
+    })),
     ...toHotkeys('Page', [['keys', 'sign:?', 'this sheet of keys', page.showKeys]]),
   ];
 }

@@ -60,7 +60,7 @@ export const MOST_SPLIT = 0.88;
 /** From top to bottom: the lane of glyphs, for each channel the ultrasonic band, the hearing line and the audible band, the waveform. */
 export function placeStage(size: StageSize): StagePlaces {
   const { widthPx, heightPx, channels = [0] } = size;
-  const waveHeightPx = Math.round(Math.min(130, Math.max(64, heightPx * 0.19)));
+  const waveHeightPx = Math.round(Math.min(120, Math.max(60, heightPx * 0.17)));
   const room = heightPx - GLYPH_HEIGHT_PX - GAP_PX - waveHeightPx - ROW_GAP_PX * (channels.length - 1);
   const rowPx = Math.max(LEAST_ROW_PX, Math.floor(room / channels.length));
   const rows = channels.map((channel, index) =>
@@ -110,7 +110,7 @@ function bottomOf({ topPx, heightPx }: ChannelRow): number {
 
 /** The least height at which stacked channels can still be told apart; lower where something else needs the room. */
 export function leastStageHeight(channels: number, isShort: boolean): number {
-  return Math.max(isShort ? 310 : 380, 130 + channels * 56);
+  return Math.max(isShort ? 260 : 330, 130 + channels * 56);
 }
 
 /** The row at a height of the stage; `null` above, below and between. */

@@ -28,3 +28,11 @@ export function phaseRows({ beside }: Pick<Bench, 'beside'>): Row[] {
     ['film', 'Digit5', 'show the film, or close it', toggleFilm],
   ];
 }
+
+/** Whether the key has something to act on: the sheet leaves out the others. */
+export function hasPhaseUse(id: string, { beside }: Pick<Bench, 'beside'>): boolean {
+  const { phases, videos } = beside;
+  if (id === 'bench.film') return videos.items.value.length > 0;
+  const isForNew = id === 'bench.phase.start' || id === 'bench.phase.end';
+  return isForNew ? phases.canAdd.value : phases.items.value.length > 0;
+}

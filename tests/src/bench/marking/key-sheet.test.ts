@@ -55,6 +55,22 @@ describe('the sheet of keys', () => {
     sheet.unmount();
   });
 
+  it('leaves out a key that has nothing to act on here', async () => {
+    const sheet = mountSheet();
+    const silent = {
+      id: 'bench.phase.start',
+      combo: 'BracketLeft',
+      label: 'a phase starts',
+      group: 'Change',
+      run,
+    };
+    await sheet.setProps({ hotkeys: [...hotkeys, { ...silent, isListed: () => false }] });
+    expect(sheet.find('button[aria-label^="a phase starts"]').exists()).toBe(false);
+    await sheet.setProps({ hotkeys: [...hotkeys, { ...silent, isListed: () => true }] });
+    expect(button(sheet, 'a phase starts').text()).toBe('[');
+    sheet.unmount();
+  });
+
   it('tells whose key it is, changes nothing unasked, and lets both change places', async () => {
     const sheet = mountSheet();
     await putOn(sheet, 'write a note', { code: 'KeyF', key: 'f' });
