@@ -50,6 +50,7 @@ describe('the strip of the run', () => {
   test('lets a contributor mark phases by the keyboard alone, and take them back', async ({ page }) => {
     await signIn(page, 'contributor');
     await openBench(page, 'control');
+    await page.waitForLoadState('networkidle');
     await page.locator('details.phases > summary').click();
     const before = await phaseRows(page).count();
     await page.locator('body').click({ position: { x: 5, y: 5 } });
