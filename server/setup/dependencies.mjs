@@ -41,16 +41,16 @@ async function doesDatabaseLoad() {
   return (await runStep(process.execPath, ['--input-type=commonjs', '-e', probe])) === 0;
 }
 
-/** Node.js headers that came with this Node.js need no download. */
-function headerEnvironment() {
+/** Node.js headers that came with this Node.js need no download; each core compiles. */
+function compilerEnvironment() {
   const nodeFolder = dirname(dirname(process.execPath));
   const hasHeaders = existsSync(join(nodeFolder, 'include', 'node', 'node.h'));
-  return hasHeaders ? { npm_config_nodedir: nodeFolder } : {};
+  return { JOBS: 'max', ...(hasHeaders && { npm_config_nodedir: nodeFolder }) };
 }
 
 async function buildDatabase() {
   say('Building the database library (some minutes when it has to be compiled) ...');
-  await runStep('npm', ['rebuild', '--no-audit', '--no-fund', 'better-sqlite3'], headerEnvironment());
+  await runStep('npm', ['rebuild', '--no-audit', '--no-fund', 'better-sqlite3'], compilerEnvironment());
   return doesDatabaseLoad();
 }
 

@@ -1,8 +1,10 @@
+import { ensureChromium } from './chromium.mjs';
 import { ensureDependencies } from './dependencies.mjs';
 import { checkNodeVersion } from './node-version.mjs';
 import { runCommand } from './terminal.mjs';
 
 await runCommand(async () => {
   checkNodeVersion();
-  await ensureDependencies();
+  // Side by side: the one mostly compiles, the other mostly downloads.
+  await Promise.all([ensureDependencies(), ensureChromium()]);
 });

@@ -5,12 +5,26 @@ function mayInstall() {
   return findProgram('apt-get') !== undefined && process.getuid?.() === 0;
 }
 
+/** @type {Promise<void>} */
+let lastTurn = Promise.resolve();
+
 /**
- * Installs Debian packages where that is possible, else stops and says what to install.
+ * Installs Debian packages where that is possible, else stops and says what to install. One after another: apt-get does not
+ * run beside itself.
  * @param {string[]} packages
  * @param {string} purpose the first half of the sentence, such as "The browser tests need Chromium"
  */
-export async function installSystemPackages(packages, purpose) {
+export function installSystemPackages(packages, purpose) {
+  const turn = lastTurn.then(() => install(packages, purpose));
+  lastTurn = turn.catch(() => undefined);
+  return turn;
+}
+
+/**
+ * @param {string[]} packages
+ * @param {string} purpose
+ */
+async function install(packages, purpose) {
   const names = packages.join(' ');
   if (!mayInstall()) {
     throw new SetupError(
