@@ -4,6 +4,7 @@ import {
   type ProblemCode,
   type ProblemField,
 } from '../../shared/contract/problem.ts';
+import { fieldSentence } from '../../shared/lib/field-sentence.ts';
 
 interface ProblemOptions {
   fields?: ProblemField[];
@@ -62,5 +63,6 @@ export function conflict(detail: string): ProblemError {
 
 /** One field of the input that only the server can judge, for example a run of another lab. */
 export function invalidField(path: string, message: string): ProblemError {
-  return new ProblemError('invalid-input', `${path}: ${message}`, { fields: [{ path, message }] });
+  const field = { path, message };
+  return new ProblemError('invalid-input', fieldSentence(field), { fields: [field] });
 }

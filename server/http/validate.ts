@@ -1,5 +1,6 @@
 import type { z } from 'zod';
 import type { ProblemField } from '../../shared/contract/problem.ts';
+import { fieldSentence } from '../../shared/lib/field-sentence.ts';
 import { ProblemError, notFound } from './problem.ts';
 
 /** Parses a body or a query; what is wrong is told field by field, in words. */
@@ -26,8 +27,8 @@ function toFields(error: z.ZodError): ProblemField[] {
 function toDetail(fields: ProblemField[]): string {
   const [first] = fields;
   if (first === undefined) return 'The input cannot be used.';
-  const sentence = first.path === '' ? `The input ${first.message}` : `${first.path} ${first.message}`;
-  return fields.length === 1 ? `${sentence}.` : `${sentence}; ${fields.length - 1} more to correct.`;
+  const sentence = fieldSentence(first);
+  return fields.length === 1 ? sentence : `${sentence.slice(0, -1)}; ${fields.length - 1} more to correct.`;
 }
 
 function toSentence(issue: z.core.$ZodRawIssue): string | undefined {

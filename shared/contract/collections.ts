@@ -63,7 +63,7 @@ export const addItemsSchema = z
       .optional(),
   })
   .refine((body) => (body.recordingIds === undefined) !== (body.filter === undefined), {
-    message: 'give either recordingIds or filter',
+    message: 'must have either recordingIds or filter',
   });
 export type AddItems = z.infer<typeof addItemsSchema>;
 export const addedItemsSchema = z.object({ added: z.number().int(), alreadyIn: z.number().int() });

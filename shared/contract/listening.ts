@@ -38,7 +38,7 @@ export const listenQuerySchema = z
   .refine(
     ({ gate, gateStartSample: start, gateEndSample: end }) =>
       gate !== 'span' || (start !== undefined && end !== undefined && end > start),
-    { path: ['gateEndSample'], message: 'a span of noise has a start and an end after it' },
+    { path: ['gateEndSample'], message: 'goes with the start of a span of noise and lies after it' },
   );
 export type ListenQuery = z.infer<typeof listenQuerySchema>;
 

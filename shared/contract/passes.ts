@@ -77,14 +77,14 @@ function faultsOfKind(pass: KindFacts): { path: string; message: string }[] {
       message: 'cannot go with rounds: they show one candidate of the machine after another',
     });
   if (pass.task === 'phases' && pass.kind !== 'whole')
-    faults.push({ path: 'kind', message: 'growth phases are marked over the whole run' });
+    faults.push({ path: 'kind', message: 'must be "whole": growth phases are marked over the whole run' });
   if ((pass.kind === 'windows') !== (pass.windows !== null))
     faults.push({
       path: 'windows',
-      message: 'number and length go with a pass of windows, and with no other',
+      message: 'go with a pass of windows, by number and length, and with no other',
     });
   if ((pass.kind === 'rounds') !== (pass.roundOrder !== null))
-    faults.push({ path: 'roundOrder', message: 'an order goes with a pass of rounds, and with no other' });
+    faults.push({ path: 'roundOrder', message: 'goes with a pass of rounds, and with no other' });
   return faults;
 }
 

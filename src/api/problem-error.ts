@@ -1,4 +1,5 @@
 import type { Problem, ProblemField } from '@shared/contract/problem.ts';
+import { fieldSentence } from '@shared/lib/field-sentence.ts';
 
 /** Codes that the client itself gives when there is no problem body from the server. */
 export type ClientProblemCode = 'offline' | 'unexpected-answer';
@@ -39,6 +40,11 @@ export function fieldErrors(error: unknown): Record<string, string> {
   const byPath: Record<string, string> = {};
   for (const field of error.fields) byPath[field.path] ??= field.message;
   return byPath;
+}
+
+/** All that is wrong, each field once; the words of the server already name the first one. */
+export function refusalWords({ fields, problem }: ProblemError): string {
+  return fields.length > 1 ? fields.map(fieldSentence).join(' ') : problem.detail;
 }
 
 export function clientProblem(code: ClientProblemCode, detail: string, cause?: unknown): ProblemError {

@@ -14,9 +14,9 @@ export function requireReason({ coverage, unanswered }: PassResult, remark: stri
   if (unanswered > 0)
     throw invalidField(
       'remark',
-      `${unanswered} ${unanswered === 1 ? 'candidate has' : 'candidates have'} no answer yet; say why they are left out`,
+      `is needed: ${unanswered} ${unanswered === 1 ? 'candidate has' : 'candidates have'} no answer yet; say why they are left out`,
     );
   if (coverage === null || coverage.seenShare >= coveredShare) return;
   const percent = Math.floor(coverage.seenShare * 100);
-  throw invalidField('remark', `${percent} % of the part was seen; say why the rest was left out`);
+  throw invalidField('remark', `is needed: ${percent} % of the part was seen; say why the rest was left out`);
 }

@@ -47,7 +47,7 @@ export function drawFor(input: CreatePass, { format }: Assignable, seed: number)
   const windowSamples = Math.round(input.windows.lengthS * sampleRateHz);
   const plan = { frames, count: input.windows.count, windowSamples };
   const fault = windowsFault(plan);
-  if (fault) throw invalidField('windows', fault);
+  if (fault) throw invalidField('windows', `cannot be drawn: ${fault}`);
   return drawWindows(plan, seed);
 }
 

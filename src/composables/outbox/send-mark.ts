@@ -1,7 +1,7 @@
 import { eventSchema } from '@shared/contract/events.ts';
 import type { RecordingEvent } from '@shared/contract/events.ts';
 import { deleteEvent, patchEvent, putEvent } from '@/api/events.ts';
-import { isProblem } from '@/api/problem-error.ts';
+import { isProblem, refusalWords } from '@/api/problem-error.ts';
 import type { ProblemError } from '@/api/problem-error.ts';
 import type { MarkPlace, SaveRequest } from '@/composables/outbox/outbox-entry.ts';
 import type { SendAnswer } from '@/composables/outbox/outbox-sender.ts';
@@ -39,7 +39,7 @@ export function answerOf(error: unknown, kind: SaveRequest['kind']): SendAnswer 
   if (code === 'stale') return staleAnswer(error);
   if (kind === 'remove' && (status === 404 || status === 410)) return { kind: 'removed' };
   if (code === 'gone') return { kind: 'conflict', theirs: null };
-  return { kind: 'refused', sentence: sentenceOf(error), isInvalid: INVALID.includes(status) };
+  return { kind: 'refused', sentence: refusalWords(error), isInvalid: INVALID.includes(status) };
 }
 
 const INVALID = [400, 413, 422];
@@ -59,9 +59,4 @@ function staleAnswer({ problem }: ProblemError): SendAnswer {
   if (!parsed.success) return { kind: 'later', why: 'failing', retryAfterS: null };
   const theirs: RecordingEvent = parsed.data;
   return { kind: 'conflict', theirs };
-}
-
-export function sentenceOf(error: ProblemError): string {
-  const fields = error.fields.map(({ path, message }) => `${path} ${message}`).join('; ');
-  return fields ? `${error.message} ${fields}.` : error.message;
 }

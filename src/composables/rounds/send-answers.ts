@@ -1,7 +1,7 @@
 import { answeredSchema } from '@shared/contract/rounds.ts';
-import { isProblem } from '@/api/problem-error.ts';
+import { isProblem, refusalWords } from '@/api/problem-error.ts';
 import { sendAnswers } from '@/api/rounds.ts';
-import { LONGEST_ANSWER_MS, reasonToWait, sentenceOf } from '@/composables/outbox/send-mark.ts';
+import { LONGEST_ANSWER_MS, reasonToWait } from '@/composables/outbox/send-mark.ts';
 import type { AnswerReply } from '@/composables/rounds/answer-outbox.ts';
 import type { AnswerPacket } from '@/composables/rounds/answer-packet.ts';
 
@@ -22,7 +22,7 @@ export function replyOf(error: unknown): AnswerReply {
   if (error.code === 'sign-in-required') return { kind: 'signed-out' };
   const why = reasonToWait(error);
   if (why) return { kind: 'later', why, retryAfterS: error.retryAfterS };
-  if (error.code !== 'stale') return { kind: 'refused', sentence: sentenceOf(error) };
+  if (error.code !== 'stale') return { kind: 'refused', sentence: refusalWords(error) };
   const theirs = answeredSchema.safeParse(error.problem.current);
   return { kind: 'conflict', theirs: theirs.success ? theirs.data : null };
 }

@@ -1,4 +1,4 @@
-import { isProblem } from '@/api/problem-error.ts';
+import { isProblem, refusalWords } from '@/api/problem-error.ts';
 import type { UploadItem } from '@/composables/uploads/upload-item.ts';
 
 type Failure = Pick<UploadItem, 'stage' | 'message' | 'retriesItself'>;
@@ -37,8 +37,7 @@ export function failureOf(status: number, detail: string): Failure {
 
 export function failureOfError(error: unknown): Failure {
   if (!isProblem(error)) return failureOf(0, '');
-  const ofFields = error.fields.map(({ path, message }) => `${path} ${message}`).join('; ');
-  const detail = ofFields === '' ? error.problem.detail : `${error.problem.detail} (${ofFields})`;
+  const detail = refusalWords(error);
   // A conflict with words of its own, such as too many open uploads, is for a person to mend.
   if (error.status === 409) return { stage: 'failed', message: detail, retriesItself: false };
   return failureOf(error.status, detail);

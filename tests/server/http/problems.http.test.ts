@@ -69,7 +69,7 @@ describe('a problem', () => {
       { path: 'email', message: 'is not an e-mail address' },
       { path: 'roles.0', message: 'must be one of labeler, curator, administrator' },
     ]);
-    expect(answer.body.detail).toBe('email is not an e-mail address; 1 more to correct.');
+    expect(answer.body.detail).toBe('Email is not an e-mail address; 1 more to correct.');
   });
 
   test('of an empty body says what is needed', async () => {

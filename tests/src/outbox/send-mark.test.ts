@@ -37,6 +37,22 @@ describe('an answer that is no success', () => {
     expect(answerOf(problem(410, 'gone'), 'change')).toEqual({ kind: 'conflict', theirs: null });
   });
 
+  it('is refused in a sentence that names each field once', () => {
+    const outside = { path: 'startSample', message: 'lies outside the windows of this pass' };
+    const late = { path: 'endSample', message: 'ends after the recording' };
+    const refusal = (fields: (typeof late)[], detail: string) => {
+      const words = { type: 'about:blank', title: 'T', requestId: '', status: 422, code: 'invalid-input' };
+      return answerOf(new ProblemError({ ...words, detail, fields }), 'create');
+    };
+    const first = 'Start sample lies outside the windows of this pass.';
+    expect(refusal([outside], first)).toMatchObject({ kind: 'refused', sentence: first });
+    expect(
+      refusal([outside, late], 'Start sample lies outside the windows; 1 more to correct.'),
+    ).toMatchObject({
+      sentence: `${first} End sample ends after the recording.`,
+    });
+  });
+
   it('is as good as a removal where what is to be removed is not there', () => {
     expect(answerOf(problem(410, 'gone'), 'remove')).toEqual({ kind: 'removed' });
     expect(answerOf(problem(404, 'not-found'), 'remove')).toEqual({ kind: 'removed' });

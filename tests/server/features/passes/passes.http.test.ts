@@ -117,7 +117,7 @@ describe('kinds of passes', () => {
     const answer = await order({ kind: 'windows', windows: { count: 20, lengthS: 0.05 } });
     expect([answer.status, messageOf(answer)]).toEqual([
       422,
-      'windows so many windows of this length do not fit into the recording',
+      'windows cannot be drawn: so many windows of this length do not fit into the recording',
     ]);
   });
 
@@ -234,7 +234,7 @@ describe('coverage', () => {
     const refused = await finish(passId, '');
     expect([refused.status, refused.body.fields]).toEqual([
       422,
-      [{ path: 'remark', message: '75 % of the part was seen; say why the rest was left out' }],
+      [{ path: 'remark', message: 'is needed: 75 % of the part was seen; say why the rest was left out' }],
     ]);
     await add(passId, [seen(36_000, 48_000)]);
     const finished = await finish(passId, '').expect(200);
@@ -279,7 +279,7 @@ test('rounds are finished when every candidate has an answer, or with a reason',
   const { passId } = await seedRound(app, roundCandidates(3));
   const refused = await finish(passId, '');
   expect(refused.body.fields).toEqual([
-    { path: 'remark', message: '3 candidates have no answer yet; say why they are left out' },
+    { path: 'remark', message: 'is needed: 3 candidates have no answer yet; say why they are left out' },
   ]);
   const finished = await finish(passId, 'Too weak to tell.').expect(200);
   // A round asks about candidates: a share of the recording that was seen would say nothing.
