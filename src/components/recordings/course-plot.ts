@@ -1,7 +1,7 @@
 import type uPlot from 'uplot';
 import type { Course } from '@shared/contract/measurement.ts';
 import type { TimeMark } from '@/components/recordings/finding-places.ts';
-import { figureFont, roundRange } from '@/components/recordings/plot-axes.ts';
+import { figureAxis, roundRange, timeAxis } from '@/components/recordings/plot-axes.ts';
 import type { PlotSize } from '@/components/recordings/usePlot.ts';
 import { timeTicks } from '@/composables/bench/time-axis.ts';
 import type { AxisTick } from '@/composables/bench/time-axis.ts';
@@ -131,26 +131,8 @@ export function courseOptions({ series, durationS, hasTimeAxis, marks, onPoint }
       cursor: { drag: { x: false, y: false }, points: { show: false }, y: false, sync: { key: 'course' } },
       scales: { x: { time: false, range: () => [0, durationS] }, y: { range: () => [low, high] } },
       axes: [
-        {
-          show: hasTimeAxis,
-          stroke: palette.inkQuiet,
-          font: figureFont,
-          grid: { show: false },
-          ticks: { stroke: palette.hairline, width: 1, size: 4 },
-          // The library's own steps run into each other in a recording of a few samples.
-          splits: () => ticks.map(({ value }) => value),
-          values: () => ticks.map(({ label }) => label),
-          size: 28,
-        },
-        {
-          stroke: palette.inkQuiet,
-          font: figureFont,
-          grid: { stroke: palette.hairline, width: 1 },
-          ticks: { show: false },
-          splits: () => [low, high],
-          values: (_plot, splits) => splits.map((value) => formatNumber(value)),
-          size: 46,
-        },
+        timeAxis(palette, ticks, hasTimeAxis),
+        { ...figureAxis(palette, 46), splits: () => [low, high] },
       ],
       series: [
         {},

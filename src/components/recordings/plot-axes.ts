@@ -1,4 +1,5 @@
 import type uPlot from 'uplot';
+import type { AxisTick } from '@/composables/bench/time-axis.ts';
 import { formatFrequency, formatNumber } from '@/composables/useFormat.ts';
 import type { Palette } from '@/theme/palette.ts';
 import { fontFigures, fontText } from '@/theme/tokens.ts';
@@ -30,19 +31,34 @@ export function frequencyAxis(palette: Palette, lowHz: number, highHz: number): 
   };
 }
 
-export function valueAxis(palette: Palette, label: string): uPlot.Axis {
+/** Places in time under a plot; the library's own steps run into each other in a recording of a few samples. */
+export function timeAxis(palette: Palette, ticks: readonly AxisTick[], isShown: boolean): uPlot.Axis {
+  return {
+    show: isShown,
+    stroke: palette.inkQuiet,
+    font: figureFont,
+    grid: { show: false },
+    ticks: { stroke: palette.hairline, width: 1, size: 4 },
+    splits: () => ticks.map(({ value }) => value),
+    values: () => ticks.map(({ label }) => label),
+    size: 28,
+  };
+}
+
+/** Values without a label beside them. */
+export function figureAxis(palette: Palette, size: number): uPlot.Axis {
   return {
     stroke: palette.inkQuiet,
     font: figureFont,
-    label,
-    labelFont: figureFont,
-    labelSize: 18,
-    labelGap: 2,
     grid: { stroke: palette.hairline, width: 1 },
     ticks: { show: false },
     values: (_plot, splits) => splits.map((value) => formatNumber(value)),
-    size: 46,
+    size,
   };
+}
+
+export function valueAxis(palette: Palette, label: string): uPlot.Axis {
+  return { ...figureAxis(palette, 46), label, labelFont: figureFont, labelSize: 18, labelGap: 2 };
 }
 
 /** Room to the next round step, so that a curve does not touch the frame. */

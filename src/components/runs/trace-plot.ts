@@ -1,15 +1,9 @@
 import type uPlot from 'uplot';
-import { figureFont } from '@/components/recordings/plot-axes.ts';
+import { figureAxis, timeAxis } from '@/components/recordings/plot-axes.ts';
 import type { PlotSize } from '@/components/recordings/usePlot.ts';
 import { timeTicks } from '@/composables/bench/time-axis.ts';
-import { formatNumber } from '@/composables/useFormat.ts';
+import type { PlotSpan } from '@/composables/runs/trace-range.ts';
 import type { Palette } from '@/theme/palette.ts';
-
-/** A stretch of run time, in seconds. */
-export interface PlotSpan {
-  fromS: number;
-  toS: number;
-}
 
 interface TraceLook {
   range: PlotSpan;
@@ -66,27 +60,7 @@ export function traceOptions(look: TraceLook) {
       legend: { show: false },
       cursor: { drag: { x: false, y: false }, points: { show: false }, y: false, sync: { key: 'traces' } },
       scales: { x: { time: false, range: () => [range.fromS, range.toS] } },
-      axes: [
-        {
-          show: hasTimeAxis,
-          stroke: palette.inkQuiet,
-          font: figureFont,
-          grid: { show: false },
-          ticks: { stroke: palette.hairline, width: 1, size: 4 },
-          splits: () => ticks.map(({ value }) => value),
-          values: () => ticks.map(({ label }) => label),
-          size: 28,
-        },
-        {
-          stroke: palette.inkQuiet,
-          font: figureFont,
-          grid: { stroke: palette.hairline, width: 1 },
-          ticks: { show: false },
-          values: (_plot, splits) => splits.map((value) => formatNumber(value)),
-          space: 24,
-          size: 54,
-        },
-      ],
+      axes: [timeAxis(palette, ticks, hasTimeAxis), { ...figureAxis(palette, 54), space: 24 }],
       series: [{}, { stroke: palette.melt, width: 1.4, points: { show: false } }],
       hooks: {
         draw: [(plot) => drawBeside(plot, palette, look)],

@@ -1,7 +1,8 @@
-import { useQueries, useQuery, useQueryClient } from '@tanstack/vue-query';
+import { keepPreviousData, useQueries, useQuery, useQueryClient } from '@tanstack/vue-query';
 import { computed, toValue } from 'vue';
 import type { MaybeRefOrGetter } from 'vue';
 import type { Recalescences, Trace, TracePointsAnswer } from '@shared/contract/traces.ts';
+import type { PlotSpan } from '@/composables/runs/trace-range.ts';
 import { getRecalescences, getTracePoints, listTraces } from '@/api/traces.ts';
 
 /** A trace with its points in run time, and what looks like recalescence in it. Both arrive after the trace. */
@@ -20,7 +21,11 @@ const keptMs = 5 * 60_000;
  * The traces beside the sound of a run; none while the person works blind on one of its recordings. Each part is fetched once
  * and shared between all who ask for the same run.
  */
-export function useRunTraces(runId: MaybeRefOrGetter<string | undefined>) {
+export function useRunTraces(
+  runId: MaybeRefOrGetter<string | undefined>,
+  /** Of what part points are wanted; finer where it is shorter. */
+  part: MaybeRefOrGetter<PlotSpan | null> = null,
+) {
   const queries = useQueryClient();
   const id = computed(() => toValue(runId) ?? '');
   const list = useQuery({
@@ -29,11 +34,19 @@ export function useRunTraces(runId: MaybeRefOrGetter<string | undefined>) {
     enabled: computed(() => id.value !== ''),
   });
   const traces = computed(() => list.data.value ?? []);
+  const wanted = computed(() => {
+    const { fromS, toS } = toValue(part) ?? {};
+    return fromS === undefined || toS === undefined
+      ? {}
+      : { fromNs: Math.floor(fromS * 1e9), toNs: Math.ceil(toS * 1e9) };
+  });
   const points = useQueries({
     queries: computed(() =>
       traces.value.map(({ id: traceId, revision }) => ({
-        queryKey: ['trace-points', traceId, revision],
-        queryFn: ({ signal }: { signal: AbortSignal }) => getTracePoints(traceId, {}, signal),
+        queryKey: ['trace-points', traceId, revision, wanted.value],
+        queryFn: ({ signal }: { signal: AbortSignal }) => getTracePoints(traceId, wanted.value, signal),
+        // What is drawn stays until the finer points have come.
+        placeholderData: keepPreviousData,
         staleTime: keptMs,
       })),
     ),

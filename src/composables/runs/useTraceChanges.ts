@@ -1,22 +1,21 @@
 import { shallowRef } from 'vue';
-import type { Trace } from '@shared/contract/traces.ts';
-import type { TraceClock } from '@shared/domain/trace-clock.ts';
+import type { PatchTrace, Trace } from '@shared/contract/traces.ts';
 import { changeTrace, removeTrace, restoreTrace } from '@/api/traces.ts';
 import { useAnnounce } from '@/composables/useAnnounce.ts';
 import { useSubmit } from '@/composables/useSubmit.ts';
 
-/** Places of traces changed, and traces removed with a way back. */
+/** Names, units and places of traces changed, and traces removed with a way back. */
 export function useTraceChanges(refresh: () => Promise<void>) {
   const { announce } = useAnnounce();
   const placed = shallowRef<Trace | null>(null);
   const removed = shallowRef<Trace | null>(null);
 
-  const placing = useSubmit(async (clock: TraceClock) => {
+  const placing = useSubmit(async (told: PatchTrace) => {
     if (placed.value === null) return;
-    await changeTrace(placed.value.id, placed.value.revision, clock);
+    await changeTrace(placed.value.id, placed.value.revision, told);
     await refresh();
     placed.value = null;
-    await announce('Place saved');
+    await announce('The changes are saved');
   });
   const removing = useSubmit(async (trace: Trace) => {
     await removeTrace(trace.id, trace.revision);
