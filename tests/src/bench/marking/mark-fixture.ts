@@ -1,25 +1,7 @@
 import type { BenchMark } from '@/composables/bench/mark.ts';
+import { crack, place } from '../../outbox/outbox-fixtures.ts';
 
 export function benchMark(values: Partial<BenchMark> = {}): BenchMark {
-  return {
-    key: 'a',
-    passId: 'p',
-    isOwn: true,
-    parameters: null,
-    channel: 0,
-    startSample: 1000,
-    endSample: 1200,
-    lowHz: null,
-    highHz: null,
-    classKey: 'crack',
-    confidence: 'sure',
-    note: '',
-    origin: 'hand',
-    candidateId: null,
-    rawStartSample: null,
-    uncertaintySamples: null,
-    aids: null,
-    view: null,
-    ...values,
-  };
+  const facts = { key: 'a', passId: place.passId, isOwn: true, parameters: null };
+  return { ...crack, ...facts, startSample: 1000, endSample: 1200, ...values };
 }
