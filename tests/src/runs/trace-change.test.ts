@@ -7,7 +7,7 @@ const trace: Trace = {
   ...{ id: 'trace', runId: 'run', name: 'stage 17', quantity: 'temperature', unit: '°C' },
   ...{ fileName: 'stage.csv', sha256: 'a', sizeBytes: 100, points: 10, durationS: 9 },
   mapping: {
-    ...{ separator: ',', decimal: '.', timeColumn: 0, timeUnit: 's', valueColumn: 1, unit: '°C' },
+    ...{ separator: 'comma', decimal: 'point', timeColumn: 0, timeUnit: 's', valueColumn: 1, unit: '°C' },
   },
   ...{ minimum: -20, maximum: 5, runOffsetNs: 2e9, clockPpm: 3 },
   ...{ createdAt: '2026-03-02T13:10:00.000Z', revision: 1, editable: true },
