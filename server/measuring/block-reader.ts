@@ -28,18 +28,26 @@ export class BlockReader {
   readonly #frameBytes: number;
   #small: Promise<Float32Array[]> | undefined;
 
-  /** @param engine that decodes; where its samples are read into its own memory, they are not copied. */
-  static async open(filePath: string, place: AudioPlace, engine = packageEngine()): Promise<BlockReader> {
-    return new BlockReader(await open(filePath, 'r'), place, engine);
+  /**
+   * @param engine that decodes; where its samples are read into its own memory, they are not copied.
+   * @param mostPieceBytes that are read at once.
+   */
+  static async open(
+    filePath: string,
+    place: AudioPlace,
+    engine = packageEngine(),
+    mostPieceBytes = PIECE_BYTES,
+  ): Promise<BlockReader> {
+    return new BlockReader(await open(filePath, 'r'), place, engine, mostPieceBytes);
   }
 
-  private constructor(file: FileHandle, place: AudioPlace, engine: FrameEngine) {
+  private constructor(file: FileHandle, place: AudioPlace, engine: FrameEngine, mostPieceBytes: number) {
     this.#file = file;
     this.#place = place;
     this.frames = place.format.frames;
     this.#frameBytes = bytesPerFrame(place.format);
-    const wantedBytes = Math.min(PIECE_BYTES, Math.max(1, this.frames) * this.#frameBytes);
-    this.#pieceBytes = Math.floor(wantedBytes / this.#frameBytes) * this.#frameBytes;
+    const wantedBytes = Math.min(mostPieceBytes, Math.max(1, this.frames) * this.#frameBytes);
+    this.#pieceBytes = Math.max(1, Math.floor(wantedBytes / this.#frameBytes)) * this.#frameBytes;
     this.#piece = engine.bytes(this.#pieceBytes);
     this.#decode = engine.decoder(place.format, this.#pieceBytes);
   }

@@ -1,6 +1,7 @@
 import type { BurstParameters } from '../../shared/contract/measurement.ts';
 import { measureSpan } from '../signal/bursts.ts';
 import { robustSigma } from '../signal/noise-floor.ts';
+import { packageEngine } from '../signal/package-engine.ts';
 import { BlockReader, type AudioPlace } from './block-reader.ts';
 import type { MeasureContext } from './measure-context.ts';
 
@@ -21,6 +22,8 @@ interface SpanInput {
 
 /** A longer span is a stretch of sound, not a burst: its parameters would say nothing and cost much. */
 const LONGEST_SPAN_SAMPLES = 4_000_000;
+/** A mark and the quiet before it are short: more room than that would be cleared for each. */
+const PIECE_BYTES = 64 * 1024;
 /** Length of the quiet before the mark from which noise and threshold are taken. */
 const LEAD_S = 0.01;
 const LEAST_LEAD_SAMPLES = 64;
@@ -38,7 +41,7 @@ const HIGHEST_OF_RATE = 0.45;
 export async function measureMarkedSpan(input: SpanInput): Promise<BurstParameters | null> {
   const { span, sampleRateHz, context } = input;
   if (span.endSample - span.startSample > LONGEST_SPAN_SAMPLES) return null;
-  const reader = await BlockReader.open(input.filePath, input.header);
+  const reader = await BlockReader.open(input.filePath, input.header, packageEngine(), PIECE_BYTES);
   try {
     const samples = await reader.readChannel(
       span.channel,

@@ -32,7 +32,9 @@ export function median(values: Float32Array | Float64Array): number {
  */
 export function robustSigma(values: Float32Array | Float64Array): number {
   const centre = median(values);
-  return MAD_TO_SIGMA * median(Float64Array.from(values, (value) => Math.abs(value - centre)));
+  const deviations = new Float64Array(values.length);
+  for (let k = 0; k < values.length; k++) deviations[k] = Math.abs(values[k]! - centre);
+  return MAD_TO_SIGMA * median(deviations);
 }
 
 /** Standard deviation of the noise behind an envelope: median / sqrt(2 ln 2), by Rayleigh's distribution. */

@@ -1,12 +1,21 @@
-import { and, asc, eq, inArray, isNull } from 'drizzle-orm';
+import { and, asc, eq, inArray, isNull, sql } from 'drizzle-orm';
 import type { Reader } from '../../db/client.ts';
+import { prepared } from '../../db/prepared.ts';
 import { eventRevisions, events } from '../../db/schema/events.ts';
 import { candidates, detectorRuns } from '../../db/schema/measurements.ts';
 
 export type EventRow = typeof events.$inferSelect;
 
+const eventById = prepared((db) =>
+  db
+    .select()
+    .from(events)
+    .where(eq(events.id, sql.placeholder('id')))
+    .prepare(),
+);
+
 export function selectEvent(db: Reader, id: string): EventRow | undefined {
-  return db.select().from(events).where(eq(events.id, id)).get();
+  return eventById(db).get({ id });
 }
 
 export function selectEventsOfPasses(db: Reader, passIds: readonly string[]): EventRow[] {

@@ -1,6 +1,7 @@
 import { and, count, desc, eq, isNull, lt, ne, sql, type SQL } from 'drizzle-orm';
 import type { PassState } from '../../../shared/contract/passes.ts';
 import type { Reader } from '../../db/client.ts';
+import { prepared } from '../../db/prepared.ts';
 import { candidateVerdicts, events, passes } from '../../db/schema/events.ts';
 import { detectorRuns } from '../../db/schema/measurements.ts';
 import { recordings } from '../../db/schema/recordings.ts';
@@ -89,14 +90,18 @@ export function selectPassWithContext(db: Reader, id: string): PassWithContext |
   return fromPasses(db).where(eq(passes.id, id)).get();
 }
 
-/** What is asked at each mark: the pass, and whether its recording is shared. */
-export function selectPassAndSharing(db: Reader, id: string) {
-  return db
+const passAndSharingById = prepared((db) =>
+  db
     .select({ pass: passes, sharing: recordings.sharing })
     .from(passes)
     .innerJoin(recordings, eq(recordings.id, passes.recordingId))
-    .where(eq(passes.id, id))
-    .get();
+    .where(eq(passes.id, sql.placeholder('id')))
+    .prepare(),
+);
+
+/** What is asked at each mark: the pass, and whether its recording is shared. */
+export function selectPassAndSharing(db: Reader, id: string) {
+  return passAndSharingById(db).get({ id });
 }
 
 function isOpenOf(labelerId: string): SQL | undefined {

@@ -2,14 +2,7 @@ import type { Person } from '../../../shared/contract/people.ts';
 import type { Actor } from '../../../shared/policy/actor.ts';
 import type { Reader } from '../../db/client.ts';
 import type { Ground } from '../../ground.ts';
-import {
-  selectMemberships,
-  selectRoles,
-  selectUser,
-  selectUserByEmail,
-  updateUser,
-  type UserRow,
-} from './people.queries.ts';
+import { selectRights, selectUser, selectUserByEmail, updateUser, type UserRow } from './people.queries.ts';
 
 export type ActorsService = ReturnType<typeof createActorsService>;
 
@@ -22,13 +15,10 @@ export function createActorsService({ db, clock }: Pick<Ground, 'db' | 'clock'>)
   }
 
   function rightsOf(user: UserRow): Pick<Person, 'roles' | 'memberships'> {
+    const rights = selectRights(db, user.id);
     return {
-      roles: selectRoles(db, [user.id]).map(({ role }) => role),
-      memberships: selectMemberships(db, [user.id]).map(({ labId, labName, role }) => ({
-        labId,
-        labName,
-        role,
-      })),
+      roles: rights.roles.map(({ role }) => role),
+      memberships: rights.memberships.map(({ labId, labName, role }) => ({ labId, labName, role })),
     };
   }
 

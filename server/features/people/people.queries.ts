@@ -1,6 +1,7 @@
 import { and, asc, count, eq, gt, inArray, or, sql, type SQL } from 'drizzle-orm';
 import type { LabRole, Membership, ServiceRole } from '../../../shared/contract/people.ts';
 import type { Reader, Tx } from '../../db/client.ts';
+import { prepared } from '../../db/prepared.ts';
 import { labs } from '../../db/schema/labs.ts';
 import { memberships, serviceRoles, users } from '../../db/schema/users.ts';
 
@@ -12,8 +13,16 @@ export interface NamedMembershipRow {
   role: LabRole;
 }
 
+const userById = prepared((db) =>
+  db
+    .select()
+    .from(users)
+    .where(eq(users.id, sql.placeholder('id')))
+    .prepare(),
+);
+
 export function selectUser(db: Reader, id: string): UserRow | undefined {
-  return db.select().from(users).where(eq(users.id, id)).get();
+  return userById(db).get({ id });
 }
 
 export function selectUserByEmail(db: Reader, email: string): UserRow | undefined {
@@ -64,19 +73,43 @@ export function selectRoles(db: Reader, userIds: readonly string[]) {
     .all();
 }
 
+const membershipColumns = {
+  userId: memberships.userId,
+  labId: memberships.labId,
+  labName: labs.name,
+  role: memberships.role,
+};
+
 export function selectMemberships(db: Reader, userIds: readonly string[]): NamedMembershipRow[] {
   return db
-    .select({
-      userId: memberships.userId,
-      labId: memberships.labId,
-      labName: labs.name,
-      role: memberships.role,
-    })
+    .select(membershipColumns)
     .from(memberships)
     .innerJoin(labs, eq(labs.id, memberships.labId))
     .where(inArray(memberships.userId, [...userIds]))
     .orderBy(asc(labs.name), asc(memberships.role))
     .all();
+}
+
+const rolesByUser = prepared((db) =>
+  db
+    .select({ role: serviceRoles.role })
+    .from(serviceRoles)
+    .where(eq(serviceRoles.userId, sql.placeholder('userId')))
+    .prepare(),
+);
+const membershipsByUser = prepared((db) =>
+  db
+    .select(membershipColumns)
+    .from(memberships)
+    .innerJoin(labs, eq(labs.id, memberships.labId))
+    .where(eq(memberships.userId, sql.placeholder('userId')))
+    .orderBy(asc(labs.name), asc(memberships.role))
+    .prepare(),
+);
+
+/** What one person may do, asked at every request. */
+export function selectRights(db: Reader, userId: string) {
+  return { roles: rolesByUser(db).all({ userId }), memberships: membershipsByUser(db).all({ userId }) };
 }
 
 export function selectEnabledByRole(db: Reader, role: ServiceRole): { id: string; name: string }[] {

@@ -5,6 +5,7 @@ import type { ListRecordingsQuery, RecordingListItem } from '../../../shared/con
 import { areFindingsOpen } from '../../authorize/withheld.ts';
 import type { Reader } from '../../db/client.ts';
 import { containsText } from '../../db/like-pattern.ts';
+import { prepared } from '../../db/prepared.ts';
 import type { RowPlace } from '../../db/row-place.ts';
 import { events, passes } from '../../db/schema/events.ts';
 import { labs } from '../../db/schema/labs.ts';
@@ -153,15 +154,19 @@ export function selectRecording(db: Reader, id: string, visible: SQL): Recording
 
 export type MeasuredWith = NonNullable<ReturnType<typeof selectMeasuredWith>>;
 
-/** A recording and what it was recorded with, for the server's own work, which nobody's rights narrow. */
-export function selectMeasuredWith(db: Reader, id: string) {
-  return db
+const measuredWithById = prepared((db) =>
+  db
     .select({ recording: recordings, setup: setups, sensor: sensors })
     .from(recordings)
     .innerJoin(setups, eq(setups.id, recordings.setupId))
     .innerJoin(sensors, eq(sensors.id, setups.sensorId))
-    .where(eq(recordings.id, id))
-    .get();
+    .where(eq(recordings.id, sql.placeholder('id')))
+    .prepare(),
+);
+
+/** A recording and what it was recorded with, for the server's own work, which nobody's rights narrow. */
+export function selectMeasuredWith(db: Reader, id: string) {
+  return measuredWithById(db).get({ id });
 }
 
 export function requireRecording(db: Reader, id: string): RecordingRow {

@@ -1,12 +1,21 @@
-import { and, desc, eq, gt, isNull, ne } from 'drizzle-orm';
+import { and, desc, eq, gt, isNull, ne, sql } from 'drizzle-orm';
 import type { Reader, Tx } from '../../db/client.ts';
+import { prepared } from '../../db/prepared.ts';
 import { apiTokens, sessions } from '../../db/schema/sessions.ts';
 
 export type SessionRow = typeof sessions.$inferSelect;
 export type TokenRow = typeof apiTokens.$inferSelect;
 
+const sessionById = prepared((db) =>
+  db
+    .select()
+    .from(sessions)
+    .where(eq(sessions.id, sql.placeholder('id')))
+    .prepare(),
+);
+
 export function selectSession(db: Reader, id: string): SessionRow | undefined {
-  return db.select().from(sessions).where(eq(sessions.id, id)).get();
+  return sessionById(db).get({ id });
 }
 
 export function selectOpenSessionsOf(db: Reader, userId: string): SessionRow[] {
