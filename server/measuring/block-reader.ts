@@ -30,7 +30,7 @@ export class BlockReader {
 
   /**
    * @param engine that decodes; where its samples are read into its own memory, they are not copied.
-   * @param mostPieceBytes that are read at once.
+   * @param mostPieceBytes that are read at once; a small recording always is.
    */
   static async open(
     filePath: string,
@@ -46,7 +46,10 @@ export class BlockReader {
     this.#place = place;
     this.frames = place.format.frames;
     this.#frameBytes = bytesPerFrame(place.format);
-    const wantedBytes = Math.min(mostPieceBytes, Math.max(1, this.frames) * this.#frameBytes);
+    const wantedBytes = Math.min(
+      Math.max(mostPieceBytes, SMALL_RECORDING_BYTES),
+      Math.max(1, this.frames) * this.#frameBytes,
+    );
     this.#pieceBytes = Math.max(1, Math.floor(wantedBytes / this.#frameBytes)) * this.#frameBytes;
     this.#piece = engine.bytes(this.#pieceBytes);
     this.#decode = engine.decoder(place.format, this.#pieceBytes);

@@ -3,6 +3,7 @@ import { measureSpan } from '../signal/bursts.ts';
 import { robustSigma } from '../signal/noise-floor.ts';
 import { packageEngine } from '../signal/package-engine.ts';
 import { BlockReader, type AudioPlace } from './block-reader.ts';
+import { SMALL_RECORDING_BYTES } from './small-recording.ts';
 import type { MeasureContext } from './measure-context.ts';
 
 export interface MarkedSpan {
@@ -22,8 +23,6 @@ interface SpanInput {
 
 /** A longer span is a stretch of sound, not a burst: its parameters would say nothing and cost much. */
 const LONGEST_SPAN_SAMPLES = 4_000_000;
-/** A mark and the quiet before it are short: more room than that would be cleared for each. */
-const PIECE_BYTES = 64 * 1024;
 /** Length of the quiet before the mark from which noise and threshold are taken. */
 const LEAD_S = 0.01;
 const LEAST_LEAD_SAMPLES = 64;
@@ -41,7 +40,8 @@ const HIGHEST_OF_RATE = 0.45;
 export async function measureMarkedSpan(input: SpanInput): Promise<BurstParameters | null> {
   const { span, sampleRateHz, context } = input;
   if (span.endSample - span.startSample > LONGEST_SPAN_SAMPLES) return null;
-  const reader = await BlockReader.open(input.filePath, input.header, packageEngine(), PIECE_BYTES);
+  // A mark and the quiet before it are short: more room would be cleared in vain for each.
+  const reader = await BlockReader.open(input.filePath, input.header, packageEngine(), SMALL_RECORDING_BYTES);
   try {
     const samples = await reader.readChannel(
       span.channel,
