@@ -12,6 +12,8 @@ export function createQueryClient(): QueryClient {
   return new QueryClient({
     defaultOptions: {
       queries: {
+        // Answers are replaced, never changed: watching each value in thousands of marks would cost more than drawing them.
+        shallow: true,
         staleTime: 10_000,
         retry: (failures, error) => failures < RETRIES && mayPass(error),
         refetchOnWindowFocus: true,

@@ -1,6 +1,6 @@
 import { nextTick } from 'vue';
 import { createRouter, createWebHistory } from 'vue-router';
-import type { Router } from 'vue-router';
+import type { RouteLocationNormalized, Router } from 'vue-router';
 import { decide } from '@/router/guard.ts';
 import { routes } from '@/router/routes.ts';
 import { useSessionStore } from '@/stores/session.ts';
@@ -9,6 +9,14 @@ import { useSessionStore } from '@/stores/session.ts';
 async function focusHeadline(): Promise<void> {
   await nextTick();
   document.querySelector<HTMLElement>('[data-headline]')?.focus({ preventScroll: true });
+}
+
+/** The code of a page is fetched while the session is asked for. What fails here is tried again, and told, by the navigation. */
+function fetchCode({ matched }: RouteLocationNormalized): void {
+  for (const { components } of matched) {
+    const fetchPage = components?.default as (() => Promise<unknown>) | undefined;
+    if (typeof fetchPage === 'function') fetchPage().catch(() => undefined);
+  }
 }
 
 export function createAppRouter(): Router {
@@ -22,6 +30,7 @@ export function createAppRouter(): Router {
     },
   });
   router.beforeEach(async (to) => {
+    fetchCode(to);
     const session = useSessionStore();
     await session.load();
     return decide(to, { isSignedIn: session.user !== null, ability: session.ability });

@@ -7,12 +7,16 @@ import { listEvents } from '@/api/events.ts';
 import { listPasses } from '@/api/passes.ts';
 import { getRecording } from '@/api/recordings.ts';
 import { getScheme } from '@/api/schemes.ts';
-import { getTileLayout } from '@/api/views.ts';
+import { getTile, getTileLayout } from '@/api/views.ts';
+import { rootOf } from '@/composables/bench/tile-plan.ts';
+import type { KnownTile } from '@/composables/bench/tile-store.ts';
 
 /** Everything that the bench needs before its first picture. */
 export interface BenchData {
   recording: Recording;
   layout: TileLayout;
+  /** Of the first channel, the tiles that hold all of it; what could not be had is asked for again by the picture. */
+  firstTiles: KnownTile[];
   /** The pass of this person: the one asked for, else the open one, else the newest; `null` without any. */
   pass: Pass | null;
   scheme: LabelScheme;
@@ -39,10 +43,25 @@ export async function loadBench(
   ]);
   const pass = choosePass(passes.items, wantedPassId);
   if (recording.processing !== 'measured' || recording.isSoundWithheld) return { recording, pass };
-  const [layout, events, scheme] = await Promise.all([
-    getTileLayout(recordingId, signal),
+  const [{ layout, firstTiles }, events, scheme] = await Promise.all([
+    loadPicture(recordingId, signal),
     listEvents(recordingId, signal),
     getScheme(pass?.schemeVersion ?? 'newest', signal),
   ]);
-  return { recording, layout, pass, scheme, events };
+  return { recording, layout, firstTiles, pass, scheme, events };
+}
+
+async function loadPicture(
+  recordingId: string,
+  signal: AbortSignal,
+): Promise<Pick<BenchData, 'layout' | 'firstTiles'>> {
+  const layout = await getTileLayout(recordingId, signal);
+  const loaded = await Promise.all(
+    layout.pictures.map(async (picture) => {
+      const request = { channel: 0, band: picture.band, ...rootOf(picture) };
+      const tile = await getTile({ recordingId, ...request }, signal).catch(() => null);
+      return tile && { request, tile };
+    }),
+  );
+  return { layout, firstTiles: loaded.filter((one) => one !== null) };
 }

@@ -65,6 +65,11 @@ function tilesAtLevel(layout: PictureLayout, level: number): number {
   return Math.ceil(columnsAtLevel(layout, level) / layout.columnsPerTile);
 }
 
+/** The one tile that holds the whole recording. */
+export function rootOf(layout: PictureLayout): TilePlace {
+  return { level: layout.levels - 1, tile: 0 };
+}
+
 /** Where a movement goes: back, nowhere yet, on. */
 export type Heading = -1 | 0 | 1;
 
@@ -76,7 +81,7 @@ export function planTiles(
 ): TilePlan {
   const level = levelFor(layout, samplesPerPixel);
   const shown = tilesOfWindow(layout, window, level);
-  const root = { level: layout.levels - 1, tile: 0 };
+  const root = rootOf(layout);
   const parents = level + 1 < layout.levels ? tilesOfWindow(layout, widened(window), level + 1) : [];
   const all = [...parents, ...neighboursOf(layout, shown, heading), ...childrenOf(layout, window, level)];
   return { level, root, shown, ahead: withoutRepeats(all, [root, ...shown]) };

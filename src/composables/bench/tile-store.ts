@@ -8,6 +8,12 @@ export interface TileRequest {
   tile: number;
 }
 
+/** A tile that is there before anything is asked for. */
+export interface KnownTile {
+  request: TileRequest;
+  tile: Tile;
+}
+
 export interface TileStoreParts {
   load: (request: TileRequest, signal: AbortSignal) => Promise<Tile>;
   /** A tile has come, or could not be had this time. */
@@ -16,6 +22,7 @@ export interface TileStoreParts {
   capacity?: number;
   /** Requests under way at once. */
   parallel?: number;
+  known?: readonly KnownTile[];
 }
 
 export type TileStore = ReturnType<typeof createTileStore>;
@@ -39,8 +46,9 @@ function keyOf({ channel, band, level, tile }: TileRequest): string {
  * it is forgotten and what is under way is given up, so that a fast pan does not fetch what it has left behind. What could
  * not be had is tried again as long as it is wanted, after 1, 2, 4 ... 30 seconds.
  */
-export function createTileStore({ load, onChange, capacity = 1000, parallel = 6 }: TileStoreParts) {
-  const tiles = new Map<string, Tile>();
+export function createTileStore(parts: TileStoreParts) {
+  const { load, onChange, capacity = 1000, parallel = 6, known = [] } = parts;
+  const tiles = new Map(known.map(({ request, tile }) => [keyOf(request), tile]));
   const underway = new Map<string, AbortController>();
   const failures = new Map<string, Failure>();
   let wanted: TileRequest[] = [];

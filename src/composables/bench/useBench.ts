@@ -21,7 +21,7 @@ import { useCoverage } from '@/composables/pass/useCoverage.ts';
 export type Bench = ReturnType<typeof useBench>;
 
 /** The state of one recording on the bench, and what can be done with it: made of parts that know little of each other. */
-export function useBench({ recording, layout, pass, scheme, events }: BenchData) {
+export function useBench({ recording, layout, firstTiles, pass, scheme, events }: BenchData) {
   const { frames, sampleRateHz } = layout;
   const draft = shallowRef<DraftSpan | null>(null);
   const selectedCandidate = shallowRef<Candidate | null>(null);
@@ -32,6 +32,7 @@ export function useBench({ recording, layout, pass, scheme, events }: BenchData)
   const sources = useBenchSources({
     recordingId: recording.id,
     layout,
+    firstTiles,
     window: view.shown,
     areCandidatesShown,
   });

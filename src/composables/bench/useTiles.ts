@@ -7,7 +7,7 @@ import { getTile } from '@/api/views.ts';
 import { planTiles } from '@/composables/bench/tile-plan.ts';
 import type { Heading } from '@/composables/bench/tile-plan.ts';
 import { createTileStore } from '@/composables/bench/tile-store.ts';
-import type { TileRequest } from '@/composables/bench/tile-store.ts';
+import type { KnownTile, TileRequest } from '@/composables/bench/tile-store.ts';
 import { windowSamples } from '@/composables/bench/time-axis.ts';
 import type { TimeWindow } from '@/composables/bench/time-axis.ts';
 
@@ -19,6 +19,8 @@ export interface TilesOptions {
   window: MaybeRefOrGetter<TimeWindow>;
   /** Pixels of the picture, as the screen has them. */
   widthPx: MaybeRefOrGetter<number>;
+  /** Fetched before the bench was there, so that it opens with a picture. */
+  known?: readonly KnownTile[];
 }
 
 export interface TileTrouble {
@@ -44,12 +46,13 @@ export function headingOf(now: TimeWindow, before: TimeWindow): Heading {
 }
 
 /** Fetches the tiles that the window needs. `arrivals` counts what has come, so that the picture is drawn again. */
-export function useTiles({ recordingId, layout, channels, window, widthPx }: TilesOptions) {
+export function useTiles({ recordingId, layout, channels, window, widthPx, known = [] }: TilesOptions) {
   const arrivals = shallowRef(0);
   /** What will be shown next, in that order: fetched right behind what is shown. */
   const upcoming = shallowRef<readonly UpcomingPart[]>([]);
   const trouble = shallowRef<TileTrouble>({ count: 0, error: null });
   const store = createTileStore({
+    known,
     load: (request, signal) => getTile({ recordingId, ...request }, signal),
     onChange: () => {
       const now = store.failing();

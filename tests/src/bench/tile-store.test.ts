@@ -37,6 +37,15 @@ function storeWith(
 }
 
 describe('tile store', () => {
+  it('has at once what was known before, and does not fetch it', () => {
+    const load = vi.fn(() => Promise.resolve(tileOf([2])));
+    const known = [{ request: place(1), tile: tileOf([1]) }];
+    const store = createTileStore({ load, known, onChange: () => undefined });
+    store.want([place(1)]);
+    expect(store.find(place(1))?.codes[0]).toBe(1);
+    expect(load).not.toHaveBeenCalled();
+  });
+
   it('fetches each tile once and has it afterwards', async () => {
     const { store, asked } = storeWith();
     store.want([place(1), place(2)]);
