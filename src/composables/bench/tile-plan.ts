@@ -83,7 +83,9 @@ export function planTiles(
   const shown = tilesOfWindow(layout, window, level);
   const root = rootOf(layout);
   const parents = level + 1 < layout.levels ? tilesOfWindow(layout, widened(window), level + 1) : [];
-  const all = [...parents, ...neighboursOf(layout, shown, heading), ...childrenOf(layout, window, level)];
+  // Finer tiles cost the server most, and while the window moves they are left behind before they come.
+  const children = heading === 0 ? childrenOf(layout, window, level) : [];
+  const all = [...parents, ...neighboursOf(layout, shown, heading), ...children];
   return { level, root, shown, ahead: withoutRepeats(all, [root, ...shown]) };
 }
 

@@ -1,4 +1,4 @@
-import { tryOnScopeDispose, useThrottleFn } from '@vueuse/core';
+import { tryOnScopeDispose, useDebounceFn, useThrottleFn } from '@vueuse/core';
 import { shallowRef, toValue, watch } from 'vue';
 import type { MaybeRefOrGetter } from 'vue';
 import type { Tile } from '@shared/audio/tile.ts';
@@ -36,6 +36,8 @@ export interface UpcomingPart {
 }
 
 const BETWEEN_PLANS_MS = 50;
+/** After that long without a movement the window is taken to stay where it is. */
+const REST_MS = 200;
 
 /** Where the window goes, as far as it keeps its length. A jump to another place goes nowhere. */
 export function headingOf(now: TimeWindow, before: TimeWindow): Heading {
@@ -122,8 +124,15 @@ export function useTiles({ recordingId, layout, channels, window, widthPx, known
   // While the window moves it is enough to ask a few times for each tile's width: at once, so that a single jump is never
   // left without its tiles, and once more at the end.
   const wantSoon = useThrottleFn(wantNow, BETWEEN_PLANS_MS, true, true);
+  const wantAtRest = useDebounceFn(wantNow, REST_MS);
   wantNow();
-  watch(() => [toValue(window), toValue(channels), toValue(widthPx), upcoming.value] as const, wantSoon);
+  watch(
+    () => [toValue(window), toValue(channels), toValue(widthPx), upcoming.value] as const,
+    () => {
+      void wantSoon();
+      void wantAtRest();
+    },
+  );
   // The browser knows first that the connection is back.
   globalThis.addEventListener('online', store.retry);
   tryOnScopeDispose(() => {

@@ -95,6 +95,16 @@ describe('tile plan', () => {
     expect(columnsAtLevel(layout, -2)).toBe(160_000);
   });
 
+  it('fetches no finer tiles while the window moves', () => {
+    const layout = layoutOf(256 * 64);
+    const window = { startSample: 256 * 128 * 10, endSample: 256 * 128 * 11 };
+    const levels = (heading: -1 | 0 | 1) =>
+      planTiles(layout, window, 128, heading).ahead.map(({ level }) => level);
+    expect(Math.min(...levels(0))).toBe(-1);
+    expect(Math.min(...levels(1))).toBe(0);
+    expect(Math.min(...levels(-1))).toBe(0);
+  });
+
   it('fetches the whole, the coarser picture, both neighbours and the next finer one ahead', () => {
     const layout = layoutOf(256 * 64);
     const window = { startSample: 256 * 128 * 10, endSample: 256 * 128 * 11 };

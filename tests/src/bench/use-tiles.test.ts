@@ -26,6 +26,8 @@ const tile: Tile = {
 };
 let scope = effectScope();
 
+const fetched = () => vi.mocked(getTile).mock.calls.map(([{ level, tile: index }]) => `${level}/${index}`);
+
 beforeEach(() => {
   scope = effectScope();
   vi.useFakeTimers();
@@ -52,11 +54,27 @@ describe('the tiles of a window', () => {
   });
 });
 
+describe('finer tiles', () => {
+  it('are fetched once the window rests, not while it moves', async () => {
+    const window = shallowRef({ startSample: 0, endSample: 4000 });
+    scope.run(() => useTiles({ recordingId: 'one', layout, channels: [0], window, widthPx: 100 }));
+    await vi.advanceTimersByTimeAsync(5000);
+    vi.mocked(getTile).mockClear();
+    for (let step = 1; step <= 20; step++) {
+      window.value = { startSample: 20_000 + step * 100, endSample: 24_000 + step * 100 };
+      await vi.advanceTimersByTimeAsync(30);
+      if (step > 2) expect(fetched().filter((name) => name.startsWith('0/'))).toEqual([]);
+      if (step === 2) vi.mocked(getTile).mockClear();
+    }
+    await vi.advanceTimersByTimeAsync(1000);
+    expect(fetched().filter((name) => name.startsWith('0/')).length).toBeGreaterThan(0);
+  });
+});
+
 const part = (startSample: number) => ({
   window: { startSample, endSample: startSample + 1000 },
   channel: 0,
 });
-const fetched = () => vi.mocked(getTile).mock.calls.map(([{ level, tile: index }]) => `${level}/${index}`);
 
 describe('what is known to come next', () => {
   it('is fetched in its order right behind what is shown, and nothing beside that', async () => {
