@@ -32,7 +32,7 @@ export function regionPlotOptions(data: uPlot.AlignedData, onPoint: (index: numb
     legend: { show: false },
     cursor: { drag: { x: false, y: false }, points: { show: false }, y: false },
     scales: { x: { time: false, distr: 3, range: () => ends }, y: { range: () => range } },
-    axes: [frequencyAxis(palette, ...ends), valueAxis(palette, 'dB re full scale² per Hz')],
+    axes: [frequencyAxis(palette, ...ends), valueAxis(palette, 'dB re FS² per Hz')],
     series: [
       {},
       { stroke: palette.fracture, width: 1.4, points: { show: false } },
