@@ -3,7 +3,7 @@ interface Field {
   message: string;
 }
 
-/** A path as people read it: "startSample" is "Start sample". */
+/** A path as people read it: "startSample" is "Start sample", "labId" is "Lab". */
 export function fieldName(path: string): string {
   const words = path
     .replace(
@@ -11,6 +11,7 @@ export function fieldName(path: string): string {
       (_pair, before: string, after: string) => `${before} ${after.toLowerCase()}`,
     )
     .replace(/ hz\b/g, ' Hz')
+    .replace(/ id\b/g, '')
     .replaceAll('.', ' ');
   return words.charAt(0).toUpperCase() + words.slice(1);
 }

@@ -130,7 +130,8 @@ function authorizeUpdate(actor: Actor, labId: string): void {
 function requireOwnSensor(db: Reader, actor: Actor, sensorId: string): SensorView {
   const view = selectSensor(db, sensorId);
   // One answer for what is missing and for what belongs to others.
-  requireOwnLab(actor, view?.sensor.labId ?? '', 'sensorId');
+  const refused = { path: 'sensorId', message: 'is of no lab that you contribute to' };
+  requireOwnLab(actor, view?.sensor.labId ?? '', refused);
   if (view === undefined) throw notFound();
   return view;
 }

@@ -6,6 +6,7 @@ describe('what is wrong with a field', () => {
     expect(fieldSentence({ path: 'dueAt', message: 'cannot lie in the past' })).toBe(
       'Due at cannot lie in the past.',
     );
+    expect(fieldSentence({ path: 'labId', message: 'cannot change' })).toBe('Lab cannot change.');
     expect(fieldSentence({ path: 'file', message: 'is needed.' })).toBe('File is needed.');
     expect(fieldSentence({ path: '', message: 'has more than 20 fields' })).toBe(
       'The input has more than 20 fields.',

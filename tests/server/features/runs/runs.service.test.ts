@@ -90,7 +90,9 @@ describe('changing a run', () => {
       .all()
       .filter((row) => row.subjectId === run.id);
     expect(actions.map((row) => row.action)).toEqual(['run.created', 'run.updated']);
-    expect(() => runs.update(app.actor('contributor'), run.id, 2, runInput(app.otherLabId))).toThrow('labId');
+    expect(() => runs.update(app.actor('contributor'), run.id, 2, runInput(app.otherLabId))).toThrow(
+      'Lab cannot change',
+    );
   });
 
   test('is refused as stale with the present state where somebody was faster', () => {

@@ -28,9 +28,9 @@ describe('sensors and set-ups', () => {
     const withSensor = (sensorId: string) => saveSetupSchema.parse({ sensorId, name: 'Borrowed' });
     for (const sensorId of [foreign.sensorId, '01890000-0000-7000-8000-000000000000']) {
       expect(() => sensors.createSetup(contributor, withSensor(sensorId))).toThrow(
-        'sensorId: is not a lab that you contribute to',
+        'Sensor is of no lab that you contribute to',
       );
-      expect(() => sensors.updateSetup(contributor, own.id, 1, withSensor(sensorId))).toThrow('sensorId');
+      expect(() => sensors.updateSetup(contributor, own.id, 1, withSensor(sensorId))).toThrow('Sensor is');
     }
   });
 
@@ -38,7 +38,9 @@ describe('sensors and set-ups', () => {
     const { sensors } = app.deps.services;
     const { sensorId } = seedSetup(app, 'own');
     const moved = saveSensorSchema.parse({ labId: app.otherLabId, name: 'Disc sensor', kind: 'contact-ae' });
-    expect(() => sensors.updateSensor(app.actor('contributor'), sensorId, 1, moved)).toThrow('labId');
+    expect(() => sensors.updateSensor(app.actor('contributor'), sensorId, 1, moved)).toThrow(
+      'Lab cannot change',
+    );
   });
 
   test('the lower edge of a band lies below the upper one', () => {

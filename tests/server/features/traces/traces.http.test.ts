@@ -101,8 +101,8 @@ describe('a trace that is refused', () => {
       'mapping.valueColumn',
     ],
     ['no name', { told: traceInput({ name: ' ' }) }, 'invalid-input', 'name'],
-    ['nothing told', { told: null }, 'invalid-input', 'trace: is needed'],
-    ['text that is no JSON', { told: '{' }, 'invalid-input', 'trace: is not JSON'],
+    ['nothing told', { told: null }, 'invalid-input', 'Trace is needed'],
+    ['text that is no JSON', { told: '{' }, 'invalid-input', 'Trace is not JSON'],
     ['a file in another part', { part: 'table' }, 'invalid-input', 'the file belongs in the part file'],
   ])('%s', async (_, sent, code, words) => {
     const before = storedState(app);
