@@ -109,12 +109,11 @@ describe('a round', () => {
       .waitFor();
     // From whatever page is open, and told where one begins.
     await page.goto('/');
-    const kept = page.getByText(/3.answers kept in this browser, not stored yet/);
-    await kept.waitFor();
+    await page.getByText(/3.answers kept in this browser, not stored yet/).waitFor();
     await takeScreenshot(page, 'home-kept-answers-light');
     await page.unroute('**/verdict');
     await page.evaluate(() => globalThis.dispatchEvent(new Event('online')));
-    await kept.waitFor({ state: 'detached' });
+    await page.getByText(/answers? kept in this browser/).waitFor({ state: 'detached' });
     expect((await roundOf(page, pass)).progress.noEvents).toBe(before.noEvents + 3);
   });
 
