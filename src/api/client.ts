@@ -32,6 +32,12 @@ interface RawRequest extends SendOptions {
 }
 
 const signInListeners = new Set<() => void>();
+let signIns = 0;
+
+/** Somebody has signed in: what was under way meanwhile and is refused for want of it is asked once more. */
+export function noteSignIn(): void {
+  signIns++;
+}
 
 /** Calls the listener whenever the server says that nobody is signed in any more. Returns the way to stop it. */
 export function onSignInRequired(listener: () => void): () => void {
@@ -97,10 +103,14 @@ async function toProblem(response: Response): Promise<ProblemError> {
 }
 
 async function call(request: RawRequest): Promise<Response> {
+  const signInsBefore = signIns;
   const response = await reach(request);
   if (response.ok) return response;
   const problem = await toProblem(response);
-  if (problem.code === 'sign-in-required') for (const listener of signInListeners) listener();
+  if (problem.code === 'sign-in-required') {
+    if (signIns !== signInsBefore) return call(request);
+    for (const listener of signInListeners) listener();
+  }
   throw problem;
 }
 

@@ -7,7 +7,7 @@ import { computed, onScopeDispose, ref, shallowRef } from 'vue';
 import { abilityFor } from '@shared/policy/ability.ts';
 import type { AppAbility } from '@shared/policy/ability.ts';
 import type { CurrentUser, SignIn } from '@shared/contract/sessions.ts';
-import { onSignInRequired } from '@/api/client.ts';
+import { noteSignIn, onSignInRequired } from '@/api/client.ts';
 import * as sessions from '@/api/sessions.ts';
 import { createSessionNews } from '@/stores/session-news.ts';
 
@@ -41,6 +41,7 @@ export const useSessionStore = defineStore('session', () => {
   }
 
   function goOnAs(person: CurrentUser): void {
+    noteSignIn();
     user.value = person;
     isLoaded.value = true;
     hasEnded.value = false;

@@ -6,6 +6,7 @@ import {
   apiGetTagged,
   apiSend,
   apiSendForNothing,
+  noteSignIn,
   onSignInRequired,
   revisionTag,
 } from '@/api/client.ts';
@@ -148,6 +149,21 @@ describe('problems', () => {
     answer(problem(401, 'sign-in-required'), 401);
     await caught(apiGet('/api/x', schema));
     expect(listener).toHaveBeenCalledOnce();
+    stop();
+  });
+
+  it('do not tell them of a refusal that was overtaken by a sign-in, but ask again', async () => {
+    const listener = vi.fn();
+    const stop = onSignInRequired(listener);
+    let refuse: (response: Response) => void = () => undefined;
+    fetchMock.mockReturnValueOnce(new Promise((resolve) => (refuse = resolve)));
+    const asked = apiSend('PUT', '/api/x', schema, { body: { name: 'late' } });
+    noteSignIn();
+    answer({ name: 'late' });
+    refuse(new Response(JSON.stringify(problem(401, 'sign-in-required')), { status: 401 }));
+    expect(await asked).toEqual({ name: 'late' });
+    expect(fetchMock).toHaveBeenCalledTimes(2);
+    expect(listener).not.toHaveBeenCalled();
     stop();
   });
 });
